@@ -1,0 +1,2 @@
+namespace FakeBench;
+internal static class Program { private static int Main() => 0; }

@@ -1,0 +1,2 @@
+namespace BenchRunner;
+internal static class Program { private static int Main() => 0; }
