@@ -1,0 +1,31 @@
+using BenchRunner.Instruments.Permits;
+
+namespace BenchRunner.Instruments.Roles;
+
+/// <summary>The gate pulser that fires a train of two pulses.</summary>
+public interface IPulser : ISafeable
+{
+    /// <summary>What the instrument said it is.</summary>
+    InstrumentIdentity Identity { get; }
+
+    /// <summary>Sets gate levels and pulse widths and reads each back; the gates are held at their off level.</summary>
+    /// <returns>The settings as read back.</returns>
+    /// <exception cref="PermitException">The permit is dead or a value is beyond its bounds; nothing was set.</exception>
+    /// <exception cref="InstrumentException">A read-back differs from what was set, or the error queue holds something.</exception>
+    /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
+    Task<TrainSettings> Program(Permit permit, TrainSettings train, CancellationToken cancel);
+
+    /// <summary>Reads the widths back once more, arms, and checks that the pulser waits for its trigger.</summary>
+    /// <inheritdoc cref="Program" path="/exception"/>
+    Task Arm(Permit permit, CancellationToken cancel);
+
+    /// <summary>Fires one train and checks by the pulser's own count that exactly one was fired. Never repeated by itself.</summary>
+    /// <inheritdoc cref="Program" path="/exception"/>
+    Task Fire(Permit permit, CancellationToken cancel);
+
+    /// <summary>Inhibits pulses; the off bias of the gates stays.</summary>
+    Task Inhibit(CancellationToken cancel);
+
+    /// <summary>Trains fired since the pulser was switched on.</summary>
+    Task<long> ReadCount(CancellationToken cancel);
+}
