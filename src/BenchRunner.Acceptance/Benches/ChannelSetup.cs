@@ -1,0 +1,29 @@
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Acceptance.Benches;
+
+/// <summary>One recorded channel: scope input, probe, stated errors and their standard uncertainties.</summary>
+/// <param name="Channel">What it sees.</param>
+/// <param name="Input">The scope's channel number, from 1.</param>
+/// <param name="Probe">Kind of probe: <c>ground-referenced differential isolated shunt coil transformer clamp</c>.</param>
+/// <param name="Rating">Highest voltage (or current) of the probe, V or A; null: not stated.</param>
+/// <param name="Gain">Stated gain: recorded = gain · true + offset.</param>
+/// <param name="Offset">Stated offset, V or A; null: not stated.</param>
+/// <param name="Skew">Stated delay, s.</param>
+/// <param name="GainUncertainty">Standard uncertainty of the gain, 1 (relative).</param>
+/// <param name="OffsetUncertainty">Standard uncertainty of the offset, V or A.</param>
+/// <param name="SkewUncertainty">Standard uncertainty of the skew, s.</param>
+/// <param name="Where">Where it stands in the file.</param>
+public sealed record ChannelSetup(
+    Channel Channel,
+    int Input,
+    string Probe,
+    double? Rating,
+    double Gain,
+    double? Offset,
+    double Skew,
+    double GainUncertainty,
+    double OffsetUncertainty,
+    double SkewUncertainty,
+    Place Where);
