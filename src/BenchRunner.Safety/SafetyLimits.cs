@@ -1,0 +1,17 @@
+namespace BenchRunner.Safety;
+
+/// <summary>Bounds that the house sets for itself; the lab's hardware has its own.</summary>
+public static class SafetyLimits
+{
+    /// <summary>Below this DC voltage a bus counts as down, V. IEC 61140 calls 120 V DC the limit of low voltage; we stay at half.</summary>
+    public const double BusDown = 60;
+
+    /// <summary>How long a permit lives without a complete poll that finds nothing.</summary>
+    public static TimeSpan PermitLife { get; } = TimeSpan.FromSeconds(10);
+
+    /// <summary>Time from the start of a poll to the start of the next.</summary>
+    public static TimeSpan PollEvery { get; } = TimeSpan.FromMilliseconds(80);
+
+    /// <summary>How far the measured bus may lie above what the permit allows before it is a trip, relative.</summary>
+    public const double OverVoltageMargin = 0.05;
+}

@@ -1,0 +1,11 @@
+using BenchRunner.Instruments.Roles;
+
+namespace BenchRunner.Safety;
+
+/// <summary>The instruments on connections of safety's own, so that a runner that waits on its link never holds them up.</summary>
+/// <param name="Pulser">Inhibited on the way to the safe state.</param>
+/// <param name="Supply">Switched off on the way to the safe state.</param>
+/// <param name="Interlock">Polled; its bleeder discharges the bank.</param>
+/// <param name="Voltmeter">Polled; the only proof that the bus is down.</param>
+/// <remarks>Where an instrument admits one client, its one connection serves both.</remarks>
+public sealed record SafetyRoles(ISafeable Pulser, ISafeable Supply, IInterlock Interlock, IVoltmeter Voltmeter);

@@ -1,0 +1,255 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Instruments.Permits;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Safety.SafeStates;
+using BenchRunner.Safety.Watches;
+
+namespace BenchRunner.Safety.Supervision;
+
+/// <summary>Grants permits, watches interlock and bus on connections of its own, trips on any doubt.</summary>
+/// <remarks>
+/// One a bench and run. The watch polls faster than 10 Hz from <see cref="Start"/> until disposed, also while the bench is
+/// being made safe. A trip revokes the permit at once and cancels <see cref="Tripped"/>; the runner's way out is the safe
+/// state. Hardware stays the safety function.
+/// </remarks>
+public sealed class SafetySupervisor : IAsyncDisposable
+{
+    private readonly Lock _gate = new();
+    private readonly SafetyRoles _roles;
+    private readonly Envelope _envelope;
+    private readonly EventSource _events;
+    private readonly TimeProvider _time;
+    private readonly SafeState _safeState;
+    private readonly CancellationTokenSource _tripped = new();
+    private readonly CancellationTokenSource _end = new();
+    private Permit? _permit;
+    private Task _watching = Task.CompletedTask;
+    private double _lastVoltage = double.NaN;
+    private bool _discharging;
+    private Task<SafeStateReport>? _reaching;
+
+    /// <summary>Makes a supervisor; nothing is polled before <see cref="Start"/>.</summary>
+    public SafetySupervisor(
+        SafetyRoles roles, Envelope envelope, Discharge discharge, EventSource events, TimeProvider time)
+    {
+        ArgumentNullException.ThrowIfNull(events);
+        _roles = roles;
+        _envelope = envelope;
+        _events = events.As("watch");
+        _time = time;
+        _safeState = new SafeState(roles, Witness, discharge, events.As("safe-state"), time);
+    }
+
+    /// <summary>What the voltmeter has shown so far.</summary>
+    public BusWitness Witness { get; } = new();
+
+    /// <summary>Cancelled by a trip.</summary>
+    public CancellationToken Tripped => _tripped.Token;
+
+    /// <summary>The trip; null while there was none.</summary>
+    public Trip? Trip { get; private set; }
+
+    /// <summary>The voltmeter's last reading by the watch, V; NaN before the first.</summary>
+    public double LastVoltage => Volatile.Read(ref _lastVoltage);
+
+    /// <summary>Polls once, in full, then goes on polling in a task of its own.</summary>
+    /// <exception cref="SafetyException">The first poll found a reason to trip.</exception>
+    public async Task Start(CancellationToken cancel)
+    {
+        if (await Poll(cancel).ConfigureAwait(false) is { } doubt)
+        {
+            OnDoubt(doubt);
+            throw new SafetyException($"{doubt}; put it right before the bench is used");
+        }
+
+        _watching = Task.Run(() => Watch(_end.Token), CancellationToken.None);
+    }
+
+    /// <summary>Grants leave to energise up to the bounds, after measuring interlock and bus afresh.</summary>
+    /// <exception cref="SafetyException">A bound is above the envelope, a trip stands, or the measurement gives a doubt.</exception>
+    public async Task<Permit> Grant(PermitBounds bounds, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(bounds);
+        if (bounds.Voltage.Value > _envelope.Voltage || bounds.Pulse.Value > _envelope.Pulse)
+        {
+            throw new SafetyException(
+                $"{bounds.OperatingPoint}: {bounds.Voltage.Value:0.#} V and pulses of {bounds.Pulse.Value * 1e6:0.##} us asked "
+                    + $"for, the envelope ends at {_envelope.Voltage:0.#} V and {_envelope.Pulse * 1e6:0.##} us; no permit");
+        }
+
+        if (await Poll(cancel).ConfigureAwait(false) is { } doubt)
+        {
+            OnDoubt(doubt);
+        }
+
+        lock (_gate)
+        {
+            if (Trip is not null)
+            {
+                throw new SafetyException(Trip.Reason);
+            }
+
+            _permit?.Revoke("another permit was granted");
+            _permit = new Permit(bounds, _time, SafetyLimits.PermitLife);
+            Witness.Commanded(bounds.Voltage.Value);
+            _discharging = false;
+            return _permit;
+        }
+    }
+
+    /// <summary>Trips: revokes the permit for good and cancels <see cref="Tripped"/>. The first reason stands.</summary>
+    public void TripNow(string reason)
+    {
+        lock (_gate)
+        {
+            if (Trip is not null)
+            {
+                return;
+            }
+
+            _permit?.Revoke(reason);
+            Trip = new Trip(reason, _time.GetUtcNow(), Witness.MayBeEnergised);
+        }
+
+        _events.Say(Severity.Alarm, "trip", $"TRIP: {reason}");
+        _ = MakeSafe();
+        _tripped.Cancel();
+    }
+
+    /// <summary>Ends the permit and brings the bench to the safe state. The watch goes on.</summary>
+    /// <remarks>A trip starts it by itself; who asks while it is under way gets the same report.</remarks>
+    public Task<SafeStateReport> MakeSafe()
+    {
+        lock (_gate)
+        {
+            _permit?.Revoke("the bench is being made safe");
+            _permit = null;
+            _discharging = true;
+            if (_reaching is null || _reaching.IsCompleted)
+            {
+                _reaching = Task.Run(Reach);
+            }
+
+            return _reaching;
+        }
+    }
+
+    private async Task<SafeStateReport> Reach()
+    {
+        SafeStateReport report = await _safeState.Reach().ConfigureAwait(false);
+        lock (_gate)
+        {
+            _discharging = !report.Proved;
+        }
+
+        return report;
+    }
+
+    /// <summary>Ends the watch and the permit.</summary>
+    public async ValueTask DisposeAsync()
+    {
+        lock (_gate)
+        {
+            _permit?.Revoke("the run has ended");
+        }
+
+        if (_reaching is { } reaching)
+        {
+            await reaching.ConfigureAwait(false);
+        }
+
+        await _end.CancelAsync().ConfigureAwait(false);
+        await _watching.ConfigureAwait(false);
+        _end.Dispose();
+        _tripped.Dispose();
+    }
+
+    private async Task Watch(CancellationToken end)
+    {
+        using var timer = new PeriodicTimer(SafetyLimits.PollEvery, _time);
+        try
+        {
+            while (await timer.WaitForNextTickAsync(end).ConfigureAwait(false))
+            {
+                if (await Poll(end).ConfigureAwait(false) is { } doubt)
+                {
+                    OnDoubt(doubt);
+                }
+            }
+        }
+        catch (OperationCanceledException) when (end.IsCancellationRequested)
+        {
+            // The run has ended.
+        }
+    }
+
+    private void OnDoubt(string doubt)
+    {
+        if (Trip is null)
+        {
+            TripNow(doubt);
+        }
+    }
+
+    /// <summary>One complete poll; renews the permit where it finds nothing.</summary>
+    /// <returns>The doubt, or null.</returns>
+    private async Task<string?> Poll(CancellationToken cancel)
+    {
+        try
+        {
+            InterlockState interlock = await _roles.Interlock.Read(cancel).ConfigureAwait(false);
+            double volts = Math.Abs((await _roles.Voltmeter.Read(cancel).ConfigureAwait(false)).Value);
+            Volatile.Write(ref _lastVoltage, volts);
+            Witness.Saw(volts);
+            lock (_gate)
+            {
+                if (Doubt(interlock, volts) is { } doubt)
+                {
+                    return doubt;
+                }
+
+                _permit?.Renew();
+                return null;
+            }
+        }
+        catch (OperationCanceledException) when (cancel.IsCancellationRequested)
+        {
+            throw;
+        }
+        catch (Exception failure) when (failure is not OutOfMemoryException)
+        {
+            return $"the watch lost sight of the bench: {failure.Message}";
+        }
+    }
+
+    private string? Doubt(InterlockState interlock, double volts)
+    {
+        if (interlock.EmergencyStop)
+        {
+            return "the emergency stop is pressed";
+        }
+
+        if (interlock.WatchdogTripped)
+        {
+            return "the interlock controller's watchdog has acted";
+        }
+
+        bool energised = _permit is not null || _discharging || volts >= SafetyLimits.BusDown;
+        if (!interlock.LoopClosed && energised)
+        {
+            return "the interlock loop is open";
+        }
+
+        if (_permit is null)
+        {
+            return !_discharging && volts >= SafetyLimits.BusDown
+                ? $"the bus is at {volts:0.0} V and nothing was allowed to charge it" : null;
+        }
+
+        double ceiling = Math.Min(_permit.Bounds.Voltage.Value * (1 + SafetyLimits.OverVoltageMargin), _envelope.Voltage);
+        ceiling = Math.Max(ceiling, SafetyLimits.BusDown);
+        return volts > ceiling
+            ? $"the bus is at {volts:0.0} V, above the {ceiling:0.0} V that the permit allows" : null;
+    }
+}
