@@ -1,0 +1,144 @@
+using System.Diagnostics;
+using System.Globalization;
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Runner.Benches;
+
+/// <summary>The fake bench that <c>run</c> starts as a child: its instruments' links, and the hands that exchange devices.</summary>
+/// <remarks>It ends when its standard input closes, so it cannot outlive the run, however the run ends.</remarks>
+public sealed class FakeBenchProcess : IHands, IAsyncDisposable
+{
+    private static readonly TimeSpan StartLimit = TimeSpan.FromSeconds(15);
+    private readonly Process _process;
+
+    private FakeBenchProcess(Process process, IReadOnlyDictionary<string, string> links)
+    {
+        _process = process;
+        Links = links;
+    }
+
+    /// <summary>Role to link, e.g. <c>supply</c> to <c>tcp 127.0.0.1 41001</c>.</summary>
+    public IReadOnlyDictionary<string, string> Links { get; }
+
+    /// <summary>Starts the child and waits until every instrument listens.</summary>
+    /// <param name="bench">The bench; it has a <c>fake:</c> block.</param>
+    /// <param name="device">Serial of the first device in the fixture.</param>
+    /// <param name="time">The clock of the start's deadline.</param>
+    /// <param name="cancel">Ends the waiting and the child.</param>
+    /// <exception cref="BenchException">The program is missing, or ended or kept silent before it was ready.</exception>
+    public static async Task<FakeBenchProcess> Start(
+        Bench bench, string device, TimeProvider time, CancellationToken cancel)
+    {
+        Process process = Launch(Arguments(bench, device));
+        try
+        {
+            using var limit = new CancellationTokenSource(StartLimit, time);
+            using var both = CancellationTokenSource.CreateLinkedTokenSource(limit.Token, cancel);
+            return new FakeBenchProcess(process, await ReadLinks(process, both.Token).ConfigureAwait(false));
+        }
+        catch (Exception failure)
+        {
+            process.Kill();
+            process.Dispose();
+            cancel.ThrowIfCancellationRequested();
+            throw failure is OperationCanceledException
+                ? new BenchException($"the fake bench was not ready within {StartLimit.TotalSeconds:0} s", failure)
+                : failure;
+        }
+    }
+
+    /// <inheritdoc/>
+    public async Task Do(string hand, CancellationToken cancel)
+    {
+        try
+        {
+            await _process.StandardInput.WriteLineAsync(hand.AsMemory(), cancel).ConfigureAwait(false);
+            await _process.StandardInput.FlushAsync(cancel).ConfigureAwait(false);
+        }
+        catch (IOException failure)
+        {
+            throw new BenchException("the fake bench has ended by itself", failure);
+        }
+    }
+
+    /// <inheritdoc/>
+    public async ValueTask DisposeAsync()
+    {
+        _process.StandardInput.Close();
+        using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(5));
+        try
+        {
+            await _process.WaitForExitAsync(patience.Token).ConfigureAwait(false);
+        }
+        catch (OperationCanceledException)
+        {
+            _process.Kill();
+        }
+
+        _process.Dispose();
+    }
+
+    private static List<string> Arguments(Bench bench, string device)
+    {
+        FakeSettings fake = bench.Fake
+            ?? throw new ArgumentException("The bench has no fake: block.", nameof(bench));
+        List<string> arguments =
+        [
+            "serve", "--ends-with-input",
+            "--device", device,
+            "--seed", fake.Seed.ToString(CultureInfo.InvariantCulture),
+            "--pace", fake.Pace.ToString(CultureInfo.InvariantCulture),
+            "--channels", string.Join(',', bench.Channels.OrderBy(c => c.Input).Select(c => c.Channel.Name())),
+        ];
+        foreach (string fault in fake.Faults)
+        {
+            arguments.AddRange(["--fault", fault]);
+        }
+
+        return arguments;
+    }
+
+    private static Process Launch(IEnumerable<string> arguments)
+    {
+        string folder = Path.Combine(AppContext.BaseDirectory, "fakebench");
+        string program = Path.Combine(folder, OperatingSystem.IsWindows() ? "FakeBench.exe" : "FakeBench");
+        if (!File.Exists(program))
+        {
+            throw new BenchException($"the fake bench is missing at {program}; build the whole solution");
+        }
+
+        var start = new ProcessStartInfo(program)
+        {
+            RedirectStandardInput = true,
+            RedirectStandardOutput = true,
+            UseShellExecute = false,
+        };
+        foreach (string argument in arguments)
+        {
+            start.ArgumentList.Add(argument);
+        }
+
+        return Process.Start(start) ?? throw new BenchException($"{program} did not start");
+    }
+
+    private static async Task<IReadOnlyDictionary<string, string>> ReadLinks(Process process, CancellationToken cancel)
+    {
+        var links = new Dictionary<string, string>();
+        while (await process.StandardOutput.ReadLineAsync(cancel).ConfigureAwait(false) is { } line)
+        {
+            if (line == "ready")
+            {
+                return links;
+            }
+
+            string[] words = line.Split(' ', 2);
+            if (words.Length == 2)
+            {
+                links[words[0]] = words[1];
+            }
+        }
+
+        throw new BenchException("the fake bench ended before it was ready; its own message stands above");
+    }
+}
