@@ -1,0 +1,198 @@
+namespace FakeBench.Physics;
+
+/// <summary>A stiff solver: the Rosenbrock method RODAS of order 4(3) with six stages and its own dense output.</summary>
+/// <remarks>
+/// Source: Hairer and Wanner, Solving Ordinary Differential Equations II, section IV.7 (coefficients from memory, held
+/// by tests of the order reached). Stages are in the transformed form, so that no product with the Jacobian is needed.
+/// One instance serves one integration; not for several threads.
+/// </remarks>
+public sealed class Rodas4
+{
+    private const double Gamma = 0.25;
+    private const double A21 = 1.544, A31 = 0.9466785280815826, A32 = 0.2557011698983284;
+    private const double A41 = 3.314825187068521, A42 = 2.896124015972201, A43 = 0.9986419139977817;
+    private const double A51 = 1.221224509226641, A52 = 6.019134481288629;
+    private const double A53 = 12.53708332932087, A54 = -0.6878860361058950;
+    private const double C21 = -5.6688, C31 = -2.430093356833875, C32 = -0.2063599157091915;
+    private const double C41 = -0.1073529058151375, C42 = -9.594562251023355, C43 = -20.47028614809616;
+    private const double C51 = 7.496443313967647, C52 = -10.24680431464352;
+    private const double C53 = -33.99990352819905, C54 = 11.70890893206160;
+    private const double C61 = 8.083246795921522, C62 = -7.981132988064893, C63 = -31.52159432874371;
+    private const double C64 = 16.31930543123136, C65 = -6.058818238834054;
+    private const double T2 = 0.386, T3 = 0.21, T4 = 0.63;
+    private const double G1 = 0.25, G2 = -0.1043, G3 = 0.1035, G4 = -0.0362;
+    private const double D21 = 10.12623508344586, D22 = -7.487995877610167, D23 = -34.80091861555747;
+    private const double D24 = -7.992771707568823, D25 = 1.025137723295662;
+    private const double D31 = -0.6762803392801253, D32 = 6.087714651680015, D33 = 16.43084320892478;
+    private const double D34 = 24.76722511418386, D35 = -6.594389125716872;
+
+    private const double Safety = 0.9, Shrink = 0.2, Grow = 6;
+
+    private readonly IOdeSystem _system;
+    private readonly SparseElimination _elimination;
+    private readonly double _tolerance;
+    private readonly double[] _matrix, _jacobian;
+    private readonly double[] _f, _ft, _stage, _k1, _k2, _k3, _k4, _k5, _k6, _next;
+    private readonly double[] _old, _dense2, _dense3;
+
+    /// <summary>Prepares an integration.</summary>
+    /// <param name="system">The equations.</param>
+    /// <param name="tolerance">Root mean square of the local error, in units of the system's scale; above 0.</param>
+    public Rodas4(IOdeSystem system, double tolerance)
+    {
+        ArgumentNullException.ThrowIfNull(system);
+        ArgumentOutOfRangeException.ThrowIfNegativeOrZero(tolerance);
+        _system = system;
+        _elimination = system.Elimination;
+        _tolerance = tolerance;
+        int n = system.Size;
+        (_matrix, _jacobian) = (new double[n * n], new double[n * n]);
+        (_f, _ft, _stage, _next) = (new double[n], new double[n], new double[n], new double[n]);
+        (_k1, _k2, _k3) = (new double[n], new double[n], new double[n]);
+        (_k4, _k5, _k6) = (new double[n], new double[n], new double[n]);
+        (_old, _dense2, _dense3) = (new double[n], new double[n], new double[n]);
+        State = new double[n];
+    }
+
+    /// <summary>The state reached; set it before the first step.</summary>
+    public double[] State { get; }
+
+    /// <summary>The time reached, s.</summary>
+    public double Time { get; set; }
+
+    /// <summary>Start of the last step, s.</summary>
+    public double StepStart { get; private set; }
+
+    /// <summary>Length of the last step, s.</summary>
+    public double StepLength { get; private set; }
+
+    /// <summary>The step to try next, s; set it at a corner of the input.</summary>
+    public double NextStep { get; set; } = 10e-12;
+
+    /// <summary>Steps accepted so far.</summary>
+    public int Accepted { get; private set; }
+
+    /// <summary>Steps tried again with a smaller step.</summary>
+    public int Rejected { get; private set; }
+
+    /// <summary>Takes one step that meets the tolerance.</summary>
+    /// <param name="limit">Time not to be passed, s; after <see cref="Time"/>. It is met exactly.</param>
+    /// <exception cref="ArithmeticException">No step however small meets the tolerance.</exception>
+    public void Advance(double limit)
+    {
+        _system.Linearise(Time, State, _f, _jacobian, _ft);
+        while (true)
+        {
+            double step = NextStep;
+            bool last = Time + step * 1.0001 >= limit;
+            if (last) step = limit - Time;
+            double error = Try(step);
+            double factor = error > 0 ? Math.Clamp(Safety / Math.Sqrt(Math.Sqrt(error)), Shrink, Grow) : Grow;
+            if (error <= 1)
+            {
+                Accept(step, last ? limit : Time + step);
+                // A step cut short by the limit says nothing against the longer one that was planned.
+                NextStep = StepLadder.RoundDown(last ? Math.Max(NextStep, step * factor) : step * factor);
+                return;
+            }
+
+            Rejected++;
+            if (step <= StepLadder.Smallest) throw new ArithmeticException($"The solver is stuck at {Time} s.");
+            NextStep = StepLadder.RoundDown(step * (double.IsNaN(error) ? Shrink : factor));
+        }
+    }
+
+    /// <summary>The state inside the last step.</summary>
+    /// <param name="time">Between the step's ends, s.</param>
+    /// <param name="state">Receives the state.</param>
+    public void Interpolate(double time, Span<double> state)
+    {
+        double s = (time - StepStart) / StepLength;
+        double r = 1 - s;
+        double[] old = _old, end = State, dense2 = _dense2, dense3 = _dense3;
+        for (int i = 0; i < old.Length && i < state.Length; i++)
+        {
+            state[i] = old[i] * r + s * (end[i] + r * (dense2[i] + s * dense3[i]));
+        }
+    }
+
+    private void Accept(double step, double time)
+    {
+        for (int i = 0; i < _next.Length; i++)
+        {
+            _dense2[i] = D21 * _k1[i] + D22 * _k2[i] + D23 * _k3[i] + D24 * _k4[i] + D25 * _k5[i];
+            _dense3[i] = D31 * _k1[i] + D32 * _k2[i] + D33 * _k3[i] + D34 * _k4[i] + D35 * _k5[i];
+        }
+
+        State.CopyTo(_old, 0);
+        _next.CopyTo(State, 0);
+        (StepStart, StepLength, Time) = (Time, step, time);
+        Accepted++;
+    }
+
+    private double Try(double step)
+    {
+        Factor(step);
+        double r = 1 / step;
+        double t = Time;
+        double[] y = State, f = _f, ft = _ft, stage = _stage;
+        double[] k1 = _k1, k2 = _k2, k3 = _k3, k4 = _k4, k5 = _k5, k6 = _k6;
+        int n = y.Length;
+
+        for (int i = 0; i < n; i++) k1[i] = f[i] + step * G1 * ft[i];
+        _elimination.Solve(_matrix, k1);
+
+        for (int i = 0; i < n; i++) stage[i] = y[i] + A21 * k1[i];
+        _system.Evaluate(t + T2 * step, stage, k2);
+        for (int i = 0; i < n; i++) k2[i] += r * C21 * k1[i] + step * G2 * ft[i];
+        _elimination.Solve(_matrix, k2);
+
+        for (int i = 0; i < n; i++) stage[i] = y[i] + A31 * k1[i] + A32 * k2[i];
+        _system.Evaluate(t + T3 * step, stage, k3);
+        for (int i = 0; i < n; i++) k3[i] += r * (C31 * k1[i] + C32 * k2[i]) + step * G3 * ft[i];
+        _elimination.Solve(_matrix, k3);
+
+        for (int i = 0; i < n; i++) stage[i] = y[i] + A41 * k1[i] + A42 * k2[i] + A43 * k3[i];
+        _system.Evaluate(t + T4 * step, stage, k4);
+        for (int i = 0; i < n; i++) k4[i] += r * (C41 * k1[i] + C42 * k2[i] + C43 * k3[i]) + step * G4 * ft[i];
+        _elimination.Solve(_matrix, k4);
+
+        for (int i = 0; i < n; i++) stage[i] = y[i] + A51 * k1[i] + A52 * k2[i] + A53 * k3[i] + A54 * k4[i];
+        _system.Evaluate(t + step, stage, k5);
+        for (int i = 0; i < n; i++) k5[i] += r * (C51 * k1[i] + C52 * k2[i] + C53 * k3[i] + C54 * k4[i]);
+        _elimination.Solve(_matrix, k5);
+
+        for (int i = 0; i < n; i++) stage[i] += k5[i];
+        _system.Evaluate(t + step, stage, k6);
+        for (int i = 0; i < n; i++)
+        {
+            k6[i] += r * (C61 * k1[i] + C62 * k2[i] + C63 * k3[i] + C64 * k4[i] + C65 * k5[i]);
+        }
+
+        _elimination.Solve(_matrix, k6);
+        return Finish();
+    }
+
+    private double Finish()
+    {
+        var scale = _system.Scale;
+        double sum = 0;
+        for (int i = 0; i < _next.Length; i++)
+        {
+            _next[i] = _stage[i] + _k6[i];
+            double e = _k6[i] / scale[i];
+            sum += e * e;
+        }
+
+        return Math.Sqrt(sum / _next.Length) / _tolerance;
+    }
+
+    private void Factor(double step)
+    {
+        foreach (int at in _elimination.Filled) _matrix[at] = -_jacobian[at];
+        double diagonal = 1 / (step * Gamma);
+        int n = State.Length;
+        for (int i = 0; i < n; i++) _matrix[i * n + i] += diagonal;
+        _elimination.Factor(_matrix);
+    }
+}

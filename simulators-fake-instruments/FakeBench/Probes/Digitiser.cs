@@ -1,0 +1,27 @@
+namespace FakeBench.Probes;
+
+/// <summary>The converter of one scope channel: signed codes, clipped at the rails.</summary>
+/// <param name="Bits">8 or 12.</param>
+/// <param name="Span">From rail to rail, V or A; above 0.</param>
+/// <param name="Centre">Value of code 0, V or A.</param>
+public sealed record Digitiser(int Bits, double Span, double Centre)
+{
+    /// <summary>One code, V or A.</summary>
+    public double Step => Span / (1 << Bits);
+
+    /// <summary>The lowest code.</summary>
+    public short Lowest => (short)-(1 << (Bits - 1));
+
+    /// <summary>The highest code.</summary>
+    public short Highest => (short)((1 << (Bits - 1)) - 1);
+
+    /// <summary>The nearest code, or the rail.</summary>
+    public short Code(double value)
+    {
+        double code = Math.Floor((value - Centre) / Step + 0.5);
+        return (short)Math.Clamp(code, Lowest, Highest);
+    }
+
+    /// <summary>The value that a code stands for, V or A.</summary>
+    public double Value(short code) => Centre + code * Step;
+}

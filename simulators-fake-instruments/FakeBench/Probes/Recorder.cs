@@ -1,0 +1,30 @@
+using FakeBench.Physics;
+
+namespace FakeBench.Probes;
+
+/// <summary>From the noiseless train to the codes of one scope channel.</summary>
+public static class Recorder
+{
+    /// <summary>Records one channel.</summary>
+    /// <param name="train">The noiseless train.</param>
+    /// <param name="probe">What lies before the scope.</param>
+    /// <param name="digitiser">The channel's converter as it is set.</param>
+    /// <param name="noise">Key of the channel's noise: <see cref="CaptureKey.Noise"/>.</param>
+    /// <param name="jitter">How much later than the trigger says it happens, s: <see cref="CaptureKey.Jitter"/>, the same
+    /// for all channels of a capture.</param>
+    /// <returns>One code a sample of the train; equal arguments, equal codes.</returns>
+    public static short[] Record(TrainTrajectory train, ProbeChannel probe, Digitiser digitiser, ulong noise, double jitter)
+    {
+        ArgumentNullException.ThrowIfNull(train);
+        ArgumentNullException.ThrowIfNull(probe);
+        ArgumentNullException.ThrowIfNull(digitiser);
+        var values = new double[train.Points];
+        Lowpass.Delay(train[probe.Signal], (probe.Skew + jitter) / train.Interval, values);
+        Lowpass.Filter(values, 2 * Math.PI * probe.Bandwidth * train.Interval);
+        for (int i = 0; i < values.Length; i++) values[i] = probe.Gain * values[i] + probe.Offset;
+        GaussianNoise.Add(values, probe.Noise, noise);
+        var codes = new short[values.Length];
+        for (int i = 0; i < codes.Length; i++) codes[i] = digitiser.Code(values[i]);
+        return codes;
+    }
+}
