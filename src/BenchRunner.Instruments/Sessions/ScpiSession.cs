@@ -1,0 +1,348 @@
+using System.Diagnostics.CodeAnalysis;
+using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Permits;
+using BenchRunner.Instruments.Replies;
+using BenchRunner.Instruments.Roles;
+using Polly;
+using Polly.Retry;
+
+namespace BenchRunner.Instruments.Sessions;
+
+/// <summary>Talks with one instrument: one exchange at a time, each with one deadline, every setting checked in the error queue.</summary>
+/// <remarks>
+/// Questions and setting down are repeated when a reply is lost, over a new connection if need be. What sets is never
+/// repeated, and what energises or fires is neither repeated nor sent over any connection but the first, the one that
+/// was identified. Thread-safe: callers take turns; <see cref="SendNow"/> alone does not wait for its turn.
+/// </remarks>
+public sealed class ScpiSession : IDisposable
+{
+    private readonly SemaphoreSlim _turn = new(1, 1);
+    private readonly string _role;
+    private readonly LinkAddress _address;
+    private readonly SessionOptions _options;
+    private readonly TimeProvider _time;
+    private readonly IInstrumentLog _log;
+    private readonly ResiliencePipeline _connecting;
+    private readonly ResiliencePipeline _repeatable;
+    private volatile ScpiWire _wire;
+    private volatile int _connections;
+    private bool _disposed;
+
+    [SuppressMessage("Reliability", "CS8618", Justification = "Open fills wire and identity before it hands the session out.")]
+    private ScpiSession(string role, LinkAddress address, SessionOptions options, TimeProvider time, IInstrumentLog log)
+    {
+        _role = role;
+        _address = address;
+        _options = options;
+        _time = time;
+        _log = log;
+        _connecting = Repeat(options.ConnectAttempts, options.ConnectPause, time);
+        _repeatable = Repeat(options.ReadAttempts, TimeSpan.Zero, time);
+        _wire = null!;
+        Identity = null!;
+    }
+
+    /// <summary>What the instrument said it is.</summary>
+    public InstrumentIdentity Identity { get; private set; }
+
+    /// <summary>The link as the bench file names it.</summary>
+    public string Link => _address.ToString();
+
+    /// <summary>How often the link was opened; a change says that the instrument's settings are not known any more.</summary>
+    public int Connections => _connections;
+
+    /// <summary>Connects, asks <c>*IDN?</c>, logs what the error queue holds and clears it (<c>*CLS</c>).</summary>
+    /// <param name="role">The role, for messages.</param>
+    /// <param name="address">Where the instrument is.</param>
+    /// <param name="options">Bounds of the session.</param>
+    /// <param name="time">The clock of all deadlines.</param>
+    /// <param name="log">Takes what happens on the way.</param>
+    /// <param name="cancel">Ends the attempt.</param>
+    /// <exception cref="LinkException">Not reachable, or what answers is no SCPI instrument.</exception>
+    public static async Task<ScpiSession> Open(
+        string role,
+        LinkAddress address,
+        SessionOptions options,
+        TimeProvider time,
+        IInstrumentLog log,
+        CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(address);
+        ArgumentNullException.ThrowIfNull(options);
+        ArgumentNullException.ThrowIfNull(time);
+        ArgumentNullException.ThrowIfNull(log);
+        var session = new ScpiSession(role, address, options, time, log);
+        try
+        {
+            session._wire = await session.Connect(cancel);
+            session.Identity = await session._wire.Ask("*IDN?", ReplyIdentity.Parse, false, cancel);
+            foreach (var entry in await session._wire.ReadErrors(cancel))
+            {
+                session.Report(InstrumentEventKind.Errors, $"the error queue held {entry} at the start");
+            }
+
+            session._wire.Send("*CLS");
+            session.Report(InstrumentEventKind.Connected, $"is {session.Identity.Text}");
+            return session;
+        }
+        catch
+        {
+            session.Dispose();
+            throw;
+        }
+    }
+
+    /// <summary>Asks a question that may be asked again, and reads its reply, one line.</summary>
+    /// <typeparam name="T">The answer.</typeparam>
+    /// <param name="query">One program message.</param>
+    /// <param name="parse">Reads the reply, e.g. <see cref="ReplyNumber.Parse"/>.</param>
+    /// <param name="cancel">Ends the exchange; the next one begins with a resynchronisation.</param>
+    /// <exception cref="LinkException">Late, cut, malformed or lost, as often as the options allow.</exception>
+    public ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, CancellationToken cancel) =>
+        _repeatable.ExecuteAsync(
+            static (state, cancel) => state.Session.AskOnce(state.Query, state.Parse, cancel),
+            (Session: this, Query: query, Parse: parse),
+            cancel);
+
+    /// <summary>Asks for a block, once, received straight into a pooled buffer.</summary>
+    /// <typeparam name="T">What is made of the block.</typeparam>
+    /// <param name="query">One program message.</param>
+    /// <param name="bound">The longest block that is due, bytes.</param>
+    /// <param name="parse">Reads the block's bytes, which are gone when it returns.</param>
+    /// <param name="cancel">Ends the exchange; inside a block that breaks the link.</param>
+    /// <exception cref="LinkException">Late, cut, longer than due, malformed or lost. Never a part of a block.</exception>
+    public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        await _turn.WaitAsync(cancel);
+        try
+        {
+            return await (await Wire(cancel)).AskBlock(query, bound, parse, cancel);
+        }
+        finally
+        {
+            _turn.Release();
+        }
+    }
+
+    /// <summary>Asks a question that an instrument of another kind refuses.</summary>
+    /// <returns>The answer, or null where it was refused; and what the error queue then held.</returns>
+    /// <exception cref="LinkException">Late, malformed or lost.</exception>
+    public async Task<(string? Answer, ErrorEntry Error)> Probe(string query, CancellationToken cancel)
+    {
+        await _turn.WaitAsync(cancel);
+        try
+        {
+            return await (await Wire(cancel)).Probe(query, cancel);
+        }
+        finally
+        {
+            _turn.Release();
+        }
+    }
+
+    /// <summary>Sends one setting, once, and reads the error queue.</summary>
+    /// <param name="command">One program message without a reply.</param>
+    /// <param name="cancel">Ends the exchange; whether the setting was taken is then unknown.</param>
+    /// <exception cref="InstrumentException">The error queue held something.</exception>
+    /// <exception cref="LinkException">The link failed; whether the setting was taken is unknown.</exception>
+    public Task Set(string command, CancellationToken cancel) => SetOnce(null, command, cancel);
+
+    /// <summary>Sends one command that energises or fires, under the permit's lock, once, and reads the error queue.</summary>
+    /// <inheritdoc cref="Set" path="/exception"/>
+    /// <param name="permit">The leave to do so.</param>
+    /// <param name="command">One program message without a reply.</param>
+    /// <param name="cancel">Ends the exchange; whether the command was taken is then unknown.</param>
+    /// <exception cref="PermitException">The permit is not live; nothing was written.</exception>
+    public Task Energise(Permit permit, string command, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(permit);
+        return SetOnce(permit, command, cancel);
+    }
+
+    /// <summary>Sends one command that sets down, at once, even while another exchange waits for its reply.</summary>
+    /// <exception cref="LinkException">The link is lost: what the instrument does is unknown.</exception>
+    public void SendNow(string command) => _wire.Send(command);
+
+    /// <summary>Sends commands that set down: at once, and again over a new connection where the link was lost.</summary>
+    /// <returns>What the error queue held afterwards; the caller reads back what became of it.</returns>
+    /// <exception cref="LinkException">The instrument was not reached, as often as the options allow: its state is unknown.</exception>
+    public async Task<IReadOnlyList<ErrorEntry>> SetDown(IReadOnlyList<string> commands, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(commands);
+        var reached = SendAllNow(commands) ? _wire : null;
+        return await _repeatable.ExecuteAsync(
+            async token =>
+            {
+                await _turn.WaitAsync(token);
+                try
+                {
+                    var wire = await Wire(token);
+                    if (!ReferenceEquals(wire, reached))
+                    {
+                        SendAll(wire, commands);
+                        reached = wire;
+                    }
+
+                    return await wire.ReadErrors(token);
+                }
+                finally
+                {
+                    _turn.Release();
+                }
+            },
+            cancel);
+    }
+
+    /// <summary>Closes the link. Sends nothing.</summary>
+    public void Dispose()
+    {
+        if (!_disposed)
+        {
+            _disposed = true;
+            _wire?.Dispose();
+        }
+    }
+
+    private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        await _turn.WaitAsync(cancel);
+        try
+        {
+            return await (await Wire(cancel)).Ask(query, parse, false, cancel);
+        }
+        finally
+        {
+            _turn.Release();
+        }
+    }
+
+    private async Task SetOnce(Permit? permit, string command, CancellationToken cancel)
+    {
+        await _turn.WaitAsync(cancel);
+        try
+        {
+            var wire = await Wire(cancel);
+            await wire.Ready(cancel);
+            if (permit is null)
+            {
+                wire.Send(command);
+            }
+            else
+            {
+                OnlyFirstConnection();
+                permit.Guard(() => wire.Send(command));
+            }
+
+            var errors = await wire.ReadErrors(cancel);
+            if (errors.Count > 0)
+            {
+                throw new InstrumentException(_role, Complaint(command, errors));
+            }
+        }
+        finally
+        {
+            _turn.Release();
+        }
+    }
+
+    private void OnlyFirstConnection()
+    {
+        if (_connections > 1)
+        {
+            throw new LinkException(
+                Link, "was opened again since the instrument was identified: its state is unknown, energising is refused");
+        }
+    }
+
+    private static string Complaint(string command, IReadOnlyList<ErrorEntry> errors)
+    {
+        var lost = errors.Any(e => e.Number == ErrorEntry.QueueOverflow) ? "; entries were lost, so its settings are unknown" : "";
+        return $"refused '{command}': {string.Join(", ", errors)}{lost}";
+    }
+
+    /// <summary>The wire in use, opened again where it broke and the options allow it. Only for the holder of the turn.</summary>
+    private async ValueTask<ScpiWire> Wire(CancellationToken cancel)
+    {
+        ObjectDisposedException.ThrowIf(_disposed, this);
+        if (_wire.Broken is not { } why)
+        {
+            return _wire;
+        }
+
+        if (!_options.Reconnect)
+        {
+            throw new LinkException(Link, "is broken; connect the bench anew", why);
+        }
+
+        _wire.Dispose();
+        var wire = await Connect(cancel);
+        _wire = wire;
+        var identity = await wire.Ask("*IDN?", ReplyIdentity.Parse, false, cancel);
+        if (identity.Text != Identity.Text)
+        {
+            throw wire.Break(new LinkException(Link, $"now '{identity.Text}' answers where '{Identity.Text}' did"));
+        }
+
+        Report(InstrumentEventKind.Reconnected, "opened again; the same instrument answers, its settings are unknown");
+        await wire.Ready(cancel);
+        return wire;
+    }
+
+    private async Task<ScpiWire> Connect(CancellationToken cancel)
+    {
+        var link = await _connecting.ExecuteAsync(
+            async token => await Links.Link.Open(_address, _options.ConnectWithin, _options.WriteWithin, _time, token), cancel);
+        _connections++;
+        var wire = new ScpiWire(link, _options, _time, Report);
+        if (_address.Kind == LinkKind.Serial)
+        {
+            // A serial line has no start of its own: half a command or half a reply of an earlier user may be under way.
+            wire.Terminate();
+        }
+
+        return wire;
+    }
+
+    private bool SendAllNow(IReadOnlyList<string> commands)
+    {
+        try
+        {
+            SendAll(_wire, commands);
+            return true;
+        }
+        catch (LinkException)
+        {
+            // The wire has noted and reported why; the turn that follows opens a new one and sends again.
+            return false;
+        }
+    }
+
+    private static void SendAll(ScpiWire wire, IReadOnlyList<string> commands)
+    {
+        foreach (var command in commands)
+        {
+            wire.Send(command);
+        }
+    }
+
+    private void Report(InstrumentEventKind kind, string message) =>
+        _log.Report(new InstrumentEvent(_role, Link, kind, Printable.Text(message, 1024)));
+
+    private static ResiliencePipeline Repeat(int attempts, TimeSpan pause, TimeProvider time)
+    {
+        ArgumentOutOfRangeException.ThrowIfLessThan(attempts, 1);
+        var builder = new ResiliencePipelineBuilder { TimeProvider = time };
+        if (attempts > 1)
+        {
+            builder.AddRetry(new RetryStrategyOptions
+            {
+                MaxRetryAttempts = attempts - 1,
+                Delay = pause,
+                BackoffType = DelayBackoffType.Exponential,
+                ShouldHandle = new PredicateBuilder().Handle<LinkException>(),
+            });
+        }
+
+        return builder.Build();
+    }
+}

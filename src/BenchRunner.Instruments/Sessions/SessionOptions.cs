@@ -1,0 +1,34 @@
+namespace BenchRunner.Instruments.Sessions;
+
+/// <summary>The bounds of a session: every wait has one.</summary>
+public sealed record SessionOptions
+{
+    /// <summary>How long connecting may take.</summary>
+    public TimeSpan ConnectWithin { get; init; } = TimeSpan.FromSeconds(3);
+
+    /// <summary>How many times connecting is tried, with growing pauses; at least 1.</summary>
+    public int ConnectAttempts { get; init; } = 3;
+
+    /// <summary>The pause after the first failed attempt; doubled after each further one.</summary>
+    public TimeSpan ConnectPause { get; init; } = TimeSpan.FromMilliseconds(100);
+
+    /// <summary>How long handing one message to the system may take. A permit being revoked waits at most that long.</summary>
+    public TimeSpan WriteWithin { get; init; } = TimeSpan.FromMilliseconds(500);
+
+    /// <summary>The one deadline of an exchange: from the command to the end of its reply.</summary>
+    public TimeSpan ReplyWithin { get; init; } = TimeSpan.FromSeconds(2);
+
+    /// <summary>Slowest transfer of a block that is waited for, bytes a second; its time is added to the deadline once the
+    /// block's head has come.</summary>
+    public double BlockRate { get; init; } = 1e6;
+
+    /// <summary>How long a link must be silent before a resynchronisation believes that nothing more is under way.</summary>
+    public TimeSpan Silence { get; init; } = TimeSpan.FromMilliseconds(100);
+
+    /// <summary>How many times a question is asked whose reply was lost; at least 1. Never applied to what energises,
+    /// fires or sets.</summary>
+    public int ReadAttempts { get; init; } = 2;
+
+    /// <summary>Whether a broken link is opened again for reading and setting down. Energising is refused ever after.</summary>
+    public bool Reconnect { get; init; } = true;
+}
