@@ -6,6 +6,15 @@ namespace BenchRunner.Acceptance.Benches;
 /// <summary>Instruments and fixture as one bench file describes them. All values SI.</summary>
 public sealed record Bench
 {
+    /// <summary>Bits of the scope where the file does not say.</summary>
+    public const int UsualScopeBits = 8;
+
+    /// <summary>Shortest sample interval where the file does not say, s.</summary>
+    public const double UsualScopeInterval = 1e-9;
+
+    /// <summary>Samples a channel where the file does not say.</summary>
+    public const int UsualScopeMemory = 1_000_000;
+
     /// <summary>Name, e.g. <c>fake</c>.</summary>
     public required string Name { get; init; }
 
@@ -58,13 +67,13 @@ public sealed record Bench
     public required IReadOnlyList<ChannelSetup> Channels { get; init; }
 
     /// <summary>Fewest bits of the scope's ADC that count for quantisation.</summary>
-    public int ScopeBits { get; init; } = 8;
+    public int ScopeBits { get; init; } = UsualScopeBits;
 
     /// <summary>Shortest sample interval of the scope, s.</summary>
-    public double ScopeFastestInterval { get; init; } = 1e-9;
+    public double ScopeFastestInterval { get; init; } = UsualScopeInterval;
 
     /// <summary>Largest record of the scope, samples a channel.</summary>
-    public int ScopeMemory { get; init; } = 1_000_000;
+    public int ScopeMemory { get; init; } = UsualScopeMemory;
 
     /// <summary>The hard ceiling.</summary>
     public required Envelope Envelope { get; init; }
@@ -74,6 +83,9 @@ public sealed record Bench
 
     /// <summary>The lab's own lines, shown with the cautions.</summary>
     public IReadOnlyList<string> Cautions { get; init; } = [];
+
+    /// <summary>Where single keys stand, by path (e.g. <c>envelope.voltage</c>), for messages.</summary>
+    public IReadOnlyDictionary<string, Place> Keys { get; init; } = new Dictionary<string, Place>();
 
     /// <summary>The exact bytes it was read from.</summary>
     public required SourceFile Source { get; init; }

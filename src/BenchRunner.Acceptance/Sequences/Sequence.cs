@@ -6,6 +6,18 @@ namespace BenchRunner.Acceptance.Sequences;
 /// <summary>What one device goes through and what it must meet. All values SI.</summary>
 public sealed record Sequence
 {
+    /// <summary>The word that files write for the temperature of the room.</summary>
+    public const string Ambient = "ambient";
+
+    /// <summary>Valid captures wanted where the file does not say.</summary>
+    public const int UsualValidCaptures = 5;
+
+    /// <summary>Most captures taken where the file does not say.</summary>
+    public const int UsualCapturesAtMost = 20;
+
+    /// <summary>Most attempts where the file does not say.</summary>
+    public const int UsualAttempts = 2;
+
     /// <summary>Name, e.g. <c>wd-1200s-25 incoming</c>.</summary>
     public required string Name { get; init; }
 
@@ -45,11 +57,14 @@ public sealed record Sequence
     /// <summary>Whether the points are run as written rather than by temperature, bus voltage, current.</summary>
     public bool AsWritten { get; init; }
 
+    /// <summary>Time at a new temperature before the first capture, s; null: not stated.</summary>
+    public double? Soak { get; init; }
+
     /// <summary>Valid captures wanted a point.</summary>
-    public int ValidCaptures { get; init; } = 5;
+    public int ValidCaptures { get; init; } = UsualValidCaptures;
 
     /// <summary>Most captures taken a point.</summary>
-    public int CapturesAtMost { get; init; } = 20;
+    public int CapturesAtMost { get; init; } = UsualCapturesAtMost;
 
     /// <summary>Whether captures continue until every limit is decided (at most <see cref="CapturesAtMost"/>).</summary>
     public bool UntilDecided { get; init; }
@@ -64,13 +79,16 @@ public sealed record Sequence
     public DecisionRule Decision { get; init; } = new();
 
     /// <summary>Most attempts of a device in a lot.</summary>
-    public int Attempts { get; init; } = 2;
+    public int Attempts { get; init; } = UsualAttempts;
 
     /// <summary>Definitions asked for in place of the defaults: quantity to ID.</summary>
     public IReadOnlyDictionary<string, string> Definitions { get; init; } = new Dictionary<string, string>();
 
     /// <summary>Time of <c>qrr/window-T</c>, s; null where not asked for.</summary>
     public double? IntegrationTime { get; init; }
+
+    /// <summary>Where single keys stand, by path (e.g. <c>ratings.peak-current</c>), for messages.</summary>
+    public IReadOnlyDictionary<string, Place> Keys { get; init; } = new Dictionary<string, Place>();
 
     /// <summary>The exact bytes it was read from.</summary>
     public required SourceFile Source { get; init; }

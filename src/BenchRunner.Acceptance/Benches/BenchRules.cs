@@ -1,0 +1,87 @@
+using System.Globalization;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Schemas;
+
+namespace BenchRunner.Acceptance.Benches;
+
+/// <summary>What must hold between the keys of a bench file.</summary>
+internal static class BenchRules
+{
+    private const string StartedTcp = "tcp 127.0.0.1:0";
+
+    /// <summary>Checks what is sound of a file.</summary>
+    /// <param name="file">The file's values.</param>
+    /// <param name="problems">Takes what is wrong.</param>
+    public static void Check(Fields file, List<Problem> problems)
+    {
+        Fields roles = file.Block("roles");
+        foreach (string role in roles.Keys)
+        {
+            Link(role, roles.Block(role), file.IsWritten("fake"), problems);
+        }
+
+        Fields channels = file.Block("channels");
+        ChannelKeys.Check(channels, problems);
+        Inputs(channels, problems);
+        foreach (string name in channels.Keys.Where(name => channels.Block(name).Text("probe") == "shunt" && !file.IsWritten("shunt")))
+        {
+            problems.Add(new Problem(
+                channels.Block(name).Of("probe"),
+                $"{name} is measured by a shunt that is not described",
+                "a block shunt",
+                "add shunt: { resistance: 5 mOhm, inductance: 200 pH } with its own values"));
+        }
+    }
+
+    private static void Link(string role, Fields setup, bool isFake, List<Problem> problems)
+    {
+        if (setup.Text("link") is not { } link)
+        {
+            return;
+        }
+
+        int port = link.StartsWith("tcp ", StringComparison.Ordinal)
+            ? int.Parse(link.AsSpan(link.LastIndexOf(':') + 1), NumberStyles.None, CultureInfo.InvariantCulture)
+            : -1;
+        bool isStarted = link is StartedTcp or InstrumentSetup.AutomaticSerial;
+        if (port > ushort.MaxValue)
+        {
+            problems.Add(new Problem(
+                setup.Of("link"), $"the port of {role} is {port}", "a port from 1 to 65535", "correct it"));
+        }
+        else if (isFake && !isStarted)
+        {
+            // A real instrument among simulated ones would be energised by a run that believes everything is fake.
+            problems.Add(new Problem(
+                setup.Of("link"),
+                $"{role} of a fake bench is reached by {Shown.Quote(link)}",
+                $"'{StartedTcp}' or '{InstrumentSetup.AutomaticSerial}': run starts all its instruments",
+                "write that, or remove the block fake"));
+        }
+        else if (!isFake && (port == 0 || link == InstrumentSetup.AutomaticSerial))
+        {
+            problems.Add(new Problem(
+                setup.Of("link"),
+                $"{role} is reached by {Shown.Quote(link)}, which is for a fake bench",
+                "where the instrument is",
+                "write its port or device, or add the block fake"));
+        }
+    }
+
+    private static void Inputs(Fields channels, List<Problem> problems)
+    {
+        var taken = new Dictionary<int, string>();
+        foreach (string name in channels.Keys)
+        {
+            Fields channel = channels.Block(name);
+            if (channel.Whole("scope") is { } input && !taken.TryAdd(input, name))
+            {
+                problems.Add(new Problem(
+                    channel.Of("scope"),
+                    $"{name} is on input {input} of the scope, as is {taken[input]}",
+                    "an input of its own for each channel",
+                    "correct the one that is wrong"));
+            }
+        }
+    }
+}

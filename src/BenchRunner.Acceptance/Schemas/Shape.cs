@@ -1,0 +1,58 @@
+using System.Text.Json.Nodes;
+using BenchRunner.Acceptance.Files;
+
+namespace BenchRunner.Acceptance.Schemas;
+
+/// <summary>What a value in a file may be: the one description that reader, messages and JSON Schema are made of.</summary>
+/// <param name="Meaning">What the value means, one sentence for the schema.</param>
+internal abstract record Shape(string Meaning)
+{
+    /// <summary>What is expected, with its article, as messages say it: <c>a time above 0 s</c>.</summary>
+    public abstract string Expected { get; }
+
+    /// <summary>A value as it might be written.</summary>
+    public abstract string Example { get; }
+
+    /// <summary>Reads a node.</summary>
+    /// <param name="node">The node.</param>
+    /// <param name="label">What messages call it: its key.</param>
+    /// <param name="around">The block it stands in; null at the root.</param>
+    /// <param name="problems">Takes what is wrong.</param>
+    /// <returns>The content (double, int, bool, string, a pair, a list, <see cref="Fields"/>); null where it is wrong.</returns>
+    public abstract object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems);
+
+    /// <summary>The JSON Schema of the value, without its meaning.</summary>
+    public abstract JsonObject Schema();
+
+    /// <summary>The JSON Schema of the value with its meaning.</summary>
+    public JsonObject SchemaWithMeaning()
+    {
+        JsonObject schema = Schema();
+        if (Meaning.Length > 0)
+        {
+            schema["description"] = Meaning;
+        }
+
+        return schema;
+    }
+
+    /// <summary>Reports that something else stands where this shape is wanted; nothing where that was said already.</summary>
+    protected void Refuse(YamlNode node, string label, List<Problem> problems)
+    {
+        string? found = node switch
+        {
+            YamlScalar { Text: "", Quoted: false } => $"{label} is empty",
+            YamlScalar scalar => $"{label} is {Shown.Quote(scalar.Text)}",
+            YamlList => $"{label} is a list",
+            YamlMap => $"{label} is a block",
+            _ => null,
+        };
+        if (found is not null)
+        {
+            problems.Add(new Problem(node.Where, found, Expected, Advice(node)));
+        }
+    }
+
+    /// <summary>What to do about a wrong node.</summary>
+    protected virtual string Advice(YamlNode node) => $"write it like {Example}";
+}
