@@ -1,0 +1,282 @@
+using BenchRunner.Signals.Edges;
+using BenchRunner.Signals.Levels;
+using BenchRunner.Signals.LoadCurrent;
+using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Recovery;
+using BenchRunner.Signals.RingWindows;
+using BenchRunner.Signals.Switching;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Signals.Analysis;
+
+/// <summary>Levels, fits and events of one record that several quantities share, each formed once.</summary>
+internal sealed class Analyser
+{
+    private const double BusWindow = 200e-9;
+    private const double OnStatePart = 0.10;
+    private const double QuietPart = 0.25;
+    private const double TimeConstants = 5;
+    private const double AfterRecovery = 20e-9;
+    private const int MostPasses = 3;
+
+    private readonly AnalysisSettings _settings;
+    private LoadLine _line;
+    private double[] _irr = [];
+    private RingWindow? _ringId;
+    private RingWindow? _ringOff;
+
+    public Analyser(Record record, Train train, AnalysisSettings settings)
+    {
+        Record = record;
+        Train = train;
+        _settings = settings;
+        BusWindowed = train.On2 is { } on2 ? MeanBefore(Channel.Vbus, on2.Departure) : Outside("on2");
+        BusFromVds = FormBusFromVds();
+        Bus = BusFor(settings.Definitions.GetValueOrDefault("bus_voltage")
+            ?? (record.Has(Channel.Vbus) ? "levels/window" : "levels/window-vds"));
+        OnStateOff1 = FormOnState(train.On1, train.Off1, "off1");
+        OnStateOn2 = FormOnState(train.On2, train.Off2 ?? EndOfRecord(), "on2");
+        Ramp = FormRamp();
+        RingOn = FormRingOn();
+        OnCurrent = FormLoadLine();
+    }
+
+    public Record Record { get; }
+
+    public Train Train { get; }
+
+    public Reading Bus { get; }
+
+    public Reading BusWindowed { get; }
+
+    public Reading BusFromVds { get; }
+
+    public Reading OnStateOff1 { get; }
+
+    public Reading OnStateOn2 { get; }
+
+    public FirstRamp Ramp { get; }
+
+    public Reading OnCurrent { get; }
+
+    /// <summary>Ringing of vds_high after on2.</summary>
+    public RingWindow? RingOn { get; }
+
+    /// <summary>Ringing of id_low after on2.</summary>
+    public RingWindow? RingId => _ringId ??= RingOn is { } voltage && Record.Has(Channel.IdLow)
+        ? RingWindow.Along(
+            Record[Channel.IdLow], Record.SampleInterval, voltage, Train.Sigma(Channel.IdLow), EndOfOn2)
+        : null;
+
+    /// <summary>Ringing of vds_low after off1.</summary>
+    public RingWindow? RingOff => _ringOff ??= Train.Off1 is { } off1 && Bus.HasValue
+        ? RingWindow.AboveBus(
+            Record[Channel.VdsLow],
+            Record.SampleInterval,
+            Bus.Value,
+            Train.Sigma(Channel.VdsLow),
+            off1.Departure,
+            EndOfOff1)
+        : null;
+
+    /// <summary>End of the search for events of off1, in samples.</summary>
+    public double EndOfOff1 => Train.On2?.Departure ?? Record.Last;
+
+    /// <summary>End of the search for events of on2, in samples.</summary>
+    public double EndOfOn2 => Train.Off2?.Departure ?? Record.Last;
+
+    /// <summary>First sample of the stretch over which irr is formed.</summary>
+    public int RecoveryOrigin => Train.On2 is { } on2 ? Math.Max(0, (int)on2.Departure - 1) : 0;
+
+    /// <summary>Samples of that stretch.</summary>
+    public int RecoveryLength => (int)Math.Floor(EndOfOn2) - RecoveryOrigin + 1;
+
+    /// <summary>The second turn-on.</summary>
+    public SwitchingEvent TurnOn(Reading current) => new()
+    {
+        Vds = Record[Channel.VdsLow],
+        Id = Record[Channel.IdLow],
+        SampleInterval = Record.SampleInterval,
+        TurnsOn = true,
+        Departure = Train.On2?.Departure ?? 0,
+        End = EndOfOn2,
+        Bus = Bus,
+        OnState = OnStateOn2,
+        Current = current,
+        VoltageNoise = Train.Sigma(Channel.VdsLow),
+        CurrentNoise = Train.Sigma(Channel.IdLow),
+    };
+
+    /// <summary>The first turn-off.</summary>
+    public SwitchingEvent TurnOff() => new()
+    {
+        Vds = Record[Channel.VdsLow],
+        Id = Record[Channel.IdLow],
+        SampleInterval = Record.SampleInterval,
+        TurnsOn = false,
+        Departure = Train.Off1?.Departure ?? 0,
+        End = EndOfOff1,
+        Bus = Bus,
+        OnState = OnStateOff1,
+        Current = Ramp.OffCurrent,
+        VoltageNoise = Train.Sigma(Channel.VdsLow),
+        CurrentNoise = Train.Sigma(Channel.IdLow),
+    };
+
+    /// <summary>The recovery by one of the two routes, in positions from <see cref="RecoveryOrigin"/>.</summary>
+    public RecoveryEvent Recovery(bool byLoadLine)
+    {
+        int origin = RecoveryOrigin;
+        ReadOnlySpan<double> irr = byLoadLine
+            ? _irr
+            : Record[Channel.IdHigh].Slice(origin, RecoveryLength);
+        Channel current = byLoadLine ? Channel.IdLow : Channel.IdHigh;
+        return new RecoveryEvent(
+            irr,
+            Record.SampleInterval,
+            (Train.On2?.Departure ?? 0) - origin,
+            EndOfOn2 - origin,
+            Train.Sigma(current),
+            Record.Step(current));
+    }
+
+    /// <summary>Mean of a channel in the 200 ns before a position, or in what the record holds of them.</summary>
+    public Reading MeanBefore(Channel role, double position)
+    {
+        if (!Record.Has(role))
+        {
+            return Reading.None($"{Record.Measured(role).Name()} is not measured");
+        }
+
+        double from = Math.Max(0, position - (BusWindow / Record.SampleInterval));
+        return position - from >= 1
+            ? Reading.Of(Integral.Mean(Record[role], from, position), from, position)
+            : Reading.None("the record begins too late");
+    }
+
+    /// <summary>The reading of a quantity whose edge is not in the record.</summary>
+    public Reading Outside(string edge) => Reading.None(Train.Absent ?? $"{edge} is outside the record");
+
+    /// <summary>Bus voltage by a definition.</summary>
+    public Reading BusFor(string definition) => definition switch
+    {
+        "levels/window" => BusWindowed,
+        "levels/window-vds" => BusFromVds,
+        _ => Reading.None($"bus_voltage has no definition {definition}"),
+    };
+
+    private Reading FormBusFromVds()
+    {
+        if (Train.On2 is not { } on2)
+        {
+            return Outside("on2");
+        }
+
+        Reading blocked = MeanBefore(Channel.VdsLow, on2.Departure);
+        return !blocked.HasValue ? blocked
+            : _settings.ForwardVoltage is { } forward
+                ? Reading.Of(blocked.Value - forward, blocked.From, blocked.To)
+                : Reading.None("the diode's forward voltage is not stated");
+    }
+
+    /// <summary>Mean of vds over the last tenth of a pulse, ending at the departure of its turn-off.</summary>
+    private Reading FormOnState(GateEdge? on, GateEdge? off, string edge)
+    {
+        if (!Record.Has(Channel.VdsLow))
+        {
+            return Reading.None($"{Record.Measured(Channel.VdsLow).Name()} is not measured");
+        }
+
+        if (off is not { } end || (on is null && edge == "on2"))
+        {
+            return Outside(edge);
+        }
+
+        double from = Math.Max(0, end.Departure - (OnStatePart * (end.At - (on?.At ?? 0))));
+        return end.Departure > from
+            ? Reading.Of(Integral.Mean(Record[Channel.VdsLow], from, end.Departure), from, end.Departure)
+            : Reading.None("the pulse is too short");
+    }
+
+    private GateEdge EndOfRecord() => new(Record.Last, Record.Last, CrossingDirection.Falling);
+
+    private FirstRamp FormRamp() =>
+        !Record.Has(Channel.IdLow) ? FirstRamp.Without($"{Record.Measured(Channel.IdLow).Name()} is not measured")
+        : Train.Off1 is not { } off1 ? FirstRamp.Without(Outside("off1").Reason!)
+        : FirstRamp.Fit(Record[Channel.IdLow], Record.SampleInterval, Train.On1?.At, off1.At, off1.Departure);
+
+    private RingWindow? FormRingOn() =>
+        Train.On2 is { } on2 && Bus.HasValue && Record.Has(Channel.VdsHigh)
+            ? RingWindow.AboveBus(
+                Record[Channel.VdsHigh],
+                Record.SampleInterval,
+                Bus.Value,
+                Train.Sigma(Channel.VdsHigh),
+                on2.Departure,
+                EndOfOn2)
+            : null;
+
+    /// <summary>Fits the load line; where its start hangs on trr and trr on the line, a few passes settle both.</summary>
+    private Reading FormLoadLine()
+    {
+        if (Train.On2 is not { } on2)
+        {
+            return Outside("on2");
+        }
+
+        if (!Record.Has(Channel.IdLow) || !Record.Has(Channel.VdsLow))
+        {
+            return Reading.None("vds and current of the switch are not both measured");
+        }
+
+        Instant knee = TurnOn(Reading.None("not formed yet")).Voltage(0.5, decided: false);
+        if (knee.Reason is not null)
+        {
+            return Reading.None(knee.Reason);
+        }
+
+        bool rings = RingOn is { Reason: null };
+        double dt = Record.SampleInterval;
+        double start = rings
+            ? on2.At + (TimeConstants / (RingOn!.Mode.Decay * dt))
+            : on2.At + (QuietPart * ((Train.Off2?.At ?? Record.Last) - on2.At));
+        double? slope = Ramp.Slope.HasValue ? Ramp.Slope.Value * dt : null;
+        for (int pass = 1; ; pass++)
+        {
+            _line = LoadLine.Fit(
+                Record[Channel.IdLow], on2.At, Train.Off2?.At, knee.At, start, slope, out string? reason);
+            if (reason is not null)
+            {
+                _irr = [];
+                return Reading.None(reason);
+            }
+
+            FormIrr();
+            Instant end = RecoveryTime.ChordEnd(Recovery(byLoadLine: true));
+            double over = end.At + RecoveryOrigin + (AfterRecovery / dt);
+            if (!rings || end.Reason is not null || over <= start || pass == MostPasses)
+            {
+                return _line.ToReading();
+            }
+
+            start = over;
+        }
+    }
+
+    /// <summary>irr = id − iL over the second pulse.</summary>
+    private void FormIrr()
+    {
+        int origin = RecoveryOrigin;
+        int length = RecoveryLength;
+        if (_irr.Length != length)
+        {
+            _irr = new double[length];
+        }
+
+        ReadOnlySpan<double> current = Record[Channel.IdLow].Slice(origin, length);
+        for (int i = 0; i < length; i++)
+        {
+            _irr[i] = current[i] - _line.At(origin + i);
+        }
+    }
+}

@@ -1,0 +1,146 @@
+using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Signals.Analysis;
+
+/// <summary>What a waveform says: facts about its pulse train, and every quantity of the catalogue.</summary>
+/// <remarks>Pure: the same waveform and settings give the same bits, on every thread.</remarks>
+public static class WaveformAnalysis
+{
+    /// <summary>Corrects a waveform and forms every quantity.</summary>
+    /// <param name="waveform">The record as it came; an infinity or NaN is a clipped sample. Not modified.</param>
+    /// <param name="settings">What is taken as given.</param>
+    /// <returns>Facts and quantities in the catalogue's order; a quantity that cannot be formed has a reason.</returns>
+    /// <remarks>
+    /// Corrections first, once, in their order; then the gate's edges, the levels, the load current, and what rests on them.
+    /// A quantity whose interval holds a clipped sample of a channel it needs has no value.
+    /// </remarks>
+    public static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings)
+    {
+        ArgumentNullException.ThrowIfNull(waveform);
+        ArgumentNullException.ThrowIfNull(settings);
+        Clipping clipping = Clipping.Of(waveform, settings);
+        Waveform corrected = CorrectionSeam.Correct(clipping.Bridged, settings);
+        Record record = new(corrected, clipping, settings);
+        Train train = Train.Find(record, settings);
+        record = new Record(CorrectionSeam.RemoveBaseline(corrected, record, train, settings), clipping, settings);
+        Analyser analyser = new(record, train, settings);
+        TrainFacts facts = TrainReport.Form(analyser, clipping.Bridged, settings);
+        return new AnalysisResult(facts, FormAll(analyser, settings));
+    }
+
+    private static List<QuantityValue> FormAll(Analyser analyser, AnalysisSettings settings)
+    {
+        QuantityForming forming = new(analyser, settings);
+        List<QuantityValue> values = new(settings.EveryDefinition ? 128 : QuantityCatalogue.All.Count);
+        foreach (Quantity quantity in QuantityCatalogue.All)
+        {
+            if (settings.EveryDefinition)
+            {
+                AddEvery(values, forming, analyser, quantity, settings);
+            }
+            else
+            {
+                string id = Chosen(quantity, analyser.Record, settings);
+                values.Add(Form(forming, analyser, quantity, id));
+            }
+        }
+
+        return values;
+    }
+
+    private static void AddEvery(
+        List<QuantityValue> values,
+        QuantityForming forming,
+        Analyser analyser,
+        Quantity quantity,
+        AnalysisSettings settings)
+    {
+        foreach (QuantityDefinition definition in quantity.Definitions)
+        {
+            string id = definition.Id;
+            if (id == DefinitionId.WindowTemplate)
+            {
+                if (settings.IntegrationTime is not { } time)
+                {
+                    continue;
+                }
+
+                id = DefinitionId.Window(time);
+            }
+
+            if (!definition.HasRoutes || analyser.Record.Has(Channel.IdHigh))
+            {
+                values.Add(Form(forming, analyser, quantity, id));
+            }
+
+            if (definition.HasRoutes)
+            {
+                values.Add(Form(forming, analyser, quantity, id + DefinitionId.LoadLineRoute));
+            }
+        }
+    }
+
+    /// <summary>The definition that is asked for, else the default; its route, where none is named, the bench's.</summary>
+    private static string Chosen(Quantity quantity, Record record, AnalysisSettings settings)
+    {
+        if (!settings.Definitions.TryGetValue(quantity.Name, out string? id))
+        {
+            id = quantity.DefaultFor(settings.Kind);
+            if (id == "levels/window" && quantity.Name == "bus_voltage" && !record.Has(Channel.Vbus))
+            {
+                id = "levels/window-vds";
+            }
+        }
+
+        bool needsRoute = quantity.Find(id) is { HasRoutes: true } && !DefinitionId.Split(id).ByLoadLine;
+        return needsRoute && !record.Has(Channel.IdHigh) ? id + DefinitionId.LoadLineRoute : id;
+    }
+
+    private static QuantityValue Form(QuantityForming forming, Analyser analyser, Quantity quantity, string id)
+    {
+        Reading reading = Read(forming, analyser, quantity, id);
+        return reading.HasValue
+            ? new QuantityValue(
+                quantity.Name,
+                id,
+                reading.Value,
+                quantity.Unit,
+                null,
+                analyser.Record.TimeAt(reading.From),
+                analyser.Record.TimeAt(reading.To))
+            : new QuantityValue(quantity.Name, id, null, quantity.Unit, reading.Reason, null, null);
+    }
+
+    private static Reading Read(QuantityForming forming, Analyser analyser, Quantity quantity, string id)
+    {
+        if (quantity.Find(id) is not { } definition)
+        {
+            return Reading.None($"{quantity.Name} has no definition {id}");
+        }
+
+        (string rule, bool byLoadLine) = DefinitionId.Split(id);
+        Record record = analyser.Record;
+        foreach (Channel channel in definition.Channels)
+        {
+            if (!record.Has(Routed(channel, byLoadLine)))
+            {
+                return Reading.None($"{record.Measured(Routed(channel, byLoadLine)).Name()} is not measured");
+            }
+        }
+
+        Reading reading = forming.Form(quantity.Name, rule, byLoadLine);
+        foreach (Channel channel in definition.Channels)
+        {
+            if (reading.HasValue && record.IsClipped(Routed(channel, byLoadLine), reading.From, reading.To))
+            {
+                return Reading.None($"{record.Measured(Routed(channel, byLoadLine)).Name()} is clipped");
+            }
+        }
+
+        return reading;
+    }
+
+    private static Channel Routed(Channel channel, bool byLoadLine) =>
+        byLoadLine && channel == Channel.IdHigh ? Channel.IdLow : channel;
+}

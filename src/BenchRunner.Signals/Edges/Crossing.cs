@@ -1,0 +1,77 @@
+namespace BenchRunner.Signals.Edges;
+
+/// <summary>Where a signal crosses a level.</summary>
+public static class Crossing
+{
+    /// <summary>The first crossing of a level that counts: the signal goes on beyond the level by the hysteresis.</summary>
+    /// <param name="samples">The signal, uniform; not modified.</param>
+    /// <param name="level">The level, in the signal's unit.</param>
+    /// <param name="hysteresis">How far beyond the level the signal must go, 0 or more.</param>
+    /// <param name="direction">Which way the level is crossed.</param>
+    /// <param name="from">Earliest position, in samples.</param>
+    /// <param name="to">Latest position, in samples.</param>
+    /// <returns>Position in samples, interpolated on the straight line between the two samples that straddle the level;
+    /// null where no crossing counts.</returns>
+    /// <remarks>
+    /// Where noise crosses several times, it is the last crossing before the hysteresis is reached. A straddle is
+    /// "at or before" then "beyond", so a signal that rests on the level crosses where it leaves it. A sample that is not
+    /// a number never straddles.
+    /// </remarks>
+    /// <example>Samples 0, 1, 3 cross 2 upwards at 1.5.</example>
+    public static double? First(
+        ReadOnlySpan<double> samples, double level, double hysteresis, CrossingDirection direction, double from, double to)
+    {
+        int start = Math.Max(0, (int)Math.Floor(Math.Min(from, samples.Length)));
+        int last = (int)Math.Min(samples.Length - 1, Math.Ceiling(to));
+        if (start >= last)
+        {
+            return null;
+        }
+
+        double sign = direction == CrossingDirection.Rising ? 1 : -1;
+        double aim = sign * level;
+        double counts = aim + hysteresis;
+        double before = sign * samples[start];
+        double found = double.NaN;
+        for (int i = start + 1; i <= last; i++)
+        {
+            double now = sign * samples[i];
+            if (before <= aim && now > aim)
+            {
+                found = i - 1 + ((aim - before) / (now - before));
+            }
+
+            if (now >= counts && found >= from)
+            {
+                return found <= to ? found : null;
+            }
+
+            before = now;
+        }
+
+        return null;
+    }
+
+    /// <summary>The first position at which a signal is at or below a level, without hysteresis.</summary>
+    /// <param name="samples">The signal, uniform.</param>
+    /// <param name="level">The level, in the signal's unit.</param>
+    /// <param name="from">Earliest position, in samples.</param>
+    /// <param name="to">Latest position, in samples.</param>
+    /// <returns>Position in samples, interpolated; null where the signal stays above.</returns>
+    public static double? FirstAtOrBelow(ReadOnlySpan<double> samples, double level, double from, double to)
+    {
+        int start = Math.Max(0, (int)Math.Ceiling(from));
+        int last = (int)Math.Min(samples.Length - 1, Math.Floor(to));
+        for (int i = start; i <= last; i++)
+        {
+            if (samples[i] <= level)
+            {
+                return i == start || samples[i - 1] <= level
+                    ? i
+                    : i - 1 + ((samples[i - 1] - level) / (samples[i - 1] - samples[i]));
+            }
+        }
+
+        return null;
+    }
+}

@@ -1,0 +1,75 @@
+namespace BenchRunner.Signals.Edges;
+
+/// <summary>Walks over all crossings of a level that count, upwards and downwards in turn.</summary>
+/// <remarks>
+/// A Schmitt trigger whose reported position is the level's, not the trigger's: a crossing counts when the signal goes on
+/// beyond the level by the hysteresis, and lies where the signal crossed last before that.
+/// </remarks>
+public ref struct CrossingScan
+{
+    private readonly ReadOnlySpan<double> _samples;
+    private readonly double _level;
+    private readonly double _hysteresis;
+    private readonly int _last;
+    private int _index;
+    private bool _above;
+    private double _pending;
+
+    /// <summary>Starts a walk.</summary>
+    /// <param name="samples">The signal, uniform; not modified.</param>
+    /// <param name="level">The level, in the signal's unit.</param>
+    /// <param name="hysteresis">How far beyond the level the signal must go, 0 or more.</param>
+    /// <param name="from">First sample.</param>
+    /// <param name="to">Last sample.</param>
+    public CrossingScan(ReadOnlySpan<double> samples, double level, double hysteresis, int from, int to)
+    {
+        _samples = samples;
+        _level = level;
+        _hysteresis = hysteresis;
+        _index = Math.Max(0, from);
+        _last = Math.Min(samples.Length - 1, to);
+        _above = _index <= _last && samples[_index] > level;
+        _pending = double.NaN;
+    }
+
+    /// <summary>Position of the crossing last reported, in samples.</summary>
+    public double Position { get; private set; }
+
+    /// <summary>Direction of the crossing last reported.</summary>
+    public CrossingDirection Direction { get; private set; }
+
+    /// <summary>Goes on to the next crossing.</summary>
+    /// <returns>False at the end of the signal.</returns>
+    public bool Next()
+    {
+        double sign = _above ? -1 : 1;
+        double aim = sign * _level;
+        double counts = aim + _hysteresis;
+        double pending = _pending;
+        int i = _index;
+        double before = i <= _last ? sign * _samples[i] : 0;
+        while (++i <= _last)
+        {
+            double now = sign * _samples[i];
+            if (before <= aim && now > aim)
+            {
+                pending = i - 1 + ((aim - before) / (now - before));
+            }
+
+            if (now >= counts && pending >= 0)
+            {
+                Position = pending;
+                Direction = _above ? CrossingDirection.Falling : CrossingDirection.Rising;
+                _above = !_above;
+                _pending = double.NaN;
+                _index = i;
+                return true;
+            }
+
+            before = now;
+        }
+
+        _index = _last;
+        return false;
+    }
+}

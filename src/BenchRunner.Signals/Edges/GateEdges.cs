@@ -1,0 +1,135 @@
+using System.Buffers;
+using BenchRunner.Signals.Levels;
+
+namespace BenchRunner.Signals.Edges;
+
+/// <summary>The edges of a pulse train, from the firing gate.</summary>
+public static class GateEdges
+{
+    // The state before an edge is looked at from 0.8 to 0.4 µs before it: late enough to be settled, early enough not to
+    // hold the edge itself.
+    private const double StateFrom = 0.8e-6;
+    private const double StateTo = 0.4e-6;
+
+    /// <summary>All edges of a gate voltage, rising and falling in turn.</summary>
+    /// <param name="gate">Gate voltage, V, uniform, finite; not modified.</param>
+    /// <param name="dt">Sample interval, s; above 0.</param>
+    /// <param name="levels">Off and on level, V.</param>
+    /// <param name="hysteresis">How far beyond a level the gate must go for a crossing to count, V.</param>
+    /// <param name="deadTime">Time after an edge in which further crossings of 50 % do not count, s.</param>
+    /// <returns>The edges in time order; empty where the gate does not switch.</returns>
+    /// <remarks>
+    /// An edge lies at a crossing of 50 % after which further ones do not count for the dead time: a gate rings through
+    /// 50 % many times. Where the dead time ends in the other state all the same (a pulse shorter than it), the last crossing
+    /// inside it is an edge.
+    /// </remarks>
+    public static GateEdge[] Find(
+        ReadOnlySpan<double> gate, double dt, TwoLevels levels, double hysteresis, double deadTime)
+    {
+        List<GateEdge> edges = [];
+        double dead = deadTime / dt;
+        double skipped = double.NaN;
+        CrossingScan scan = new(gate, levels.At(0.5), hysteresis, 0, gate.Length - 1);
+        bool above = gate.Length > 0 && gate[0] > levels.At(0.5);
+        while (scan.Next())
+        {
+            above = scan.Direction == CrossingDirection.Rising;
+            if (edges.Count > 0 && scan.Position - edges[^1].At < dead)
+            {
+                skipped = scan.Position;
+                continue;
+            }
+
+            if (edges.Count > 0 && edges[^1].Direction == scan.Direction)
+            {
+                Add(edges, gate, dt, levels, hysteresis, dead, skipped, Opposite(scan.Direction));
+            }
+
+            Add(edges, gate, dt, levels, hysteresis, dead, scan.Position, scan.Direction);
+        }
+
+        if (edges.Count > 0 && above != (edges[^1].Direction == CrossingDirection.Rising))
+        {
+            Add(edges, gate, dt, levels, hysteresis, dead, skipped, Opposite(edges[^1].Direction));
+        }
+
+        return [.. edges];
+    }
+
+    /// <summary>Duration of a gate edge: from its departure to the crossing of the level as near to the other state.</summary>
+    /// <param name="gate">Gate voltage, V, uniform, finite.</param>
+    /// <param name="levels">Off and on level, V.</param>
+    /// <param name="hysteresis">Hysteresis of crossings, V.</param>
+    /// <param name="edge">The edge.</param>
+    /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the record ends first.</returns>
+    public static double? Duration(ReadOnlySpan<double> gate, TwoLevels levels, double hysteresis, in GateEdge edge)
+    {
+        double level = levels.At(edge.Direction == CrossingDirection.Rising ? 0.9 : 0.1);
+        return Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, gate.Length - 1) - edge.Departure;
+    }
+
+    private static CrossingDirection Opposite(CrossingDirection direction) =>
+        direction == CrossingDirection.Rising ? CrossingDirection.Falling : CrossingDirection.Rising;
+
+    private static void Add(
+        List<GateEdge> edges,
+        ReadOnlySpan<double> gate,
+        double dt,
+        TwoLevels levels,
+        double hysteresis,
+        double dead,
+        double at,
+        CrossingDirection direction)
+    {
+        double state = edges.Count > 0 ? edges[^1].At : 0;
+        double departure = Departure(gate, dt, levels, hysteresis, dead, state, at, direction);
+        edges.Add(new GateEdge(at, departure, direction));
+    }
+
+    /// <summary>The earliest crossing of 10 % (90 % at turn-off) of the cluster that leads to the edge.</summary>
+    /// <remarks>The percents lie between the level the gate leaves, which may have drifted, and the other state's.</remarks>
+    private static double Departure(
+        ReadOnlySpan<double> gate,
+        double dt,
+        TwoLevels levels,
+        double hysteresis,
+        double dead,
+        double state,
+        double at,
+        CrossingDirection direction)
+    {
+        double left = LevelLeft(gate, dt, state, at);
+        double other = direction == CrossingDirection.Rising ? levels.High : levels.Low;
+        double level = left + (0.1 * (other - left));
+        CrossingScan scan = new(gate, level, hysteresis, (int)state, Math.Min(gate.Length - 1, (int)Math.Ceiling(at)));
+        double last = double.NegativeInfinity;
+        double earliest = double.NaN;
+        while (scan.Next() && scan.Position <= at)
+        {
+            earliest = scan.Position - last < dead ? earliest : double.NaN;
+            if (double.IsNaN(earliest) && scan.Direction == direction)
+            {
+                earliest = scan.Position;
+            }
+
+            last = scan.Position;
+        }
+
+        return double.IsNaN(earliest) ? at : earliest;
+    }
+
+    /// <summary>Median of the gate from 0.8 to 0.4 µs before the edge, or of the middle half of a shorter state, V.</summary>
+    private static double LevelLeft(ReadOnlySpan<double> gate, double dt, double state, double at)
+    {
+        bool longEnough = (at - state) * dt >= StateFrom;
+        double from = longEnough ? at - (StateFrom / dt) : state + ((at - state) / 4);
+        double to = longEnough ? at - (StateTo / dt) : at - ((at - state) / 4);
+        int first = Math.Clamp((int)Math.Ceiling(from), 0, gate.Length - 1);
+        int count = Math.Clamp((int)Math.Floor(to) - first + 1, 1, gate.Length - first);
+        double[] rented = ArrayPool<double>.Shared.Rent(count);
+        gate.Slice(first, count).CopyTo(rented);
+        double median = Median.Of(rented.AsSpan(0, count));
+        ArrayPool<double>.Shared.Return(rented);
+        return median;
+    }
+}
