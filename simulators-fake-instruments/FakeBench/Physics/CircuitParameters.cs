@@ -10,15 +10,31 @@ public sealed record CircuitParameters(BenchParts Bench, PlaceParts Low, PlacePa
     public static PlaceParts NominalPlace(bool high) => new(
         new SwitchParts
         {
-            Threshold = 3.4, ThresholdSoftness = 0.12, Transconductance = 11, TriodeFactor = 0.7,
-            DrainResistance = 16e-3, SourceResistance = 1.5e-3, GateResistance = 3,
-            GateSource = 4.5e-9, GateDrainMinimum = 18e-12, GateDrainMaximum = 900e-12, GateDrainSteepness = 0.25,
-            JunctionCapacitance = 2.6e-9, JunctionVoltage = 1.5, JunctionGrading = 0.48, FixedCapacitance = 250e-12,
-            Breakdown = 1550, AvalancheResistance = 0.5, Leakage = 10e-9,
+            Threshold = 3.4,
+            ThresholdSoftness = 0.12,
+            Transconductance = 11,
+            TriodeFactor = 0.7,
+            DrainResistance = 16e-3,
+            SourceResistance = 1.5e-3,
+            GateResistance = 3,
+            GateSource = 4.5e-9,
+            GateDrainMinimum = 18e-12,
+            GateDrainMaximum = 900e-12,
+            GateDrainSteepness = 0.25,
+            JunctionCapacitance = 2.6e-9,
+            JunctionVoltage = 1.5,
+            JunctionGrading = 0.48,
+            FixedCapacitance = 250e-12,
+            Breakdown = 1550,
+            AvalancheResistance = 0.5,
+            Leakage = 10e-9,
         },
         new DiodeParts
         {
-            InjectionCurrent = 2e-15, EmissionVoltage = 77.6e-3, TransitTime = 16e-9, Lifetime = 18e-9,
+            InjectionCurrent = 2e-15,
+            EmissionVoltage = 77.6e-3,
+            TransitTime = 16e-9,
+            Lifetime = 18e-9,
             SeriesResistance = 10e-3,
         },
         high ? new PackageParts(16e-9, 60, 2e-9, 2e-3) : new PackageParts(8e-9, 60, 2e-9, 2e-3));

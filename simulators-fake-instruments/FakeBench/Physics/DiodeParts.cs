@@ -11,7 +11,10 @@ public sealed record DiodeParts
     /// <summary>No diode at all: the place of an open one.</summary>
     public static DiodeParts None { get; } = new()
     {
-        InjectionCurrent = 0, EmissionVoltage = 1, TransitTime = 1e-8, Lifetime = 1e-8,
+        InjectionCurrent = 0,
+        EmissionVoltage = 1,
+        TransitTime = 1e-8,
+        Lifetime = 1e-8,
     };
 
     /// <summary>Is tau/TM, A; 0 for no diode.</summary>

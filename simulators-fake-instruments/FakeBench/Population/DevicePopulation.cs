@@ -77,8 +77,12 @@ public static class DevicePopulation
     {
         Switch = place.Switch with
         {
-            Transconductance = 0, Leakage = 0, JunctionCapacitance = 0, FixedCapacitance = 5e-12,
-            GateDrainMinimum = 0.1e-12, GateDrainMaximum = 0.2e-12,
+            Transconductance = 0,
+            Leakage = 0,
+            JunctionCapacitance = 0,
+            FixedCapacitance = 5e-12,
+            GateDrainMinimum = 0.1e-12,
+            GateDrainMaximum = 0.2e-12,
         },
         Diode = DiodeParts.None,
     };
