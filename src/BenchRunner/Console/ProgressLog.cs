@@ -1,0 +1,65 @@
+using System.Globalization;
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Runner.Cases;
+using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Sinks;
+
+namespace BenchRunner.Console;
+
+/// <summary>What the operator sees: one line an event, decisions at the end, and a live line on a terminal.</summary>
+internal sealed class ProgressLog(Screen screen) : IRunSink
+{
+    public void Receive(BenchEvent happened)
+    {
+        string at = happened.At.ToLocalTime().ToString("HH:mm:ss.fff", CultureInfo.InvariantCulture);
+        string text = Screen.Printable(happened.Message);
+        screen.Line($"{screen.Palette.Faint(at)}  {happened.Source,-10}  {screen.Palette.Of(happened.Severity, text)}");
+    }
+
+    public void Progress(RunProgress progress) => screen.Live(string.Create(
+        CultureInfo.InvariantCulture,
+        $"{progress.Device}  {progress.OperatingPoint}  capture {progress.Capture} of at most {progress.AtMost}  "
+            + $"valid {progress.Valid} of {progress.Wanted}  bus {progress.BusVoltage:0.0} V  "
+            + $"interlock closed  {progress.Left:m\\:ss} left"));
+
+    public void CaseEnded(CaseResult result)
+    {
+        // The decisions are shown together, below; a case that broke is said at once, or it would hide among them.
+        if (result.Ending == CaseEnding.Broken)
+        {
+            screen.Line(screen.Palette.Bad(
+                $"case {result.Limit.Quantity} at {result.Limit.At} broke: {Screen.Printable(result.Reason ?? "")}"));
+        }
+    }
+
+    public void DeviceEnded(DeviceReport report)
+    {
+        screen.EndLive();
+        foreach (string line in DecisionTable.Lines(report.Decision, screen.Palette))
+        {
+            screen.Line(line);
+        }
+
+        string bus = report.BusVoltage is { } volts
+            ? string.Create(CultureInfo.InvariantCulture, $"bus last measured {volts:0.0} V at {report.BusAt:HH:mm:ss} UTC")
+            : "bus not measured";
+        screen.Line(string.Create(
+            CultureInfo.InvariantCulture,
+            $"{report.Device}: {report.CapturesValid} of {report.CapturesTaken} captures valid; {bus}; run {report.Run}"));
+        string reason = report.Decision.Reason is { } why ? $"  ({Screen.Printable(why)})" : "";
+        screen.Line("");
+        screen.Line($"  >>>  {report.Device}  {Word(report.Decision.Outcome)}{reason}  <<<");
+        screen.Line("");
+    }
+
+    private string Word(Outcome outcome) => outcome switch
+    {
+        Outcome.Accepted => screen.Palette.Good("ACCEPTED"),
+        Outcome.Rejected => screen.Palette.Bad("REJECTED"),
+        Outcome.Undecided => screen.Palette.Open("UNDECIDED"),
+        Outcome.NotMeasured => screen.Palette.Open("NOT MEASURED"),
+        _ => screen.Palette.Bad("STOPPED"),
+    };
+}

@@ -1,0 +1,40 @@
+namespace BenchRunner;
+
+/// <summary>The one place where an exception that got this far becomes an exit code and one line for the user.</summary>
+internal static class Ending
+{
+    public static async Task<int> Of(Func<Task<int>> work, CancellationToken stop)
+    {
+        try
+        {
+            return await work();
+        }
+        catch (OperationCanceledException) when (stop.IsCancellationRequested)
+        {
+            return Say("interrupted", ExitCode.Interrupted);
+        }
+        catch (InputException wrong)
+        {
+            return Say(wrong.Message, ExitCode.WrongInput);
+        }
+        catch (Safety.SafetyException stopped)
+        {
+            return Say(stopped.Message, ExitCode.Safety);
+        }
+        catch (Exception failed) when (failed is Runner.Benches.BenchException
+            or Instruments.Links.LinkException or Instruments.Roles.InstrumentException)
+        {
+            return Say(failed.Message, ExitCode.Instrument);
+        }
+        catch (Exception fault) when (fault is not OutOfMemoryException)
+        {
+            return Say($"a fault of this program, please report it: {fault}", ExitCode.Fault);
+        }
+    }
+
+    private static int Say(string message, int code)
+    {
+        System.Console.Error.WriteLine(message);
+        return code;
+    }
+}
