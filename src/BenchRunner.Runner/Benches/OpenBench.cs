@@ -1,0 +1,149 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Dialects;
+using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Instruments.Sessions;
+using BenchRunner.Safety;
+
+namespace BenchRunner.Runner.Benches;
+
+/// <summary>All instruments of a bench, connected and identified: those of the runner, and safety's own connections.</summary>
+/// <remarks>
+/// Every connection that the safe state needs is opened before anything is energised, so that none has to be opened in
+/// need. An instrument that admits one client is shared; its session lets one exchange at a time through.
+/// </remarks>
+public sealed class OpenBench : IAsyncDisposable
+{
+    private readonly Stack<IDisposable> _open = new();
+
+    private OpenBench()
+    {
+    }
+
+    /// <summary>The supply.</summary>
+    public ISupply Supply { get; private set; } = null!;
+
+    /// <summary>The pulser.</summary>
+    public IPulser Pulser { get; private set; } = null!;
+
+    /// <summary>The scope.</summary>
+    public IScope Scope { get; private set; } = null!;
+
+    /// <summary>The runner's own connection to the voltmeter.</summary>
+    public IVoltmeter Voltmeter { get; private set; } = null!;
+
+    /// <summary>Safety's connections; the interlock's is the only one.</summary>
+    public SafetyRoles Safety { get; private set; } = null!;
+
+    /// <summary>Role to what its instrument said it is.</summary>
+    public IReadOnlyDictionary<string, InstrumentIdentity> Identities { get; private set; } = null!;
+
+    /// <summary>Whether the instruments say of themselves that they are simulated.</summary>
+    public bool IsSimulated { get; private set; }
+
+    /// <summary>Connects every role of a bench.</summary>
+    /// <param name="bench">The bench.</param>
+    /// <param name="dialects">Name to dialect file.</param>
+    /// <param name="links">Links that stand in for those of the bench file (a fake bench's); null: none do.</param>
+    /// <param name="log">Takes what the links report.</param>
+    /// <param name="time">The clock of all deadlines.</param>
+    /// <param name="cancel">Ends the attempt.</param>
+    /// <exception cref="LinkException">An instrument cannot be reached.</exception>
+    /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
+    /// <exception cref="BenchException">Real and simulated instruments are mixed.</exception>
+    public static async Task<OpenBench> Open(
+        Bench bench,
+        IReadOnlyDictionary<string, DialectFile> dialects,
+        IReadOnlyDictionary<string, string>? links,
+        IInstrumentLog log,
+        TimeProvider time,
+        CancellationToken cancel)
+    {
+        var open = new OpenBench();
+        try
+        {
+            await open.Connect(role => Connection(bench, dialects, links, role, log, time), bench, cancel).ConfigureAwait(false);
+            open.Identify();
+            return open;
+        }
+        catch
+        {
+            await open.DisposeAsync().ConfigureAwait(false);
+            throw;
+        }
+    }
+
+    /// <summary>Closes every link, in reverse order. Sends nothing: the safe state comes before.</summary>
+    public ValueTask DisposeAsync()
+    {
+        while (_open.TryPop(out IDisposable? link))
+        {
+            link.Dispose();
+        }
+
+        return ValueTask.CompletedTask;
+    }
+
+    private static InstrumentConnection Connection(
+        Bench bench,
+        IReadOnlyDictionary<string, DialectFile> dialects,
+        IReadOnlyDictionary<string, string>? links,
+        string role,
+        IInstrumentLog log,
+        TimeProvider time)
+    {
+        InstrumentSetup setup = bench.Roles[role];
+        string link = links is null ? setup.Link : links.GetValueOrDefault(role)
+            ?? throw new BenchException($"the fake bench offers no {role}");
+        return new InstrumentConnection(
+            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), new SessionOptions(), time, log);
+    }
+
+    private async Task Connect(Func<string, InstrumentConnection> at, Bench bench, CancellationToken cancel)
+    {
+        bool OwnToo(string role) => bench.Roles[role].Connections > 1;
+
+        // Safety first: whatever fails later, these are there.
+        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock"), cancel).ConfigureAwait(false));
+        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel).ConfigureAwait(false));
+        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply"), cancel).ConfigureAwait(false));
+        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser"), cancel).ConfigureAwait(false));
+        Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
+
+        Voltmeter = OwnToo("voltmeter")
+            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel).ConfigureAwait(false)) : watchMeter;
+        Supply = OwnToo("supply")
+            ? Keep(await ScpiSupply.Connect(at("supply"), cancel).ConfigureAwait(false)) : safeSupply;
+        Pulser = OwnToo("pulser")
+            ? Keep(await ScpiPulser.Connect(at("pulser"), cancel).ConfigureAwait(false)) : safePulser;
+        Scope = Keep(await ScpiScope.Connect(at("scope"), cancel).ConfigureAwait(false));
+    }
+
+    private void Identify()
+    {
+        Identities = new Dictionary<string, InstrumentIdentity>
+        {
+            ["supply"] = Supply.Identity,
+            ["pulser"] = Pulser.Identity,
+            ["scope"] = Scope.Identity,
+            ["voltmeter"] = Voltmeter.Identity,
+            ["interlock"] = Safety.Interlock.Identity,
+        };
+        ILookup<bool, string> simulated = Identities.ToLookup(pair => pair.Value.IsSimulated, pair => pair.Key);
+        if (simulated.Count > 1)
+        {
+            throw new BenchException(
+                $"{string.Join(", ", simulated[true])} are simulated, {string.Join(", ", simulated[false])} are not; "
+                    + "a mixture is neither a test nor a rehearsal, so nothing is done");
+        }
+
+        IsSimulated = simulated.Contains(true);
+    }
+
+    private T Keep<T>(T link)
+        where T : IDisposable
+    {
+        _open.Push(link);
+        return link;
+    }
+}

@@ -1,0 +1,75 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Instruments.Permits;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Signals.Units;
+
+namespace BenchRunner.Runner.Points;
+
+/// <summary>Brings the bus to an operating point's voltage and holds the supply against the independent voltmeter.</summary>
+public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
+{
+    /// <summary>How far supply and voltmeter may differ from what was set, relative (a probe or meter is off).</summary>
+    private const double Agreement = 0.03;
+
+    /// <summary>How much of the way from full charge the supply's protection stands above the set-point, relative.</summary>
+    private const double ProtectionMargin = 0.1;
+
+    private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(10);
+
+    /// <summary>Programs the supply, switches it on and waits until the voltmeter shows the bus at its voltage.</summary>
+    /// <exception cref="BusException">The bus did not get there, or stayed in current limit: see its message.</exception>
+    public async Task Up(Permit permit, PlannedPoint point, CancellationToken cancel)
+    {
+        double target = point.Point.BusVoltage;
+        double protection = Math.Min(target * (1 + ProtectionMargin), setup.Envelope.Voltage);
+        await bench.Supply.Program(
+            permit, new Volts(target), new Amperes(setup.ChargingCurrent), new Volts(protection), cancel).ConfigureAwait(false);
+        await bench.Supply.OutputOn(permit, cancel).ConfigureAwait(false);
+        await WaitFor(target, cancel).ConfigureAwait(false);
+    }
+
+    /// <summary>Waits until the voltmeter shows the bus within its tolerance, with a bound from C·ΔV/I.</summary>
+    /// <returns>The reading, V.</returns>
+    /// <exception cref="BusException">The bound passed.</exception>
+    public async Task<double> WaitFor(double target, CancellationToken cancel)
+    {
+        long start = time.GetTimestamp();
+        double charging = setup.BusCapacitance * target / setup.ChargingCurrent;
+        TimeSpan limit = TimeSpan.FromSeconds(2 + (4 * charging));
+        double previous = double.NaN;
+        while (true)
+        {
+            double volts = (await bench.Voltmeter.Read(cancel).ConfigureAwait(false)).Value;
+
+            // Settled: at the voltage, and no longer moving by a tenth of the tolerance between readings.
+            if (Math.Abs(volts - target) <= Agreement * target && Math.Abs(volts - previous) <= 0.1 * 0.01 * target)
+            {
+                return volts;
+            }
+
+            if (time.GetElapsedTime(start) > limit)
+            {
+                throw await Explain(target, volts, limit, cancel).ConfigureAwait(false);
+            }
+
+            previous = volts;
+            await Task.Delay(ReadEvery, time, cancel).ConfigureAwait(false);
+        }
+    }
+
+    private async Task<BusException> Explain(double target, double volts, TimeSpan limit, CancellationToken cancel)
+    {
+        SupplyState supply = await bench.Supply.ReadState(cancel).ConfigureAwait(false);
+        string seen = $"the bus is at {volts:0.0} V after {limit.TotalSeconds:0.0} s where {target:0.#} V was set";
+        if (supply.ProtectionTripped || !supply.OutputOn)
+        {
+            return new BusException($"{seen}: the supply has switched its output off by itself (over-voltage protection)", false);
+        }
+
+        return supply.InCurrentLimit && volts < 0.5 * target
+            ? new BusException($"{seen}, the supply in current limit with both gates off: a position is shorted or the bus leaks", true)
+            : new BusException($"{seen}, the supply reads {supply.Measured.Value:0.0} V: look at supply, leads and voltmeter", false);
+    }
+}
