@@ -35,7 +35,7 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
         {
             using var limit = new CancellationTokenSource(StartLimit, time);
             using var both = CancellationTokenSource.CreateLinkedTokenSource(limit.Token, cancel);
-            return new FakeBenchProcess(process, await ReadLinks(process, both.Token).ConfigureAwait(false));
+            return new FakeBenchProcess(process, await ReadLinks(process, both.Token));
         }
         catch (Exception failure)
         {
@@ -53,8 +53,8 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
     {
         try
         {
-            await _process.StandardInput.WriteLineAsync(hand.AsMemory(), cancel).ConfigureAwait(false);
-            await _process.StandardInput.FlushAsync(cancel).ConfigureAwait(false);
+            await _process.StandardInput.WriteLineAsync(hand.AsMemory(), cancel);
+            await _process.StandardInput.FlushAsync(cancel);
         }
         catch (IOException failure)
         {
@@ -69,7 +69,7 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
         using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(5));
         try
         {
-            await _process.WaitForExitAsync(patience.Token).ConfigureAwait(false);
+            await _process.WaitForExitAsync(patience.Token);
         }
         catch (OperationCanceledException)
         {
@@ -125,7 +125,7 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
     private static async Task<IReadOnlyDictionary<string, string>> ReadLinks(Process process, CancellationToken cancel)
     {
         var links = new Dictionary<string, string>();
-        while (await process.StandardOutput.ReadLineAsync(cancel).ConfigureAwait(false) is { } line)
+        while (await process.StandardOutput.ReadLineAsync(cancel) is { } line)
         {
             if (line == "ready")
             {

@@ -62,13 +62,13 @@ public sealed class OpenBench : IAsyncDisposable
         var open = new OpenBench();
         try
         {
-            await open.Connect(role => Connection(bench, dialects, links, role, log, time), bench, cancel).ConfigureAwait(false);
+            await open.Connect(role => Connection(bench, dialects, links, role, log, time), bench, cancel);
             open.Identify();
             return open;
         }
         catch
         {
-            await open.DisposeAsync().ConfigureAwait(false);
+            await open.DisposeAsync();
             throw;
         }
     }
@@ -104,19 +104,19 @@ public sealed class OpenBench : IAsyncDisposable
         bool OwnToo(string role) => bench.Roles[role].Connections > 1;
 
         // Safety first: whatever fails later, these are there.
-        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock"), cancel).ConfigureAwait(false));
-        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel).ConfigureAwait(false));
-        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply"), cancel).ConfigureAwait(false));
-        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser"), cancel).ConfigureAwait(false));
+        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock"), cancel));
+        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel));
+        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply"), cancel));
+        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser"), cancel));
         Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
 
         Voltmeter = OwnToo("voltmeter")
-            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel).ConfigureAwait(false)) : watchMeter;
+            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel)) : watchMeter;
         Supply = OwnToo("supply")
-            ? Keep(await ScpiSupply.Connect(at("supply"), cancel).ConfigureAwait(false)) : safeSupply;
+            ? Keep(await ScpiSupply.Connect(at("supply"), cancel)) : safeSupply;
         Pulser = OwnToo("pulser")
-            ? Keep(await ScpiPulser.Connect(at("pulser"), cancel).ConfigureAwait(false)) : safePulser;
-        Scope = Keep(await ScpiScope.Connect(at("scope"), cancel).ConfigureAwait(false));
+            ? Keep(await ScpiPulser.Connect(at("pulser"), cancel)) : safePulser;
+        Scope = Keep(await ScpiScope.Connect(at("scope"), cancel));
     }
 
     private void Identify()

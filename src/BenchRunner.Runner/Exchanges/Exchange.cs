@@ -17,18 +17,18 @@ public sealed class Exchange(IHands hands, IInterlock interlock, EventSource eve
     /// <exception cref="BenchException">The loop did not follow.</exception>
     public async Task Insert(string device, CancellationToken cancel)
     {
-        await hands.Do("open", cancel).ConfigureAwait(false);
-        await See(closed: false, cancel).ConfigureAwait(false);
-        await hands.Do($"insert {device}", cancel).ConfigureAwait(false);
-        await hands.Do("close", cancel).ConfigureAwait(false);
-        await See(closed: true, cancel).ConfigureAwait(false);
+        await hands.Do("open", cancel);
+        await See(closed: false, cancel);
+        await hands.Do($"insert {device}", cancel);
+        await hands.Do("close", cancel);
+        await See(closed: true, cancel);
         events.Say(Severity.Information, "device-exchanged", $"enclosure seen open and closed again; {device} is in the fixture");
     }
 
     private async Task See(bool closed, CancellationToken cancel)
     {
         long start = time.GetTimestamp();
-        while ((await interlock.Read(cancel).ConfigureAwait(false)).LoopClosed != closed)
+        while ((await interlock.Read(cancel)).LoopClosed != closed)
         {
             if (time.GetElapsedTime(start) > Within)
             {
@@ -36,7 +36,7 @@ public sealed class Exchange(IHands hands, IInterlock interlock, EventSource eve
                     $"the interlock loop was not seen {(closed ? "closed" : "open")} within {Within.TotalSeconds:0} s of the exchange");
             }
 
-            await Task.Delay(ReadEvery, time, cancel).ConfigureAwait(false);
+            await Task.Delay(ReadEvery, time, cancel);
         }
     }
 }

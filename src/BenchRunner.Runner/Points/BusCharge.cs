@@ -25,9 +25,9 @@ public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
         double target = point.Point.BusVoltage;
         double protection = Math.Min(target * (1 + ProtectionMargin), setup.Envelope.Voltage);
         await bench.Supply.Program(
-            permit, new Volts(target), new Amperes(setup.ChargingCurrent), new Volts(protection), cancel).ConfigureAwait(false);
-        await bench.Supply.OutputOn(permit, cancel).ConfigureAwait(false);
-        await WaitFor(target, cancel).ConfigureAwait(false);
+            permit, new Volts(target), new Amperes(setup.ChargingCurrent), new Volts(protection), cancel);
+        await bench.Supply.OutputOn(permit, cancel);
+        await WaitFor(target, cancel);
     }
 
     /// <summary>Waits until the voltmeter shows the bus within its tolerance, with a bound from C·ΔV/I.</summary>
@@ -41,7 +41,7 @@ public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
         double previous = double.NaN;
         while (true)
         {
-            double volts = (await bench.Voltmeter.Read(cancel).ConfigureAwait(false)).Value;
+            double volts = (await bench.Voltmeter.Read(cancel)).Value;
 
             // Settled: at the voltage, and no longer moving by a tenth of the tolerance between readings.
             if (Math.Abs(volts - target) <= Agreement * target && Math.Abs(volts - previous) <= 0.1 * 0.01 * target)
@@ -51,17 +51,17 @@ public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
 
             if (time.GetElapsedTime(start) > limit)
             {
-                throw await Explain(target, volts, limit, cancel).ConfigureAwait(false);
+                throw await Explain(target, volts, limit, cancel);
             }
 
             previous = volts;
-            await Task.Delay(ReadEvery, time, cancel).ConfigureAwait(false);
+            await Task.Delay(ReadEvery, time, cancel);
         }
     }
 
     private async Task<BusException> Explain(double target, double volts, TimeSpan limit, CancellationToken cancel)
     {
-        SupplyState supply = await bench.Supply.ReadState(cancel).ConfigureAwait(false);
+        SupplyState supply = await bench.Supply.ReadState(cancel);
         string seen = $"the bus is at {volts:0.0} V after {limit.TotalSeconds:0.0} s where {target:0.#} V was set";
         if (supply.ProtectionTripped || !supply.OutputOn)
         {

@@ -20,11 +20,11 @@ public sealed class TrainFiring(OpenBench bench, EventSource events)
     public async Task<ScopeRecord?> Fire(Permit permit, ScopeSettings settings, CancellationToken cancel)
     {
         // Costs nothing where the settings stand; after a link that had to be opened again they are all sent again.
-        await bench.Scope.Configure(settings, cancel).ConfigureAwait(false);
-        await bench.Scope.Arm(cancel).ConfigureAwait(false);
-        await bench.Pulser.Arm(permit, cancel).ConfigureAwait(false);
-        await bench.Pulser.Fire(permit, cancel).ConfigureAwait(false);
-        if (!await bench.Scope.WaitForRecord(RecordWithin, cancel).ConfigureAwait(false))
+        await bench.Scope.Configure(settings, cancel);
+        await bench.Scope.Arm(cancel);
+        await bench.Pulser.Arm(permit, cancel);
+        await bench.Pulser.Fire(permit, cancel);
+        if (!await bench.Scope.WaitForRecord(RecordWithin, cancel))
         {
             events.Say(
                 Severity.Warning, "trigger-missed",
@@ -34,7 +34,7 @@ public sealed class TrainFiring(OpenBench bench, EventSource events)
 
         try
         {
-            return await bench.Scope.Read(cancel).ConfigureAwait(false);
+            return await bench.Scope.Read(cancel);
         }
         catch (LinkException lost)
         {

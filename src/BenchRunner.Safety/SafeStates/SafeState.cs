@@ -21,10 +21,10 @@ public sealed class SafeState(
         Task<string?> pulser = Try("pulser", roles.Pulser.MakeSafe);
         Task<string?> supply = Try("supply", roles.Supply.MakeSafe);
         Task<string?> bleeder = Try("interlock", roles.Interlock.MakeSafe);
-        SafeStateReport proof = await Prove(doubts).ConfigureAwait(false);
+        SafeStateReport proof = await Prove(doubts);
         foreach (Task<string?> told in (Task<string?>[])[pulser, supply, bleeder])
         {
-            if (await told.ConfigureAwait(false) is { } doubt)
+            if (await told is { } doubt)
             {
                 doubts.Add(doubt);
             }
@@ -75,7 +75,7 @@ public sealed class SafeState(
             try
             {
                 using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(1), time);
-                double volts = Math.Abs((await roles.Voltmeter.Read(patience.Token).ConfigureAwait(false)).Value);
+                double volts = Math.Abs((await roles.Voltmeter.Read(patience.Token)).Value);
                 TimeSpan now = time.GetElapsedTime(start);
                 witness.Saw(volts);
                 (last, at, silent) = (volts, time.GetUtcNow(), null);
@@ -109,7 +109,7 @@ public sealed class SafeState(
                 return new SafeStateReport(false, last, at, doubts);
             }
 
-            await Task.Delay(ReadEvery, time).ConfigureAwait(false);
+            await Task.Delay(ReadEvery, time);
         }
     }
 
@@ -134,7 +134,7 @@ public sealed class SafeState(
         try
         {
             using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(3), time);
-            await makeSafe(patience.Token).ConfigureAwait(false);
+            await makeSafe(patience.Token);
             return null;
         }
         catch (Exception failure) when (failure is not OutOfMemoryException)

@@ -57,7 +57,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <exception cref="SafetyException">The first poll found a reason to trip.</exception>
     public async Task Start(CancellationToken cancel)
     {
-        if (await Poll(cancel).ConfigureAwait(false) is { } doubt)
+        if (await Poll(cancel) is { } doubt)
         {
             OnDoubt(doubt);
             throw new SafetyException($"{doubt}; put it right before the bench is used");
@@ -78,7 +78,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
                     + $"for, the envelope ends at {_envelope.Voltage:0.#} V and {_envelope.Pulse * 1e6:0.##} us; no permit");
         }
 
-        if (await Poll(cancel).ConfigureAwait(false) is { } doubt)
+        if (await Poll(cancel) is { } doubt)
         {
             OnDoubt(doubt);
         }
@@ -137,7 +137,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
     private async Task<SafeStateReport> Reach()
     {
-        SafeStateReport report = await _safeState.Reach().ConfigureAwait(false);
+        SafeStateReport report = await _safeState.Reach();
         lock (_gate)
         {
             _discharging = !report.Proved;
@@ -156,11 +156,11 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
         if (_reaching is { } reaching)
         {
-            await reaching.ConfigureAwait(false);
+            await reaching;
         }
 
-        await _end.CancelAsync().ConfigureAwait(false);
-        await _watching.ConfigureAwait(false);
+        await _end.CancelAsync();
+        await _watching;
         _end.Dispose();
         _tripped.Dispose();
     }
@@ -170,9 +170,9 @@ public sealed class SafetySupervisor : IAsyncDisposable
         using var timer = new PeriodicTimer(SafetyLimits.PollEvery, _time);
         try
         {
-            while (await timer.WaitForNextTickAsync(end).ConfigureAwait(false))
+            while (await timer.WaitForNextTickAsync(end))
             {
-                if (await Poll(end).ConfigureAwait(false) is { } doubt)
+                if (await Poll(end) is { } doubt)
                 {
                     OnDoubt(doubt);
                 }
@@ -198,8 +198,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
     {
         try
         {
-            InterlockState interlock = await _roles.Interlock.Read(cancel).ConfigureAwait(false);
-            double volts = Math.Abs((await _roles.Voltmeter.Read(cancel).ConfigureAwait(false)).Value);
+            InterlockState interlock = await _roles.Interlock.Read(cancel);
+            double volts = Math.Abs((await _roles.Voltmeter.Read(cancel)).Value);
             Volatile.Write(ref _lastVoltage, volts);
             Witness.Saw(volts);
             lock (_gate)
