@@ -1,0 +1,113 @@
+using System.Globalization;
+using System.Security.Cryptography;
+using BenchRunner.Evidence.Codecs;
+using BenchRunner.Evidence.Stores;
+using BenchRunner.Signals.Traces;
+using Microsoft.Data.Sqlite;
+
+namespace BenchRunner.Evidence.Captures;
+
+/// <summary>Reads captures back, bit for bit; beside a writer too. One thread at a time.</summary>
+public sealed class EvidenceReader : IDisposable
+{
+    private readonly string _path;
+    private readonly SqlSession _session;
+
+    private EvidenceReader(string path, SqlSession session)
+    {
+        _path = path;
+        _session = session;
+    }
+
+    /// <summary>Opens an evidence file for reading.</summary>
+    /// <exception cref="EvidenceException">There is no such file, it is none of ours, newer, or damaged.</exception>
+    public static EvidenceReader Open(string path) => new(path, SqlSession.OpenToRead(path));
+
+    /// <summary>The captures of a run, in the order in which they were taken.</summary>
+    /// <param name="run">Identity of the run.</param>
+    /// <returns>The captures; none where the run is not in the file.</returns>
+    /// <exception cref="EvidenceException">The file cannot be read.</exception>
+    public IReadOnlyList<StoredCapture> Captures(string run)
+    {
+        const string sql = """
+            select c.id, point.text, c.number, c.taken_at, c.bus_voltage, c.temperature,
+              c.first_pulse, c.gap, c.second_pulse, c.gate_on, c.gate_off,
+              (select v.valid from verdict v where v.capture = c.id order by v.scoring desc limit 1)
+            from run r join capture c on c.run = r.id join word point on point.id = c.operating_point
+            where r.uid = ?1 order by c.ordinal
+            """;
+        return Guarded(() => _session.Read(sql, Capture, run));
+    }
+
+    /// <summary>The traces of a capture as the scope gave them, in the order in which they were stored.</summary>
+    /// <param name="capture"><see cref="StoredCapture.Id"/>.</param>
+    /// <exception cref="EvidenceException">There is no such capture, it was altered, or the file cannot be read.</exception>
+    public IReadOnlyList<RawTrace> ReadTraces(long capture) => Guarded(() =>
+    {
+        if (_session.Value("select bytes from payload where capture = ?1", capture) is not byte[] payload)
+        {
+            throw new EvidenceException($"{_path}: capture {capture} has no traces here.");
+        }
+
+        const string sql = """
+            select channel, time_origin, sample_interval, increment, value_origin, reference, low_rail, high_rail,
+              offset, length, codec, samples, sha256
+            from trace where capture = ?1 order by offset
+            """;
+        return _session.Read(sql, row => Trace(row, capture, payload), capture);
+    });
+
+    /// <inheritdoc/>
+    public void Dispose() => _session.Dispose();
+
+    private static StoredCapture Capture(SqliteDataReader row) => new(
+        row.GetInt64(0),
+        row.GetString(1),
+        row.GetInt32(2),
+        DateTimeOffset.Parse(row.GetString(3), CultureInfo.InvariantCulture, DateTimeStyles.AssumeUniversal),
+        Real(row, 4),
+        Real(row, 5),
+        row.IsDBNull(6)
+            ? null
+            : new PulseTrain(row.GetDouble(6), row.GetDouble(7), row.GetDouble(8), row.GetDouble(9), row.GetDouble(10)),
+        row.IsDBNull(11) ? null : row.GetInt64(11) != 0);
+
+    private static double? Real(SqliteDataReader row, int column) => row.IsDBNull(column) ? null : row.GetDouble(column);
+
+    private RawTrace Trace(SqliteDataReader row, long capture, byte[] payload)
+    {
+        string channel = row.GetString(0);
+        long offset = row.GetInt64(8);
+        long length = row.GetInt64(9);
+        if (offset < 0 || length < 0 || offset + length > payload.Length || ChannelNames.Parse(channel) is not { } known)
+        {
+            throw Altered(capture, channel);
+        }
+
+        short[] codes = TraceCodec.Decode(
+            row.GetInt32(10), payload.AsSpan((int)offset, (int)length), row.GetInt32(11));
+        if (Convert.ToHexStringLower(SHA256.HashData(TraceCodec.Bytes(codes))) != row.GetString(12))
+        {
+            throw Altered(capture, channel);
+        }
+
+        return new RawTrace(
+            known, codes, row.GetDouble(1), row.GetDouble(2), row.GetDouble(3), row.GetDouble(4), row.GetDouble(5),
+            row.GetInt16(6), row.GetInt16(7));
+    }
+
+    private EvidenceException Altered(long capture, string channel) =>
+        new($"{_path}: capture {capture}, {channel}: its trace is not what was stored; audit the file.");
+
+    private T Guarded<T>(Func<T> work)
+    {
+        try
+        {
+            return work();
+        }
+        catch (SqliteException error)
+        {
+            throw EvidenceFault.Explain(_path, error);
+        }
+    }
+}

@@ -1,0 +1,71 @@
+using System.Text;
+
+namespace BenchRunner.Evidence.Schemas;
+
+/// <summary>What the database itself refuses, whoever writes to it: changes, deletions, replacements, late rows, mixtures.</summary>
+/// <remarks>
+/// A blob can be written past a trigger and a trigger can be dropped; the seals find both. The triggers are there so
+/// that nothing is lost by mistake.
+/// </remarks>
+internal static class Triggers
+{
+    /// <summary>Statements that make the triggers.</summary>
+    public static string Sql { get; } = Build();
+
+    private static string Build()
+    {
+        StringBuilder sql = new();
+        foreach ((string table, string[][] keys) in Tables.AppendOnly)
+        {
+            KeepRows(sql, table, keys);
+        }
+
+        foreach (string table in new[] { "run_file", "instrument", "event", "capture" })
+        {
+            EndWithSeal(sql, table, "exists (select 1 from seal where kind = 'run' and run = new.run)");
+        }
+
+        foreach (string table in new[] { "decision", "measurement" })
+        {
+            EndWithSeal(
+                sql, table, "new.scoring = 0 and exists (select 1 from seal where kind = 'run' and run = new.run)");
+        }
+
+        const string ofCapture =
+            "exists (select 1 from capture c join seal s on s.run = c.run and s.kind = 'run' where c.id = new.capture)";
+        EndWithSeal(sql, "trace", ofCapture);
+        EndWithSeal(sql, "payload", ofCapture);
+        EndWithSeal(sql, "verdict", "new.scoring = 0 and " + ofCapture);
+        EndWithSeal(sql, "capture_value", "new.scoring = 0 and " + ofCapture);
+        sql.Append("""
+            create trigger run_is_of_the_kind_of_the_file before insert on run
+            when (select simulated from run order by id limit 1) <> new.simulated
+            begin select raise(abort, 'simulated and measured runs never share a file'); end;
+
+            """);
+        return sql.ToString();
+    }
+
+    private static void KeepRows(StringBuilder sql, string table, string[][] keys)
+    {
+        // "insert or replace" deletes without firing the trigger on deletion, so an insert over a key is refused too.
+        string taken = string.Join(" or ", keys.Select(key =>
+            $"exists (select 1 from {table} where {string.Join(" and ", key.Select(column => $"{column} = new.{column}"))})"));
+        sql.Append($"""
+            create trigger {table}_is_never_deleted before delete on {table}
+            begin select raise(abort, 'evidence is append-only: no row of {table} is deleted'); end;
+            create trigger {table}_is_never_changed before update on {table}
+            begin select raise(abort, 'evidence is append-only: no row of {table} is changed'); end;
+            create trigger {table}_is_never_replaced before insert on {table} when {taken}
+            begin select raise(abort, 'evidence is append-only: no row of {table} is replaced'); end;
+
+            """);
+    }
+
+    private static void EndWithSeal(StringBuilder sql, string table, string closed) =>
+        sql.Append($"""
+            create trigger {table}_ends_with_the_seal before insert on {table} when {closed}
+            begin select raise(abort, 'the run is sealed: no row of {table} is added'); end;
+
+            """);
+}

@@ -1,0 +1,76 @@
+using BenchRunner.Evidence.Schemas;
+using Microsoft.Data.Sqlite;
+
+namespace BenchRunner.Evidence.Stores;
+
+/// <summary>Makes an evidence file or opens one, and finds what is wrong with it before anything is written.</summary>
+internal static class EvidenceFile
+{
+    public static SqlSession OpenToWrite(string path, TimeProvider time, long? largestBytes)
+    {
+        SqlSession session = SqlSession.Open(path, SqliteOpenMode.ReadWriteCreate);
+        try
+        {
+            bool isNew = session.Number("select count(*) from sqlite_schema") == 0
+                && session.Number("pragma user_version") == 0;
+            if (isNew)
+            {
+                session.Run($"pragma page_size = {Schema.PageSize};");
+            }
+            else
+            {
+                session.CheckForm(path);
+            }
+
+            // The mode is asked for and read back: where it is refused, a crash could cost what was announced.
+            if (session.Value("pragma journal_mode = wal") is not "wal")
+            {
+                throw new EvidenceException($"{path}: its disk allows no write-ahead log; name a file on another disk.");
+            }
+
+            session.Run("pragma synchronous = full;");
+            if (largestBytes is { } largest)
+            {
+                session.Run($"pragma max_page_count = {Math.Max(1, largest / session.Number("pragma page_size"))};");
+            }
+
+            if (isNew)
+            {
+                Make(session, time);
+            }
+
+            RefuseWhenCutShort(session, path);
+            return session;
+        }
+        catch
+        {
+            session.Dispose();
+            throw;
+        }
+    }
+
+    private static void Make(SqlSession session, TimeProvider time)
+    {
+        session.Run("begin immediate");
+        session.Run(Schema.Sql);
+        session.Execute(
+            "insert into origin (uid, created_at) values (?1, ?2)",
+            Guid.CreateVersion7(time.GetUtcNow()).ToString("D"), Text.Time(time.GetUtcNow()));
+        session.Run($"pragma application_id = {Schema.ApplicationId}; pragma user_version = {Schema.Version};");
+        session.Run("commit");
+    }
+
+    private static void RefuseWhenCutShort(SqlSession session, string path)
+    {
+        // Only when the whole log has gone into the file does the file have to be as long as it says.
+        bool whole = session.Read(
+            "pragma wal_checkpoint(passive)", row => row.GetInt64(0) == 0 && row.GetInt64(1) == row.GetInt64(2))[0];
+        long stated = session.Number("pragma page_count") * session.Number("pragma page_size");
+        long found = new FileInfo(path).Length;
+        if (whole && found < stated)
+        {
+            throw new EvidenceException(
+                $"{path}: is cut short: {found} bytes of {stated}; go on with a new file or a backup.");
+        }
+    }
+}

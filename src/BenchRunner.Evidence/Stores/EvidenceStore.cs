@@ -1,0 +1,211 @@
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Events;
+using Microsoft.Data.Sqlite;
+
+namespace BenchRunner.Evidence.Stores;
+
+/// <summary>The evidence: an SQLite file that takes runs and never changes what it took. One writer, any readers.</summary>
+/// <remarks>
+/// <para>Invariants:</para>
+/// <list type="number">
+/// <item>A capture that <see cref="RunWriter.AddCapture"/> announced is in the file, whatever happens next.</item>
+/// <item>A run has an end (decision and seal) or none; there is no half of one.</item>
+/// <item>A row under the seal is never changed, deleted or replaced; a sealed run grows no more. Triggers refuse it,
+/// seals find it.</item>
+/// <item>Each seal holds a hash of all that its run stored, and the seal before it within its origin.</item>
+/// <item>Simulated and measured runs never share a file.</item>
+/// <item>One process writes: it holds <c>FILE-writer</c>, and only it closes a run that has no end.</item>
+/// <item>The first failed write latches: every later one throws the same reason, until the file is opened
+/// again.</item>
+/// <item>A reader never waits for the writer and never sees a part of a transaction.</item>
+/// </list>
+/// <para>What it assumes of the disk: a completed fsync is durable; before it, any page of a write may be there, not
+/// there, or torn; a page that was durable stays as it was, unless the seal says otherwise. A lock of the file system
+/// dies with its process. The file does not lie on a network share.</para>
+/// <para>States: open, then failed (for good) or closed. A run: begun, then ended; a run that is begun when the file is
+/// opened is ended as <c>stopped</c>.</para>
+/// <para>Thread-safe.</para>
+/// </remarks>
+public sealed class EvidenceStore : IDisposable
+{
+    private readonly string _path;
+    private readonly TimeProvider _time;
+    private readonly WriterLock _lock;
+    private readonly SqlSession _session;
+    private readonly Lock _gate = new();
+    private EvidenceException? _failure;
+
+    private EvidenceStore(string path, TimeProvider time, WriterLock writerLock, SqlSession session)
+    {
+        _path = path;
+        _time = time;
+        _lock = writerLock;
+        _session = session;
+    }
+
+    /// <summary>Runs that had no end when the file was opened, now closed as <c>stopped</c>; oldest first.</summary>
+    public IReadOnlyList<ClosedRun> Closed { get; private set; } = [];
+
+    /// <summary>Opens an evidence file for writing, or makes it; closes runs that have no end.</summary>
+    /// <param name="path">The file; its folder must exist.</param>
+    /// <param name="time">The clock.</param>
+    /// <param name="largestBytes">Size beyond which the file counts as full, bytes; null: the disk decides.</param>
+    /// <exception cref="EvidenceException">Another writer holds it; it is no evidence file, newer, damaged or cut
+    /// short; it cannot be written.</exception>
+    public static EvidenceStore Open(string path, TimeProvider time, long? largestBytes = null)
+    {
+        ArgumentException.ThrowIfNullOrEmpty(path);
+        ArgumentNullException.ThrowIfNull(time);
+        string full = Path.GetFullPath(path);
+        if (!Directory.Exists(Path.GetDirectoryName(full)))
+        {
+            throw new EvidenceException($"{path}: its folder does not exist; make it or name another file.");
+        }
+
+        if (Directory.Exists(full))
+        {
+            throw new EvidenceException($"{path}: is a folder; name a file.");
+        }
+
+        WriterLock writerLock = WriterLock.Take(full, time);
+        SqlSession? session = null;
+        try
+        {
+            session = EvidenceFile.OpenToWrite(full, time, largestBytes);
+            EvidenceStore store = new(full, time, writerLock, session);
+            store.Closed = store.CloseUnfinished();
+            return store;
+        }
+        catch (Exception error)
+        {
+            session?.Dispose();
+            writerLock.Dispose();
+            if (error is SqliteException)
+            {
+                throw EvidenceFault.Explain(full, error);
+            }
+
+            throw;
+        }
+    }
+
+    /// <summary>Whether a run may begin.</summary>
+    /// <param name="header">The run.</param>
+    /// <returns>Why not; null where it may. Attempts that were stopped count neither as decided nor as attempts.</returns>
+    /// <exception cref="EvidenceException">The file cannot be read, or a write has failed.</exception>
+    public RunRefusal? Refuses(RunHeader header)
+    {
+        ArgumentNullException.ThrowIfNull(header);
+        return Guarded(() => RunRules.Refusal(_session, header));
+    }
+
+    /// <summary>Begins a run, durably.</summary>
+    /// <param name="header">What is known of it.</param>
+    /// <returns>Its writer.</returns>
+    /// <exception cref="RunRefusedException"><see cref="Refuses"/> says why.</exception>
+    /// <exception cref="EvidenceException">It is not begun; the store takes nothing more.</exception>
+    public RunWriter BeginRun(RunHeader header)
+    {
+        ArgumentNullException.ThrowIfNull(header);
+        lock (_gate)
+        {
+            if (Refuses(header) is { } refusal)
+            {
+                throw new RunRefusedException(refusal);
+            }
+
+            string uid = Guid.CreateVersion7(_time.GetUtcNow()).ToString("D");
+            int attempt = Guarded(() => RunRules.Attempt(_session, header));
+            long row = Commit(to => RunRows.Begin(to, header, uid, attempt, Now()));
+            return new RunWriter(this, row, uid, attempt);
+        }
+    }
+
+    /// <summary>Closes the file; a run without an end stays so, and is closed by the next writer.</summary>
+    public void Dispose()
+    {
+        lock (_gate)
+        {
+            _session.Dispose();
+            _lock.Dispose();
+        }
+    }
+
+    internal string Now() => Text.Time(_time.GetUtcNow());
+
+    internal void RefuseWhenFailed()
+    {
+        if (Volatile.Read(ref _failure) is { } failure)
+        {
+            throw new EvidenceException(failure.Message, failure.InnerException);
+        }
+    }
+
+    /// <summary>Runs a transaction; when it fails, nothing of it is stored and the store latches.</summary>
+    internal T Commit<T>(Func<SqlSession, T> rows)
+    {
+        lock (_gate)
+        {
+            return Guarded(() =>
+            {
+                _session.Run("begin immediate");
+                T result = rows(_session);
+                _session.Run("commit");
+                return result;
+            });
+        }
+    }
+
+    private T Guarded<T>(Func<T> work)
+    {
+        lock (_gate)
+        {
+            RefuseWhenFailed();
+            try
+            {
+                return work();
+            }
+            catch (Exception error)
+            {
+                // Whatever it was, rows that waited may be lost: the file is right up to the last commit and ends there.
+                Volatile.Write(ref _failure, EvidenceFault.Explain(_path, error));
+                RollBack();
+                throw _failure!;
+            }
+        }
+    }
+
+    private void RollBack()
+    {
+        try
+        {
+            _session.Run("rollback");
+        }
+        catch (SqliteException)
+        {
+            // SQLite has rolled back by itself (full disk, failed disk), or nothing was begun.
+        }
+    }
+
+    private List<ClosedRun> CloseUnfinished()
+    {
+        const string unfinished = """
+            select r.id, r.uid, r.device, r.started_at, (select count(*) from capture c where c.run = r.id)
+            from run r where not exists (select 1 from seal s where s.run = r.id and s.kind = 'run') order by r.id
+            """;
+        List<(long Row, ClosedRun Run)> open = _session.Read(unfinished, row => (
+            row.GetInt64(0), new ClosedRun(row.GetString(1), row.GetString(2), row.GetString(3), row.GetInt32(4))));
+        foreach ((long row, ClosedRun run) in open)
+        {
+            string reason = $"the program ended before the run did; {run.Captures} captures are kept";
+            Commit(to =>
+            {
+                RunRows.Event(
+                    to, row, new BenchEvent(_time.GetUtcNow(), "evidence", Severity.Error, "run-closed", reason));
+                return RunRows.End(to, row, Outcome.Stopped, reason, Now());
+            });
+        }
+
+        return [.. open.Select(found => found.Run)];
+    }
+}

@@ -1,0 +1,51 @@
+namespace BenchRunner.Evidence.Stores;
+
+/// <summary>Which runs may begin, and which attempt they are.</summary>
+internal static class RunRules
+{
+    private const string InLot =
+        "from run r left join decision d on d.run = r.id and d.scoring = 0 " +
+        "where r.lot = (select id from word where text = ?1) and r.device = ?2";
+
+    public static RunRefusal? Refusal(SqlSession session, RunHeader header)
+    {
+        if (session.Value("select simulated from run order by id limit 1") is long simulated
+            && simulated != 0 != header.Simulated)
+        {
+            return new RunRefusal(
+                RunRefusalKind.MixedOrigin,
+                $"the evidence file holds {Origin(!header.Simulated)} runs and this run is {Origin(header.Simulated)}; " +
+                "name another evidence file.");
+        }
+
+        if (header.Lot is not { } lot)
+        {
+            return null;
+        }
+
+        long decided = session.Number($"select count(*) {InLot} and d.outcome <> 'stopped'", lot, header.Device);
+        if (decided >= header.Sequence.Attempts)
+        {
+            return new RunRefusal(
+                RunRefusalKind.TooManyAttempts,
+                $"{header.Device} had {decided} attempts in lot {lot}, and the sequence allows {header.Sequence.Attempts}; " +
+                "decide by what is there.");
+        }
+
+        if (decided > 0 && string.IsNullOrWhiteSpace(header.Again))
+        {
+            object? outcome = session.Value(
+                $"select d.outcome {InLot} and d.outcome <> 'stopped' order by r.attempt desc limit 1", lot, header.Device);
+            return new RunRefusal(
+                RunRefusalKind.AlreadyDecided,
+                $"{header.Device} is {outcome} in lot {lot} already; give a reason to measure it again.");
+        }
+
+        return null;
+    }
+
+    public static int Attempt(SqlSession session, RunHeader header) =>
+        header.Lot is { } lot ? (int)session.Number($"select count(*) {InLot}", lot, header.Device) + 1 : 1;
+
+    private static string Origin(bool simulated) => simulated ? "simulated" : "measured";
+}

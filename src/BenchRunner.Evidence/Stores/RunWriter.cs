@@ -1,0 +1,209 @@
+using System.Collections.Concurrent;
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Validity;
+using BenchRunner.Evidence.Captures;
+using BenchRunner.Signals.Quantities;
+
+namespace BenchRunner.Evidence.Stores;
+
+/// <summary>Writes one run. A capture is durable when <see cref="AddCapture"/> returns; the end of a run seals it.</summary>
+/// <remarks>
+/// Instruments, events, verdicts and values wait for the next durable commit (capture, end, or every 1,000 rows): all
+/// but the events can be formed again from the captures, and one commit a capture is what a disk can bear. Each method
+/// throws <see cref="EvidenceException"/> once the store has failed, and
+/// <see cref="InvalidOperationException"/> after the run's end. Thread-safe; adding an event never waits for the disk
+/// except when it is the 1,000th.
+/// </remarks>
+public sealed class RunWriter
+{
+    private const int MostWaiting = 1000;
+
+    private readonly EvidenceStore _store;
+    private readonly long _row;
+    private readonly ConcurrentQueue<Action<SqlSession>> _waiting = new();
+    private int _captures;
+    private volatile bool _ended;
+
+    internal RunWriter(EvidenceStore store, long row, string run, int attempt)
+    {
+        _store = store;
+        _row = row;
+        Run = run;
+        Attempt = attempt;
+    }
+
+    /// <summary>Identity of the run: a UUID version 7 as text.</summary>
+    public string Run { get; }
+
+    /// <summary>Which run of the device in its lot this is, from 1; 1 without a lot.</summary>
+    public int Attempt { get; }
+
+    /// <summary>Records what an instrument says it is.</summary>
+    /// <param name="role">The role, e.g. <c>scope</c>; once a run.</param>
+    /// <param name="identity">The whole answer to <c>*IDN?</c>.</param>
+    /// <param name="serial">Its serial; null or empty: not stated.</param>
+    /// <param name="firmware">Its firmware; null or empty: not stated.</param>
+    /// <exception cref="EvidenceException">The store has failed.</exception>
+    public void AddInstrument(string role, string identity, string? serial, string? firmware) =>
+        Wait(to => RunRows.Instrument(to, _row, role, identity, Stated(serial), Stated(firmware)));
+
+    /// <summary>Records an event.</summary>
+    /// <exception cref="EvidenceException">The store has failed.</exception>
+    public void AddEvent(BenchEvent happened)
+    {
+        ArgumentNullException.ThrowIfNull(happened);
+        Wait(to => RunRows.Event(to, _row, happened));
+    }
+
+    /// <summary>Stores a capture, durably, before anything is computed from it.</summary>
+    /// <param name="capture">The capture.</param>
+    /// <returns>What <see cref="AddVerdict"/> and <see cref="AddCaptureValues"/> name it by.</returns>
+    /// <exception cref="ArgumentException">No trace, a channel twice, or a NaN.</exception>
+    /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
+    public long AddCapture(CaptureRow capture)
+    {
+        ArgumentNullException.ThrowIfNull(capture);
+        if (capture.Traces.Count == 0 || capture.Traces.DistinctBy(trace => trace.Channel).Count() != capture.Traces.Count)
+        {
+            throw new ArgumentException("A capture has at least one trace, and each channel once.", nameof(capture));
+        }
+
+        RefuseNaN(nameof(capture), capture.BusVoltage, capture.Temperature);
+        _store.RefuseWhenFailed();
+        Payload payload = Payload.Of(capture.Traces);
+        return Commit(to => RunRows.Capture(to, _row, ++_captures, capture, payload));
+    }
+
+    /// <summary>Records what validity says of a capture.</summary>
+    /// <param name="capture">What <see cref="AddCapture"/> returned; once a capture.</param>
+    /// <param name="verdict">The verdict.</param>
+    /// <param name="loadCurrent">Load current at the first turn-off from the traces, A; null: not formed.</param>
+    /// <param name="busVoltage">Bus voltage at the first turn-off from the traces, V; null: not formed.</param>
+    /// <exception cref="ArgumentException">A NaN.</exception>
+    /// <exception cref="EvidenceException">The store has failed.</exception>
+    public void AddVerdict(long capture, Verdict verdict, double? loadCurrent, double? busVoltage)
+    {
+        ArgumentNullException.ThrowIfNull(verdict);
+        RefuseNaN(nameof(verdict), loadCurrent, busVoltage, verdict.CorrectedFirstPulse);
+        Wait(to => RunRows.Verdict(to, capture, 0, verdict, loadCurrent, busVoltage));
+    }
+
+    /// <summary>Records the quantities of a capture.</summary>
+    /// <param name="capture">What <see cref="AddCapture"/> returned.</param>
+    /// <param name="values">The quantities, each definition once.</param>
+    /// <exception cref="ArgumentException">A NaN, or a definition twice.</exception>
+    /// <exception cref="EvidenceException">The store has failed.</exception>
+    public void AddCaptureValues(long capture, IReadOnlyList<QuantityValue> values)
+    {
+        ArgumentNullException.ThrowIfNull(values);
+        if (values.DistinctBy(value => (value.Quantity, value.Definition)).Count() != values.Count)
+        {
+            throw new ArgumentException("A definition of a quantity stands twice.", nameof(values));
+        }
+
+        foreach (QuantityValue value in values)
+        {
+            RefuseNaN(nameof(values), value.Value, value.From, value.To);
+        }
+
+        Wait(to =>
+        {
+            foreach (QuantityValue value in values)
+            {
+                RunRows.CaptureValue(to, capture, 0, value);
+            }
+        });
+    }
+
+    /// <summary>Ends the run with its decision: measurements, outcome and seal, in one transaction.</summary>
+    /// <param name="decision">What was decided about the device.</param>
+    /// <returns>The seal, lower-case hexadecimal.</returns>
+    /// <exception cref="ArgumentException">A NaN, or a quantity by one definition twice at one point.</exception>
+    /// <exception cref="EvidenceException">The run has no end in the file; the store takes nothing more.</exception>
+    public string Finish(DeviceDecision decision)
+    {
+        ArgumentNullException.ThrowIfNull(decision);
+        if (decision.Values.DistinctBy(value => (value.OperatingPoint, value.Quantity, value.Definition)).Count()
+            != decision.Values.Count)
+        {
+            throw new ArgumentException("A quantity stands twice by one definition at one point.", nameof(decision));
+        }
+
+        foreach (MeasuredValue value in decision.Values)
+        {
+            RefuseNaN(
+                nameof(decision), value.Value, value.StandardUncertainty, value.ExpandedUncertainty,
+                value.CoverageFactor, value.DegreesOfFreedom, value.Lower, value.Upper);
+        }
+
+        return End(decision.Outcome, decision.Reason, decision.Values);
+    }
+
+    /// <summary>Ends the run as <c>stopped</c>, without measurements.</summary>
+    /// <param name="reason">Why bench, safety chain or operator ended it.</param>
+    /// <returns>The seal, lower-case hexadecimal.</returns>
+    /// <exception cref="EvidenceException">The run has no end in the file; the store takes nothing more.</exception>
+    public string Stop(string reason) => End(Outcome.Stopped, reason, []);
+
+    private static string? Stated(string? text) => string.IsNullOrEmpty(text) ? null : text;
+
+    private static void RefuseNaN(string argument, params ReadOnlySpan<double?> values)
+    {
+        foreach (double? value in values)
+        {
+            if (value is { } number && double.IsNaN(number))
+            {
+                throw new ArgumentException("A NaN is no value: give null and the reason.", argument);
+            }
+        }
+    }
+
+    private string End(Outcome outcome, string? reason, IReadOnlyList<MeasuredValue> values)
+    {
+        string seal = Commit(to =>
+        {
+            foreach (MeasuredValue value in values)
+            {
+                RunRows.Measurement(to, _row, 0, value);
+            }
+
+            return RunRows.End(to, _row, outcome, reason, _store.Now());
+        });
+        _ended = true;
+        return seal;
+    }
+
+    private void Wait(Action<SqlSession> rows)
+    {
+        RefuseWhenEnded();
+        _store.RefuseWhenFailed();
+        _waiting.Enqueue(rows);
+        if (_waiting.Count >= MostWaiting)
+        {
+            Commit(_ => 0);
+        }
+    }
+
+    private T Commit<T>(Func<SqlSession, T> rows)
+    {
+        RefuseWhenEnded();
+        return _store.Commit(to =>
+        {
+            while (_waiting.TryDequeue(out Action<SqlSession>? waiting))
+            {
+                waiting(to);
+            }
+
+            return rows(to);
+        });
+    }
+
+    private void RefuseWhenEnded()
+    {
+        if (_ended)
+        {
+            throw new InvalidOperationException($"Run {Run} has ended; nothing is added to it.");
+        }
+    }
+}
