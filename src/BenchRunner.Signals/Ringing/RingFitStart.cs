@@ -1,0 +1,319 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
+
+namespace BenchRunner.Signals.Ringing;
+
+/// <summary>Start values of a ring fit by a subspace method (ESPRIT): frequencies and decays, no amplitudes.</summary>
+/// <remarks>
+/// Rows x[n + i D] of a decaying oscillation are combinations of z^(i D), whatever n: the leading eigenvectors of
+/// their correlation span that space, and shifting the rows by one turns it by the poles z^D. A constant and a slope are
+/// taken out of each row along n, which leaves the dependence on i, and so the poles, as they are. Source: Roy and
+/// Kailath, ESPRIT, 1989 (from memory).
+/// </remarks>
+internal ref struct RingFitStart
+{
+    /// <summary>Rows of the correlation; more resolve closer modes, and cost their square.</summary>
+    private const int MostRows = 40;
+
+    /// <summary>Vectors iterated: six for three modes, two more so that the sixth settles quickly.</summary>
+    private const int Vectors = 8;
+
+    private const int Passes = 8;
+
+    private readonly Span<double> _vectors;
+    private readonly int _rows;
+    private readonly int _stride;
+
+    /// <summary>Finds the dominant subspace of a record.</summary>
+    /// <param name="x">Samples, their trend removed; at least 24.</param>
+    /// <param name="vectors">Scratch of <see cref="ScratchLength"/>, kept as long as this value is used.</param>
+    public RingFitStart(ReadOnlySpan<double> x, Span<double> vectors)
+    {
+        int most = Math.Min(MostRows, x.Length / 2);
+        _stride = Stride(x, Math.Max(1, x.Length / 2 / (most - 1)));
+        _rows = most;
+        _vectors = vectors[..(_rows * Vectors)];
+
+        Span<double> correlation = stackalloc double[MostRows * MostRows];
+        correlation = correlation[..(_rows * _rows)];
+        Correlate(x, _stride, _rows, correlation);
+        Iterate(correlation);
+    }
+
+    /// <summary>Doubles of scratch needed.</summary>
+    public static int ScratchLength => MostRows * Vectors;
+
+    /// <summary>Writes start values for a number of modes.</summary>
+    /// <param name="modes">Modes wanted, 1 to 3.</param>
+    /// <param name="decay">Receives σ a sample.</param>
+    /// <param name="turn">Receives ω a sample, rad, above 0.</param>
+    /// <returns>Whether the subspace holds that many.</returns>
+    public readonly bool Modes(int modes, Span<double> decay, Span<double> turn)
+    {
+        int poles = 2 * modes;
+        if (poles > _rows - 2)
+        {
+            return false;
+        }
+
+        Span<double> shift = stackalloc double[Vectors * Vectors];
+        shift = shift[..(poles * poles)];
+        if (!Shift(poles, shift))
+        {
+            return false;
+        }
+
+        Span<double> coefficients = stackalloc double[poles];
+        Span<double> real = stackalloc double[poles];
+        Span<double> imaginary = stackalloc double[poles];
+        RingFitAlgebra.Characteristic(shift, poles, coefficients);
+        RingFitAlgebra.Roots(coefficients, real, imaginary);
+        return Choose(real, imaginary, modes, decay, turn);
+    }
+
+    /// <summary>Oscillating poles first; a real pole (a bare decay) stands in as a very slow oscillation.</summary>
+    private readonly bool Choose(
+        ReadOnlySpan<double> real, ReadOnlySpan<double> imaginary, int modes, Span<double> decay, Span<double> turn)
+    {
+        const double OnRealAxis = 1e-7;
+        int found = 0;
+        for (int pass = 0; pass < 2; pass++)
+        {
+            for (int i = 0; i < real.Length && found < modes; i++)
+            {
+                double size = Math.Sqrt((real[i] * real[i]) + (imaginary[i] * imaginary[i]));
+                bool oscillates = imaginary[i] > OnRealAxis;
+                bool decays = Math.Abs(imaginary[i]) <= OnRealAxis && real[i] > 0;
+                if (!(size > 1e-6) || (pass == 0 ? !oscillates : !decays))
+                {
+                    continue;
+                }
+
+                decay[found] = -Math.Log(size) / _stride;
+                turn[found] = pass == 0
+                    ? Math.Atan2(imaginary[i], real[i]) / _stride
+                    : Math.Max(Math.Abs(decay[found]), 0.1 / (_rows * _stride));
+                found++;
+            }
+        }
+
+        return found == modes;
+    }
+
+    /// <summary>
+    /// Distance D of the rows: an eighth of the dominant period, from the first zero of the autocorrelation (noise counts
+    /// at lag 0 alone). The lags grow by at most half, so that the negative half wave cannot be stepped over.
+    /// </summary>
+    private static int Stride(ReadOnlySpan<double> x, int most)
+    {
+        for (int lag = 1; lag / 2 < most; lag += Math.Max(1, lag / 2))
+        {
+            double sum = 0;
+            for (int n = 0; n + lag < x.Length; n++)
+            {
+                sum += x[n] * x[n + lag];
+            }
+
+            if (sum <= 0)
+            {
+                return Math.Clamp(lag / 2, 1, most);
+            }
+        }
+
+        return most;
+    }
+
+    private static void Correlate(ReadOnlySpan<double> x, int stride, int rows, Span<double> r)
+    {
+        int length = x.Length - ((rows - 1) * stride);
+        for (int j = 0; j < rows; j++)
+        {
+            ReadOnlySpan<double> late = x.Slice(j * stride, length);
+            ReadOnlySpan<double> early = x[..length];
+            // Four sums side by side: one alone waits for its own last addition.
+            double s0 = 0, s1 = 0, s2 = 0, s3 = 0;
+            int n = 0;
+            for (; n + 3 < early.Length && n + 3 < late.Length; n += 4)
+            {
+                s0 += early[n] * late[n];
+                s1 += early[n + 1] * late[n + 1];
+                s2 += early[n + 2] * late[n + 2];
+                s3 += early[n + 3] * late[n + 3];
+            }
+
+            for (; n < length; n++)
+            {
+                s0 += early[n] * late[n];
+            }
+
+            r[j] = s0 + s1 + s2 + s3;
+        }
+
+        for (int i = 1; i < rows; i++)
+        {
+            for (int j = i; j < rows; j++)
+            {
+                double sum = r[((i - 1) * rows) + j - 1];
+                int a = (i - 1) * stride, b = (j - 1) * stride;
+                for (int d = 0; d < stride; d++)
+                {
+                    sum += (x[a + length + d] * x[b + length + d]) - (x[a + d] * x[b + d]);
+                }
+
+                r[(i * rows) + j] = sum;
+            }
+        }
+
+        RemoveTrend(x, stride, rows, r);
+    }
+
+    /// <summary>Takes a constant and a slope along n out of every row, in the correlation itself.</summary>
+    private static void RemoveTrend(ReadOnlySpan<double> x, int stride, int rows, Span<double> r)
+    {
+        int length = x.Length - ((rows - 1) * stride);
+        double centre = (length - 1) / 2.0;
+        double slopes = (length * ((double)length * length - 1)) / 12;
+        Span<double> mean = stackalloc double[rows];
+        Span<double> slope = stackalloc double[rows];
+        double m = 0, s = 0;
+        for (int n = 0; n < length; n++)
+        {
+            m += x[n];
+            s += (n - centre) * x[n];
+        }
+
+        for (int i = 0; i < rows; i++)
+        {
+            (mean[i], slope[i]) = (m, s);
+            for (int d = 0; d < stride && i + 1 < rows; d++)
+            {
+                int at = (i * stride) + d;
+                // The window moves on by one sample: its first leaves, one joins, all weights fall by 1.
+                s += (centre * x[at]) + ((length - 1 - centre) * x[at + length]) - (m - x[at]);
+                m += x[at + length] - x[at];
+            }
+        }
+
+        for (int i = 0; i < rows; i++)
+        {
+            for (int j = i; j < rows; j++)
+            {
+                double value = r[(i * rows) + j] - (mean[i] * mean[j] / length) - (slope[i] * slope[j] / slopes);
+                r[(i * rows) + j] = value;
+                r[(j * rows) + i] = value;
+            }
+        }
+    }
+
+    /// <summary>Orthogonal iteration towards the dominant eigenvectors, all vectors side by side.</summary>
+    private readonly void Iterate(ReadOnlySpan<double> r)
+    {
+        Span<double> next = stackalloc double[MostRows * Vectors];
+        next = next[..(_rows * Vectors)];
+        _vectors.Clear();
+        for (int v = 0; v < Vectors; v++)
+        {
+            _vectors[((v * _rows / Vectors) * Vectors) + v] = 1;
+        }
+
+        for (int pass = 0; pass < Passes; pass++)
+        {
+            ref double source = ref MemoryMarshal.GetReference(_vectors);
+            ref double target = ref MemoryMarshal.GetReference(next);
+            for (int i = 0; i < _rows; i++)
+            {
+                Vector256<double> low = Vector256<double>.Zero;
+                Vector256<double> high = Vector256<double>.Zero;
+                for (int j = 0; j < _rows; j++)
+                {
+                    Vector256<double> factor = Vector256.Create(r[(i * _rows) + j]);
+                    low += factor * Vector256.LoadUnsafe(ref source, (nuint)(j * Vectors));
+                    high += factor * Vector256.LoadUnsafe(ref source, (nuint)((j * Vectors) + 4));
+                }
+
+                low.StoreUnsafe(ref target, (nuint)(i * Vectors));
+                high.StoreUnsafe(ref target, (nuint)((i * Vectors) + 4));
+            }
+
+            Orthonormalise(next);
+            next.CopyTo(_vectors);
+        }
+    }
+
+    private static void Orthonormalise(Span<double> v)
+    {
+        for (int a = 0; a < Vectors; a++)
+        {
+            for (int b = 0; b < a; b++)
+            {
+                double dot = Dot(v, a, b);
+                for (int i = 0; i < v.Length; i += Vectors)
+                {
+                    v[i + a] -= dot * v[i + b];
+                }
+            }
+
+            double norm = Math.Sqrt(Dot(v, a, a));
+            // A vector that vanishes (fewer components than vectors) stays zero and adds no pole.
+            double scale = norm > 0 ? 1 / norm : 0;
+            for (int i = 0; i < v.Length; i += Vectors)
+            {
+                v[i + a] *= scale;
+            }
+        }
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static double Dot(ReadOnlySpan<double> v, int a, int b)
+    {
+        double sum = 0;
+        for (int i = 0; i < v.Length; i += Vectors)
+        {
+            sum += v[i + a] * v[i + b];
+        }
+
+        return sum;
+    }
+
+    /// <summary>The matrix Φ of U₁ Φ = U₂ in the least-squares sense: its eigenvalues are the poles.</summary>
+    /// <remarks>U is orthonormal, so U₁ᵀU₁ = I − u uᵀ with u its last row, and its inverse is I + u uᵀ/(1 − uᵀu).</remarks>
+    private readonly bool Shift(int poles, Span<double> shift)
+    {
+        ReadOnlySpan<double> last = _vectors.Slice((_rows - 1) * Vectors, poles);
+        double norm = 0;
+        foreach (double value in last)
+        {
+            norm += value * value;
+        }
+
+        if (!(norm < 1 - 1e-9))
+        {
+            return false;
+        }
+
+        Span<double> column = stackalloc double[Vectors];
+        for (int b = 0; b < poles; b++)
+        {
+            double along = 0;
+            for (int a = 0; a < poles; a++)
+            {
+                double sum = 0;
+                for (int i = 0; i < _rows - 1; i++)
+                {
+                    sum += _vectors[(i * Vectors) + a] * _vectors[((i + 1) * Vectors) + b];
+                }
+
+                column[a] = sum;
+                along += last[a] * sum;
+            }
+
+            for (int a = 0; a < poles; a++)
+            {
+                shift[(a * poles) + b] = column[a] + (last[a] * along / (1 - norm));
+            }
+        }
+
+        return true;
+    }
+}
