@@ -75,6 +75,25 @@ public sealed class Waveform
     /// <summary>The smallest step of the record (LSB) of a channel, V or A; 0 where it was not stated.</summary>
     public double Step(Channel channel) => _step[(int)channel];
 
+    /// <summary>The same waveform with some channels replaced; the other channels are shared, not copied.</summary>
+    /// <param name="channels">New samples of channels that the waveform has, V or A.</param>
+    /// <param name="steps">New steps of those channels, V or A; absent: as they were.</param>
+    /// <exception cref="ArgumentException">A channel of another length.</exception>
+    public Waveform With(
+        IReadOnlyDictionary<Channel, double[]> channels, IReadOnlyDictionary<Channel, double>? steps = null)
+    {
+        ArgumentNullException.ThrowIfNull(channels);
+        Dictionary<Channel, double[]> all = [];
+        Dictionary<Channel, double> allSteps = [];
+        foreach (Channel channel in Channels)
+        {
+            all[channel] = channels.GetValueOrDefault(channel) ?? _samples[(int)channel]!;
+            allSteps[channel] = steps is not null && steps.TryGetValue(channel, out double step) ? step : Step(channel);
+        }
+
+        return new Waveform(TimeOrigin, SampleInterval, all, allSteps);
+    }
+
     /// <summary>Time of a (fractional) sample index, s.</summary>
     public double TimeAt(double index) => TimeOrigin + (index * SampleInterval);
 }
