@@ -4,7 +4,7 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Benches;
 
-/// <summary>Reads bench files. Never throws for what a file holds: every mistake is a problem, all of them at once.</summary>
+/// <summary>Reads bench files. Never throws for what a file holds: every mistake is a problem, all at once.</summary>
 public static class BenchFile
 {
     /// <summary>Reads a bench file.</summary>

@@ -1,18 +1,25 @@
+using BenchRunner.Acceptance.Dialects;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Schemas;
+using static BenchRunner.Acceptance.Schemas.Key;
+using static BenchRunner.Acceptance.Schemas.Shapes;
 
 namespace BenchRunner.Acceptance.Benches;
 
 /// <summary>The keys of a bench file: the one table behind reader, messages and schema.</summary>
 internal static class BenchKeys
 {
+    // The port's size is a rule besides.
+    private const string LinkPattern =
+        @"tcp ([A-Za-z0-9.-]{1,150}|\[[0-9A-Fa-f:.]{2,45}\])[: ][0-9]{1,5}|serial [^ ]{1,150}( [1-9][0-9]{1,6})?";
+
     private static readonly BlockShape _fake = new(
         "The fake bench that run starts; left out: instruments that are there.",
         [
-            Key.Needed("seed", new WholeShape("Seed of spread, noise and jitter.", 0, int.MaxValue)),
-            Key.Optional("pace", new QuantityShape(
-                "How much faster charging and bleeding components are than a lab's.", "1", new Bounds(1, 5))),
-            Key.Optional("faults", new ListShape(
+            Needed("seed", new WholeShape("Seed of spread, noise and jitter.", 0, int.MaxValue, 1)),
+            Optional("pace", new QuantityShape(
+                "How much faster charging and bleeding components are than a lab's.", "1", new Bounds(1, 5), "5")),
+            Optional("faults", new ListShape(
                 "Faults to inject.",
                 new TextShape(
                     "A fault, and when.",
@@ -22,98 +29,104 @@ internal static class BenchKeys
                 "fault")),
         ]);
 
+    private static readonly BlockShape _roles = new(
+        "The instruments by their role.",
+        [
+            Needed("supply", Role("Charges the bus.", "generic-supply")),
+            Needed("pulser", Role("Fires the pulse trains.", "generic-pulser")),
+            Needed("scope", Role("Records the channels.", "generic-scope")),
+            Needed("voltmeter", Role("Measures the bank, whatever the supply says.", "generic-voltmeter", hasPlace: true)),
+            Needed("interlock", Role("Loop, emergency stop, bleeder relay.", "generic-interlock")),
+        ]);
+
+    private static readonly BlockShape _load = new(
+        "The load inductor.",
+        [
+            Needed("inductance", Positive("Inductance.", "H", "120 uH")),
+            Needed("resistance", NotNegative("Resistance.", "Ohm", "50 mOhm")),
+            Optional("to", new WordShape(
+                "The rail it goes to; positive (the default): the low switch fires.", ["positive", "negative"])),
+        ]);
+
+    private static readonly BlockShape _bus = new(
+        "The capacitor bank.",
+        [
+            Needed("capacitance", Positive("Capacitance.", "F", "50 uF")),
+            Needed("bleeder", Positive("What the interlock's relay connects across the bank.", "Ohm", "25 kOhm")),
+            Optional("empty-socket", NotNegative("Current that the bench draws with an empty socket.", "A", "0.1 mA")),
+        ]);
+
+    private static readonly BlockShape _scope = new(
+        "What the scope can do.",
+        [
+            Optional("bits", new WholeShape("Bits of its converter.", 6, 16, 12)),
+            Optional("fastest-interval", Time("Its shortest sample interval.", 1e-3, "1 ns")),
+            Optional("samples-at-most", new WholeShape(
+                "Its largest record, samples a channel.", 1000, 64_000_000, 1_000_000)),
+        ]);
+
+    private static readonly BlockShape _envelope = new(
+        "The hard ceiling of the bench; nothing goes above it.",
+        [
+            Needed("voltage", Positive("Highest bus voltage.", "V", "900 V")),
+            Needed("current", Positive("Highest load current.", "A", "120 A")),
+            Needed("energy", Positive("Highest energy in the bank.", "J", "10 J")),
+            Needed("pulse", Positive("Longest single pulse.", "s", "20 us")),
+        ]);
+
     /// <summary>The whole file.</summary>
     public static BlockShape Root { get; } = new(
         "Instruments and fixture of one bench.",
         [
             FormatReader.FormatKey,
-            Key.Needed("bench", new TextShape(
-                "Name of the bench.", "fake", Shapes.NamePattern, "a name of 1 to 64 letters, digits, '.', '_' or '-'")),
-            Key.Optional("fake", _fake),
-            Key.Needed("roles", new BlockShape(
-                "The instruments by their role.",
-                [
-                    Key.Needed("supply", Role("Charges the bus.")),
-                    Key.Needed("pulser", Role("Fires the pulse trains.")),
-                    Key.Needed("scope", Role("Records the channels.")),
-                    Key.Needed("voltmeter", Role("Measures the bank, independent of the supply.", hasPlace: true)),
-                    Key.Needed("interlock", Role("Loop, emergency stop, bleeder relay.")),
-                ])),
-            Key.Needed("exchange", new WordShape(
+            Needed("bench", Name("Name of the bench.", "cabinet-3")),
+            Optional("fake", _fake),
+            Needed("roles", _roles),
+            Needed("exchange", new WordShape(
                 "How devices are exchanged; none: one device, already in.", ["none", "by-hand"])),
-            Key.Needed("load", new BlockShape(
-                "The load inductor.",
-                [
-                    Key.Needed("inductance", new QuantityShape("Inductance.", "H", Bounds.Positive)),
-                    Key.Needed("resistance", new QuantityShape("Resistance.", "Ohm", Bounds.NotNegative)),
-                    Key.Optional("to", new WordShape(
-                        "The rail it goes to; positive (the default): the low switch fires.", ["positive", "negative"])),
-                ])),
-            Key.Needed("bus", new BlockShape(
-                "The capacitor bank.",
-                [
-                    Key.Needed("capacitance", new QuantityShape("Capacitance.", "F", Bounds.Positive)),
-                    Key.Needed("bleeder", new QuantityShape(
-                        "What the interlock's relay connects across the bank.", "Ohm", Bounds.Positive)),
-                    Key.Optional("empty-socket", new QuantityShape(
-                        "Current that the bench draws with an empty socket.", "A", Bounds.NotNegative)),
-                ])),
-            Key.Needed("supply", new BlockShape(
+            Needed("load", _load),
+            Needed("bus", _bus),
+            Needed("supply", new BlockShape(
                 "How the supply is used.",
-                [
-                    Key.Needed("charging-current", new QuantityShape("Its current limit while charging.", "A", Bounds.Positive)),
-                ])),
-            Key.Optional("scope", new BlockShape(
-                "What the scope can do.",
-                [
-                    Key.Optional("bits", new WholeShape("Bits of its converter.", 6, 16)),
-                    Key.Optional("fastest-interval", new QuantityShape(
-                        "Its shortest sample interval.", "s", new Bounds(0, 1e-3, LowIsIn: false))),
-                    Key.Optional("samples-at-most", new WholeShape("Its largest record, samples a channel.", 1000, 64_000_000)),
-                ])),
-            Key.Needed("loop", new BlockShape(
-                "The commutation loop.", [Key.Needed("inductance", new QuantityShape("Inductance.", "H", Bounds.Positive))])),
-            Key.Needed("gate-resistors", new BlockShape(
+                [Needed("charging-current", Positive("Its current limit while charging.", "A", "0.5 A"))])),
+            Optional("scope", _scope),
+            Needed("loop", new BlockShape(
+                "The commutation loop.", [Needed("inductance", Positive("Inductance.", "H", "34 nH"))])),
+            Needed("gate-resistors", new BlockShape(
                 "The gate resistors fitted.",
                 [
-                    Key.Needed("on", new QuantityShape("For turn-on.", "Ohm", Bounds.NotNegative)),
-                    Key.Needed("off", new QuantityShape("For turn-off.", "Ohm", Bounds.NotNegative)),
+                    Needed("on", NotNegative("For turn-on.", "Ohm", "4.7 Ohm")),
+                    Needed("off", NotNegative("For turn-off.", "Ohm", "2.2 Ohm")),
                 ])),
-            Key.Optional("high-side", Shapes.HighSide),
-            Key.Optional("shunt", Shapes.Shunt),
-            Key.Needed("channels", ChannelKeys.OfBench),
-            Key.Needed("envelope", new BlockShape(
-                "The hard ceiling of the bench; nothing goes above it.",
-                [
-                    Key.Needed("voltage", new QuantityShape("Highest bus voltage.", "V", Bounds.Positive)),
-                    Key.Needed("current", new QuantityShape("Highest load current.", "A", Bounds.Positive)),
-                    Key.Needed("energy", new QuantityShape("Highest energy in the bank.", "J", Bounds.Positive)),
-                    Key.Needed("pulse", new QuantityShape("Longest single pulse.", "s", Bounds.Positive)),
-                ])),
-            Key.Needed("ambient", new QuantityShape("Temperature of the room.", "degC", new Bounds(-40, 60))),
-            Key.Optional("cautions", new ListShape(
+            Optional("high-side", HighSide),
+            Optional("shunt", Shapes.Shunt),
+            Needed("channels", ChannelKeys.OfBench),
+            Needed("envelope", _envelope),
+            Needed("ambient", new QuantityShape("Temperature of the room.", "degC", new Bounds(-40, 60), "23 degC")),
+            Optional("cautions", new ListShape(
                 "The lab's own lines, shown with the cautions.",
                 new TextShape("A line.", "Hang the warning sign on the door."),
                 "line")),
-        ]);
+        ],
+        Sample: BlockShape.Shipped);
 
-    private static BlockShape Role(string meaning, bool hasPlace = false)
+    private static BlockShape Role(string meaning, string dialect, bool hasPlace = false)
     {
         Key[] keys =
         [
-            Key.Needed("link", new TextShape(
+            Needed("link", new TextShape(
                 "How it is reached.",
                 "tcp 192.168.1.20:5025",
-                InstrumentSetup.LinkPattern,
-                "a link: tcp HOST:PORT or serial DEVICE")),
-            Key.Needed("dialect", new TextShape(
+                LinkPattern,
+                "a link, tcp HOST:PORT or serial DEVICE [BAUD]")),
+            Needed("dialect", new TextShape(
                 "Name of its dialect file, without ending.",
-                "generic-supply",
-                Dialects.DialectReader.NamePattern,
-                "a name of lower-case letters, digits and '-'")),
-            Key.Optional("connections", new WholeShape("Clients that it serves at once; 1 where not stated.", 1, 16)),
+                dialect,
+                DialectReader.NamePattern,
+                DialectReader.NameWanted)),
+            Optional("connections", new WholeShape("Clients that it serves at once; 1 where not stated.", 1, 16, 2)),
         ];
-        Key place = Key.Needed("at", new WordShape(
+        Key place = Needed("at", new WordShape(
             "Where it measures; a run wants it at the bank.", ["bank", "supply", "device"]));
         return new BlockShape(meaning, hasPlace ? [.. keys, place] : keys);
     }

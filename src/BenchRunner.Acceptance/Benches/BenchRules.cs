@@ -8,6 +8,7 @@ namespace BenchRunner.Acceptance.Benches;
 internal static class BenchRules
 {
     private const string StartedTcp = "tcp 127.0.0.1:0";
+    private const string AutomaticSerial = "serial auto";
 
     /// <summary>Checks what is sound of a file.</summary>
     /// <param name="file">The file's values.</param>
@@ -23,7 +24,8 @@ internal static class BenchRules
         Fields channels = file.Block("channels");
         ChannelKeys.Check(channels, problems);
         Inputs(channels, problems);
-        foreach (string name in channels.Keys.Where(name => channels.Block(name).Text("probe") == "shunt" && !file.IsWritten("shunt")))
+        bool isDescribed = file.IsWritten("shunt");
+        foreach (string name in channels.Keys.Where(name => channels.Block(name).Text("probe") == "shunt" && !isDescribed))
         {
             problems.Add(new Problem(
                 channels.Block(name).Of("probe"),
@@ -40,14 +42,15 @@ internal static class BenchRules
             return;
         }
 
-        int port = link.StartsWith("tcp ", StringComparison.Ordinal)
-            ? int.Parse(link.AsSpan(link.LastIndexOf(':') + 1), NumberStyles.None, CultureInfo.InvariantCulture)
-            : -1;
-        bool isStarted = link is StartedTcp or InstrumentSetup.AutomaticSerial;
+        int? port = PortOf(link);
+        bool isStarted = link is StartedTcp or AutomaticSerial;
         if (port > ushort.MaxValue)
         {
             problems.Add(new Problem(
-                setup.Of("link"), $"the port of {role} is {port}", "a port from 1 to 65535", "correct it"));
+                setup.Of("link"),
+                $"the port of {role} is {port}",
+                $"a port from 1 to {ushort.MaxValue}",
+                "correct it"));
         }
         else if (isFake && !isStarted)
         {
@@ -55,10 +58,10 @@ internal static class BenchRules
             problems.Add(new Problem(
                 setup.Of("link"),
                 $"{role} of a fake bench is reached by {Shown.Quote(link)}",
-                $"'{StartedTcp}' or '{InstrumentSetup.AutomaticSerial}': run starts all its instruments",
+                $"'{StartedTcp}' or '{AutomaticSerial}', since run starts all its instruments",
                 "write that, or remove the block fake"));
         }
-        else if (!isFake && (port == 0 || link == InstrumentSetup.AutomaticSerial))
+        else if (!isFake && (port == 0 || link == AutomaticSerial))
         {
             problems.Add(new Problem(
                 setup.Of("link"),
@@ -67,6 +70,10 @@ internal static class BenchRules
                 "write its port or device, or add the block fake"));
         }
     }
+
+    private static int? PortOf(string link) => link.StartsWith("tcp ", StringComparison.Ordinal)
+        ? int.Parse(link.AsSpan(link.LastIndexOfAny([':', ' ']) + 1), NumberStyles.None, CultureInfo.InvariantCulture)
+        : null;
 
     private static void Inputs(Fields channels, List<Problem> problems)
     {

@@ -1,10 +1,11 @@
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Schemas;
 using BenchRunner.Signals.Traces;
+using static BenchRunner.Acceptance.Schemas.Shapes;
 
 namespace BenchRunner.Acceptance.Benches;
 
-/// <summary>The keys of a file's channels: all of them in a bench file, the stated errors alone where waveforms are analysed.</summary>
+/// <summary>The keys of a file's channels: all in a bench file, the stated errors alone in a settings file.</summary>
 internal static class ChannelKeys
 {
     private static readonly string[] _voltageProbes = ["ground-referenced", "differential", "isolated"];
@@ -25,37 +26,47 @@ internal static class ChannelKeys
             if (channel.Number("gain") == 0)
             {
                 problems.Add(new Problem(
-                    channel.Of("gain"), $"gain of {name} is 0", "what the record is larger by than the truth, e.g. 1", "state the gain"));
+                    channel.Of("gain"),
+                    $"gain of {name} is 0",
+                    "how much larger the record is than the truth",
+                    "state the gain, e.g. 1"));
             }
         }
     }
 
     private static BlockShape Channels(bool isBench) => new(
         "The recorded channels; recorded = gain · true + offset, late by skew.",
-        [.. ChannelNames.All.Select(channel => Key.Optional(channel.Name(), Channel(channel, isBench)))],
+        [.. ChannelNames.All.Select(channel => Key.Optional(channel.Name(), Of(channel, isBench)))],
         AtLeast: 1);
 
-    private static BlockShape Channel(Channel channel, bool isBench)
+    private static BlockShape Of(Channel channel, bool isBench)
     {
         string unit = channel.Unit();
-        var uncertainty = new BlockShape(
-            "Standard uncertainties of the stated errors; none of them is zero.",
-            [
-                Key.Needed("gain", new QuantityShape("Of the gain, relative.", "1", new Bounds(0, 0.5, LowIsIn: false))),
-                Key.Needed("offset", new QuantityShape("Of the offset.", unit, Bounds.Positive)),
-                Key.Needed("skew", new QuantityShape("Of the skew.", "s", Bounds.Positive)),
-            ]);
+        bool isVoltage = unit == "V";
         return new BlockShape(
-            unit == "V" ? "A voltage." : "A current, positive into the drain.",
+            isVoltage ? "A voltage." : "A current, positive into the drain.",
             [
-                new Key("scope", new WholeShape("The scope's own channel number.", 1, 64), isBench),
+                new Key("scope", new WholeShape("The scope's own channel number.", 1, 64, 1), isBench),
+                new Key("probe", new WordShape("Kind of probe.", isVoltage ? _voltageProbes : _currentProbes), isBench),
+                Key.Optional("rating", Positive("Most that the probe bears.", unit, isVoltage ? "1500 V" : "200 A")),
+                new Key("gain", new QuantityShape("Stated gain; 1: none.", "1", Bounds.Any, "1"), isBench),
+                Key.Optional("offset", new QuantityShape(
+                    "Stated offset; left out: not known.", unit, Bounds.Any, $"0 {unit}")),
                 new Key(
-                    "probe", new WordShape("Kind of probe.", unit == "V" ? _voltageProbes : _currentProbes), isBench),
-                Key.Optional("rating", new QuantityShape("Most that the probe bears.", unit, Bounds.Positive)),
-                new Key("gain", new QuantityShape("Stated gain; 1: none.", "1", Bounds.Any), isBench),
-                Key.Optional("offset", new QuantityShape("Stated offset; left out: not known.", unit, Bounds.Any)),
-                new Key("skew", new QuantityShape("Stated delay; positive: late.", "s", new Bounds(-1e-6, 1e-6)), isBench),
-                new Key("uncertainty", uncertainty, isBench),
-            ]);
+                    "skew",
+                    new QuantityShape("Stated delay; positive: late.", "s", new Bounds(-1e-6, 1e-6), "0 s"),
+                    isBench),
+                new Key("uncertainty", Uncertainty(unit), isBench),
+            ],
+            Sample: isBench ? null : "{ gain: 1.013, skew: 4.6 ns }");
     }
+
+    private static BlockShape Uncertainty(string unit) => new(
+        "Standard uncertainties of the stated errors; none of them is zero.",
+        [
+            Key.Needed("gain", new QuantityShape(
+                "Of the gain, relative.", "1", new Bounds(0, 0.5, LowIsIn: false), "0.5 %")),
+            Key.Needed("offset", Positive("Of the offset.", unit, $"100 m{unit}")),
+            Key.Needed("skew", Time("Of the skew.", 1e-6, "200 ps")),
+        ]);
 }

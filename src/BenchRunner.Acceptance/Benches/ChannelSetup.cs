@@ -6,7 +6,8 @@ namespace BenchRunner.Acceptance.Benches;
 /// <summary>One recorded channel: scope input, probe, stated errors and their standard uncertainties.</summary>
 /// <param name="Channel">What it sees.</param>
 /// <param name="Input">The scope's channel number, from 1.</param>
-/// <param name="Probe">Kind of probe: <c>ground-referenced differential isolated shunt coil transformer clamp</c>.</param>
+/// <param name="Probe">Kind of probe: <c>ground-referenced</c>, <c>differential</c>, <c>isolated</c>, <c>shunt</c>,
+/// <c>coil</c>, <c>transformer</c> or <c>clamp</c>.</param>
 /// <param name="Rating">Highest voltage (or current) of the probe, V or A; null: not stated.</param>
 /// <param name="Gain">Stated gain: recorded = gain · true + offset.</param>
 /// <param name="Offset">Stated offset, V or A; null: not stated.</param>

@@ -13,7 +13,7 @@ internal sealed partial record CommandShape(RoleOperation Operation) : Shape("")
     private const string Channel = "{channel}";
 
     /// <inheritdoc/>
-    public override string Expected => "one command of printable ASCII without ';'";
+    public override string Expected => "one command of printable ASCII and no semicolon";
 
     /// <inheritdoc/>
     public override string Example => $"'SUBSystem:COMMand{(Operation.IsQuery ? "?" : "")}"
@@ -40,7 +40,10 @@ internal sealed partial record CommandShape(RoleOperation Operation) : Shape("")
             if (other.Value is not (Value or Channel))
             {
                 problems.Add(new Problem(
-                    node.Where, $"{label} has {Shown.Quote(other.Value)}", $"no braces but {Value} and {Channel}", "correct it"));
+                    node.Where,
+                    $"{label} has {Shown.Quote(other.Value)}",
+                    $"no braces but {Value} and {Channel}",
+                    "correct it"));
             }
         }
 
@@ -49,7 +52,9 @@ internal sealed partial record CommandShape(RoleOperation Operation) : Shape("")
             problems.Add(new Problem(
                 node.Where,
                 $"{label} is {Shown.Quote(scalar.Text)}",
-                Operation.IsQuery ? "a query, with a question mark" : "a command that answers nothing, without a question mark",
+                Operation.IsQuery
+                    ? "a query, with a question mark"
+                    : "a command that answers nothing, without a question mark",
                 Operation.IsQuery ? "add the question mark" : "remove the question mark"));
         }
 
@@ -73,7 +78,8 @@ internal sealed partial record CommandShape(RoleOperation Operation) : Shape("")
     [GeneratedRegex(@"\{[^}]*\}?|\}")]
     private static partial Regex Braces();
 
-    private static void Placeholder(YamlScalar node, string label, string placeholder, bool isWanted, List<Problem> problems)
+    private static void Placeholder(
+        YamlScalar node, string label, string placeholder, bool isWanted, List<Problem> problems)
     {
         int count = Regex.Count(node.Text, Regex.Escape(placeholder));
         if (count == (isWanted ? 1 : 0))
@@ -84,7 +90,7 @@ internal sealed partial record CommandShape(RoleOperation Operation) : Shape("")
         problems.Add(new Problem(
             node.Where,
             $"{label} has {placeholder} {(count == 1 ? "once" : $"{count} times")}",
-            isWanted ? $"{placeholder} once" : $"no {placeholder}: there is none to put in",
+            isWanted ? $"{placeholder} once" : $"no {placeholder}, as there is none to put in",
             isWanted ? $"write {placeholder} where it belongs" : "remove it"));
     }
 }

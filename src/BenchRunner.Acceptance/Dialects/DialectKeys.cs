@@ -12,14 +12,16 @@ internal static class DialectKeys
         [
             FormatReader.FormatKey,
             Key.Needed("dialect", new TextShape(
-                "Name; the file has the same.", "generic-supply", DialectReader.NamePattern, "a name of lower-case letters, digits and '-'")),
+                "Name; the file has the same.", "generic-supply", DialectReader.NamePattern, DialectReader.NameWanted)),
             Key.Needed("role", new WordShape("The role.", [.. RoleOperations.All.Keys])),
-            Key.Optional("identity", new ExpressionShape("Regular expression that the whole answer to *IDN? must match.", "[^,]+,PS-[0-9]+,.*")),
+            Key.Optional("identity", new ExpressionShape(
+                "Regular expression that the whole answer to *IDN? must match.", "[^,]+,PS-[0-9]+,.*")),
             Key.Needed("commands", new ChosenShape(
                 "The command of each operation of the role.",
                 "role",
                 RoleOperations.All.ToDictionary(role => role.Key, role => (Shape)Commands(role.Value)))),
-        ]);
+        ],
+        Sample: BlockShape.Shipped);
 
     private static BlockShape Commands(IReadOnlyList<RoleOperation> operations) => new BlockShape(
         "", [.. operations.Select(operation => Key.Needed(operation.Name, new CommandShape(operation)))]);

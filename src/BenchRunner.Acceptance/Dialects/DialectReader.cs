@@ -3,11 +3,14 @@ using BenchRunner.Acceptance.Schemas;
 
 namespace BenchRunner.Acceptance.Dialects;
 
-/// <summary>Reads dialect files. Never throws for what a file holds: every mistake is a problem, all of them at once.</summary>
+/// <summary>Reads dialect files. Never throws for what a file holds: every mistake is a problem, all at once.</summary>
 public static class DialectReader
 {
-    /// <summary>What a dialect's name looks like: no separators, so that a name never leads out of its folder.</summary>
+    /// <summary>What a dialect's name looks like: no separators, so that none leads out of its folder.</summary>
     internal const string NamePattern = "[a-z0-9][a-z0-9-]{0,63}";
+
+    /// <summary>That pattern in words.</summary>
+    internal const string NameWanted = "a name of lower-case letters, digits and '-'";
 
     private const string Role = "dialect";
 
@@ -31,7 +34,7 @@ public static class DialectReader
         if (!Expression.Holds(NamePattern, name))
         {
             return new Read<DialectFile>(null, [new Problem(
-                where, $"the dialect is {Shown.Quote(name)}", "a name of lower-case letters, digits and '-'", "correct it")]);
+                where, $"the dialect is {Shown.Quote(name)}", NameWanted, "correct it")]);
         }
 
         foreach (string folder in folders)
@@ -45,7 +48,10 @@ public static class DialectReader
             if (LeadsOut(path, folder))
             {
                 return new Read<DialectFile>(null, [new Problem(
-                    where, $"the dialect {name} is a link to a file outside {folder}", "a file in that folder", "copy the file there")]);
+                    where,
+                    $"the dialect {name} is a link to a file outside {folder}",
+                    "a file in that folder",
+                    "copy the file there")]);
             }
 
             return OfRole(Read(path), name, role, where);
@@ -79,8 +85,8 @@ public static class DialectReader
             return false;
         }
 
-        string home = (Directory.ResolveLinkTarget(folder, returnFinalTarget: true) ?? new DirectoryInfo(folder)).FullName;
-        return Path.GetRelativePath(home, target.FullName) is var way
+        FileSystemInfo home = Directory.ResolveLinkTarget(folder, returnFinalTarget: true) ?? new DirectoryInfo(folder);
+        return Path.GetRelativePath(home.FullName, target.FullName) is var way
             && (way.StartsWith("..", StringComparison.Ordinal) || Path.IsPathRooted(way));
     }
 

@@ -1,6 +1,6 @@
 namespace BenchRunner.Acceptance.Events;
 
-/// <summary>Something that happened at the bench: an evidence row, a console line and a journal line are made of it.</summary>
+/// <summary>Something that happened at the bench: evidence row, console line and journal line are made of it.</summary>
 /// <param name="At">When, UTC.</param>
 /// <param name="Source">Who says so: <c>runner</c>, <c>watch</c>, <c>safe-state</c>, a role.</param>
 /// <param name="Severity">How much it matters.</param>

@@ -11,7 +11,7 @@ internal static class FormatReader
 
     /// <summary>The key that every file starts with.</summary>
     public static Key FormatKey { get; } =
-        Key.Needed("format", new WholeShape("Version of the format; stands first.", Format, Format));
+        Key.Needed("format", new WholeShape("Version of the format; stands first.", Format, Format, Format));
 
     /// <summary>Reads a file that is named by its path.</summary>
     /// <param name="role">What it is to the run, e.g. <c>sequence</c>.</param>
@@ -40,17 +40,22 @@ internal static class FormatReader
         if (root is not null && IsOurs(root, source, problems)
             && shape.Read(root, $"the {source.Role} file", null, problems) is Fields fields)
         {
-            check(fields, problems);
+            if (root is YamlMap { IsWhole: true })
+            {
+                check(fields, problems);
+            }
+
             if (problems.Count == 0)
             {
                 return new Read<T>(build(fields), []);
             }
         }
 
-        return new Read<T>(null, [.. problems.OrderBy(problem => problem.Where.Line).ThenBy(problem => problem.Where.Column)]);
+        return new Read<T>(
+            null, [.. problems.OrderBy(problem => problem.Where.Line).ThenBy(problem => problem.Where.Column)]);
     }
 
-    /// <summary>Whether the file's format is ours. Of a newer one nothing more is said: its keys are not known here.</summary>
+    /// <summary>Whether the format is ours. Of a newer one nothing more is said: its keys are not known here.</summary>
     private static bool IsOurs(YamlNode root, SourceFile source, List<Problem> problems)
     {
         if (root is not YamlMap map || map.Find("format") is not YamlScalar format)
@@ -58,7 +63,8 @@ internal static class FormatReader
             return true;
         }
 
-        if (int.TryParse(format.Text, NumberStyles.None, CultureInfo.InvariantCulture, out int number) && number > Format)
+        if (int.TryParse(format.Text, NumberStyles.None, CultureInfo.InvariantCulture, out int number)
+            && number > Format)
         {
             problems.Add(new Problem(
                 format.Where,
@@ -71,7 +77,10 @@ internal static class FormatReader
         if (map.Entries[0] is { Key: not "format" } first)
         {
             problems.Add(new Problem(
-                first.At, $"the first key is {Shown.Quote(first.Key)}", "format as the first key", "move format: 1 to the top"));
+                first.At,
+                $"the first key is {Shown.Quote(first.Key)}",
+                "format as the first key",
+                "move format: 1 to the top"));
         }
 
         return true;

@@ -6,9 +6,17 @@ internal static class Nearest
     /// <summary>Finds the nearest word.</summary>
     /// <param name="word">What was written.</param>
     /// <param name="known">The known words.</param>
-    /// <returns>The nearest, the first of several; null where none is near: more than a third of its letters differ.</returns>
+    /// <returns>
+    /// The nearest; of several one with the same first letter, which people rarely miss; null where none is near: more
+    /// than a third of its letters differ.
+    /// </returns>
     public static string? To(string word, IEnumerable<string> known)
     {
+        if (word.Length == 0)
+        {
+            return null;
+        }
+
         string? best = null;
         int least = int.MaxValue;
         foreach (string candidate in known)
@@ -20,9 +28,10 @@ internal static class Nearest
             }
 
             int distance = Distance(word.ToLowerInvariant().Replace('_', '-'), candidate.Replace('_', '-'));
-            if (distance <= bound && distance < least)
+            int rank = 2 * distance + (word[..1] == candidate[..1] ? 0 : 1);
+            if (distance <= bound && rank < least)
             {
-                least = distance;
+                least = rank;
                 best = candidate;
             }
         }

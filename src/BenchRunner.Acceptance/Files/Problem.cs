@@ -9,5 +9,6 @@ namespace BenchRunner.Acceptance.Files;
 public sealed record Problem(Place Where, string Found, string Expected, string Advice)
 {
     /// <summary>The message, one line: place: found; expected; advice.</summary>
-    public override string ToString() => $"{Where}: {Found}; expected {Expected}; {Advice}.";
+    public override string ToString() =>
+        $"{Where}: {Found}; expected {Expected}; {Advice}{(Advice.EndsWith('?') ? "" : ".")}";
 }

@@ -3,19 +3,17 @@ using System.Text;
 
 namespace BenchRunner.Acceptance.Files;
 
-/// <summary>Text from a file as a message may show it: short, on one line, without characters that act on a terminal.</summary>
+/// <summary>Text from a file as a message may show it: short, one line, nothing that acts on a terminal.</summary>
 internal static class Shown
 {
-    private const int Longest = 60;
-
     /// <summary>The text in quotation marks.</summary>
     public static string Quote(string text) => $"'{Cut(text)}'";
 
     /// <summary>The text, cut and with control and direction characters escaped.</summary>
-    public static string Cut(string text)
+    public static string Cut(string text, int longest = 60)
     {
         var shown = new StringBuilder();
-        foreach (char c in text.Length > Longest ? text[..Longest] : text)
+        foreach (char c in text.Length > longest ? text[..longest] : text)
         {
             if (Acts(c))
             {
@@ -27,7 +25,7 @@ internal static class Shown
             }
         }
 
-        return text.Length > Longest ? shown.Append('…').ToString() : shown.ToString();
+        return text.Length > longest ? shown.Append('…').ToString() : shown.ToString();
     }
 
     /// <summary>Whether a character can do something to a terminal, or cannot be seen.</summary>

@@ -2,10 +2,11 @@ using System.Globalization;
 
 namespace BenchRunner.Acceptance.Files;
 
-/// <summary>A value and its unit in one text: <c>400 V</c>, <c>3.3 uH</c>, <c>2 %</c>; read from files, written for people.</summary>
+/// <summary>A value and its unit in one text, read from files and written for people: <c>400 V</c>, <c>3.3 uH</c>.</summary>
 /// <remarks>
-/// Reading is exact: the unit's power of ten is put into the exponent of the decimal text before that becomes a double, so
-/// <c>3.3 uH</c> is 3.3E-06 and not 3.3 · 1E-06. Units: V A s Ohm H F J Hz C K degC K/W V/s A/s, a ratio without unit or in %.
+/// Reading is exact: the unit's power of ten is put into the exponent of the decimal text before that becomes a double,
+/// so <c>3.3 uH</c> is 3.3E-06 and not 3.3 · 1E-06. Units: V A s Ohm H F J Hz C K degC K/W V/s A/s; a ratio is without
+/// unit or in %.
 /// </remarks>
 public static class SiText
 {
@@ -32,7 +33,8 @@ public static class SiText
         if (mark >= 0)
         {
             // Bounded, so that the sum below cannot overflow; beyond it no double is finite.
-            if (!int.TryParse(text.AsSpan(mark + 1, end - mark - 1), NumberStyles.AllowLeadingSign, CultureInfo.InvariantCulture, out int written)
+            ReadOnlySpan<char> digits = text.AsSpan(mark + 1, end - mark - 1);
+            if (!int.TryParse(digits, NumberStyles.AllowLeadingSign, CultureInfo.InvariantCulture, out int written)
                 || Math.Abs((long)written) > 9999)
             {
                 return false;
@@ -42,8 +44,8 @@ public static class SiText
         }
 
         string mantissa = text[..(mark >= 0 ? mark : end)];
-        double parsed = double.Parse(
-            string.Create(CultureInfo.InvariantCulture, $"{mantissa}E{power}"), NumberStyles.Float, CultureInfo.InvariantCulture);
+        string shifted = string.Create(CultureInfo.InvariantCulture, $"{mantissa}E{power}");
+        double parsed = double.Parse(shifted, NumberStyles.Float, CultureInfo.InvariantCulture);
         if (!double.IsFinite(parsed))
         {
             return false;
@@ -54,11 +56,11 @@ public static class SiText
         return true;
     }
 
-    /// <summary>Writes a value with the SI prefix that leaves 1 to 999 before the point: <c>41.9 MHz</c>, <c>612 uJ</c>.</summary>
+    /// <summary>Writes a value with the SI prefix that leaves 1 to 999 before the point, e.g. <c>41.9 MHz</c>.</summary>
     /// <param name="value">The value in SI.</param>
     /// <param name="unit">Its SI unit; <c>1</c> for a ratio, which is written without.</param>
     /// <param name="digits">Significant digits, 1 to 17; zeros at the end of a fraction are left out.</param>
-    /// <returns>The text; <see cref="TryParse"/> reads it back to within the rounding where the value is finite.</returns>
+    /// <returns>The text; <see cref="TryParse"/> reads it back to within the rounding if the value is finite.</returns>
     /// <exception cref="ArgumentOutOfRangeException">Digits below 1 or above 17.</exception>
     public static string Format(double value, string unit, int digits = 4)
     {
@@ -72,7 +74,8 @@ public static class SiText
         }
 
         // d.dddE+eee: the rounding, and its carry, are done by the time the exponent is looked at.
-        string rounded = Math.Abs(value).ToString("E" + (digits - 1).ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+        string form = string.Create(CultureInfo.InvariantCulture, $"E{digits - 1}");
+        string rounded = Math.Abs(value).ToString(form, CultureInfo.InvariantCulture);
         int mark = rounded.IndexOf('E', StringComparison.Ordinal);
         string figures = rounded[..mark].Replace(".", "", StringComparison.Ordinal);
         int exponent = int.Parse(rounded.AsSpan(mark + 1), NumberStyles.AllowLeadingSign, CultureInfo.InvariantCulture);

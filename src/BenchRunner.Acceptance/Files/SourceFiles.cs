@@ -18,7 +18,8 @@ internal static class SourceFiles
             int length = stream.ReadAtLeast(bytes, bytes.Length, throwOnEndOfStream: false);
             return new SourceFile(role, path, bytes[..length]);
         }
-        catch (Exception wrong) when (wrong is IOException or UnauthorizedAccessException or ArgumentException or NotSupportedException)
+        catch (Exception wrong) when (wrong is IOException or UnauthorizedAccessException or ArgumentException
+            or NotSupportedException)
         {
             (string found, string advice) = wrong switch
             {

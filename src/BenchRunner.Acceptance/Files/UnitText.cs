@@ -5,8 +5,8 @@ internal static class UnitText
 {
     private static readonly (string Symbol, string Unit)[] _symbols =
     [
-        ("V", "V"), ("A", "A"), ("s", "s"), ("Ohm", "Ohm"), ("Ω", "Ohm"), ("Ω", "Ohm"), ("H", "H"), ("F", "F"), ("J", "J"),
-        ("Hz", "Hz"), ("C", "C"), ("K", "K"), ("K/W", "K/W"),
+        ("V", "V"), ("A", "A"), ("s", "s"), ("Ohm", "Ohm"), ("Ω", "Ohm"), ("Ω", "Ohm"), ("H", "H"), ("F", "F"),
+        ("J", "J"), ("Hz", "Hz"), ("C", "C"), ("K", "K"), ("K/W", "K/W"),
     ];
 
     private static readonly Dictionary<string, (string Name, string Example)> _names = new()
@@ -32,10 +32,12 @@ internal static class UnitText
     public static IReadOnlyCollection<string> All => _names.Keys;
 
     /// <summary>What a unit measures, with its article: <c>a voltage</c>.</summary>
-    public static string NameOf(string unit) => _names.TryGetValue(unit, out var known) ? known.Name : $"a value in {unit}";
+    public static string NameOf(string unit) =>
+        _names.TryGetValue(unit, out var known) ? known.Name : $"a value in {unit}";
 
     /// <summary>A value as it might be written, e.g. <c>250 ns</c>.</summary>
-    public static string ExampleOf(string unit) => _names.TryGetValue(unit, out var known) ? known.Example : $"1 {unit}";
+    public static string ExampleOf(string unit) =>
+        _names.TryGetValue(unit, out var known) ? known.Example : $"1 {unit}";
 
     /// <summary>The power of ten of a prefix; null where it is none. The empty prefix is 0.</summary>
     public static int? PowerOf(ReadOnlySpan<char> prefix) => prefix switch
@@ -74,7 +76,9 @@ internal static class UnitText
 
         // A slope: a voltage or a current over a time, each with its prefix.
         int slash = text.IndexOf('/');
-        if (slash > 0 && Simple(text[..slash]) is { Unit: "V" or "A" } above && Simple(text[(slash + 1)..]) is { Unit: "s" } below)
+        if (slash > 0
+            && Simple(text[..slash]) is { Unit: "V" or "A" } above
+            && Simple(text[(slash + 1)..]) is { Unit: "s" } below)
         {
             return (above.Unit + "/s", above.Power - below.Power);
         }
@@ -86,7 +90,8 @@ internal static class UnitText
     {
         foreach ((string symbol, string unit) in _symbols)
         {
-            if (text.EndsWith(symbol, StringComparison.Ordinal) && PowerOf(text.AsSpan(0, text.Length - symbol.Length)) is { } power)
+            if (text.EndsWith(symbol, StringComparison.Ordinal)
+                && PowerOf(text.AsSpan(0, text.Length - symbol.Length)) is { } power)
             {
                 return (unit, power);
             }

@@ -12,13 +12,15 @@ internal sealed record YamlScalar(string Text, bool Quoted, Place Where) : YamlN
 
 /// <summary>A list.</summary>
 /// <param name="Items">Its items as written.</param>
+/// <param name="IsWhole">Whether it was read to its end; false where the file breaks off in it.</param>
 /// <param name="Where">The place.</param>
-internal sealed record YamlList(IReadOnlyList<YamlNode> Items, Place Where) : YamlNode(Where);
+internal sealed record YamlList(IReadOnlyList<YamlNode> Items, bool IsWhole, Place Where) : YamlNode(Where);
 
 /// <summary>A block of keys; no key twice.</summary>
 /// <param name="Entries">Its entries as written.</param>
+/// <param name="IsWhole">Whether it was read to its end; false where the file breaks off in it.</param>
 /// <param name="Where">The place.</param>
-internal sealed record YamlMap(IReadOnlyList<YamlEntry> Entries, Place Where) : YamlNode(Where)
+internal sealed record YamlMap(IReadOnlyList<YamlEntry> Entries, bool IsWhole, Place Where) : YamlNode(Where)
 {
     /// <summary>The value of a key, or null.</summary>
     public YamlNode? Find(string key)

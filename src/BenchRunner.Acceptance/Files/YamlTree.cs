@@ -4,11 +4,11 @@ using YamlDotNet.Core.Events;
 
 namespace BenchRunner.Acceptance.Files;
 
-/// <summary>Reads the YAML that our files are made of into nodes with places: no aliases, anchors, tags or second document.</summary>
+/// <summary>Reads the YAML of our files into nodes with places: no aliases, anchors, tags or second document.</summary>
 /// <remarks>
-/// Over parser events, since a ready-made tree stops at the first duplicate key, and keeps no place for a key. Never throws,
-/// whatever the bytes: what the parser cannot read becomes a problem. The depth is bounded as the parser's own cost grows
-/// with its square.
+/// Over parser events, since a ready-made tree stops at the first duplicate key, and keeps no place for a key. Never
+/// throws, whatever the bytes: what the parser cannot read becomes a problem. The depth is bounded as the parser's own
+/// cost grows with its square.
 /// </remarks>
 internal sealed class YamlTree
 {
@@ -17,6 +17,8 @@ internal sealed class YamlTree
 
     /// <summary>Largest file, bytes; the largest of ours has 8 kB.</summary>
     public const int MaximumBytes = 256 * 1024;
+
+    private const string BrokenAdvice = "check indentation, quotes and brackets here";
 
     private readonly string _file;
     private readonly List<Problem> _problems;
@@ -84,7 +86,8 @@ internal sealed class YamlTree
         {
             if (_problems.Count == 0)
             {
-                Report(new Place(_file, 0, 0), "the file is empty", "a file with the keys of its kind", "write it, or name another file");
+                Report(
+                    new Place(_file, 1, 1), "the file is empty", "the keys of its kind", "write them or name another file");
             }
 
             return null;
@@ -98,7 +101,7 @@ internal sealed class YamlTree
 
         if (Current is DocumentStart second)
         {
-            Report(At(second.Start), "a second document starts here", "one document a file", "move it to a file of its own");
+            Report(At(second.Start), "a second document starts here", "one document a file", "move it to its own file");
         }
 
         return root;
@@ -109,14 +112,15 @@ internal sealed class YamlTree
         Place where = At(Current?.Start ?? Mark.Empty);
         if (depth > MaximumDepth)
         {
-            Report(where, $"the nesting is deeper than {MaximumDepth} levels", "the few levels of our files", "remove the brackets");
+            Report(where, $"the nesting is deeper than {MaximumDepth} levels", "a few levels", "take levels out");
             _ended = true;
             return new YamlBroken(where);
         }
 
         if (Current is AnchorAlias alias)
         {
-            Report(where, $"the alias *{Shown.Cut(alias.Value.Value)}", "plain values, no aliases", "write the value itself");
+            string name = Shown.Cut(alias.Value.Value);
+            Report(where, $"the alias *{name}", "plain values, no aliases", "write the value itself");
             Advance();
             return new YamlBroken(where);
         }
@@ -146,8 +150,9 @@ internal sealed class YamlTree
 
         if (!node.Tag.IsEmpty)
         {
-            string tag = node.Tag.IsNonSpecific ? "!" : node.Tag.Value;
-            Report(where, $"the tag {Shown.Cut(tag)}", "plain values, no tags or includes", "remove it and write the value itself");
+            const string core = "tag:yaml.org,2002:";
+            string tag = node.Tag.IsNonSpecific ? "!" : node.Tag.Value.Replace(core, "!!", StringComparison.Ordinal);
+            Report(where, $"the tag {Shown.Cut(tag)}", "plain values, no tags or includes", "write the value itself");
         }
 
         return node.Anchor.IsEmpty && node.Tag.IsEmpty;
@@ -169,8 +174,9 @@ internal sealed class YamlTree
             items.Add(Node(depth + 1));
         }
 
+        bool isWhole = Current is not null;
         Advance();
-        return new YamlList(items, where);
+        return new YamlList(items, isWhole, where);
     }
 
     private YamlMap Entries(Place where, int depth)
@@ -209,8 +215,9 @@ internal sealed class YamlTree
             }
         }
 
+        bool isWhole = Current is not null;
         Advance();
-        return new YamlMap(entries, where);
+        return new YamlMap(entries, isWhole, where);
     }
 
     /// <summary>Moves to the next event; the first thing that the parser cannot read ends the file.</summary>
@@ -228,15 +235,15 @@ internal sealed class YamlTree
         catch (YamlException wrong)
         {
             _ended = true;
-            Report(At(wrong.Start), $"no YAML ({Shown.Cut(wrong.Message)})", "YAML", "check indentation, quotes and brackets here");
+            Report(At(wrong.Start), $"no YAML ({Shown.Cut(wrong.Message, 120)})", "YAML", BrokenAdvice);
         }
-        catch (Exception wrong) when (wrong is InvalidOperationException or ArgumentException or IndexOutOfRangeException
-            or FormatException or OverflowException)
+        catch (Exception wrong) when (wrong is InvalidOperationException or ArgumentException
+            or IndexOutOfRangeException or FormatException or OverflowException)
         {
             // The scanner's own slips on broken input; it says no place, so the last one stands.
             Mark last = _parser.Current?.End ?? Mark.Empty;
             _ended = true;
-            Report(At(last), "no YAML from here on", "YAML", "check indentation, quotes and brackets here");
+            Report(At(last), "no YAML from here on", "YAML", BrokenAdvice);
         }
     }
 

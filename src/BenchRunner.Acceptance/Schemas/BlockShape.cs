@@ -7,20 +7,32 @@ namespace BenchRunner.Acceptance.Schemas;
 /// <param name="Meaning">What it means.</param>
 /// <param name="Keys">The keys, in the order in which they are usually written.</param>
 /// <param name="AtLeast">The fewest keys, where none is required by itself.</param>
-internal sealed record BlockShape(string Meaning, IReadOnlyList<Key> Keys, int AtLeast = 0) : Shape(Meaning)
+/// <param name="Sample">The block as it might be written; null: the keys that are required.</param>
+internal sealed record BlockShape(string Meaning, IReadOnlyList<Key> Keys, int AtLeast = 0, string? Sample = null)
+    : Shape(Meaning)
 {
-    /// <inheritdoc/>
-    public override string Expected => Keys.Count <= 6
-        ? $"a block with the keys {string.Join(", ", Keys.Select(key => key.Name))}"
-        : $"a block with keys such as {string.Join(", ", Keys.Take(4).Select(key => key.Name))}";
+    /// <summary>The sample of whole files, which are too long for a message.</summary>
+    public const string Shipped = "the examples in sequences/";
 
     /// <inheritdoc/>
-    public override string Example => $"{{ {Keys[0].Name}: {Keys[0].Shape.Example} }}";
+    public override string Expected => AtLeast > 0
+        ? $"a block with at least {AtLeast} of the keys {Names}"
+        : Keys.Count <= 6
+            ? $"a block with the keys {Names}"
+            : $"a block that starts with {Keys[0].Name}: {Keys[0].Shape.Example}";
+
+    /// <inheritdoc/>
+    public override string Example => Sample ?? $"{{ {string.Join(
+        ", ",
+        Keys.Where(key => key.IsRequired || AtLeast > 0).Take(AtLeast > 0 ? AtLeast : int.MaxValue)
+            .Select(key => $"{key.Name}: {key.Shape.Example}"))} }}";
+
+    private string Names => string.Join(", ", Keys.Select(key => key.Name));
 
     /// <inheritdoc/>
     public override object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems)
     {
-        if (node is not YamlMap map || map.Entries.Count < AtLeast)
+        if (node is not YamlMap map || (map.IsWhole && map.Entries.Count < AtLeast))
         {
             Refuse(node, label, problems);
             return null;
@@ -45,10 +57,14 @@ internal sealed record BlockShape(string Meaning, IReadOnlyList<Key> Keys, int A
         }
 
         // A key that is missing because it was misspelt has been named already.
-        foreach (Key key in Keys.Where(key => key.IsRequired && map.Find(key.Name) is null && !meant.Contains(key.Name)))
+        foreach (Key key in Keys.Where(key => key.IsRequired && map.IsWhole
+            && map.Find(key.Name) is null && !meant.Contains(key.Name)))
         {
             problems.Add(new Problem(
-                map.Where, $"{label} has no key {key.Name}", key.Shape.Expected, $"add {key.Name}: {key.Shape.Example}"));
+                map.Where,
+                $"{label} has no key {key.Name}",
+                key.Shape.Expected,
+                $"add {key.Name}: {key.Shape.Example}"));
         }
 
         return fields;
@@ -72,7 +88,8 @@ internal sealed record BlockShape(string Meaning, IReadOnlyList<Key> Keys, int A
         {
             ["type"] = "object",
             ["properties"] = properties,
-            ["required"] = new JsonArray([.. Keys.Where(key => key.IsRequired).Select(key => JsonValue.Create(key.Name))]),
+            ["required"] = new JsonArray(
+                [.. Keys.Where(key => key.IsRequired).Select(key => JsonValue.Create(key.Name))]),
             ["additionalProperties"] = false,
         };
         if (AtLeast > 0)
@@ -95,7 +112,7 @@ internal sealed record BlockShape(string Meaning, IReadOnlyList<Key> Keys, int A
         problems.Add(new Problem(
             entry.At,
             $"{Shown.Quote(entry.Key)} is no key of {label}",
-            $"one of {string.Join(", ", Keys.Select(key => key.Name))}",
+            near is null ? $"one of {Names}" : "one of its keys",
             near is null ? "remove it or write one of these" : $"did you mean {near}?"));
         return near;
     }

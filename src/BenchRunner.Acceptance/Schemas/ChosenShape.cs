@@ -3,11 +3,12 @@ using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Acceptance.Schemas;
 
-/// <summary>A value whose shape another key of the same block chooses: a limit's unit by its quantity, commands by their role.</summary>
+/// <summary>A value whose shape another key of its block chooses: a limit's unit by quantity, commands by role.</summary>
 /// <param name="Meaning">What it means.</param>
 /// <param name="By">The key that chooses.</param>
 /// <param name="Shapes">That key's words and the shape that each chooses.</param>
-internal sealed record ChosenShape(string Meaning, string By, IReadOnlyDictionary<string, Shape> Shapes) : Shape(Meaning)
+internal sealed record ChosenShape(string Meaning, string By, IReadOnlyDictionary<string, Shape> Shapes)
+    : Shape(Meaning)
 {
     /// <inheritdoc/>
     public override string Expected => $"what the key {By} asks for";

@@ -17,7 +17,8 @@ internal sealed record ExpressionShape(string Meaning, string Sample) : Shape(Me
     /// <inheritdoc/>
     public override object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems)
     {
-        if (node is YamlScalar { Text.Length: > 0 and <= TextShape.Longest } scalar && Expression.Of(scalar.Text) is not null)
+        if (node is YamlScalar { Text.Length: > 0 and <= TextShape.Longest } scalar
+            && Expression.Of(scalar.Text) is not null)
         {
             return scalar.Text;
         }

@@ -11,15 +11,15 @@ namespace BenchRunner.Acceptance.Schemas;
 internal sealed record ListShape(string Meaning, Shape Item, string ItemName, int AtLeast = 0) : Shape(Meaning)
 {
     /// <inheritdoc/>
-    public override string Expected => AtLeast == 0 ? $"a list ({ItemName} by {ItemName})" : $"a list of at least {AtLeast} {ItemName}";
+    public override string Expected => AtLeast == 0 ? "a list" : $"a list of at least {AtLeast} {ItemName}";
 
     /// <inheritdoc/>
-    public override string Example => Item is BlockShape ? $"'- {Item.Example}'" : $"['{Item.Example}']";
+    public override string Example => $"[{Item.Example}]";
 
     /// <inheritdoc/>
     public override object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems)
     {
-        if (node is not YamlList list || list.Items.Count < AtLeast)
+        if (node is not YamlList list || (list.IsWhole && list.Items.Count < AtLeast))
         {
             Refuse(node, label, problems);
             return null;

@@ -9,7 +9,7 @@ namespace BenchRunner.Acceptance.Schemas;
 /// <param name="Range">The range of each.</param>
 internal sealed record PairShape(string Meaning, string Unit, Bounds Range) : Shape(Meaning)
 {
-    private QuantityShape One => new("", Unit, Range);
+    private QuantityShape One => new("", Unit, Range, UnitText.ExampleOf(Unit));
 
     /// <inheritdoc/>
     public override string Expected => $"a list of two, {UnitText.NameOf(Unit)} and a higher one";

@@ -7,14 +7,17 @@ namespace BenchRunner.Acceptance.Schemas;
 /// <param name="Meaning">What it means.</param>
 /// <param name="Unit">The SI unit wanted; <c>1</c> for a ratio.</param>
 /// <param name="Range">The range.</param>
+/// <param name="Sample">A value as it might be written.</param>
 /// <param name="Word">A word that may stand in place of a value (<c>ambient</c>); null: none.</param>
-internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, string? Word = null) : Shape(Meaning)
+internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, string Sample, string? Word = null)
+    : Shape(Meaning)
 {
     /// <inheritdoc/>
-    public override string Expected => UnitText.NameOf(Unit) + Range.Words(Unit) + (Word is null ? "" : $", or {Word}");
+    public override string Expected =>
+        UnitText.NameOf(Unit) + Range.Words(Sample.EndsWith('%') ? "%" : Unit) + (Word is null ? "" : $", or {Word}");
 
     /// <inheritdoc/>
-    public override string Example => Fitting();
+    public override string Example => Sample;
 
     /// <inheritdoc/>
     public override object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems)
@@ -78,16 +81,4 @@ internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, 
     };
 
     private static string Pattern(string unit) => $"^[+-]?([0-9]+(\\.[0-9]*)?|\\.[0-9]+)([eE][+-]?[0-9]+)? *{unit}$";
-
-    private string Fitting()
-    {
-        string usual = UnitText.ExampleOf(Unit);
-        if (SiText.TryParse(usual, out double value, out _) && Range.Hold(value))
-        {
-            return usual;
-        }
-
-        double inside = double.IsFinite(Range.High) ? Range.High : Range.Low;
-        return SiText.Format(inside, Unit, 6);
-    }
 }

@@ -43,8 +43,8 @@ internal abstract record Shape(string Meaning)
         {
             YamlScalar { Text: "", Quoted: false } => $"{label} is empty",
             YamlScalar scalar => $"{label} is {Shown.Quote(scalar.Text)}",
-            YamlList => $"{label} is a list",
-            YamlMap => $"{label} is a block",
+            YamlList { IsWhole: true } list => $"{label} is {(list.Items.Count == 0 ? "an empty list" : "a list")}",
+            YamlMap { IsWhole: true } map => $"{label} is {(map.Entries.Count == 0 ? "an empty block" : "a block")}",
             _ => null,
         };
         if (found is not null)

@@ -1,4 +1,5 @@
 using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Acceptance.Schemas;
 
@@ -29,49 +30,67 @@ internal static class Shapes
 
     /// <summary>Position of the device.</summary>
     public static WordShape Position { get; } = new(
-        "Place of the device in the half bridge: low or high fires, both is one module in both places.", [.. Positions.Keys]);
+        "Place of the device in the half bridge: low or high fires, both is one module in both places.",
+        [.. Positions.Keys]);
 
     /// <summary>Definitions in place of the defaults.</summary>
     public static BlockShape Definitions { get; } = new(
         "Definition IDs in place of the defaults, by quantity.",
-        [.. KnownQuantities.Names.Select(name => Key.Optional(name, DefinitionOf(name)))]);
+        [.. QuantityCatalogue.All.Select(quantity => Key.Optional(quantity.Name, new DefinitionShape(quantity)))],
+        Sample: "{ qrr: qrr/fall-10 }");
 
     /// <summary>Integration time of a recovered charge.</summary>
-    public static QuantityShape IntegrationTime { get; } =
-        new("Time from the zero crossing over which qrr/window is integrated.", "s", new Bounds(0, 1e-3, LowIsIn: false));
+    public static QuantityShape IntegrationTime { get; } = Time(
+        "Time from the zero crossing over which qrr/window is integrated.", 1e-3, "100 ns");
 
     /// <summary>The current shunt.</summary>
     public static BlockShape Shunt { get; } = new(
         "The current shunt; its inductance is undone before anything is measured.",
         [
-            Key.Needed("resistance", new QuantityShape("Resistance.", "Ohm", Bounds.Positive)),
-            Key.Needed("inductance", new QuantityShape("Series inductance; 0 H: nothing to undo.", "H", Bounds.NotNegative)),
+            Key.Needed("resistance", Positive("Resistance.", "Ohm", "5 mOhm")),
+            Key.Needed("inductance", NotNegative("Series inductance; 0 H: nothing to undo.", "H", "200 pH")),
         ]);
 
     /// <summary>The high side.</summary>
     public static BlockShape HighSide { get; } = new(
         "The high side.",
         [
-            Key.Needed("gate-threshold", new QuantityShape("Gate voltage above which a false turn-on is found.", "V", Bounds.Any)),
+            Key.Needed("gate-threshold", new QuantityShape(
+                "Gate voltage above which a false turn-on is found.", "V", new Bounds(-50, 50), "0.5 V")),
         ]);
 
     /// <summary>A quantity of the catalogue.</summary>
-    public static WordShape Quantity { get; } = new("The quantity.", KnownQuantities.Names);
+    public static WordShape QuantityName { get; } = new(
+        "The quantity.",
+        [.. QuantityCatalogue.All.Select(quantity => quantity.Name)],
+        "a quantity as 'benchrunner quantities' lists them");
 
-    /// <summary>The definition IDs of a quantity.</summary>
-    public static Shape DefinitionOf(string quantity) =>
-        new WordShape($"Definition of {quantity}.", KnownQuantities.DefinitionsOf(quantity));
+    /// <summary>A shape for each quantity of the catalogue.</summary>
+    public static Dictionary<string, Shape> ByQuantity(Func<Quantity, Shape> shape) =>
+        QuantityCatalogue.All.ToDictionary(quantity => quantity.Name, shape);
 
-    /// <summary>A shape for each quantity, by its unit.</summary>
-    public static Dictionary<string, Shape> ByQuantity(Func<string, Shape> shape) =>
-        KnownQuantities.Names.ToDictionary(name => name, name => shape(KnownQuantities.UnitOf(name)));
+    /// <summary>A name that may end up in a path.</summary>
+    public static TextShape Name(string meaning, string sample) =>
+        new(meaning, sample, NamePattern, "a name of 1 to 64 letters, digits, '.', '_' or '-'");
 
-    /// <summary>The shunt of a block that has no problem; null where there is none.</summary>
+    /// <summary>A value above zero.</summary>
+    public static QuantityShape Positive(string meaning, string unit, string sample) =>
+        new(meaning, unit, Bounds.Positive, sample);
+
+    /// <summary>A value of zero or more.</summary>
+    public static QuantityShape NotNegative(string meaning, string unit, string sample) =>
+        new(meaning, unit, Bounds.NotNegative, sample);
+
+    /// <summary>A time above zero.</summary>
+    public static QuantityShape Time(string meaning, double most, string sample) =>
+        new(meaning, "s", new Bounds(0, most, LowIsIn: false), sample);
+
+    /// <summary>The shunt of a file that has no problem; null where there is none.</summary>
     public static Shunt? ShuntOf(Fields file) => file.IsWritten("shunt")
         ? new Shunt(file.Block("shunt").Need("resistance"), file.Block("shunt").Need("inductance"))
         : null;
 
-    /// <summary>The definitions of a block that has no problem.</summary>
+    /// <summary>The definitions of a file that has no problem.</summary>
     public static Dictionary<string, string> DefinitionsIn(Fields file)
     {
         Fields block = file.Block("definitions");

@@ -16,7 +16,7 @@ internal sealed record TextShape(string Meaning, string Sample, string? Pattern 
     public const int Longest = 200;
 
     /// <inheritdoc/>
-    public override string Expected => Wanted ?? $"a line of 1 to {Longest} characters";
+    public override string Expected => Wanted ?? $"a line of 1 to {Longest} visible characters";
 
     /// <inheritdoc/>
     public override string Example => Sample;

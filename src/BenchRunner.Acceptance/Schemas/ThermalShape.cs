@@ -10,8 +10,8 @@ internal sealed record ThermalShape(string Meaning) : Shape(Meaning)
 {
     private const string Steady = "steady";
 
-    private static readonly QuantityShape _impedance = new("", "K/W", Bounds.Positive);
-    private static readonly QuantityShape _time = new("", "s", Bounds.Positive, Steady);
+    private static readonly QuantityShape _impedance = new("", "K/W", Bounds.Positive, "0.03 K/W");
+    private static readonly QuantityShape _time = new("", "s", Bounds.Positive, "1 ms", Steady);
 
     /// <inheritdoc/>
     public override string Expected => "a block of rising times with rising impedances, the last one steady";

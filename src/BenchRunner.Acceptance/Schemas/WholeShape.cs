@@ -8,13 +8,14 @@ namespace BenchRunner.Acceptance.Schemas;
 /// <param name="Meaning">What it means.</param>
 /// <param name="Low">The least.</param>
 /// <param name="High">The largest.</param>
-internal sealed record WholeShape(string Meaning, int Low, int High) : Shape(Meaning)
+/// <param name="Sample">A number as it might be written.</param>
+internal sealed record WholeShape(string Meaning, int Low, int High, int Sample) : Shape(Meaning)
 {
     /// <inheritdoc/>
-    public override string Expected => $"a whole number from {Low} to {High}";
+    public override string Expected => Low == High ? $"the number {Low}" : $"a whole number from {Low} to {High}";
 
     /// <inheritdoc/>
-    public override string Example => Math.Clamp(5, Low, High).ToString(CultureInfo.InvariantCulture);
+    public override string Example => Sample.ToString(CultureInfo.InvariantCulture);
 
     /// <inheritdoc/>
     public override object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems)

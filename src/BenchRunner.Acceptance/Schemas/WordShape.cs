@@ -6,10 +6,11 @@ namespace BenchRunner.Acceptance.Schemas;
 /// <summary>One of some words.</summary>
 /// <param name="Meaning">What it means.</param>
 /// <param name="Words">The words.</param>
-internal sealed record WordShape(string Meaning, IReadOnlyList<string> Words) : Shape(Meaning)
+/// <param name="Wanted">What messages say in place of very many words; null: the words themselves.</param>
+internal sealed record WordShape(string Meaning, IReadOnlyList<string> Words, string? Wanted = null) : Shape(Meaning)
 {
     /// <inheritdoc/>
-    public override string Expected => Words.Count == 1 ? $"the word {Words[0]}" : Shown.Or(Words);
+    public override string Expected => Wanted ?? (Words.Count == 1 ? $"the word {Words[0]}" : Shown.Or(Words));
 
     /// <inheritdoc/>
     public override string Example => Words[0];
@@ -34,5 +35,7 @@ internal sealed record WordShape(string Meaning, IReadOnlyList<string> Words) : 
 
     /// <inheritdoc/>
     protected override string Advice(YamlNode node) =>
-        node is YamlScalar scalar && Nearest.To(scalar.Text, Words) is { } near ? $"did you mean {near}?" : "write one of them";
+        node is YamlScalar scalar && Nearest.To(scalar.Text, Words) is { } near
+            ? $"did you mean {near}?"
+            : Words.Count == 1 ? "write that word" : "write one of them";
 }

@@ -3,7 +3,7 @@ using BenchRunner.Acceptance.Schemas;
 
 namespace BenchRunner.Acceptance.Sequences;
 
-/// <summary>Reads sequence files. Never throws for what a file holds: every mistake is a problem, all of them at once.</summary>
+/// <summary>Reads sequence files. Never throws for what a file holds: every mistake is a problem, all at once.</summary>
 public static class SequenceFile
 {
     /// <summary>Reads a sequence file.</summary>
@@ -42,7 +42,7 @@ public static class SequenceFile
             Decision = Decision(file.Block("decision")),
             Attempts = file.Whole("attempts") ?? Sequence.UsualAttempts,
             Definitions = Shapes.DefinitionsIn(file),
-            IntegrationTime = file.Number("integration-time"),
+            IntegrationTime = IntegrationTimes.Of(file, file.Blocks("limits")),
             Keys = file.Places(),
             Source = source,
         };

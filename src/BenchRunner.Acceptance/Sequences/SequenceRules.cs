@@ -16,12 +16,13 @@ internal static class SequenceRules
         Points(file, problems);
         Limits(file, problems);
         Captures(file.Block("captures"), problems);
+        IntegrationTimes.Check(file, file.Blocks("limits"), problems);
         if (file.Text("position") == "both" && file.IsWritten("companion"))
         {
             problems.Add(new Problem(
                 file.KeyOf("companion"),
                 "companion stands beside position both",
-                "a companion for position low or high alone: a module fills both places",
+                "a companion for position low or high alone, as a module fills both places",
                 "remove it or change the position"));
         }
     }
@@ -106,7 +107,7 @@ internal static class SequenceRules
                 limit.Where,
                 forms.Length == 0 ? "a limit has no bound" : $"a limit has {string.Join(" and ", forms)}",
                 "one of at-most, at-least or between",
-                forms.Length == 0 ? "add one of them" : "keep one; for two bounds write between: [lower, upper]"));
+                forms.Length == 0 ? "add one of them" : "keep one, or write both as between: [lower, upper]"));
         }
     }
 

@@ -15,8 +15,14 @@ public static class SettingsFile
 
     /// <summary>Reads the bytes of a settings file.</summary>
     /// <param name="source">The file.</param>
-    public static Read<AnalysisSettings> Read(SourceFile source) => FormatReader.Read(
-        source, SettingsKeys.Root, (file, problems) => ChannelKeys.Check(file.Block("channels"), problems), Build);
+    public static Read<AnalysisSettings> Read(SourceFile source) =>
+        FormatReader.Read(source, SettingsKeys.Root, Check, Build);
+
+    private static void Check(Fields file, List<Problem> problems)
+    {
+        ChannelKeys.Check(file.Block("channels"), problems);
+        IntegrationTimes.Check(file, [], problems);
+    }
 
     private static AnalysisSettings Build(Fields file)
     {
@@ -31,7 +37,7 @@ public static class SettingsFile
             Shunt = Shapes.ShuntOf(file),
             ForwardVoltage = file.Block("diode").Number("forward-voltage"),
             HighSideThreshold = file.Block("high-side").Number("gate-threshold"),
-            IntegrationTime = file.Number("integration-time"),
+            IntegrationTime = IntegrationTimes.Of(file, []),
             DeadTime = file.Number("dead-time") ?? usual.DeadTime,
             Definitions = Shapes.DefinitionsIn(file),
         };

@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Schemas;
+using static BenchRunner.Acceptance.Schemas.Key;
 
 namespace BenchRunner.Acceptance.Settings;
 
@@ -12,17 +13,18 @@ internal static class SettingsKeys
         "What the analysis takes as given about device and recording.",
         [
             FormatReader.FormatKey with { IsRequired = false },
-            Key.Optional("kind", Shapes.Kind),
-            Key.Optional("position", Shapes.Position),
-            Key.Optional("channels", ChannelKeys.OfSettings),
-            Key.Optional("shunt", Shapes.Shunt),
-            Key.Optional("diode", new BlockShape(
+            Optional("kind", Shapes.Kind),
+            Optional("position", Shapes.Position),
+            Optional("channels", ChannelKeys.OfSettings),
+            Optional("shunt", Shapes.Shunt),
+            Optional("diode", new BlockShape(
                 "The freewheeling diode.",
-                [Key.Needed("forward-voltage", new QuantityShape("Forward voltage.", "V", Bounds.Positive))])),
-            Key.Optional("high-side", Shapes.HighSide),
-            Key.Optional("dead-time", new QuantityShape(
-                "Time after an edge of the gate in which further crossings do not count.", "s", new Bounds(0, 1e-3, LowIsIn: false))),
-            Key.Optional("integration-time", Shapes.IntegrationTime),
-            Key.Optional("definitions", Shapes.Definitions),
-        ]);
+                [Needed("forward-voltage", Shapes.Positive("Forward voltage.", "V", "3 V"))])),
+            Optional("high-side", Shapes.HighSide),
+            Optional("dead-time", Shapes.Time(
+                "Time after an edge of the gate in which further crossings do not count.", 1e-3, "250 ns")),
+            Optional("integration-time", Shapes.IntegrationTime),
+            Optional("definitions", Shapes.Definitions),
+        ],
+        Sample: BlockShape.Shipped);
 }
