@@ -11,4 +11,8 @@ namespace BenchRunner.Acceptance.Plans;
 /// <param name="Bytes">Bytes of evidence that one device needs when every point takes all its captures.</param>
 /// <remarks>Not to be confused with a permit: a plan says what is wanted, a permit what is allowed.</remarks>
 public sealed record Plan(
-    Sequence Sequence, Bench Bench, IReadOnlyList<PlannedPoint> Points, double Duration, long Bytes);
+    Sequence Sequence, Bench Bench, IReadOnlyList<PlannedPoint> Points, double Duration, long Bytes)
+{
+    /// <summary>The train that shows, below 60 V, that bench and device are what the files say; before and after the points.</summary>
+    public PlannedPoint? Proving { get; init; }
+}

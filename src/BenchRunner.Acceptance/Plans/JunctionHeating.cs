@@ -1,0 +1,146 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Sequences;
+
+namespace BenchRunner.Acceptance.Plans;
+
+/// <summary>How warm a pulse train makes the junctions above the plate.</summary>
+/// <remarks>
+/// Losses are rectangles of power in time; the rise at a moment is the sum of P · [Zth(t − start) − Zth(t − end)] over them
+/// (superposition, common practice for transient thermal impedance), looked at the end of each. Switching energies are the
+/// upper limits that the sequence states on <c>eon</c> and <c>eoff</c>, else ½ V I times two fastest edges; they are lost
+/// at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what the mean power
+/// of repeated trains leaves.
+/// </remarks>
+internal static class JunctionHeating
+{
+    private const int FreewheelingSteps = 16;
+
+    private readonly record struct Loss(double Start, double End, double Power)
+    {
+        public double Energy => Power * (End - Start);
+    }
+
+    /// <summary>Rise of the warmer junction, K; null where the sequence states no thermal impedance.</summary>
+    /// <param name="point">The operating point.</param>
+    /// <param name="train">What its train does.</param>
+    /// <param name="sequence">The sequence.</param>
+    /// <param name="bench">The bench.</param>
+    public static double? Rise(OperatingPoint point, PulseTrain train, Sequence sequence, Bench bench)
+    {
+        IReadOnlyList<ThermalPoint> impedance = sequence.ThermalImpedance;
+        if (impedance.Count == 0)
+        {
+            return null;
+        }
+
+        double off1 = train.FirstPulse ?? (bench.LoadInductance * point.LoadCurrent / point.BusVoltage);
+        double on2 = off1 + point.Gap;
+        double off2 = on2 + point.SecondPulse;
+        double period = Math.Max(point.RepeatEvery, off2 + train.LoadDecay);
+        return Math.Max(
+            Warmest(SwitchLosses(point, train, sequence, off1, on2, off2), impedance, period),
+            Warmest(DiodeLosses(point, train, sequence, off1, on2, off2), impedance, period));
+    }
+
+    /// <summary>Thermal impedance at a pulse time, K/W: by the logarithm of time between the points stated.</summary>
+    /// <param name="impedance">Points by rising time; the steady one has infinite time.</param>
+    /// <param name="time">Time since the power began, s; 0 or less gives 0.</param>
+    /// <returns>
+    /// Before the first point it falls with the square root of time (heat into a half-space, common practice). The steady
+    /// value counts from a hundred times the last stated time on.
+    /// </returns>
+    internal static double ImpedanceAt(IReadOnlyList<ThermalPoint> impedance, double time)
+    {
+        if (time <= 0)
+        {
+            return 0;
+        }
+
+        ThermalPoint first = impedance[0];
+        if (double.IsPositiveInfinity(first.Time))
+        {
+            return first.Impedance;
+        }
+
+        if (time <= first.Time)
+        {
+            return first.Impedance * Math.Sqrt(time / first.Time);
+        }
+
+        ThermalPoint before = first;
+        foreach (ThermalPoint point in impedance.Skip(1))
+        {
+            double at = double.IsPositiveInfinity(point.Time) ? 100 * before.Time : point.Time;
+            if (time <= at)
+            {
+                double part = Math.Log(time / before.Time) / Math.Log(at / before.Time);
+                return before.Impedance + (part * (point.Impedance - before.Impedance));
+            }
+
+            before = point;
+        }
+
+        return before.Impedance;
+    }
+
+    private static List<Loss> SwitchLosses(
+        OperatingPoint point, PulseTrain train, Sequence sequence, double off1, double on2, double off2)
+    {
+        double onVoltage = sequence.Expected.OnVoltage;
+        double overlap = sequence.Expected.FastestEdge;
+        double rated = point.BusVoltage * point.LoadCurrent;
+        double ratio = train.Off2Current / point.LoadCurrent;
+        double eon = Stated(sequence, point, "eon") ?? (rated * overlap);
+        double eoff = Stated(sequence, point, "eoff") ?? (rated * overlap);
+        return
+        [
+            new Loss(0, off1, onVoltage * point.LoadCurrent / 2),
+            new Loss(off1, off1 + (eoff / rated), rated),
+            new Loss(on2, on2 + (eon / rated), rated),
+            new Loss(on2, off2, onVoltage * (train.OnCurrent + train.Off2Current) / 2),
+            new Loss(off2, off2 + (eoff / rated), rated * ratio),
+        ];
+    }
+
+    private static List<Loss> DiodeLosses(
+        OperatingPoint point, PulseTrain train, Sequence sequence, double off1, double on2, double off2)
+    {
+        double forward = sequence.Expected.ForwardVoltage;
+        var losses = new List<Loss> { new(off1, on2, forward * point.LoadCurrent) };
+        double step = train.LoadDecay / FreewheelingSteps;
+        for (int i = 0; i < FreewheelingSteps; i++)
+        {
+            double left = 1 - ((i + 0.5) / FreewheelingSteps);
+            losses.Add(new Loss(off2 + (i * step), off2 + ((i + 1) * step), forward * train.Off2Current * left));
+        }
+
+        return losses;
+    }
+
+    private static double? Stated(Sequence sequence, OperatingPoint point, string quantity) =>
+        sequence.Limits.FirstOrDefault(limit => limit.Quantity == quantity && limit.At == point.Name)?.Upper;
+
+    private static double Warmest(List<Loss> losses, IReadOnlyList<ThermalPoint> impedance, double period)
+    {
+        double warmest = 0;
+        foreach (Loss moment in losses)
+        {
+            double rise = 0;
+            foreach (Loss loss in losses)
+            {
+                rise += loss.Power
+                    * (ImpedanceAt(impedance, moment.End - loss.Start) - ImpedanceAt(impedance, moment.End - loss.End));
+            }
+
+            warmest = Math.Max(warmest, rise);
+        }
+
+        double energy = 0;
+        foreach (Loss loss in losses)
+        {
+            energy += loss.Energy;
+        }
+
+        return warmest + (energy / period * impedance[^1].Impedance);
+    }
+}

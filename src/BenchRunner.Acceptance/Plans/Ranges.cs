@@ -1,0 +1,61 @@
+using System.Diagnostics;
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Acceptance.Plans;
+
+/// <summary>Scope ranges from ratings, the point and the stated probe errors; never from what a capture measured.</summary>
+internal static class Ranges
+{
+    /// <summary>Ranges of all recorded channels at one point, by the scope's inputs.</summary>
+    /// <param name="point">The operating point.</param>
+    /// <param name="train">What its train does.</param>
+    /// <param name="sequence">The sequence.</param>
+    /// <param name="bench">The bench.</param>
+    public static IReadOnlyList<PlannedRange> Of(OperatingPoint point, PulseTrain train, Sequence sequence, Bench bench)
+    {
+        bool firesHigh = HalfBridge.FiresHigh(sequence);
+        var ranges = new List<PlannedRange>();
+        foreach (ChannelSetup setup in bench.Channels.OrderBy(setup => setup.Input))
+        {
+            (double low, double high) = Extent(
+                HalfBridge.Playing(setup.Channel, firesHigh), point, train, sequence.Ratings);
+
+            // The scope sees what the probe makes of it: recorded = gain · true + offset.
+            double span = Math.Abs(setup.Gain) * (high - low);
+            double middle = (setup.Gain * (low + high) / 2) + (setup.Offset ?? 0);
+            ranges.Add(new PlannedRange(setup.Channel, setup.Input, span, middle));
+        }
+
+        return ranges;
+    }
+
+    /// <summary>Lowest and highest true value that must fit, with margin. The channel is named as if low fired.</summary>
+    private static (double Low, double High) Extent(
+        Channel part, OperatingPoint point, PulseTrain train, DeviceRatings ratings)
+    {
+        double swing = point.GateOn - point.GateOff;
+
+        // Recovery and output charge add a current that hardly falls with the load's, and an overshoot that hardly falls
+        // with the bus: each range has a part from the point and a part from the rating. At 60 V and a tenth of the
+        // current a sound part reaches 2.7 times the bus and 5 times the load current.
+        double current = Math.Max(1.2 * train.Off2Current, (2 * point.LoadCurrent) + (0.3 * ratings.PeakCurrent));
+        double voltage = Math.Max(
+            1.1 * train.Off2PeakVoltage,
+            Math.Min(1.05 * ratings.BlockingVoltage, (2 * point.BusVoltage) + (0.1 * ratings.BlockingVoltage)));
+        double around = Math.Max(0.25 * point.BusVoltage, 0.05 * ratings.BlockingVoltage);
+        double gate = (point.GateOn + point.GateOff) / 2;
+        return part switch
+        {
+            Channel.VgsLow => (gate - swing, gate + swing),
+            Channel.VgsHigh => (point.GateOff - (0.75 * swing), point.GateOff + (0.75 * swing)),
+            Channel.VdsLow or Channel.VdsHigh => (-0.1 * voltage, voltage),
+            Channel.IdLow => (-0.3 * current, current),
+            Channel.IdHigh => (-1.2 * train.Off2Current, (0.3 * ratings.PeakCurrent) + point.LoadCurrent),
+            Channel.ILoad => (-0.2 * train.Off2Current, 1.3 * train.Off2Current),
+            Channel.Vbus => (point.BusVoltage - around, point.BusVoltage + around),
+            _ => throw new UnreachableException(),
+        };
+    }
+}
