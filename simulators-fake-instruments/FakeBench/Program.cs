@@ -1,2 +1,139 @@
+using System.Runtime.InteropServices;
+using FakeBench.Faults;
+using FakeBench.Hosting;
+using FakeBench.Population;
+
 namespace FakeBench;
-internal static class Program { private static int Main() => 0; }
+
+/// <summary>The command <c>FakeBench</c>: <c>serve</c>, <c>faults</c>, <c>devices</c>.</summary>
+public static class Program
+{
+    private const int WrongInput = 2;
+
+    private const string Help = """
+        FakeBench: a simulated half bridge with instruments that speak SCPI.
+
+          serve [options]   starts the instruments, prints a line for each link, then 'ready'
+            --device SERIAL       device in the socket (W1200-0001)
+            --seed N              seed of population, noise and jitter (1)
+            --pace X              how much faster charging and bleeding are than in the lab, 1 to 5 (1)
+            --bits 8|12           converter of the scope (12)
+            --channels A,B,...    channels on the scope's inputs 1, 2, ...
+            --fault NAME[@WHEN]   a fault; may repeat; WHEN is fire:N, volts:V, seconds:S or block:N
+            --write-bench FILE    writes a bench file that reaches the instruments
+            --ends-with-input     ends when standard input ends, and ignores a terminal's interrupts
+          faults            lists the faults, a line each
+          devices           lists the named devices as CSV
+
+        While it serves, standard input is the operator's hands:
+          open, insert SERIAL, close, stop (emergency stop), release
+
+        Example: FakeBench serve --device W1200-0001 --pace 5 --fault interlock-opens@fire:3
+        """;
+
+    private static async Task<int> Main(string[] arguments)
+    {
+        try
+        {
+            switch (arguments)
+            {
+                case ["serve", .. var options] when !options.Contains("--help"):
+                    await Serve(Arguments.Parse(options));
+                    return 0;
+                case ["faults"]:
+                    ListFaults();
+                    return 0;
+                case ["devices"]:
+                    ListDevices();
+                    return 0;
+                case [] or ["--help"] or [_, "--help"]:
+                    Console.Out.WriteLine(Help);
+                    return 0;
+                default:
+                    throw new FormatException($"'{arguments[0]}': expected serve, faults or devices; see --help");
+            }
+        }
+        catch (Exception wrong) when (wrong is FormatException or IOException or UnauthorizedAccessException)
+        {
+            Console.Error.WriteLine($"fakebench: {wrong.Message}");
+            return WrongInput;
+        }
+    }
+
+    private static async Task Serve(ServeOptions options)
+    {
+        using var stop = new CancellationTokenSource();
+        List<PosixSignalRegistration> signals = [On(PosixSignal.SIGTERM, stop, ends: true)];
+        foreach (PosixSignal signal in (PosixSignal[])[PosixSignal.SIGINT, PosixSignal.SIGHUP, PosixSignal.SIGQUIT])
+        {
+            signals.Add(On(signal, stop, ends: !options.EndsWithInput));
+        }
+
+        await using var server = new BenchServer(options, TimeProvider.System);
+        foreach ((string role, string link) in server.Links)
+        {
+            Console.Out.WriteLine($"{role} {link}");
+        }
+
+        if (options.WriteBench is { } file)
+        {
+            await File.WriteAllTextAsync(file, BenchFile.Write(options, server.Links), stop.Token);
+        }
+
+        Console.Out.WriteLine("ready");
+        await Hands(server, options.EndsWithInput, stop.Token);
+        signals.ForEach(s => s.Dispose());
+    }
+
+    private static PosixSignalRegistration On(PosixSignal signal, CancellationTokenSource stop, bool ends) =>
+        PosixSignalRegistration.Create(signal, context =>
+        {
+            context.Cancel = true;
+            if (ends)
+            {
+                stop.Cancel();
+            }
+        });
+
+    // Reading the console cannot be cancelled, so the reader is left behind when the program ends.
+    private static async Task Hands(BenchServer server, bool endsWithInput, CancellationToken stop)
+    {
+        var ended = new TaskCompletionSource();
+        await using CancellationTokenRegistration cancelled = stop.Register(() => ended.TrySetResult());
+        var reader = new Thread(() =>
+        {
+            while (Console.In.ReadLine() is { } line)
+            {
+                if (!string.IsNullOrWhiteSpace(line) && server.Do(line) is { } refusal)
+                {
+                    Console.Error.WriteLine($"fakebench: {refusal}");
+                }
+            }
+
+            if (endsWithInput)
+            {
+                ended.TrySetResult();
+            }
+        })
+        { IsBackground = true, Name = "hands" };
+        reader.Start();
+        await ended.Task;
+    }
+
+    private static void ListFaults()
+    {
+        foreach (FaultKind fault in FaultCatalogue.All)
+        {
+            Console.Out.WriteLine($"{fault.Name,-20} {fault.Begins,-10} {fault.Shows}");
+        }
+    }
+
+    private static void ListDevices()
+    {
+        Console.Out.WriteLine("serial,part,defect,expected_outcome");
+        foreach (Device device in DevicePopulation.Named)
+        {
+            Console.Out.WriteLine($"{device.Serial},{device.Part},{device.Defect},{device.ExpectedOutcome}");
+        }
+    }
+}

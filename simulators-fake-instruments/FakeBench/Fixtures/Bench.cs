@@ -1,0 +1,231 @@
+using FakeBench.Faults;
+using FakeBench.Physics;
+using FakeBench.Population;
+
+namespace FakeBench.Fixtures;
+
+/// <summary>What the instruments share: the bank, the device in its socket, the enclosure, the safety chain.</summary>
+/// <remarks>
+/// Nothing runs by itself: whoever looks first brings the bench up to the clock (<see cref="Advance"/>), in which everything
+/// that was due (watchdog, protection, faults) happens in its order. All members want <see cref="Gate"/> held.
+/// </remarks>
+public sealed class Bench
+{
+    private readonly TimeProvider _time;
+    private readonly long _start;
+    private readonly Bus _bus = new();
+    private readonly int _seed;
+    private Device _device;
+
+    /// <summary>Makes a bench with a device in its socket, the enclosure closed, the bank empty.</summary>
+    /// <param name="values">Its component values.</param>
+    /// <param name="serial">The device.</param>
+    /// <param name="seed">The population and the noise.</param>
+    /// <param name="faults">What goes wrong.</param>
+    /// <param name="time">The clock.</param>
+    public Bench(BenchValues values, string serial, int seed, FaultPlan faults, TimeProvider time)
+    {
+        ArgumentNullException.ThrowIfNull(values);
+        ArgumentNullException.ThrowIfNull(faults);
+        ArgumentNullException.ThrowIfNull(time);
+        (Values, Faults, _seed, _time) = (values, faults, seed, time);
+        _start = time.GetTimestamp();
+        Supply = new SupplyStage { Limit = values.SupplyLimit };
+        _device = DevicePopulation.Draw(serial, seed);
+        Begun(Faults.Reach(MomentKind.Start, 0));
+        Begun(Faults.Reach(MomentKind.Volts, 0));
+    }
+
+    /// <summary>Raised when the safety chain opens: pulses are inhibited.</summary>
+    public event Action? ChainOpened;
+
+    /// <summary>Held by whoever looks at the bench or changes it.</summary>
+    public Lock Gate { get; } = new();
+
+    /// <summary>Component values.</summary>
+    public BenchValues Values { get; }
+
+    /// <summary>What goes wrong.</summary>
+    public FaultPlan Faults { get; }
+
+    /// <summary>Loop, emergency stop, watchdog, bleeder.</summary>
+    public SafetyChain Chain { get; } = new();
+
+    /// <summary>The supply's power stage.</summary>
+    public SupplyStage Supply { get; }
+
+    /// <summary>Seed of population and noise.</summary>
+    public int Seed => _seed;
+
+    /// <summary>Serial of the device in the socket.</summary>
+    public string Serial => _device.Serial;
+
+    /// <summary>Time since the start, s.</summary>
+    public double Now { get; private set; }
+
+    /// <summary>Voltage of the bank, V.</summary>
+    public double BankVoltage => _bus.Voltage;
+
+    /// <summary>Whether the bank has come to its end value.</summary>
+    public bool BankAtRest => _bus.AtRest;
+
+    /// <summary>Current that the supply gives, A.</summary>
+    public double SupplyCurrent => Bus.Current(Circuit(), _bus.Source, _bus.Voltage);
+
+    /// <summary>Whether the supply is in current limit.</summary>
+    public bool InCurrentLimit => Supply.Output && SupplyCurrent >= Supply.Limit;
+
+    /// <summary>Whether the supply's inner voltage still follows its set-point.</summary>
+    public bool Slewing => Supply.Output && _bus.Source != Supply.Voltage;
+
+    /// <summary>The half bridge with the device in its socket.</summary>
+    public CircuitParameters HalfBridge => _device.On(Values.Parts);
+
+    /// <summary>Brings everything up to the clock.</summary>
+    public void Advance()
+    {
+        double until = _time.GetElapsedTime(_start).TotalSeconds;
+        while (Now < until)
+        {
+            double stop = Math.Min(until, Math.Min(Chain.WatchdogDue, Faults.NextSeconds));
+            double threshold = Faults.NextVolts;
+            if (Supply.Output)
+            {
+                threshold = Math.Min(threshold, Supply.Protection);
+            }
+
+            double span = Math.Max(stop - Now, 0);
+            double moved = _bus.Advance(Circuit(), Supply.Voltage, Values.Slew, span, threshold);
+            Now = moved < span ? Now + moved : Math.Max(stop, Now);
+            Happen();
+        }
+
+        Happen();
+    }
+
+    /// <summary>Switches the supply's output.</summary>
+    public void SwitchSupply(bool on)
+    {
+        Supply.Output = on;
+        _bus.DropSource();
+    }
+
+    /// <summary>A train was fired: what it left behind.</summary>
+    public void Fired(EndState end)
+    {
+        ArgumentNullException.ThrowIfNull(end);
+        _bus.SetVoltage(Math.Max(end.BankVoltageAfter, 0));
+        if (end.LowDied)
+        {
+            _device = _device.AfterDeath();
+        }
+    }
+
+    /// <summary>Something has been counted: faults of that moment begin.</summary>
+    public void Reached(MomentKind kind, double count) => Begun(Faults.Reach(kind, count));
+
+    /// <summary>The operator's hands: <c>open</c>, <c>insert SERIAL</c>, <c>close</c>, <c>stop</c>, <c>release</c>.</summary>
+    /// <returns>Why it could not be done; null: done.</returns>
+    public string? Do(string hand)
+    {
+        ArgumentNullException.ThrowIfNull(hand);
+        string[] words = hand.Split(' ', StringSplitOptions.RemoveEmptyEntries | StringSplitOptions.TrimEntries);
+        switch (words)
+        {
+            case ["open"]:
+                Chain.EnclosureOpen = true;
+                break;
+            case ["close"]:
+                (Chain.EnclosureOpen, Chain.LoopBroken) = (false, false);
+                break;
+            case ["stop"]:
+                Chain.EmergencyStop = true;
+                break;
+            case ["release"]:
+                Chain.EmergencyStop = false;
+                break;
+            case ["insert", { } serial]:
+                if (!Chain.EnclosureOpen)
+                {
+                    return "the enclosure is closed; open it first";
+                }
+
+                _device = DevicePopulation.Draw(serial, _seed);
+                break;
+            default:
+                return $"no hand does '{hand}'; open, insert SERIAL, close, stop, release";
+        }
+
+        Happen();
+        return null;
+    }
+
+    private BusCircuit Circuit()
+    {
+        double relay = Chain.Bleeder && !Faults.Has(FaultCatalogue.BusStaysUp) ? 1 / Values.Bleeder : 0;
+        double empty = Chain.EnclosureOpen ? 0 : LeakConductance();
+        return new BusCircuit(
+            Values.Parts.BankCapacitance,
+            relay + (1 / BenchValues.EmptySocket) + empty,
+            Values.SupplyResistance,
+            Supply.Limit,
+            Supply.Output);
+    }
+
+    // Both gates off: the load pulls the switch node to the bus, so the low place alone stands across the bank.
+    private double LeakConductance()
+    {
+        double leak = _device.Low.Switch.Leakage;
+        return leak / (1 + (leak * Values.Parts.LoadResistance));
+    }
+
+    private void Happen()
+    {
+        Begun(Faults.Reach(MomentKind.Seconds, Now));
+        Begun(Faults.Reach(MomentKind.Volts, _bus.Voltage));
+        Chain.Watch(Now);
+        if (Supply.Output && _bus.Voltage >= Supply.Protection)
+        {
+            TripSupply();
+        }
+
+        if (!Chain.Closed)
+        {
+            OpenChain();
+        }
+    }
+
+    private void TripSupply()
+    {
+        Supply.Tripped = true;
+        SwitchSupply(false);
+    }
+
+    private void OpenChain()
+    {
+        Chain.Bleeder = true;
+        SwitchSupply(false);
+        ChainOpened?.Invoke();
+    }
+
+    private void Begun(IReadOnlyList<string> faults)
+    {
+        foreach (string fault in faults)
+        {
+            switch (fault)
+            {
+                case FaultCatalogue.InterlockOpens:
+                    Chain.LoopBroken = true;
+                    break;
+                case FaultCatalogue.EmergencyStop:
+                    Chain.EmergencyStop = true;
+                    break;
+                case FaultCatalogue.OverVoltageTrips:
+                    TripSupply();
+                    break;
+                default:
+                    break;
+            }
+        }
+    }
+}

@@ -1,0 +1,79 @@
+using System.Globalization;
+using FakeBench.Faults;
+using FakeBench.Fixtures;
+
+namespace FakeBench.Hosting;
+
+/// <summary>Reads the arguments of <c>serve</c>.</summary>
+public static class Arguments
+{
+    private const int LongestSerial = 64;
+
+    /// <summary>Reads them.</summary>
+    /// <exception cref="FormatException">An argument is wrong; the message says which and what was expected.</exception>
+    public static ServeOptions Parse(IReadOnlyList<string> arguments)
+    {
+        ArgumentNullException.ThrowIfNull(arguments);
+        var options = new ServeOptions();
+        var faults = new List<Fault>();
+        for (int i = 0; i < arguments.Count; i++)
+        {
+            string name = arguments[i];
+            if (name == "--ends-with-input")
+            {
+                options = options with { EndsWithInput = true };
+                continue;
+            }
+
+            string value = i + 1 < arguments.Count
+                ? arguments[++i]
+                : throw new FormatException($"{name}: unknown, or its value is missing");
+            if (name == "--fault")
+            {
+                faults.Add(Fault.Parse(value));
+            }
+            else
+            {
+                options = Set(options, name, value);
+            }
+        }
+
+        return options with { Faults = faults };
+    }
+
+    private static ServeOptions Set(ServeOptions options, string name, string value) => name switch
+    {
+        "--device" => options with { Device = Serial(value) },
+        "--seed" => options with { Seed = (int)Number(name, value, int.MinValue, int.MaxValue) },
+        "--pace" => options with { Pace = Number(name, value, 1, 5) },
+        "--bits" => options with { Bits = value is "8" or "12" ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12") },
+        "--channels" => options with { Channels = Channels(value) },
+        "--write-bench" => options with { WriteBench = value },
+        _ => throw new FormatException($"{name}: no such option; see --help"),
+    };
+
+    private static double Number(string name, string value, double lowest, double highest) =>
+        double.TryParse(value, NumberStyles.Float, CultureInfo.InvariantCulture, out double number)
+            && number >= lowest && number <= highest
+            ? number
+            : throw Wrong(name, value, string.Create(CultureInfo.InvariantCulture, $"a number from {lowest} to {highest}"));
+
+    private static string Serial(string value) =>
+        value.Length is > 0 and <= LongestSerial && value.All(c => char.IsAsciiLetterOrDigit(c) || c is '.' or '_' or '-')
+            ? value
+            : throw Wrong("--device", value, "1 to 64 letters, digits, dots, dashes, underscores");
+
+    private static string[] Channels(string value)
+    {
+        string[] channels = value.Split(',');
+        foreach (string channel in channels)
+        {
+            _ = BenchProbes.Of(channel);
+        }
+
+        return channels;
+    }
+
+    private static FormatException Wrong(string name, string value, string expected) =>
+        new($"{name}: '{value}'; expected {expected}");
+}

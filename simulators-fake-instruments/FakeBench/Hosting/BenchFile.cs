@@ -1,0 +1,81 @@
+using System.Globalization;
+using System.Text;
+using FakeBench.Fixtures;
+using FakeBench.Physics;
+
+namespace FakeBench.Hosting;
+
+/// <summary>Writes a bench file that reaches the instruments.</summary>
+public static class BenchFile
+{
+    /// <summary>The text of the file.</summary>
+    /// <param name="options">What is served.</param>
+    /// <param name="links">Roles and their links.</param>
+    public static string Write(ServeOptions options, IReadOnlyList<(string Role, string Link)> links)
+    {
+        ArgumentNullException.ThrowIfNull(options);
+        ArgumentNullException.ThrowIfNull(links);
+        var values = new BenchValues(options.Pace);
+        BenchParts parts = values.Parts;
+        var text = new StringBuilder();
+        void Line(FormattableString line) => text.Append(line.ToString(CultureInfo.InvariantCulture)).Append('\n');
+        Line($"# Written by FakeBench: reaches its instruments as long as it runs.");
+        Line($"format: 1");
+        Line($"bench: fakebench");
+        Line($"roles:");
+        foreach ((string role, string link) in links)
+        {
+            Line($"  {role}: {{ link: '{Written(link)}', dialect: generic-{role}{Extra(options, role, link)} }}");
+        }
+
+        double loop = LoopInductance(parts) * 1e9;
+        Line($"exchange: none");
+        Line($"load: {{ inductance: {parts.LoadInductance * 1e6:0.###} uH, resistance: {parts.LoadResistance * 1e3:0.###} mOhm, to: positive }}");
+        Line($"bus: {{ capacitance: {parts.BankCapacitance * 1e6:0.###} uF, bleeder: {values.Bleeder / 1e3:0.###} kOhm, empty-socket: 0.1 mA }}");
+        Line($"supply: {{ charging-current: {values.SupplyLimit:0.###} A }}");
+        Line($"scope: {{ bits: {options.Bits}, fastest-interval: 1 ns, samples-at-most: {Instruments.Scope.MostPoints} }}");
+        Line($"loop: {{ inductance: {loop:0.#} nH }}");
+        Line($"gate-resistors: {{ on: {parts.GateOnResistance:0.###} Ohm, off: {parts.GateOffResistance:0.###} Ohm }}");
+        Line($"high-side: {{ gate-threshold: 0.5 V }}");
+        Line($"shunt: {{ resistance: {parts.ShuntResistance * 1e3:0.###} mOhm, inductance: {parts.ShuntInductance * 1e12:0.###} pH }}");
+        Line($"channels:");
+        for (int i = 0; i < options.Channels.Count; i++)
+        {
+            Line($"  {options.Channels[i]}: {{ scope: {i + 1}, {Probe(options.Channels[i])} }}");
+        }
+
+        Line($"envelope: {{ voltage: 900 V, current: 120 A, energy: 10 J, pulse: 20 us }}");
+        Line($"ambient: 23 degC");
+        Line($"cautions: []");
+        return text.ToString();
+    }
+
+    private static double LoopInductance(BenchParts parts)
+    {
+        PackageParts low = CircuitParameters.NominalPlace(high: false).Package;
+        PackageParts high = CircuitParameters.NominalPlace(high: true).Package;
+        return parts.BankInductance + high.DrainInductance + low.DrainInductance + low.SourceInductance;
+    }
+
+    private static string Written(string link) => link.Split(' ') is ["tcp", { } host, { } port] ? $"tcp {host}:{port}" : link;
+
+    private static string Extra(ServeOptions options, string role, string link)
+    {
+        bool single = link.StartsWith("serial", StringComparison.Ordinal)
+            || options.Faults.Any(f => f.Name == Faults.FaultCatalogue.SingleClient);
+        return (single ? "" : ", connections: 4") + (role == "voltmeter" ? ", at: bank" : "");
+    }
+
+    private static string Probe(string channel) => channel switch
+    {
+        "id_low" or "id_high" or "i_load" =>
+            $"probe: {(channel == "id_low" ? "shunt" : "transformer")}, rating: 200 A, gain: 1, skew: 0 s, "
+            + "uncertainty: { gain: 0.5 %, offset: 100 mA, skew: 200 ps }",
+        "vgs_low" or "vgs_high" => "probe: isolated, rating: 50 V, gain: 1, offset: 0 V, skew: 0 s, "
+            + "uncertainty: { gain: 1 %, offset: 50 mV, skew: 300 ps }",
+        "vbus" => "probe: differential, rating: 1500 V, gain: 1, offset: 0 V, skew: 0 s, "
+            + "uncertainty: { gain: 0.5 %, offset: 500 mV, skew: 500 ps }",
+        _ => "probe: differential, rating: 1500 V, gain: 1, offset: 0 V, skew: 0 s, "
+            + "uncertainty: { gain: 0.5 %, offset: 200 mV, skew: 200 ps }",
+    };
+}

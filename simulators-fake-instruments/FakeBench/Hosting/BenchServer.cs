@@ -1,0 +1,61 @@
+using FakeBench.Faults;
+using FakeBench.Fixtures;
+using FakeBench.Instruments;
+
+namespace FakeBench.Hosting;
+
+/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device.</summary>
+public sealed class BenchServer : IAsyncDisposable
+{
+    private const int MostClients = 4;
+    private readonly List<(string Role, IHost Host)> _hosts = [];
+
+    /// <summary>Starts all instruments.</summary>
+    /// <param name="options">What is asked for.</param>
+    /// <param name="time">The clock.</param>
+    public BenchServer(ServeOptions options, TimeProvider time)
+    {
+        ArgumentNullException.ThrowIfNull(options);
+        var faults = new FaultPlan(options.Faults);
+        Bench = new Bench(new BenchValues(options.Pace), options.Device, options.Seed, faults, time);
+        int clients = faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
+        var trains = new TrainCache();
+        var scope = new Scope(Bench, options.Channels, options.Bits);
+        foreach (Instrument instrument in
+            (Instrument[])[new Supply(Bench), new Pulser(Bench, scope, trains), scope, new Voltmeter(Bench)])
+        {
+            _hosts.Add((instrument.Role, new TcpHost(instrument, clients, time)));
+        }
+
+        var interlock = new Interlock(Bench);
+        _hosts.Add((interlock.Role, PseudoTerminal.IsSupported
+            ? new SerialHost(interlock)
+            : new TcpHost(interlock, clients, time)));
+    }
+
+    /// <summary>The bench behind the instruments.</summary>
+    public Bench Bench { get; }
+
+    /// <summary>Roles and their links.</summary>
+    public IReadOnlyList<(string Role, string Link)> Links => [.. _hosts.Select(h => (h.Role, h.Host.Link))];
+
+    /// <summary>Lets the operator's hands do something.</summary>
+    /// <returns>Why it could not be done; null: done.</returns>
+    public string? Do(string hand)
+    {
+        lock (Bench.Gate)
+        {
+            Bench.Advance();
+            return Bench.Do(hand);
+        }
+    }
+
+    /// <inheritdoc/>
+    public async ValueTask DisposeAsync()
+    {
+        foreach ((_, IHost host) in _hosts)
+        {
+            await host.DisposeAsync();
+        }
+    }
+}

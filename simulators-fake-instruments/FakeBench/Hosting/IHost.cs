@@ -1,0 +1,8 @@
+namespace FakeBench.Hosting;
+
+/// <summary>A link that an instrument is served on.</summary>
+public interface IHost : IAsyncDisposable
+{
+    /// <summary>The link as a bench file writes it, e.g. <c>tcp 127.0.0.1 41001</c>.</summary>
+    string Link { get; }
+}

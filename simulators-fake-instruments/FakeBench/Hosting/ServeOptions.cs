@@ -1,0 +1,32 @@
+using FakeBench.Faults;
+
+namespace FakeBench.Hosting;
+
+/// <summary>What <c>serve</c> is asked for.</summary>
+public sealed record ServeOptions
+{
+    /// <summary>Device in the socket.</summary>
+    public string Device { get; init; } = "W1200-0001";
+
+    /// <summary>Seed of population, noise and jitter.</summary>
+    public int Seed { get; init; } = 1;
+
+    /// <summary>How much faster charging and bleeding are than on the lab's bench, 1 to 5.</summary>
+    public double Pace { get; init; } = 1;
+
+    /// <summary>Faults.</summary>
+    public IReadOnlyList<Fault> Faults { get; init; } = [];
+
+    /// <summary>Channels on the scope's inputs 1, 2, …</summary>
+    public IReadOnlyList<string> Channels { get; init; } =
+        ["vgs_low", "vds_low", "id_low", "vgs_high", "vds_high", "vbus"];
+
+    /// <summary>Bits of the scope's converter, 8 or 12.</summary>
+    public int Bits { get; init; } = 12;
+
+    /// <summary>Bench file to write; null: none.</summary>
+    public string? WriteBench { get; init; }
+
+    /// <summary>Whether the end of standard input ends the program; it then ignores a terminal's interrupts.</summary>
+    public bool EndsWithInput { get; init; }
+}

@@ -1,0 +1,134 @@
+using System.Globalization;
+using System.Net;
+using System.Net.Sockets;
+using FakeBench.Instruments;
+using FakeBench.Scpi;
+
+namespace FakeBench.Hosting;
+
+/// <summary>Serves one instrument over TCP on the loopback: one write a reply, no delay, a bounded number of clients.</summary>
+public sealed class TcpHost : IHost
+{
+    private readonly Instrument _instrument;
+    private readonly TimeProvider _time;
+    private readonly int _mostClients;
+    private readonly TcpListener _listener = new(IPAddress.Loopback, 0);
+    private readonly CancellationTokenSource _stop = new();
+    private readonly Task _accepting;
+    private int _clients;
+
+    /// <summary>Starts to listen on a free port.</summary>
+    /// <param name="instrument">The instrument.</param>
+    /// <param name="mostClients">Clients served at once; one more is closed as soon as it connects.</param>
+    /// <param name="time">The clock of late replies.</param>
+    public TcpHost(Instrument instrument, int mostClients, TimeProvider time)
+    {
+        (_instrument, _mostClients, _time) = (instrument, mostClients, time);
+        _listener.Start();
+        Port = ((IPEndPoint)_listener.LocalEndpoint).Port;
+        _accepting = Accept();
+    }
+
+    /// <summary>Its port.</summary>
+    public int Port { get; }
+
+    /// <inheritdoc/>
+    public string Link => string.Create(CultureInfo.InvariantCulture, $"tcp 127.0.0.1 {Port}");
+
+    /// <inheritdoc/>
+    public async ValueTask DisposeAsync()
+    {
+        await _stop.CancelAsync();
+        _listener.Stop();
+        await _accepting;
+        _listener.Dispose();
+        _stop.Dispose();
+    }
+
+    private async Task Accept()
+    {
+        var serving = new List<Task>();
+        try
+        {
+            while (true)
+            {
+                Socket client = await _listener.AcceptSocketAsync(_stop.Token);
+                serving.RemoveAll(task => task.IsCompleted);
+                if (Interlocked.Increment(ref _clients) > _mostClients)
+                {
+                    client.Dispose();
+                    Interlocked.Decrement(ref _clients);
+                    continue;
+                }
+
+                serving.Add(Task.Run(() => Serve(client)));
+            }
+        }
+        catch (Exception end) when (end is OperationCanceledException or SocketException or ObjectDisposedException)
+        {
+            await Task.WhenAll(serving);
+        }
+    }
+
+    private async Task Serve(Socket client)
+    {
+        using (client)
+        {
+            try
+            {
+                client.NoDelay = true;
+                await Converse(client);
+            }
+            catch (Exception end) when (end is OperationCanceledException or SocketException)
+            {
+                // The client went away, or the bench ends: either way this conversation is over.
+            }
+        }
+
+        Interlocked.Decrement(ref _clients);
+    }
+
+    private async Task Converse(Socket client)
+    {
+        var framer = new MessageFramer();
+        byte[] buffer = new byte[8192];
+        while (true)
+        {
+            int count = await client.ReceiveAsync(buffer, _stop.Token);
+            if (count == 0)
+            {
+                return;
+            }
+
+            foreach (string? message in framer.Take(buffer.AsSpan(0, count)))
+            {
+                if (!await Reply(client, _instrument.Obey(message)))
+                {
+                    return;
+                }
+            }
+        }
+    }
+
+    private async Task<bool> Reply(Socket client, Answer answer)
+    {
+        if (answer.Late > TimeSpan.Zero)
+        {
+            await Task.Delay(answer.Late, _time, _stop.Token);
+        }
+
+        int length = answer.CutShort ? answer.Bytes.Length / 2 : answer.Bytes.Length;
+        ReadOnlyMemory<byte> rest = answer.Bytes.AsMemory(0, length);
+        while (!rest.IsEmpty)
+        {
+            rest = rest[await client.SendAsync(rest, _stop.Token)..];
+        }
+
+        if (answer.CutShort)
+        {
+            client.LingerState = new LingerOption(true, 0);
+        }
+
+        return !answer.CutShort;
+    }
+}

@@ -1,0 +1,68 @@
+using FakeBench.Fixtures;
+using FakeBench.Scpi;
+
+namespace FakeBench.Instruments;
+
+/// <summary>A front panel: a state machine that obeys program messages. Threads and sockets are a host around it.</summary>
+public abstract class Instrument
+{
+    /// <summary>Makes an instrument.</summary>
+    /// <param name="bench">The bench that it is part of.</param>
+    /// <param name="role">What it is to the bench, e.g. <c>supply</c>.</param>
+    protected Instrument(Bench bench, string role)
+    {
+        ArgumentNullException.ThrowIfNull(bench);
+        ArgumentException.ThrowIfNullOrEmpty(role);
+        (Bench, Role) = (bench, role);
+        Scpi = new Interpreter(Identify, Reset);
+    }
+
+    /// <summary>What it is to the bench.</summary>
+    public string Role { get; }
+
+    /// <summary>The bench that it is part of.</summary>
+    protected Bench Bench { get; }
+
+    /// <summary>Its commands and status.</summary>
+    protected Interpreter Scpi { get; }
+
+    /// <summary>Obeys one message.</summary>
+    /// <param name="message">The message without its terminator, a character a byte; null: one that was too long.</param>
+    public Answer Obey(string? message)
+    {
+        lock (Bench.Gate)
+        {
+            Bench.Advance();
+            Refresh();
+            if (message is null)
+            {
+                Scpi.Status.Report(-363, null);
+                return new Answer([]);
+            }
+
+            Reply reply = Scpi.Obey(message);
+            Refresh();
+            return Deliver(reply);
+        }
+    }
+
+    /// <summary>Takes the conditions over into the status registers.</summary>
+    protected virtual void Refresh()
+    {
+    }
+
+    /// <summary>Goes back to the settings after power-on (<c>*RST</c>).</summary>
+    protected abstract void Reset();
+
+    /// <summary>How the reply goes out.</summary>
+    protected virtual Answer Deliver(Reply reply)
+    {
+        ArgumentNullException.ThrowIfNull(reply);
+        return new Answer(reply.Finish());
+    }
+
+    /// <summary>Model in the answer to <c>*IDN?</c>.</summary>
+    protected virtual string Model => $"FAKEBENCH-{Role.ToUpperInvariant()}";
+
+    private string Identify() => $"BENCHRUNNER,{Model},0,1";
+}
