@@ -7,16 +7,15 @@ public static class ReplyList
     /// <param name="reply">One reply without its end.</param>
     /// <param name="count">How many were asked for; 0: any number.</param>
     /// <exception cref="ReplyException">A unit is empty, or their number is another.</exception>
-    public static IReadOnlyList<string> Units(ReadOnlySpan<byte> reply, int count = 0)
-    {
-        var texts = new List<string>();
-        foreach (var part in Split(reply, (byte)';', ReplyFault.EmptyUnit))
-        {
-            texts.Add(ReplyText.Decode(ReplyText.Trim(reply[part])));
-        }
+    public static IReadOnlyList<string> Units(ReadOnlySpan<byte> reply, int count = 0) =>
+        Counted(Texts(reply, (byte)';', ReplyFault.EmptyUnit), count, reply);
 
-        return Counted(texts, count, reply);
-    }
+    /// <summary>Splits a reply of one unit into its elements.</summary>
+    /// <param name="reply">One reply without its end.</param>
+    /// <param name="count">How many were asked for; 0: any number.</param>
+    /// <exception cref="ReplyException">An element is empty, or their number is another.</exception>
+    public static IReadOnlyList<string> Elements(ReadOnlySpan<byte> reply, int count = 0) =>
+        Counted(Texts(ReplyText.Value(reply), (byte)',', ReplyFault.EmptyElement), count, reply);
 
     /// <summary>Reads a list of numbers, as <see cref="ReplyNumber.Parse"/> reads each.</summary>
     /// <param name="reply">One reply without its end.</param>
@@ -32,6 +31,17 @@ public static class ReplyList
         }
 
         return Counted(numbers, count, reply);
+    }
+
+    private static List<string> Texts(ReadOnlySpan<byte> reply, byte separator, ReplyFault whenEmpty)
+    {
+        var texts = new List<string>();
+        foreach (var part in Split(reply, separator, whenEmpty))
+        {
+            texts.Add(ReplyText.Decode(ReplyText.Trim(reply[part])));
+        }
+
+        return texts;
     }
 
     /// <summary>Splits at a separator that stands outside strings and blocks.</summary>
