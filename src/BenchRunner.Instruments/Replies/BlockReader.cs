@@ -3,8 +3,8 @@ using System.Buffers;
 namespace BenchRunner.Instruments.Replies;
 
 /// <summary>
-/// Collects a reply that is a block, as its bytes come, in a pooled buffer: it says where the next bytes go, so that a
-/// receiver writes them straight there. Does no I/O.
+/// Collects a reply of blocks, as its bytes come, in pooled buffers: it says where the next bytes go, so that a receiver
+/// writes them straight there. Does no I/O.
 /// </summary>
 /// <remarks>
 /// A line reader would cut a block at its first newline; what is due here is counted. The end is NL or CR NL; anything
@@ -15,120 +15,142 @@ public sealed class BlockReader : IDisposable
     // Room for the end (CR NL), which is received with the data in one call.
     private const int Ending = 2;
 
-    private readonly byte[] _head = new byte[4096];
-    private byte[]? _rental;
+    private readonly byte[] _head = new byte[64];
+    private readonly List<(byte[] Rental, int Length)> _blocks = [];
+    private int _headFilled;
     private int _filled;
     private int _length = -1;
     private int _bound;
+    private int _due;
 
-    /// <summary>The block's bytes, once whole; valid until the next <see cref="Begin"/> or disposal.</summary>
-    public ReadOnlySpan<byte> Data => _rental.AsSpan(0, Math.Max(_length, 0));
-
-    /// <summary>Whether the block and its end have come.</summary>
+    /// <summary>Whether all blocks and their end have come.</summary>
     public bool IsWhole { get; private set; }
 
     /// <summary>Bytes that came after the end of the reply.</summary>
-    public int Excess { get; private set; }
+    public int Excess => IsWhole ? _headFilled : 0;
 
-    /// <summary>Bytes that the head announced; −1 before the head has come.</summary>
-    public int Length => _length;
+    /// <summary>Bytes that the head of the block under way announced; null before it has come.</summary>
+    public int? Announced => _length < 0 ? null : _length;
 
-    /// <summary>What came before the head was whole.</summary>
-    internal ReadOnlySpan<byte> Head => _length < 0 ? _head.AsSpan(0, _filled) : [];
+    /// <summary>What came before the first head was whole.</summary>
+    internal ReadOnlySpan<byte> Head => _blocks.Count == 0 ? _head.AsSpan(0, _headFilled) : [];
 
     /// <summary>Where the next bytes go.</summary>
-    public Memory<byte> Space => _length < 0 ? _head.AsMemory(_filled) : _rental.AsMemory(_filled, _length + Ending - _filled);
+    public Memory<byte> Space => _length < 0
+        ? _head.AsMemory(_headFilled)
+        : _blocks[^1].Rental.AsMemory(_filled, _length + Ending - _filled);
 
     /// <summary>Gets ready for one reply.</summary>
     /// <param name="bound">The longest block that is due, bytes; at most <see cref="BlockHeader.Limit"/>.</param>
-    public void Begin(int bound)
+    /// <param name="count">How many blocks are due.</param>
+    public void Begin(int bound, int count = 1)
     {
         ArgumentOutOfRangeException.ThrowIfNegative(bound);
         ArgumentOutOfRangeException.ThrowIfGreaterThan(bound, BlockHeader.Limit);
+        ArgumentOutOfRangeException.ThrowIfLessThan(count, 1);
         Dispose();
-        _bound = bound;
+        (_bound, _due) = (bound, count);
     }
+
+    /// <summary>The bytes of a block, once the reply is whole; valid until the next <see cref="Begin"/> or disposal.</summary>
+    /// <param name="index">Which one, from 0.</param>
+    public ReadOnlySpan<byte> Block(int index) => _blocks[index].Rental.AsSpan(0, _blocks[index].Length);
 
     /// <summary>Takes note of bytes that were put into <see cref="Space"/>.</summary>
     /// <param name="count">How many.</param>
     /// <exception cref="ReplyException">They are no block, or not of the length that is due.</exception>
     public void Advance(int count)
     {
-        _filled += count;
-        if (_length < 0 && !TryTakeHead())
+        if (_length < 0)
         {
-            return;
+            _headFilled += count;
+        }
+        else
+        {
+            _filled += count;
         }
 
-        if (_filled > _length)
+        while (!IsWhole && (_length < 0 ? TryTakeHead() : TryTakeEnd()))
         {
-            TakeEnd(_rental.AsSpan(_length, _filled - _length));
         }
     }
 
     /// <summary>What is missing, for a stream that ended or a deadline that passed before the reply was whole.</summary>
     public ReplyException Missing()
     {
-        var seen = (_length < 0 ? _head : _rental).AsSpan(0, Math.Min(_filled, 80));
-        var fault = _length < 0 && _filled == 0 ? ReplyFault.Empty
+        var seen = _length < 0 ? _head.AsSpan(0, _headFilled) : _blocks[^1].Rental.AsSpan(0, Math.Min(_filled, 80));
+        var fault = _length < 0 && seen.IsEmpty ? ReplyFault.Empty
             : _length < 0 || _filled < _length ? ReplyFault.TruncatedBlock
             : ReplyFault.Unterminated;
         return new ReplyException(fault, seen);
     }
 
-    /// <summary>Gives the buffer back to the pool.</summary>
+    /// <summary>Gives the buffers back to the pool.</summary>
     public void Dispose()
     {
-        if (_rental is not null)
+        foreach (var (rental, _) in _blocks)
         {
-            ArrayPool<byte>.Shared.Return(_rental);
-            _rental = null;
+            ArrayPool<byte>.Shared.Return(rental);
         }
 
-        _filled = 0;
-        _length = -1;
-        IsWhole = false;
-        Excess = 0;
+        _blocks.Clear();
+        (_headFilled, _filled, _length, IsWhole) = (0, 0, -1, false);
     }
 
     private bool TryTakeHead()
     {
-        if (!BlockHeader.TryRead(_head.AsSpan(0, _filled), _bound, out var header))
+        if (!BlockHeader.TryRead(_head.AsSpan(0, _headFilled), _bound, out var header))
         {
             return false;
         }
 
         var rental = ArrayPool<byte>.Shared.Rent(header.Length + Ending);
-        var came = _head.AsSpan(header.Start, _filled - header.Start);
-        var taken = Math.Min(came.Length, header.Length + Ending);
-        came[..taken].CopyTo(rental);
-        _rental = rental;
+        _blocks.Add((rental, header.Length));
         _length = header.Length;
-        _filled = taken;
-        Excess = came.Length - taken;
+        _filled = Math.Min(_headFilled - header.Start, header.Length + Ending);
+        _head.AsSpan(header.Start, _filled).CopyTo(rental);
+        Keep(_head.AsSpan(header.Start + _filled, _headFilled - header.Start - _filled));
         return true;
     }
 
-    private void TakeEnd(ReadOnlySpan<byte> tail)
+    private bool TryTakeEnd()
     {
-        var newline = tail[0] == '\r' ? 1 : 0;
-        if (newline == tail.Length)
+        var rental = _blocks[^1].Rental;
+        var tail = rental.AsSpan(_length, Math.Max(_filled - _length, 0));
+        if (tail.IsEmpty || (tail[0] == '\r' && tail.Length == 1))
         {
-            return;
+            return false;
         }
 
+        if (tail[0] == ',' && _blocks.Count < _due)
+        {
+            // What came after the comma goes before what was kept: it is the beginning of the next head.
+            _head.AsSpan(0, _headFilled).CopyTo(_head.AsSpan(tail.Length - 1));
+            tail[1..].CopyTo(_head);
+            (_headFilled, _length) = (_headFilled + tail.Length - 1, -1);
+            return true;
+        }
+
+        var newline = tail[0] == '\r' ? 1 : 0;
         if (tail[newline] != '\n')
         {
-            var fault = tail[0] switch
-            {
-                (byte)';' => ReplyFault.TooManyUnits,
-                (byte)',' => ReplyFault.TooManyElements,
-                _ => ReplyFault.TrailingData,
-            };
-            throw new ReplyException(fault, tail);
+            throw new ReplyException(
+                tail[0] switch
+                {
+                    (byte)';' => ReplyFault.TooManyUnits,
+                    (byte)',' => ReplyFault.TooManyElements,
+                    _ => ReplyFault.TrailingData,
+                },
+                tail);
         }
 
-        Excess += tail.Length - newline - 1;
-        IsWhole = true;
+        _headFilled += tail.Length - newline - 1;
+        return _blocks.Count == _due ? IsWhole = true : throw new ReplyException(ReplyFault.WrongCount, Block(0));
+    }
+
+    private void Keep(ReadOnlySpan<byte> rest)
+    {
+        rest.CopyTo(_head);
+        _headFilled = rest.Length;
     }
 }

@@ -87,13 +87,13 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
             _block.Begin(bound);
             Put(query);
             await ReadBlock(token);
-            var value = parse(_block.Data);
+            var value = parse(_block.Block(0));
             Finish(query);
             return value;
         }
         catch (Exception e)
         {
-            if (_block.Length >= 0 && !_block.IsWhole)
+            if (_block.Announced is not null && !_block.IsWhole)
             {
                 // More of the block may follow, and no end could be told from data: only a new connection helps.
                 Break(new LinkException(link.Name, $"given up inside the block that answers '{query}': {_block.Missing().Message}", e));
@@ -366,11 +366,11 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         while (!_block.IsWhole)
         {
-            var headDue = _block.Length < 0;
+            var headDue = _block.Announced is null;
             _block.Advance(await Receive(_block.Space, token));
-            if (headDue && _block.Length >= 0)
+            if (headDue && _block.Announced is { } length)
             {
-                _deadline.Extend(options.ReplyWithin + TimeSpan.FromSeconds(_block.Length / options.BlockRate));
+                _deadline.Extend(options.ReplyWithin + TimeSpan.FromSeconds(length / options.BlockRate));
             }
         }
     }
