@@ -75,7 +75,7 @@ public sealed class ScpiSession : IDisposable
         try
         {
             session._wire = await session.Connect(cancel);
-            session.Identity = await session._wire.Ask("*IDN?", ReplyIdentity.Parse, false, cancel);
+            session.Identity = await session._wire.Ask("*IDN?", ReplyIdentity.Parse, cancel);
             foreach (var entry in await session._wire.ReadErrors(cancel))
             {
                 session.Report(InstrumentEventKind.Errors, $"the error queue held {entry} at the start");
@@ -208,7 +208,7 @@ public sealed class ScpiSession : IDisposable
         await _turn.WaitAsync(cancel);
         try
         {
-            return await (await Wire(cancel)).Ask(query, parse, false, cancel);
+            return await (await Wire(cancel)).Ask(query, parse, cancel);
         }
         finally
         {
@@ -277,7 +277,7 @@ public sealed class ScpiSession : IDisposable
         _wire.Dispose();
         var wire = await Connect(cancel);
         _wire = wire;
-        var identity = await wire.Ask("*IDN?", ReplyIdentity.Parse, false, cancel);
+        var identity = await wire.Ask("*IDN?", ReplyIdentity.Parse, cancel);
         if (identity.Text != Identity.Text)
         {
             throw wire.Break(new LinkException(Link, $"now '{identity.Text}' answers where '{Identity.Text}' did"));

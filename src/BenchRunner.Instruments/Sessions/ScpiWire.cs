@@ -25,13 +25,11 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     private const int MostDropped = 64;
     private const int HighestSentinel = 255;
 
-    private readonly byte[] _buffer = new byte[ReplyLine.Limit + 4096];
+    private readonly ReplyStream _replies = new(link);
     private readonly byte[] _sent = new byte[LongestMessage];
-    private readonly BlockReader _block = new();
     private readonly Deadline _deadline = new(time);
     private int _sentLength;
-    private int _start;
-    private int _end;
+    private Action<int>? _extend;
     private int _sentinel = 100;
     private string? _doubt;
     private LinkException? _broken;
@@ -69,10 +67,10 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
 
     /// <summary>Asks one question and reads its reply, a line.</summary>
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    public async ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, bool quoted, CancellationToken cancel)
+    public async ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         await Ready(cancel);
-        return await Exchange(query, parse, quoted, cancel);
+        return await Exchange(query, parse, cancel);
     }
 
     /// <summary>Asks one question and reads its reply, a block, into a pooled buffer.</summary>
@@ -84,29 +82,29 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         var token = _deadline.Start(options.ReplyWithin, cancel);
         try
         {
-            _block.Begin(bound);
             Put(query);
-            await ReadBlock(token);
-            var value = parse(_block.Block(0));
+            await _replies.ReadBlock(bound, _extend ??= Extend, token);
+            var value = parse(_replies.Blocks.Block(0));
             Finish(query);
             return value;
         }
         catch (Exception e)
         {
-            if (_block.Announced is not null && !_block.IsWhole)
+            // With its link lost nothing more comes; inside a block no end could be told from data: either way only a new
+            // connection helps, and what is missing says more than how the link ended.
+            if (e is LinkException || (_replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
             {
-                // More of the block may follow, and no end could be told from data: only a new connection helps.
-                Break(new LinkException(link.Name, $"given up inside the block that answers '{query}': {_block.Missing().Message}", e));
+                Break(new LinkException(link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
             }
 
-            var echo = e is ReplyException && _block.Head.StartsWith(_sent.AsSpan(0, _sentLength - 1));
+            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_sent.AsSpan(0, _sentLength - 1));
             ExceptionDispatchInfo.Throw(Failure(echo ? new ReplyException(ReplyFault.Echo, query) : e, query, cancel));
             throw;
         }
         finally
         {
             _deadline.End();
-            _block.Dispose();
+            _replies.Blocks.Dispose();
         }
     }
 
@@ -121,16 +119,9 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         {
             Put(query);
             Put(ErrorQuery);
-            var answer = Encoding.UTF8.GetString(_buffer.AsSpan(await ReadLine(false, token)));
-            var entry = Encoding.UTF8.GetBytes(answer);
-            if (answer.Contains(",\"", StringComparison.Ordinal))
-            {
-                var refusal = ErrorEntry.Parse(entry);
-                Finish(query);
-                return (null, refusal);
-            }
-
-            var error = ErrorEntry.Parse(_buffer.AsSpan(await ReadLine(false, token)));
+            var line = await _replies.ReadLine(token);
+            var answer = IsErrorEntry(line.Span) ? null : Encoding.UTF8.GetString(line.Span);
+            var error = ErrorEntry.Parse((answer is null ? line : await _replies.ReadLine(token)).Span);
             Finish(query);
             return (answer, error);
         }
@@ -157,7 +148,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         List<ErrorEntry>? entries = null;
         for (var n = 0; n < MostErrors; n++)
         {
-            var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, false, cancel);
+            var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, cancel);
             if (entry.IsNone)
             {
                 _errorsUnread = false;
@@ -208,19 +199,19 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     public void Dispose()
     {
         link.Dispose();
-        _block.Dispose();
+        _replies.Dispose();
         _deadline.Dispose();
     }
 
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    private async ValueTask<T> Exchange<T>(string query, ReplyParser<T> parse, bool quoted, CancellationToken cancel)
+    private async ValueTask<T> Exchange<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         _doubt = query;
         var token = _deadline.Start(options.ReplyWithin, cancel);
         try
         {
             Put(query);
-            var value = parse(Reply(await ReadLine(quoted, token)));
+            var value = parse(Reply(await _replies.ReadLine(token)));
             Finish(query);
             return value;
         }
@@ -257,14 +248,13 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     private async ValueTask<int> Drain(CancellationToken cancel)
     {
         var began = time.GetTimestamp();
-        var dropped = _end - _start;
-        _start = _end = 0;
+        var dropped = _replies.Drop();
         while (time.GetElapsedTime(began) <= options.ReplyWithin + options.Silence)
         {
             var token = _deadline.Start(options.Silence, cancel);
             try
             {
-                dropped += await Receive(_buffer, token);
+                dropped += await _replies.DropNext(token);
             }
             catch (OperationCanceledException) when (!cancel.IsCancellationRequested)
             {
@@ -294,7 +284,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
             Put(FormattableString.Invariant($"*ESE {_sentinel};*ESE?"));
             for (var n = 0; n < MostDropped; n++)
             {
-                var reply = _buffer.AsMemory(await ReadLine(false, token));
+                var reply = await _replies.ReadLine(token);
                 if (IsSentinel(ReplyText.Trim(reply.Span)))
                 {
                     return dropped;
@@ -334,59 +324,21 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     }
 
     /// <summary>A reply, refused where it is the question itself.</summary>
-    private ReadOnlySpan<byte> Reply(Range line)
-    {
-        var reply = _buffer.AsSpan(line);
-        return reply.SequenceEqual(_sent.AsSpan(0, _sentLength - 1)) ? throw new ReplyException(ReplyFault.Echo, reply) : reply;
-    }
+    private ReadOnlySpan<byte> Reply(ReadOnlyMemory<byte> line) =>
+        line.Span.SequenceEqual(_sent.AsSpan(0, _sentLength - 1)) ? throw new ReplyException(ReplyFault.Echo, line.Span) : line.Span;
 
-    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    private async ValueTask<Range> ReadLine(bool quoted, CancellationToken token)
-    {
-        Range reply;
-        int consumed;
-        while (!ReplyLine.TryRead(_buffer.AsSpan(_start, _end - _start), quoted, out reply, out consumed))
-        {
-            if (_start > 0)
-            {
-                _buffer.AsSpan(_start, _end - _start).CopyTo(_buffer);
-                (_start, _end) = (0, _end - _start);
-            }
+    /// <summary>Whether a line is a number and a quoted text, as no answer of a measurement or setting is.</summary>
+    private static bool IsErrorEntry(ReadOnlySpan<byte> line) => line.IndexOf(",\""u8) is > 0 and var comma
+        && ReplyNumber.IsNumeric(ReplyText.Trim(line[..comma]));
 
-            _end += await Receive(_buffer.AsMemory(_end), token);
-        }
-
-        var from = _start;
-        _start += consumed;
-        return (from + reply.Start.Value)..(from + reply.End.Value);
-    }
-
-    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder))]
-    private async ValueTask ReadBlock(CancellationToken token)
-    {
-        while (!_block.IsWhole)
-        {
-            var headDue = _block.Announced is null;
-            _block.Advance(await Receive(_block.Space, token));
-            if (headDue && _block.Announced is { } length)
-            {
-                _deadline.Extend(options.ReplyWithin + TimeSpan.FromSeconds(length / options.BlockRate));
-            }
-        }
-    }
-
-    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    private async ValueTask<int> Receive(Memory<byte> space, CancellationToken token)
-    {
-        var count = await link.Read(space, token);
-        return count > 0 ? count : throw new LinkException(link.Name, "the instrument closed the connection");
-    }
+    private void Extend(int length) =>
+        _deadline.Extend(options.ReplyWithin + TimeSpan.FromSeconds(length / options.BlockRate));
 
     /// <summary>Takes the doubt back, unless more came than was asked for.</summary>
     private void Finish(string query)
     {
         _doubt = null;
-        if (_block.Excess > 0 || HoldsReply())
+        if (_replies.HoldsReply)
         {
             Doubt($"more than one reply to '{query}'");
         }
@@ -396,22 +348,13 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         try
         {
-            while (!HoldsReply() && link.HasInput)
-            {
-                _start = 0;
-                _end = await Receive(_buffer, cancel);
-            }
+            return await _replies.HasUnasked(cancel);
         }
         catch (LinkException e)
         {
             throw Break(e);
         }
-
-        return HoldsReply();
     }
-
-    /// <summary>Whether more than the carriage return is held that some instruments send after their newline.</summary>
-    private bool HoldsReply() => _buffer.AsSpan(_start, _end - _start).ContainsAnyExcept((byte)'\r');
 
     private Exception Failure(Exception e, string query, CancellationToken cancel)
     {
@@ -429,7 +372,8 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
                 var failure = new LinkException(link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
                 return reply.Fault == ReplyFault.TooLong ? Break(failure) : failure;
             case LinkException lost:
-                return Break(lost);
+                Break(lost);
+                return Broken!;
             default:
                 return e;
         }

@@ -66,6 +66,11 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
 
     public async ValueTask DisposeAsync()
     {
+        if (_stop.IsCancellationRequested)
+        {
+            return;
+        }
+
         await _stop.CancelAsync();
         _listener.Stop();
         foreach (var client in _clients)
@@ -74,7 +79,6 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
         }
 
         await _serving;
-        _stop.Dispose();
     }
 
     private async Task Serve()

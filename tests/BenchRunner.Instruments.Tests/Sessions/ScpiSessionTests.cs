@@ -1,62 +1,48 @@
 using BenchRunner.Instruments.Links;
-using BenchRunner.Instruments.Replies;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Instruments.Sessions;
 using BenchRunner.Instruments.Tests.Scripts;
 
 namespace BenchRunner.Instruments.Tests.Sessions;
 
-public class ScpiSessionTests
+public class ScpiSessionTests : SessionFixture
 {
-    // Long enough that a busy machine never misses it where a reply is meant to come; the tests that want a time-out use Brief.
-    private static readonly SessionOptions Patient = new() { ReplyWithin = TimeSpan.FromSeconds(20), ConnectWithin = TimeSpan.FromSeconds(20) };
-    private readonly CancellationToken _cancel = TestContext.Current.CancellationToken;
-    private readonly Recorder _log = new();
-
-    private Task<ScpiSession> Open(ScriptedInstrument instrument, SessionOptions? options = null) =>
-        ScpiSession.Open("supply", instrument.Address, options ?? Patient, TimeProvider.System, _log, _cancel);
-
     [Fact]
     public async Task A_question_is_answered_and_a_setting_checked_in_the_error_queue()
     {
-        await using var instrument = new ScriptedInstrument();
-        instrument.Keep("VOLT", "VOLT?", "0");
-        using var session = await Open(instrument);
+        using var session = await Open();
 
-        await session.Set("VOLT 48", _cancel);
+        await session.Set("VOLT 48", Cancel);
 
-        Assert.Equal(48, await session.Ask("VOLT?", ReplyNumber.Parse, _cancel));
+        Assert.Equal(48, await Ask(session, "VOLT?"));
         Assert.Equal("MAKER", session.Identity.Maker);
-        Assert.Equal("SYSTem:ERRor?", instrument.Received[Array.IndexOf(instrument.Received, "VOLT 48") + 1]);
+        Assert.Equal("SYSTem:ERRor?", Instrument.Received[Array.IndexOf(Instrument.Received, "VOLT 48") + 1]);
     }
 
     [Fact]
     public async Task Errors_that_were_there_at_the_start_are_logged_and_not_blamed_on_our_command()
     {
-        await using var instrument = new ScriptedInstrument();
-        instrument.On("X", _ => Task.CompletedTask);
-        instrument.Fail("-222,\"Data out of range\"");
-        instrument.Fail("-350,\"Queue overflow\"");
-        using var session = await Open(instrument);
+        Instrument.Fail("-222,\"Data out of range\"");
+        Instrument.Fail("-350,\"Queue overflow\"");
+        using var session = await Open();
 
-        await session.Set("X", _cancel);
+        await session.Set("VOLT 1", Cancel);
 
-        Assert.Equal(2, _log.Events.Count(e => e.Kind == InstrumentEventKind.Errors));
-        Assert.Contains("*CLS", instrument.Received);
+        Assert.Equal(2, Log.Events.Count(e => e.Kind == InstrumentEventKind.Errors));
+        Assert.Contains("*CLS", Instrument.Received);
     }
 
     [Fact]
     public async Task A_refused_setting_names_every_entry_of_the_queue()
     {
-        await using var instrument = new ScriptedInstrument();
-        instrument.On("VOLT 2000", _ => ScriptedInstrument.Done(() =>
+        Instrument.On("VOLT 2000", _ => ScriptedInstrument.Done(() =>
         {
-            instrument.Fail("-222,\"Data out of range;VOLT 2000\"");
-            instrument.Fail("-350,\"Queue overflow\"");
+            Instrument.Fail("-222,\"Data out of range;VOLT 2000\"");
+            Instrument.Fail("-350,\"Queue overflow\"");
         }));
-        using var session = await Open(instrument);
+        using var session = await Open();
 
-        var e = await Assert.ThrowsAsync<InstrumentException>(() => session.Set("VOLT 2000", _cancel));
+        var e = await Assert.ThrowsAsync<InstrumentException>(() => session.Set("VOLT 2000", Cancel));
 
         Assert.Contains("-222 Data out of range; VOLT 2000", e.Message, StringComparison.Ordinal);
         Assert.Contains("unknown", e.Message, StringComparison.Ordinal);
@@ -64,48 +50,84 @@ public class ScpiSessionTests
     }
 
     [Fact]
-    public async Task A_late_reply_never_answers_the_next_question()
+    public async Task An_error_queue_that_never_gets_empty_is_given_up()
     {
-        await using var instrument = new ScriptedInstrument();
-        instrument.On("B?", "2");
-        using var session = await Open(instrument, Brief);
+        using var session = await Open();
+        Instrument.On("SYSTem:ERRor?", "-100,\"Command error\"");
 
-        // The reply to A? comes at the worst moment: just before the answer to the first question of the resynchronisation.
-        instrument.Once("A?", _ => Task.CompletedTask);
-        instrument.Once("*ESE 101;*ESE?", async v =>
-        {
-            await v.Line("1");
-            await v.Line("101");
-        });
-        await Assert.ThrowsAsync<LinkException>(async () => await session.Ask("A?", ReplyNumber.Parse, _cancel));
+        await Assert.ThrowsAsync<LinkException>(() => session.Set("VOLT 1", Cancel));
 
-        Assert.Equal(2, await session.Ask("B?", ReplyNumber.Parse, _cancel));
-        Assert.True(_log.Has(InstrumentEventKind.Resynchronised));
-        Assert.Equal(1, instrument.Visits);
+        Assert.InRange(Instrument.Count("SYSTem:ERRor?"), 64, 70);
     }
 
     [Fact]
-    public async Task A_late_reply_that_happens_to_be_the_number_asked_for_is_told_apart()
+    public async Task Callers_that_ask_at_once_get_their_own_answers()
     {
-        await using var instrument = new ScriptedInstrument();
-        instrument.On("B?", "2");
-        using var session = await Open(instrument, Brief);
-
-        instrument.Once("A?", _ => Task.CompletedTask);
-        instrument.Once("*ESE 101;*ESE?", async v =>
+        for (var i = 0; i < 20; i++)
         {
-            await v.Line("101");
-            await v.Line("101");
-        });
-        await Assert.ThrowsAsync<LinkException>(async () => await session.Ask("A?", ReplyNumber.Parse, _cancel));
+            Instrument.On($"N{i}?", $"{i}");
+        }
 
-        Assert.Equal(2, await session.Ask("B?", ReplyNumber.Parse, _cancel));
+        using var session = await Open();
+
+        var answers = await Task.WhenAll(Enumerable.Range(0, 20).Select(i => Ask(session, $"N{i}?")));
+
+        Assert.Equal(Enumerable.Range(0, 20).Select(i => (double)i), answers);
     }
 
-    private static SessionOptions Brief => Patient with
+    [Fact]
+    public async Task A_command_that_sets_down_does_not_wait_for_an_outstanding_reply()
     {
-        ReplyWithin = TimeSpan.FromMilliseconds(400),
-        Silence = TimeSpan.FromMilliseconds(20),
-        ReadAttempts = 1,
-    };
+        using var session = await Open();
+        var late = new TaskCompletionSource();
+        Instrument.Once("B?", async v =>
+        {
+            // The instrument reads on while it computes its answer.
+            _ = late.Task.ContinueWith(_ => v.Line("7"), TaskScheduler.Default).Unwrap();
+            await Task.CompletedTask;
+        });
+        Instrument.On("OFF", _ => ScriptedInstrument.Done(late.SetResult));
+
+        var answer = Ask(session, "B?");
+        await Clock.Until(() => Instrument.Count("B?") == 1);
+        session.SendNow("OFF");
+
+        Assert.Equal(7, await answer);
+    }
+
+    [Fact]
+    public async Task Setting_down_is_sent_again_over_a_new_connection()
+    {
+        using var session = await Open(Options with { ReadAttempts = 3 });
+        Instrument.On("OFF", v => v.Visit == 1 ? v.HangUp() : Task.CompletedTask);
+
+        await session.SetDown(["OFF"], Cancel);
+
+        Assert.Equal((2, 2), (Instrument.Count("OFF"), Instrument.Visits));
+        Assert.True(Log.Has(InstrumentEventKind.Reconnected));
+    }
+
+    [Theory]
+    [InlineData("VOLT 1\nOUTP 1")]
+    [InlineData("VOLT 1\u0007")]
+    [InlineData("VOLT µ")]
+    [InlineData("")]
+    public async Task A_message_of_more_than_one_line_of_ascii_is_refused(string message)
+    {
+        using var session = await Open();
+        await Assert.ThrowsAsync<ArgumentException>(() => session.Set(message, Cancel));
+        Assert.Equal(2, await Ask(session, "B?"));
+    }
+
+    [Fact]
+    public async Task An_address_where_nothing_listens_is_tried_as_often_as_said_and_named()
+    {
+        var address = Instrument.Address;
+        await Instrument.DisposeAsync();
+        var open = ScpiSession.Open("supply", address, Options with { ConnectAttempts = 3 }, Time, Log, Cancel);
+        await Time.PassUntil(TimeSpan.FromMilliseconds(50), () => open.IsCompleted);
+
+        var e = await Assert.ThrowsAsync<LinkException>(() => open);
+        Assert.StartsWith(address.ToString(), e.Message, StringComparison.Ordinal);
+    }
 }
