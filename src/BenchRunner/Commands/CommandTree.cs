@@ -9,6 +9,9 @@ internal static class CommandTree
         "Measures switching devices by double pulses, keeps the evidence, decides device by device. "
             + "LETHAL VOLTAGES: this program is not a safety device; interlock, emergency stop and bleeder are hardware.")
     {
+        PlanCommand.Build(),
+        QuantitiesCommand.Build(),
+        SchemaCommand.Build(),
         BenchCommand.Build(),
     };
 }

@@ -1,0 +1,24 @@
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Instruments.Sessions;
+
+namespace BenchRunner.Runner.Benches;
+
+/// <summary>Makes events of what the links report.</summary>
+public sealed class InstrumentReports(EventSource events) : IInstrumentLog
+{
+    /// <inheritdoc/>
+    public void Report(InstrumentEvent what)
+    {
+        ArgumentNullException.ThrowIfNull(what);
+        (Severity severity, string kind) = what.Kind switch
+        {
+            InstrumentEventKind.Connected => (Severity.Detail, "link-connected"),
+            InstrumentEventKind.OldErrors => (Severity.Warning, "old-errors"),
+            InstrumentEventKind.Doubt => (Severity.Warning, "link-doubt"),
+            InstrumentEventKind.Resynchronised => (Severity.Warning, "link-resynchronised"),
+            InstrumentEventKind.Reconnected => (Severity.Warning, "link-reconnected"),
+            _ => (Severity.Error, "link-broken"),
+        };
+        events.As(what.Role).Say(severity, kind, $"{what.Message} ({what.Link})");
+    }
+}

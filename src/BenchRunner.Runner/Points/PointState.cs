@@ -1,0 +1,60 @@
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Validity;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Runner.Points;
+
+/// <summary>What one operating point's loop carries from capture to capture.</summary>
+internal sealed class PointState(PlannedPoint planned)
+{
+    /// <summary>How much a range grows or shrinks when a capture asks for the next one.</summary>
+    private const double RangeStep = 2;
+
+    public PlannedPoint Planned { get; } = planned;
+
+    public TrainSet Set { get; private set; } = new(
+        planned.FirstPulse, planned.Point.Gap, planned.Point.SecondPulse, planned.Point.GateOn, planned.Point.GateOff);
+
+    public List<PlannedRange> Ranges { get; } = [.. planned.Ranges];
+
+    public List<ValidCapture> Valid { get; } = [];
+
+    public int Taken { get; set; }
+
+    public int LostInARow { get; set; }
+
+    public int StaleInARow { get; private set; }
+
+    public long? FiredAt { get; set; }
+
+    public long? Count { get; private set; }
+
+    public IReadOnlyList<RawTrace> Previous { get; private set; } = [];
+
+    /// <summary>Whether the pulser must be given the train again before the next one.</summary>
+    public bool TrainChanged { get; set; }
+
+    /// <summary>Takes over what a capture asks of the next.</summary>
+    public void Follow(ScopeRecord record, Verdict verdict)
+    {
+        bool stale = verdict.Findings.Any(finding => finding.Criterion == Criteria.Fresh);
+        StaleInARow = stale ? StaleInARow + 1 : 0;
+        Previous = record.Traces;
+        Count = record.Count;
+        if (verdict.CorrectedFirstPulse is { } width)
+        {
+            Set = Set with { First = width };
+            TrainChanged = true;
+        }
+
+        for (int i = 0; i < Ranges.Count; i++)
+        {
+            if (verdict.NextRange.TryGetValue(Ranges[i].Channel, out bool wider))
+            {
+                double factor = wider ? RangeStep : 1 / RangeStep;
+                Ranges[i] = Ranges[i] with { Span = Ranges[i].Span * factor };
+            }
+        }
+    }
+}

@@ -1,0 +1,223 @@
+using System.Runtime.InteropServices;
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Evidence.Stores;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Exchanges;
+using BenchRunner.Runner.Sinks;
+using BenchRunner.Safety;
+using BenchRunner.Safety.Latches;
+using BenchRunner.Safety.Locks;
+using BenchRunner.Safety.SafeStates;
+using BenchRunner.Safety.Supervision;
+
+namespace BenchRunner.Runner.Sessions;
+
+/// <summary>A session at one bench: lock and latch, evidence, instruments, confirmation, then device after device.</summary>
+public sealed class RunSession
+{
+    private readonly RunRequest _request;
+    private readonly IRunSink _sinks;
+    private readonly IConfirmation _confirmation;
+    private readonly TimeProvider _time;
+    private readonly DeviceJournal _journal;
+    private readonly EventSource _events;
+    private readonly LatchFile _latch;
+
+    /// <summary>Makes a session; nothing is opened before <see cref="Run"/>.</summary>
+    public RunSession(RunRequest request, IRunSink sinks, IConfirmation confirmation, TimeProvider time)
+    {
+        ArgumentNullException.ThrowIfNull(request);
+        _request = request;
+        _sinks = sinks;
+        _confirmation = confirmation;
+        _time = time;
+        _journal = new DeviceJournal(sinks);
+        _events = new EventSource("runner", _journal, time);
+        _latch = new LatchFile(Bench.Source.Path);
+    }
+
+    /// <summary>What quantities and decisions are formed by; a changed result needs a new one.</summary>
+    public static string Algorithm => "1";
+
+    private Plan Plan => _request.Plan;
+
+    private Bench Bench => _request.Plan.Bench;
+
+    /// <summary>A bench with a <c>fake:</c> block is new at each start: it leaves no latch and takes no lock.</summary>
+    private bool IsNewEachTime => Bench.Fake is not null;
+
+    /// <summary>Runs devices one after the other.</summary>
+    /// <param name="devices">Serials, checked; the next is asked for when the one before has ended.</param>
+    /// <param name="operatorStop">Cancelled when the operator interrupts.</param>
+    /// <exception cref="RefusedException">Refused before anything was energised.</exception>
+    /// <exception cref="Evidence.EvidenceException">The evidence cannot be opened.</exception>
+    /// <exception cref="Instruments.Links.LinkException">An instrument cannot be reached.</exception>
+    /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
+    /// <exception cref="BenchException">The bench is not fit to run on.</exception>
+    /// <exception cref="SafetyException">The bench is not safe to begin with.</exception>
+    public async Task<RunSummary> Run(IAsyncEnumerable<string> devices, CancellationToken operatorStop)
+    {
+        ArgumentNullException.ThrowIfNull(devices);
+        using BenchLock? held = IsNewEachTime ? null : TakeBench();
+        using EvidenceStore store = EvidenceStore.Open(_request.EvidencePath, _time);
+        foreach (ClosedRun closed in store.Closed)
+        {
+            _events.Say(
+                Severity.Warning, "run-closed",
+                $"run {closed.Run} of {closed.Device} had no end and was closed as stopped; {closed.Captures} captures are kept");
+        }
+
+        await using IAsyncEnumerator<string> serials = devices.GetAsyncEnumerator(operatorStop);
+        if (!await serials.MoveNextAsync())
+        {
+            return new RunSummary([], [], IsNewEachTime);
+        }
+
+        await using FakeBenchProcess? fake = IsNewEachTime
+            ? await FakeBenchProcess.Start(Bench, serials.Current, _time, operatorStop) : null;
+        await using OpenBench open = await OpenBench.Open(
+            Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), _time, operatorStop);
+        foreach ((string role, InstrumentIdentity identity) in open.Identities)
+        {
+            _events.Say(Severity.Information, "instrument", $"{role}: {identity.Text}");
+        }
+
+        await using var supervisor = new SafetySupervisor(
+            open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
+        await supervisor.Start(operatorStop);
+        return await Devices(serials, store, open, supervisor, fake, operatorStop);
+    }
+
+    private async Task<RunSummary> Devices(
+        IAsyncEnumerator<string> serials,
+        EvidenceStore store,
+        OpenBench open,
+        SafetySupervisor supervisor,
+        FakeBenchProcess? fake,
+        CancellationToken operatorStop)
+    {
+        var reports = new List<DeviceReport>();
+        while (true)
+        {
+            string device = serials.Current;
+            string confirmedBy = await Confirm(open, operatorStop);
+            reports.Add(await One(device, confirmedBy, store, open, supervisor, operatorStop));
+            if (reports[^1].Ending != BenchEnding.Proved)
+            {
+                return new RunSummary(reports, await Rest(serials, operatorStop), open.IsSimulated);
+            }
+
+            if (!await serials.MoveNextAsync())
+            {
+                return new RunSummary(reports, [], open.IsSimulated);
+            }
+
+            if (fake is null)
+            {
+                throw new RefusedException(
+                    RefusalKind.Input, $"{serials.Current}: this bench takes one device a call; start another run for it");
+            }
+
+            await new Exchange(fake, open.Safety.Interlock, _events, _time).Insert(serials.Current, operatorStop);
+        }
+    }
+
+    private async Task<DeviceReport> One(
+        string device,
+        string confirmedBy,
+        EvidenceStore store,
+        OpenBench open,
+        SafetySupervisor supervisor,
+        CancellationToken operatorStop)
+    {
+        RunWriter evidence = store.BeginRun(Header(device, confirmedBy, open.IsSimulated));
+        _journal.Follow(evidence);
+        try
+        {
+            foreach ((string role, InstrumentIdentity identity) in open.Identities)
+            {
+                evidence.AddInstrument(role, identity.Text, identity.Serial, identity.Firmware);
+            }
+
+            _events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
+            DeviceReport report = await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
+                .Walk(device, evidence, operatorStop);
+            LeaveLatch(supervisor, report);
+            return report;
+        }
+        finally
+        {
+            _journal.Follow(null);
+        }
+    }
+
+    private void LeaveLatch(SafetySupervisor supervisor, DeviceReport report)
+    {
+        if (!IsNewEachTime && supervisor.Trip is { Energised: true } trip)
+        {
+            _latch.Set(trip.At, $"{report.Device}: {trip.Reason}");
+            _events.Say(
+                Severity.Alarm, "latched",
+                $"the bench is latched ({_latch.Path}); find the cause, then: benchrunner bench clear --bench {Bench.Source.Path}");
+        }
+    }
+
+    private async Task<string> Confirm(OpenBench open, CancellationToken operatorStop) =>
+        await _confirmation.Confirm(Plan, open.IsSimulated, operatorStop)
+            ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
+
+    private BenchLock TakeBench()
+    {
+        if (_latch.Read() is { } said)
+        {
+            throw new RefusedException(
+                RefusalKind.Latched,
+                $"a latch stands on bench {Bench.Name}: {said}; find and put right the cause, then: "
+                    + $"benchrunner bench clear --bench {Bench.Source.Path} --by NAME --because TEXT");
+        }
+
+        return BenchLock.TryTake(Bench.Source.Path, _time.GetUtcNow(), out string? holder)
+            ?? throw new RefusedException(RefusalKind.Taken, $"bench {Bench.Name} is in use by {holder}; wait until that run has ended");
+    }
+
+    private RunHeader Header(string device, string confirmedBy, bool simulated) => new()
+    {
+        Device = device,
+        Lot = _request.Lot,
+        Sequence = Plan.Sequence,
+        Bench = Bench.Name,
+        Files = [Bench.Source, .. _request.Dialects.Values.Select(dialect => dialect.Source)],
+        Operator = _request.Operator,
+        ArmedBy = confirmedBy,
+        Companion = _request.Companion,
+        Simulated = simulated,
+        Again = _request.Again,
+        Algorithm = Algorithm,
+        Platform = $"{RuntimeInformation.RuntimeIdentifier} {RuntimeInformation.FrameworkDescription}",
+    };
+
+    private static async Task<IReadOnlyList<string>> Rest(
+        IAsyncEnumerator<string> serials, CancellationToken operatorStop)
+    {
+        var rest = new List<string>();
+        try
+        {
+            while (!operatorStop.IsCancellationRequested && await serials.MoveNextAsync())
+            {
+                rest.Add(serials.Current);
+            }
+        }
+        catch (OperationCanceledException)
+        {
+            // The operator has left: whoever was not named yet stays unnamed.
+        }
+
+        return rest;
+    }
+}

@@ -1,0 +1,46 @@
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Console;
+
+/// <summary>A plan as text for a person.</summary>
+internal static class PlanText
+{
+    public static IEnumerable<string> Lines(Planned planned)
+    {
+        if (planned.Plan is { } plan)
+        {
+            yield return $"{plan.Sequence.Name}, revision {plan.Sequence.Revision}, on bench {plan.Bench.Name}";
+            foreach (string line in plan.Points.SelectMany(Point))
+            {
+                yield return line;
+            }
+
+            yield return $"one device: about {SiText.Format(plan.Duration, "s", 3)}, at most {plan.Bytes / 1e6:0.0} MB of evidence";
+        }
+
+        foreach (Problem refusal in planned.Refusals)
+        {
+            yield return $"refused: {refusal}";
+        }
+    }
+
+    private static IEnumerable<string> Point(PlannedPoint point)
+    {
+        string temperature = point.Point.Temperature is { } degrees ? $"{degrees:0.#} degC" : "ambient";
+        yield return $"{point.Point.Name}: {SiText.Format(point.Point.BusVoltage, "V")}, "
+            + $"{SiText.Format(point.Point.LoadCurrent, "A")}, {temperature}";
+        yield return $"  pulses {SiText.Format(point.FirstPulse, "s")}, gap {SiText.Format(point.Point.Gap, "s")}, "
+            + $"{SiText.Format(point.Point.SecondPulse, "s")}; every {SiText.Format(point.Point.RepeatEvery, "s")}";
+        yield return $"  stored {SiText.Format(point.StoredEnergy, "J", 3)} in the bank, "
+            + $"{SiText.Format(point.LoadEnergy, "J", 3)} in the load; droop {point.BusDroop:0.00 %}";
+        string rise = point.JunctionRise is { } kelvin ? $"junction rise {SiText.Format(kelvin, "K", 2)}" : "junction rise not stated";
+        yield return $"  second turn-off at {SiText.Format(point.Off2Current, "A", 3)}, peak about "
+            + $"{SiText.Format(point.Off2PeakVoltage, "V", 3)}; {rise}";
+        yield return $"  {point.Samples} samples a channel at {SiText.Format(point.SampleInterval, "s")}; ranges "
+            + string.Join(", ", point.Ranges.Select(range =>
+                $"{range.Channel.Name()} {SiText.Format(range.Offset - (range.Span / 2), range.Channel.Unit(), 3)} to "
+                + SiText.Format(range.Offset + (range.Span / 2), range.Channel.Unit(), 3)));
+    }
+}

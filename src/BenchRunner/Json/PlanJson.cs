@@ -1,0 +1,52 @@
+using System.Text.Json.Nodes;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Json;
+
+/// <summary>A plan with its refusals as JSON.</summary>
+internal static class PlanJson
+{
+    public static void Write(Sequence sequence, Planned planned) => JsonOutput.Write(new JsonObject
+    {
+        ["sequence"] = sequence.Name,
+        ["revision"] = sequence.Revision,
+        ["part"] = sequence.Part,
+        ["operating_points"] = JsonOutput.Array(planned.Plan?.Points ?? [], Point),
+        ["duration"] = JsonOutput.Number(planned.Plan?.Duration),
+        ["bytes"] = planned.Plan?.Bytes,
+        ["refusals"] = JsonOutput.Array(planned.Refusals, refusal => new JsonObject
+        {
+            ["where"] = refusal.Where.ToString(),
+            ["message"] = refusal.Message(),
+        }),
+    });
+
+    private static JsonObject Point(PlannedPoint point) => new()
+    {
+        ["name"] = point.Point.Name,
+        ["bus_voltage"] = JsonOutput.Number(point.Point.BusVoltage),
+        ["load_current"] = JsonOutput.Number(point.Point.LoadCurrent),
+        ["first_pulse"] = JsonOutput.Number(point.FirstPulse),
+        ["gap"] = JsonOutput.Number(point.Point.Gap),
+        ["second_pulse"] = JsonOutput.Number(point.Point.SecondPulse),
+        ["stored_energy"] = JsonOutput.Number(point.StoredEnergy),
+        ["load_energy"] = JsonOutput.Number(point.LoadEnergy),
+        ["bus_droop"] = JsonOutput.Number(point.BusDroop),
+        ["junction_rise"] = JsonOutput.Number(point.JunctionRise),
+        ["off2_current"] = JsonOutput.Number(point.Off2Current),
+        ["off2_peak_voltage"] = JsonOutput.Number(point.Off2PeakVoltage),
+        ["sample_interval"] = JsonOutput.Number(point.SampleInterval),
+        ["samples"] = point.Samples,
+        ["ranges"] = JsonOutput.Array(point.Ranges, range => new JsonObject
+        {
+            ["channel"] = range.Channel.Name(),
+            ["span"] = JsonOutput.Number(range.Span),
+            ["offset"] = JsonOutput.Number(range.Offset),
+        }),
+    };
+
+    private static string Message(this Problem refusal) => refusal.ToString()[(refusal.Where.ToString().Length + 2)..];
+}
