@@ -61,9 +61,15 @@ public sealed class RunSession
     /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
     /// <exception cref="BenchException">The bench is not fit to run on.</exception>
     /// <exception cref="SafetyException">The bench is not safe to begin with.</exception>
-    public async Task<RunSummary> Run(IAsyncEnumerable<string> devices, CancellationToken operatorStop)
+    public async Task<RunSummary> Run(IDeviceSource devices, CancellationToken operatorStop)
     {
         ArgumentNullException.ThrowIfNull(devices);
+        if (!IsNewEachTime && devices.Waiting.Count > 1)
+        {
+            throw new RefusedException(
+                RefusalKind.Input, $"bench {Bench.Name} takes one device a call; start a run for each");
+        }
+
         using BenchLock? held = IsNewEachTime ? null : TakeBench();
         using EvidenceStore store = EvidenceStore.Open(_request.EvidencePath, _time);
         foreach (ClosedRun closed in store.Closed)
@@ -73,14 +79,13 @@ public sealed class RunSession
                 $"run {closed.Run} of {closed.Device} had no end and was closed as stopped; {closed.Captures} captures are kept");
         }
 
-        await using IAsyncEnumerator<string> serials = devices.GetAsyncEnumerator(operatorStop);
-        if (!await serials.MoveNextAsync())
+        if (await devices.Next(operatorStop) is not { } first)
         {
             return new RunSummary([], [], IsNewEachTime);
         }
 
         await using FakeBenchProcess? fake = IsNewEachTime
-            ? await FakeBenchProcess.Start(Bench, serials.Current, _time, operatorStop) : null;
+            ? await FakeBenchProcess.Start(Bench, first, _time, operatorStop) : null;
         await using OpenBench open = await OpenBench.Open(
             Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), _time, operatorStop);
         foreach ((string role, InstrumentIdentity identity) in open.Identities)
@@ -91,11 +96,12 @@ public sealed class RunSession
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
         await supervisor.Start(operatorStop);
-        return await Devices(serials, store, open, supervisor, fake, operatorStop);
+        return await Devices(first, devices, store, open, supervisor, fake, operatorStop);
     }
 
     private async Task<RunSummary> Devices(
-        IAsyncEnumerator<string> serials,
+        string first,
+        IDeviceSource devices,
         EvidenceStore store,
         OpenBench open,
         SafetySupervisor supervisor,
@@ -103,28 +109,24 @@ public sealed class RunSession
         CancellationToken operatorStop)
     {
         var reports = new List<DeviceReport>();
+        string device = first;
         while (true)
         {
-            string device = serials.Current;
             string confirmedBy = await Confirm(open, operatorStop);
             reports.Add(await One(device, confirmedBy, store, open, supervisor, operatorStop));
             if (reports[^1].Ending != BenchEnding.Proved)
             {
-                return new RunSummary(reports, await Rest(serials, operatorStop), open.IsSimulated);
+                return new RunSummary(reports, devices.Waiting, open.IsSimulated);
             }
 
-            if (!await serials.MoveNextAsync())
+            // A bench whose hands are not ours takes one device a call.
+            if (fake is null || await devices.Next(operatorStop) is not { } next)
             {
                 return new RunSummary(reports, [], open.IsSimulated);
             }
 
-            if (fake is null)
-            {
-                throw new RefusedException(
-                    RefusalKind.Input, $"{serials.Current}: this bench takes one device a call; start another run for it");
-            }
-
-            await new Exchange(fake, open.Safety.Interlock, _events, _time).Insert(serials.Current, operatorStop);
+            device = next;
+            await new Exchange(fake, open.Safety.Interlock, _events, _time).Insert(device, operatorStop);
         }
     }
 
@@ -201,23 +203,4 @@ public sealed class RunSession
         Algorithm = Algorithm,
         Platform = $"{RuntimeInformation.RuntimeIdentifier} {RuntimeInformation.FrameworkDescription}",
     };
-
-    private static async Task<IReadOnlyList<string>> Rest(
-        IAsyncEnumerator<string> serials, CancellationToken operatorStop)
-    {
-        var rest = new List<string>();
-        try
-        {
-            while (!operatorStop.IsCancellationRequested && await serials.MoveNextAsync())
-            {
-                rest.Add(serials.Current);
-            }
-        }
-        catch (OperationCanceledException)
-        {
-            // The operator has left: whoever was not named yet stays unnamed.
-        }
-
-        return rest;
-    }
 }
