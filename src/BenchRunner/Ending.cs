@@ -17,6 +17,23 @@ internal static class Ending
         {
             return Say(wrong.Message, ExitCode.WrongInput);
         }
+        catch (Runner.Sessions.RefusedException refused)
+        {
+            return Say(refused.Message, refused.Kind switch
+            {
+                Runner.Sessions.RefusalKind.Latched => ExitCode.Safety,
+                Runner.Sessions.RefusalKind.Taken => ExitCode.Instrument,
+                _ => ExitCode.WrongInput,
+            });
+        }
+        catch (Evidence.Stores.RunRefusedException refused)
+        {
+            return Say(refused.Message, ExitCode.WrongInput);
+        }
+        catch (Evidence.EvidenceException lost)
+        {
+            return Say(lost.Message, ExitCode.Evidence);
+        }
         catch (Safety.SafetyException stopped)
         {
             return Say(stopped.Message, ExitCode.Safety);

@@ -10,6 +10,7 @@ internal static class CommandTree
             + "LETHAL VOLTAGES: this program is not a safety device; interlock, emergency stop and bleeder are hardware.")
     {
         PlanCommand.Build(),
+        RunCommand.Build(),
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),
         BenchCommand.Build(),

@@ -1,0 +1,65 @@
+using System.CommandLine;
+using BenchRunner.Console;
+using BenchRunner.Files;
+using BenchRunner.Json;
+using BenchRunner.Runner.Sessions;
+using BenchRunner.Runner.Sinks;
+
+namespace BenchRunner.Commands;
+
+/// <summary><c>run</c>: the main job.</summary>
+internal static class RunCommand
+{
+    public static Command Build()
+    {
+        var options = new RunOptions();
+        var command = new Command(
+            "run",
+            "takes devices through a sequence, stores the evidence, decides.\n"
+                + "DANGER: on a real bench this charges a capacitor to lethal voltage. Enclosure closed, nobody inside, eye "
+                + "protection, not alone, hardware emergency stop in reach; this program is not a safety device.\n"
+                + "Example: benchrunner run sequences/winch-drive-incoming.yaml --device W1200-0001");
+        options.AddTo(command);
+        command.SetAction((parsed, stop) => Run(options.From(parsed), stop));
+        return command;
+    }
+
+    private static async Task<int> Run(RunArguments arguments, CancellationToken stop)
+    {
+        Job job = Job.Read(arguments.Sequence, arguments.Bench);
+        bool fake = job.Bench.Fake is not null;
+        arguments.Check(fake);
+        var screen = Screen.Standard(error: arguments.Json);
+        var serials = new Serials(arguments.Devices, job.Sequence, screen.Line);
+        var request = new RunRequest
+        {
+            Plan = job.Allowed(),
+            Dialects = job.Dialects,
+            EvidencePath = arguments.Evidence ?? (fake ? "simulated-evidence.db" : "bench-evidence.db"),
+            Lot = arguments.Lot,
+            Operator = arguments.Operator,
+            Companion = arguments.Companion,
+            Again = arguments.Again,
+        };
+        screen.Line($"{Simulated(fake)}{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, "
+            + $"evidence in {request.EvidencePath}");
+        var session = new RunSession(
+            request, new SinkSet([new ProgressLog(screen)]), new OperatorConfirmation(screen, arguments.ArmedBy), TimeProvider.System);
+        RunSummary summary = await session.Run(serials, stop);
+        foreach (string device in summary.NotRun)
+        {
+            screen.Line(screen.Palette.Bad($"{device}: got no run"));
+        }
+
+        int code = RunExit.Of(summary);
+        screen.Line($"{Simulated(summary.Simulated)}{RunExit.Words(code)}");
+        if (arguments.Json)
+        {
+            RunJson.Write(summary, request.EvidencePath, code);
+        }
+
+        return code;
+    }
+
+    private static string Simulated(bool simulated) => simulated ? "SIMULATED. " : "";
+}
