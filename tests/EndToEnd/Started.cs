@@ -1,0 +1,112 @@
+using System.Diagnostics;
+using System.Runtime.InteropServices;
+using System.Text;
+
+namespace EndToEnd;
+
+/// <summary>A process that runs; its output is read while it does.</summary>
+internal sealed partial class Started : IDisposable
+{
+    private readonly Process _process;
+    private readonly TimeSpan _patience;
+    private readonly StringBuilder _output = new();
+    private readonly StringBuilder _error = new();
+    private readonly List<(Func<string, bool> Is, TaskCompletionSource<string> Seen)> _awaited = [];
+
+    public Started(Process process, TimeSpan patience)
+    {
+        _process = process;
+        _patience = patience;
+        process.OutputDataReceived += (_, line) => Take(_output, line.Data);
+        process.ErrorDataReceived += (_, line) => Take(_error, line.Data);
+        process.BeginOutputReadLine();
+        process.BeginErrorReadLine();
+    }
+
+    public StreamWriter Input => _process.StandardInput;
+
+    /// <summary>Waits for a line of output that is as wanted, past or to come.</summary>
+    public async Task<string> Line(Func<string, bool> isWanted)
+    {
+        TaskCompletionSource<string> seen = new(TaskCreationOptions.RunContinuationsAsynchronously);
+        lock (_awaited)
+        {
+            foreach (string line in _output.ToString().Split('\n'))
+            {
+                if (isWanted(line))
+                {
+                    return line;
+                }
+            }
+
+            _awaited.Add((isWanted, seen));
+        }
+
+        Task ended = _process.WaitForExitAsync();
+        Task first = await Task.WhenAny(seen.Task, ended).WaitAsync(_patience);
+        if (first == ended && !seen.Task.IsCompleted)
+        {
+            Assert.Fail($"the process ended before the line came: {(await End()).All}");
+        }
+
+        return await seen.Task;
+    }
+
+    /// <summary>Sends a signal, e.g. SIGINT or SIGKILL.</summary>
+    public void Signal(int signal) => Assert.Equal(0, Kill(_process.Id, signal));
+
+    public async Task<Finished> End()
+    {
+        using var patience = new CancellationTokenSource(_patience);
+        try
+        {
+            await _process.WaitForExitAsync(patience.Token);
+        }
+        catch (OperationCanceledException)
+        {
+            _process.Kill(entireProcessTree: true);
+            lock (_awaited)
+            {
+                Assert.Fail($"still running after {_patience.TotalSeconds} s\n{_output}\n{_error}");
+            }
+        }
+
+        lock (_awaited)
+        {
+            return new Finished(_process.ExitCode, _output.ToString(), _error.ToString());
+        }
+    }
+
+    public void Dispose()
+    {
+        if (!_process.HasExited)
+        {
+            _process.Kill(entireProcessTree: true);
+        }
+
+        _process.Dispose();
+    }
+
+    private void Take(StringBuilder to, string? line)
+    {
+        if (line is null)
+        {
+            return;
+        }
+
+        lock (_awaited)
+        {
+            to.Append(line).Append('\n');
+            foreach ((Func<string, bool> isWanted, TaskCompletionSource<string> seen) in _awaited)
+            {
+                if (to == _output && isWanted(line))
+                {
+                    seen.TrySetResult(line);
+                }
+            }
+        }
+    }
+
+    [LibraryImport("libc", EntryPoint = "kill")]
+    private static partial int Kill(int process, int signal);
+}

@@ -1,0 +1,135 @@
+using System.Diagnostics;
+using System.Text;
+using Microsoft.Data.Sqlite;
+
+namespace EndToEnd;
+
+/// <summary>A folder of a test's own in which the built program runs as a user would run it.</summary>
+internal sealed class Workplace : IDisposable
+{
+    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(120);
+    private readonly DirectoryInfo _folder = Directory.CreateTempSubdirectory("benchrunner-");
+
+    public string Folder => _folder.FullName;
+
+    public string Evidence => Path("simulated-evidence.db");
+
+    public static string Program { get; } = Built("BenchRunner", "benchrunner");
+
+    public static string FakeBench { get; } = Built("FakeBench", "FakeBench");
+
+    public static string Sequence { get; } = Repository("sequences", "winch-drive-incoming.yaml");
+
+    public static string Repository(params string[] parts) => System.IO.Path.Combine([Root(), .. parts]);
+
+    public string Path(string name) => System.IO.Path.Combine(Folder, name);
+
+    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects.</summary>
+    public string FakeBenchFile(string fake)
+    {
+        string shipped = File.ReadAllText(Repository("sequences", "benches", "fake.yaml"));
+        string line = shipped.Split('\n').Single(l => l.StartsWith("fake:", StringComparison.Ordinal));
+        Directory.CreateDirectory(Path("benches"));
+        string file = System.IO.Path.Combine(Path("benches"), "fake.yaml");
+        File.WriteAllText(file, shipped.Replace(line, $"fake: {fake}", StringComparison.Ordinal));
+        return file;
+    }
+
+    /// <summary>The shipped sequence with lines replaced.</summary>
+    public string SequenceFile(params (string Old, string New)[] edits)
+    {
+        string text = File.ReadAllText(Sequence);
+        foreach ((string old, string replacement) in edits)
+        {
+            Assert.Contains(old, text, StringComparison.Ordinal);
+            text = text.Replace(old, replacement, StringComparison.Ordinal);
+        }
+
+        string file = Path("sequence.yaml");
+        File.WriteAllText(file, text);
+        return file;
+    }
+
+    public async Task<Finished> Run(params string[] arguments)
+    {
+        using Started started = Start(arguments);
+        return await started.End();
+    }
+
+    public Started Start(params string[] arguments) => Start(Program, arguments);
+
+    public Started Start(string program, IEnumerable<string> arguments)
+    {
+        var start = new ProcessStartInfo(program)
+        {
+            WorkingDirectory = Folder,
+            RedirectStandardInput = true,
+            RedirectStandardOutput = true,
+            RedirectStandardError = true,
+            UseShellExecute = false,
+        };
+        foreach (string argument in arguments)
+        {
+            start.ArgumentList.Add(argument);
+        }
+
+        return new Started(Process.Start(start)!, Patience);
+    }
+
+    /// <summary>One value of the evidence, by plain SQL as a quality engineer would ask it.</summary>
+    public T Ask<T>(string sql, string? file = null)
+    {
+        List<object[]> rows = Rows(sql, file);
+        return (T)Convert.ChangeType(rows.Single().Single(), typeof(T), System.Globalization.CultureInfo.InvariantCulture);
+    }
+
+    public List<object[]> Rows(string sql, string? file = null)
+    {
+        using var connection = new SqliteConnection($"Data Source={file ?? Evidence};Mode=ReadOnly;Pooling=False");
+        connection.Open();
+        using SqliteCommand command = connection.CreateCommand();
+#pragma warning disable CA2100 // The tests' own SQL.
+        command.CommandText = sql;
+#pragma warning restore CA2100
+        using SqliteDataReader reader = command.ExecuteReader();
+        var rows = new List<object[]>();
+        while (reader.Read())
+        {
+            var row = new object[reader.FieldCount];
+            reader.GetValues(row);
+            rows.Add(row);
+        }
+
+        return rows;
+    }
+
+    public void Dispose()
+    {
+        try
+        {
+            _folder.Delete(recursive: true);
+        }
+        catch (IOException)
+        {
+            // A process that was killed for real may still hold a file for a moment; the folder is a temporary one.
+        }
+    }
+
+    private static string Built(string project, string program)
+    {
+        string configuration = AppContext.BaseDirectory.Contains("release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
+        string name = OperatingSystem.IsWindows() ? program + ".exe" : program;
+        return Repository("artifacts", "bin", project, configuration, name);
+    }
+
+    private static string Root()
+    {
+        DirectoryInfo? folder = new(AppContext.BaseDirectory);
+        while (folder is not null && !File.Exists(System.IO.Path.Combine(folder.FullName, "BenchRunner.sln")))
+        {
+            folder = folder.Parent;
+        }
+
+        return folder?.FullName ?? throw new InvalidOperationException("BenchRunner.sln is in no folder above the tests.");
+    }
+}
