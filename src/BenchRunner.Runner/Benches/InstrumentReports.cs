@@ -13,7 +13,8 @@ public sealed class InstrumentReports(EventSource events) : IInstrumentLog
         (Severity severity, string kind) = what.Kind switch
         {
             InstrumentEventKind.Connected => (Severity.Detail, "link-connected"),
-            InstrumentEventKind.OldErrors => (Severity.Warning, "old-errors"),
+            InstrumentEventKind.Errors => (Severity.Warning, "instrument-errors"),
+            InstrumentEventKind.Discarded => (Severity.Warning, "discarded"),
             InstrumentEventKind.Doubt => (Severity.Warning, "link-doubt"),
             InstrumentEventKind.Resynchronised => (Severity.Warning, "link-resynchronised"),
             InstrumentEventKind.Reconnected => (Severity.Warning, "link-reconnected"),

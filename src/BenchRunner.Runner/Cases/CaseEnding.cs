@@ -12,9 +12,6 @@ public enum CaseEnding
     /// <summary>The value was formed, or should have been, and is not decided.</summary>
     Undecided,
 
-    /// <summary>The operating point gave too few valid captures, or was not reached.</summary>
+    /// <summary>The operating point was not reached, or gave no valid capture.</summary>
     NotMeasured,
-
-    /// <summary>The case itself broke: a fault of ours, which hides no other case.</summary>
-    Broken,
 }

@@ -1,6 +1,5 @@
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Evidence.Stores;
-using BenchRunner.Runner.Sinks;
 
 namespace BenchRunner.Runner.Devices;
 

@@ -1,7 +1,7 @@
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
-using BenchRunner.Acceptance.Validity;
+using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Evidence;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Links;
@@ -23,7 +23,8 @@ namespace BenchRunner.Runner.Devices;
 public sealed class DeviceRun(
     OpenBench bench, SafetySupervisor supervisor, Plan plan, IRunSink sinks, EventSource events, TimeProvider time)
 {
-    private readonly Dictionary<string, PointTaken> _taken = [];
+    private readonly List<PointTaken> _taken = [];
+    private readonly AnalysisSettings _settings = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
 
     /// <summary>Runs the device of a run that has begun in the evidence.</summary>
     /// <param name="device">Serial.</param>
@@ -68,13 +69,20 @@ public sealed class DeviceRun(
 
         foreach (PlannedPoint point in plan.Points)
         {
-            PointTaken.Captured taken = await fixture.Take(device, point, Left, stop);
-            _taken[point.Point.Name] = taken;
+            var taken = new PointTaken(point.Point.Name, plan.Bench, _settings);
+            _taken.Add(taken);
+            await fixture.Take(device, point, taken, Left, stop);
             if (taken.Valid.Count < plan.Sequence.ValidCaptures)
             {
                 events.Say(
                     Severity.Warning, "too-few-valid",
                     $"{point.Point.Name}: {taken.Valid.Count} of {plan.Sequence.ValidCaptures} valid captures after {taken.Taken}");
+            }
+
+            if (Decider.SkipsHigher(plan.Sequence, plan.Bench, taken.ForDecision()))
+            {
+                events.Say(Severity.Warning, "higher-skipped", $"{point.Point.Name}: a limit failed; the higher points are left out");
+                return;
             }
         }
     }
@@ -94,7 +102,7 @@ public sealed class DeviceRun(
                 return (BenchEnding.Interrupted, new Ended(Outcome.Stopped, "the operator interrupted the run"));
             case StopException stop:
                 supervisor.TripNow(stop.Message);
-                return (BenchEnding.Tripped, new Ended(OutcomeOf(stop.Finding), stop.Message));
+                return (BenchEnding.Tripped, new Ended(StopOutcome.Of(stop.Finding, plan.Sequence), stop.Message));
             case BusException { StuckInLimit: true } bus when plan.Sequence.Position == DevicePosition.Both:
                 supervisor.TripNow(bus.Message);
                 return (BenchEnding.Tripped, new Ended(Outcome.Rejected, bus.Message));
@@ -114,14 +122,10 @@ public sealed class DeviceRun(
         }
     }
 
-    /// <summary>A switch that does not turn on fully is the device's own fault where the device is that switch.</summary>
-    private Outcome OutcomeOf(Finding stop) =>
-        stop.Criterion == Criteria.Desaturated && plan.Sequence.Kind != DeviceKind.Diode ? Outcome.Rejected : Outcome.Stopped;
-
     private DeviceReport Report(
         string device, RunWriter evidence, BenchEnding ending, Ended? ended, SafeStateReport safe)
     {
-        DeviceDecision decision = PointDecisions.Decide(plan, _taken, ended);
+        DeviceDecision decision = Decide(ended, ref ending);
         try
         {
             evidence.Finish(decision);
@@ -133,17 +137,33 @@ public sealed class DeviceRun(
             decision = decision with { Outcome = Outcome.Stopped, Reason = Join(decision.Reason, failed.Message) };
         }
 
-        foreach (CaseResult result in PointDecisions.Cases(device, plan, decision))
+        foreach (Limit limit in plan.Sequence.Limits)
         {
-            sinks.CaseEnded(result);
+            sinks.CaseEnded(new Case(device, limit).Result(decision));
         }
 
-        List<PointTaken.Captured> captured = [.. _taken.Values.OfType<PointTaken.Captured>()];
         var report = new DeviceReport(
-            evidence.Run, device, decision, captured.Sum(c => c.Taken), captured.Sum(c => c.Valid.Count), ending,
+            evidence.Run, device, decision, _taken.Sum(point => point.Taken), _taken.Sum(point => point.Valid.Count), ending,
             safe.Voltage, safe.At);
         sinks.DeviceEnded(report);
         return report;
+    }
+
+    /// <summary>Decides from what was taken; how the road was broken off stands above every value.</summary>
+    private DeviceDecision Decide(Ended? ended, ref BenchEnding ending)
+    {
+        try
+        {
+            DeviceDecision decision = Decider.Decide(
+                plan.Sequence, plan.Bench, [.. _taken.Select(point => point.ForDecision())]);
+            return ended is null ? decision : decision with { Outcome = ended.Outcome, Reason = ended.Why };
+        }
+        catch (Exception fault) when (fault is not OutOfMemoryException)
+        {
+            events.Say(Severity.Error, "fault", $"a fault of this program while deciding: {fault}");
+            ending = ending == BenchEnding.Proved ? BenchEnding.Fault : ending;
+            return new DeviceDecision(Outcome.Stopped, $"a fault of this program while deciding: {fault.Message}", []);
+        }
     }
 
     private static string Join(string? one, string other) => one is null ? other : $"{one}; {other}";

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
@@ -34,6 +35,7 @@ public sealed class PointFixture
     private readonly TimeProvider _time;
     private readonly BusCharge _bus;
     private readonly TrainFiring _firing;
+    private readonly AnalysisSettings _settings;
 
     /// <summary>Makes the fixture of a device's run.</summary>
     public PointFixture(
@@ -54,46 +56,52 @@ public sealed class PointFixture
         _time = time;
         _bus = new BusCharge(bench, plan.Bench, time);
         _firing = new TrainFiring(bench, events);
+        _settings = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
     }
 
     /// <summary>Brings the bus to the point's voltage and takes its captures.</summary>
     /// <param name="device">Serial, for the live line.</param>
     /// <param name="planned">The point.</param>
+    /// <param name="taken">Takes what is captured, also when the work is broken off.</param>
     /// <param name="left">Time left by the plan, for the live line.</param>
     /// <param name="cancel">Ends the work: operator or trip.</param>
     /// <exception cref="StopException">A criterion of class stop was not met.</exception>
-    public async Task<PointTaken.Captured> Take(
-        string device, PlannedPoint planned, Func<TimeSpan> left, CancellationToken cancel)
+    public async Task Take(
+        string device, PlannedPoint planned, PointTaken taken, Func<TimeSpan> left, CancellationToken cancel)
     {
         OperatingPoint point = planned.Point;
         _events.Say(
             Severity.Information, "point-started",
             $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; charging the bus");
         Permit permit = await _supervisor.Grant(Bounds(planned), cancel);
-        var state = new PointState(planned);
+        var state = new PointState(planned, taken);
 
         // Gates at their off level before there is any voltage for them to hold off.
         await _bench.Pulser.Program(permit, Train(state.Set), cancel);
         await _bench.Scope.Configure(Scope(state), cancel);
         await _bench.Safety.Interlock.ReleaseBleeder(permit, cancel);
         await _bus.Up(permit, planned, cancel);
-        while (state.Valid.Count < _plan.Sequence.ValidCaptures && state.Taken < _plan.Sequence.CapturesAtMost)
+        while (IsWanting(taken))
         {
             _sinks.Progress(new RunProgress(
-                device, point.Name, state.Taken + 1, _plan.Sequence.CapturesAtMost, state.Valid.Count,
+                device, point.Name, taken.Taken + 1, _plan.Sequence.CapturesAtMost, taken.Valid.Count,
                 _plan.Sequence.ValidCaptures, _supervisor.LastVoltage, left()));
             await TakeOne(permit, state, cancel);
         }
-
-        return new PointTaken.Captured(state.Valid, state.Taken);
     }
+
+    private bool IsWanting(PointTaken taken) =>
+        taken.Taken < _plan.Sequence.CapturesAtMost
+        && (taken.Valid.Count < _plan.Sequence.ValidCaptures
+            || (_plan.Sequence.UntilDecided
+                && !Decider.IsEverythingDecided(_plan.Sequence, _plan.Bench, taken.ForDecision())));
 
     private async Task TakeOne(Permit permit, PointState state, CancellationToken cancel)
     {
         double voltmeter = await WaitForTurn(state, cancel);
         DateTimeOffset at = _time.GetUtcNow();
         state.FiredAt = _time.GetTimestamp();
-        state.Taken++;
+        state.Taken.Taken++;
         ScopeRecord? record = await _firing.Fire(permit, Scope(state), cancel);
         if (record is null || record.Traces.Count == 0)
         {
@@ -108,7 +116,7 @@ public sealed class PointFixture
         state.LostInARow = 0;
         TrainSet set = state.Set;
         long id = _evidence.AddCapture(new CaptureRow(
-            state.Planned.Point.Name, state.Taken, at, record.Traces, voltmeter, _plan.Bench.Ambient,
+            state.Planned.Point.Name, state.Taken.Taken, at, record.Traces, voltmeter, _plan.Bench.Ambient,
             new PulseTrain(set.First, set.Gap, set.Second, set.GateOn, set.GateOff)));
         Judge(id, record, voltmeter, state);
         if (state.TrainChanged)
@@ -120,9 +128,7 @@ public sealed class PointFixture
 
     private void Judge(long id, ScopeRecord record, double voltmeter, PointState state)
     {
-        Waveform waveform = TraceConversion.ToWaveform(record.Traces);
-        AnalysisResult result = WaveformAnalysis.Analyse(
-            waveform, Planner.AnalysisSettingsOf(_plan.Bench, _plan.Sequence));
+        AnalysisResult result = WaveformAnalysis.Analyse(TraceConversion.ToWaveform(record.Traces), _settings);
         Verdict verdict = CaptureValidity.Judge(new CaptureContext
         {
             Planned = state.Planned,
@@ -139,7 +145,7 @@ public sealed class PointFixture
         });
         _evidence.AddVerdict(id, verdict, result.Train.OffCurrent, result.Train.BusBeforeOn1);
         _evidence.AddCaptureValues(id, result.Quantities);
-        Say(state, verdict, result);
+        Say(state, verdict, result.Train.OffCurrent);
         if (verdict.Stop is { } stop)
         {
             throw new StopException(stop);
@@ -147,16 +153,16 @@ public sealed class PointFixture
 
         if (verdict.IsValid)
         {
-            state.Valid.Add(new ValidCapture(state.Taken, waveform, result));
+            state.Taken.Add(new ValidCapture(state.Taken.Taken, record.Traces, result));
         }
 
         state.Follow(record, verdict);
     }
 
-    private void Say(PointState state, Verdict verdict, AnalysisResult result)
+    private void Say(PointState state, Verdict verdict, double? offCurrent)
     {
-        string current = result.Train.OffCurrent is { } amperes ? SiText.Format(amperes, "A") : "no current";
-        string label = $"{state.Planned.Point.Name} capture {state.Taken}: {current}";
+        string current = offCurrent is { } amperes ? SiText.Format(amperes, "A") : "no current";
+        string label = $"{state.Planned.Point.Name} capture {state.Taken.Taken}: {current}";
         if (verdict.Findings.Count == 0)
         {
             _events.Say(Severity.Information, "capture-valid", $"{label}, valid");

@@ -6,7 +6,7 @@ using BenchRunner.Signals.Traces;
 namespace BenchRunner.Runner.Points;
 
 /// <summary>What one operating point's loop carries from capture to capture.</summary>
-internal sealed class PointState(PlannedPoint planned)
+internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 {
     /// <summary>How much a range grows or shrinks when a capture asks for the next one.</summary>
     private const double RangeStep = 2;
@@ -18,9 +18,7 @@ internal sealed class PointState(PlannedPoint planned)
 
     public List<PlannedRange> Ranges { get; } = [.. planned.Ranges];
 
-    public List<ValidCapture> Valid { get; } = [];
-
-    public int Taken { get; set; }
+    public PointTaken Taken { get; } = taken;
 
     public int LostInARow { get; set; }
 

@@ -1,26 +1,35 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Uncertainty;
 using BenchRunner.Signals.Analysis;
 
 namespace BenchRunner.Runner.Points;
 
-/// <summary>What firing at one operating point gave its cases.</summary>
-public abstract record PointTaken
+/// <summary>What firing at one operating point has given so far.</summary>
+/// <param name="name">The operating point.</param>
+/// <param name="bench">The bench: stated uncertainties.</param>
+/// <param name="settings">What the analysis takes as given.</param>
+public sealed class PointTaken(string name, Bench bench, AnalysisSettings settings)
 {
-    private PointTaken()
+    private readonly List<ValidCapture> _valid = [];
+    private BenchBudget? _budget;
+
+    /// <summary>How many captures were taken, valid or not.</summary>
+    public int Taken { get; internal set; }
+
+    /// <summary>The valid captures, in the order taken.</summary>
+    public IReadOnlyList<ValidCapture> Valid => _valid;
+
+    /// <summary>What the decision rests on: the analyses, and the budget formed on the first valid capture.</summary>
+    public PointCaptures ForDecision()
     {
+        if (_budget is null && _valid.Count > 0)
+        {
+            _budget = BenchBudget.Of(_valid[0].Traces, bench, settings);
+        }
+
+        return new PointCaptures(name, Taken, [.. _valid.Select(capture => capture.Result)], _budget);
     }
 
-    /// <summary>Captures were taken; enough of them are valid or not, the decision says.</summary>
-    /// <param name="Valid">The valid captures, in the order taken.</param>
-    /// <param name="Taken">How many were taken in all.</param>
-    public sealed record Captured(IReadOnlyList<ValidCapture> Valid, int Taken) : PointTaken;
-
-    /// <summary>The point was not fired at, or broken off.</summary>
-    /// <param name="Why">Why.</param>
-    public sealed record NotReached(string Why) : PointTaken;
+    internal void Add(ValidCapture capture) => _valid.Add(capture);
 }
-
-/// <summary>A valid capture with what the analysis made of it.</summary>
-/// <param name="Number">Its number at the operating point, from 1.</param>
-/// <param name="Waveform">Its channels, V and A, not yet corrected.</param>
-/// <param name="Result">Facts and quantities.</param>
-public sealed record ValidCapture(int Number, Signals.Traces.Waveform Waveform, AnalysisResult Result);

@@ -1,8 +1,6 @@
 using System.Runtime.InteropServices;
 using BenchRunner.Acceptance.Benches;
-using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
-using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;

@@ -17,7 +17,7 @@ internal sealed class OperatorConfirmation(Screen screen, string? armedBy) : ICo
 
     public async Task<string?> Confirm(Plan plan, bool simulated, CancellationToken cancel)
     {
-        foreach (string line in CautionText.Lines(plan))
+        foreach (string line in CautionLines.Of(plan, plan.Bench))
         {
             screen.Line(screen.Palette.Open("  ! ") + line);
         }

@@ -1,7 +1,6 @@
 using System.Globalization;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
-using BenchRunner.Acceptance.Files;
 using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Sinks;
@@ -26,12 +25,7 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
 
     public void CaseEnded(CaseResult result)
     {
-        // The decisions are shown together, below; a case that broke is said at once, or it would hide among them.
-        if (result.Ending == CaseEnding.Broken)
-        {
-            screen.Line(screen.Palette.Bad(
-                $"case {result.Limit.Quantity} at {result.Limit.At} broke: {Screen.Printable(result.Reason ?? "")}"));
-        }
+        // The cases are shown together, as the table of decisions.
     }
 
     public void DeviceEnded(DeviceReport report)
