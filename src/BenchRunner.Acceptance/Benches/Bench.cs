@@ -33,7 +33,7 @@ public sealed record Bench
     /// <summary>Resistance of the load inductor, Ω.</summary>
     public required double LoadResistance { get; init; }
 
-    /// <summary>Whether the load goes to the positive rail, so that the low switch fires; false: the high one.</summary>
+    /// <summary>Whether the load goes to the positive rail: the low switch fires; false: the high one.</summary>
     public bool LoadToPositive { get; init; } = true;
 
     /// <summary>Bus capacitance, F.</summary>

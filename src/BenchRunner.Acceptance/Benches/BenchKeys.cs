@@ -35,7 +35,7 @@ internal static class BenchKeys
             Needed("supply", Role("Charges the bus.", "generic-supply")),
             Needed("pulser", Role("Fires the pulse trains.", "generic-pulser")),
             Needed("scope", Role("Records the channels.", "generic-scope")),
-            Needed("voltmeter", Role("Measures the bank, whatever the supply says.", "generic-voltmeter", hasPlace: true)),
+            Needed("voltmeter", Role("Measures the bank by itself.", "generic-voltmeter", hasPlace: true)),
             Needed("interlock", Role("Loop, emergency stop, bleeder relay.", "generic-interlock")),
         ]);
 

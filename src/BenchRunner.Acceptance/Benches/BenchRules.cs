@@ -25,8 +25,13 @@ internal static class BenchRules
         ChannelKeys.Check(channels, problems);
         Inputs(channels, problems);
         bool isDescribed = file.IsWritten("shunt");
-        foreach (string name in channels.Keys.Where(name => channels.Block(name).Text("probe") == "shunt" && !isDescribed))
+        foreach (string name in channels.Keys)
         {
+            if (isDescribed || channels.Block(name).Text("probe") != "shunt")
+            {
+                continue;
+            }
+
             problems.Add(new Problem(
                 channels.Block(name).Of("probe"),
                 $"{name} is measured by a shunt that is not described",

@@ -1,6 +1,6 @@
 namespace BenchRunner.Acceptance.Decisions;
 
-/// <summary>One quantity of one device at one operating point, with its uncertainty and, if limited, its conformity.</summary>
+/// <summary>One quantity of one device at one operating point: value, uncertainty, and conformity if limited.</summary>
 /// <param name="OperatingPoint">Name of the operating point.</param>
 /// <param name="Quantity">The quantity.</param>
 /// <param name="Definition">Its definition ID.</param>

@@ -2,7 +2,7 @@ using System.Globalization;
 
 namespace BenchRunner.Acceptance.Files;
 
-/// <summary>A value and its unit in one text, read from files and written for people: <c>400 V</c>, <c>3.3 uH</c>.</summary>
+/// <summary>A value and its unit in one text, <c>3.3 uH</c>: read from files, written for people.</summary>
 /// <remarks>
 /// Reading is exact: the unit's power of ten is put into the exponent of the decimal text before that becomes a double,
 /// so <c>3.3 uH</c> is 3.3E-06 and not 3.3 · 1E-06. Units: V A s Ohm H F J Hz C K degC K/W V/s A/s; a ratio is without
@@ -56,7 +56,7 @@ public static class SiText
         return true;
     }
 
-    /// <summary>Writes a value with the SI prefix that leaves 1 to 999 before the point, e.g. <c>41.9 MHz</c>.</summary>
+    /// <summary>Writes a value with the SI prefix that leaves 1 to 999 before the point: <c>41.9 MHz</c>.</summary>
     /// <param name="value">The value in SI.</param>
     /// <param name="unit">Its SI unit; <c>1</c> for a ratio, which is written without.</param>
     /// <param name="digits">Significant digits, 1 to 17; zeros at the end of a fraction are left out.</param>

@@ -87,7 +87,7 @@ internal sealed class YamlTree
             if (_problems.Count == 0)
             {
                 Report(
-                    new Place(_file, 1, 1), "the file is empty", "the keys of its kind", "write them or name another file");
+                    new Place(_file, 1, 1), "the file is empty", "the keys of its kind", "write them");
             }
 
             return null;

@@ -3,7 +3,7 @@ using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Acceptance.Schemas;
 
-/// <summary>A value whose shape another key of its block chooses: a limit's unit by quantity, commands by role.</summary>
+/// <summary>A value whose shape another key of its block chooses, e.g. a limit's unit by its quantity.</summary>
 /// <param name="Meaning">What it means.</param>
 /// <param name="By">The key that chooses.</param>
 /// <param name="Shapes">That key's words and the shape that each chooses.</param>

@@ -45,7 +45,9 @@ internal sealed record DefinitionShape(Quantity Quantity) : Shape($"Definition o
 
     /// <inheritdoc/>
     protected override string Advice(YamlNode node) =>
-        node is YamlScalar scalar && Nearest.To(scalar.Text, Written) is { } near ? $"did you mean {near}?" : "write one of them";
+        node is YamlScalar scalar && Nearest.To(scalar.Text, Written) is { } near
+            ? $"did you mean {near}?"
+            : "write one of them";
 
     private static string Pattern(QuantityDefinition definition)
     {

@@ -3,7 +3,7 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Acceptance.Schemas;
 
-/// <summary>The integration time of a recovered charge: stated by its key, or by the definitions that name one.</summary>
+/// <summary>The integration time of a recovered charge: stated by its key or by a definition.</summary>
 internal static class IntegrationTimes
 {
     /// <summary>The times that a file names, each with its place; the analysis forms one alone.</summary>

@@ -27,7 +27,9 @@ internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, 
             return Word;
         }
 
-        if (node is YamlScalar scalar && SiText.TryParse(scalar.Text, out double value, out string unit) && unit == Unit)
+        if (node is YamlScalar scalar
+            && SiText.TryParse(scalar.Text, out double value, out string unit)
+            && unit == Unit)
         {
             if (Range.Hold(value))
             {
@@ -51,7 +53,8 @@ internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, 
             return new JsonObject
             {
                 ["anyOf"] = new JsonArray(
-                    new JsonObject { ["type"] = "number" }, new JsonObject { ["type"] = "string", ["pattern"] = Pattern("%") }),
+                    new JsonObject { ["type"] = "number" },
+                    new JsonObject { ["type"] = "string", ["pattern"] = Pattern("%") }),
             };
         }
 
@@ -75,7 +78,8 @@ internal sealed record QuantityShape(string Meaning, string Unit, Bounds Range, 
     protected override string Advice(YamlNode node) => node switch
     {
         YamlScalar { Text: var text } when text.Contains(',') => $"write a decimal point, e.g. {Example}",
-        YamlScalar { Text: var text } when SiText.TryParse(text, out _, out string unit) && unit == "1" && Unit != "1" =>
+        YamlScalar { Text: var text } when Unit != "1" && SiText.TryParse(text, out _, out string unit)
+            && unit == "1" =>
             $"add the unit {Unit}, e.g. {Example}",
         _ => Unit == "1" ? $"give a number or a percentage, e.g. {Example}" : $"give it in {Unit}, e.g. {Example}",
     };

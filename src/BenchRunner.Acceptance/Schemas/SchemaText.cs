@@ -10,8 +10,8 @@ namespace BenchRunner.Acceptance.Schemas;
 
 /// <summary>JSON Schemas (draft 2020-12) of our files, for editors; made of the tables that the readers use.</summary>
 /// <remarks>
-/// A schema knows single values and required keys. What holds between keys (names that are unique, limits at points that
-/// exist) the readers alone check.
+/// A schema knows single values and required keys. What holds between keys (names that are unique, limits at points
+/// that exist) the readers alone check.
 /// </remarks>
 public static class SchemaText
 {

@@ -3,7 +3,7 @@ using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Acceptance.Schemas;
 
-/// <summary>What a value in a file may be: the one description that reader, messages and JSON Schema are made of.</summary>
+/// <summary>What a value in a file may be: the one description behind reader, messages and JSON Schema.</summary>
 /// <param name="Meaning">What the value means, one sentence for the schema.</param>
 internal abstract record Shape(string Meaning)
 {
@@ -18,7 +18,7 @@ internal abstract record Shape(string Meaning)
     /// <param name="label">What messages call it: its key.</param>
     /// <param name="around">The block it stands in; null at the root.</param>
     /// <param name="problems">Takes what is wrong.</param>
-    /// <returns>The content (double, int, bool, string, a pair, a list, <see cref="Fields"/>); null where it is wrong.</returns>
+    /// <returns>The content (double, int, bool, string, pair, list, <see cref="Fields"/>); null where wrong.</returns>
     public abstract object? Read(YamlNode node, string label, YamlMap? around, List<Problem> problems);
 
     /// <summary>The JSON Schema of the value, without its meaning.</summary>
@@ -36,7 +36,7 @@ internal abstract record Shape(string Meaning)
         return schema;
     }
 
-    /// <summary>Reports that something else stands where this shape is wanted; nothing where that was said already.</summary>
+    /// <summary>Reports that something else stands where this shape is wanted, unless that was said already.</summary>
     protected void Refuse(YamlNode node, string label, List<Problem> problems)
     {
         string? found = node switch

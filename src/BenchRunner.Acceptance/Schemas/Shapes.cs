@@ -18,12 +18,13 @@ internal static class Shapes
     };
 
     /// <summary>The positions by their words.</summary>
-    public static IReadOnlyDictionary<string, DevicePosition> Positions { get; } = new Dictionary<string, DevicePosition>
-    {
-        ["low"] = DevicePosition.Low,
-        ["high"] = DevicePosition.High,
-        ["both"] = DevicePosition.Both,
-    };
+    public static IReadOnlyDictionary<string, DevicePosition> Positions { get; } =
+        new Dictionary<string, DevicePosition>
+        {
+            ["low"] = DevicePosition.Low,
+            ["high"] = DevicePosition.High,
+            ["both"] = DevicePosition.Both,
+        };
 
     /// <summary>Kind of the device.</summary>
     public static WordShape Kind { get; } = new("Kind of the device; picks the default definitions.", [.. Kinds.Keys]);

@@ -63,7 +63,10 @@ internal sealed record ThermalShape(string Meaning) : Shape(Meaning)
         }
 
         problems.Add(new Problem(
-            map.Where, $"{label} has no key {Steady}", "the steady impedance as the last key", $"add {Steady}: 0.45 K/W"));
+            map.Where,
+            $"{label} has no key {Steady}",
+            "the steady impedance as the last key",
+            $"add {Steady}: 0.45 K/W"));
         return null;
     }
 

@@ -1,6 +1,6 @@
 namespace BenchRunner.Acceptance.Sequences;
 
-/// <summary>What a sound device is expected to do; ranges, sampling and windows are planned by it, never a decision.</summary>
+/// <summary>What a sound device is expected to do: ranges and sampling are planned by it, nothing decided.</summary>
 /// <param name="FastestEdge">Shortest edge, s.</param>
 /// <param name="RingFrequency">Ring frequency, Hz.</param>
 /// <param name="OnVoltage">On-state voltage at the rated current, V.</param>

@@ -2,10 +2,10 @@ using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Acceptance.Sequences;
 
-/// <summary>Bus voltage, load current, temperature and gate at which pulses are fired. All values SI, temperature degC.</summary>
+/// <summary>Bus voltage, load current, temperature and gate at which pulses are fired. SI; degC.</summary>
 public sealed record OperatingPoint
 {
-    /// <summary>Name, unique in the sequence; <c>zero</c>, <c>proving-before</c> and <c>proving-after</c> are not free.</summary>
+    /// <summary>Name, unique in the sequence; not <c>zero</c>, <c>proving-before</c> or <c>proving-after</c>.</summary>
     public required string Name { get; init; }
 
     /// <summary>Bus voltage, V.</summary>

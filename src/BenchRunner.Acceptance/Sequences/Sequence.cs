@@ -42,7 +42,7 @@ public sealed record Sequence
     /// <summary>Ratings of the device.</summary>
     public required DeviceRatings Ratings { get; init; }
 
-    /// <summary>Transient thermal impedance: (pulse time s, K/W) by rising time; the last is steady (time infinity). Empty: not stated.</summary>
+    /// <summary>Transient thermal impedance by rising pulse time; the last is steady. Empty: not stated.</summary>
     public IReadOnlyList<ThermalPoint> ThermalImpedance { get; init; } = [];
 
     /// <summary>What the device is expected to do; the plan sizes ranges and sampling by it.</summary>
@@ -66,7 +66,7 @@ public sealed record Sequence
     /// <summary>Most captures taken a point.</summary>
     public int CapturesAtMost { get; init; } = UsualCapturesAtMost;
 
-    /// <summary>Whether captures continue until every limit is decided (at most <see cref="CapturesAtMost"/>).</summary>
+    /// <summary>Whether captures continue until every limit is decided, up to the most allowed.</summary>
     public bool UntilDecided { get; init; }
 
     /// <summary>Bounds of the validity criteria.</summary>

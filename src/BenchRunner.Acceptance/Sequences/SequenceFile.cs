@@ -3,7 +3,7 @@ using BenchRunner.Acceptance.Schemas;
 
 namespace BenchRunner.Acceptance.Sequences;
 
-/// <summary>Reads sequence files. Never throws for what a file holds: every mistake is a problem, all at once.</summary>
+/// <summary>Reads sequence files. Never throws for what a file holds: its mistakes are problems, all at once.</summary>
 public static class SequenceFile
 {
     /// <summary>Reads a sequence file.</summary>
@@ -56,7 +56,10 @@ public static class SequenceFile
     }
 
     private static ExpectedBehaviour Expected(Fields block) => new(
-        block.Need("fastest-edge"), block.Need("ring-frequency"), block.Need("on-voltage"), block.Need("forward-voltage"));
+        block.Need("fastest-edge"),
+        block.Need("ring-frequency"),
+        block.Need("on-voltage"),
+        block.Need("forward-voltage"));
 
     private static OperatingPoint Point(Fields block)
     {

@@ -70,7 +70,11 @@ internal static class SequenceKeys
             Needed("bus-voltage", Positive("Bus voltage.", "V", "600 V")),
             Needed("load-current", Positive("Load current at the first turn-off.", "A", "40 A")),
             Optional("temperature", new QuantityShape(
-                "Plate temperature, or ambient (the default).", "degC", new Bounds(-60, 250), "125 degC", Sequence.Ambient)),
+                "Plate temperature, or ambient (the default).",
+                "degC",
+                new Bounds(-60, 250),
+                "125 degC",
+                Sequence.Ambient)),
             Needed("gate", _gate),
             Needed("pulses", _pulses),
             Optional("else-skip-higher", new FlagShape("Whether higher points are left out when a limit fails here.")),
@@ -153,7 +157,7 @@ internal static class SequenceKeys
             Optional("soak", NotNegative("Time at a new temperature before the first capture.", "s", "300 s")),
             Optional("captures", _captures),
             Optional("until", new WordShape(
-                "valid (the default): until the wanted number is valid; decided: until every limit is, or at-most is reached.",
+                "valid (the default): captures go on until the wanted number is valid; decided: until every limit is.",
                 ["valid", "decided"])),
             Optional("validity", _validity),
             Optional("integration-time", IntegrationTime),

@@ -67,7 +67,8 @@ internal static class SequenceRules
 
     private static void Limits(Fields file, List<Problem> problems)
     {
-        IReadOnlyList<string> points = [.. file.Blocks("operating-points").Select(point => point.Text("name")).OfType<string>()];
+        IReadOnlyList<Fields> blocks = file.Blocks("operating-points");
+        IReadOnlyList<string> points = [.. blocks.Select(point => point.Text("name")).OfType<string>()];
         var lines = new Dictionary<(string Quantity, string? Definition, string At), int>();
         foreach (Fields limit in file.Blocks("limits"))
         {
@@ -78,21 +79,23 @@ internal static class SequenceRules
             }
 
             // A point whose own name is wrong has been reported; its limits would only repeat that.
-            if (!points.Contains(at) && points.Count == file.Blocks("operating-points").Count && points.Count > 0)
+            if (!points.Contains(at) && points.Count == blocks.Count && points.Count > 0)
             {
                 problems.Add(new Problem(
                     limit.Of("at"),
                     $"a limit stands at {Shown.Quote(at)}, which is no operating point",
                     Shown.Or(points),
-                    Nearest.To(at, points) is { } near ? $"did you mean {near}?" : "name one of them, or add the point"));
+                    Nearest.To(at, points) is { } near ? $"did you mean {near}?" : "name one of them or add it"));
             }
 
-            if (limit.Text("quantity") is { } quantity && !lines.TryAdd((quantity, limit.Text("definition"), at), limit.Where.Line))
+            string? definition = limit.Text("definition");
+            if (limit.Text("quantity") is { } quantity
+                && !lines.TryAdd((quantity, definition, at), limit.Where.Line))
             {
                 problems.Add(new Problem(
                     limit.Where,
                     $"a second limit on {quantity} at {Shown.Cut(at)}",
-                    $"one limit on a quantity at a point (first in line {lines[(quantity, limit.Text("definition"), at)]})",
+                    $"one limit on a quantity at a point (first in line {lines[(quantity, definition, at)]})",
                     "bring the two together, e.g. with between, or remove one"));
             }
         }
@@ -116,7 +119,10 @@ internal static class SequenceRules
         if (captures.Whole("valid") is { } valid && captures.Whole("at-most") is { } most && most < valid)
         {
             problems.Add(new Problem(
-                captures.Of("at-most"), $"at-most is {most}", $"at least the {valid} valid captures wanted", "raise it, or want fewer"));
+                captures.Of("at-most"),
+                $"at-most is {most}",
+                $"at least the {valid} valid captures wanted",
+                "raise it, or want fewer"));
         }
     }
 }

@@ -1,6 +1,6 @@
 namespace BenchRunner.Acceptance.Sequences;
 
-/// <summary>Bounds of the validity criteria; relative ones as fractions. Defaults are those of the catalogue of criteria.</summary>
+/// <summary>Bounds of the validity criteria and their defaults; relative ones as fractions.</summary>
 public sealed record ValidityBounds
 {
     /// <summary><c>bus-within</c>: bus voltage against the point's, 1.</summary>

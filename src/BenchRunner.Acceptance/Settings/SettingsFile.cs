@@ -6,7 +6,7 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Settings;
 
-/// <summary>Reads the settings of <c>analyse</c>. Never throws for what a file holds: every mistake is a problem.</summary>
+/// <summary>Reads the settings of <c>analyse</c>. Never throws for what a file holds.</summary>
 public static class SettingsFile
 {
     /// <summary>Reads a settings file.</summary>

@@ -1,0 +1,87 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Tests.Files;
+using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Acceptance.Tests.Benches;
+
+public sealed class BenchFileTests
+{
+    [Fact]
+    public void Every_value_of_the_shipped_file_arrives_in_SI()
+    {
+        Bench bench = Read(Examples.Bench);
+        Assert.Equal(("fake", 1, 5.0), (bench.Name, bench.Fake?.Seed, bench.Fake?.Pace));
+        Assert.Equal((120e-6, 0.05, true), (bench.LoadInductance, bench.LoadResistance, bench.LoadToPositive));
+        Assert.Equal((50e-6, 5e3, 1e-4), (bench.BusCapacitance, bench.Bleeder, bench.EmptySocketCurrent));
+        Assert.Equal((2.5, 34e-9), (bench.ChargingCurrent, bench.LoopInductance));
+        Assert.Equal((4.7, 2.2, 0.5), (bench.GateResistorOn, bench.GateResistorOff, bench.HighSideThreshold));
+        Assert.Equal(new Shunt(5e-3, 200e-12), bench.Shunt);
+        Assert.Equal((12, 1e-9, 1_000_000), (bench.ScopeBits, bench.ScopeFastestInterval, bench.ScopeMemory));
+        Assert.Equal(new Envelope(900, 120, 10, 20e-6), bench.Envelope);
+        Assert.Equal(23, bench.Ambient);
+        Assert.False(bench.ExchangeByHand);
+        Assert.Equal(["interlock", "pulser", "scope", "supply", "voltmeter"], bench.Roles.Keys.Order());
+        Assert.Equal("bank", bench.Roles["voltmeter"].At);
+        Assert.Equal((2, 1), (bench.Roles["supply"].Connections, bench.Roles["interlock"].Connections));
+    }
+
+    [Fact]
+    public void The_shipped_channels_are_on_inputs_of_their_own_and_no_uncertainty_is_zero()
+    {
+        Bench bench = Read(Examples.Bench);
+        Assert.Equal(
+            [Channel.VgsLow, Channel.VdsLow, Channel.IdLow, Channel.VgsHigh, Channel.VdsHigh, Channel.Vbus],
+            bench.Channels.Select(channel => channel.Channel));
+        Assert.Equal([1, 2, 3, 4, 5, 6], bench.Channels.Select(channel => channel.Input));
+        Assert.All(bench.Channels, channel =>
+            Assert.True(channel is { GainUncertainty: > 0, OffsetUncertainty: > 0, SkewUncertainty: > 0 }));
+        Assert.Single(bench.Channels, channel => channel.Probe is "shunt" or "ground-referenced");
+    }
+
+    [Fact]
+    public void An_offset_that_is_not_stated_is_not_taken_for_zero()
+    {
+        Bench bench = Read(Examples.Bench);
+        Assert.Null(Assert.Single(bench.Channels, channel => channel.Channel == Channel.IdLow).Offset);
+        Assert.Equal(0, Assert.Single(bench.Channels, channel => channel.Channel == Channel.VdsLow).Offset);
+    }
+
+    [Fact]
+    public void Real_instruments_need_no_fake_block()
+    {
+        Bench bench = Read(Examples.Bench
+            .With("fake: { seed: 1, pace: 5 }\n", "")
+            .With("'tcp 127.0.0.1:0'", "'tcp [fe80::1]:5025'")
+            .With("'serial auto'", "'serial /dev/ttyUSB0 9600'")
+            .With("exchange: none", "exchange: by-hand")
+            .With("to: positive", "to: negative")
+            .With("cautions: []", "cautions: ['Hang the sign on the door.']"));
+        Assert.Null(bench.Fake);
+        Assert.True(bench.ExchangeByHand);
+        Assert.False(bench.LoadToPositive);
+        Assert.Equal("tcp [fe80::1]:5025", bench.Roles["supply"].Link);
+        Assert.Equal(["Hang the sign on the door."], bench.Cautions);
+    }
+
+    [Fact]
+    public void Faults_arrive_as_written() => Assert.Equal(
+        ["interlock-opens@fire:3", "stale-record"],
+        Read(Examples.Bench.With("pace: 5 }", "pace: 5, faults: [interlock-opens@fire:3, stale-record] }")).Fake!.Faults);
+
+    [Fact]
+    public void Places_lead_back_to_the_file()
+    {
+        Place place = Read(Examples.Bench).Keys["envelope.energy"];
+        Assert.StartsWith(
+            "10 J", Examples.Bench.Split('\n')[place.Line - 1][(place.Column - 1)..], StringComparison.Ordinal);
+    }
+
+    private static Bench Read(string text)
+    {
+        Read<Bench> read = BenchFile.Read(Readers.Source("bench.yaml", text));
+        Assert.Empty(read.Problems);
+        return read.Value!;
+    }
+}
