@@ -13,7 +13,7 @@ namespace FakeBench.Physics;
 internal sealed class BridgeEquations : IOdeSystem
 {
     private const int N = Count;
-    private static readonly SparseElimination Order = new(Pattern(), N);
+    private static readonly SparseElimination Order = new(BridgeState.Pattern(), N);
 
     private readonly BenchParts _b;
     private readonly DeviceModel _high, _low;
@@ -44,7 +44,7 @@ internal sealed class BridgeEquations : IOdeSystem
         (_inverse11, _inverse12, _inverse22) = (gate / determinant, -_ls / determinant, loop / determinant);
         _supplyVoltage = busVoltage * (1 + _b.SupplyResistance / _b.BleederResistance);
         _highDrive = highDrive;
-        _scale = Scales(_b, Math.Max(20, Math.Abs(busVoltage)));
+        _scale = BridgeState.Scales(_b, Math.Max(20, Math.Abs(busVoltage)));
     }
 
     /// <inheritdoc/>
@@ -270,41 +270,5 @@ internal sealed class BridgeEquations : IOdeSystem
         j[v * N + gate] = rates.VByJ;
         j[m * N + v] = rates.MByV;
         j[m * N + m] = rates.MByM;
-    }
-
-    private static bool[] Pattern()
-    {
-        var pattern = new bool[N * N];
-        void Row(int row, params ReadOnlySpan<int> columns)
-        {
-            foreach (int column in columns) pattern[row * N + column] = true;
-        }
-
-        foreach (int row in (int[])[Phi, Winding, Loop]) Row(row, Phi, Winding, Loop, Low, VHigh);
-        foreach (int row in (int[])[Low, JLow])
-        {
-            Row(row, Phi, Winding, Loop, Low, VHigh, VLow, GLow, JLow, Bank, BankCurrent);
-        }
-
-        foreach (int row in (int[])[GHigh, VHigh]) Row(row, Phi, Winding, Loop, Low, GHigh, VHigh, MHigh, JHigh);
-        foreach (int row in (int[])[GLow, VLow]) Row(row, Low, GLow, VLow, MLow, JLow);
-        Row(MHigh, MHigh, VHigh);
-        Row(MLow, MLow, VLow);
-        Row(JHigh, JHigh, GHigh);
-        Row(Bank, Bank, Low);
-        Row(BankCurrent, BankCurrent, Low);
-        return pattern;
-    }
-
-    private static double[] Scales(BenchParts bench, double voltage)
-    {
-        const double current = 25, gate = 10, gateCurrent = 1;
-        var scale = new double[N];
-        scale[Phi] = current * bench.LoadInductance;
-        foreach (int s in (int[])[Winding, VHigh, VLow, Bank]) scale[s] = voltage;
-        foreach (int s in (int[])[Loop, Low, MHigh, MLow, BankCurrent]) scale[s] = current;
-        foreach (int s in (int[])[GHigh, GLow]) scale[s] = gate;
-        foreach (int s in (int[])[JHigh, JLow]) scale[s] = gateCurrent;
-        return scale;
     }
 }

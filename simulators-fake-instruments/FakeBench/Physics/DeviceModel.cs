@@ -1,6 +1,7 @@
 namespace FakeBench.Physics;
 
-/// <summary>One place's device as equations: from its states to their rates of change, and the slopes of those.</summary>
+/// <summary>One place's device as equations: from its states to their rates of change, and the slopes of
+/// those.</summary>
 /// <remarks>
 /// States: g, the gate-source voltage inside; v, the drain-source voltage inside; m = qM/TM of the diode, A.
 /// [Cgs + Cgd, -Cgd; -Cgd, Cds + Cgd] (g', v') = (j, id - ich + iD - iav - G v), j into the gate, id into the drain.
@@ -100,7 +101,8 @@ internal sealed class DeviceModel
         return (kp * z * (w - 0.5 * z), kp * z * wSlope * divide, byZ * mtr * divide);
     }
 
-    /// <summary>Injection iE of the diode, A, by its voltage and charge: vj + RS (iE - m) = -v by Newton's method.</summary>
+    /// <summary>Injection iE of the diode, A, by its voltage and charge: vj + RS (iE - m) = -v by Newton's
+    /// method.</summary>
     private (double Current, double ByV, double ByM) Injection(double v, double m)
     {
         double s = _diode.InjectionCurrent;
@@ -178,7 +180,8 @@ internal sealed class DeviceModel
         return (c + c2, s + s2);
     }
 
-    private static (double Capacitance, double Slope) Junction(double v, double c0, double vj, double grading, bool slope)
+    private static (double Capacitance, double Slope) Junction(
+        double v, double c0, double vj, double grading, bool slope)
     {
         if (c0 == 0) return (0, 0);
         double x = 1 + v / vj;

@@ -1,6 +1,7 @@
 namespace FakeBench.Physics;
 
-/// <summary>Rates of change of a device's states g, v, m (V/s, V/s, A/s), and their slopes by states and currents.</summary>
+/// <summary>Rates of change of a device's states g, v, m (V/s, V/s, A/s), and their slopes by states and
+/// currents.</summary>
 internal struct DeviceRates
 {
     public double G, V, M;

@@ -4,7 +4,8 @@ namespace FakeBench.Physics;
 /// <param name="At">Time of this state, s after on1.</param>
 /// <param name="BankVoltageAfter">Voltage of the bank after the train, V; 0 when the low place ended as a short, since
 /// the bank then empties itself through the load within a millisecond.</param>
-/// <param name="LoadCurrent">Current still freewheeling in the load, A; it dies in the diode and never comes back.</param>
+/// <param name="LoadCurrent">Current still freewheeling in the load, A; it dies in the diode and never comes
+/// back.</param>
 /// <param name="PeakLowCurrent">Largest current of the low place during the whole train, A.</param>
 /// <param name="PeakLowVoltage">Largest drain-source voltage inside the low place, V.</param>
 /// <param name="PeakHighVoltage">Largest drain-source voltage inside the high place, V.</param>

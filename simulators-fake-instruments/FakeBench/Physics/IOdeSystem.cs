@@ -1,6 +1,7 @@
 namespace FakeBench.Physics;
 
-/// <summary>Ordinary differential equations y' = f(t, y) with their derivatives, as <see cref="Rodas4"/> wants them.</summary>
+/// <summary>Ordinary differential equations y' = f(t, y) with their derivatives, as <see cref="Rodas4"/> wants
+/// them.</summary>
 public interface IOdeSystem
 {
     /// <summary>Number of states.</summary>

@@ -1,6 +1,7 @@
 namespace FakeBench.Physics;
 
-/// <summary>A stiff solver: the Rosenbrock method RODAS of order 4(3) with six stages and its own dense output.</summary>
+/// <summary>A stiff solver: the Rosenbrock method RODAS of order 4(3) with six stages and its own dense
+/// output.</summary>
 /// <remarks>
 /// Source: Hairer and Wanner, Solving Ordinary Differential Equations II, section IV.7 (coefficients from memory, held
 /// by tests of the order reached). Stages are in the transformed form, so that no product with the Jacobian is needed.
@@ -69,6 +70,11 @@ public sealed class Rodas4
     /// <summary>The step to try next, s; set it at a corner of the input.</summary>
     public double NextStep { get; set; } = 10e-12;
 
+    /// <summary>No step is longer, s: between the ends of a long one the interpolation is only as good as the step's
+    /// own
+    /// order allows, and stiff states suffer first.</summary>
+    public double LongestStep { get; init; } = double.PositiveInfinity;
+
     /// <summary>Steps accepted so far.</summary>
     public int Accepted { get; private set; }
 
@@ -92,7 +98,8 @@ public sealed class Rodas4
             {
                 Accept(step, last ? limit : Time + step);
                 // A step cut short by the limit says nothing against the longer one that was planned.
-                NextStep = StepLadder.RoundDown(last ? Math.Max(NextStep, step * factor) : step * factor);
+                double wanted = last ? Math.Max(NextStep, step * factor) : step * factor;
+                NextStep = StepLadder.RoundDown(Math.Min(wanted, LongestStep));
                 return;
             }
 

@@ -2,7 +2,8 @@ namespace FakeBench.Physics;
 
 /// <summary>Gaussian elimination in a fixed order, without pivoting, for one pattern of non-zeros.</summary>
 /// <remarks>
-/// The order and every index are found once, when the pattern is known: the pivot whose row and column are shortest comes
+/// The order and every index are found once, when the pattern is known: the pivot whose row and column are shortest
+/// comes
 /// first (Markowitz), ties by index. What is left for each matrix is a list of multiply-subtracts, so that equal inputs
 /// give equal bits. No pivoting is sound for matrices whose diagonal is made large, as a stiff solver's is.
 /// Safe on many threads: a matrix and a right side are the caller's own.

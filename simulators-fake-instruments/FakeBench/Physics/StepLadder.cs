@@ -11,7 +11,7 @@ public static class StepLadder
     /// <summary>The smallest step, s.</summary>
     public const double Smallest = 1e-15;
 
-    private const int Octaves = 32;
+    private const int Octaves = 64;
     private static readonly double[] Rungs = Build();
 
     /// <summary>Rounds a step down to a rung; the lowest rung for anything below it.</summary>

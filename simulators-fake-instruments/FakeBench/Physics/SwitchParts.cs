@@ -51,7 +51,8 @@ public sealed record SwitchParts
     /// <summary>Grading exponent M of the junction capacitance, 1; below 1.</summary>
     public double JunctionGrading { get; init; } = 0.48;
 
-    /// <summary>Constant part Cl of the drain-source capacitance, F; with the junction's it must stay above 0.</summary>
+    /// <summary>Constant part Cl of the drain-source capacitance, F; with the junction's it must stay above
+    /// 0.</summary>
     public required double FixedCapacitance { get; init; }
 
     /// <summary>Breakdown voltage BV, V.</summary>

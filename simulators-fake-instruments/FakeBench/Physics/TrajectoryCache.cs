@@ -1,7 +1,9 @@
 namespace FakeBench.Physics;
 
-/// <summary>Keeps the noiseless trains of late, so that a repeated capture at one operating point pays for noise only.</summary>
-/// <remarks>A train is found again when every parameter of circuit, train and grid is equal to the last bit. Safe on many
+/// <summary>Keeps the noiseless trains of late, so that a repeated capture at one operating point pays for noise
+/// only.</summary>
+/// <remarks>A train is found again when every parameter of circuit, train and grid is equal to the last bit. Safe on
+/// many
 /// threads; two that miss at once both solve, with equal results.</remarks>
 public sealed class TrajectoryCache
 {

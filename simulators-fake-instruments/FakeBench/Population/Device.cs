@@ -6,7 +6,8 @@ namespace FakeBench.Population;
 /// <param name="Serial">Its serial.</param>
 /// <param name="Part">Its part number.</param>
 /// <param name="Defect">What is wrong with it; null: sound.</param>
-/// <param name="ExpectedOutcome">What the shipped incoming sequence ought to say: accepted, rejected or undecided.</param>
+/// <param name="ExpectedOutcome">What the shipped incoming sequence ought to say: accepted, rejected or
+/// undecided.</param>
 /// <param name="Low">What it puts into the low place.</param>
 /// <param name="High">What it puts into the high place.</param>
 public sealed record Device(

@@ -2,7 +2,8 @@ using FakeBench.Physics;
 
 namespace FakeBench.Population;
 
-/// <summary>All devices there are: a few named ones with a known defect, and for any other serial a sound one.</summary>
+/// <summary>All devices there are: a few named ones with a known defect, and for any other serial a sound
+/// one.</summary>
 public static class DevicePopulation
 {
     /// <summary>The part that everything here is.</summary>
@@ -60,7 +61,8 @@ public static class DevicePopulation
     private static PlaceParts Lifetime(PlaceParts place, double factor) =>
         place with { Diode = place.Diode with { Lifetime = place.Diode.Lifetime * factor } };
 
-    /// <summary>A low threshold and a large gate-drain capacitance: the voltage's rise turns the part on by itself.</summary>
+    /// <summary>A low threshold and a large gate-drain capacitance: the voltage's rise turns the part on by
+    /// itself.</summary>
     private static PlaceParts FalseTurnOn(PlaceParts place) => place with
     {
         Switch = place.Switch with
@@ -72,7 +74,8 @@ public static class DevicePopulation
         },
     };
 
-    /// <summary>A broken bond: nothing but the stray capacitance of the package is left, and it still breaks down.</summary>
+    /// <summary>A broken bond: nothing but the stray capacitance of the package is left, and it still breaks
+    /// down.</summary>
     private static PlaceParts Open(PlaceParts place) => place with
     {
         Switch = place.Switch with

@@ -1,6 +1,7 @@
 namespace FakeBench.Population;
 
-/// <summary>A small counter-based generator: the n-th number is a hash of key and n, so any of them can be had alone.</summary>
+/// <summary>A small counter-based generator: the n-th number is a hash of key and n, so any of them can be had
+/// alone.</summary>
 /// <remarks>Finaliser of splitmix64 (Steele, Lea, Flood 2014; constants from memory). Not for secrets.</remarks>
 public struct SplitMix
 {

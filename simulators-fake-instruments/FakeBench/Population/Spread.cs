@@ -4,7 +4,8 @@ namespace FakeBench.Population;
 
 /// <summary>What makes one sound device differ from the nominal one, in standard deviations.</summary>
 /// <remarks>One draw serves both places of a device, since both come from one wafer; diode, threshold and
-/// transconductance differ between them by another 0.3 of their spread. Everything is cut at three deviations.</remarks>
+/// transconductance differ between them by another 0.3 of their spread. Everything is cut at three
+/// deviations.</remarks>
 internal sealed record Spread
 {
     private const double Cut = 3, BetweenPlaces = 0.3;

@@ -3,8 +3,9 @@ using FakeBench.Population;
 namespace FakeBench.Probes;
 
 /// <summary>White Gaussian noise at about a nanosecond a sample.</summary>
-/// <remarks>Each sample is a hashed entry of a table of 65,536 normal values (Box and Muller over an even net of radii and
-/// angles), four entries from one 64-bit number. No value lies beyond 4.6 standard deviations.</remarks>
+/// <remarks>Each sample is a hashed entry of a table of 65,536 normal values (Box and Muller over an even net of radii
+/// and
+/// angles), four entries from one 64-bit number. No value lies beyond 4.8 standard deviations.</remarks>
 public static class GaussianNoise
 {
     private const int Pairs = 32768;

@@ -1,6 +1,7 @@
 namespace FakeBench.Probes;
 
-/// <summary>Delay and one-pole low pass of a uniformly sampled signal, both exact for a cubic through four samples.</summary>
+/// <summary>Delay and one-pole low pass of a uniformly sampled signal, both exact for a cubic through four
+/// samples.</summary>
 public static class Lowpass
 {
     /// <summary>Delays a signal by any time; beyond the ends it keeps its first and last value.</summary>
@@ -23,9 +24,14 @@ public static class Lowpass
         for (int i = 0; i < result.Length; i++)
         {
             int at = i + shift;
-            result[i] = at >= 1 && at + 2 < samples.Length
-                ? a * samples[at - 1] + b * samples[at] + c * samples[at + 1] + d * samples[at + 2]
-                : a * Held(samples, at - 1) + b * Held(samples, at) + c * Held(samples, at + 1) + d * Held(samples, at + 2);
+            if (at >= 1 && at + 2 < samples.Length)
+            {
+                result[i] = a * samples[at - 1] + b * samples[at] + c * samples[at + 1] + d * samples[at + 2];
+                continue;
+            }
+
+            result[i] = a * Held(samples, at - 1) + b * Held(samples, at)
+                + c * Held(samples, at + 1) + d * Held(samples, at + 2);
         }
     }
 

@@ -10,10 +10,12 @@ public static class Recorder
     /// <param name="probe">What lies before the scope.</param>
     /// <param name="digitiser">The channel's converter as it is set.</param>
     /// <param name="noise">Key of the channel's noise: <see cref="CaptureKey.Noise"/>.</param>
-    /// <param name="jitter">How much later than the trigger says it happens, s: <see cref="CaptureKey.Jitter"/>, the same
+    /// <param name="jitter">How much later than the trigger says it happens, s: <see cref="CaptureKey.Jitter"/>, the
+    /// same
     /// for all channels of a capture.</param>
     /// <returns>One code a sample of the train; equal arguments, equal codes.</returns>
-    public static short[] Record(TrainTrajectory train, ProbeChannel probe, Digitiser digitiser, ulong noise, double jitter)
+    public static short[] Record(
+        TrainTrajectory train, ProbeChannel probe, Digitiser digitiser, ulong noise, double jitter)
     {
         ArgumentNullException.ThrowIfNull(train);
         ArgumentNullException.ThrowIfNull(probe);
