@@ -13,15 +13,18 @@ public sealed class EvidenceReader : IDisposable
     private readonly string _path;
     private readonly SqlSession _session;
 
-    private EvidenceReader(string path, SqlSession session)
+    private readonly bool _owned;
+
+    private EvidenceReader(string path, SqlSession session, bool owned)
     {
+        _owned = owned;
         _path = path;
         _session = session;
     }
 
     /// <summary>Opens an evidence file for reading.</summary>
     /// <exception cref="EvidenceException">There is no such file, it is none of ours, newer, or damaged.</exception>
-    public static EvidenceReader Open(string path) => new(path, SqlSession.OpenToRead(path));
+    public static EvidenceReader Open(string path) => new(path, SqlSession.OpenToRead(path), owned: true);
 
     /// <summary>The captures of a run, in the order in which they were taken.</summary>
     /// <param name="run">Identity of the run.</param>
@@ -58,7 +61,16 @@ public sealed class EvidenceReader : IDisposable
     });
 
     /// <inheritdoc/>
-    public void Dispose() => _session.Dispose();
+    public void Dispose()
+    {
+        if (_owned)
+        {
+            _session.Dispose();
+        }
+    }
+
+    /// <summary>Reads by a session that is open already and stays so.</summary>
+    internal static EvidenceReader Over(string path, SqlSession session) => new(path, session, owned: false);
 
     private static StoredCapture Capture(SqliteDataReader row) => new(
         row.GetInt64(0),

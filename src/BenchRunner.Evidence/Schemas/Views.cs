@@ -15,7 +15,8 @@ internal static class Views
          order by e.outcome = 'stopped', a.attempt desc, a.uid desc limit 1)
         """;
 
-    private const string IsCurrent = $"""
+    /// <summary>Whether decision <c>d</c> of run <c>r</c> is the newest of the counting attempt.</summary>
+    public const string IsCurrent = $"""
         (d.scoring = (select max(n.scoring) from decision n where n.run = d.run)
          and (r.lot is null or r.id = {CountingRun}))
         """;
@@ -101,6 +102,6 @@ internal static class Views
         join word part on part.id = r.part
         join word sequence on sequence.id = d.sequence
         where {IsCurrent}
-        group by r.lot, r.part, d.sequence;
+        group by lot.text, part.text, sequence.text;
         """;
 }

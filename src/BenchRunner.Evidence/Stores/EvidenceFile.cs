@@ -39,7 +39,6 @@ internal static class EvidenceFile
                 Make(session, time);
             }
 
-            RefuseWhenCutShort(session, path);
             return session;
         }
         catch
@@ -58,19 +57,5 @@ internal static class EvidenceFile
             Guid.CreateVersion7(time.GetUtcNow()).ToString("D"), Text.Time(time.GetUtcNow()));
         session.Run($"pragma application_id = {Schema.ApplicationId}; pragma user_version = {Schema.Version};");
         session.Run("commit");
-    }
-
-    private static void RefuseWhenCutShort(SqlSession session, string path)
-    {
-        // Only when the whole log has gone into the file does the file have to be as long as it says.
-        bool whole = session.Read(
-            "pragma wal_checkpoint(passive)", row => row.GetInt64(0) == 0 && row.GetInt64(1) == row.GetInt64(2))[0];
-        long stated = session.Number("pragma page_count") * session.Number("pragma page_size");
-        long found = new FileInfo(path).Length;
-        if (whole && found < stated)
-        {
-            throw new EvidenceException(
-                $"{path}: is cut short: {found} bytes of {stated}; go on with a new file or a backup.");
-        }
     }
 }

@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using Microsoft.Data.Sqlite;
@@ -28,11 +29,14 @@ namespace BenchRunner.Evidence.Stores;
 /// </remarks>
 public sealed class EvidenceStore : IDisposable
 {
+    private const int MostWaiting = 1000;
+
     private readonly string _path;
     private readonly TimeProvider _time;
     private readonly WriterLock _lock;
     private readonly SqlSession _session;
     private readonly Lock _gate = new();
+    private readonly ConcurrentQueue<Action<SqlSession>> _waiting = new();
     private EvidenceException? _failure;
 
     private EvidenceStore(string path, TimeProvider time, WriterLock writerLock, SqlSession session)
@@ -126,6 +130,18 @@ public sealed class EvidenceStore : IDisposable
     {
         lock (_gate)
         {
+            try
+            {
+                if (!_waiting.IsEmpty)
+                {
+                    Commit(_ => 0);
+                }
+            }
+            catch (EvidenceException)
+            {
+                // Its run has no end either, and the next writer says so.
+            }
+
             _session.Dispose();
             _lock.Dispose();
         }
@@ -141,7 +157,18 @@ public sealed class EvidenceStore : IDisposable
         }
     }
 
-    /// <summary>Runs a transaction; when it fails, nothing of it is stored and the store latches.</summary>
+    /// <summary>Leaves rows for the next commit; the 1,000th brings one about.</summary>
+    internal void Wait(Action<SqlSession> rows)
+    {
+        RefuseWhenFailed();
+        _waiting.Enqueue(rows);
+        if (_waiting.Count >= MostWaiting)
+        {
+            Commit(_ => 0);
+        }
+    }
+
+    /// <summary>Runs a transaction, rows that wait first; when it fails, nothing of it is stored and the store latches.</summary>
     internal T Commit<T>(Func<SqlSession, T> rows)
     {
         lock (_gate)
@@ -149,6 +176,11 @@ public sealed class EvidenceStore : IDisposable
             return Guarded(() =>
             {
                 _session.Run("begin immediate");
+                while (_waiting.TryDequeue(out Action<SqlSession>? waiting))
+                {
+                    waiting(_session);
+                }
+
                 T result = rows(_session);
                 _session.Run("commit");
                 return result;

@@ -1,4 +1,3 @@
-using System.Collections.Concurrent;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Validity;
@@ -9,19 +8,16 @@ namespace BenchRunner.Evidence.Stores;
 
 /// <summary>Writes one run. A capture is durable when <see cref="AddCapture"/> returns; the end of a run seals it.</summary>
 /// <remarks>
-/// Instruments, events, verdicts and values wait for the next durable commit (capture, end, or every 1,000 rows): all
+/// Instruments, events, verdicts and values wait for the next durable commit (capture, end, or closing, or every 1,000th of them): all
 /// but the events can be formed again from the captures, and one commit a capture is what a disk can bear. Each method
 /// throws <see cref="EvidenceException"/> once the store has failed, and
 /// <see cref="InvalidOperationException"/> after the run's end. Thread-safe; adding an event never waits for the disk
-/// except when it is the 1,000th.
+/// except when it is the 1,000th. An event that comes from another thread while the run is ending may be left out.
 /// </remarks>
 public sealed class RunWriter
 {
-    private const int MostWaiting = 1000;
-
     private readonly EvidenceStore _store;
     private readonly long _row;
-    private readonly ConcurrentQueue<Action<SqlSession>> _waiting = new();
     private int _captures;
     private volatile bool _ended;
 
@@ -161,42 +157,34 @@ public sealed class RunWriter
 
     private string End(Outcome outcome, string? reason, IReadOnlyList<MeasuredValue> values)
     {
-        string seal = Commit(to =>
+        return Commit(to =>
         {
             foreach (MeasuredValue value in values)
             {
                 RunRows.Measurement(to, _row, 0, value);
             }
 
+            _ended = true; // Under the store's gate: what waits from now on is not written after the seal.
             return RunRows.End(to, _row, outcome, reason, _store.Now());
         });
-        _ended = true;
-        return seal;
     }
 
     private void Wait(Action<SqlSession> rows)
     {
         RefuseWhenEnded();
-        _store.RefuseWhenFailed();
-        _waiting.Enqueue(rows);
-        if (_waiting.Count >= MostWaiting)
+        _store.Wait(to =>
         {
-            Commit(_ => 0);
-        }
+            if (!_ended)
+            {
+                rows(to);
+            }
+        });
     }
 
     private T Commit<T>(Func<SqlSession, T> rows)
     {
         RefuseWhenEnded();
-        return _store.Commit(to =>
-        {
-            while (_waiting.TryDequeue(out Action<SqlSession>? waiting))
-            {
-                waiting(to);
-            }
-
-            return rows(to);
-        });
+        return _store.Commit(rows);
     }
 
     private void RefuseWhenEnded()

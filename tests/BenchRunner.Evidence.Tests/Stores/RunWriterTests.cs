@@ -67,4 +67,48 @@ public sealed class RunWriterTests : IDisposable
         run.Finish(Samples.Decision());
         Assert.Equal("accepted", _folder.Value("select outcome from device_outcomes"));
     }
+
+    [Fact]
+    public void What_waits_is_kept_when_the_file_is_closed_without_an_end()
+    {
+        using (EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock()))
+        {
+            store.BeginRun(Samples.Header()).AddEvent(
+                new BenchEvent(Samples.Clock().GetUtcNow(), "runner", Severity.Error, "fault", "it fell over"));
+        }
+
+        Assert.Equal("it fell over", _folder.Value("select message from events"));
+    }
+
+    [Fact]
+    public void Events_from_other_threads_while_runs_end_never_spoil_the_file()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        for (int i = 0; i < 20; i++)
+        {
+            RunWriter run = store.BeginRun(Samples.Header());
+            using ManualResetEventSlim started = new();
+            Thread watch = new(() =>
+            {
+                started.Set();
+                try
+                {
+                    for (int n = 0; n < 3000; n++)
+                    {
+                        run.AddEvent(new BenchEvent(Samples.Clock().GetUtcNow(), "watch", Severity.Detail, "poll", "closed"));
+                    }
+                }
+                catch (InvalidOperationException)
+                {
+                    // The run has ended.
+                }
+            });
+            watch.Start();
+            started.Wait(TestContext.Current.CancellationToken);
+            run.Finish(Samples.Decision());
+            watch.Join();
+        }
+
+        Assert.Equal(20, _folder.Rows("select * from device_outcomes where outcome = 'accepted'").Count);
+    }
 }

@@ -1,0 +1,67 @@
+using BenchRunner.Evidence.Stores;
+using Microsoft.Data.Sqlite;
+
+namespace BenchRunner.Evidence.Tests.Schemas;
+
+public sealed class AppendOnlyTests : IDisposable
+{
+    private readonly EvidenceFolder _folder = new();
+
+    public AppendOnlyTests()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        RunWriter run = store.BeginRun(Samples.Header(lot: "L-1"));
+        run.AddInstrument("scope", "FAKEBENCH,SCOPE,17,1.0", "17", "1.0");
+        run.AddEvent(new(Samples.Clock().GetUtcNow(), "runner", Acceptance.Events.Severity.Detail, "fire", "train 1"));
+        Samples.AddJudged(run, Samples.Capture(1), Samples.Valid);
+        run.Finish(Samples.Decision());
+    }
+
+    public static TheoryData<string> Tables { get; } =
+    [
+        "origin", "word", "content", "run", "run_file", "instrument", "event", "capture", "trace", "payload", "verdict",
+        "capture_value", "decision", "measurement", "seal",
+    ];
+
+    public void Dispose() => _folder.Dispose();
+
+    [Fact]
+    public void The_tables_tried_are_all_there_are() =>
+        Assert.Equal(
+            Tables.Select(row => row.Data).Order(),
+            _folder.Rows("select name from sqlite_schema where type = 'table' order by name").Select(row => (string)row[0]!));
+
+    [Theory]
+    [MemberData(nameof(Tables))]
+    public void A_row_is_never_changed_deleted_or_replaced(string table)
+    {
+        List<object?[]> before = _folder.Rows($"select * from {table}");
+        Assert.NotEmpty(before);
+        string columns = string.Join(", ", _folder.Rows($"select name from pragma_table_info('{table}')").Select(row => row[0]));
+        string first = columns.Split(", ")[0];
+        Refused($"update {table} set {first} = {first}", "append-only");
+        Refused($"delete from {table}", "append-only");
+        Refused($"insert or replace into {table} ({columns}) select {columns} from {table}", "is append-only|run is sealed");
+        Assert.Equal(before, _folder.Rows($"select * from {table}"));
+    }
+
+    [Theory]
+    [InlineData("insert into event select run, 99, at, source, severity, kind, message from event")]
+    [InlineData("insert into instrument (run, role, identity) select run, 'supply', 'x' from instrument")]
+    [InlineData("insert into run_file select run, role, 'other.yaml', content from run_file limit 1")]
+    [InlineData("insert into verdict (capture, scoring, valid, findings, not_evaluated) select max(id) + 0, 0, 1, '', '' from capture")]
+    [InlineData("insert into measurement (run, scoring, operating_point, quantity, definition, unit, captures) select run, 0, 1, 1, 1, 1, 1 from measurement")]
+    public void A_sealed_run_grows_no_more(string sql) => Refused(sql, "run is sealed|append-only");
+
+    [Fact]
+    public void A_later_scoring_of_a_sealed_run_is_added() => _folder.Write(
+        """
+        insert into decision (run, scoring, outcome, captures_taken, captures_valid, sequence, sequence_revision,
+          sequence_content, algorithm, platform, scored_at)
+        select run, 1, 'rejected', captures_taken, captures_valid, sequence, sequence_revision, sequence_content,
+          algorithm, platform, scored_at from decision
+        """);
+
+    private void Refused(string sql, string pattern) =>
+        Assert.Matches(pattern, Assert.Throws<SqliteException>(() => _folder.Write(sql)).Message);
+}
