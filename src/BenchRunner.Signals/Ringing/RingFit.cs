@@ -140,17 +140,22 @@ public static class RingFit
         int best = 0;
         for (int modes = 1; modes < fits.Length; modes++)
         {
-            var fit = new RingFitSolver(modes);
-            if (!start.Modes(modes, decay, turn) || !fit.Fit(y, decay, turn))
+            double target = y.Length * Square(Math.Exp((shortest - Price(y.Length, modes)) / y.Length));
+            if (target <= y.Length * Square(Floor * rms))
+            {
+                break;
+            }
+
+            if (!start.Modes(modes, decay, turn))
             {
                 continue;
             }
 
-            fits[modes] = fit;
-            double length = Description(y.Length, Math.Sqrt(fit.Squares / y.Length), rms, modes);
-            if (length < shortest)
+            var fit = new RingFitSolver(modes);
+            if (fit.Fit(y, decay, turn, target))
             {
-                (shortest, best) = (length, modes);
+                (fits[modes], best) = (fit, modes);
+                shortest = Description(y.Length, Math.Sqrt(fit.Squares / y.Length), rms, modes);
             }
             else if (best > 0)
             {
@@ -162,7 +167,12 @@ public static class RingFit
     }
 
     private static double Description(int samples, double rms, double whole, int modes) =>
-        (samples * Math.Log(Math.Max(rms, Floor * whole))) + ((2 + (4 * modes)) / 2.0 * Math.Log(samples));
+        (samples * Math.Log(Math.Max(rms, Floor * whole))) + Price(samples, modes);
+
+    /// <summary>What the parameters add to the length of a description.</summary>
+    private static double Price(int samples, int modes) => (2 + (4 * modes)) / 2.0 * Math.Log(samples);
+
+    private static double Square(double x) => x * x;
 
     private static bool IsBelievable(IReadOnlyList<RingMode> modes, double window)
     {

@@ -3,6 +3,9 @@ namespace BenchRunner.Signals.Ringing;
 /// <summary>Turns a solved fit into modes with their standard uncertainties.</summary>
 internal static class RingFitReport
 {
+    /// <summary>Decay over the window below which an oscillation is steady within rounding.</summary>
+    private const double LeastDecay = 1e-9;
+
     /// <summary>Describes a fit.</summary>
     /// <param name="fit">The solved fit.</param>
     /// <param name="y">The samples fitted; not modified.</param>
@@ -30,12 +33,22 @@ internal static class RingFitReport
         var found = new List<RingMode>(modes);
         for (int k = 0; k < modes; k++)
         {
-            if (!(fit.Shape[2 * k] > 0))
+            if (fit.IsBareDecay(k))
+            {
+                continue;
+            }
+
+            if (!(fit.Shape[2 * k] > LeastDecay))
             {
                 return RingFitResult.None("no ringing found: the oscillation does not decay");
             }
 
             found.Add(Mode(fit, k, covariance, variance, window));
+        }
+
+        if (found.Count == 0)
+        {
+            return RingFitResult.None("no ringing found: a bare decay");
         }
 
         found.Sort((a, b) => a.IsRinging == b.IsRinging ? b.Strength.CompareTo(a.Strength) : a.IsRinging ? -1 : 1);

@@ -19,9 +19,23 @@ internal sealed class RingFitSolver
     /// <summary>Reductions below this part of the sum of squares cannot be told from rounding.</summary>
     private const double Resolution = 1e-12;
 
+    /// <summary>
+    /// The slowest turn, rad over the window. A mode that would turn slower is a bare decay: from there on its sine is
+    /// left out, without which amplitudes and decay could not be told apart.
+    /// </summary>
+    private const double SlowestTurn = 0.1;
+
+    /// <summary>Steps granted before a search that promises nothing is given up.</summary>
+    private const int StepsGranted = 3;
+
+    /// <summary>How many times the reduction that a step promises is hoped for from all steps to come.</summary>
+    private const double Hope = 10;
+
     private readonly int _modes;
     private readonly double[] _shape;
     private readonly double[] _trial;
+    private readonly bool[] _bare;
+    private readonly bool[] _before;
     private readonly double[] _products;
     private readonly double[] _normal;
     private readonly double[] _cross;
@@ -37,6 +51,8 @@ internal sealed class RingFitSolver
         int linear = RingFitColumns.Linear(modes), width = RingFitColumns.Width(modes), shape = 2 * modes;
         _shape = new double[shape];
         _trial = new double[shape];
+        _bare = new bool[modes];
+        _before = new bool[modes];
         _products = new double[width * width];
         _normal = new double[linear * linear];
         _cross = new double[shape * linear];
@@ -56,17 +72,22 @@ internal sealed class RingFitSolver
     /// <summary>Sum of squared residuals, as the products give it.</summary>
     public double Squares { get; private set; }
 
+    /// <summary>Whether a mode turned out to be a bare decay, not an oscillation.</summary>
+    public bool IsBareDecay(int mode) => _bare[mode];
+
     /// <summary>Fits.</summary>
     /// <param name="y">Samples.</param>
     /// <param name="decay">Start of σ a sample, one a mode.</param>
-    /// <param name="turn">Start of ω a sample, one a mode.</param>
-    /// <returns>Whether the search ended within its tolerance.</returns>
-    public bool Fit(ReadOnlySpan<double> y, ReadOnlySpan<double> decay, ReadOnlySpan<double> turn)
+    /// <param name="turn">Start of ω a sample, one a mode; 0 for a bare decay.</param>
+    /// <param name="target">Sum of squares that must be reached: a search that will not is given up.</param>
+    /// <returns>Whether the search ended within its tolerance, below the target.</returns>
+    public bool Fit(ReadOnlySpan<double> y, ReadOnlySpan<double> decay, ReadOnlySpan<double> turn, double target)
     {
         for (int k = 0; k < _modes; k++)
         {
             _shape[2 * k] = decay[k] * y.Length;
             _shape[(2 * k) + 1] = turn[k] * y.Length;
+            _bare[k] = turn[k] == 0;
         }
 
         if (!IsAllowed(_shape, y.Length) || !Evaluate(y, _shape))
@@ -74,6 +95,7 @@ internal sealed class RingFitSolver
             return false;
         }
 
+        double whole = Product(RingFitColumns.Samples(_modes), RingFitColumns.Samples(_modes));
         double damping = 1e-4, lastFine = double.PositiveInfinity;
         for (int step = 0; step < MostSteps; step++)
         {
@@ -84,14 +106,21 @@ internal sealed class RingFitSolver
                 continue;
             }
 
+            if (step >= StepsGranted && Squares - (Hope * expected) > target)
+            {
+                return false;
+            }
+
             double change = Try();
             // Nearer to the end the sum of squares no longer tells better from worse; the plain step still converges.
-            bool fine = expected < Resolution * _products[^1];
+            bool fine = expected < Resolution * whole;
             double before = Squares;
+            Slow();
             bool better = IsAllowed(_trial, y.Length) && Evaluate(y, _trial) && (fine || Squares <= before);
             if (!better)
             {
                 damping = Math.Max(1e-4, damping * 10);
+                _before.CopyTo(_bare, 0);
                 if (damping > 1e10 || !Evaluate(y, _shape))
                 {
                     return false;
@@ -104,7 +133,7 @@ internal sealed class RingFitSolver
             damping = damping < 1e-7 ? 0 : damping / 30;
             if (change <= Tolerance || (fine && change <= RoundingTolerance && change > lastFine / 2))
             {
-                return true;
+                return Squares < target;
             }
 
             lastFine = fine ? change : lastFine;
@@ -130,11 +159,20 @@ internal sealed class RingFitSolver
                     : Curvature(i - linear, j - linear);
             }
 
-            scale[i] = 1 / Math.Sqrt(factor[(i * size) + i]);
+        }
+
+        for (int k = 0; k < _modes; k++)
+        {
+            if (_bare[k])
+            {
+                Hold(factor, size, 3 + (2 * k));
+                Hold(factor, size, linear + 1 + (2 * k));
+            }
         }
 
         for (int i = 0; i < size; i++)
         {
+            scale[i] = 1 / Math.Sqrt(factor[(i * size) + i]);
             for (int j = 0; j <= i; j++)
             {
                 factor[(i * size) + j] *= scale[i] * scale[j];
@@ -162,13 +200,13 @@ internal sealed class RingFitSolver
         return true;
     }
 
-    private static bool IsAllowed(ReadOnlySpan<double> shape, int samples)
+    private bool IsAllowed(ReadOnlySpan<double> shape, int samples)
     {
         for (int k = 0; k < shape.Length; k += 2)
         {
             // Growing by e⁵ over the window, or gone within half a sample, is no ring; neither is beyond Nyquist.
             bool allowed = shape[k] > -5 && shape[k] < 2.0 * samples
-                && shape[k + 1] > 0 && shape[k + 1] < Math.PI * samples;
+                && (_bare[k / 2] || (shape[k + 1] > 0 && shape[k + 1] < Math.PI * samples));
             if (!allowed)
             {
                 return false;
@@ -177,6 +215,9 @@ internal sealed class RingFitSolver
 
         return true;
     }
+
+    /// <summary>Whether an unknown is the turn of a bare decay.</summary>
+    private bool IsHeld(int shape) => shape % 2 == 1 && _bare[shape / 2];
 
     private double Product(int i, int j) =>
         i < j ? _products[(i * RingFitColumns.Width(_modes)) + j] : _products[(j * RingFitColumns.Width(_modes)) + i];
@@ -215,6 +256,15 @@ internal sealed class RingFitSolver
             }
 
             Linear[i] = Product(i, samples);
+        }
+
+        for (int k = 0; k < _modes; k++)
+        {
+            if (_bare[k])
+            {
+                Hold(_normal, linear, 3 + (2 * k));
+                Linear[3 + (2 * k)] = 0;
+            }
         }
 
         if (!RingFitAlgebra.Factor(_normal, linear))
@@ -268,9 +318,15 @@ internal sealed class RingFitSolver
     {
         int count = _shape.Length;
         _curvature.CopyTo(_damped, 0);
+        _gradient.CopyTo(_step, 0);
         for (int i = 0; i < count; i++)
         {
             _damped[(i * count) + i] *= 1 + damping;
+            if (IsHeld(i))
+            {
+                Hold(_damped, count, i);
+                _step[i] = 0;
+            }
         }
 
         if (!RingFitAlgebra.Factor(_damped, count))
@@ -278,7 +334,6 @@ internal sealed class RingFitSolver
             return double.NaN;
         }
 
-        _gradient.CopyTo(_step, 0);
         RingFitAlgebra.Forward(_damped, count, _step);
         RingFitAlgebra.Backward(_damped, count, _step);
         double expected = 0;
@@ -288,6 +343,29 @@ internal sealed class RingFitSolver
         }
 
         return expected;
+    }
+
+    /// <summary>Takes an unknown out of a symmetric system: its row and column (lower triangle) become those of 1.</summary>
+    private static void Hold(Span<double> matrix, int size, int unknown)
+    {
+        for (int j = 0; j < size; j++)
+        {
+            matrix[(Math.Max(j, unknown) * size) + Math.Min(j, unknown)] = j == unknown ? 1 : 0;
+        }
+    }
+
+    /// <summary>Makes bare decays of modes that would turn slower than can be told, in the trial.</summary>
+    private void Slow()
+    {
+        _bare.CopyTo(_before, 0);
+        for (int k = 0; k < _modes; k++)
+        {
+            if (!_bare[k] && _trial[(2 * k) + 1] < SlowestTurn)
+            {
+                _bare[k] = true;
+                _trial[(2 * k) + 1] = 0;
+            }
+        }
     }
 
     /// <summary>Places the trial; returns its largest change relative to |s| + w of the mode.</summary>

@@ -47,21 +47,29 @@ internal ref struct RingFitStart
     /// <summary>Writes start values for a number of modes.</summary>
     /// <param name="modes">Modes wanted, 1 to 3.</param>
     /// <param name="decay">Receives σ a sample.</param>
-    /// <param name="turn">Receives ω a sample, rad, above 0.</param>
+    /// <param name="turn">Receives ω a sample, rad; 0 for a bare decay, which may stand in for the last mode.</param>
     /// <returns>Whether the subspace holds that many.</returns>
     public readonly bool Modes(int modes, Span<double> decay, Span<double> turn)
     {
-        int poles = 2 * modes;
-        if (poles > _rows - 2)
+        if (2 * modes > _rows - 2)
         {
             return false;
         }
 
-        Span<double> shift = stackalloc double[Vectors * Vectors];
-        shift = shift[..(poles * poles)];
+        // A bare decay takes one pole where an oscillation takes two.
+        return Poles(2 * modes, decay, turn, out _) >= modes
+            || (Poles((2 * modes) - 1, decay, turn, out bool decays) == modes - 1 && decays);
+    }
+
+    /// <summary>Writes the oscillating poles, and behind them the slowest bare decay; returns how many oscillate.</summary>
+    private readonly int Poles(int poles, Span<double> decay, Span<double> turn, out bool decays)
+    {
+        const double OnRealAxis = 1e-7;
+        decays = false;
+        Span<double> shift = stackalloc double[poles * poles];
         if (!Shift(poles, shift))
         {
-            return false;
+            return 0;
         }
 
         Span<double> coefficients = stackalloc double[poles];
@@ -69,36 +77,30 @@ internal ref struct RingFitStart
         Span<double> imaginary = stackalloc double[poles];
         RingFitAlgebra.Characteristic(shift, poles, coefficients);
         RingFitAlgebra.Roots(coefficients, real, imaginary);
-        return Choose(real, imaginary, modes, decay, turn);
-    }
-
-    /// <summary>Oscillating poles first; a real pole (a bare decay) stands in as a very slow oscillation.</summary>
-    private readonly bool Choose(
-        ReadOnlySpan<double> real, ReadOnlySpan<double> imaginary, int modes, Span<double> decay, Span<double> turn)
-    {
-        const double OnRealAxis = 1e-7;
         int found = 0;
-        for (int pass = 0; pass < 2; pass++)
+        double slowest = 0;
+        for (int i = 0; i < poles; i++)
         {
-            for (int i = 0; i < real.Length && found < modes; i++)
+            double size = Math.Sqrt((real[i] * real[i]) + (imaginary[i] * imaginary[i]));
+            if (imaginary[i] > OnRealAxis && size > 1e-6)
             {
-                double size = Math.Sqrt((real[i] * real[i]) + (imaginary[i] * imaginary[i]));
-                bool oscillates = imaginary[i] > OnRealAxis;
-                bool decays = Math.Abs(imaginary[i]) <= OnRealAxis && real[i] > 0;
-                if (!(size > 1e-6) || (pass == 0 ? !oscillates : !decays))
-                {
-                    continue;
-                }
-
                 decay[found] = -Math.Log(size) / _stride;
-                turn[found] = pass == 0
-                    ? Math.Atan2(imaginary[i], real[i]) / _stride
-                    : Math.Max(Math.Abs(decay[found]), 0.1 / (_rows * _stride));
-                found++;
+                turn[found++] = Math.Atan2(imaginary[i], real[i]) / _stride;
+            }
+            else if (Math.Abs(imaginary[i]) <= OnRealAxis && real[i] > slowest)
+            {
+                slowest = real[i];
             }
         }
 
-        return found == modes;
+        if (slowest > 1e-6 && found < decay.Length)
+        {
+            decays = true;
+            decay[found] = -Math.Log(slowest) / _stride;
+            turn[found] = 0;
+        }
+
+        return found;
     }
 
     /// <summary>
