@@ -110,8 +110,13 @@ public sealed class DeviceRun(
                 supervisor.TripNow(broken.Message);
                 return (BenchEnding.Tripped, new Ended(Outcome.Stopped, broken.Message));
             case LinkException or InstrumentException or BenchException:
-                // What the instrument does is unknown, and unknown counts as energised.
-                supervisor.TripNow(broken.Message);
+                events.Say(Severity.Error, "instrument-failed", broken.Message);
+                if (supervisor.Witness.MayBeEnergised && broken is not InstrumentException { Role: "scope" })
+                {
+                    // What the instrument does is unknown, and unknown counts as energised.
+                    supervisor.TripNow(broken.Message);
+                }
+
                 return (BenchEnding.InstrumentFailed, new Ended(Outcome.Stopped, broken.Message));
             case EvidenceException:
                 events.Say(Severity.Error, "evidence-failed", broken.Message);

@@ -3,12 +3,13 @@ using BenchRunner.Acceptance.Plans;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
+using BenchRunner.Safety.Watches;
 using BenchRunner.Signals.Units;
 
 namespace BenchRunner.Runner.Points;
 
 /// <summary>Brings the bus to an operating point's voltage and holds the supply against the independent voltmeter.</summary>
-public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
+public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, TimeProvider time)
 {
     /// <summary>How far supply and voltmeter may differ from what was set, relative (a probe or meter is off).</summary>
     private const double Agreement = 0.03;
@@ -26,6 +27,9 @@ public sealed class BusCharge(OpenBench bench, Bench setup, TimeProvider time)
         double protection = Math.Min(target * (1 + ProtectionMargin), setup.Envelope.Voltage);
         await bench.Supply.Program(
             permit, new Volts(target), new Amperes(setup.ChargingCurrent), new Volts(protection), cancel);
+
+        // Said before it is done: from here on the bus counts as energised until it is proved down.
+        witness.Commanded(target);
         await bench.Supply.OutputOn(permit, cancel);
         await WaitFor(target, cancel);
     }

@@ -54,7 +54,7 @@ public sealed class PointFixture
         _sinks = sinks;
         _events = events;
         _time = time;
-        _bus = new BusCharge(bench, plan.Bench, time);
+        _bus = new BusCharge(bench, plan.Bench, supervisor.Witness, time);
         _firing = new TrainFiring(bench, events);
         _settings = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
     }
@@ -78,7 +78,7 @@ public sealed class PointFixture
 
         // Gates at their off level before there is any voltage for them to hold off.
         await _bench.Pulser.Program(permit, Train(state.Set), cancel);
-        await _bench.Scope.Configure(Scope(state), cancel);
+        await _firing.Prepare(Scope(state), cancel);
         await _bench.Safety.Interlock.ReleaseBleeder(permit, cancel);
         await _bus.Up(permit, planned, cancel);
         while (IsWanting(taken))

@@ -12,34 +12,52 @@ public sealed class TrainFiring(OpenBench bench, EventSource events)
 {
     private static readonly TimeSpan RecordWithin = TimeSpan.FromSeconds(2);
 
+    /// <summary>Sets the scope; costs nothing where the settings stand, and after a link that was opened again all are sent.</summary>
+    /// <exception cref="InstrumentException">The scope cannot be set or reached.</exception>
+    public Task Prepare(ScopeSettings settings, CancellationToken cancel) =>
+        OnScope(() => bench.Scope.Configure(settings, cancel));
+
     /// <summary>Arms scope and pulser, fires, waits for the record and reads it.</summary>
     /// <returns>The record; null where the trigger was missed or the record was lost on its way.</returns>
     /// <exception cref="PermitException">The permit is not live: nothing was fired.</exception>
-    /// <exception cref="InstrumentException">The pulser did not do what it was told.</exception>
-    /// <exception cref="LinkException">A link failed before or while firing: the state is unknown.</exception>
+    /// <exception cref="InstrumentException">An instrument did not do what it was told, or the scope cannot be reached.</exception>
+    /// <exception cref="LinkException">The pulser's link failed: whether a train was fired is unknown.</exception>
     public async Task<ScopeRecord?> Fire(Permit permit, ScopeSettings settings, CancellationToken cancel)
     {
-        // Costs nothing where the settings stand; after a link that had to be opened again they are all sent again.
-        await bench.Scope.Configure(settings, cancel);
-        await bench.Scope.Arm(cancel);
+        await Prepare(settings, cancel);
+        await OnScope(() => bench.Scope.Arm(cancel));
         await bench.Pulser.Arm(permit, cancel);
         await bench.Pulser.Fire(permit, cancel);
-        if (!await bench.Scope.WaitForRecord(RecordWithin, cancel))
+        try
         {
+            if (await bench.Scope.WaitForRecord(RecordWithin, cancel))
+            {
+                return await bench.Scope.Read(cancel);
+            }
+
             events.Say(
                 Severity.Warning, "trigger-missed",
                 $"the scope did not trigger within {RecordWithin.TotalSeconds:0} s; the acquisition was aborted, the train is lost");
-            return null;
-        }
-
-        try
-        {
-            return await bench.Scope.Read(cancel);
         }
         catch (LinkException lost)
         {
-            events.Say(Severity.Warning, "record-lost", $"the scope's record was lost on its way ({lost.Message}); no part of it is kept");
-            return null;
+            events.Say(
+                Severity.Warning, "record-lost", $"the scope's record was lost on its way ({lost.Message}); no part of it is kept");
+        }
+
+        return null;
+    }
+
+    /// <summary>A scope that cannot be reached ends the run, but energises nothing: it is no reason to trip.</summary>
+    private static async Task OnScope(Func<Task> work)
+    {
+        try
+        {
+            await work();
+        }
+        catch (LinkException lost)
+        {
+            throw new InstrumentException("scope", lost.Message);
         }
     }
 }

@@ -92,7 +92,6 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
             _permit?.Revoke("another permit was granted");
             _permit = new Permit(bounds, _time, SafetyLimits.PermitLife);
-            Witness.Commanded(bounds.Voltage.Value);
             _discharging = false;
             return _permit;
         }

@@ -12,6 +12,12 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
 {
     public void Receive(BenchEvent happened)
     {
+        // Details are in the evidence, for who looks for them there.
+        if (happened.Severity == Severity.Detail)
+        {
+            return;
+        }
+
         string at = happened.At.ToLocalTime().ToString("HH:mm:ss.fff", CultureInfo.InvariantCulture);
         string text = Screen.Printable(happened.Message);
         screen.Line($"{screen.Palette.Faint(at)}  {happened.Source,-10}  {screen.Palette.Of(happened.Severity, text)}");
