@@ -95,6 +95,7 @@ public class LostReplyTests : SessionFixture
     public async Task A_dripping_reply_does_not_put_its_deadline_off()
     {
         using var session = await Open();
+        var dripped = new TaskCompletionSource(TaskCreationOptions.RunContinuationsAsynchronously);
         Instrument.Once("A?", async v =>
         {
             for (var i = 0; i < 10; i++)
@@ -102,9 +103,13 @@ public class LostReplyTests : SessionFixture
                 await v.Raw("1");
                 Time.Advance(Options.ReplyWithin / 5);
             }
+
+            await v.Raw("\n");
+            dripped.SetResult();
         });
 
         var e = await Assert.ThrowsAsync<LinkException>(() => Ask(session, "A?"));
+        await dripped.Task;
 
         Assert.Contains("no whole reply to 'A?'", e.Message, StringComparison.Ordinal);
         Assert.Equal(2, await AskB(session));
@@ -149,7 +154,7 @@ public class LostReplyTests : SessionFixture
         {
             while (true)
             {
-                await v.Raw("1\n");
+                await v.Raw("1\n1\n");
                 Time.Advance(Options.Silence / 4);
             }
         });

@@ -79,14 +79,9 @@ public class ScpiSessionTests : SessionFixture
     public async Task A_command_that_sets_down_does_not_wait_for_an_outstanding_reply()
     {
         using var session = await Open();
-        var late = new TaskCompletionSource();
-        Instrument.Once("B?", async v =>
-        {
-            // The instrument reads on while it computes its answer.
-            _ = late.Task.ContinueWith(_ => v.Line("7"), TaskScheduler.Default).Unwrap();
-            await Task.CompletedTask;
-        });
-        Instrument.On("OFF", _ => ScriptedInstrument.Done(late.SetResult));
+        Visitor? waiting = null;
+        Instrument.Once("B?", v => ScriptedInstrument.Done(() => waiting = v));
+        Instrument.On("OFF", _ => waiting!.Line("7"));
 
         var answer = Ask(session, "B?");
         await Clock.Until(() => Instrument.Count("B?") == 1);
