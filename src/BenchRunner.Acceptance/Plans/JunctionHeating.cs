@@ -42,47 +42,6 @@ internal static class JunctionHeating
             Warmest(DiodeLosses(point, train, sequence, off1, on2, off2), impedance, period));
     }
 
-    /// <summary>Thermal impedance at a pulse time, K/W: by the logarithm of time between the points stated.</summary>
-    /// <param name="impedance">Points by rising time; the steady one has infinite time.</param>
-    /// <param name="time">Time since the power began, s; 0 or less gives 0.</param>
-    /// <returns>
-    /// Before the first point it falls with the square root of time (heat into a half-space, common practice). The steady
-    /// value counts from a hundred times the last stated time on.
-    /// </returns>
-    internal static double ImpedanceAt(IReadOnlyList<ThermalPoint> impedance, double time)
-    {
-        if (time <= 0)
-        {
-            return 0;
-        }
-
-        ThermalPoint first = impedance[0];
-        if (double.IsPositiveInfinity(first.Time))
-        {
-            return first.Impedance;
-        }
-
-        if (time <= first.Time)
-        {
-            return first.Impedance * Math.Sqrt(time / first.Time);
-        }
-
-        ThermalPoint before = first;
-        foreach (ThermalPoint point in impedance.Skip(1))
-        {
-            double at = double.IsPositiveInfinity(point.Time) ? 100 * before.Time : point.Time;
-            if (time <= at)
-            {
-                double part = Math.Log(time / before.Time) / Math.Log(at / before.Time);
-                return before.Impedance + (part * (point.Impedance - before.Impedance));
-            }
-
-            before = point;
-        }
-
-        return before.Impedance;
-    }
-
     private static List<Loss> SwitchLosses(
         OperatingPoint point, PulseTrain train, Sequence sequence, double off1, double on2, double off2)
     {
@@ -129,7 +88,7 @@ internal static class JunctionHeating
             foreach (Loss loss in losses)
             {
                 rise += loss.Power
-                    * (ImpedanceAt(impedance, moment.End - loss.Start) - ImpedanceAt(impedance, moment.End - loss.End));
+                    * (TransientImpedance.At(impedance, moment.End - loss.Start) - TransientImpedance.At(impedance, moment.End - loss.End));
             }
 
             warmest = Math.Max(warmest, rise);
