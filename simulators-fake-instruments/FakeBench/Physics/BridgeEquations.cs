@@ -125,7 +125,7 @@ internal sealed class BridgeEquations : IOdeSystem
         double resistance = _b.LoadResistance + _rs + _b.ShuntResistance;
         double leak = busVoltage * _low.Leakage / (1 + _low.Leakage * resistance);
         double across = _b.LoadResistance * leak;
-        y[Phi] = leak * _b.LoadInductance;
+        y[Phi] = LoadFlux(leak);
         y[Winding] = across;
         y[Low] = leak;
         y[VHigh] = across;
@@ -143,6 +143,21 @@ internal sealed class BridgeEquations : IOdeSystem
         double r2 = r * r;
         double r4 = r2 * r2;
         return phi / _b.LoadInductance * (1 + r4 * r4);
+    }
+
+    /// <summary>Flux at which the load carries a current, Wb: by halving, since the curve only rises.</summary>
+    private double LoadFlux(double current)
+    {
+        double low = 0;
+        double high = current * _b.LoadInductance;
+        for (int i = 0; i < 60; i++)
+        {
+            double middle = 0.5 * (low + high);
+            if (LoadCurrent(middle) < current) low = middle;
+            else high = middle;
+        }
+
+        return high;
     }
 
     private double LoadSlope(double phi)

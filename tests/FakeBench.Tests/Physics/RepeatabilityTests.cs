@@ -35,6 +35,8 @@ public sealed class RepeatabilityTests
         var usual = HalfBridge.Simulate(CircuitParameters.Nominal, train, -1e-6, 1e-9, 20_000);
         var fine = HalfBridge.Simulate(CircuitParameters.Nominal, train, -1e-6, 1e-9, 20_000, 1e-7);
 
+        // A wrong slope in the Jacobian shows as rejected and shortened steps.
+        Assert.InRange(usual.Steps, 500, 1300);
         Assert.True(fine.Steps > 4 * usual.Steps);
         for (int s = 0; s < usual.Signals.Length; s++)
         {
@@ -85,17 +87,4 @@ public sealed class RepeatabilityTests
                     && t.End.BankVoltageAfter < bus
                     && t.Steps < 5000;
             }, iter: 60);
-
-    [Fact]
-    public void A_cached_train_is_the_very_same_and_another_one_is_solved_anew()
-    {
-        var cache = new TrajectoryCache();
-        var first = cache.Get(CircuitParameters.Nominal, Rated, -1e-6, 2e-9, 5_000);
-        var rebuilt = CircuitParameters.Nominal with { Bench = new BenchParts() };
-
-        Assert.Same(first, cache.Get(rebuilt, Rated with { }, -1e-6, 2e-9, 5_000));
-        Assert.NotSame(first, cache.Get(rebuilt, Rated with { BusVoltage = 600.001 }, -1e-6, 2e-9, 5_000));
-        Assert.NotSame(first, cache.Get(rebuilt, Rated, -1e-6, 2e-9, 5_001));
-        Assert.Same(first, cache.Get(rebuilt, Rated, -1e-6, 2e-9, 5_000));
-    }
 }

@@ -117,6 +117,20 @@ public sealed class DefectTests
         Assert.Equal(0, end.BankVoltageAfter);
     }
 
+    [Theory]
+    [InlineData(0)]
+    [InlineData(48)]
+    [InlineData(400)]
+    [InlineData(900)]
+    public void Every_named_device_can_be_fired_at_any_bus_voltage(double bus) =>
+        Assert.All(DevicePopulation.Named, device =>
+        {
+            var t = HalfBridge.Simulate(device.On(new BenchParts()), Rated with { BusVoltage = bus }, -1e-6, 10e-9, 2000);
+            Assert.All(t.Signals, row => Assert.All(row, v => Assert.True(double.IsFinite(v))));
+            Assert.True(double.IsFinite(t.End.BankVoltageAfter));
+            Assert.InRange(t.Steps, 100, 20_000);
+        });
+
     [Fact]
     public void A_device_that_dies_at_off2_is_sound_up_to_there_and_a_short_afterwards()
     {
