@@ -125,7 +125,8 @@ public sealed class DefectTests
     public void Every_named_device_can_be_fired_at_any_bus_voltage(double bus) =>
         Assert.All(DevicePopulation.Named, device =>
         {
-            var t = HalfBridge.Simulate(device.On(new BenchParts()), Rated with { BusVoltage = bus }, -1e-6, 10e-9, 2000);
+            var parts = device.On(new BenchParts());
+            var t = HalfBridge.Simulate(parts, Rated with { BusVoltage = bus }, -1e-6, 10e-9, 2000);
             Assert.All(t.Signals, row => Assert.All(row, v => Assert.True(double.IsFinite(v))));
             Assert.True(double.IsFinite(t.End.BankVoltageAfter));
             Assert.InRange(t.Steps, 100, 20_000);
