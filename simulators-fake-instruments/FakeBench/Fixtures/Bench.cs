@@ -107,7 +107,7 @@ public sealed class Bench
     public void SwitchSupply(bool on)
     {
         Supply.Output = on;
-        _bus.DropSource();
+        _bus.StartSource();
     }
 
     /// <summary>A train was fired: what it left behind.</summary>

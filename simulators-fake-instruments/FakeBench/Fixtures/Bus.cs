@@ -31,8 +31,8 @@ public sealed class Bus
     /// <summary>Sets the bank to what a train left on it.</summary>
     public void SetVoltage(double voltage) => (Voltage, AtRest) = (voltage, false);
 
-    /// <summary>Puts the supply's inner voltage to zero (output off).</summary>
-    public void DropSource() => Source = 0;
+    /// <summary>Puts the supply's inner voltage to that of the bank: so it starts when it is switched on.</summary>
+    public void StartSource() => (Source, AtRest) = (Voltage, false);
 
     /// <summary>Moves on in time, at most until the voltage has risen to a threshold.</summary>
     /// <param name="circuit">What lies at the bank.</param>

@@ -19,18 +19,15 @@ public sealed class BenchServer : IAsyncDisposable
         var faults = new FaultPlan(options.Faults);
         Bench = new Bench(new BenchValues(options.Pace), options.Device, options.Seed, faults, time);
         int clients = faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
-        var trains = new TrainCache();
-        var scope = new Scope(Bench, options.Channels, options.Bits);
-        foreach (Instrument instrument in
-            (Instrument[])[new Supply(Bench), new Pulser(Bench, scope, trains), scope, new Voltmeter(Bench)])
+        var panels = new FrontPanels(Bench, options.Channels, options.Bits);
+        foreach (Instrument panel in (Instrument[])[panels.Supply, panels.Pulser, panels.Scope, panels.Voltmeter])
         {
-            _hosts.Add((instrument.Role, new TcpHost(instrument, clients, time)));
+            _hosts.Add((panel.Role, new TcpHost(panel, clients, time)));
         }
 
-        var interlock = new Interlock(Bench);
-        _hosts.Add((interlock.Role, PseudoTerminal.IsSupported
-            ? new SerialHost(interlock)
-            : new TcpHost(interlock, clients, time)));
+        _hosts.Add((panels.Interlock.Role, PseudoTerminal.IsSupported
+            ? new SerialHost(panels.Interlock)
+            : new TcpHost(panels.Interlock, clients, time)));
     }
 
     /// <summary>The bench behind the instruments.</summary>

@@ -1,0 +1,37 @@
+using FakeBench.Fixtures;
+
+namespace FakeBench.Instruments;
+
+/// <summary>The five instruments of a bench.</summary>
+public sealed class FrontPanels
+{
+    private readonly TrainCache _trains = new();
+
+    /// <summary>Makes them.</summary>
+    /// <param name="bench">What they share.</param>
+    /// <param name="channels">Channels on the scope's inputs 1, 2, …</param>
+    /// <param name="bits">Bits of the scope's converter, 8 or 12.</param>
+    public FrontPanels(Bench bench, IReadOnlyList<string> channels, int bits)
+    {
+        Supply = new Supply(bench);
+        Scope = new Scope(bench, channels, bits);
+        Pulser = new Pulser(bench, Scope, _trains);
+        Voltmeter = new Voltmeter(bench);
+        Interlock = new Interlock(bench);
+    }
+
+    /// <summary>The supply.</summary>
+    public Supply Supply { get; }
+
+    /// <summary>The pulser.</summary>
+    public Pulser Pulser { get; }
+
+    /// <summary>The scope.</summary>
+    public Scope Scope { get; }
+
+    /// <summary>The voltmeter.</summary>
+    public Voltmeter Voltmeter { get; }
+
+    /// <summary>The interlock controller.</summary>
+    public Interlock Interlock { get; }
+}

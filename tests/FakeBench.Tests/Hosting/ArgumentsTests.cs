@@ -1,0 +1,52 @@
+using FakeBench.Faults;
+using FakeBench.Hosting;
+
+namespace FakeBench.Tests.Hosting;
+
+public sealed class ArgumentsTests
+{
+    [Fact]
+    public void Options_are_read()
+    {
+        ServeOptions options = Arguments.Parse(
+            ["--device", "W1200-0003", "--seed", "7", "--pace", "2.5", "--fault", "late-reply", "--fault",
+                "stale-record@fire:9", "--channels", "vgs_low,id_low", "--ends-with-input", "--bits", "8"]);
+        Assert.Equal(("W1200-0003", 7, 2.5, 8), (options.Device, options.Seed, options.Pace, options.Bits));
+        Assert.Equal(["vgs_low", "id_low"], options.Channels);
+        Assert.Equal(new Fault("stale-record", new Moment(MomentKind.Fire, 9)), options.Faults[1]);
+        Assert.True(options.EndsWithInput);
+    }
+
+    [Theory]
+    [InlineData("--pace", "6")]
+    [InlineData("--pace", "fast")]
+    [InlineData("--seed", "x")]
+    [InlineData("--bits", "10")]
+    [InlineData("--device", "no spaces")]
+    [InlineData("--channels", "vgs_low,what")]
+    [InlineData("--fault", "what")]
+    [InlineData("--what", "1")]
+    [InlineData("--seed")]
+    public void A_wrong_option_is_named(params string[] arguments)
+    {
+        FormatException wrong = Assert.Throws<FormatException>(() => Arguments.Parse(arguments));
+        Assert.NotEmpty(wrong.Message);
+    }
+
+    [Fact]
+    public void A_bench_file_names_every_link_and_the_components_of_its_pace()
+    {
+        string file = BenchFile.Write(
+            new ServeOptions { Pace = 5 },
+            [("supply", "tcp 127.0.0.1 41001"), ("voltmeter", "tcp 127.0.0.1 41002"), ("interlock", "serial /dev/pts/7")]);
+        Assert.StartsWith("format: 1\n", file[(file.IndexOf('\n', StringComparison.Ordinal) + 1)..], StringComparison.Ordinal);
+        Assert.Contains(
+            "  supply: { link: 'tcp 127.0.0.1:41001', dialect: generic-supply, connections: 4 }\n", file, StringComparison.Ordinal);
+        Assert.Contains("connections: 4, at: bank }", file, StringComparison.Ordinal);
+        Assert.Contains("  interlock: { link: 'serial /dev/pts/7', dialect: generic-interlock }\n", file, StringComparison.Ordinal);
+        Assert.Contains("bleeder: 5 kOhm", file, StringComparison.Ordinal);
+        Assert.Contains("charging-current: 2.5 A", file, StringComparison.Ordinal);
+        Assert.Contains("exchange: none\n", file, StringComparison.Ordinal);
+        Assert.DoesNotContain("fake:", file, StringComparison.Ordinal);
+    }
+}
