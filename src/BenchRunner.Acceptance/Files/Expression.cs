@@ -18,7 +18,7 @@ internal static class Expression
         try
         {
             // The pattern by itself first: "a)(b" becomes valid only between our own brackets.
-            _ = new Regex(pattern, Linear, _patience);
+            _ = new Regex(pattern, RegexOptions.CultureInvariant);
             return new Regex($@"\A(?:{pattern})\z", Linear, _patience);
         }
         catch (Exception wrong) when (wrong is ArgumentException or NotSupportedException)

@@ -15,6 +15,9 @@ internal sealed record TextShape(string Meaning, string Sample, string? Pattern 
     /// <summary>Longest text, characters.</summary>
     public const int Longest = 200;
 
+    private readonly Lazy<Regex?> _whole =
+        new(() => Pattern is null ? null : new Regex($@"\A(?:{Pattern})\z", RegexOptions.CultureInvariant));
+
     /// <inheritdoc/>
     public override string Expected => Wanted ?? $"a line of 1 to {Longest} visible characters";
 
@@ -26,7 +29,7 @@ internal sealed record TextShape(string Meaning, string Sample, string? Pattern 
     {
         if (node is YamlScalar { Text.Length: > 0 and <= Longest } scalar
             && !scalar.Text.Any(Shown.Acts)
-            && (Pattern is null || Regex.IsMatch(scalar.Text, $@"\A(?:{Pattern})\z", RegexOptions.NonBacktracking)))
+            && _whole.Value?.IsMatch(scalar.Text) != false)
         {
             return scalar.Text;
         }

@@ -55,6 +55,18 @@ public sealed class HostileBytesTests
         Assert.NotEmpty(Readers.Problems(Readers.Source("sequence.yaml", text)));
     }
 
+    [Theory]
+    [InlineData("(.{999}){999}")]
+    [InlineData("((((a{99}){99}){99}){99}){99}")]
+    [InlineData("(?<=a)b")]
+    [InlineData("a)(b")]
+    [InlineData("[")]
+    public void An_expression_that_is_none_or_enormous_is_refused(string pattern)
+    {
+        string text = Examples.Sequence.With("W1200-[0-9]{4}", pattern);
+        Assert.Single(Readers.Problems(Readers.Source("sequence.yaml", text)));
+    }
+
     [Fact]
     public void Every_cut_of_a_file_gives_a_place()
     {

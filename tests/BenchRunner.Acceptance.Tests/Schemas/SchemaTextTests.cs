@@ -52,6 +52,18 @@ public sealed class SchemaTextTests
     public void Settings_agree_with_their_schema() =>
         Assert.True(JsonSchemaCheck.Accepts(Schema("settings"), Json(Examples.Settings)));
 
+    [Theory]
+    [MemberData(nameof(Kinds))]
+    public void The_guide_to_the_files_names_each_key(string kind)
+    {
+        string guide = File.ReadAllText(Repository.PathOf("docs", "files.md"));
+        // Keys of definitions are quantities, which have a document of their own.
+        foreach ((string path, _) in Properties(Schema(kind), "").Where(key => !key.Path.StartsWith("/definitions/", StringComparison.Ordinal)))
+        {
+            Assert.Contains($"`{path[(path.LastIndexOf('/') + 1)..]}", guide, StringComparison.Ordinal);
+        }
+    }
+
     [Fact]
     public void An_unknown_kind_of_schema_is_a_mistake_of_the_caller() =>
         Assert.Throws<ArgumentException>(() => SchemaText.Of("waveform"));
