@@ -2,7 +2,7 @@ using FakeBench.Physics;
 
 namespace FakeBench.Tests.Physics;
 
-/// <summary>The circuits of tests/reference/waveforms/decks, with the decks' own component values.</summary>
+/// <summary>A circuit of tests/reference/waveforms/decks, with its deck's own component values.</summary>
 internal sealed record ReferenceCircuit(string Name, CircuitParameters Parts, PulseTrain Train, double Length)
 {
     /// <summary>The decks' driver starts its first edge here, s.</summary>
