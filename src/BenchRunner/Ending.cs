@@ -30,6 +30,10 @@ internal static class Ending
         {
             return Say(refused.Message, ExitCode.WrongInput);
         }
+        catch (Evidence.Queries.QueryException wrong)
+        {
+            return Say(wrong.Message, ExitCode.WrongInput);
+        }
         catch (Evidence.EvidenceException lost)
         {
             return Say(lost.Message, ExitCode.Evidence);

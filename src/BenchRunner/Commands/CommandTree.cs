@@ -11,6 +11,7 @@ internal static class CommandTree
     {
         PlanCommand.Build(),
         RunCommand.Build(),
+        QueryCommand.Build(),
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),
         BenchCommand.Build(),

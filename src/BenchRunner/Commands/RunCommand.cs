@@ -35,7 +35,7 @@ internal static class RunCommand
         {
             Plan = job.Allowed(),
             Dialects = job.Dialects,
-            EvidencePath = arguments.Evidence ?? (fake ? "simulated-evidence.db" : "bench-evidence.db"),
+            EvidencePath = EvidenceFiles.ToWrite(arguments.Evidence, fake),
             Lot = arguments.Lot,
             Operator = arguments.Operator,
             Companion = arguments.Companion,

@@ -19,6 +19,15 @@ internal static class JsonOutput
     public static JsonNode? Number(double? value) =>
         value is { } number && double.IsFinite(number) ? JsonValue.Create(number) : null;
 
+    /// <summary>A value of the evidence: text, whole number, number or null.</summary>
+    public static JsonNode? Cell(object? value) => value switch
+    {
+        null => null,
+        double number => Number(number),
+        long whole => JsonValue.Create(whole),
+        _ => JsonValue.Create(value.ToString()),
+    };
+
     /// <summary>An array of what each item becomes.</summary>
     public static JsonArray Array<T>(IEnumerable<T> items, Func<T, JsonNode?> each) => [.. items.Select(each)];
 }

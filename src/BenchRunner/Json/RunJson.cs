@@ -1,5 +1,5 @@
 using System.Text.Json.Nodes;
-using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Evidence.Queries;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Sessions;
 
@@ -14,11 +14,11 @@ internal static class RunJson
         ["evidence"] = evidence,
         ["simulated"] = summary.Simulated,
         ["exit_code"] = exitCode,
-        ["devices"] = JsonOutput.Array(summary.Devices, device => Device(device, summary.Simulated)),
+        ["devices"] = JsonOutput.Array(summary.Devices, device => Device(device, evidence)),
         ["not_run"] = JsonOutput.Array(summary.NotRun, serial => JsonValue.Create(serial)),
     });
 
-    private static JsonObject Device(DeviceReport device, bool simulated) => new()
+    private static JsonObject Device(DeviceReport device, string evidence) => new()
     {
         ["run"] = device.Run,
         ["device"] = device.Device,
@@ -26,27 +26,22 @@ internal static class RunJson
         ["reason"] = device.Decision.Reason,
         ["captures_taken"] = device.CapturesTaken,
         ["captures_valid"] = device.CapturesValid,
-        ["measurements"] = JsonOutput.Array(device.Decision.Values, value => Measurement(device, value, simulated)),
+        ["measurements"] = Measurements(evidence, device.Run),
     };
 
-    private static JsonObject Measurement(DeviceReport device, MeasuredValue value, bool simulated) => new()
+    /// <summary>The rows of the view, as the evidence has them: names and columns are the same contract.</summary>
+    private static JsonArray Measurements(string evidence, string run)
     {
-        ["run"] = device.Run,
-        ["device"] = device.Device,
-        ["operating_point"] = value.OperatingPoint,
-        ["quantity"] = value.Quantity,
-        ["definition"] = value.Definition,
-        ["value"] = JsonOutput.Number(value.Value),
-        ["unit"] = value.Unit,
-        ["standard_uncertainty"] = JsonOutput.Number(value.StandardUncertainty),
-        ["expanded_uncertainty"] = JsonOutput.Number(value.ExpandedUncertainty),
-        ["coverage_factor"] = JsonOutput.Number(value.CoverageFactor),
-        ["degrees_of_freedom"] = JsonOutput.Number(value.DegreesOfFreedom),
-        ["captures"] = value.Captures,
-        ["lower_limit"] = JsonOutput.Number(value.Lower),
-        ["upper_limit"] = JsonOutput.Number(value.Upper),
-        ["conformity"] = value.Conformity is { } conformity ? Words.Of(conformity) : null,
-        ["reason"] = value.Reason,
-        ["simulated"] = simulated,
-    };
+        QueryTable table = QueryRunner.RunSql(evidence, $"select * from measurements where run = '{run}'");
+        return JsonOutput.Array(table.Rows, row =>
+        {
+            var one = new JsonObject();
+            for (int i = 0; i < table.Columns.Count; i++)
+            {
+                one[table.Columns[i]] = JsonOutput.Cell(row[i]);
+            }
+
+            return one;
+        });
+    }
 }

@@ -2,14 +2,9 @@ using BenchRunner.Acceptance.Decisions;
 
 namespace BenchRunner.Json;
 
-/// <summary>The words that JSON and evidence use for outcomes and conformities.</summary>
+/// <summary>The words that JSON uses for outcomes, the same as the evidence's.</summary>
 internal static class Words
 {
-    public static string Of(Outcome outcome) => outcome switch
-    {
-        Outcome.NotMeasured => "not-measured",
-        _ => outcome.ToString().ToLowerInvariant(),
-    };
-
-    public static string Of(Conformity conformity) => conformity.ToString().ToLowerInvariant();
+    public static string Of(Outcome outcome) =>
+        outcome == Outcome.NotMeasured ? "not-measured" : outcome.ToString().ToLowerInvariant();
 }
