@@ -12,8 +12,6 @@ namespace BenchRunner.Signals.Analysis;
 /// <summary>Levels, fits and events of one record that several quantities share, each formed once.</summary>
 internal sealed class Analyser
 {
-    private const double BusWindow = 200e-9;
-    private const double OnStatePart = 0.10;
     private const double QuietPart = 0.25;
     private const double TimeConstants = 5;
     private const double AfterRecovery = 20e-9;
@@ -141,18 +139,9 @@ internal sealed class Analyser
     }
 
     /// <summary>Mean of a channel in the 200 ns before a position, or in what the record holds of them.</summary>
-    public Reading MeanBefore(Channel role, double position)
-    {
-        if (!Record.Has(role))
-        {
-            return Reading.None($"{Record.Measured(role).Name()} is not measured");
-        }
-
-        double from = Math.Max(0, position - (BusWindow / Record.SampleInterval));
-        return position - from >= 1
-            ? Reading.Of(Integral.Mean(Record[role], from, position), from, position)
-            : Reading.None("the record begins too late");
-    }
+    public Reading MeanBefore(Channel role, double position) => Record.Has(role)
+        ? BusVoltage.Before(Record[role], Record.SampleInterval, position)
+        : Reading.None($"{Record.Measured(role).Name()} is not measured");
 
     /// <summary>The reading of a quantity whose edge is not in the record.</summary>
     public Reading Outside(string edge) => Reading.None(Train.Absent ?? $"{edge} is outside the record");
@@ -165,38 +154,14 @@ internal sealed class Analyser
         _ => Reading.None($"bus_voltage has no definition {definition}"),
     };
 
-    private Reading FormBusFromVds()
-    {
-        if (Train.On2 is not { } on2)
-        {
-            return Outside("on2");
-        }
+    private Reading FormBusFromVds() => Train.On2 is { } on2
+        ? BusVoltage.FromBlocking(MeanBefore(Channel.VdsLow, on2.Departure), _settings.ForwardVoltage)
+        : Outside("on2");
 
-        Reading blocked = MeanBefore(Channel.VdsLow, on2.Departure);
-        return !blocked.HasValue ? blocked
-            : _settings.ForwardVoltage is { } forward
-                ? Reading.Of(blocked.Value - forward, blocked.From, blocked.To)
-                : Reading.None("the diode's forward voltage is not stated");
-    }
-
-    /// <summary>Mean of vds over the last tenth of a pulse, ending at the departure of its turn-off.</summary>
-    private Reading FormOnState(GateEdge? on, GateEdge? off, string edge)
-    {
-        if (!Record.Has(Channel.VdsLow))
-        {
-            return Reading.None($"{Record.Measured(Channel.VdsLow).Name()} is not measured");
-        }
-
-        if (off is not { } end || (on is null && edge == "on2"))
-        {
-            return Outside(edge);
-        }
-
-        double from = Math.Max(0, end.Departure - (OnStatePart * (end.At - (on?.At ?? 0))));
-        return end.Departure > from
-            ? Reading.Of(Integral.Mean(Record[Channel.VdsLow], from, end.Departure), from, end.Departure)
-            : Reading.None("the pulse is too short");
-    }
+    private Reading FormOnState(GateEdge? on, GateEdge? off, string edge) =>
+        !Record.Has(Channel.VdsLow) ? Reading.None($"{Record.Measured(Channel.VdsLow).Name()} is not measured")
+        : off is not { } end || (on is null && edge == "on2") ? Outside(edge)
+        : OnState.Form(Record[Channel.VdsLow], on?.At ?? 0, end.At, end.Departure);
 
     private GateEdge EndOfRecord() => new(Record.Last, Record.Last, CrossingDirection.Falling);
 

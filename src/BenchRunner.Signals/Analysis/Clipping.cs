@@ -1,3 +1,5 @@
+using System.Numerics;
+using System.Runtime.InteropServices;
 using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Traces;
 
@@ -40,16 +42,7 @@ internal sealed class Clipping
             }
         }
 
-        if (bridged is not null)
-        {
-            foreach (Channel channel in waveform.Channels)
-            {
-                bridged.TryAdd(channel, waveform[channel].ToArray());
-            }
-
-            clipping.Bridged = new Waveform(waveform.TimeOrigin, waveform.SampleInterval, bridged);
-        }
-
+        clipping.Bridged = bridged is null ? waveform : waveform.With(bridged);
         return clipping;
     }
 
@@ -70,12 +63,20 @@ internal sealed class Clipping
         return first < clipped.Length && clipped[first] <= Math.Ceiling(to + late);
     }
 
+    /// <summary>Whether all samples are finite: x · 0 is 0, or NaN from the first infinity or NaN on.</summary>
     private static bool IsFinite(ReadOnlySpan<double> samples)
     {
-        double sum = 0;
-        foreach (double x in samples)
+        ReadOnlySpan<Vector<double>> wide = MemoryMarshal.Cast<double, Vector<double>>(samples);
+        Vector<double> sums = Vector<double>.Zero;
+        foreach (Vector<double> x in wide)
         {
-            sum += x * 0;   // 0, or NaN from the first infinity or NaN on
+            sums += x * Vector<double>.Zero;
+        }
+
+        double sum = Vector.Sum(sums);
+        foreach (double x in samples[(wide.Length * Vector<double>.Count)..])
+        {
+            sum += x * 0;
         }
 
         return sum == 0;

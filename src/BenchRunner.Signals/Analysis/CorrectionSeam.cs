@@ -24,22 +24,20 @@ internal static class CorrectionSeam
             return waveform;
         }
 
-        Dictionary<Channel, double[]> channels = [];
-        foreach (Channel channel in waveform.Channels)
+        Channel current = record.Measured(Channel.IdLow);
+        bool stated = settings.Corrections.TryGetValue(current, out ChannelCorrection? c) && c.Offset is not null;
+        if (stated || !waveform.Has(current))
         {
-            bool stated = settings.Corrections.TryGetValue(channel, out ChannelCorrection? c) && c.Offset is not null;
-            double[] samples = waveform[channel].ToArray();
-            channels[channel] = samples;
-            if (channel.Unit() == "A" && !stated && channel == record.Measured(Channel.IdLow))
-            {
-                double rest = Integral.Mean(samples, from, to);
-                for (int i = 0; i < samples.Length; i++)
-                {
-                    samples[i] -= rest;
-                }
-            }
+            return waveform;
         }
 
-        return new Waveform(waveform.TimeOrigin, waveform.SampleInterval, channels);
+        double[] samples = waveform[current].ToArray();
+        double rest = Integral.Mean(samples, from, to);
+        for (int i = 0; i < samples.Length; i++)
+        {
+            samples[i] -= rest;
+        }
+
+        return waveform.With(new Dictionary<Channel, double[]> { [current] = samples });
     }
 }

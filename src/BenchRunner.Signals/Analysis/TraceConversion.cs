@@ -44,11 +44,12 @@ public static class TraceConversion
 
     private static double[] Values(RawTrace trace)
     {
-        double[] values = new double[trace.Codes.Length];
+        double[] values = GC.AllocateUninitializedArray<double>(trace.Codes.Length);
         short[] codes = trace.Codes;
-        for (int i = 0; i < codes.Length; i++)
+        (double reference, double increment, double origin) = (trace.Reference, trace.Increment, trace.Origin);
+        for (int i = 0; i < codes.Length && i < values.Length; i++)
         {
-            values[i] = trace.Value(codes[i]);
+            values[i] = ((codes[i] - reference) * increment) + origin;
         }
 
         return values;
