@@ -13,16 +13,9 @@ internal sealed class Clipping
     private readonly double[] _step = new double[ChannelNames.All.Count];
     private readonly double[] _late = new double[ChannelNames.All.Count];
 
-    private Clipping(Waveform bridged) => Bridged = bridged;
-
-    /// <summary>The record with every sample finite.</summary>
-    public Waveform Bridged { get; private set; }
-
     /// <summary>Looks a record over.</summary>
-    public static Clipping Of(Waveform waveform, AnalysisSettings settings)
+    public Clipping(Waveform waveform, AnalysisSettings settings)
     {
-        Clipping clipping = new(waveform);
-        Dictionary<Channel, double[]>? bridged = null;
         foreach (Channel channel in ChannelNames.All)
         {
             if (!waveform.Has(channel))
@@ -33,17 +26,27 @@ internal sealed class Clipping
             ReadOnlySpan<double> samples = waveform[channel];
             settings.Corrections.TryGetValue(channel, out ChannelCorrection? correction);
             double step = waveform.Step(channel) > 0 ? waveform.Step(channel) : SmallestStep.OfValues(samples);
-            clipping._step[(int)channel] = step / Math.Abs(correction?.Gain ?? 1);
-            clipping._late[(int)channel] = (correction?.Skew ?? 0) / waveform.SampleInterval;
-            if (!IsFinite(samples))
+            _step[(int)channel] = step / Math.Abs(correction?.Gain ?? 1);
+            _late[(int)channel] = (correction?.Skew ?? 0) / waveform.SampleInterval;
+        }
+    }
+
+    /// <summary>The waveform with every sample that is not finite bridged, and remembered as clipped.</summary>
+    /// <param name="waveform">The record as it came, or corrected: a correction can overflow.</param>
+    /// <param name="isCorrected">Whether its positions are corrected ones.</param>
+    public Waveform Bridge(Waveform waveform, bool isCorrected)
+    {
+        Dictionary<Channel, double[]>? bridged = null;
+        foreach (Channel channel in ChannelNames.All)
+        {
+            if (!IsFinite(waveform[channel]))
             {
                 bridged ??= [];
-                bridged[channel] = clipping.Bridge(channel, samples);
+                bridged[channel] = Bridge(channel, waveform[channel], isCorrected ? _late[(int)channel] : 0);
             }
         }
 
-        clipping.Bridged = bridged is null ? waveform : waveform.With(bridged);
-        return clipping;
+        return bridged is null ? waveform : waveform.With(bridged);
     }
 
     /// <summary>Smallest step of a channel after correction, V or A.</summary>
@@ -82,17 +85,17 @@ internal sealed class Clipping
         return sum == 0;
     }
 
-    private double[] Bridge(Channel channel, ReadOnlySpan<double> samples)
+    private double[] Bridge(Channel channel, ReadOnlySpan<double> samples, double late)
     {
         double[] bridged = samples.ToArray();
-        List<int> clipped = [];
+        List<int> clipped = [.. _clipped[(int)channel] ?? []];
         int before = -1;
         for (int i = 0; i <= samples.Length; i++)
         {
             bool end = i == samples.Length;
             if (!end && !double.IsFinite(samples[i]))
             {
-                clipped.Add(i);
+                clipped.Add((int)(i + late));
                 continue;
             }
 
@@ -106,6 +109,7 @@ internal sealed class Clipping
             before = i;
         }
 
+        clipped.Sort();
         _clipped[(int)channel] = [.. clipped];
         return bridged;
     }

@@ -2,6 +2,7 @@ using BenchRunner.Signals.Energy;
 using BenchRunner.Signals.Peaks;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Recovery;
+using BenchRunner.Signals.Ringing;
 using BenchRunner.Signals.RingWindows;
 using BenchRunner.Signals.Switching;
 using BenchRunner.Signals.Traces;

@@ -62,6 +62,9 @@ public sealed record TrainFacts
     /// <summary>Mean of the switch's current before on1, as recorded and gain-corrected, before its offset was removed, A.</summary>
     public double? CurrentBeforeOn1 { get; init; }
 
+    /// <summary>Where the offset that was taken off the switch's current came from.</summary>
+    public BaselineSource Baseline { get; init; }
+
     /// <summary>Largest vds of the switch while its gate is on, from 25 % of a pulse to the departure of its end, V.</summary>
     public double? OnStateMaximum { get; init; }
 

@@ -1,3 +1,4 @@
+using BenchRunner.Signals.Corrections;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
 
@@ -19,13 +20,14 @@ public static class WaveformAnalysis
     {
         ArgumentNullException.ThrowIfNull(waveform);
         ArgumentNullException.ThrowIfNull(settings);
-        Clipping clipping = Clipping.Of(waveform, settings);
-        Waveform corrected = CorrectionSeam.Correct(clipping.Bridged, settings);
+        Clipping clipping = new(waveform, settings);
+        Waveform recorded = clipping.Bridge(waveform, isCorrected: false);
+        Waveform corrected = clipping.Bridge(Correction.Correct(recorded, settings), isCorrected: true);
         Record record = new(corrected, clipping, settings);
         Train train = Train.Find(record, settings);
-        record = new Record(CorrectionSeam.RemoveBaseline(corrected, record, train, settings), clipping, settings);
-        Analyser analyser = new(record, train, settings);
-        TrainFacts facts = TrainReport.Form(analyser, clipping.Bridged, settings);
+        Waveform rested = Baseline.Remove(corrected, record, train, settings, out BaselineSource baseline);
+        Analyser analyser = new(new Record(rested, clipping, settings), train, settings);
+        TrainFacts facts = TrainReport.Form(analyser, recorded, settings) with { Baseline = baseline };
         return new AnalysisResult(facts, FormAll(analyser, settings));
     }
 

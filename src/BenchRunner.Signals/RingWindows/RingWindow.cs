@@ -1,5 +1,6 @@
 using BenchRunner.Signals.Peaks;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Ringing;
 
 namespace BenchRunner.Signals.RingWindows;
 
@@ -17,8 +18,7 @@ public sealed class RingWindow
     private const double ProminenceNoise = 5;
     private const double FirstPeriods = 6;
     private const double FewestPeriods = 2;
-    private const double MostDamping = 0.3;
-    private const int MostModes = 3;
+    private const string NoRinging = "no ringing found";
 
     private RingWindow(string? reason) => Reason = reason;
 
@@ -73,10 +73,10 @@ public sealed class RingWindow
         }
 
         Peak peak = Peak.Vertex(voltage, first);
-        RingMode? start = FirstMode(voltage, dt, peak.Position, second - first, to, out string? reason);
+        RingEnvelope? start = FirstMode(voltage, dt, peak.Position, second - first, to, out string? reason);
         if (start is not { } mode)
         {
-            return new RingWindow(reason);
+            return new RingWindow(reason ?? NoRinging);
         }
 
         RingWindow window = new((string?)null) { Extremum = peak.Position, Period = 1 / (mode.Frequency * dt) };
@@ -100,10 +100,10 @@ public sealed class RingWindow
             return new RingWindow(voltage.Reason);
         }
 
-        RingMode? start = FirstMode(current, dt, voltage.Extremum, voltage.Period, to, out string? reason);
+        RingEnvelope? start = FirstMode(current, dt, voltage.Extremum, voltage.Period, to, out string? reason);
         if (start is not { } mode)
         {
-            return new RingWindow(reason);
+            return new RingWindow(reason ?? NoRinging);
         }
 
         RingWindow window = new((string?)null) { Extremum = voltage.Extremum, Period = voltage.Period };
@@ -119,7 +119,7 @@ public sealed class RingWindow
         return Reason is null ? Reading.Of(value(Mode), From, To) : Reading.None(Reason);
     }
 
-    private static RingMode? FirstMode(
+    private static RingEnvelope? FirstMode(
         ReadOnlySpan<double> signal, double dt, double extremum, double period, double to, out string? reason)
     {
         double end = Math.Min(extremum + (FirstPeriods * period), Math.Min(to, signal.Length - 1));
@@ -130,11 +130,11 @@ public sealed class RingWindow
         }
 
         ReadOnlySpan<double> part = signal[(int)Math.Ceiling(extremum)..((int)end + 1)];
-        RingMode[] modes = RingSeam.Fit(part, dt, 1, out reason);
-        return modes.Length == 1 && modes[0].Decay > 0 && modes[0].Frequency > 0 ? modes[0] : null;
+        reason = NoRinging;
+        return RingEnvelope.Fit(part, dt, period);
     }
 
-    private void Fit(ReadOnlySpan<double> signal, double dt, RingMode first, double swing, double sigma, double to)
+    private void Fit(ReadOnlySpan<double> signal, double dt, RingEnvelope first, double swing, double sigma, double to)
     {
         double least = Math.Max(EndNoise * sigma, EndPart * swing);
         double decayed = Extremum + (Math.Log(first.Amplitude / least) / (first.Decay * dt));
@@ -146,19 +146,14 @@ public sealed class RingWindow
             return;
         }
 
-        ReadOnlySpan<double> part = signal[(int)Math.Ceiling(From)..((int)To + 1)];
-        RingMode[] modes = RingSeam.Fit(part, dt, MostModes, out string? reason);
-        double strongest = 0;
-        foreach (RingMode mode in modes)
+        RingFitResult fit = RingFit.Fit(signal[(int)Math.Ceiling(From)..((int)To + 1)], dt, RingFit.MostModes);
+        if (fit.Strongest is { IsRinging: true } strongest)
         {
-            double strength = mode.Amplitude * mode.Amplitude / mode.Decay;
-            if (mode.Damping is > 0 and < MostDamping && strength > strongest)
-            {
-                strongest = strength;
-                Mode = mode;
-            }
+            Mode = strongest;
         }
-
-        Reason = strongest > 0 ? null : reason ?? "no ringing";
+        else
+        {
+            Reason = fit.Reason ?? NoRinging;
+        }
     }
 }

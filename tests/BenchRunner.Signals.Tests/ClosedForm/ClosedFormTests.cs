@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Text.Json;
+using BenchRunner.Signals.Switching;
 using BenchRunner.Signals.Tests.Support;
 
 namespace BenchRunner.Signals.Tests.ClosedForm;
@@ -96,6 +97,12 @@ public sealed class ClosedFormTests
             _ when waveform.TryGetProperty("irr", out _) => RecoveryCases.Lines(waveform),
             _ when waveform.TryGetProperty("i_on", out _) => SwitchingCases.Edge(waveform, turnsOn: true),
             _ when waveform.TryGetProperty("i_off", out _) => SwitchingCases.Edge(waveform, turnsOn: false),
+            _ when waveform.TryGetProperty("modes", out _) => RingCases.Ring(waveform),
+            _ when id.StartsWith("inductance-", StringComparison.Ordinal) => new()
+            {
+                ["inductance"] = RingInductance.Form(Number("f"), Number("damping"), Number("C")),
+            },
+            "shunt-ramp" => RingCases.ShuntRamp(Number("R"), Number("L"), Number("didt")),
             _ => [],
         };
     }
@@ -106,6 +113,18 @@ public sealed class ClosedFormTests
         double relative = of.GetProperty("tol_rel").GetDouble();
         JsonElement waveform = of.GetProperty("waveform");
         double allowed = relative * (wanted == 0 ? 1 : Math.Abs(wanted));
+        if (waveform.TryGetProperty("id_low_shift_s", out JsonElement shift))
+        {
+            JsonElement on = Case("on-1").GetProperty("waveform");
+            return allowed + SwitchingCases.Trapezoid(
+                on.GetProperty("vds_low"), on.GetProperty("id_low"), shift.GetDouble());
+        }
+
+        if (of.TryGetProperty("relative_standard_deviation_bound", out _))
+        {
+            return RingCases.Noise(of, key, wanted);
+        }
+
         if (waveform.TryGetProperty("irr", out JsonElement irr))
         {
             JsonElement[] points = [.. irr.EnumerateArray()];

@@ -47,7 +47,8 @@ internal static class RecoveryCases
     }
 
     /// <summary>What sampling costs: the parabola through a corner overshoots by up to
-    /// irm dt/8 (1/ta + 1/tb) and moves the peak by up to half a sample; a bent line between samples by (dt/τ)²/8.</summary>
+    /// irm dt/8 (1/ta + 1/tb) and moves the peak by up to half a sample; the trapezoidal rule on the product of
+    /// two lines that change over tb by (dt/tb)².</summary>
     public static double Sampling(string key, double value, double irm, double ta, double tb, double dt)
     {
         double corner = dt / 8 * ((1 / ta) + (1 / tb));
@@ -59,6 +60,7 @@ internal static class RecoveryCases
             "trr" => tb * corner,
             "qrr" => irm * tb * corner,
             "dirr_dt" => value * corner,
+            "err" => value * (dt / tb) * (dt / tb),
             _ => 0,
         };
     }

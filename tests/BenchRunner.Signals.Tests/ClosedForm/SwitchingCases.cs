@@ -11,6 +11,7 @@ namespace BenchRunner.Signals.Tests.ClosedForm;
 internal static class SwitchingCases
 {
     private static readonly Grid _grid = new(-1.2e-6, 700e-9, 0.1e-9);
+    private static readonly Grid _fine = new(-50e-9, 150e-9, 1e-12);
 
     /// <summary>An edge given by channels and levels.</summary>
     public static Dictionary<string, double?> Edge(JsonElement waveform, bool turnsOn)
@@ -26,7 +27,7 @@ internal static class SwitchingCases
 
         double[] vds = _grid.Lines(waveform.GetProperty("vds_low"));
         double[] id = _grid.Lines(waveform.GetProperty("id_low"));
-        SwitchingEvent form = Event(waveform, vds, id, turnsOn, departure);
+        SwitchingEvent form = Event(_grid, waveform, vds, id, turnsOn, departure);
         Fill(got, form);
         if (waveform.TryGetProperty("vds_high", out JsonElement high))
         {
@@ -44,20 +45,20 @@ internal static class SwitchingCases
         double sum = 0;
         foreach ((string name, JsonElement waveform, bool turnsOn) in new[] { ("eon", on, true), ("eoff", off, false) })
         {
-            double[] vds = _grid.Lines(waveform.GetProperty("vds_low"));
-            double[] id = _grid.Lines(waveform.GetProperty("id_low"));
-            double[] late = _grid.Lines(waveform.GetProperty("id_low"), shift);
-            double true0 = SwitchingEnergy.Form(Event(waveform, vds, id, turnsOn, 0), 0.1).Value;
-            double skewed = SwitchingEnergy.Form(Event(waveform, vds, late, turnsOn, 0), 0.1).Value;
+            double[] vds = _fine.Lines(waveform.GetProperty("vds_low"));
+            double[] id = _fine.Lines(waveform.GetProperty("id_low"));
+            double[] late = _fine.Lines(waveform.GetProperty("id_low"), shift);
+            double true0 = SwitchingEnergy.Form(Event(_fine, waveform, vds, id, turnsOn, 0), 0.1).Value;
+            double skewed = SwitchingEnergy.Form(Event(_fine, waveform, vds, late, turnsOn, 0), 0.1).Value;
             got[$"{name}|e/10-10"] = skewed;
             got[$"{name}|e/10-10|change"] = skewed - true0;
             got[$"{name}|whole-overlap"] =
-                Integral.OfProduct(vds, late, 0, _grid.Count - 1) * _grid.Interval;
+                Integral.OfProduct(vds, late, 0, _fine.Count - 1) * _fine.Interval;
             sum += skewed - true0;
             if (!turnsOn)
             {
                 got["first-order|V I delta"] = shift * SkewSensitivity.Form(
-                    vds, id, _grid.Interval, 0, _grid.Count - 1, fromMoves: false, toMoves: false);
+                    vds, id, _fine.Interval, 0, _fine.Count - 1, fromMoves: false, toMoves: false);
             }
         }
 
@@ -74,15 +75,27 @@ internal static class SwitchingCases
 
     public static double? Value(Reading reading) => reading.HasValue ? reading.Value : null;
 
+    /// <summary>What the trapezoidal rule costs where voltage and current both change: dt²/12 times the product's curvature
+    /// over the overlap, J. Twice where an energy is a difference of two.</summary>
+    public static double Trapezoid(JsonElement voltage, JsonElement current, double shift) =>
+        2 * _fine.Interval * _fine.Interval / 12 * 2 * Steepest(voltage) * Steepest(current) * Math.Abs(shift);
+
+    private static double Steepest(JsonElement points)
+    {
+        JsonElement[] p = [.. points.EnumerateArray()];
+        return p.Zip(p.Skip(1)).Max(s => Math.Abs(
+            (s.Second[1].GetDouble() - s.First[1].GetDouble()) / (s.Second[0].GetDouble() - s.First[0].GetDouble())));
+    }
+
     private static SwitchingEvent Event(
-        JsonElement waveform, double[] vds, double[] id, bool turnsOn, double departure) => new()
+        Grid grid, JsonElement waveform, double[] vds, double[] id, bool turnsOn, double departure) => new()
         {
             Vds = vds,
             Id = id,
-            SampleInterval = _grid.Interval,
+            SampleInterval = grid.Interval,
             TurnsOn = turnsOn,
             Departure = departure,
-            End = _grid.Count - 1,
+            End = grid.Count - 1,
             Bus = Reading.Stated(waveform.GetProperty("bus_voltage").GetDouble()),
             OnState = Reading.Stated(waveform.TryGetProperty("on_state", out JsonElement on) ? on.GetDouble() : 0),
             Current = Reading.Stated(waveform.GetProperty(turnsOn ? "i_on" : "i_off").GetDouble()),
