@@ -62,7 +62,7 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
     {
         Span<double> turn = [2 * Math.PI / period];
         Span<double> decay = [TypicalDamping * turn[0]];
-        solver.Fit(y, decay, turn);
+        solver.Fit(y, decay, turn, double.PositiveInfinity);
         if (Rings(solver, y))
         {
             return true;
@@ -75,7 +75,7 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
             return false;
         }
 
-        solver.Fit(y, decay, turn);
+        solver.Fit(y, decay, turn, double.PositiveInfinity);
         return Rings(solver, y);
     }
 
