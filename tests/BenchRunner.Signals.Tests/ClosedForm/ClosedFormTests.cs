@@ -102,6 +102,8 @@ public sealed class ClosedFormTests
             {
                 ["inductance"] = RingInductance.Form(Number("f"), Number("damping"), Number("C")),
             },
+            _ when id.StartsWith("copy-times-", StringComparison.Ordinal) => ComparisonCases.Copy(Number("s")),
+            _ when id.StartsWith("sine-shift-", StringComparison.Ordinal) => ComparisonCases.Late(Number("phase")),
             "shunt-ramp" => RingCases.ShuntRamp(Number("R"), Number("L"), Number("didt")),
             _ => [],
         };
