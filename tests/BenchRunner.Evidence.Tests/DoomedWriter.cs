@@ -30,7 +30,7 @@ internal static class DoomedWriter
 
     public static Process Start(string file)
     {
-        ProcessStartInfo start = new(Environment.ProcessPath!) { RedirectStandardOutput = true, RedirectStandardInput = true };
+        ProcessStartInfo start = new(Environment.ProcessPath!) { RedirectStandardOutput = true };
         if (Path.GetFileNameWithoutExtension(Environment.ProcessPath) == "dotnet")
         {
             start.ArgumentList.Add(typeof(DoomedWriter).Assembly.Location);

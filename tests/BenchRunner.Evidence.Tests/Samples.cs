@@ -17,7 +17,7 @@ internal static class Samples
     public static Verdict Valid { get; } = new([], ["saturation"], null, new Dictionary<Channel, bool>());
 
     public static Verdict Rejected { get; } = new(
-        [new Finding("current-within", FindingClass.Retry, Channel.IdLow, 41.2, 40.8, 3.1e-6, "id_low is 41.2 A, above 40.8 A")],
+        [new Finding("current-within", FindingClass.Retry, Channel.IdLow, 41.2, 40.8, 3.1e-6, "41.2 A, above 40.8 A")],
         [],
         7.9e-6,
         new Dictionary<Channel, bool>());
@@ -83,7 +83,10 @@ internal static class Samples
             conformity, value is null ? "no turn-on edge" : null);
 
     public static DeviceDecision Decision(Outcome outcome = Outcome.Accepted, params MeasuredValue[] values) =>
-        new(outcome, outcome == Outcome.Accepted ? null : $"it is {outcome}", values.Length == 0 ? [Measured(650e-6)] : values);
+        new(
+            outcome,
+            outcome == Outcome.Accepted ? null : $"it is {outcome}",
+            values.Length == 0 ? [Measured(650e-6)] : values);
 
     public static IReadOnlyList<QuantityValue> Values { get; } =
     [

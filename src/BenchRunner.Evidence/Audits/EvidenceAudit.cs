@@ -7,7 +7,8 @@ using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Audits;
 
-/// <summary>Shows that nothing stored was altered, lost or half-written, by computing every hash and seal again.</summary>
+/// <summary>Shows that nothing stored was altered, lost or half-written, by computing every hash and seal
+/// again.</summary>
 /// <remarks>
 /// Whoever can write the file can also write new seals from some run onwards, or cut the last runs off: only a seal
 /// that was kept outside the file (<c>since</c>) shows that.
@@ -68,11 +69,13 @@ public sealed class EvidenceAudit
         return new AuditReport(runs, captures, lastSeals, _problems);
     }
 
-    private void Report(string? run, string what, string message) => _problems.Add(new AuditProblem(run, what, message));
+    private void Report(string? run, string what, string message) =>
+        _problems.Add(new AuditProblem(run, what, message));
 
     private void Database()
     {
-        foreach (string found in _session.Read($"pragma integrity_check({MostDatabaseProblems})", row => row.GetString(0)))
+        string check = $"pragma integrity_check({MostDatabaseProblems})";
+        foreach (string found in _session.Read(check, row => row.GetString(0)))
         {
             if (found != "ok")
             {
@@ -88,7 +91,8 @@ public sealed class EvidenceAudit
 
     private void Form()
     {
-        const string sql = "select type || ' ' || name, coalesce(sql, '') from sqlite_schema where name not like 'sqlite_%'";
+        const string sql =
+            "select type || ' ' || name, coalesce(sql, '') from sqlite_schema where name not like 'sqlite_%'";
         static (string Name, string Sql) Row(SqliteDataReader row) => (row.GetString(0), row.GetString(1));
         using SqlSession fresh = SqlSession.Open(":memory:", SqliteOpenMode.Memory);
         fresh.Run(Schema.Sql);
@@ -126,7 +130,9 @@ public sealed class EvidenceAudit
                 ordinal++;
                 if (seal.Ordinal != ordinal || seal.Previous != previous)
                 {
-                    Report(seal.Run, "chain", $"seal {seal.Ordinal} does not follow the seal before it: one is lost or swapped");
+                    Report(
+                        seal.Run, "chain",
+                        $"seal {seal.Ordinal} does not follow the seal before it: one is lost or swapped");
                 }
 
                 Seal(seal, uid);
@@ -156,7 +162,9 @@ public sealed class EvidenceAudit
             Report(run, "seal", "what the run stored is not what was sealed: rows were altered, added or lost");
         }
 
-        if (CanonicalForm.Seal(origin, seal.Ordinal, seal.Kind, run, seal.SealedAt, seal.Digest, seal.Previous) != seal.Seal)
+        string formed = CanonicalForm.Seal(
+            origin, seal.Ordinal, seal.Kind, run, seal.SealedAt, seal.Digest, seal.Previous);
+        if (formed != seal.Seal)
         {
             Report(run, "seal", "the seal itself was altered");
         }
@@ -164,11 +172,15 @@ public sealed class EvidenceAudit
 
     private void Unsealed()
     {
-        const string unfinished =
-            "select uid from run r where not exists (select 1 from seal s where s.run = r.id and s.kind = 'run') order by id";
+        const string unfinished = """
+            select uid from run r
+            where not exists (select 1 from seal s where s.run = r.id and s.kind = 'run') order by id
+            """;
         foreach (string run in _session.Read(unfinished, row => row.GetString(0)))
         {
-            Report(run, "unfinished", "the run has no end: it is going on, or its program was ended; the next writer closes it");
+            Report(
+                run, "unfinished",
+                "the run has no end: it is going on, or its program was ended; the next writer closes it");
         }
 
         foreach (string table in new[] { "decision", "measurement", "verdict", "capture_value" })

@@ -3,7 +3,8 @@ using BenchRunner.Signals.Traces;
 namespace BenchRunner.Evidence.Captures;
 
 /// <summary>A capture as it goes into the evidence, before anything is computed from it.</summary>
-/// <param name="OperatingPoint">Name of the operating point, or <c>zero</c>, <c>proving-before</c>, <c>proving-after</c>.</param>
+/// <param name="OperatingPoint">Name of the operating point, or <c>zero</c>, <c>proving-before</c>,
+/// <c>proving-after</c>.</param>
 /// <param name="Number">Number of the capture at its operating point, from 1.</param>
 /// <param name="TakenAt">When the train was fired, UTC.</param>
 /// <param name="Traces">One trace a channel; at least one, each channel once.</param>

@@ -44,7 +44,8 @@ public sealed class EvidenceReader : IDisposable
 
     /// <summary>The traces of a capture as the scope gave them, in the order in which they were stored.</summary>
     /// <param name="capture"><see cref="StoredCapture.Id"/>.</param>
-    /// <exception cref="EvidenceException">There is no such capture, it was altered, or the file cannot be read.</exception>
+    /// <exception cref="EvidenceException">There is no such capture, it was altered, or the file cannot be
+    /// read.</exception>
     public IReadOnlyList<RawTrace> ReadTraces(long capture) => Guarded(() =>
     {
         if (_session.Value("select bytes from payload where capture = ?1", capture) is not byte[] payload)
@@ -84,14 +85,16 @@ public sealed class EvidenceReader : IDisposable
             : new PulseTrain(row.GetDouble(6), row.GetDouble(7), row.GetDouble(8), row.GetDouble(9), row.GetDouble(10)),
         row.IsDBNull(11) ? null : row.GetInt64(11) != 0);
 
-    private static double? Real(SqliteDataReader row, int column) => row.IsDBNull(column) ? null : row.GetDouble(column);
+    private static double? Real(SqliteDataReader row, int column) =>
+        row.IsDBNull(column) ? null : row.GetDouble(column);
 
     private RawTrace Trace(SqliteDataReader row, long capture, byte[] payload)
     {
         string channel = row.GetString(0);
         long offset = row.GetInt64(8);
         long length = row.GetInt64(9);
-        if (offset < 0 || length < 0 || offset + length > payload.Length || ChannelNames.Parse(channel) is not { } known)
+        if (offset < 0 || length < 0 || offset > payload.Length - length
+            || ChannelNames.Parse(channel) is not { } known)
         {
             throw Altered(capture, channel);
         }

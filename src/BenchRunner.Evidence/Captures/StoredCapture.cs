@@ -2,7 +2,8 @@ namespace BenchRunner.Evidence.Captures;
 
 /// <summary>A capture as the evidence holds it, without its traces.</summary>
 /// <param name="Id">What <see cref="EvidenceReader.ReadTraces"/> names it by; holds within this file alone.</param>
-/// <param name="OperatingPoint">Name of the operating point, or <c>zero</c>, <c>proving-before</c>, <c>proving-after</c>.</param>
+/// <param name="OperatingPoint">Name of the operating point, or <c>zero</c>, <c>proving-before</c>,
+/// <c>proving-after</c>.</param>
 /// <param name="Number">Number of the capture at its operating point.</param>
 /// <param name="TakenAt">When the train was fired, UTC.</param>
 /// <param name="BusVoltage">The voltmeter's reading, V; null: not read.</param>

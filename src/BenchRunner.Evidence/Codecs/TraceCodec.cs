@@ -58,7 +58,8 @@ public static class TraceCodec
         };
     }
 
-    /// <summary>Codes as 16-bit little-endian bytes: the form of codec 0, and what a trace's SHA-256 is taken over.</summary>
+    /// <summary>Codes as 16-bit little-endian bytes: the form of codec 0, and what a trace's SHA-256 is taken
+    /// over.</summary>
     public static byte[] Bytes(ReadOnlySpan<short> codes)
     {
         byte[] bytes = new byte[2 * codes.Length];

@@ -61,7 +61,7 @@ public static class NamedQueries
             """),
         new(
             "worst-20",
-            "Which values of this quantity lie nearest to a limit or farthest outside? Margin is relative to the limit.",
+            "Which values of this quantity lie nearest to a limit, relative to it, or farthest outside?",
             [Quantity, MeasuredLot, MeasuredAt, new("limit", "how many rows", Default: 20)],
             $"""
             select r.device, lot.text as lot, point.text as operating_point, m.value, m.expanded_uncertainty,
@@ -93,7 +93,8 @@ public static class NamedQueries
                 min(value) as lowest, max(value) as highest, sum(conformity = 'fails') as failing
               from one group by lot, operating_point, definition, unit)
             select lot.text as lot, point.text as operating_point, definition.text as definition, a.devices, a.mean,
-              (select case when a.devices > 1 then sqrt(sum((o.value - a.mean) * (o.value - a.mean)) / (a.devices - 1)) end
+              (select case when a.devices > 1
+                then sqrt(sum((o.value - a.mean) * (o.value - a.mean)) / (a.devices - 1)) end
                from one o where o.lot is a.lot and o.operating_point = a.operating_point
                  and o.definition = a.definition and o.unit = a.unit) as standard_deviation,
               a.lowest, a.highest, unit.text as unit, a.failing
@@ -115,7 +116,8 @@ public static class NamedQueries
                 new("limit", "how many rows", Default: 1000),
             ],
             $"""
-            select device, lot, operating_point, quantity, value, expanded_uncertainty, unit, lower_limit, upper_limit, run
+            select device, lot, operating_point, quantity, value, expanded_uncertainty, unit, lower_limit, upper_limit,
+              run
             from measurements where conformity = 'fails' and current {NamedQuery.Marker}
             order by run, operating_point, quantity limit $limit
             """),
@@ -149,7 +151,10 @@ public static class NamedQueries
         new(
             "run-events",
             "What happened in this run?",
-            [new("run", "identity of the run", Required: true), new("severity", "only this severity", "severity = $severity")],
+            [
+                new("run", "identity of the run", Required: true),
+                new("severity", "only this severity", "severity = $severity"),
+            ],
             $"select at, source, severity, kind, message from events where run = $run {NamedQuery.Marker}"),
         new(
             "last-runs",

@@ -19,7 +19,8 @@ public static class QueryRunner
     /// <param name="name">Name of the question.</param>
     /// <param name="filters">Filter to value, e.g. <c>device</c> to <c>W1200-0001</c>.</param>
     /// <param name="cancel">Ends the question; a time limit is a token that ends by itself.</param>
-    /// <exception cref="QueryException">No such file, question or filter; a filter missing or of a wrong form.</exception>
+    /// <exception cref="QueryException">No such file, question or filter; a filter missing or of a wrong
+    /// form.</exception>
     /// <exception cref="EvidenceException">The file cannot be read.</exception>
     /// <exception cref="OperationCanceledException">It was cancelled.</exception>
     public static QueryTable Run(
@@ -35,7 +36,8 @@ public static class QueryRunner
     /// <param name="path">The evidence file.</param>
     /// <param name="sql">The SQL.</param>
     /// <param name="cancel">Ends the question; a time limit is a token that ends by itself.</param>
-    /// <exception cref="QueryException">No such file; the SQL is wrong, does more than read, or gives too many rows.</exception>
+    /// <exception cref="QueryException">No such file; the SQL is wrong, does more than read, or gives too many
+    /// rows.</exception>
     /// <exception cref="EvidenceException">The file cannot be read.</exception>
     /// <exception cref="OperationCanceledException">It was cancelled.</exception>
     public static QueryTable RunSql(string path, string sql, CancellationToken cancel = default) =>
@@ -70,7 +72,8 @@ public static class QueryRunner
     }
 
     private static long Count(QueryFilter filter, string text) =>
-        long.TryParse(text, NumberStyles.None, CultureInfo.InvariantCulture, out long count) && count is > 0 and <= MostRows
+        long.TryParse(text, NumberStyles.None, CultureInfo.InvariantCulture, out long count)
+            && count is > 0 and <= MostRows
             ? count
             : throw new QueryException($"--{filter.Name} is '{text}'; give a whole number from 1 to {MostRows}.");
 

@@ -13,8 +13,10 @@ public static class QueryText
     private static readonly SearchValues<char> FormulaStarts = SearchValues.Create("=+-@\t\r");
     private static readonly SearchValues<char> QuotedInCsv = SearchValues.Create(",\"\r\n");
 
-    /// <summary>An aligned table: numbers to the right with six digits in plain SI, NULL as <c>-</c>, no trailing blanks.</summary>
-    /// <remarks>Control and direction characters come escaped, so that no stored text can play with a terminal.</remarks>
+    /// <summary>An aligned table: numbers to the right with six digits in plain SI, NULL as <c>-</c>, no trailing
+    /// blanks.</summary>
+    /// <remarks>Control and direction characters come escaped, so that no stored text can play with a
+    /// terminal.</remarks>
     public static string Table(QueryTable table)
     {
         ArgumentNullException.ThrowIfNull(table);
@@ -25,7 +27,8 @@ public static class QueryText
         for (int i = 0; i < columns; i++)
         {
             widths[i] = cells.Select(row => row[i].Length).Append(table.Columns[i].Length).Max();
-            right[i] = table.Rows.Any(row => row[i] is long or double) && table.Rows.All(row => row[i] is null or long or double);
+            right[i] = table.Rows.Any(row => row[i] is long or double)
+                && table.Rows.All(row => row[i] is null or long or double);
         }
 
         StringBuilder text = new();
@@ -39,7 +42,8 @@ public static class QueryText
         return text.ToString();
     }
 
-    /// <summary>CSV after RFC 4180 with line feeds: a header, then the rows; NULL is empty, numbers are exact.</summary>
+    /// <summary>CSV after RFC 4180 with line feeds: a header, then the rows; NULL is empty, numbers are
+    /// exact.</summary>
     /// <remarks>A text that a spreadsheet would take for a formula comes with an apostrophe before it.</remarks>
     public static string Csv(QueryTable table)
     {

@@ -2,7 +2,8 @@ using System.Text;
 
 namespace BenchRunner.Evidence.Schemas;
 
-/// <summary>What the database itself refuses, whoever writes to it: changes, deletions, replacements, late rows, mixtures.</summary>
+/// <summary>What the database itself refuses, whoever writes to it: changes, deletions, replacements, late rows,
+/// mixtures.</summary>
 /// <remarks>
 /// A blob can be written past a trigger and a trigger can be dropped; the seals find both. The triggers are there so
 /// that nothing is lost by mistake.
@@ -49,8 +50,8 @@ internal static class Triggers
     private static void KeepRows(StringBuilder sql, string table, string[][] keys)
     {
         // "insert or replace" deletes without firing the trigger on deletion, so an insert over a key is refused too.
-        string taken = string.Join(" or ", keys.Select(key =>
-            $"exists (select 1 from {table} where {string.Join(" and ", key.Select(column => $"{column} = new.{column}"))})"));
+        static string Same(string[] key) => string.Join(" and ", key.Select(column => $"{column} = new.{column}"));
+        string taken = string.Join(" or ", keys.Select(key => $"exists (select 1 from {table} where {Same(key)})"));
         sql.Append($"""
             create trigger {table}_is_never_deleted before delete on {table}
             begin select raise(abort, 'evidence is append-only: no row of {table} is deleted'); end;

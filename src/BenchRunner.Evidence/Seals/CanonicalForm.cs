@@ -1,5 +1,4 @@
 using System.Buffers.Binary;
-using System.Globalization;
 using System.Security.Cryptography;
 using System.Text;
 using BenchRunner.Evidence.Stores;
@@ -92,7 +91,8 @@ internal static class CanonicalForm
         return Convert.ToHexStringLower(hash.GetHashAndReset());
     }
 
-    /// <summary>The seal that chains a digest to the seal before it: SHA-256 over the canonical row <c>seal</c>.</summary>
+    /// <summary>The seal that chains a digest to the seal before it: SHA-256 over the canonical row
+    /// <c>seal</c>.</summary>
     public static string Seal(
         string origin, long ordinal, string kind, string run, string sealedAt, string digest, string previous)
     {
@@ -122,7 +122,7 @@ internal static class CanonicalForm
                     hash.AppendData("n"u8);
                     break;
                 case long number:
-                    hash.AppendData(Encoding.UTF8.GetBytes(string.Create(CultureInfo.InvariantCulture, $"i{number};")));
+                    hash.AppendData(Ascii($"i{number};"));
                     break;
                 case double number:
                     BinaryPrimitives.WriteDoubleBigEndian(bits[1..], number);
@@ -130,14 +130,17 @@ internal static class CanonicalForm
                     break;
                 case string text:
                     byte[] utf8 = Encoding.UTF8.GetBytes(text);
-                    hash.AppendData(Encoding.UTF8.GetBytes(string.Create(CultureInfo.InvariantCulture, $"t{utf8.Length}:")));
+                    hash.AppendData(Ascii($"t{utf8.Length}:"));
                     hash.AppendData(utf8);
                     break;
                 default:
-                    throw new EvidenceException($"{table}: a column holds a {value.GetType().Name}, which no run stores.");
+                    throw new EvidenceException(
+                        $"{table}: a column holds a {value.GetType().Name}, which no run stores.");
             }
         }
 
         hash.AppendData("\n"u8);
     }
+
+    private static byte[] Ascii(FormattableString text) => Encoding.ASCII.GetBytes(FormattableString.Invariant(text));
 }

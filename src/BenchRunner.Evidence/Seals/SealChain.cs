@@ -5,7 +5,8 @@ namespace BenchRunner.Evidence.Seals;
 /// <summary>The chain of seals of one origin.</summary>
 internal static class SealChain
 {
-    /// <summary>Seals a run: a digest of what it stored, chained to the seal before it. Part of the caller's transaction.</summary>
+    /// <summary>Seals a run: a digest of what it stored, chained to the seal before it. Part of the caller's
+    /// transaction.</summary>
     /// <returns>The seal, lower-case hexadecimal.</returns>
     public static string Append(SqlSession session, long run, string sealedAt)
     {

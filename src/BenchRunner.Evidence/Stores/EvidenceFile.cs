@@ -25,7 +25,8 @@ internal static class EvidenceFile
             // The mode is asked for and read back: where it is refused, a crash could cost what was announced.
             if (session.Value("pragma journal_mode = wal") is not "wal")
             {
-                throw new EvidenceException($"{path}: its disk allows no write-ahead log; name a file on another disk.");
+                throw new EvidenceException(
+                    $"{path}: its disk allows no write-ahead log; name a file on another disk.");
             }
 
             session.Run("pragma synchronous = full;");

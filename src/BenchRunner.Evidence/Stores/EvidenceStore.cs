@@ -5,7 +5,8 @@ using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Stores;
 
-/// <summary>The evidence: an SQLite file that takes runs and never changes what it took. One writer, any readers.</summary>
+/// <summary>The evidence: an SQLite file that takes runs and never changes what it took. One writer, any
+/// readers.</summary>
 /// <remarks>
 /// <para>Invariants:</para>
 /// <list type="number">
@@ -95,7 +96,8 @@ public sealed class EvidenceStore : IDisposable
 
     /// <summary>Whether a run may begin.</summary>
     /// <param name="header">The run.</param>
-    /// <returns>Why not; null where it may. Attempts that were stopped count neither as decided nor as attempts.</returns>
+    /// <returns>Why not; null where it may. Attempts that were stopped count neither as decided nor as
+    /// attempts.</returns>
     /// <exception cref="EvidenceException">The file cannot be read, or a write has failed.</exception>
     public RunRefusal? Refuses(RunHeader header)
     {
@@ -168,7 +170,8 @@ public sealed class EvidenceStore : IDisposable
         }
     }
 
-    /// <summary>Runs a transaction, rows that wait first; when it fails, nothing of it is stored and the store latches.</summary>
+    /// <summary>Runs a transaction, rows that wait first; when it fails, nothing of it is stored and the store
+    /// latches.</summary>
     internal T Commit<T>(Func<SqlSession, T> rows)
     {
         lock (_gate)
@@ -199,7 +202,7 @@ public sealed class EvidenceStore : IDisposable
             }
             catch (Exception error)
             {
-                // Whatever it was, rows that waited may be lost: the file is right up to the last commit and ends there.
+                // Whatever it was, rows that waited may be lost: the file is right, and ends, at the last commit.
                 Volatile.Write(ref _failure, EvidenceFault.Explain(_path, error));
                 RollBack();
                 throw _failure!;

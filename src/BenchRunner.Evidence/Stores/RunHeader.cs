@@ -18,7 +18,8 @@ public sealed record RunHeader
     /// <summary>Name of the bench.</summary>
     public required string Bench { get; init; }
 
-    /// <summary>Bench, dialects and calibration file, whose exact bytes are stored; the sequence is not among them.</summary>
+    /// <summary>Bench, dialects and calibration file, whose exact bytes are stored; the sequence is not among
+    /// them.</summary>
     public IReadOnlyList<SourceFile> Files { get; init; } = [];
 
     /// <summary>Who operates the bench; null: not stated.</summary>

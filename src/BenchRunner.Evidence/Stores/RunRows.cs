@@ -20,7 +20,8 @@ internal static class RunRows
         long run = to.Insert(
             """
             insert into run (uid, origin, device, lot, attempt, again, part, kind, position, companion, sequence,
-              sequence_revision, sequence_content, bench, simulated, operator, armed_by, algorithm, platform, started_at)
+              sequence_revision, sequence_content, bench, simulated, operator, armed_by, algorithm, platform,
+              started_at)
             values (?1, (select min(id) from origin), ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, ?10, ?11, ?12, ?13, ?14, ?15, ?16,
               ?17, ?18, ?19)
             """,

@@ -14,8 +14,8 @@ internal static class RunRules
         {
             return new RunRefusal(
                 RunRefusalKind.MixedOrigin,
-                $"the evidence file holds {Origin(!header.Simulated)} runs and this run is {Origin(header.Simulated)}; " +
-                "name another evidence file.");
+                $"the evidence file holds {Origin(!header.Simulated)} runs, and this run is " +
+                $"{Origin(header.Simulated)}; name another evidence file.");
         }
 
         if (header.Lot is not { } lot)
@@ -28,14 +28,15 @@ internal static class RunRules
         {
             return new RunRefusal(
                 RunRefusalKind.TooManyAttempts,
-                $"{header.Device} had {decided} attempts in lot {lot}, and the sequence allows {header.Sequence.Attempts}; " +
-                "decide by what is there.");
+                $"{header.Device} had {decided} attempts in lot {lot}, and the sequence allows " +
+                $"{header.Sequence.Attempts}; decide by what is there.");
         }
 
         if (decided > 0 && string.IsNullOrWhiteSpace(header.Again))
         {
             object? outcome = session.Value(
-                $"select d.outcome {InLot} and d.outcome <> 'stopped' order by r.attempt desc limit 1", lot, header.Device);
+                $"select d.outcome {InLot} and d.outcome <> 'stopped' order by r.attempt desc limit 1",
+                lot, header.Device);
             return new RunRefusal(
                 RunRefusalKind.AlreadyDecided,
                 $"{header.Device} is {outcome} in lot {lot} already; give a reason to measure it again.");

@@ -6,9 +6,11 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Evidence.Stores;
 
-/// <summary>Writes one run. A capture is durable when <see cref="AddCapture"/> returns; the end of a run seals it.</summary>
+/// <summary>Writes one run. A capture is durable when <see cref="AddCapture"/> returns; the end of a run seals
+/// it.</summary>
 /// <remarks>
-/// Instruments, events, verdicts and values wait for the next durable commit (capture, end, or closing, or every 1,000th of them): all
+/// Instruments, events, verdicts and values wait for the next durable commit (capture, end, or closing, or every
+/// 1,000th of them): all
 /// but the events can be formed again from the captures, and one commit a capture is what a disk can bear. Each method
 /// throws <see cref="EvidenceException"/> once the store has failed, and
 /// <see cref="InvalidOperationException"/> after the run's end. Thread-safe; adding an event never waits for the disk
@@ -60,7 +62,8 @@ public sealed class RunWriter
     public long AddCapture(CaptureRow capture)
     {
         ArgumentNullException.ThrowIfNull(capture);
-        if (capture.Traces.Count == 0 || capture.Traces.DistinctBy(trace => trace.Channel).Count() != capture.Traces.Count)
+        int channels = capture.Traces.DistinctBy(trace => trace.Channel).Count();
+        if (channels == 0 || channels != capture.Traces.Count)
         {
             throw new ArgumentException("A capture has at least one trace, and each channel once.", nameof(capture));
         }

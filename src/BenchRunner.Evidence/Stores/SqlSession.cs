@@ -79,7 +79,8 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
         if (version != Schema.Version)
         {
             throw new EvidenceException(
-                $"{path}: has format {version}, and this program knows format {Schema.Version}; use the program that wrote it.");
+                $"{path}: has format {version}, and this program knows format {Schema.Version}; " +
+                "use the program that wrote it.");
         }
     }
 
@@ -106,7 +107,8 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
         Bind(sql, values).ExecuteScalar() is { } found and not DBNull ? found : null;
 
     /// <summary>The first column of the first row as a whole number; 0 where there is none.</summary>
-    public long Number(string sql, params ReadOnlySpan<object?> values) => Value(sql, values) is long number ? number : 0;
+    public long Number(string sql, params ReadOnlySpan<object?> values) =>
+        Value(sql, values) is long number ? number : 0;
 
     /// <summary>Reads all rows.</summary>
     public List<T> Read<T>(string sql, Func<SqliteDataReader, T> row, params ReadOnlySpan<object?> values)
@@ -129,7 +131,8 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
             return null;
         }
 
-        return Value("select id from word where text = ?1", text) ?? Insert("insert into word (text) values (?1)", text);
+        return Value("select id from word where text = ?1", text)
+            ?? Insert("insert into word (text) values (?1)", text);
     }
 
     /// <inheritdoc/>

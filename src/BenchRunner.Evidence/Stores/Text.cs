@@ -14,7 +14,8 @@ namespace BenchRunner.Evidence.Stores;
 /// <summary>The words and forms in which the evidence keeps what is no number.</summary>
 internal static class Text
 {
-    private static readonly JsonWriterOptions Readable = new() { Encoder = JavaScriptEncoder.UnsafeRelaxedJsonEscaping };
+    private static readonly JsonWriterOptions Readable =
+        new() { Encoder = JavaScriptEncoder.UnsafeRelaxedJsonEscaping };
 
     /// <summary>A time as UTC ISO 8601 text with milliseconds, so that text order is time order.</summary>
     public static string Time(DateTimeOffset at) =>

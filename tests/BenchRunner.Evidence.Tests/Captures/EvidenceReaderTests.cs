@@ -18,7 +18,7 @@ public sealed class EvidenceReaderTests : IDisposable
             Traces =
             [
                 Samples.Trace(Channel.IdLow, 5, 777),
-                Samples.Trace(Channel.VdsLow, 6, 123) with { Origin = -0.0, Reference = 127.5, LowRail = -128, HighRail = 127 },
+                Samples.Trace(Channel.VdsLow, 6, 123) with { Origin = -0.0, Reference = 127.5, LowRail = -128 },
                 Samples.Trace(Channel.Vbus, 7, 1) with { Increment = 1.0 / 3, TimeOrigin = double.Epsilon },
             ],
             Train = null,
@@ -52,10 +52,12 @@ public sealed class EvidenceReaderTests : IDisposable
     [Fact]
     public void What_is_not_there_is_said()
     {
-        Assert.Contains("no such evidence file", Assert.Throws<EvidenceException>(() => EvidenceReader.Open(_folder.File)).Message, StringComparison.Ordinal);
+        Exception missing = Assert.Throws<EvidenceException>(() => EvidenceReader.Open(_folder.File));
+        Assert.Contains("no such evidence file", missing.Message, StringComparison.Ordinal);
         EvidenceStore.Open(_folder.File, Samples.Clock()).Dispose();
         using EvidenceReader reader = EvidenceReader.Open(_folder.File);
         Assert.Empty(reader.Captures("none"));
-        Assert.Contains("capture 7 has no traces", Assert.Throws<EvidenceException>(() => reader.ReadTraces(7)).Message, StringComparison.Ordinal);
+        Exception unknown = Assert.Throws<EvidenceException>(() => reader.ReadTraces(7));
+        Assert.Contains("capture 7 has no traces", unknown.Message, StringComparison.Ordinal);
     }
 }

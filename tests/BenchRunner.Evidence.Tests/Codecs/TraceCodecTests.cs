@@ -9,7 +9,8 @@ public sealed class TraceCodecTests
         Gen.Short.Array[0, 3000],
         Gen.Short[-3, 3].Array[0, 3000],
         Gen.Select(Gen.Short, Gen.Int[0, 3000], (code, count) => Enumerable.Repeat(code, count).ToArray()),
-        Gen.Int[1, 2000].Select(count => Enumerable.Range(0, count).Select(i => i % 2 == 0 ? short.MinValue : short.MaxValue).ToArray()),
+        Gen.Int[1, 2000].Select(count =>
+            Enumerable.Range(0, count).Select(i => i % 2 == 0 ? short.MinValue : short.MaxValue).ToArray()),
         Gen.Select(Gen.Short, Gen.Short, Gen.Int[0, 2000], (from, step, count) =>
             Enumerable.Range(0, count).Select(i => unchecked((short)(from + (i * step)))).ToArray()));
 

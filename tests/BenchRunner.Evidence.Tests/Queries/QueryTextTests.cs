@@ -62,7 +62,8 @@ public sealed class QueryTextTests
     [Fact]
     public void Json_has_numbers_as_numbers_and_null_for_what_is_none()
     {
-        QueryTable table = new(["a"], [[1L], [0.1], [double.PositiveInfinity], [null], ["Ω\"\n"], [new byte[] { 0x0f, 0xa0 }]]);
+        QueryTable table = new(
+            ["a"], [[1L], [0.1], [double.PositiveInfinity], [null], ["Ω\"\n"], [new byte[] { 0x0f, 0xa0 }]]);
         using JsonDocument json = JsonDocument.Parse(QueryText.Json(table));
         Assert.Equal(1, json.RootElement.GetProperty("format").GetInt32());
         JsonElement[] values = [.. json.RootElement.GetProperty("rows").EnumerateArray().Select(row => row[0])];

@@ -14,6 +14,7 @@ public sealed class AppendOnlyTests : IDisposable
         run.AddInstrument("scope", "FAKEBENCH,SCOPE,17,1.0", "17", "1.0");
         run.AddEvent(new(Samples.Clock().GetUtcNow(), "runner", Acceptance.Events.Severity.Detail, "fire", "train 1"));
         Samples.AddJudged(run, Samples.Capture(1), Samples.Valid);
+        run.AddCapture(Samples.Capture(2));
         run.Finish(Samples.Decision());
     }
 
@@ -29,7 +30,8 @@ public sealed class AppendOnlyTests : IDisposable
     public void The_tables_tried_are_all_there_are() =>
         Assert.Equal(
             Tables.Select(row => row.Data).Order(),
-            _folder.Rows("select name from sqlite_schema where type = 'table' order by name").Select(row => (string)row[0]!));
+            _folder.Rows("select name from sqlite_schema where type = 'table' order by name")
+                .Select(row => (string)row[0]!));
 
     [Theory]
     [MemberData(nameof(Tables))]
@@ -37,11 +39,12 @@ public sealed class AppendOnlyTests : IDisposable
     {
         List<object?[]> before = _folder.Rows($"select * from {table}");
         Assert.NotEmpty(before);
-        string columns = string.Join(", ", _folder.Rows($"select name from pragma_table_info('{table}')").Select(row => row[0]));
+        string columns = (string)_folder.Value($"select group_concat(name, ', ') from pragma_table_info('{table}')")!;
         string first = columns.Split(", ")[0];
         Refused($"update {table} set {first} = {first}", "append-only");
         Refused($"delete from {table}", "append-only");
-        Refused($"insert or replace into {table} ({columns}) select {columns} from {table}", "is append-only|run is sealed");
+        string replace = $"insert or replace into {table} ({columns}) select {columns} from {table}";
+        Refused(replace, "is append-only|run is sealed");
         Assert.Equal(before, _folder.Rows($"select * from {table}"));
     }
 
@@ -49,9 +52,12 @@ public sealed class AppendOnlyTests : IDisposable
     [InlineData("insert into event select run, 99, at, source, severity, kind, message from event")]
     [InlineData("insert into instrument (run, role, identity) select run, 'supply', 'x' from instrument")]
     [InlineData("insert into run_file select run, role, 'other.yaml', content from run_file limit 1")]
-    [InlineData("insert into verdict (capture, scoring, valid, findings, not_evaluated) select max(id) + 0, 0, 1, '', '' from capture")]
-    [InlineData("insert into measurement (run, scoring, operating_point, quantity, definition, unit, captures) select run, 0, 1, 1, 1, 1, 1 from measurement")]
-    public void A_sealed_run_grows_no_more(string sql) => Refused(sql, "run is sealed|append-only");
+    [InlineData("insert into verdict (capture, scoring, valid, findings, not_evaluated) values (2, 0, 1, '', '')")]
+    [InlineData("insert into measurement (run, scoring, operating_point, quantity, definition, unit, captures) "
+        + "values (1, 0, 1, 1, 1, 1, 1)")]
+    [InlineData("insert into trace select capture, 'vbus', offset, length, codec, samples, time_origin, "
+        + "sample_interval, increment, value_origin, reference, low_rail, high_rail, sha256 from trace limit 1")]
+    public void A_sealed_run_grows_no_more(string sql) => Refused(sql, "run is sealed");
 
     [Fact]
     public void A_later_scoring_of_a_sealed_run_is_added() => _folder.Write(

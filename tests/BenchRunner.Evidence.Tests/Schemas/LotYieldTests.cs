@@ -56,7 +56,8 @@ public sealed class LotYieldTests
 
     private static List<object?[]> Model(Trial[] trials) =>
     [
-        .. trials.Where(trial => trial.Lot is not null).GroupBy(trial => trial.Lot).OrderBy(lot => lot.Key).Select(lot =>
+        .. trials.Where(trial => trial.Lot is not null).GroupBy(trial => trial.Lot).OrderBy(lot => lot.Key)
+            .Select(lot =>
         {
             List<Outcome> current = [];
             List<Outcome> first = [];
@@ -72,8 +73,8 @@ public sealed class LotYieldTests
             object Count(Outcome outcome) => (long)current.Count(found => found == outcome);
             return new object?[]
             {
-                lot.Key, (long)current.Count, Count(Outcome.Accepted), Count(Outcome.Rejected), Count(Outcome.Undecided),
-                Count(Outcome.NotMeasured), Count(Outcome.Stopped),
+                lot.Key, (long)current.Count, Count(Outcome.Accepted), Count(Outcome.Rejected),
+                Count(Outcome.Undecided), Count(Outcome.NotMeasured), Count(Outcome.Stopped),
                 first.Count == 0 ? null : first.Count(outcome => outcome == Outcome.Accepted) / (double)first.Count,
             };
         }),

@@ -3,7 +3,8 @@ using BenchRunner.Evidence.Stores;
 
 namespace BenchRunner.Evidence.Tests.Schemas;
 
-/// <summary>Names and columns of the views are a contract with other programs: columns may be added, never lost.</summary>
+/// <summary>Names and columns of the views are a contract with other programs: columns may be added, never
+/// lost.</summary>
 public sealed class ViewTests : IDisposable
 {
     private readonly EvidenceFolder _folder = new();
@@ -19,13 +20,13 @@ public sealed class ViewTests : IDisposable
         {
             "measurements",
             "run, device, lot, operating_point, quantity, definition, value, unit, standard_uncertainty, " +
-            "expanded_uncertainty, coverage_factor, degrees_of_freedom, captures, lower_limit, upper_limit, conformity, " +
-            "reason, scoring, current, simulated, scored_at, algorithm, platform"
+            "expanded_uncertainty, coverage_factor, degrees_of_freedom, captures, lower_limit, upper_limit, " +
+            "conformity, reason, scoring, current, simulated, scored_at, algorithm, platform"
         },
         {
             "captures",
-            "run, device, operating_point, capture, taken_at, valid, findings, not_evaluated, bus_voltage, load_current, " +
-            "temperature, channels, samples, raw_bytes, stored_bytes, simulated"
+            "run, device, operating_point, capture, taken_at, valid, findings, not_evaluated, bus_voltage, " +
+            "load_current, temperature, channels, samples, raw_bytes, stored_bytes, simulated"
         },
         { "capture_values", "run, device, operating_point, capture, quantity, definition, value, reason" },
         { "instruments", "run, role, identity, serial, firmware, calibrated_at, due_at, certificate" },
@@ -53,7 +54,8 @@ public sealed class ViewTests : IDisposable
         EvidenceStore.Open(_folder.File, Samples.Clock()).Dispose();
         Assert.Equal(
             Contract.Select(row => row.Data.Item1).Order(),
-            _folder.Rows("select name from sqlite_schema where type = 'view' order by name").Select(row => (string)row[0]!));
+            _folder.Rows("select name from sqlite_schema where type = 'view' order by name")
+                .Select(row => (string)row[0]!));
     }
 
     [Fact]

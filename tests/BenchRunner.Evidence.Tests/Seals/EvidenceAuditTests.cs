@@ -21,7 +21,7 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
     {
         { "update measurement set value = 600e-6", "seal" },
         { "update measurement set upper_limit = 800e-6 where run = 2", "seal" },
-        { "update measurement set value = (select m.value from measurement m where m.run = 3 - measurement.run + 0) where run < 3", "seal" },
+        { "update measurement set value = (select m.value from measurement m where m.run = 3) where run = 1", "seal" },
         { "update decision set outcome = 'rejected' where run = 1", "seal" },
         { "update run set device = 'W1200-0009' where id = 2", "seal" },
         { "update word set text = 'qrr' || id where text = 'eon'", "seal" },
@@ -36,13 +36,21 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
         { "update payload set bytes = (select bytes from payload p where p.capture = 3) where capture = 2", "payload" },
         { "update content set bytes = x'00' where id = 1", "file" },
         { "update seal set sealed_at = '2026-03-02T08:00:01.000Z' where ordinal = 2", "seal" },
-        { "update seal set run = null where run = 2; update seal set run = 2 where run = 3; update seal set run = 3 where run is null", "seal" },
+        {
+            "update seal set run = null where run = 2; update seal set run = 2 where run = 3; "
+            + "update seal set run = 3 where run is null",
+            "seal"
+        },
         { "delete from seal where ordinal = 1", "chain" },
         { "delete from seal where ordinal = 2", "chain" },
         { "delete from seal where ordinal = 3", "unfinished" },
         { "update seal set ordinal = 9 where ordinal = 3", "chain" },
         { "insert into event values (2, 7, '2026-03-02T08:00:00.000Z', 'watch', 'alarm', 'trip', 'invented')", "seal" },
-        { "insert into decision select run, 1, 'rejected', reason, 0, 0, sequence, sequence_revision, sequence_content, algorithm, platform, scored_at from decision where run = 1", "unsealed" },
+        {
+            "insert into decision select run, 1, 'rejected', reason, 0, 0, sequence, sequence_revision, "
+            + "sequence_content, algorithm, platform, scored_at from decision where run = 1",
+            "unsealed"
+        },
         { "drop view lot_yield; create view lot_yield as select 1 as devices", "schema" },
     };
 
@@ -63,9 +71,9 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
     {
         // The triggers are dropped first and put back, so that nothing but the rows tells.
         List<object?[]> triggers = _folder.Rows("select name, sql from sqlite_schema where type = 'trigger'");
-        _folder.Write(
-            "pragma foreign_keys = off;" + string.Concat(triggers.Select(trigger => $"drop trigger {trigger[0]};")) + sql
-            + ";" + string.Concat(triggers.Select(trigger => $"{trigger[1]};")));
+        string drop = string.Concat(triggers.Select(trigger => $"drop trigger {trigger[0]};"));
+        string restore = string.Concat(triggers.Select(trigger => $"{trigger[1]};"));
+        _folder.Write($"pragma foreign_keys = off; {drop} {sql}; {restore}");
         Assert.Contains(what, Audit().Problems.Select(problem => problem.What));
     }
 
@@ -97,8 +105,9 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
             pragma foreign_keys = off;
             delete from trace where capture > 6; delete from payload where capture > 6;
             delete from verdict where capture > 6; delete from capture_value where capture > 6;
-            delete from capture where run = 3; delete from measurement where run = 3; delete from decision where run = 3;
-            delete from instrument where run = 3; delete from run_file where run = 3; delete from seal where run = 3;
+            delete from capture where run = 3; delete from measurement where run = 3;
+            delete from decision where run = 3; delete from instrument where run = 3;
+            delete from run_file where run = 3; delete from seal where run = 3;
             delete from run where id = 3;
             """);
         Assert.All(Audit().Problems, problem => Assert.Equal("schema", problem.What));

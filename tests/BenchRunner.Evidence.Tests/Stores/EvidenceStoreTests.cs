@@ -49,7 +49,8 @@ public sealed class EvidenceStoreTests : IDisposable
         using (Open())
         {
             EvidenceException refused = Assert.Throws<EvidenceException>(Open);
-            Assert.Contains($"process {Environment.ProcessId} since 2026-03-02T08:00:00.000Z", refused.Message, StringComparison.Ordinal);
+            string holder = $"process {Environment.ProcessId} since 2026-03-02T08:00:00.000Z";
+            Assert.Contains(holder, refused.Message, StringComparison.Ordinal);
         }
 
         Open().Dispose();
@@ -109,7 +110,8 @@ public sealed class EvidenceStoreTests : IDisposable
     [Fact]
     public void A_folder_that_is_missing_or_cannot_be_written_is_named()
     {
-        Assert.Contains("its folder does not exist", Refused(Path.Combine(_folder.Folder, "no", "e.db")), StringComparison.Ordinal);
+        string missing = Refused(Path.Combine(_folder.Folder, "no", "e.db"));
+        Assert.Contains("its folder does not exist", missing, StringComparison.Ordinal);
         Assert.Contains("is a folder", Refused(_folder.Folder), StringComparison.Ordinal);
         Assert.SkipUnless(OperatingSystem.IsLinux(), "needs a folder in which even root cannot make a file");
         Assert.Contains("folder cannot be written", Refused("/proc/self/e.db"), StringComparison.Ordinal);
@@ -144,8 +146,8 @@ public sealed class EvidenceStoreTests : IDisposable
         Samples.WholeRun(store, Samples.Header(simulated: true));
         RunHeader measured = Samples.Header("W1200-0002", simulated: false);
         Assert.Equal(RunRefusalKind.MixedOrigin, store.Refuses(measured)?.Kind);
-        Assert.Equal(
-            RunRefusalKind.MixedOrigin, Assert.Throws<RunRefusedException>(() => store.BeginRun(measured)).Refusal.Kind);
+        RunRefusedException refused = Assert.Throws<RunRefusedException>(() => store.BeginRun(measured));
+        Assert.Equal(RunRefusalKind.MixedOrigin, refused.Refusal.Kind);
         SqliteException byHand = Assert.Throws<SqliteException>(() => _folder.Write(
             """
             insert into run (uid, origin, device, attempt, part, kind, position, sequence, sequence_revision,

@@ -4,7 +4,8 @@ using BenchRunner.Evidence.Stores;
 
 namespace BenchRunner.Evidence.Tests.Stores;
 
-/// <summary>The database's own fault, at every page at which it can come: success or a reported failure, nothing between.</summary>
+/// <summary>The database's own fault, at every page at which it can come: success or a reported failure, nothing
+/// between.</summary>
 public sealed class FullDiskTests : IDisposable
 {
     private const int PageSize = 8192;
@@ -65,7 +66,8 @@ public sealed class FullDiskTests : IDisposable
         catch (EvidenceException first)
         {
             Assert.Contains("is full", first.Message, StringComparison.Ordinal);
-            Assert.Equal(first.Message, Assert.Throws<EvidenceException>(() => store.BeginRun(Samples.Header())).Message);
+            Exception second = Assert.Throws<EvidenceException>(() => store.BeginRun(Samples.Header()));
+            Assert.Equal(first.Message, second.Message);
             if (run is not null)
             {
                 Assert.Throws<EvidenceException>(() => run.AddCapture(Samples.Capture(9)));

@@ -1,4 +1,5 @@
 using System.Diagnostics;
+using System.Globalization;
 using BenchRunner.Evidence.Audits;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Stores;
@@ -93,5 +94,5 @@ public sealed class KilledWriterTests : IDisposable
         return (run, announced);
     }
 
-    private static int Number(string line) => int.Parse(line.Split(' ')[1], System.Globalization.CultureInfo.InvariantCulture);
+    private static int Number(string line) => int.Parse(line.Split(' ')[1], CultureInfo.InvariantCulture);
 }

@@ -1,3 +1,4 @@
+using System.Collections;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Evidence.Stores;
@@ -19,17 +20,25 @@ public sealed class RunWriterTests : IDisposable
         }
 
         object?[] outcome = Assert.Single(_folder.Rows(
-            "select device, lot, attempt, scoring, current, outcome, captures_taken, captures_valid, finished_at from device_outcomes"));
+            """
+            select device, lot, attempt, scoring, current, outcome, captures_taken, captures_valid, finished_at
+            from device_outcomes
+            """));
         Assert.Equal(["W1200-0001", "L-7", 1L, 0L, 1L, "accepted", 2L, 1L, "2026-03-02T08:00:00.000Z"], outcome);
         object?[] measured = Assert.Single(_folder.Rows(
-            "select quantity, value, unit, degrees_of_freedom, upper_limit, lower_limit, conformity, current from measurements"));
+            """
+            select quantity, value, unit, degrees_of_freedom, upper_limit, lower_limit, conformity, current
+            from measurements
+            """));
         Assert.Equal(["eon", 650e-6, "J", double.PositiveInfinity, 705e-6, null, "conforms", 1L], measured);
         Assert.Equal(
             [["zero", null, null], ["rated", 0L, 40.3], ["rated", 1L, 40.3]],
             _folder.Rows("select operating_point, valid, load_current from captures"));
         Assert.Equal(4, _folder.Rows("select * from capture_values").Count);
         Assert.Equal(["scope", "17"], Assert.Single(_folder.Rows("select role, serial from instruments")));
-        Assert.Equal(["L-7", 1L, 1L, 1.0], Assert.Single(_folder.Rows("select lot, devices, accepted, first_pass_yield from lot_yield")));
+        Assert.Equal(
+            ["L-7", 1L, 1L, 1.0],
+            Assert.Single(_folder.Rows("select lot, devices, accepted, first_pass_yield from lot_yield")));
     }
 
     [Fact]
@@ -37,8 +46,9 @@ public sealed class RunWriterTests : IDisposable
     {
         using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
         RunWriter run = store.BeginRun(Samples.Header());
-        run.AddEvent(new BenchEvent(Samples.Clock().GetUtcNow(), "watch", Severity.Warning, "late", "second line\nforged"));
-        run.AddEvent(new BenchEvent(Samples.Clock().GetUtcNow(), "runner", Severity.Detail, "fire", "train 1"));
+        DateTimeOffset now = Samples.Clock().GetUtcNow();
+        run.AddEvent(new BenchEvent(now, "watch", Severity.Warning, "late", "second line\nforged"));
+        run.AddEvent(new BenchEvent(now, "runner", Severity.Detail, "fire", "train 1"));
         Assert.Empty(_folder.Rows("select * from events"));
         run.AddCapture(Samples.Capture(1));
         Assert.Equal(
@@ -53,7 +63,9 @@ public sealed class RunWriterTests : IDisposable
         RunWriter run = store.BeginRun(Samples.Header());
         run.AddCapture(Samples.Capture(1));
         run.Stop("interlock opened");
-        Assert.Equal(["stopped", "interlock opened"], Assert.Single(_folder.Rows("select outcome, reason from device_outcomes")));
+        Assert.Equal(
+            ["stopped", "interlock opened"],
+            Assert.Single(_folder.Rows("select outcome, reason from device_outcomes")));
         Assert.Empty(_folder.Rows("select * from measurements"));
         Assert.Throws<InvalidOperationException>(() => run.AddCapture(Samples.Capture(2)));
     }
@@ -63,7 +75,8 @@ public sealed class RunWriterTests : IDisposable
     {
         using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
         RunWriter run = store.BeginRun(Samples.Header());
-        Assert.Throws<ArgumentException>(() => run.Finish(Samples.Decision(Outcome.Accepted, Samples.Measured(double.NaN))));
+        DeviceDecision decision = Samples.Decision(Outcome.Accepted, Samples.Measured(double.NaN));
+        Assert.Throws<ArgumentException>(() => run.Finish(decision));
         run.Finish(Samples.Decision());
         Assert.Equal("accepted", _folder.Value("select outcome from device_outcomes"));
     }
@@ -81,34 +94,32 @@ public sealed class RunWriterTests : IDisposable
     }
 
     [Fact]
-    public void Events_from_other_threads_while_runs_end_never_spoil_the_file()
+    public void An_event_that_comes_while_the_run_is_being_sealed_spoils_neither_this_run_nor_the_next()
     {
         using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
-        for (int i = 0; i < 20; i++)
+        RunWriter run = store.BeginRun(Samples.Header());
+        BenchEvent poll = new(Samples.Clock().GetUtcNow(), "watch", Severity.Detail, "poll", "closed");
+        Interrupted values = new([Samples.Measured(650e-6)], () => run.AddEvent(poll));
+        run.Finish(new DeviceDecision(Outcome.Accepted, null, values));
+        Assert.Throws<InvalidOperationException>(() => run.AddEvent(poll));
+        Samples.WholeRun(store, Samples.Header("W1200-0002"));
+        Assert.Equal([["accepted"], ["accepted"]], _folder.Rows("select outcome from device_outcomes"));
+    }
+
+    /// <summary>Values during whose reading something else happens, as on another thread: also inside the
+    /// transaction.</summary>
+    private sealed class Interrupted(MeasuredValue[] values, Action happens) : IReadOnlyList<MeasuredValue>
+    {
+        public int Count => values.Length;
+
+        public MeasuredValue this[int index] => values[index];
+
+        public IEnumerator<MeasuredValue> GetEnumerator()
         {
-            RunWriter run = store.BeginRun(Samples.Header());
-            using ManualResetEventSlim started = new();
-            Thread watch = new(() =>
-            {
-                started.Set();
-                try
-                {
-                    for (int n = 0; n < 3000; n++)
-                    {
-                        run.AddEvent(new BenchEvent(Samples.Clock().GetUtcNow(), "watch", Severity.Detail, "poll", "closed"));
-                    }
-                }
-                catch (InvalidOperationException)
-                {
-                    // The run has ended.
-                }
-            });
-            watch.Start();
-            started.Wait(TestContext.Current.CancellationToken);
-            run.Finish(Samples.Decision());
-            watch.Join();
+            happens();
+            return ((IEnumerable<MeasuredValue>)values).GetEnumerator();
         }
 
-        Assert.Equal(20, _folder.Rows("select * from device_outcomes where outcome = 'accepted'").Count);
+        IEnumerator IEnumerable.GetEnumerator() => GetEnumerator();
     }
 }
