@@ -93,7 +93,7 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
                 _ = Talk(client, Interlocked.Increment(ref _visits));
             }
         }
-        catch (Exception e) when (e is OperationCanceledException or SocketException or ObjectDisposedException)
+        catch (Exception e) when (e is OperationCanceledException or SocketException or InvalidOperationException)
         {
             // The test is over.
         }
