@@ -1,4 +1,5 @@
 using System.Net.Sockets;
+using System.Runtime.CompilerServices;
 
 namespace BenchRunner.Instruments.Links;
 
@@ -93,6 +94,7 @@ internal sealed class TcpLink : ILink
         }
     }
 
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     public async ValueTask<int> Read(Memory<byte> buffer, CancellationToken cancel)
     {
         try

@@ -1,4 +1,4 @@
-using System.Diagnostics.CodeAnalysis;
+using System.Runtime.CompilerServices;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Replies;
@@ -28,7 +28,6 @@ public sealed class ScpiSession : IDisposable
     private volatile int _connections;
     private bool _disposed;
 
-    [SuppressMessage("Reliability", "CS8618", Justification = "Open fills wire and identity before it hands the session out.")]
     private ScpiSession(string role, LinkAddress address, SessionOptions options, TimeProvider time, IInstrumentLog log)
     {
         _role = role;
@@ -38,6 +37,8 @@ public sealed class ScpiSession : IDisposable
         _log = log;
         _connecting = Repeat(options.ConnectAttempts, options.ConnectPause, time);
         _repeatable = Repeat(options.ReadAttempts, TimeSpan.Zero, time);
+
+        // Open fills both before it hands the session out.
         _wire = null!;
         Identity = null!;
     }
@@ -111,6 +112,7 @@ public sealed class ScpiSession : IDisposable
     /// <param name="parse">Reads the block's bytes, which are gone when it returns.</param>
     /// <param name="cancel">Ends the exchange; inside a block that breaks the link.</param>
     /// <exception cref="LinkException">Late, cut, longer than due, malformed or lost. Never a part of a block.</exception>
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
     {
         await _turn.WaitAsync(cancel);
@@ -203,6 +205,7 @@ public sealed class ScpiSession : IDisposable
         }
     }
 
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         await _turn.WaitAsync(cancel);

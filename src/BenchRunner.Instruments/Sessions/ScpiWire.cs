@@ -14,26 +14,40 @@ namespace BenchRunner.Instruments.Sessions;
 /// asked before a resynchronisation: the late reply would answer the next question. (4) A broken wire stays broken, with
 /// its first reason.
 /// </remarks>
-internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider time, Action<InstrumentEventKind, string> report)
-    : IDisposable
+internal sealed class ScpiWire : IDisposable
 {
     /// <summary>The question for the oldest entry of the error queue.</summary>
     public const string ErrorQuery = "SYSTem:ERRor?";
 
     private const int LongestMessage = 1024;
     private const int MostErrors = 64;
-    private const int MostDropped = 64;
-    private const int HighestSentinel = 255;
 
-    private readonly ReplyStream _replies = new(link);
+    private readonly ILink _link;
+    private readonly SessionOptions _options;
+    private readonly Action<InstrumentEventKind, string> _report;
+    private readonly ReplyStream _replies;
+    private readonly Deadline _deadline;
+    private readonly Resynchronisation _resynchronisation;
+    private readonly Action<int> _extend;
     private readonly byte[] _sent = new byte[LongestMessage];
-    private readonly Deadline _deadline = new(time);
     private int _sentLength;
-    private Action<int>? _extend;
-    private int _sentinel = 100;
     private string? _doubt;
     private LinkException? _broken;
     private volatile bool _errorsUnread;
+
+    /// <summary>Takes over a link that was just opened.</summary>
+    /// <param name="link">The link; closed with the wire, or when it breaks.</param>
+    /// <param name="options">Bounds.</param>
+    /// <param name="time">The clock of all deadlines.</param>
+    /// <param name="report">Told what happens; from any thread.</param>
+    public ScpiWire(ILink link, SessionOptions options, TimeProvider time, Action<InstrumentEventKind, string> report)
+    {
+        (_link, _options, _report) = (link, options, report);
+        _replies = new ReplyStream(link);
+        _deadline = new Deadline(time);
+        _resynchronisation = new Resynchronisation(link, _replies, _deadline, options, time);
+        _extend = Extend;
+    }
 
     /// <summary>Why the wire is of no use any more; null while it is.</summary>
     public LinkException? Broken => Volatile.Read(ref _broken);
@@ -44,7 +58,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         if (_doubt is null)
         {
             _doubt = why;
-            report(InstrumentEventKind.Doubt, why);
+            _report(InstrumentEventKind.Doubt, why);
         }
     }
 
@@ -79,11 +93,11 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         await Ready(cancel);
         _doubt = query;
-        var token = _deadline.Start(options.ReplyWithin, cancel);
+        var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
             Put(query);
-            await _replies.ReadBlock(bound, _extend ??= Extend, token);
+            await _replies.ReadBlock(bound, _extend, token);
             var value = parse(_replies.Blocks.Block(0));
             Finish(query);
             return value;
@@ -94,7 +108,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
             // connection helps, and what is missing says more than how the link ended.
             if (e is LinkException || (_replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
             {
-                Break(new LinkException(link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
+                Break(new LinkException(_link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
             }
 
             var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_sent.AsSpan(0, _sentLength - 1));
@@ -114,7 +128,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         await Ready(cancel);
         _doubt = query;
-        var token = _deadline.Start(options.ReplyWithin, cancel);
+        var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
             Put(query);
@@ -158,7 +172,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
             (entries ??= []).Add(entry);
         }
 
-        throw Break(new LinkException(link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
+        throw Break(new LinkException(_link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
     }
 
     /// <summary>Makes sure that the next reply belongs to the next question, and that the error queue holds nothing old.</summary>
@@ -166,7 +180,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         if (Broken is { } why)
         {
-            throw new LinkException(link.Name, $"not used any more since: {why.Message}", why);
+            throw new LinkException(_link.Name, $"not used any more since: {why.Message}", why);
         }
 
         if (_doubt is null && await HasUnasked(cancel))
@@ -178,7 +192,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         {
             foreach (var entry in await ReadErrors(cancel))
             {
-                report(InstrumentEventKind.Errors, $"the error queue held {entry}");
+                _report(InstrumentEventKind.Errors, $"the error queue held {entry}");
             }
         }
     }
@@ -188,8 +202,8 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         if (Interlocked.CompareExchange(ref _broken, why, null) is null)
         {
-            report(InstrumentEventKind.Broken, Printable.Text(why.Message));
-            link.Dispose();
+            _report(InstrumentEventKind.Broken, Printable.Text(why.Message));
+            _link.Dispose();
         }
 
         return why;
@@ -198,7 +212,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     /// <inheritdoc/>
     public void Dispose()
     {
-        link.Dispose();
+        _link.Dispose();
         _replies.Dispose();
         _deadline.Dispose();
     }
@@ -207,7 +221,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     private async ValueTask<T> Exchange<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         _doubt = query;
-        var token = _deadline.Start(options.ReplyWithin, cancel);
+        var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
             Put(query);
@@ -226,83 +240,24 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         }
     }
 
-    /// <summary>Brings question and reply together again: drain, then a number asked for that nothing else answers, twice.</summary>
-    /// <remarks>A late reply may happen to be the number; the second round, with another one, tells.</remarks>
     private async ValueTask Resynchronise(CancellationToken cancel)
     {
         var why = _doubt;
         try
         {
-            var dropped = await Drain(cancel);
-            dropped += await Sentinel(cancel);
-            dropped += await Sentinel(cancel);
+            var dropped = await _resynchronisation.Run(Put, cancel);
             _doubt = null;
-            report(InstrumentEventKind.Resynchronised, $"after '{Printable.Text(why!)}'; {dropped} bytes that came late were dropped");
+            _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were dropped");
         }
-        catch (Exception e) when (e is ReplyException or LinkException || (e is OperationCanceledException && !cancel.IsCancellationRequested))
+        catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
         {
-            throw Break(new LinkException(link.Name, $"cannot be resynchronised after '{Printable.Text(why!)}': {e.Message}", e));
+            throw Break(new LinkException(_link.Name, $"gives no sign of life after '{why}'", e));
+        }
+        catch (Exception e) when (e is ReplyException or LinkException)
+        {
+            throw Break(new LinkException(_link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
         }
     }
-
-    private async ValueTask<int> Drain(CancellationToken cancel)
-    {
-        var began = time.GetTimestamp();
-        var dropped = _replies.Drop();
-        while (time.GetElapsedTime(began) <= options.ReplyWithin + options.Silence)
-        {
-            var token = _deadline.Start(options.Silence, cancel);
-            try
-            {
-                dropped += await _replies.DropNext(token);
-            }
-            catch (OperationCanceledException) when (!cancel.IsCancellationRequested)
-            {
-                return dropped;
-            }
-            finally
-            {
-                _deadline.End();
-            }
-        }
-
-        throw new LinkException(link.Name, "does not fall silent");
-    }
-
-    private async ValueTask<int> Sentinel(CancellationToken cancel)
-    {
-        if (_sentinel == HighestSentinel)
-        {
-            throw new LinkException(link.Name, "resynchronised too often; replace cable or instrument");
-        }
-
-        _sentinel++;
-        var dropped = 0;
-        var token = _deadline.Start(options.ReplyWithin, cancel);
-        try
-        {
-            Put(FormattableString.Invariant($"*ESE {_sentinel};*ESE?"));
-            for (var n = 0; n < MostDropped; n++)
-            {
-                var reply = await _replies.ReadLine(token);
-                if (IsSentinel(ReplyText.Trim(reply.Span)))
-                {
-                    return dropped;
-                }
-
-                dropped += reply.Length + 1;
-            }
-        }
-        finally
-        {
-            _deadline.End();
-        }
-
-        throw new LinkException(link.Name, $"more than {MostDropped} replies that nothing had asked for");
-    }
-
-    private bool IsSentinel(ReadOnlySpan<byte> reply) =>
-        ReplyNumber.IsNumeric(reply) && ReplyNumber.Parse(reply) == _sentinel;
 
     private void Put(string query)
     {
@@ -314,7 +269,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
     {
         try
         {
-            link.Write(message);
+            _link.Write(message);
         }
         catch (LinkException e)
         {
@@ -332,7 +287,7 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         && ReplyNumber.IsNumeric(ReplyText.Trim(line[..comma]));
 
     private void Extend(int length) =>
-        _deadline.Extend(options.ReplyWithin + TimeSpan.FromSeconds(length / options.BlockRate));
+        _deadline.Extend(_options.ReplyWithin + TimeSpan.FromSeconds(length / _options.BlockRate));
 
     /// <summary>Takes the doubt back, unless more came than was asked for.</summary>
     private void Finish(string query)
@@ -361,15 +316,15 @@ internal sealed class ScpiWire(ILink link, SessionOptions options, TimeProvider 
         switch (e)
         {
             case OperationCanceledException when cancel.IsCancellationRequested:
-                report(InstrumentEventKind.Doubt, $"cancelled while the reply to '{query}' was due");
+                _report(InstrumentEventKind.Doubt, $"cancelled while the reply to '{query}' was due");
                 return e;
             case OperationCanceledException:
-                report(InstrumentEventKind.Doubt, $"no whole reply to '{query}' in time");
+                _report(InstrumentEventKind.Doubt, $"no whole reply to '{query}' in time");
                 return new LinkException(
-                    link.Name, $"no whole reply to '{query}' within {options.ReplyWithin.TotalSeconds:0.###} s", e);
+                    _link.Name, $"no whole reply to '{query}' within {_options.ReplyWithin.TotalSeconds:0.###} s", e);
             case ReplyException reply:
-                report(InstrumentEventKind.Doubt, $"reply to '{query}': {e.Message}");
-                var failure = new LinkException(link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
+                _report(InstrumentEventKind.Doubt, $"reply to '{query}': {e.Message}");
+                var failure = new LinkException(_link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
                 return reply.Fault == ReplyFault.TooLong ? Break(failure) : failure;
             case LinkException lost:
                 Break(lost);
