@@ -163,10 +163,9 @@ public sealed class Bench
     private BusCircuit Circuit()
     {
         double relay = Chain.Bleeder && !Faults.Has(FaultCatalogue.BusStaysUp) ? 1 / Values.Bleeder : 0;
-        double empty = Chain.EnclosureOpen ? 0 : LeakConductance();
         return new BusCircuit(
             Values.Parts.BankCapacitance,
-            relay + (1 / BenchValues.EmptySocket) + empty,
+            relay + (1 / BenchValues.EmptySocket) + LeakConductance(),
             Values.SupplyResistance,
             Supply.Limit,
             Supply.Output);

@@ -54,7 +54,7 @@ public sealed class Bus
                 return duration;
             }
 
-            double piece = Math.Min(duration - moved, LongestPiece);
+            double piece = circuit.Connected ? Math.Min(duration - moved, LongestPiece) : duration - moved;
             double rate = ramp == 0 ? 0 : Math.Sign(target - Source) * slew;
             piece = ramp == 0 ? piece : Math.Min(piece, ramp / slew);
             double length = CutAtCaseChange(circuit, rate, piece);

@@ -48,6 +48,7 @@ public static class Arguments
         "--pace" => options with { Pace = Number(name, value, 1, 5) },
         "--bits" => options with { Bits = value is "8" or "12" ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12") },
         "--channels" => options with { Channels = Channels(value) },
+        "--interlock" => options with { SerialInterlock = Serial(name, value) },
         "--write-bench" => options with { WriteBench = value },
         _ => throw new FormatException($"{name}: no such option; see --help"),
     };
@@ -63,9 +64,21 @@ public static class Arguments
             ? value
             : throw Wrong("--device", value, "1 to 64 letters, digits, dots, dashes, underscores");
 
+    private static bool Serial(string name, string value) => value switch
+    {
+        "tcp" => false,
+        "serial" when PseudoTerminal.IsSupported => true,
+        _ => throw Wrong(name, value, PseudoTerminal.IsSupported ? "serial or tcp" : "tcp"),
+    };
+
     private static string[] Channels(string value)
     {
         string[] channels = value.Split(',');
+        if (channels.Distinct().Count() < channels.Length)
+        {
+            throw Wrong("--channels", value, "each channel once");
+        }
+
         foreach (string channel in channels)
         {
             _ = BenchProbes.Of(channel);

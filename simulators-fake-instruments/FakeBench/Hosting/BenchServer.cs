@@ -4,7 +4,7 @@ using FakeBench.Instruments;
 
 namespace FakeBench.Hosting;
 
-/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device.</summary>
+/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device where there are any.</summary>
 public sealed class BenchServer : IAsyncDisposable
 {
     private const int MostClients = 4;
@@ -25,7 +25,7 @@ public sealed class BenchServer : IAsyncDisposable
             _hosts.Add((panel.Role, new TcpHost(panel, clients, time)));
         }
 
-        _hosts.Add((panels.Interlock.Role, PseudoTerminal.IsSupported
+        _hosts.Add((panels.Interlock.Role, options.SerialInterlock
             ? new SerialHost(panels.Interlock)
             : new TcpHost(panels.Interlock, clients, time)));
     }

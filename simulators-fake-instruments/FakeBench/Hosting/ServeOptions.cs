@@ -24,6 +24,9 @@ public sealed record ServeOptions
     /// <summary>Bits of the scope's converter, 8 or 12.</summary>
     public int Bits { get; init; } = 12;
 
+    /// <summary>Whether the interlock is a serial device; otherwise it is served over TCP like the others.</summary>
+    public bool SerialInterlock { get; init; } = PseudoTerminal.IsSupported;
+
     /// <summary>Bench file to write; null: none.</summary>
     public string? WriteBench { get; init; }
 

@@ -72,20 +72,20 @@ public sealed class TcpHost : IHost
 
     private async Task Serve(Socket client)
     {
-        using (client)
+        try
         {
-            try
-            {
-                client.NoDelay = true;
-                await Converse(client);
-            }
-            catch (Exception end) when (end is OperationCanceledException or SocketException)
-            {
-                // The client went away, or the bench ends: either way this conversation is over.
-            }
+            client.NoDelay = true;
+            await Converse(client);
         }
-
-        Interlocked.Decrement(ref _clients);
+        catch (Exception end) when (end is OperationCanceledException or SocketException)
+        {
+            // The client went away, or the bench ends: either way this conversation is over.
+        }
+        finally
+        {
+            client.Dispose();
+            Interlocked.Decrement(ref _clients);
+        }
     }
 
     private async Task Converse(Socket client)

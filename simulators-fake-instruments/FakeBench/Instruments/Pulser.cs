@@ -121,9 +121,16 @@ public sealed class Pulser : Instrument
         PulseTrain train = Train;
         CircuitParameters circuit = Bench.HalfBridge;
         Bench.Reached(MomentKind.Fire, _count);
-        TrainTrajectory trajectory = _trains.Get(circuit, train, _scope.Window);
-        _scope.See(trajectory, start => _trains.Get(circuit, train, _scope.Window with { Start = start }), _count);
-        Bench.Fired(trajectory.End);
         _silent |= Bench.Faults.Has(FaultCatalogue.FireUnanswered);
+        try
+        {
+            TrainTrajectory trajectory = _trains.Get(circuit, train, _scope.Window);
+            _scope.See(trajectory, start => _trains.Get(circuit, train, _scope.Window with { Start = start }), _count);
+            Bench.Fired(trajectory.End);
+        }
+        catch (ArithmeticException unsolved)
+        {
+            throw new ScpiException(-240, unsolved.Message);
+        }
     }
 }

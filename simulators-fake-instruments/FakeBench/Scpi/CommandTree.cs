@@ -19,17 +19,14 @@ public sealed class CommandTree
     public void Number(string pattern, NumericRange range, Action<Call, double> set, Func<Call, double> get)
     {
         Add(pattern, 1, 1, (call, _) => set(call, range.Read(call.Data[0])));
-        Add(pattern + "?", 0, 1, (call, reply) => reply.Say(Numbers.Nr3(
-            call.Data.Count == 0 ? get(call)
-            : call.Data[0].Kind == DataKind.Word ? range.Read(call.Data[0])
-            : throw new ScpiException(-104, call.Data[0].Text))));
+        Add(pattern + "?", 0, 1, (call, reply) => reply.Say(Numbers.Nr3(Asked(call, range, get(call)))));
     }
 
-    /// <summary>Adds a setting that is an integer, with its query.</summary>
+    /// <summary>Adds a setting that is an integer, with its query (as <see cref="Number"/>).</summary>
     public void WholeNumber(string pattern, NumericRange range, Action<int> set, Func<int> get)
     {
         Add(pattern, 1, 1, (call, _) => set(range.ReadInteger(call.Data[0])));
-        Add(pattern + "?", 0, 0, (_, reply) => reply.Say(Numbers.Nr1(get())));
+        Add(pattern + "?", 0, 1, (call, reply) => reply.Say(Numbers.Nr1((long)Asked(call, range, get()))));
     }
 
     /// <summary>Adds a setting that is on or off, with its query.</summary>
@@ -64,4 +61,10 @@ public sealed class CommandTree
 
         throw new ScpiException(best == HeaderMatch.SuffixOutOfRange ? -114 : -113, unit.Header);
     }
+
+    // A query may ask for a bound: MINimum, MAXimum, DEFault.
+    private static double Asked(Call call, NumericRange range, double value) =>
+        call.Data.Count == 0 ? value
+        : call.Data[0].Kind == DataKind.Word ? range.Read(call.Data[0])
+        : throw new ScpiException(-104, call.Data[0].Text);
 }

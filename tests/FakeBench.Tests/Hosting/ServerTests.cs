@@ -1,4 +1,5 @@
 using System.Text;
+using FakeBench.Hosting;
 
 namespace FakeBench.Tests.Hosting;
 
@@ -149,6 +150,14 @@ public sealed class ServerTests
         await bench["interlock"].DisposeAsync();
         await using Client next = await Client.Connect(bench.Link("interlock"));
         Assert.Equal("1,0,1,0", await next.Ask("SENS:DATA?"));
+    }
+
+    [Fact]
+    public async Task Without_pseudo_terminals_the_interlock_is_served_over_TCP()
+    {
+        await using var server = new BenchServer(new ServeOptions { SerialInterlock = false }, TimeProvider.System);
+        await using Client interlock = await Client.Connect(server.Links.Single(l => l.Role == "interlock").Link);
+        Assert.Equal("1,0,1,0", await interlock.Ask("SENS:DATA?"));
     }
 
     [Fact]
