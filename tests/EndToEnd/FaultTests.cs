@@ -1,0 +1,112 @@
+namespace EndToEnd;
+
+/// <summary>Each fault of the fake bench to its documented exit code, the bus down at the end, the evidence consistent.</summary>
+public sealed class FaultTests : IDisposable
+{
+    private readonly Workplace _place = new();
+
+    public void Dispose() => _place.Dispose();
+
+    [Theory]
+    [InlineData("interlock-opens", 4, "stopped", "interlock loop is open")]
+    [InlineData("interlock-opens@fire:3", 4, "stopped", "interlock loop is open")]
+    [InlineData("emergency-stop", 4, "stopped", "emergency stop")]
+    [InlineData("supply-clips", 5, "stopped", "taken as 350")]
+    [InlineData("over-voltage-trips", 4, "stopped", "over-voltage protection")]
+    [InlineData("silent-supply", 4, "stopped", "no whole reply")]
+    [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
+    public async Task A_fault_that_ends_the_run_leaves_the_bus_down(string fault, int exitCode, string outcome, string reason)
+    {
+        (await Run(fault)).Expect(exitCode);
+
+        Assert.Equal(outcome, _place.Ask<string>("select outcome from device_outcomes"));
+        Assert.Contains(reason, _place.Ask<string>("select reason from device_outcomes"), StringComparison.Ordinal);
+        AssertBusDown();
+        AssertConsistent();
+    }
+
+    [Theory]
+    [InlineData("stale-record", "fresh")]
+    [InlineData("clipped-range", "not-clipped")]
+    public async Task A_bad_capture_is_rejected_with_its_criterion_and_taken_again(string fault, string criterion)
+    {
+        (await Run(fault)).Expect(0);
+
+        Assert.Equal(1, _place.Ask<long>($"select count(*) from captures where not valid and findings like '%\"{criterion}\"%'"));
+        Assert.Equal(11, _place.Ask<long>("select captures_taken from device_outcomes"));
+        Assert.Equal(10, _place.Ask<long>("select captures_valid from device_outcomes"));
+        AssertBusDown();
+        AssertConsistent();
+    }
+
+    [Theory]
+    [InlineData("trigger-missed", "trigger-missed")]
+    [InlineData("link-drops", "record-lost")]
+    public async Task A_train_without_a_record_costs_one_capture(string fault, string kind)
+    {
+        (await Run(fault)).Expect(0);
+
+        Assert.Equal(1, _place.Ask<long>($"select count(*) from events where kind = '{kind}'"));
+        Assert.Equal(10, _place.Ask<long>("select captures_valid from device_outcomes"));
+        AssertBusDown();
+        AssertConsistent();
+    }
+
+    [Theory]
+    [InlineData("late-reply")]
+    [InlineData("error-queue-full")]
+    public async Task A_fault_that_can_be_mended_changes_no_value(string fault)
+    {
+        (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001", "--evidence", "sound.db")).Expect(0);
+        (await Run(fault)).Expect(0);
+
+        const string values = "select operating_point, quantity, definition, value, conformity from measurements order by 1, 2, 3";
+        Assert.Equal(_place.Rows(values, _place.Path("sound.db")), _place.Rows(values));
+        AssertBusDown();
+    }
+
+    [Fact]
+    public async Task A_bus_that_stays_up_is_shouted_and_never_called_down()
+    {
+        Finished run = (await Run("bus-stays-up")).Expect(4);
+
+        Assert.Contains("THE BUS IS NOT PROVED DOWN", run.Output, StringComparison.Ordinal);
+        Assert.Equal(0, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
+        Assert.Equal("stopped", _place.Ask<string>("select outcome from device_outcomes"));
+        AssertConsistent();
+    }
+
+    [Fact]
+    public async Task A_voltmeter_whose_lead_is_off_proves_nothing()
+    {
+        Finished run = (await Run("voltmeter-open")).Expect(4);
+
+        Assert.Contains("never followed the bus up", run.Output, StringComparison.Ordinal);
+        Assert.Equal(0, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
+        AssertConsistent();
+    }
+
+    [Theory]
+    [InlineData("wrong-identity")]
+    [InlineData("single-client")]
+    public async Task A_bench_that_is_not_what_its_file_says_is_refused_before_anything_is_energised(string fault)
+    {
+        (await Run(fault)).Expect(5);
+
+        Assert.Equal(0, _place.Ask<long>("select count(*) from device_outcomes"));
+    }
+
+    private Task<Finished> Run(string fault) => _place.Run(
+        "run", Workplace.Sequence, "--device", "W1200-0001",
+        "--bench", _place.FakeBenchFile($"{{ seed: 1, pace: 5, faults: ['{fault}'] }}"));
+
+    private void AssertBusDown() => Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
+
+    /// <summary>SQLite finds the file whole, every run has its end, and every capture its payload.</summary>
+    private void AssertConsistent()
+    {
+        Assert.Equal("ok", _place.Ask<string>("pragma integrity_check"));
+        Assert.Equal(0, _place.Ask<long>("select count(*) from device_outcomes where finished_at is null"));
+        Assert.Equal(0, _place.Ask<long>("select count(*) from capture where id not in (select capture from payload)"));
+    }
+}
