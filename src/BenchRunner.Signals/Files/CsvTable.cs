@@ -1,0 +1,351 @@
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Signals.Files;
+
+/// <summary>The columns of one text table that are wanted, read in one pass.</summary>
+internal sealed class CsvTable
+{
+    /// <summary>Lines in which a header is looked for: what instruments write before it is shorter.</summary>
+    private const int MostLinesBefore = 200;
+
+    private readonly string _file;
+    private readonly WaveformFileOptions _options;
+    private readonly IReadOnlyList<ChannelMapping> _mappings;
+    private readonly List<WaveformProblem> _problems;
+    private readonly CsvLines _lines;
+    private readonly int _before;
+    private readonly List<(int Column, Channel? Channel)> _wanted = [];
+    private double[][] _values = [];
+    private int _rows;
+    private int _firstLine;
+
+    private CsvTable(
+        Stream stream,
+        string file,
+        WaveformFileOptions options,
+        IReadOnlyList<ChannelMapping> mappings,
+        List<WaveformProblem> problems)
+    {
+        (_file, _options, _mappings, _problems) = (file, options, mappings, problems);
+        _lines = new CsvLines(stream, options.MostBytes);
+        _before = problems.Count;
+    }
+
+    /// <summary>The channels found.</summary>
+    public Dictionary<Channel, double[]> Channels { get; } = [];
+
+    /// <summary>The time base.</summary>
+    public TimeBase Time { get; private set; }
+
+    /// <summary>Rows read.</summary>
+    public int Count => _rows;
+
+    private bool HasProblems => _problems.Count > _before;
+
+    /// <summary>Reads a table.</summary>
+    /// <param name="stream">The text, unpacked.</param>
+    /// <param name="file">The file's name in messages.</param>
+    /// <param name="options">Interval and bounds.</param>
+    /// <param name="mappings">The mappings that concern this file.</param>
+    /// <param name="problems">Receives problems.</param>
+    /// <returns>The table; null where there were problems.</returns>
+    public static CsvTable? Read(
+        Stream stream,
+        string file,
+        WaveformFileOptions options,
+        IReadOnlyList<ChannelMapping> mappings,
+        List<WaveformProblem> problems)
+    {
+        CsvTable table = new(stream, file, options, mappings, problems);
+        table.ReadAll();
+        return table.HasProblems ? null : table;
+    }
+
+    private void ReadAll()
+    {
+        if (FindHeader(out ReadOnlySpan<byte> pending) is not { } header || !Choose(header))
+        {
+            return;
+        }
+
+        _values = [.. _wanted.Select(_ => new double[1024])];
+        bool first = true, ended = false;
+        ReadOnlySpan<byte> line = pending;
+        if (!pending.IsEmpty)
+        {
+            Add(line, header);
+        }
+
+        while (_problems.Count < WaveformRead.MostProblems && _rows <= _options.MostRows && Next(out line))
+        {
+            bool units = first && pending.IsEmpty && !line.IsEmpty && CsvHeader.Of(line, _lines.Number).IsUnits();
+            first = false;
+            if (units)
+            {
+                continue;
+            }
+
+            if (line.IsEmpty)
+            {
+                ended = true;
+            }
+            else if (ended)
+            {
+                Report(0, "a row behind an empty line", "rows one after the other", "remove the empty line");
+                return;
+            }
+            else
+            {
+                Add(line, header);
+            }
+        }
+
+        Finish();
+    }
+
+    /// <summary>Reads on to the header; a line of numbers before it means that there is none.</summary>
+    /// <param name="pending">Receives the line where it is data already.</param>
+    private CsvHeader? FindHeader(out ReadOnlySpan<byte> pending)
+    {
+        CsvHeader? before = null;
+        string? firstLine = null;
+        string[] wanted = [.. _mappings.Select(mapping => mapping.Column)];
+        pending = default;
+        while (_lines.Number < MostLinesBefore && Next(out ReadOnlySpan<byte> line))
+        {
+            line = _lines.Number == 1 && line.StartsWith("\uFEFF"u8) ? line[3..] : line;
+            firstLine ??= Csv.Show(line);
+            CsvHeader header = CsvHeader.Of(line, _lines.Number);
+            bool data = !line.IsEmpty && header.IsData();
+            if (!data && header.Knows(wanted))
+            {
+                return header;
+            }
+
+            if (data && _mappings.Count > 0)
+            {
+                pending = line;
+                return before is not null && before.Names.Length == header.Names.Length ? before : header.Unnamed();
+            }
+
+            before = line.IsEmpty ? before : header;
+        }
+
+        if (!HasProblems)
+        {
+            ReportAt(
+                1,
+                1,
+                firstLine is null ? "the file is empty" : $"'{firstLine}'",
+                $"a header line with t and some of {Csv.Names}",
+                "name the columns, or say which they are by --channel NAME=COLUMN");
+        }
+
+        return null;
+    }
+
+    /// <summary>Decides which columns are read.</summary>
+    private bool Choose(CsvHeader header)
+    {
+        ChooseTime(header);
+        foreach (ChannelMapping mapping in _mappings)
+        {
+            if (header.Find(mapping.Column) is { } column)
+            {
+                Want(header, column, mapping.Channel);
+            }
+            else
+            {
+                ReportAt(
+                    Math.Max(1, header.Line),
+                    1,
+                    $"no column '{Csv.Show(mapping.Column)}'",
+                    $"one of {string.Join(", ", header.Names.Take(12))}, or a number up to {header.Names.Length}",
+                    $"correct --channel {mapping.Channel.Name()}=…");
+            }
+        }
+
+        for (int i = 0; i < header.Names.Length; i++)
+        {
+            if (ChannelNames.Parse(header.Names[i]) is { } channel)
+            {
+                if (!_mappings.Any(mapping => mapping.Channel == channel || mapping.File is not null))
+                {
+                    Want(header, i, channel);
+                }
+            }
+            else if (_options.Channels.Count == 0 && !_wanted.Exists(wanted => wanted.Column == i) && !(i == 0 && header.HasTime))
+            {
+                ReportAt(
+                    header.Line,
+                    header.Starts[i],
+                    $"column '{Csv.Show(header.Names[i])}'",
+                    $"one of {Csv.Names}",
+                    "rename it, or say which columns to take by --channel NAME=COLUMN");
+            }
+        }
+
+        if (!HasProblems && !_wanted.Exists(wanted => wanted.Channel is not null))
+        {
+            ReportAt(Math.Max(1, header.Line), 1, "no column of a channel", $"at least one of {Csv.Names}", "name one");
+        }
+
+        return !HasProblems;
+    }
+
+    private void ChooseTime(CsvHeader header)
+    {
+        bool named = header.HasTime;
+        if (named || (_options.Interval is null && _options.Channels.Count > 0 && !IsChannel(header, 0)))
+        {
+            _wanted.Add((0, null));
+        }
+        else if (_options.Interval is null)
+        {
+            ReportAt(
+                Math.Max(1, header.Line),
+                1,
+                $"first column '{Csv.Show(header.Names[0])}'",
+                "the time column t",
+                "add it, or state the sample interval by --interval");
+        }
+    }
+
+    private bool IsChannel(CsvHeader header, int column) => ChannelNames.Parse(header.Names[column]) is not null
+        || _mappings.Any(mapping => header.Find(mapping.Column) == column);
+
+    private void Want(CsvHeader header, int column, Channel channel)
+    {
+        if (_wanted.Exists(wanted => wanted.Channel == channel))
+        {
+            ReportAt(
+                Math.Max(1, header.Line), header.Starts[column], $"{channel.Name()} a second time", "each channel once",
+                "rename or remove one");
+        }
+        else
+        {
+            _wanted.Add((column, channel));
+        }
+    }
+
+    private void Add(ReadOnlySpan<byte> line, CsvHeader header)
+    {
+        if (_rows >= _options.MostRows)
+        {
+            Report(0, $"more than {_options.MostRows} rows", "fewer", "cut the record to the pulse train");
+            _rows++;
+            return;
+        }
+
+        _firstLine = _rows == 0 ? _lines.Number : _firstLine;
+        if (_rows == _values[0].Length)
+        {
+            for (int i = 0; i < _values.Length; i++)
+            {
+                Array.Resize(ref _values[i], _rows * 2);
+            }
+        }
+
+        ReadOnlySpan<byte> rest = line;
+        int column = 0;
+        for (bool more = true; more; column++)
+        {
+            int start = line.Length - rest.Length + 1;
+            ReadOnlySpan<byte> field = Csv.Field(ref rest, header.Separator, out more);
+            for (int i = 0; i < _wanted.Count; i++)
+            {
+                if (_wanted[i].Column == column)
+                {
+                    _values[i][_rows] = Number(field, header, start, isTime: _wanted[i].Channel is null);
+                }
+            }
+        }
+
+        if (column != header.Names.Length)
+        {
+            Report(0, $"{column} fields", $"{header.Names.Length} as in the header", "complete or remove the row");
+        }
+
+        _rows++;
+    }
+
+    private double Number(ReadOnlySpan<byte> field, CsvHeader header, int start, bool isTime)
+    {
+        if (Csv.TryNumber(field, header.DecimalComma, out double value) && (!isTime || double.IsFinite(value)))
+        {
+            return value;
+        }
+
+        Report(
+            start,
+            field.IsEmpty ? "an empty field" : $"'{Csv.Show(field)}'",
+            isTime ? "a time in s" : "a number in V or A",
+            "write inf or nan for a clipped sample");
+        return 0;
+    }
+
+    private void Finish()
+    {
+        if (HasProblems)
+        {
+            return;
+        }
+
+        int times = _wanted.FindIndex(wanted => wanted.Channel is null);
+        if (_rows == 0 || (_rows == 1 && _options.Interval is null))
+        {
+            ReportAt(Math.Max(1, _lines.Number), 0, $"{_rows} rows of data", "at least two", "is the file cut short?");
+        }
+        else if (_options.Interval is { } interval)
+        {
+            Time = new TimeBase(times >= 0 ? _values[times][0] : 0, interval);
+        }
+        else if (TimeBase.Of(_values[times].AsSpan(0, _rows), out int row, out string found) is { } time)
+        {
+            Time = time;
+        }
+        else
+        {
+            ReportAt(
+                _firstLine + row, 1, found, "times that rise by equal intervals",
+                "resample the record, or state the interval by --interval if the times are wrong");
+        }
+
+        for (int i = 0; i < _wanted.Count; i++)
+        {
+            if (_wanted[i].Channel is { } channel)
+            {
+                Array.Resize(ref _values[i], _rows);
+                Channels[channel] = _values[i];
+            }
+        }
+    }
+
+    private bool Next(out ReadOnlySpan<byte> line)
+    {
+        switch (_lines.TryRead(out line))
+        {
+            case CsvLines.Stop.None:
+                return true;
+            case CsvLines.Stop.LineTooLong:
+                Report(0, "a line of more than 64 kB", "rows of a text table", "is this a waveform file?");
+                return false;
+            case CsvLines.Stop.TextTooLong:
+                Report(0, $"more than {_options.MostBytes} bytes", "fewer", "cut the record to the pulse train");
+                return false;
+            default:
+                return false;
+        }
+    }
+
+    private void Report(int column, string found, string expected, string advice) =>
+        ReportAt(_lines.Number, column, found, expected, advice);
+
+    private void ReportAt(int line, int column, string found, string expected, string advice)
+    {
+        if (_problems.Count < WaveformRead.MostProblems)
+        {
+            _problems.Add(new WaveformProblem(_file, line, column, found, expected, advice));
+        }
+    }
+}
