@@ -102,11 +102,22 @@ internal static class BenchRefusals
             }
         }
 
-        foreach (Problem problem in Earths(bench))
+        foreach (Problem problem in bench.Channels.SelectMany(Exact).Concat(Earths(bench)))
         {
             yield return problem;
         }
     }
+
+    /// <summary>An error of a channel that is stated as certain would make every value look better than it is.</summary>
+    private static IEnumerable<Problem> Exact(ChannelSetup setup) =>
+        new (string Error, double Uncertainty)[]
+        {
+            ("gain", setup.GainUncertainty), ("offset", setup.OffsetUncertainty), ("skew", setup.SkewUncertainty),
+        }
+        .Where(stated => !(stated.Uncertainty > 0))
+        .Select(stated => new Problem(
+            setup.Where, $"{setup.Channel.Name()} states no uncertainty of its {stated.Error}",
+            "more than 0: no channel is exact", $"state uncertainty: {stated.Error} from the calibration or the data sheet"));
 
     /// <summary>A scope's inputs share one earth: earth-referenced probes at two points join them through the scope.</summary>
     private static IEnumerable<Problem> Earths(Bench bench)

@@ -40,19 +40,24 @@ internal static class Ranges
         // Recovery and output charge add a current that hardly falls with the load's, and an overshoot that hardly falls
         // with the bus: each range has a part from the point and a part from the rating. At 60 V and a tenth of the
         // current a sound part reaches 2.7 times the bus and 5 times the load current.
-        double current = Math.Max(1.2 * train.Off2Current, (2 * point.LoadCurrent) + (0.3 * ratings.PeakCurrent));
-        double voltage = Math.Max(
+        double current = Math.Max(1.2 * train.Off2Current, (2 * point.LoadCurrent) + (0.25 * ratings.PeakCurrent));
+
+        // The freewheeling place rings higher than the firing one.
+        double Voltage(double ofRating) => Math.Max(
             1.1 * train.Off2PeakVoltage,
-            Math.Min(1.05 * ratings.BlockingVoltage, (2 * point.BusVoltage) + (0.1 * ratings.BlockingVoltage)));
+            Math.Min(1.05 * ratings.BlockingVoltage, (2 * point.BusVoltage) + (ofRating * ratings.BlockingVoltage)));
+        double switching = Voltage(0.05);
+        double freewheeling = Voltage(0.1);
         double around = Math.Max(0.25 * point.BusVoltage, 0.05 * ratings.BlockingVoltage);
         double gate = (point.GateOn + point.GateOff) / 2;
         return part switch
         {
             Channel.VgsLow => (gate - swing, gate + swing),
             Channel.VgsHigh => (point.GateOff - (0.75 * swing), point.GateOff + (0.75 * swing)),
-            Channel.VdsLow or Channel.VdsHigh => (-0.1 * voltage, voltage),
+            Channel.VdsLow => (-0.1 * switching, switching),
+            Channel.VdsHigh => (-0.1 * freewheeling, freewheeling),
             Channel.IdLow => (-0.3 * current, current),
-            Channel.IdHigh => (-1.2 * train.Off2Current, (0.3 * ratings.PeakCurrent) + point.LoadCurrent),
+            Channel.IdHigh => (-1.2 * train.Off2Current, (0.25 * ratings.PeakCurrent) + point.LoadCurrent),
             Channel.ILoad => (-0.2 * train.Off2Current, 1.3 * train.Off2Current),
             Channel.Vbus => (point.BusVoltage - around, point.BusVoltage + around),
             _ => throw new UnreachableException(),

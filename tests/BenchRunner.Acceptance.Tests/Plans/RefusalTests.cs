@@ -258,6 +258,15 @@ public sealed partial class RefusalTests
         Refused(Shipped.Rated, With(channel, setup => setup with { Probe = probe }), $"{channel.Name()} has a {probe} probe");
 
     [Fact]
+    public void A_channel_without_uncertainty_is_refused()
+    {
+        Refused(
+            Shipped.Rated, With(Channel.IdLow, setup => setup with { GainUncertainty = 0 }), "id_low states no uncertainty of its gain");
+        Refused(
+            Shipped.Rated, With(Channel.IdLow, setup => setup with { SkewUncertainty = 0 }), "id_low states no uncertainty of its skew");
+    }
+
+    [Fact]
     public void Two_earth_points_are_refused() =>
         Refused(
             Shipped.Rated, With(Channel.VdsLow, setup => setup with { Probe = "ground-referenced" }),

@@ -15,10 +15,12 @@ public sealed class BenchBudgetTests
     private static BenchBudget Budget(Bench bench) =>
         BenchBudget.Of(_traces, bench, Planner.AnalysisSettingsOf(Shipped.Bench, Shipped.Rated));
 
-    private static Bench With(Channel channel, Func<ChannelSetup, ChannelSetup> change) => Shipped.Bench with
+    /// <summary>The shipped bench as if it knew of errors in one channel alone: a budget of few analyses.</summary>
+    private static Bench Only(Channel channel, Func<ChannelSetup, ChannelSetup>? change = null)
     {
-        Channels = [.. Shipped.Bench.Channels.Select(setup => setup.Channel == channel ? change(setup) : setup)],
-    };
+        ChannelSetup setup = Shipped.Bench.Channels.Single(one => one.Channel == channel);
+        return Shipped.Bench with { Channels = [change is null ? setup : change(setup)] };
+    }
 
     private static QuantityBudget Of(BenchBudget budget, string quantity) =>
         budget.All.First(one => one.Quantity == quantity);
@@ -45,15 +47,16 @@ public sealed class BenchBudgetTests
     [MemberData(nameof(Entries))]
     public void A_larger_stated_uncertainty_gives_a_larger_one_of_the_value(string quantity, Channel channel, string error)
     {
-        BenchBudget wider = Budget(With(channel, setup => error switch
+        BenchBudget stated = Budget(Only(channel));
+        BenchBudget wider = Budget(Only(channel, setup => error switch
         {
             "gain" => setup with { GainUncertainty = 2 * setup.GainUncertainty },
             "offset" => setup with { OffsetUncertainty = 2 * setup.OffsetUncertainty },
             _ => setup with { SkewUncertainty = 2 * setup.SkewUncertainty },
         }));
-        UncertaintyEntry entry = Of(_shipped, quantity).Entries.Single(one => one.Source == $"{channel.Name()} {error}");
+        UncertaintyEntry entry = Of(stated, quantity).Entries.Single(one => one.Source == $"{channel.Name()} {error}");
         Assert.True(entry.Contribution > 0, $"{entry.Source} adds nothing to {quantity}");
-        Assert.True(Standard(wider, quantity) > Standard(_shipped, quantity));
+        Assert.True(Standard(wider, quantity) > Standard(stated, quantity));
     }
 
     [Fact]
@@ -83,19 +86,22 @@ public sealed class BenchBudgetTests
     [Fact]
     public void An_error_stated_as_zero_adds_nothing_and_fewer_bits_add_more()
     {
-        Bench perfect = With(Channel.VdsLow, setup => setup with { OffsetUncertainty = 0, GainUncertainty = 0, SkewUncertainty = 0 });
-        Assert.True(Standard(Budget(perfect), "vds_on") < Standard(_shipped, "vds_on"));
-        Assert.True(Standard(Budget(perfect), "vds_on") > 0, "a code's rounding remains");
-        Assert.True(Standard(Budget(Shipped.Bench with { ScopeBits = 8 }), "vds_on") > Standard(_shipped, "vds_on"));
+        double stated = Standard(Budget(Only(Channel.VdsLow)), "vds_on");
+        Bench perfect = Only(
+            Channel.VdsLow, setup => setup with { OffsetUncertainty = 0, GainUncertainty = 0, SkewUncertainty = 0 });
+        Assert.InRange(Standard(Budget(perfect), "vds_on"), 1e-3, 0.99 * stated);
+        Assert.True(Standard(Budget(Only(Channel.VdsLow) with { ScopeBits = 8 }), "vds_on") > stated);
     }
 
     [Fact]
     public void The_same_capture_gives_the_same_bits()
     {
-        BenchBudget again = Budget(Shipped.Bench);
+        BenchBudget again = Budget(Only(Channel.IdLow));
         foreach (QuantityBudget budget in _shipped.All)
         {
-            Assert.Equal(budget.Entries, again.Find(budget.Quantity, budget.Definition)!.Entries);
+            Assert.Equal(
+                budget.Entries.Where(entry => entry.Source.StartsWith("id_low", StringComparison.Ordinal)),
+                again.Find(budget.Quantity, budget.Definition)!.Entries);
         }
     }
 }
