@@ -16,7 +16,8 @@ public sealed class DialectReaderTests
     {
         DialectFile dialect = DialectReader.Read(GenericPath(role)).Value!;
         Assert.Equal((role, $"generic-{role}"), (dialect.Role, dialect.Name));
-        Assert.Equal(RoleOperations.All[role].Select(operation => operation.Name).Order(), dialect.Commands.Keys.Order());
+        Assert.Equal(
+            RoleOperations.All[role].Select(operation => operation.Name).Order(), dialect.Commands.Keys.Order());
     }
 
     [Fact]
@@ -48,7 +49,8 @@ public sealed class DialectReaderTests
     }
 
     [Theory]
-    [InlineData("generic-supply", "pulser", "the file of the dialect generic-supply holds generic-supply for the role supply")]
+    [InlineData(
+        "generic-supply", "pulser", "the file of the dialect generic-supply holds generic-supply for the role supply")]
     [InlineData("sturdy-supply", "supply", "there is no dialect sturdy-supply")]
     [InlineData("../winch-drive-incoming", "supply", "the dialect is '../winch-drive-incoming'")]
     public void A_dialect_that_is_not_there_or_not_for_the_role_is_a_problem_of_the_bench_file(
@@ -67,7 +69,8 @@ public sealed class DialectReaderTests
         try
         {
             File.CreateSymbolicLink(Path.Combine(folder, "generic-supply.yaml"), GenericPath("supply"));
-            Problem problem = Assert.Single(DialectReader.Find("generic-supply", "supply", [folder], _where).Problems);
+            Read<DialectFile> read = DialectReader.Find("generic-supply", "supply", [folder], _where);
+            Problem problem = Assert.Single(read.Problems);
             Assert.Contains("outside", problem.Found, StringComparison.Ordinal);
         }
         finally

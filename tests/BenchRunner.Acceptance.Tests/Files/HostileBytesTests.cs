@@ -8,8 +8,8 @@ public sealed class HostileBytesTests
 {
     private static readonly string[] _scraps =
     [
-        "{", "}", "[", "]", ":", ": ", "- ", "? ", "'", "\"", "|", ">", "&a ", "*a", "!!str ", "!x ", "%YAML 1.2\n", "---\n",
-        "...\n", "\t", "\n", "\r", "\0", "\uFEFF", "\u202E", "#", ",", "<<: ", "\\", "~", "\u2028", "format: 1\n",
+        "{", "}", "[", "]", ":", ": ", "- ", "? ", "'", "\"", "|", ">", "&a ", "*a", "!!str ", "!x ", "%YAML 1.2\n",
+        "---\n", "...\n", "\t", "\n", "\r", "\0", "\uFEFF", "\u202E", "#", ",", "<<: ", "\\", "~", "\u2028", "format: 1\n",
     ];
 
     [Fact]
@@ -80,7 +80,8 @@ public sealed class HostileBytesTests
 
     private static Gen<string> Scrap => Gen.Int[0, _scraps.Length - 1].Select(i => _scraps[i]);
 
-    private static Gen<Func<byte[], byte[]>> Edit => Gen.Select(Gen.Int[0, 4], Gen.Double.Unit, Gen.Byte, Scrap)
+    private static Gen<Func<byte[], byte[]>> Edit =>
+        Gen.Select(Gen.Int[0, 4], Gen.Double.Unit, Gen.Byte, Scrap)
         .Select((kind, where, value, scrap) => new Func<byte[], byte[]>(bytes =>
         {
             int at = (int)(where * bytes.Length);

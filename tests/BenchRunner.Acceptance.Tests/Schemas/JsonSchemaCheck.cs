@@ -4,7 +4,7 @@ using System.Text.RegularExpressions;
 
 namespace BenchRunner.Acceptance.Tests.Schemas;
 
-/// <summary>Holds a JSON value against a schema: the keywords of JSON Schema 2020-12 that our schemas use, and no others.</summary>
+/// <summary>Holds a JSON value against a schema: the keywords of JSON Schema 2020-12 that ours use, and no others.</summary>
 internal static class JsonSchemaCheck
 {
     private static readonly string[] _notes = ["$schema", "title", "description", "examples", "format", "then"];
@@ -14,13 +14,14 @@ internal static class JsonSchemaCheck
 
     private static bool Holds(string keyword, JsonNode rule, JsonObject schema, JsonNode? value) => keyword switch
     {
-        "type" => rule.GetValue<string>() == TypeOf(value) || (rule.GetValue<string>(), TypeOf(value)) is ("number", "integer"),
+        "type" => (rule.GetValue<string>(), TypeOf(value)) is var (wanted, found)
+            && (wanted == found || (wanted, found) is ("number", "integer")),
         "enum" => rule.AsArray().Any(known => JsonNode.DeepEquals(known, value)),
         "pattern" => value is not JsonValue || TypeOf(value) != "string" || Matches(rule, value.GetValue<string>()),
         "minLength" => TypeOf(value) != "string" || value!.GetValue<string>().Length >= rule.GetValue<int>(),
         "maxLength" => TypeOf(value) != "string" || value!.GetValue<string>().Length <= rule.GetValue<int>(),
-        "minimum" => TypeOf(value) is not ("integer" or "number") || value!.GetValue<double>() >= rule.GetValue<double>(),
-        "maximum" => TypeOf(value) is not ("integer" or "number") || value!.GetValue<double>() <= rule.GetValue<double>(),
+        "minimum" => !IsNumber(value) || value!.GetValue<double>() >= rule.GetValue<double>(),
+        "maximum" => !IsNumber(value) || value!.GetValue<double>() <= rule.GetValue<double>(),
         "items" => value is not JsonArray array || array.All(item => Accepts(rule, item)),
         "minItems" => value is not JsonArray array || array.Count >= rule.GetValue<int>(),
         "maxItems" => value is not JsonArray array || array.Count <= rule.GetValue<int>(),
@@ -29,7 +30,8 @@ internal static class JsonSchemaCheck
         "patternProperties" => value is not JsonObject map || map.All(pair => rule.AsObject().All(
             known => !Matches(known.Key, pair.Key) || Accepts(known.Value!, pair.Value))),
         "additionalProperties" => value is not JsonObject map || map.All(pair => IsNamed(schema, pair.Key)),
-        "required" => value is not JsonObject map || rule.AsArray().All(name => map.ContainsKey(name!.GetValue<string>())),
+        "required" => value is not JsonObject map
+            || rule.AsArray().All(name => map.ContainsKey(name!.GetValue<string>())),
         "minProperties" => value is not JsonObject map || map.Count >= rule.GetValue<int>(),
         "anyOf" => rule.AsArray().Any(one => Accepts(one!, value)),
         "allOf" => rule.AsArray().All(one => Accepts(one!, value)),
@@ -37,6 +39,8 @@ internal static class JsonSchemaCheck
         _ when _notes.Contains(keyword) => true,
         _ => throw new NotSupportedException(keyword),
     };
+
+    private static bool IsNumber(JsonNode? value) => TypeOf(value) is "integer" or "number";
 
     private static bool IsNamed(JsonObject schema, string key) =>
         schema["properties"]?[key] is not null

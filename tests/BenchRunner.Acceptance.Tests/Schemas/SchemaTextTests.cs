@@ -7,7 +7,7 @@ using YamlDotNet.RepresentationModel;
 
 namespace BenchRunner.Acceptance.Tests.Schemas;
 
-/// <summary>Schemas and readers come from one table; here they are held against each other and against the shipped files.</summary>
+/// <summary>Schemas and readers come from one table; here both are held against each other and the shipped files.</summary>
 public sealed class SchemaTextTests
 {
     /// <summary>Keys that another key needs, which no schema says.</summary>
@@ -58,10 +58,10 @@ public sealed class SchemaTextTests
     {
         string guide = File.ReadAllText(Repository.PathOf("docs", "files.md"));
         // Keys of definitions are quantities, which have a document of their own.
-        foreach ((string path, _) in Properties(Schema(kind), "").Where(key => !key.Path.StartsWith("/definitions/", StringComparison.Ordinal)))
-        {
-            Assert.Contains($"`{path[(path.LastIndexOf('/') + 1)..]}", guide, StringComparison.Ordinal);
-        }
+        IEnumerable<string> keys = Properties(Schema(kind), "").Select(key => key.Path)
+            .Where(path => !path.StartsWith("/definitions/", StringComparison.Ordinal))
+            .Select(path => path[(path.LastIndexOf('/') + 1)..]);
+        Assert.All(keys, key => Assert.Contains($"`{key}`", guide, StringComparison.Ordinal));
     }
 
     [Fact]
@@ -197,8 +197,8 @@ public sealed class SchemaTextTests
         YamlSequenceNode list => new JsonArray([.. list.Children.Select(Json)]),
         YamlScalarNode { Style: ScalarStyle.Plain, Value: "true" or "false" } flag => JsonValue.Create(flag.Value == "true"),
         YamlScalarNode { Style: ScalarStyle.Plain } plain
-            when double.TryParse(plain.Value, NumberStyles.Float, CultureInfo.InvariantCulture, out double number) =>
-            JsonValue.Create(number),
+            when double.TryParse(plain.Value, NumberStyles.Float, CultureInfo.InvariantCulture, out double number)
+            => JsonValue.Create(number),
         YamlScalarNode scalar => JsonValue.Create(scalar.Value),
         _ => throw new NotSupportedException(),
     };

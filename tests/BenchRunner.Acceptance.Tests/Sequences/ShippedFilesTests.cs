@@ -44,7 +44,8 @@ public sealed partial class ShippedFilesTests
     [Fact]
     public void The_bus_voltage_stands_on_a_line_of_its_own_and_in_no_comment()
     {
-        string[] named = [.. Examples.Sequence.Split('\n').Where(line => line.Contains("bus-voltage", StringComparison.Ordinal))];
+        IEnumerable<string> named = Examples.Sequence.Split('\n')
+            .Where(line => line.Contains("bus-voltage", StringComparison.Ordinal));
         Assert.Equal(["    bus-voltage: 400 V", "    bus-voltage: 600 V"], named);
     }
 
@@ -69,7 +70,11 @@ public sealed partial class ShippedFilesTests
         Assert.Empty(DialectReader.Read(Repository.PathOf("sequences", "dialects", name)).Problems);
 
     private static TheoryData<string> Names(string folder) =>
-        [.. Directory.GetFiles(Repository.PathOf("sequences", folder), "*.yaml").Select(path => Path.GetFileName(path)).Order()];
+    [
+        .. Directory.GetFiles(Repository.PathOf("sequences", folder), "*.yaml")
+            .Select(path => Path.GetFileName(path))
+            .Order(),
+    ];
 
     [GeneratedRegex(@"^  - \{ quantity: [a-z0-9_]+, at: (half|rated), (at-most|at-least|between): [^{}]+ \}$")]
     private static partial Regex OneLimit();
