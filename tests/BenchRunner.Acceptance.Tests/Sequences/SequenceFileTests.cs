@@ -60,7 +60,7 @@ public sealed class SequenceFileTests
             .With("valid: 5, at-most: 20 }", "valid: 3, at-most: 9 }\nuntil: decided\nattempts: 4")
             .With("noise-below: 1 % }", "gate-levels: 0.3 V, temperature-within: 2 K, settled: default }")
             .With("temperature: ambient", "temperature: 125 degC")
-            .With("at-most: 320 uJ }", "at-most: 320 uJ, definition: e/10-2, else-skip-higher: true }")
+            .With("at-most: 215 uJ }", "at-most: 215 uJ, definition: e/10-2, else-skip-higher: true }")
             .With("rule: guarded, coverage: 95 %", "rule: simple, coverage: 0.99, guard-factor: 0.83"));
         Assert.Equal(("WD-1200D-25", DevicePosition.High), (sequence.CompanionPart, sequence.Position));
         Assert.True(sequence.AsWritten);
