@@ -15,7 +15,7 @@ public static class BenchProbes
     [
         ("vgs_low", Gate(Signal.VgsLow, 1.002, 0.02, 40e-12)),
         ("vds_low", Voltage(Signal.VdsLow, 1.0015, 0.12, 60e-12)),
-        ("id_low", Current(Signal.IdLow, 0.998, 0.06, 110e-12)),
+        ("id_low", Shunt(Signal.IdLow, 0.998, 0.06, 110e-12)),
         ("vgs_high", Gate(Signal.VgsHigh, 0.999, -0.03, 50e-12)),
         ("vds_high", Voltage(Signal.VdsHigh, 0.9985, -0.1, 90e-12)),
         ("id_high", Current(Signal.IdHigh, 1.002, -0.05, 80e-12)),
@@ -46,6 +46,12 @@ public static class BenchProbes
 
     private static ProbeChannel Voltage(Signal signal, double gain, double offset, double skew) =>
         new(signal) { Gain = gain, Offset = offset, Skew = skew, Bandwidth = Bandwidth, Noise = 0.3 };
+
+    private static ProbeChannel Shunt(Signal signal, double gain, double offset, double skew)
+    {
+        BenchParts parts = new();
+        return Current(signal, gain, offset, skew) with { Lead = parts.ShuntSenseInductance / parts.ShuntResistance };
+    }
 
     private static ProbeChannel Current(Signal signal, double gain, double offset, double skew) =>
         new(signal) { Gain = gain, Offset = offset, Skew = skew, Bandwidth = Bandwidth, Noise = 0.04 };

@@ -37,7 +37,7 @@ public static class BenchFile
         Line($"loop: {{ inductance: {loop:0.#} nH }}");
         Line($"gate-resistors: {{ on: {parts.GateOnResistance:0.###} Ohm, off: {parts.GateOffResistance:0.###} Ohm }}");
         Line($"high-side: {{ gate-threshold: 0.5 V }}");
-        Line($"shunt: {{ resistance: {parts.ShuntResistance * 1e3:0.###} mOhm, inductance: {parts.ShuntInductance * 1e12:0.###} pH }}");
+        Line($"shunt: {{ resistance: {parts.ShuntResistance * 1e3:0.###} mOhm, inductance: {parts.ShuntSenseInductance * 1e12:0.###} pH }}");
         Line($"channels:");
         for (int i = 0; i < options.Channels.Count; i++)
         {

@@ -22,11 +22,25 @@ public static class Recorder
         ArgumentNullException.ThrowIfNull(digitiser);
         var values = new double[train.Points];
         Lowpass.Delay(train[probe.Signal], (probe.Skew + jitter) / train.Interval, values);
+        AddSlope(values, probe.Lead / train.Interval);
         Lowpass.Filter(values, 2 * Math.PI * probe.Bandwidth * train.Interval);
         for (int i = 0; i < values.Length; i++) values[i] = probe.Gain * values[i] + probe.Offset;
         GaussianNoise.Add(values, probe.Noise, noise);
         var codes = new short[values.Length];
         for (int i = 0; i < codes.Length; i++) codes[i] = digitiser.Code(values[i]);
         return codes;
+    }
+
+    /// <summary>Adds a multiple of the slope, by central differences.</summary>
+    private static void AddSlope(Span<double> values, double samples)
+    {
+        if (samples == 0) return;
+        double before = values[0];
+        for (int i = 1; i < values.Length - 1; i++)
+        {
+            double here = values[i];
+            values[i] = here + samples * 0.5 * (values[i + 1] - before);
+            before = here;
+        }
     }
 }

@@ -11,6 +11,7 @@ internal static class CommandTree
     {
         PlanCommand.Build(),
         RunCommand.Build(),
+        AnalyseCommand.Build(),
         QueryCommand.Build(),
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),

@@ -1,0 +1,53 @@
+using System.Security.Cryptography;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Settings;
+using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Files;
+using BenchRunner.Signals.Traces;
+
+namespace BenchRunner.Files;
+
+/// <summary>What <c>analyse</c> reads; whatever is wrong with it becomes one <see cref="InputException"/>.</summary>
+internal static class AnalysisInput
+{
+    public static AnalysisSettings Settings(string? file, bool everyDefinition)
+    {
+        if (file is null)
+        {
+            return new AnalysisSettings { EveryDefinition = everyDefinition };
+        }
+
+        Read<AnalysisSettings> read = SettingsFile.Read(file);
+        return read.Value is { } settings
+            ? settings with { EveryDefinition = everyDefinition }
+            : throw new InputException(string.Join(Environment.NewLine, read.Problems));
+    }
+
+    public static WaveformFileOptions Options(string? interval, IReadOnlyList<string> channels)
+    {
+        (ChannelMapping? Mapping, WaveformProblem? Problem)[] parsed = [.. channels.Select(ChannelMapping.Parse)];
+        string[] wrong = [.. parsed.Select(one => one.Problem).OfType<WaveformProblem>().Select(problem => problem.ToString())];
+        return wrong.Length == 0
+            ? new WaveformFileOptions { Interval = Seconds(interval), Channels = [.. parsed.Select(one => one.Mapping!)] }
+            : throw new InputException(string.Join(Environment.NewLine, wrong));
+    }
+
+    public static Waveform Waveform(string file, WaveformFileOptions options)
+    {
+        WaveformRead read = WaveformFile.Read(file, options);
+        return read.Waveform ?? throw new InputException(string.Join(Environment.NewLine, read.Problems));
+    }
+
+    public static string Sha256(string file)
+    {
+        using FileStream stream = File.OpenRead(file);
+        return Convert.ToHexStringLower(SHA256.HashData(stream));
+    }
+
+    private static double? Seconds(string? text) => text switch
+    {
+        null => null,
+        _ when SiText.TryParse(text, out double seconds, out string unit) && unit == "s" && seconds > 0 => seconds,
+        _ => throw new InputException($"--interval: '{text}'; expected a time above 0 with its unit; write for instance 400 ps."),
+    };
+}
