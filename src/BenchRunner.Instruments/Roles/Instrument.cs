@@ -154,7 +154,7 @@ internal sealed class Instrument : IDisposable
         var (answer, error) = await Session.Probe(Command(characteristic, channel: 1), cancel);
         if (answer is null)
         {
-            throw Refusal($"'{Session.Identity.Text}' is no {Role}: it refuses {Command(characteristic)} with {error}; "
+            throw Refusal($"'{Session.Identity.Text}' is no {Role}: it refuses {Command(characteristic)} with {error.Number}; "
                 + "check which link belongs to which role, and the dialect");
         }
     }

@@ -5,13 +5,14 @@ using BenchRunner.Instruments.Replies;
 namespace BenchRunner.Instruments.Sessions;
 
 /// <summary>Replies cut out of the bytes of a link. Knows what is due, not what was asked. One owner at a time.</summary>
-internal sealed class ReplyStream(ILink link) : IDisposable
+internal sealed class ReplyStream(ILink link)
 {
     private readonly byte[] _buffer = new byte[ReplyLine.Limit + 4096];
     private int _start;
     private int _end;
 
-    /// <summary>The blocks of the last reply that was one.</summary>
+    /// <summary>The blocks of the last reply that was one. Only the reader gives their buffers back: a receive that is
+    /// under way while the link is closed still writes to them.</summary>
     public BlockReader Blocks { get; } = new();
 
     /// <summary>Whether more than the carriage return is held that some instruments send after their newline.</summary>
@@ -89,8 +90,6 @@ internal sealed class ReplyStream(ILink link) : IDisposable
 
         return HoldsReply;
     }
-
-    public void Dispose() => Blocks.Dispose();
 
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<int> Receive(Memory<byte> space, CancellationToken token)

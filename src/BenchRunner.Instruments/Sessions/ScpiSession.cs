@@ -23,7 +23,8 @@ public sealed class ScpiSession : IDisposable
     private readonly TimeProvider _time;
     private readonly IInstrumentLog _log;
     private readonly ResiliencePipeline _connecting;
-    private readonly ResiliencePipeline _repeatable;
+    private readonly ResiliencePipeline _reading;
+    private readonly ResiliencePipeline _settingDown;
     private volatile ScpiWire _wire;
     private volatile int _connections;
     private bool _disposed;
@@ -36,7 +37,8 @@ public sealed class ScpiSession : IDisposable
         _time = time;
         _log = log;
         _connecting = Repeat(options.ConnectAttempts, options.ConnectPause, time);
-        _repeatable = Repeat(options.ReadAttempts, TimeSpan.Zero, time);
+        _reading = Repeat(options.ReadAttempts, TimeSpan.Zero, time);
+        _settingDown = Repeat(options.SetDownAttempts, TimeSpan.Zero, time);
 
         // Open fills both before it hands the session out.
         _wire = null!;
@@ -100,7 +102,7 @@ public sealed class ScpiSession : IDisposable
     /// <param name="cancel">Ends the exchange; the next one begins with a resynchronisation.</param>
     /// <exception cref="LinkException">Late, cut, malformed or lost, as often as the options allow.</exception>
     public ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, CancellationToken cancel) =>
-        _repeatable.ExecuteAsync(
+        _reading.ExecuteAsync(
             static (state, cancel) => state.Session.AskOnce(state.Query, state.Parse, cancel),
             (Session: this, Query: query, Parse: parse),
             cancel);
@@ -172,7 +174,7 @@ public sealed class ScpiSession : IDisposable
     {
         ArgumentNullException.ThrowIfNull(commands);
         var reached = SendAllNow(commands) ? _wire : null;
-        return await _repeatable.ExecuteAsync(
+        return await _settingDown.ExecuteAsync(
             async token =>
             {
                 await _turn.WaitAsync(token);

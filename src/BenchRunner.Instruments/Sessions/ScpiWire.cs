@@ -52,16 +52,6 @@ internal sealed class ScpiWire : IDisposable
     /// <summary>Why the wire is of no use any more; null while it is.</summary>
     public LinkException? Broken => Volatile.Read(ref _broken);
 
-    /// <summary>Notes that what comes next may belong to something asked before.</summary>
-    public void Doubt(string why)
-    {
-        if (_doubt is null)
-        {
-            _doubt = why;
-            _report(InstrumentEventKind.Doubt, why);
-        }
-    }
-
     /// <summary>Sends one message that has no reply. From any thread; never waits for an exchange.</summary>
     /// <exception cref="LinkException">The link is lost; the wire is broken.</exception>
     public void Send(string command)
@@ -159,20 +149,17 @@ internal sealed class ScpiWire : IDisposable
             await Resynchronise(cancel);
         }
 
-        List<ErrorEntry>? entries = null;
-        for (var n = 0; n < MostErrors; n++)
+        // Taken back first: a command that another thread sends meanwhile sets it again.
+        _errorsUnread = false;
+        try
         {
-            var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, cancel);
-            if (entry.IsNone)
-            {
-                _errorsUnread = false;
-                return entries ?? (IReadOnlyList<ErrorEntry>)[];
-            }
-
-            (entries ??= []).Add(entry);
+            return await EmptyQueue(cancel);
         }
-
-        throw Break(new LinkException(_link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
+        catch
+        {
+            _errorsUnread = true;
+            throw;
+        }
     }
 
     /// <summary>Makes sure that the next reply belongs to the next question, and that the error queue holds nothing old.</summary>
@@ -213,7 +200,6 @@ internal sealed class ScpiWire : IDisposable
     public void Dispose()
     {
         _link.Dispose();
-        _replies.Dispose();
         _deadline.Dispose();
     }
 
@@ -238,6 +224,23 @@ internal sealed class ScpiWire : IDisposable
         {
             _deadline.End();
         }
+    }
+
+    private async ValueTask<IReadOnlyList<ErrorEntry>> EmptyQueue(CancellationToken cancel)
+    {
+        List<ErrorEntry>? entries = null;
+        for (var n = 0; n < MostErrors; n++)
+        {
+            var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, cancel);
+            if (entry.IsNone)
+            {
+                return entries ?? (IReadOnlyList<ErrorEntry>)[];
+            }
+
+            (entries ??= []).Add(entry);
+        }
+
+        throw Break(new LinkException(_link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
     }
 
     private async ValueTask Resynchronise(CancellationToken cancel)
@@ -297,6 +300,13 @@ internal sealed class ScpiWire : IDisposable
         {
             Doubt($"more than one reply to '{query}'");
         }
+    }
+
+    /// <summary>Notes that what comes next may belong to something asked before.</summary>
+    private void Doubt(string why)
+    {
+        _doubt = why;
+        _report(InstrumentEventKind.Doubt, why);
     }
 
     private async ValueTask<bool> HasUnasked(CancellationToken cancel)

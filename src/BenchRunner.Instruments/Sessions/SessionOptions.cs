@@ -3,6 +3,10 @@ namespace BenchRunner.Instruments.Sessions;
 /// <summary>The bounds of a session: every wait has one.</summary>
 public sealed record SessionOptions
 {
+    /// <summary>For connections that are polled for safety: a poll without its reply is a doubt soon and at once, not a
+    /// reason to ask again. Setting down is tried as often as elsewhere.</summary>
+    public static SessionOptions Watching { get; } = new() { ReplyWithin = TimeSpan.FromSeconds(1), ReadAttempts = 1 };
+
     /// <summary>How long connecting may take.</summary>
     public TimeSpan ConnectWithin { get; init; } = TimeSpan.FromSeconds(3);
 
@@ -28,6 +32,9 @@ public sealed record SessionOptions
     /// <summary>How many times a question is asked whose reply was lost; at least 1. Never applied to what energises,
     /// fires or sets.</summary>
     public int ReadAttempts { get; init; } = 2;
+
+    /// <summary>How many times setting down is tried; at least 1.</summary>
+    public int SetDownAttempts { get; init; } = 3;
 
     /// <summary>Whether a broken link is opened again for reading and setting down. Energising is refused ever after.</summary>
     public bool Reconnect { get; init; } = true;

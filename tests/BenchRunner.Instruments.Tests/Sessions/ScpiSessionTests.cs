@@ -93,7 +93,7 @@ public class ScpiSessionTests : SessionFixture
     [Fact]
     public async Task Setting_down_is_sent_again_over_a_new_connection()
     {
-        using var session = await Open(Options with { ReadAttempts = 3 });
+        using var session = await Open();
         Instrument.On("OFF", v => v.Visit == 1 ? v.HangUp() : Task.CompletedTask);
 
         await session.SetDown(["OFF"], Cancel);
