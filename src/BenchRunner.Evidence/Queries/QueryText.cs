@@ -21,18 +21,19 @@ public static class QueryText
     {
         ArgumentNullException.ThrowIfNull(table);
         string[][] cells = [.. table.Rows.Select(row => row.Select(Cell).ToArray())];
-        int columns = table.Columns.Count;
+        string[] headers = [.. table.Columns.Select(Escape)];
+        int columns = headers.Length;
         int[] widths = new int[columns];
         bool[] right = new bool[columns];
         for (int i = 0; i < columns; i++)
         {
-            widths[i] = cells.Select(row => row[i].Length).Append(table.Columns[i].Length).Max();
+            widths[i] = cells.Select(row => row[i].Length).Append(headers[i].Length).Max();
             right[i] = table.Rows.Any(row => row[i] is long or double)
                 && table.Rows.All(row => row[i] is null or long or double);
         }
 
         StringBuilder text = new();
-        Line(text, [.. table.Columns.Select(Escape)], widths, right);
+        Line(text, headers, widths, right);
         Line(text, [.. widths.Select(width => new string('-', width))], widths, right);
         foreach (string[] row in cells)
         {

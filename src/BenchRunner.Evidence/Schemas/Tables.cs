@@ -59,7 +59,7 @@ internal static class Tables
           role text not null,
           path text not null,
           content integer not null references content (id),
-          primary key (run, role, path)
+          primary key (run, role, path, content)
         ) strict, without rowid;
 
         create table instrument (
@@ -196,7 +196,7 @@ internal static class Tables
             coalesce((value - lower_limit) / coalesce(nullif(abs(lower_limit), 0.0), 1.0), 9e999)), 9e999)) virtual,
           primary key (run, scoring, operating_point, quantity, definition)
         ) strict, without rowid;
-        create index measurement_by_lot on measurement (quantity, lot, value);
+        create index measurement_by_lot on measurement (quantity, lot, margin);
         create index measurement_by_margin on measurement (quantity, margin) where margin is not null;
         create index measurement_outside on measurement (lot, quantity) where conformity = 'fails';
 
@@ -222,7 +222,7 @@ internal static class Tables
         ("word", [["id"], ["text"]]),
         ("content", [["id"], ["sha256"]]),
         ("run", [["id"], ["uid"]]),
-        ("run_file", [["run", "role", "path"]]),
+        ("run_file", [["run", "role", "path", "content"]]),
         ("instrument", [["run", "role"]]),
         ("event", [["run", "ordinal"]]),
         ("capture", [["id"], ["run", "ordinal"], ["run", "operating_point", "number"]]),

@@ -31,7 +31,7 @@ internal static class CanonicalForm
             """),
         ("run_file", """
             select f.role, f.path, c.sha256 from run_file f join content c on c.id = f.content
-            where f.run = ?1 order by f.role, f.path
+            where f.run = ?1 order by f.role, f.path, c.sha256
             """),
         ("instrument", """
             select role, identity, serial, firmware, calibrated_at, due_at, certificate

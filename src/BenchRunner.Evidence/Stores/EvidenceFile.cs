@@ -29,7 +29,8 @@ internal static class EvidenceFile
                     $"{path}: its disk allows no write-ahead log; name a file on another disk.");
             }
 
-            session.Run("pragma synchronous = full;");
+            // On macOS alone a plain fsync may stay in the drive's cache; elsewhere fullfsync changes nothing.
+            session.Run("pragma synchronous = full; pragma fullfsync = on; pragma checkpoint_fullfsync = on;");
             if (largestBytes is { } largest)
             {
                 session.Run($"pragma max_page_count = {Math.Max(1, largest / session.Number("pragma page_size"))};");

@@ -232,7 +232,7 @@ public sealed class EvidenceStore : IDisposable
             row.GetInt64(0), new ClosedRun(row.GetString(1), row.GetString(2), row.GetString(3), row.GetInt32(4))));
         foreach ((long row, ClosedRun run) in open)
         {
-            string reason = $"the program ended before the run did; {run.Captures} captures are kept";
+            string reason = $"the program ended before the run did; captures kept: {run.Captures}";
             Commit(to =>
             {
                 RunRows.Event(

@@ -29,7 +29,9 @@ internal static class RunRows
             Text.Of(sequence.Kind), Text.Of(sequence.Position), header.Companion, to.Word(sequence.Name),
             sequence.Revision, Content(to, sequence.Source), to.Word(header.Bench), header.Simulated, header.Operator,
             header.ArmedBy, to.Word(header.Algorithm), to.Word(header.Platform), startedAt);
-        foreach (SourceFile file in header.Files.Prepend(sequence.Source))
+        IEnumerable<SourceFile> files = header.Files.Prepend(sequence.Source);
+        // One dialect may serve two roles; it is stored once.
+        foreach (SourceFile file in files.DistinctBy(file => (file.Role, file.Path, file.Sha256)))
         {
             to.Execute(
                 "insert into run_file (run, role, path, content) values (?1, ?2, ?3, ?4)",

@@ -35,8 +35,7 @@ internal static class RunRules
         if (decided > 0 && string.IsNullOrWhiteSpace(header.Again))
         {
             object? outcome = session.Value(
-                $"select d.outcome {InLot} and d.outcome <> 'stopped' order by r.attempt desc limit 1",
-                lot, header.Device);
+                "select outcome from device_outcomes where lot = ?1 and device = ?2 and current", lot, header.Device);
             return new RunRefusal(
                 RunRefusalKind.AlreadyDecided,
                 $"{header.Device} is {outcome} in lot {lot} already; give a reason to measure it again.");

@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Evidence.Stores;
 
@@ -20,7 +21,9 @@ public sealed class RunWriter
 {
     private readonly EvidenceStore _store;
     private readonly long _row;
-    private int _captures;
+    private readonly Lock _gate = new();
+    private readonly HashSet<object> _taken = [];
+    private readonly HashSet<long> _captures = [];
     private volatile bool _ended;
 
     internal RunWriter(EvidenceStore store, long row, string run, int attempt)
@@ -42,9 +45,13 @@ public sealed class RunWriter
     /// <param name="identity">The whole answer to <c>*IDN?</c>.</param>
     /// <param name="serial">Its serial; null or empty: not stated.</param>
     /// <param name="firmware">Its firmware; null or empty: not stated.</param>
+    /// <exception cref="ArgumentException">The role has an instrument already.</exception>
     /// <exception cref="EvidenceException">The store has failed.</exception>
-    public void AddInstrument(string role, string identity, string? serial, string? firmware) =>
+    public void AddInstrument(string role, string identity, string? serial, string? firmware)
+    {
+        TakeOnce(("instrument", role), nameof(role));
         Wait(to => RunRows.Instrument(to, _row, role, identity, Stated(serial), Stated(firmware)));
+    }
 
     /// <summary>Records an event.</summary>
     /// <exception cref="EvidenceException">The store has failed.</exception>
@@ -57,7 +64,8 @@ public sealed class RunWriter
     /// <summary>Stores a capture, durably, before anything is computed from it.</summary>
     /// <param name="capture">The capture.</param>
     /// <returns>What <see cref="AddVerdict"/> and <see cref="AddCaptureValues"/> name it by.</returns>
-    /// <exception cref="ArgumentException">No trace, a channel twice, or a NaN.</exception>
+    /// <exception cref="ArgumentException">No trace, a channel twice, a NaN, or a number that its point has
+    /// already.</exception>
     /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
     public long AddCapture(CaptureRow capture)
     {
@@ -68,10 +76,29 @@ public sealed class RunWriter
             throw new ArgumentException("A capture has at least one trace, and each channel once.", nameof(capture));
         }
 
-        RefuseNaN(nameof(capture), capture.BusVoltage, capture.Temperature);
-        _store.RefuseWhenFailed();
+        PulseTrain? train = capture.Train;
+        RefuseNaN(
+            nameof(capture), capture.BusVoltage, capture.Temperature, train?.FirstPulse, train?.Gap, train?.SecondPulse,
+            train?.GateOn, train?.GateOff);
+        foreach (RawTrace trace in capture.Traces)
+        {
+            RefuseNaN(
+                nameof(capture), trace.TimeOrigin, trace.SampleInterval, trace.Increment, trace.Origin,
+                trace.Reference);
+        }
+
+        TakeOnce((capture.OperatingPoint, capture.Number), nameof(capture));
         Payload payload = Payload.Of(capture.Traces);
-        return Commit(to => RunRows.Capture(to, _row, ++_captures, capture, payload));
+        return Commit(to =>
+        {
+            long id = RunRows.Capture(to, _row, _captures.Count + 1, capture, payload);
+            lock (_gate)
+            {
+                _captures.Add(id);
+            }
+
+            return id;
+        });
     }
 
     /// <summary>Records what validity says of a capture.</summary>
@@ -79,19 +106,22 @@ public sealed class RunWriter
     /// <param name="verdict">The verdict.</param>
     /// <param name="loadCurrent">Load current at the first turn-off from the traces, A; null: not formed.</param>
     /// <param name="busVoltage">Bus voltage at the first turn-off from the traces, V; null: not formed.</param>
-    /// <exception cref="ArgumentException">A NaN.</exception>
+    /// <exception cref="ArgumentException">A NaN, a capture of another run, or its second verdict.</exception>
     /// <exception cref="EvidenceException">The store has failed.</exception>
     public void AddVerdict(long capture, Verdict verdict, double? loadCurrent, double? busVoltage)
     {
         ArgumentNullException.ThrowIfNull(verdict);
         RefuseNaN(nameof(verdict), loadCurrent, busVoltage, verdict.CorrectedFirstPulse);
+        RefuseStranger(capture);
+        TakeOnce(("verdict", capture), nameof(capture));
         Wait(to => RunRows.Verdict(to, capture, 0, verdict, loadCurrent, busVoltage));
     }
 
     /// <summary>Records the quantities of a capture.</summary>
-    /// <param name="capture">What <see cref="AddCapture"/> returned.</param>
+    /// <param name="capture">What <see cref="AddCapture"/> returned; once a capture.</param>
     /// <param name="values">The quantities, each definition once.</param>
-    /// <exception cref="ArgumentException">A NaN, or a definition twice.</exception>
+    /// <exception cref="ArgumentException">A NaN, a definition twice, a capture of another run, or its second
+    /// values.</exception>
     /// <exception cref="EvidenceException">The store has failed.</exception>
     public void AddCaptureValues(long capture, IReadOnlyList<QuantityValue> values)
     {
@@ -106,9 +136,12 @@ public sealed class RunWriter
             RefuseNaN(nameof(values), value.Value, value.From, value.To);
         }
 
+        RefuseStranger(capture);
+        TakeOnce(("values", capture), nameof(capture));
+        QuantityValue[] kept = [.. values];
         Wait(to =>
         {
-            foreach (QuantityValue value in values)
+            foreach (QuantityValue value in kept)
             {
                 RunRows.CaptureValue(to, capture, 0, value);
             }
@@ -158,6 +191,31 @@ public sealed class RunWriter
         }
     }
 
+    /// <summary>Finds a caller's repetition before the database does: there it would end all writing.</summary>
+    private void TakeOnce(object key, string argument)
+    {
+        RefuseWhenOver();
+        lock (_gate)
+        {
+            if (!_taken.Add(key))
+            {
+                throw new ArgumentException($"{key} is in the run already.", argument);
+            }
+        }
+    }
+
+    private void RefuseStranger(long capture)
+    {
+        RefuseWhenOver();
+        lock (_gate)
+        {
+            if (!_captures.Contains(capture))
+            {
+                throw new ArgumentException($"Capture {capture} is none of this run.", nameof(capture));
+            }
+        }
+    }
+
     private string End(Outcome outcome, string? reason, IReadOnlyList<MeasuredValue> values)
     {
         return Commit(to =>
@@ -174,7 +232,7 @@ public sealed class RunWriter
 
     private void Wait(Action<SqlSession> rows)
     {
-        RefuseWhenEnded();
+        RefuseWhenOver();
         _store.Wait(to =>
         {
             if (!_ended)
@@ -186,12 +244,13 @@ public sealed class RunWriter
 
     private T Commit<T>(Func<SqlSession, T> rows)
     {
-        RefuseWhenEnded();
+        RefuseWhenOver();
         return _store.Commit(rows);
     }
 
-    private void RefuseWhenEnded()
+    private void RefuseWhenOver()
     {
+        _store.RefuseWhenFailed();
         if (_ended)
         {
             throw new InvalidOperationException($"Run {Run} has ended; nothing is added to it.");

@@ -25,7 +25,7 @@ FORM = [  # table, columns in order; *x is a text kept in word, @x the SHA-256 o
     ("decision", "outcome reason captures_taken captures_valid *sequence sequence_revision @sequence_content "
                  "*algorithm *platform scored_at"),
 ]
-ORDER = {"run_file": 2, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3,
+ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3,
          "measurement": 3}
 
 

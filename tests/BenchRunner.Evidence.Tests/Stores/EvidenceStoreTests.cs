@@ -1,4 +1,7 @@
 using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Evidence.Audits;
+using BenchRunner.Evidence.Captures;
+using BenchRunner.Evidence.Queries;
 using BenchRunner.Evidence.Stores;
 using Microsoft.Data.Sqlite;
 using Microsoft.Extensions.Time.Testing;
@@ -81,11 +84,28 @@ public sealed class EvidenceStoreTests : IDisposable
     }
 
     [Fact]
-    public void A_newer_format_is_refused()
+    public void A_newer_format_is_refused_by_writer_reader_audit_and_question()
     {
         Open().Dispose();
         _folder.Write("pragma user_version = 99");
-        Assert.Contains("has format 99, and this program knows format 1", Refused(), StringComparison.Ordinal);
+        CancellationToken test = TestContext.Current.CancellationToken;
+        string[] refusals =
+        [
+            Refused(),
+            Assert.Throws<EvidenceException>(() => EvidenceReader.Open(_folder.File)).Message,
+            Assert.Throws<EvidenceException>(() => EvidenceAudit.Verify(_folder.File, cancel: test)).Message,
+            Assert.Throws<EvidenceException>(() => QueryRunner.RunSql(_folder.File, "select 1", test)).Message,
+        ];
+        Assert.All(refusals, refusal => Assert.Contains("has format 99", refusal, StringComparison.Ordinal));
+    }
+
+    [Fact]
+    public void An_empty_file_becomes_an_evidence_file()
+    {
+        // What a writer leaves that was ended while it made the file.
+        File.WriteAllBytes(_folder.File, []);
+        Open().Dispose();
+        Assert.Equal(1L, _folder.Value("pragma user_version"));
     }
 
     [Theory]

@@ -1,7 +1,9 @@
 using System.Collections;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Evidence.Stores;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Evidence.Tests.Stores;
 
@@ -79,6 +81,39 @@ public sealed class RunWriterTests : IDisposable
         Assert.Throws<ArgumentException>(() => run.Finish(decision));
         run.Finish(Samples.Decision());
         Assert.Equal("accepted", _folder.Value("select outcome from device_outcomes"));
+    }
+
+    [Fact]
+    public void What_a_run_has_already_is_refused_and_the_run_goes_on()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        RunWriter run = store.BeginRun(Samples.Header());
+        run.AddInstrument("scope", "x", null, null);
+        long capture = run.AddCapture(Samples.Capture(1));
+        run.AddVerdict(capture, Samples.Valid, null, null);
+        run.AddCaptureValues(capture, Samples.Values);
+        RawTrace unscaled = Samples.Trace(Channel.Vbus, 1) with { Increment = double.NaN };
+        DeviceDecision twice = Samples.Decision(Outcome.Accepted, Samples.Measured(1), Samples.Measured(2));
+        Assert.Throws<ArgumentException>(() => run.AddInstrument("scope", "y", null, null));
+        Assert.Throws<ArgumentException>(() => run.AddCapture(Samples.Capture(1)));
+        Assert.Throws<ArgumentException>(() => run.AddCapture(Samples.Capture(2) with { Traces = [unscaled] }));
+        Assert.Throws<ArgumentException>(() => run.AddVerdict(capture, Samples.Rejected, null, null));
+        Assert.Throws<ArgumentException>(() => run.AddVerdict(capture + 1, Samples.Valid, null, null));
+        Assert.Throws<ArgumentException>(() => run.AddCaptureValues(capture, []));
+        Assert.Throws<ArgumentException>(() => run.Finish(twice));
+        run.Finish(Samples.Decision());
+        Assert.Equal(["accepted", 1L, 1L], Assert.Single(_folder.Rows(
+            "select outcome, captures_taken, captures_valid from device_outcomes")));
+    }
+
+    [Fact]
+    public void A_dialect_that_serves_two_roles_is_stored_once()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        SourceFile dialect = new("dialect", "generic.yaml", [.. "format: 1\n"u8]);
+        SourceFile changed = new("dialect", "generic.yaml", [.. "format: 1\nrole: scope\n"u8]);
+        store.BeginRun(Samples.Header() with { Files = [dialect, dialect, changed] }).Stop("enough");
+        Assert.Equal(3, _folder.Rows("select * from run_file").Count);
     }
 
     [Fact]
