@@ -17,7 +17,7 @@ public sealed class BenchFileTests
         Assert.Equal((50e-6, 5e3, 1e-4), (bench.BusCapacitance, bench.Bleeder, bench.EmptySocketCurrent));
         Assert.Equal((2.5, 34e-9), (bench.ChargingCurrent, bench.LoopInductance));
         Assert.Equal((4.7, 2.2, 0.5), (bench.GateResistorOn, bench.GateResistorOff, bench.HighSideThreshold));
-        Assert.Equal(new Shunt(5e-3, 200e-12), bench.Shunt);
+        Assert.Equal(new Shunt(5e-3, 5e-12), bench.Shunt);
         Assert.Equal((12, 1e-9, 1_000_000), (bench.ScopeBits, bench.ScopeFastestInterval, bench.ScopeMemory));
         Assert.Equal(new Envelope(900, 120, 10, 20e-6), bench.Envelope);
         Assert.Equal(23, bench.Ambient);
