@@ -13,18 +13,19 @@ public sealed class TrainCache
     /// <summary>Starts to compute a train beside what goes on.</summary>
     public void Prepare(CircuitParameters circuit, PulseTrain train, Window window)
     {
-        Lazy<TrainTrajectory> entry = Entry(circuit, train, window);
-        if (!entry.IsValueCreated)
+        Lazy<TrainTrajectory> entry = Entry(circuit, train, window, out bool isNew);
+        if (isNew)
         {
             _ = Task.Run(() => entry.Value);
         }
     }
 
     /// <summary>The train; waits until it is computed.</summary>
+    /// <exception cref="ArithmeticException">The circuit cannot be solved.</exception>
     public TrainTrajectory Get(CircuitParameters circuit, PulseTrain train, Window window) =>
-        Entry(circuit, train, window).Value;
+        Entry(circuit, train, window, out _).Value;
 
-    private Lazy<TrainTrajectory> Entry(CircuitParameters circuit, PulseTrain train, Window window)
+    private Lazy<TrainTrajectory> Entry(CircuitParameters circuit, PulseTrain train, Window window, out bool isNew)
     {
         var key = new Key(circuit, train, window);
         lock (_gate)
@@ -33,10 +34,12 @@ public sealed class TrainCache
             {
                 if (known == key)
                 {
+                    isNew = false;
                     return cached;
                 }
             }
 
+            isNew = true;
             var entry = new Lazy<TrainTrajectory>(
                 () => HalfBridge.Simulate(circuit, train, window.Start, window.Interval, window.Points));
             if (_trains.Count == Places)

@@ -16,10 +16,12 @@ internal sealed class BenchClients : IAsyncDisposable
 
     public Client this[string role] => _clients[role];
 
-    public static async Task<BenchClients> Start(params string[] faults)
+    public static Task<BenchClients> Start(params string[] faults) => Start(TimeProvider.System, faults);
+
+    public static async Task<BenchClients> Start(TimeProvider time, params string[] faults)
     {
         var options = new ServeOptions { Pace = 5, Faults = [.. faults.Select(Fault.Parse)] };
-        var bench = new BenchClients(new BenchServer(options, TimeProvider.System));
+        var bench = new BenchClients(new BenchServer(options, time));
         foreach ((string role, string link) in bench._server.Links)
         {
             bench._clients[role] = await Client.Connect(link);

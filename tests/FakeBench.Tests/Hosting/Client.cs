@@ -7,7 +7,7 @@ namespace FakeBench.Tests.Hosting;
 /// <summary>A plain client of one instrument: any stream, lines and blocks, every wait bounded.</summary>
 internal sealed class Client(Stream stream, IDisposable? owner = null) : IAsyncDisposable
 {
-    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(20);
+    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(60);
 
     public static async Task<Client> Connect(string link)
     {

@@ -7,7 +7,7 @@ public sealed partial class ProgramTests
 {
     private const int Interrupt = 2;
     private const int Terminate = 15;
-    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(20);
+    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(60);
 
     [Fact]
     public async Task It_prints_its_links_takes_the_hands_and_ends_with_its_input()

@@ -1,5 +1,6 @@
 using System.Text;
 using FakeBench.Hosting;
+using Microsoft.Extensions.Time.Testing;
 
 namespace FakeBench.Tests.Hosting;
 
@@ -19,7 +20,7 @@ public sealed class ServerTests
     public async Task A_bench_is_charged_armed_fired_read_and_bled()
     {
         await using BenchClients bench = await BenchClients.Start();
-        await bench.Say("interlock", "SYST:WATC:TIME 10");
+        await bench.Say("interlock", "SYST:WATC:TIME 60");
         await bench.Charge(600);
         await bench.Configure();
         await bench.Fire();
@@ -106,13 +107,21 @@ public sealed class ServerTests
     [Fact]
     public async Task A_late_reply_comes_before_the_next_one_and_holds_up_nobody_else()
     {
-        await using BenchClients bench = await BenchClients.Start("late-reply@seconds:0");
+        var time = new FakeTimeProvider();
+        await using BenchClients bench = await BenchClients.Start(time, "late-reply@seconds:0");
         await using Client other = await Client.Connect(bench.Link("scope"));
         await bench["scope"].Say("*IDN?");
         await bench["scope"].Say("SYST:VERS?");
         Assert.Equal("0,\"No error\"", await bench["supply"].Ask("SYST:ERR?"));
         Task<string> late = bench["scope"].Line();
         Assert.Equal("1", await other.Ask("*OPC?"));
+        Assert.False(late.IsCompleted);
+        for (int i = 0; i < 100_000 && !late.IsCompleted; i++)
+        {
+            time.Advance(TimeSpan.FromSeconds(1));
+            await other.Ask("*OPC?");
+        }
+
         Assert.Contains("SCOPE", await late, StringComparison.Ordinal);
         Assert.Equal("1999.0", await bench["scope"].Line());
     }
