@@ -149,6 +149,11 @@ public static class NamedQueries
             order by run, operating_point, capture, quantity, definition
             """),
         new(
+            "run-values",
+            "What was measured in this run, by each scoring?",
+            [new("run", "identity of the run", Required: true)],
+            "select * from measurements where run = $run order by scoring, operating_point, quantity, definition"),
+        new(
             "run-events",
             "What happened in this run?",
             [

@@ -114,6 +114,7 @@ public sealed class NamedQueryTests(SixRuns six) : IClassFixture<SixRuns>
     [InlineData("capture-values")]
     [InlineData("captures-rejected", "device")]
     [InlineData("run-events")]
+    [InlineData("run-values")]
     [InlineData("worst-20")]
     [InlineData("distribution-by-lot")]
     public void A_question_about_one_device_or_lot_scans_no_table(string name, params string[] also)
