@@ -4,11 +4,14 @@ using BenchRunner.Acceptance.Sequences;
 namespace BenchRunner.Acceptance.Schemas;
 
 /// <summary>The sound values of a block by their keys; what was missing or wrong is not in it.</summary>
-/// <param name="Where">Where the block stands.</param>
-internal sealed record Fields(Place Where)
+/// <param name="where">Where the block stands.</param>
+internal sealed class Fields(Place where)
 {
     private readonly Dictionary<string, (Place At, Item Value)> _values = new(StringComparer.Ordinal);
     private readonly Dictionary<string, Place> _written = new(StringComparer.Ordinal);
+
+    /// <summary>Where the block stands.</summary>
+    public Place Where { get; } = where;
 
     /// <summary>The keys with a sound value, as written.</summary>
     public IEnumerable<string> Keys => _values.Keys;
