@@ -1,3 +1,4 @@
+using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Sessions;
 using BenchRunner.Instruments.Tests.Scripts;
@@ -34,6 +35,33 @@ public class PermitRaceTests : SessionFixture
         {
             Assert.DoesNotContain($"FIRE {round}", lines[(Array.IndexOf(lines, $"MARK {round}") + 1)..]);
         }
+    }
+
+    [Fact]
+    public async Task The_write_itself_is_made_under_the_lock_that_revoking_takes()
+    {
+        // A write that fails is reported where it fails. Where the connection's end reaches us only after the write, the
+        // next round tries again.
+        var held = false;
+        for (var round = 0; round < 20 && !held; round++)
+        {
+            Visitor? visitor = null;
+            Instrument.Once("WHO?", v =>
+            {
+                visitor = v;
+                return v.Line("1");
+            });
+            using var session = await Open();
+            await session.Set("VOLT 1", Cancel);
+            await Ask(session, "WHO?");
+            visitor!.Reset();
+            var permit = Grants.Live();
+            Log.Witness = _ => held |= Grants.IsHeld(permit);
+            await Assert.ThrowsAsync<LinkException>(() => session.Energise(permit, "FIRE", Cancel));
+            Log.Witness = null;
+        }
+
+        Assert.True(held);
     }
 
     private async Task Fire(ScpiSession session, Permit permit, int round)

@@ -21,6 +21,9 @@ internal static class Grants
         return permit;
     }
 
+    /// <summary>Whether another thread is kept from the permit at this moment, as it is while a guarded write goes on.</summary>
+    public static bool IsHeld(Permit permit) => !Task.Run(() => permit.WhyNot).Wait(TimeSpan.FromMilliseconds(300));
+
     [UnsafeAccessor(UnsafeAccessorKind.Constructor)]
     private static extern Permit New(PermitBounds bounds, TimeProvider time, TimeSpan life);
 

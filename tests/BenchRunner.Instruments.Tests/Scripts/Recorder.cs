@@ -10,7 +10,14 @@ internal sealed class Recorder : IInstrumentLog
 
     public InstrumentEvent[] Events => [.. _events];
 
-    public void Report(InstrumentEvent what) => _events.Enqueue(what);
+    /// <summary>Called where the event is reported, on the same thread.</summary>
+    public Action<InstrumentEvent>? Witness { get; set; }
+
+    public void Report(InstrumentEvent what)
+    {
+        _events.Enqueue(what);
+        Witness?.Invoke(what);
+    }
 
     public bool Has(InstrumentEventKind kind) => Events.Any(e => e.Kind == kind);
 }

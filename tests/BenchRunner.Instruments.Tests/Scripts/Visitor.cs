@@ -21,6 +21,13 @@ internal sealed class Visitor(TcpClient client, int visit, string message)
 
     public Task Raw(string text) => Raw(Encoding.UTF8.GetBytes(text));
 
+    /// <summary>Ends the connection so that the client's next write fails.</summary>
+    public void Reset()
+    {
+        client.LingerState = new LingerOption(true, 0);
+        client.Close();
+    }
+
     /// <summary>Ends the stream as an instrument does that is switched off.</summary>
     public Task HangUp()
     {
