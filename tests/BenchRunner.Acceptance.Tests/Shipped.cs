@@ -27,5 +27,6 @@ internal static class Shipped
         Rated with { OperatingPoints = [change(Rated.OperatingPoints[0])] };
 
     /// <summary>The only point of a plan.</summary>
-    public static PlannedPoint Point(Sequence sequence, Bench bench) => Planner.Plan(sequence, bench).Plan!.Points.Single();
+    public static PlannedPoint Point(Sequence sequence, Bench bench) =>
+        Planner.Plan(sequence, bench).Plan!.Points.Single();
 }

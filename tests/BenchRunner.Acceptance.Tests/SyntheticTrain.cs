@@ -4,8 +4,9 @@ using BenchRunner.Signals.Traces;
 namespace BenchRunner.Acceptance.Tests;
 
 /// <summary>
-/// A pulse train drawn with straight lines, a damped cosine and seeded noise, as a scope of 12 bits records it. A drawing,
-/// not a circuit: each property is one flaw that a test can give it. Times in s from the first 50 % crossing of the gate.
+/// A pulse train drawn with straight lines, a damped cosine and seeded noise, as a scope of 12 bits records it. A
+/// drawing, not a circuit: each property is one flaw that a test can give it. Times in s from the first 50 % crossing
+/// of the gate.
 /// </summary>
 internal sealed record SyntheticTrain
 {
@@ -85,7 +86,8 @@ internal sealed record SyntheticTrain
             }
 
             traces.Add(new RawTrace(
-                range.Channel, codes, -planned.Pretrigger, planned.SampleInterval, increment, range.Offset, 0, -2048, 2047));
+                range.Channel, codes, -planned.Pretrigger, planned.SampleInterval, increment, range.Offset, 0, -2048,
+                    2047));
         }
 
         return traces;
@@ -121,7 +123,8 @@ internal sealed record SyntheticTrain
     /// <summary>The share of the bus across the low switch, its edges one lag after the gate's.</summary>
     private double Blocking(double t)
     {
-        double off = 1 - Ramp(t, Lag, Step) + Ramp(t, Off1 + Lag, Step) - Ramp(t, On2 + Lag + Step, Step) + Ramp(t, Off2 + Lag, Step);
+        double off = 1 - Ramp(t, Lag, Step) + Ramp(t, Off1 + Lag, Step) - Ramp(t, On2 + Lag + Step, Step)
+            + Ramp(t, Off2 + Lag, Step);
         double peak = 0.15 * Bus * Ring(t - Off1 - Lag - Step);
         return (off * Rail(t)) + ((1 - off) * OnVoltage) + peak;
     }

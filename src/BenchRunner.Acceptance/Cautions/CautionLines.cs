@@ -26,7 +26,8 @@ public static class CautionLines
         double plate = plan.Points.Max(point => point.Point.Temperature ?? bench.Ambient);
         return
         [
-            $"Up to {SiText.Format(bus, "V")} DC on the fixture, {SiText.Format(peak, "V", 3)} at its peaks: it can kill.",
+            $"Up to {SiText.Format(bus, "V")} DC on the fixture, {SiText.Format(peak, "V", 3)} at its peaks: "
+            + "it can kill.",
             $"Up to {SiText.Format(energy, "J", 3)} in the bank and {SiText.Format(load, "J", 3)} in the inductor, "
             + $"{SiText.Format(current, "A", 3)} through the device: a part can burst and throw fragments.",
             plate >= HotFrom

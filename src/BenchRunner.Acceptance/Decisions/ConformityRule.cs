@@ -2,7 +2,9 @@ using BenchRunner.Acceptance.Sequences;
 
 namespace BenchRunner.Acceptance.Decisions;
 
-/// <summary>How value, uncertainty and limits become a conformity (ISO 14253-1, JCGM 106 with guarded acceptance).</summary>
+/// <summary>
+/// How value, uncertainty and limits become a conformity (ISO 14253-1, JCGM 106 with guarded acceptance).
+/// </summary>
 public static class ConformityRule
 {
     /// <summary>Width of the guard band, unit of the value: factor · U under the guarded rule, else 0.</summary>
@@ -16,13 +18,14 @@ public static class ConformityRule
 
     /// <summary>Decides a value.</summary>
     /// <param name="value">The value.</param>
-    /// <param name="expanded">Its expanded uncertainty U; null: not known, which leaves a guarded decision open.</param>
+    /// <param name="expanded">Its expanded uncertainty U; null: not known, which leaves a guarded decision
+    /// open.</param>
     /// <param name="lower">Lower limit; null: none.</param>
     /// <param name="upper">Upper limit; null: none.</param>
     /// <param name="rule">The decision rule.</param>
     /// <returns>
-    /// Conforms inside the limits less the guard band w, fails outside the limits plus w, undecided between. A value on the
-    /// limit conforms under the simple rule.
+    /// Conforms inside the limits less the guard band w, fails outside the limits plus w, undecided between. A value on
+    /// the limit conforms under the simple rule.
     /// </returns>
     public static Conformity Decide(double value, double? expanded, double? lower, double? upper, DecisionRule rule)
     {

@@ -4,7 +4,9 @@ using BenchRunner.Acceptance.Sequences;
 
 namespace BenchRunner.Acceptance.Decisions;
 
-/// <summary>Decides a device from the valid captures of its operating points. Pure: the run and every rescoring call it.</summary>
+/// <summary>
+/// Decides a device from the valid captures of its operating points. Pure: the run and every rescoring call it.
+/// </summary>
 public static class Decider
 {
     /// <summary>Decides a device.</summary>
@@ -12,8 +14,8 @@ public static class Decider
     /// <param name="bench">The bench: channels and stated uncertainties.</param>
     /// <param name="points">What the points gave; a point of the sequence that is not here was not run.</param>
     /// <returns>
-    /// Rejected where a limit fails; else not measured where a point has too few valid captures; else undecided where a limit
-    /// is; else accepted. A limited quantity without a value is undecided.
+    /// Rejected where a limit fails; else not measured where a point has too few valid captures; else undecided where a
+    /// limit is; else accepted. A limited quantity without a value is undecided.
     /// </returns>
     public static DeviceDecision Decide(Sequence sequence, Bench bench, IReadOnlyList<PointCaptures> points)
     {
@@ -31,7 +33,8 @@ public static class Decider
             {
                 lacking.Add(captures.Taken == 0
                     ? $"{point.Name} was not run"
-                    : $"{point.Name}: {captures.Valid.Count} valid of {captures.Taken} captures, {sequence.ValidCaptures} wanted");
+                    : $"{point.Name}: {captures.Valid.Count} valid of {captures.Taken} captures, "
+                        + $"{sequence.ValidCaptures} wanted");
             }
         }
 
@@ -40,10 +43,13 @@ public static class Decider
         return failing.Length > 0 ? new DeviceDecision(Outcome.Rejected, Listed(failing), values)
             : lacking.Count > 0 ? new DeviceDecision(Outcome.NotMeasured, string.Join("; ", lacking), values)
             : open.Length > 0 ? new DeviceDecision(Outcome.Undecided, Listed(open), values)
-            : new DeviceDecision(Outcome.Accepted, sequence.Limits.Count == 0 ? "the sequence states no limit" : null, values);
+            : new DeviceDecision(
+                Outcome.Accepted, sequence.Limits.Count == 0 ? "the sequence states no limit" : null, values);
     }
 
-    /// <summary>Whether every limit of a point is decided, so that <c>until: decided</c> needs no further capture.</summary>
+    /// <summary>
+    /// Whether every limit of a point is decided, so that <c>until: decided</c> needs no further capture.
+    /// </summary>
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
     /// <param name="captures">What the point gave so far.</param>

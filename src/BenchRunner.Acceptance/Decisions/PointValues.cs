@@ -55,7 +55,8 @@ internal static class PointValues
         var reasons = new List<string>();
         foreach (IReadOnlyList<QuantityValue> capture in captures.Valid.Select(valid => valid.Quantities))
         {
-            QuantityValue? found = capture.FirstOrDefault(value => value.Quantity == quantity.Name && Is(value.Definition, wanted))
+            QuantityValue? found = capture.FirstOrDefault(value =>
+                value.Quantity == quantity.Name && Is(value.Definition, wanted))
                 ?? (asked is null ? capture.FirstOrDefault(value => value.Quantity == quantity.Name) : null);
             definition = found?.Definition ?? definition;
             if (found?.Value is { } value)
@@ -69,10 +70,11 @@ internal static class PointValues
         }
 
         var row = new MeasuredValue(
-            captures.OperatingPoint, quantity.Name, definition, null, quantity.Unit, null, null, null, null, values.Count,
-            limit?.Lower, limit?.Upper, limit is null ? null : Conformity.Undecided, null);
+            captures.OperatingPoint, quantity.Name, definition, null, quantity.Unit, null, null, null, null,
+            values.Count, limit?.Lower, limit?.Upper, limit is null ? null : Conformity.Undecided, null);
 
-        // A quantity that most captures do not show has no value: the few that show it would be a choice by the measurand.
+        // A quantity that most captures do not show has no value: the few that show it would be a choice by the
+        // measurand.
         return 2 * values.Count > captures.Valid.Count
             ? Measured(row, values, captures.Budget?.Find(quantity.Name, definition), sequence.Decision)
             : row with { Reason = Why(reasons, captures.Valid.Count) };
@@ -88,7 +90,8 @@ internal static class PointValues
         if (unknown is null)
         {
             CombinedUncertainty combined = CombinedUncertainty.Of(
-                [.. budget!.Entries, new UncertaintyEntry("spread of the captures", spread.OfMean, 1, spread.Count - 1)],
+                [.. budget!.Entries,
+                    new UncertaintyEntry("spread of the captures", spread.OfMean, 1, spread.Count - 1)],
                 rule.Coverage);
             row = row with
             {
@@ -108,12 +111,15 @@ internal static class PointValues
             Conformity = conformity,
             Reason = unknown is not null ? $"uncertainty not formed: {unknown}"
                 : conformity == Conformity.Undecided
-                    ? $"within the guard band of {SiText.Format(ConformityRule.GuardBand(row.ExpandedUncertainty ?? 0, rule), row.Unit, 3)}"
+                    ? "within the guard band of "
+                        + $"{SiText.Format(ConformityRule.GuardBand(row.ExpandedUncertainty ?? 0, rule), row.Unit, 3)}"
                     : null,
         };
     }
 
-    /// <summary>Whether a definition that was formed is the one wanted; one that names no route takes the bench's.</summary>
+    /// <summary>
+    /// Whether a definition that was formed is the one wanted; one that names no route takes the bench's.
+    /// </summary>
     private static bool Is(string formed, string wanted) =>
         formed == wanted || (!DefinitionId.Split(wanted).ByLoadLine && DefinitionId.Split(formed).Rule == wanted);
 

@@ -5,7 +5,9 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Acceptance.Decisions;
 
-/// <summary>Whose fault a stop is: a short, open or dead device is rejected; bench, safety chain and operator stop a run.</summary>
+/// <summary>
+/// Whose fault a stop is: a short, open or dead device is rejected; bench, safety chain and operator stop a run.
+/// </summary>
 public static class StopOutcome
 {
     /// <summary>Outcome of a device whose run a finding stopped.</summary>

@@ -88,7 +88,8 @@ internal static class BenchRefusals
             {
                 yield return new Problem(
                     setup.Where, $"{setup.Channel.Name()} has a {setup.Probe} probe",
-                    "a differential or isolated one (or a coil, transformer or clamp): the high side swings with the bus",
+                    "a differential or isolated one (or a coil, transformer or clamp): "
+                    + "the high side swings with the bus",
                     "use such a probe");
             }
 
@@ -97,8 +98,10 @@ internal static class BenchRefusals
                 string unit = setup.Channel.Unit();
                 yield return new Problem(
                     setup.Where,
-                    $"the probe of {setup.Channel.Name()} is rated {SiText.Format(rating, unit)} and sees {SiText.Format(highest, unit)}",
-                    "a probe rated for what it sees, the second turn-off included", "use another probe or lower the point");
+                    $"the probe of {setup.Channel.Name()} is rated {SiText.Format(rating, unit)} and sees "
+                    + $"{SiText.Format(highest, unit)}",
+                    "a probe rated for what it sees, the second turn-off included",
+                    "use another probe or lower the point");
             }
         }
 
@@ -108,7 +111,9 @@ internal static class BenchRefusals
         }
     }
 
-    /// <summary>An error of a channel that is stated as certain would make every value look better than it is.</summary>
+    /// <summary>
+    /// An error of a channel that is stated as certain would make every value look better than it is.
+    /// </summary>
     private static IEnumerable<Problem> Exact(ChannelSetup setup) =>
         new (string Error, double Uncertainty)[]
         {
@@ -117,9 +122,12 @@ internal static class BenchRefusals
         .Where(stated => !(stated.Uncertainty > 0))
         .Select(stated => new Problem(
             setup.Where, $"{setup.Channel.Name()} states no uncertainty of its {stated.Error}",
-            "more than 0: no channel is exact", $"state uncertainty: {stated.Error} from the calibration or the data sheet"));
+            "more than 0: no channel is exact",
+            $"state uncertainty: {stated.Error} from the calibration or the data sheet"));
 
-    /// <summary>A scope's inputs share one earth: earth-referenced probes at two points join them through the scope.</summary>
+    /// <summary>
+    /// A scope's inputs share one earth: earth-referenced probes at two points join them through the scope.
+    /// </summary>
     private static IEnumerable<Problem> Earths(Bench bench)
     {
         bool Earthed(ChannelSetup setup) => setup.Probe == GroundReferenced;

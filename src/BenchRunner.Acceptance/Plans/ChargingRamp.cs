@@ -6,8 +6,9 @@ namespace BenchRunner.Acceptance.Plans;
 /// <param name="Resistance">Resistance of load, switch and shunt together, Ω; 0 or more.</param>
 /// <param name="Capacitance">Capacitance of the bank, F; above 0, infinity for a bank that does not droop.</param>
 /// <remarks>
-/// Series RLC from rest: i(t) = V/L · e^(−αt) · sin(ωt)/ω, α = R/2L, ω² = 1/LC − α² (sinh where it is negative). Without
-/// droop it is V/R (1 − e^(−Rt/L)); without resistance too, Vt/L. The supply's own current is left out: it is small.
+/// Series RLC from rest: i(t) = V/L · e^(−αt) · sin(ωt)/ω, α = R/2L, ω² = 1/LC − α² (sinh where it is negative).
+/// Without droop it is V/R (1 − e^(−Rt/L)); without resistance too, Vt/L. The supply's own current is left out: it is
+/// small.
 /// </remarks>
 /// <example>4 µH, 20 V, neither resistance nor droop: 25 A after 5 µs.</example>
 public readonly record struct ChargingRamp(double Voltage, double Inductance, double Resistance, double Capacitance)
@@ -40,8 +41,8 @@ public readonly record struct ChargingRamp(double Voltage, double Inductance, do
     /// <param name="current">The current, A; above 0.</param>
     /// <returns>The time, s; null where it never does: the bank is empty, or the resistance too large.</returns>
     /// <remarks>
-    /// Newton from L I/V. The current rises ever more slowly, so each tangent meets the target before the curve does: the
-    /// steps come from the left and never pass the root.
+    /// Newton from L I/V. The current rises ever more slowly, so each tangent meets the target before the curve does:
+    /// the steps come from the left and never pass the root.
     /// </remarks>
     public double? TimeTo(double current)
     {

@@ -6,10 +6,14 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>Which place of the half bridge fires and which one freewheels, and what follows for channels and limits.</summary>
+/// <summary>
+/// Which place of the half bridge fires and which one freewheels, and what follows for channels and limits.
+/// </summary>
 public static class HalfBridge
 {
-    /// <summary>Whether the high switch fires: a switch under test in the high place, or a diode under test in the low one.</summary>
+    /// <summary>
+    /// Whether the high switch fires: a switch under test in the high place, or a diode under test in the low one.
+    /// </summary>
     /// <param name="sequence">The sequence.</param>
     public static bool FiresHigh(Sequence sequence)
     {
@@ -17,7 +21,9 @@ public static class HalfBridge
         return sequence.Position == (sequence.Kind == DeviceKind.Diode ? DevicePosition.Low : DevicePosition.High);
     }
 
-    /// <summary>Whether the other place holds a companion with a serial of its own; a module fills both places.</summary>
+    /// <summary>
+    /// Whether the other place holds a companion with a serial of its own; a module fills both places.
+    /// </summary>
     /// <param name="sequence">The sequence.</param>
     public static bool NeedsCompanion(Sequence sequence)
     {
@@ -25,7 +31,9 @@ public static class HalfBridge
         return sequence.Position != DevicePosition.Both;
     }
 
-    /// <summary>Whether a quantity says something about the device under test or the circuit, not about a companion.</summary>
+    /// <summary>
+    /// Whether a quantity says something about the device under test or the circuit, not about a companion.
+    /// </summary>
     /// <param name="sequence">The sequence.</param>
     /// <param name="owner">What the quantity says something about.</param>
     public static bool IsUnderTest(Sequence sequence, QuantityOwner owner)
@@ -35,7 +43,9 @@ public static class HalfBridge
         return owner == QuantityOwner.Circuit || owner == tested || !NeedsCompanion(sequence);
     }
 
-    /// <summary>The channel that plays a part: <paramref name="asIfLow"/> where low fires, its mirror image where high fires.</summary>
+    /// <summary>
+    /// The channel that plays a part: <paramref name="asIfLow"/> where low fires, its mirror image where high fires.
+    /// </summary>
     /// <param name="asIfLow">The channel, named as if the low switch fired.</param>
     /// <param name="firesHigh">Whether the high switch fires.</param>
     public static Channel Playing(Channel asIfLow, bool firesHigh) => !firesHigh ? asIfLow : asIfLow switch
@@ -49,11 +59,14 @@ public static class HalfBridge
         _ => asIfLow,
     };
 
-    /// <summary>The channels that a definition needs and a bench does not record; empty where it can be formed.</summary>
+    /// <summary>
+    /// The channels that a definition needs and a bench does not record; empty where it can be formed.
+    /// </summary>
     /// <param name="definition">The definition.</param>
     /// <param name="recorded">The channels recorded.</param>
     /// <param name="firesHigh">Whether the high switch fires.</param>
-    /// <returns>The missing channels. The diode's current may also come from the switch's and the load's line.</returns>
+    /// <returns>The missing channels. The diode's current may also come from the switch's and the load's
+    /// line.</returns>
     public static IReadOnlyList<Channel> Missing(
         QuantityDefinition definition, IReadOnlyCollection<Channel> recorded, bool firesHigh)
     {

@@ -5,11 +5,11 @@ namespace BenchRunner.Acceptance.Plans;
 
 /// <summary>How warm a pulse train makes the junctions above the plate.</summary>
 /// <remarks>
-/// Losses are rectangles of power in time; the rise at a moment is the sum of P · [Zth(t − start) − Zth(t − end)] over them
-/// (superposition, common practice for transient thermal impedance), looked at the end of each. Switching energies are the
-/// upper limits that the sequence states on <c>eon</c> and <c>eoff</c>, else ½ V I times two fastest edges; they are lost
-/// at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what the mean power
-/// of repeated trains leaves.
+/// Losses are rectangles of power in time; the rise at a moment is the sum of P · [Zth(t − start) − Zth(t − end)] over
+/// them (superposition, common practice for transient thermal impedance), looked at the end of each. Switching energies
+/// are the upper limits that the sequence states on <c>eon</c> and <c>eoff</c>, else ½ V I times two fastest edges;
+/// they are lost at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what
+/// the mean power of repeated trains leaves.
 /// </remarks>
 internal static class JunctionHeating
 {
@@ -87,8 +87,9 @@ internal static class JunctionHeating
             double rise = 0;
             foreach (Loss loss in losses)
             {
-                rise += loss.Power
-                    * (TransientImpedance.At(impedance, moment.End - loss.Start) - TransientImpedance.At(impedance, moment.End - loss.End));
+                double since = TransientImpedance.At(impedance, moment.End - loss.Start);
+                double after = TransientImpedance.At(impedance, moment.End - loss.End);
+                rise += loss.Power * (since - after);
             }
 
             warmest = Math.Max(warmest, rise);

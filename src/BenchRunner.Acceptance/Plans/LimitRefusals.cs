@@ -8,7 +8,9 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>Why a limit must not be decided on: unknown, used by a criterion, a companion's, not measured, undecidable.</summary>
+/// <summary>
+/// Why a limit must not be decided on: unknown, used by a criterion, a companion's, not measured, undecidable.
+/// </summary>
 internal static class LimitRefusals
 {
     /// <summary>All refusals of the limits of a sequence.</summary>
@@ -50,11 +52,13 @@ internal static class LimitRefusals
         {
             yield return new Problem(
                 limit.Where, $"a limit on {limit.Quantity} asks for the definition {id}",
-                $"one of {string.Join(", ", quantity.Definitions.Select(known => known.Id))}", "see benchrunner quantities");
+                $"one of {string.Join(", ", quantity.Definitions.Select(known => known.Id))}",
+                "see benchrunner quantities");
             yield break;
         }
 
-        foreach (Problem problem in Recorded(limit, id, definition, sequence, bench).Concat(Decidable(limit, sequence, bench)))
+        foreach (Problem problem in Recorded(limit, id, definition, sequence, bench)
+            .Concat(Decidable(limit, sequence, bench)))
         {
             yield return problem;
         }
@@ -70,7 +74,8 @@ internal static class LimitRefusals
         {
             yield return new Problem(
                 limit.Where, $"a limit stands on {limit.Quantity}",
-                $"a quantity that bench {bench.Name} can measure: {id} needs {string.Join(" and ", missing.Select(c => c.Name()))}",
+                $"a quantity that bench {bench.Name} can measure: {id} needs "
+                + $"{string.Join(" and ", missing.Select(c => c.Name()))}",
                 "remove it or choose a bench that records the channel");
         }
 

@@ -13,6 +13,8 @@ namespace BenchRunner.Acceptance.Plans;
 public sealed record Plan(
     Sequence Sequence, Bench Bench, IReadOnlyList<PlannedPoint> Points, double Duration, long Bytes)
 {
-    /// <summary>The train that shows, below 60 V, that bench and device are what the files say; before and after the points.</summary>
+    /// <summary>
+    /// The train that shows, below 60 V, that bench and device are what the files say; before and after the points.
+    /// </summary>
     public PlannedPoint? Proving { get; init; }
 }

@@ -6,10 +6,14 @@ using BenchRunner.Signals.Analysis;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>Makes a plan of sequence and bench: what would be done, and what refuses and why. Pure: no clock, no disk.</summary>
+/// <summary>
+/// Makes a plan of sequence and bench: what would be done, and what refuses and why. Pure: no clock, no disk.
+/// </summary>
 public static class Planner
 {
-    /// <summary>Damping ratio by which the decay of a ringing is planned, 1: lower than a sound commutation loop's.</summary>
+    /// <summary>
+    /// Damping ratio by which the decay of a ringing is planned, 1: lower than a sound commutation loop's.
+    /// </summary>
     private const double PlannedDamping = 0.02;
 
     /// <summary>Share of its first swing at which a ringing counts as decayed, 1.</summary>
@@ -18,7 +22,8 @@ public static class Planner
     /// <summary>Plans a run of one device.</summary>
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
-    /// <returns>The plan as far as it could be formed, and every refusal; no plan for a sequence without points.</returns>
+    /// <returns>The plan as far as it could be formed, and every refusal; no plan for a sequence without
+    /// points.</returns>
     public static Planned Plan(Sequence sequence, Bench bench)
     {
         ArgumentNullException.ThrowIfNull(sequence);
@@ -26,7 +31,8 @@ public static class Planner
         if (sequence.OperatingPoints.Count == 0)
         {
             return new Planned(null, [new Problem(
-                new Place(sequence.Source.Path, 0, 0), "there is no operating point", "at least one", "add operating-points")]);
+                new Place(sequence.Source.Path, 0, 0), "there is no operating point", "at least one",
+                "add operating-points")]);
         }
 
         var points = new List<PlannedPoint>();

@@ -7,7 +7,9 @@ namespace BenchRunner.Acceptance.Plans;
 /// <summary>Why one operating point must not be run: envelope, ratings, train, bank, gate, temperature.</summary>
 internal static class PointRefusals
 {
-    /// <summary>Shortest usable pulse or gap, s: twice the dead time within which crossings of the gate count as one edge.</summary>
+    /// <summary>
+    /// Shortest usable pulse or gap, s: twice the dead time within which crossings of the gate count as one edge.
+    /// </summary>
     internal const double ShortestPulse = 500e-9;
 
     /// <summary>How far a gate resistor may be from the one fitted, relative: rounding of its text, no more.</summary>
@@ -67,7 +69,8 @@ internal static class PointRefusals
             yield return new Problem(
                 At(point, "load-current"),
                 $"{A(point.LoadCurrent)} at {V(point.BusVoltage)} needs a first pulse of {S(planned.FirstPulse)}",
-                $"at most the bench envelope of {S(most.Pulse)}", "lower the current or choose a smaller load inductance");
+                $"at most the bench envelope of {S(most.Pulse)}",
+                "lower the current or choose a smaller load inductance");
         }
 
         if (point.SecondPulse > most.Pulse)
@@ -103,7 +106,8 @@ internal static class PointRefusals
             yield return new Problem(
                 At(point, point.LoadCurrent > ratings.PeakCurrent ? "load-current" : "pulses.second"),
                 $"the second turn-off is at {A(planned.Off2Current)}",
-                $"at most the rated peak current of {A(ratings.PeakCurrent)}", "lower load-current or shorten the second pulse");
+                $"at most the rated peak current of {A(ratings.PeakCurrent)}",
+                "lower load-current or shorten the second pulse");
         }
 
         if (point.GateOn > ratings.GateHigh)
@@ -125,7 +129,8 @@ internal static class PointRefusals
         {
             yield return new Problem(
                 At(point, "pulses.repeat-every"),
-                $"the junction reaches {SiText.Format(plate + rise, "degC", 3)} ({SiText.Format(rise, "K", 3)} above the plate)",
+                $"the junction reaches {SiText.Format(plate + rise, "degC", 3)} "
+                + $"({SiText.Format(rise, "K", 3)} above the plate)",
                 $"at most the rated {SiText.Format(ratings.JunctionMaximum, "degC")}",
                 "repeat less often, shorten the second pulse or lower the temperature");
         }
@@ -140,20 +145,23 @@ internal static class PointRefusals
                 At(point, "load-current"),
                 $"{A(point.LoadCurrent)} is never reached from {SiText.Format(bench.BusCapacitance, "F")} at "
                 + $"{V(point.BusVoltage)} through {SiText.Format(bench.LoadInductance, "H")}",
-                "a bank and a load that give the current", "lower the current, or choose a larger bank or a smaller inductor");
+                "a bank and a load that give the current",
+                "lower the current, or choose a larger bank or a smaller inductor");
         }
         else if (planned.BusDroop > sequence.Validity.BusDroop)
         {
             yield return new Problem(
                 At(point, "load-current"),
-                $"the first pulse takes {SiText.Percent(planned.BusDroop)} from a bus of {SiText.Format(bench.BusCapacitance, "F")}",
+                $"the first pulse takes {SiText.Percent(planned.BusDroop)} from a bus of "
+                + $"{SiText.Format(bench.BusCapacitance, "F")}",
                 $"at most bus-droop of {SiText.Percent(sequence.Validity.BusDroop)}",
                 "choose a larger bank, a smaller load inductance or a lower current");
         }
 
         foreach ((string key, string name, double width, string advice) in new[]
         {
-            ("load-current", "first pulse", planned.FirstPulse, $"the load inductance of {SiText.Format(bench.LoadInductance, "H")}"
+            ("load-current", "first pulse", planned.FirstPulse,
+                $"the load inductance of {SiText.Format(bench.LoadInductance, "H")}"
                 + " is too small: choose a larger one or a higher current"),
             ("pulses.gap", "gap", point.Gap, "lengthen it"),
             ("pulses.second", "second pulse", point.SecondPulse, "lengthen it"),
@@ -186,7 +194,8 @@ internal static class PointRefusals
         {
             yield return new Problem(
                 At(point, "pulses.repeat-every"), $"repeat-every is {S(point.RepeatEvery)}",
-                $"at least {S(planned.Recovery)}, in which the inductor decays and the bus is charged again", "lengthen it");
+                $"at least {S(planned.Recovery)}, in which the inductor decays and the bus is charged again",
+                "lengthen it");
         }
     }
 
@@ -202,7 +211,8 @@ internal static class PointRefusals
             {
                 yield return new Problem(
                     At(point, key), $"{key[5..]} is {SiText.Format(wanted, "Ohm")}",
-                    $"the {SiText.Format(fitted, "Ohm")} that bench {bench.Name} has fitted", "change it or fit the other resistor");
+                    $"the {SiText.Format(fitted, "Ohm")} that bench {bench.Name} has fitted",
+                    "change it or fit the other resistor");
             }
         }
     }

@@ -4,7 +4,9 @@ using BenchRunner.Signals.Analysis;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>What a pulse train at one operating point does to load, bank and device, from the files alone. All values SI.</summary>
+/// <summary>
+/// What a pulse train at one operating point does to load, bank and device, from the files alone. All values SI.
+/// </summary>
 internal sealed record PulseTrain
 {
     /// <summary>Width of the first pulse, s; null where the target current is never reached.</summary>

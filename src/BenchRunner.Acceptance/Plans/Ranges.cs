@@ -5,7 +5,9 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>Scope ranges from ratings, the point and the stated probe errors; never from what a capture measured.</summary>
+/// <summary>
+/// Scope ranges from ratings, the point and the stated probe errors; never from what a capture measured.
+/// </summary>
 internal static class Ranges
 {
     /// <summary>Ranges of all recorded channels at one point, by the scope's inputs.</summary>
@@ -31,15 +33,17 @@ internal static class Ranges
         return ranges;
     }
 
-    /// <summary>Lowest and highest true value that must fit, with margin. The channel is named as if low fired.</summary>
+    /// <summary>
+    /// Lowest and highest true value that must fit, with margin. The channel is named as if low fired.
+    /// </summary>
     private static (double Low, double High) Extent(
         Channel part, OperatingPoint point, PulseTrain train, DeviceRatings ratings)
     {
         double swing = point.GateOn - point.GateOff;
 
-        // Recovery and output charge add a current that hardly falls with the load's, and an overshoot that hardly falls
-        // with the bus: each range has a part from the point and a part from the rating. At 60 V and a tenth of the
-        // current a sound part reaches 2.7 times the bus and 5 times the load current.
+        // Recovery and output charge add a current that hardly falls with the load's, and an overshoot that hardly
+        // falls with the bus: each range has a part from the point and a part from the rating. At 60 V and a tenth of
+        // the current a sound part reaches 2.7 times the bus and 5 times the load current.
         double current = Math.Max(1.2 * train.Off2Current, (2 * point.LoadCurrent) + (0.25 * ratings.PeakCurrent));
 
         // The freewheeling place rings higher than the firing one.

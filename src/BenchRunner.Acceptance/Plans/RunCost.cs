@@ -47,7 +47,9 @@ internal static class RunCost
         return (samples + (OwnCaptures * largest)) * bench.Channels.Count * BytesPerSample;
     }
 
-    /// <summary>Time of a change of the bus, s: up at the supply's current limit, C ΔV/I; down through the bleeder.</summary>
+    /// <summary>
+    /// Time of a change of the bus, s: up at the supply's current limit, C ΔV/I; down through the bleeder.
+    /// </summary>
     private static double Change(double from, double to, Bench bench) => to >= from
         ? bench.BusCapacitance * (to - from) / bench.ChargingCurrent
         : bench.Bleeder * bench.BusCapacitance * Math.Log(from / to);

@@ -6,8 +6,8 @@ namespace BenchRunner.Acceptance.Plans;
 
 /// <summary>Time base of the scope for one operating point.</summary>
 /// <param name="Interval">Sample interval, s.</param>
-/// <param name="Needed">Longest interval that edges and ringing allow, s; shorter than <paramref name="Interval"/> where
-/// the scope is too slow.</param>
+/// <param name="Needed">Longest interval that edges and ringing allow, s; shorter than <paramref name="Interval"/>
+/// where the scope is too slow.</param>
 /// <param name="Samples">Samples a channel.</param>
 /// <param name="Pretrigger">Time before the first turn-on, s.</param>
 internal sealed record Sampling(double Interval, double Needed, int Samples, double Pretrigger)

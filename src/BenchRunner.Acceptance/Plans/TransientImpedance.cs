@@ -9,8 +9,8 @@ public static class TransientImpedance
     /// <param name="impedance">Points by rising time; the steady one has infinite time.</param>
     /// <param name="time">Time since the power began, s; 0 or less gives 0.</param>
     /// <returns>
-    /// Before the first point it falls with the square root of time (heat into a half-space, common practice). The steady
-    /// value counts from a hundred times the last stated time on.
+    /// Before the first point it falls with the square root of time (heat into a half-space, common practice). The
+    /// steady value counts from a hundred times the last stated time on.
     /// </returns>
     /// <exception cref="ArgumentException">No point.</exception>
     public static double At(IReadOnlyList<ThermalPoint> impedance, double time)

@@ -7,9 +7,10 @@ namespace BenchRunner.Acceptance.Uncertainty;
 
 /// <summary>The type B budget of every quantity at an operating point, from the bench file and one capture.</summary>
 /// <remarks>
-/// Sensitivities are central differences through the analysis itself: the capture is analysed again with each stated error
-/// a standard uncertainty larger and smaller. The same error is in all captures of a point, so it does not shrink with
-/// their number. A code's rounding (LSB/√12 over the bits that count) acts as an offset: high for means, right for peaks.
+/// Sensitivities are central differences through the analysis itself: the capture is analysed again with each stated
+/// error a standard uncertainty larger and smaller. The same error is in all captures of a point, so it does not shrink
+/// with their number. A code's rounding (LSB/√12 over the bits that count) acts as an offset: high for means, right for
+/// peaks.
 /// </remarks>
 public sealed class BenchBudget
 {
@@ -21,7 +22,8 @@ public sealed class BenchBudget
     public IReadOnlyCollection<QuantityBudget> All => _budgets.Values;
 
     /// <summary>Forms the budget.</summary>
-    /// <param name="traces">The traces of a valid capture; the first valid one of a point, so that rescoring takes the same.</param>
+    /// <param name="traces">The traces of a valid capture; the first valid one of a point, so that rescoring takes the
+    /// same.</param>
     /// <param name="bench">The bench.</param>
     /// <param name="settings">What the analysis takes as given.</param>
     /// <exception cref="ArgumentException">The traces are not one capture.</exception>
@@ -40,11 +42,13 @@ public sealed class BenchBudget
             double rounding = trace.FullScale / Math.Pow(2, bench.ScopeBits) / Math.Sqrt(12);
             string name = setup.Channel.Name();
             ChannelCorrection stated = Stated(settings, setup.Channel, centre.Train);
-            Vary($"{name} gain", setup.GainUncertainty, setup.GainUncertainty, u => stated with { Gain = stated.Gain * (1 + u) });
+            Vary($"{name} gain", setup.GainUncertainty, setup.GainUncertainty, u =>
+                stated with { Gain = stated.Gain * (1 + u) });
             double[] perOffset = Vary(
                 $"{name} offset", setup.OffsetUncertainty, Math.Max(setup.OffsetUncertainty, rounding),
                 u => stated with { Offset = stated.Offset + u });
-            Vary($"{name} skew", setup.SkewUncertainty, setup.SkewUncertainty, u => stated with { Skew = stated.Skew + u });
+            Vary($"{name} skew", setup.SkewUncertainty, setup.SkewUncertainty, u =>
+                stated with { Skew = stated.Skew + u });
             for (int i = 0; i < entries.Length; i++)
             {
                 entries[i].Add(new UncertaintyEntry($"{name} quantisation", rounding, perOffset[i]));
@@ -80,7 +84,9 @@ public sealed class BenchBudget
     public QuantityBudget? Find(string quantity, string definition) =>
         _budgets.GetValueOrDefault((quantity, definition));
 
-    /// <summary>The stated error of a channel; a current's offset that is not stated is what the analysis takes for it.</summary>
+    /// <summary>
+    /// The stated error of a channel; a current's offset that is not stated is what the analysis takes for it.
+    /// </summary>
     private static ChannelCorrection Stated(AnalysisSettings settings, Channel channel, TrainFacts train)
     {
         ChannelCorrection stated = settings.Corrections.GetValueOrDefault(channel) ?? new ChannelCorrection();
@@ -91,7 +97,8 @@ public sealed class BenchBudget
         };
     }
 
-    /// <summary>Change of each quantity over the change of one error; 0 where the error is stated as 0, NaN where none could be formed.</summary>
+    /// <summary>Change of each quantity over the change of one error; 0 where the error is stated as 0, NaN where none
+    /// could be formed.</summary>
     private static double[] Sensitivities(
         Waveform waveform,
         AnalysisSettings settings,

@@ -12,10 +12,12 @@ public readonly record struct CombinedUncertainty(double Standard, double Degree
     /// <summary>Combines the entries of a budget whose inputs are independent.</summary>
     /// <param name="entries">The entries; none: no uncertainty.</param>
     /// <param name="coverage">Coverage probability, 1; above 0 and below 1.</param>
-    /// <returns>u² = Σ (c u)²; ν = u⁴ / Σ ((c u)⁴/ν) (Welch-Satterthwaite), at least 1; k from Student's t at ν.</returns>
+    /// <returns>u² = Σ (c u)²; ν = u⁴ / Σ ((c u)⁴/ν) (Welch-Satterthwaite), at least 1; k from Student's t at
+    /// ν.</returns>
     /// <exception cref="ArgumentOutOfRangeException">Coverage not between 0 and 1.</exception>
     /// <remarks>JCGM 100:2008, equations 10 and G.2b.</remarks>
-    /// <example>The end gauge of JCGM 100, H.1: 25, 9.7, 2.9 and 16.6 nm give 32 nm, ν 16.7, and at 99 % U = 93 nm.</example>
+    /// <example>The end gauge of JCGM 100, H.1: 25, 9.7, 2.9 and 16.6 nm give 32 nm, ν 16.7, and at 99 % U = 93
+    /// nm.</example>
     public static CombinedUncertainty Of(IReadOnlyList<UncertaintyEntry> entries, double coverage)
     {
         ArgumentNullException.ThrowIfNull(entries);

@@ -5,7 +5,9 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Uncertainty;
 
-/// <summary>What a bench file alone says about the uncertainty of a level or peak, before anything was measured.</summary>
+/// <summary>
+/// What a bench file alone says about the uncertainty of a level or peak, before anything was measured.
+/// </summary>
 public static class StatedUncertainty
 {
     private static readonly Dictionary<string, Channel> _levels = new()
@@ -20,13 +22,14 @@ public static class StatedUncertainty
         ["i_on"] = Channel.IdLow,
     };
 
-    /// <summary>Standard uncertainty of a value of one channel, from its stated gain and offset: √((u_gain · value)² + u_offset²).</summary>
+    /// <summary>Standard uncertainty of a value of one channel, from its stated gain and offset: √((u_gain · value)² +
+    /// u_offset²).</summary>
     /// <param name="quantity">The quantity.</param>
     /// <param name="value">The value expected, V or A.</param>
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
-    /// <returns>Standard uncertainty, V or A: a lower bound of what a capture will show; null for a quantity that is no level of
-    /// one channel, or a channel that is not recorded.</returns>
+    /// <returns>Standard uncertainty, V or A: a lower bound of what a capture will show; null for a quantity that is no
+    /// level of one channel, or a channel that is not recorded.</returns>
     public static double? Of(string quantity, double value, Sequence sequence, Bench bench)
     {
         ArgumentNullException.ThrowIfNull(bench);

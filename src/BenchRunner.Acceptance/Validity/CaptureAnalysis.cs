@@ -10,8 +10,8 @@ public static class CaptureAnalysis
     /// <param name="traces">The traces as recorded.</param>
     /// <param name="settings">What the analysis takes as given.</param>
     /// <returns>
-    /// What the analysis says; nothing at all where the traces do not fit together (none, one twice, different lengths or time
-    /// bases), which <c>complete</c> then finds.
+    /// What the analysis says; nothing at all where the traces do not fit together (none, one twice, different lengths
+    /// or time bases), which <c>complete</c> then finds.
     /// </returns>
     public static AnalysisResult Of(IReadOnlyList<RawTrace> traces, AnalysisSettings settings)
     {

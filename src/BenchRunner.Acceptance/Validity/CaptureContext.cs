@@ -30,7 +30,9 @@ public sealed record CaptureContext
     /// <summary>The scope's acquisition count before firing; null: not known.</summary>
     public long? CountBefore { get; init; }
 
-    /// <summary>The scope's acquisition count that belongs to the traces; null: not known, or it changed while reading.</summary>
+    /// <summary>
+    /// The scope's acquisition count that belongs to the traces; null: not known, or it changed while reading.
+    /// </summary>
     public long? CountAfter { get; init; }
 
     /// <summary>How many captures in a row, just before this one, were not fresh.</summary>
@@ -42,7 +44,9 @@ public sealed record CaptureContext
     /// <summary>The voltmeter's reading of the bank just before the train, V; null: none.</summary>
     public double? Voltmeter { get; init; }
 
-    /// <summary>Current before the train in the zero capture, as <see cref="TrainFacts.CurrentBeforeOn1"/>, A; null: none.</summary>
+    /// <summary>
+    /// Current before the train in the zero capture, as <see cref="TrainFacts.CurrentBeforeOn1"/>, A; null: none.
+    /// </summary>
     public double? ZeroCurrent { get; init; }
 
     /// <summary>Measured temperature of the plate, degC; null: not measured.</summary>

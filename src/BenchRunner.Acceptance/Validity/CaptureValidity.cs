@@ -11,8 +11,8 @@ public static class CaptureValidity
     /// <summary>Judges one capture by every criterion of the catalogue.</summary>
     /// <param name="context">Everything that it rests on.</param>
     /// <returns>
-    /// All findings, the criteria that could not be evaluated, the corrected first pulse and the channels that want another
-    /// range. A stop that was found outweighs a correction: the run ends.
+    /// All findings, the criteria that could not be evaluated, the corrected first pulse and the channels that want
+    /// another range. A stop that was found outweighs a correction: the run ends.
     /// </returns>
     public static Verdict Judge(CaptureContext context)
     {

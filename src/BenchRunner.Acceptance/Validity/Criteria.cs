@@ -57,16 +57,21 @@ public static class Criteria
     /// <summary>All criteria, in the order in which they are judged and listed.</summary>
     public static IReadOnlyList<Criterion> All { get; } =
     [
-        new(Complete, "retry", "a channel is missing, has fewer samples than asked, or another time base than set", "", []),
+        new(Complete, "retry", "a channel is missing, has fewer samples than asked, or another time base than set",
+            "", []),
         new(Fresh, "retry, stop on the third in a row",
             "all codes are those of the last capture, or the scope's acquisition count did not advance", "", []),
-        new(NotClipped, "retry with the next range", "3 or more samples before the second turn-off lie at a rail of the ADC", "", []),
+        new(NotClipped, "retry with the next range",
+            "3 or more samples before the second turn-off lie at a rail of the ADC", "", []),
         new(RangeUsed, "retry with the next range",
-            "peak to peak below 25 % of full scale, on the channels that a train swings (not the bus, nor a gate held off)", "", []),
+            "peak to peak below 25 % of full scale, on the channels that a train swings "
+            + "(not the bus, nor a gate held off)", "", []),
         new(TwoPulses, "retry, stop where a pulse is longer than set",
-            "the gate's edges are not on, off, on, off, or a width is off by more than 2 % + max(10 ns, the slower gate edge)",
+            "the gate's edges are not on, off, on, off, or a width is off by more than 2 % + "
+            + "max(10 ns, the slower gate edge)",
             "", []),
-        new(Baseline, "retry after waiting", "the current before the train is off the zero capture by over 1 % of target", "", []),
+        new(Baseline, "retry after waiting",
+            "the current before the train is off the zero capture by over 1 % of target", "", []),
         new(CurrentWithin, "retry with a corrected first pulse, stop beyond the correction's bounds",
             "the load current at the first turn-off is away from its target", "2 %", ["i_off"]),
         new(BusWithin, "retry after recharging, stop above the envelope",
@@ -75,15 +80,17 @@ public static class Criteria
         new(RampStraightness, "retry, stop where the slope grows by more than 20 %",
             "the first ramp bends: the inductor saturates, or a device fails", "2 %", ["ramp_straightness"]),
         new(HighSideOff, "stop",
-            "the gate held off rises above the bench's threshold from the second turn-on to the end of recovery", "", []),
+            "the gate held off rises above the bench's threshold from the second turn-on "
+            + "to the end of recovery", "", []),
         new(Desaturated, "stop",
-            "the switch's voltage with its gate on is above max(5 % of the bus, 3 times the stated on-voltage) and hysteresis",
+            "the switch's voltage with its gate on is above max(5 % of the bus, "
+            + "3 times the stated on-voltage) and hysteresis",
             "", []),
         new(Settled, "retry", "an edge follows another sooner than the planned decay of the ringing", "", []),
         new(NoiseBelow, "retry", "the noise of a channel is above a share of full scale", "1 %", []),
         new(BusAgrees, "stop",
-            "the switch's voltage before the train is off the voltmeter's by over 3 %, or ramp slope times load inductance off "
-            + "the bus by over 15 %", "", ["ramp_slope"]),
+            "the switch's voltage before the train is off the voltmeter's by over 3 %, or ramp slope "
+            + "times load inductance off the bus by over 15 %", "", ["ramp_slope"]),
         new(TemperatureWithin, "retry after waiting", "the plate is away from the point's temperature", "3 K", []),
         new(GateLevels, "retry, stop where the off level is more than 0.5 V above what was set",
             "a gate level is away from the point's", "0.5 V", ["vgs_on", "vgs_off"]),

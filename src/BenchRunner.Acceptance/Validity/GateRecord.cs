@@ -28,7 +28,8 @@ internal sealed class GateRecord
     /// <summary>Of a waveform's channel; null where it has none.</summary>
     public static GateRecord? Of(Waveform waveform, Channel channel, ChannelCorrection? error) => !waveform.Has(channel)
         ? null
-        : new GateRecord(i => waveform[channel][i], waveform.Count, waveform.TimeOrigin, waveform.SampleInterval, error);
+        : new GateRecord(
+            i => waveform[channel][i], waveform.Count, waveform.TimeOrigin, waveform.SampleInterval, error);
 
     /// <summary>The highest true value between two times, V, and when it is, s.</summary>
     /// <remarks>Samples that are not finite are left out; none in between gives negative infinity.</remarks>

@@ -33,7 +33,8 @@ internal static class PowerCriteria
         {
             judgement.Add(
                 Criteria.CurrentWithin, FindingClass.Stop,
-                $"the load current at the first turn-off is {A(seen)}, above the bench envelope of {A(most)}; the run stops",
+                $"the load current at the first turn-off is {A(seen)}, above the bench envelope of {A(most)}; the "
+                + "run stops",
                 channel, seen, most, at);
             return;
         }
@@ -46,11 +47,13 @@ internal static class PowerCriteria
 
         string found = $"the load current at the first turn-off is {A(seen)}, {SiText.Percent(Math.Abs(off), 2)} "
             + $"{(off > 0 ? "above" : "below")} its target of {A(target)} (within {SiText.Percent(bound)})";
-        string[] first = [Criteria.BusWithin, Criteria.TwoPulses, Criteria.NotClipped, Criteria.Complete, Criteria.Fresh];
+        string[] first =
+            [Criteria.BusWithin, Criteria.TwoPulses, Criteria.NotClipped, Criteria.Complete, Criteria.Fresh];
         if (first.Any(judgement.Has))
         {
             judgement.Add(
-                Criteria.CurrentWithin, FindingClass.Retry, $"{found}; the other findings are put right first", channel, seen, target, at);
+                Criteria.CurrentWithin, FindingClass.Retry, $"{found}; the other findings are put right first",
+                channel, seen, target, at);
             return;
         }
 
@@ -60,14 +63,15 @@ internal static class PowerCriteria
         {
             judgement.CorrectedFirstPulse = next;
             judgement.Add(
-                Criteria.CurrentWithin, FindingClass.Retry, $"{found}; first pulse from {S(set)} to {S(next)}", channel, seen, target, at);
+                Criteria.CurrentWithin, FindingClass.Retry, $"{found}; first pulse from {S(set)} to {S(next)}",
+                channel, seen, target, at);
         }
         else
         {
             judgement.Add(
                 Criteria.CurrentWithin, FindingClass.Stop,
-                $"{found}; the first pulse would have to be more than {SiText.Percent(WidthCorrection.InAll)} off the planned "
-                + $"{S(planned)}: the bench is not what its file says; the run stops",
+                $"{found}; the first pulse would have to be more than {SiText.Percent(WidthCorrection.InAll)} off "
+                + $"the planned {S(planned)}: the bench is not what its file says; the run stops",
                 channel, seen, target, at);
         }
     }
@@ -123,7 +127,9 @@ internal static class PowerCriteria
         }
     }
 
-    /// <summary><c>bus-agrees</c>: both comparisons; where one cannot be made the criterion is not evaluated, never met.</summary>
+    /// <summary>
+    /// <c>bus-agrees</c>: both comparisons; where one cannot be made the criterion is not evaluated, never met.
+    /// </summary>
     public static void BusAgrees(CaptureContext context, Judgement judgement)
     {
         TrainFacts train = context.Analysis.Train;
@@ -135,7 +141,8 @@ internal static class PowerCriteria
                 judgement.Add(
                     Criteria.BusAgrees, FindingClass.Stop,
                     $"{channel.Name()} is {V(blocking)} before the train, the voltmeter reads {V(bank)} "
-                    + $"(within {SiText.Percent(VoltmeterAgrees)}): a probe's factor, or a device that does not block; the run stops",
+                    + $"(within {SiText.Percent(VoltmeterAgrees)}): a probe's factor, or a device that does not block; "
+                    + "the run stops",
                     channel, blocking, bank);
             }
         }
@@ -152,9 +159,10 @@ internal static class PowerCriteria
                 Channel channel = HalfBridge.Playing(Channel.IdLow, HalfBridge.FiresHigh(context.Sequence));
                 judgement.Add(
                     Criteria.BusAgrees, FindingClass.Stop,
-                    $"the first ramp of {SiText.Format(slope, "A/s", 3)} in {SiText.Format(context.Bench.LoadInductance, "H")} means "
-                    + $"{V(across)}, the bus is at {V(bus)} (within {SiText.Percent(SlopeAgrees)}): a current probe's factor, or "
-                    + "another inductor; the run stops",
+                    $"the first ramp of {SiText.Format(slope, "A/s", 3)} in "
+                    + $"{SiText.Format(context.Bench.LoadInductance, "H")} "
+                    + $"means {V(across)}, the bus is at {V(bus)} (within {SiText.Percent(SlopeAgrees)}): "
+                    + "a current probe's factor, or another inductor; the run stops",
                     channel, across, bus);
             }
         }

@@ -29,7 +29,8 @@ internal static class RecordCriteria
             if (context.Traces.FirstOrDefault(trace => trace.Channel == range.Channel) is not { } trace)
             {
                 judgement.Add(
-                    Criteria.Complete, FindingClass.Retry, $"{name} is missing from the record; taken again", range.Channel);
+                    Criteria.Complete, FindingClass.Retry, $"{name} is missing from the record; taken again",
+                    range.Channel);
                 continue;
             }
 
@@ -82,8 +83,7 @@ internal static class RecordCriteria
         {
             int clipped = 0;
             int first = 0;
-            int last = Math.Min(
-                trace.Codes.Length, (int)Math.Min(Math.Max((end - trace.TimeOrigin) / trace.SampleInterval, 0), int.MaxValue));
+            int last = (int)Math.Clamp((end - trace.TimeOrigin) / trace.SampleInterval, 0, trace.Codes.Length);
             for (int i = 0; i < last; i++)
             {
                 if (trace.Codes[i] <= trace.LowRail || trace.Codes[i] >= trace.HighRail)
@@ -99,7 +99,8 @@ internal static class RecordCriteria
                 judgement.NextRange(trace.Channel, wider: true);
                 judgement.Add(
                     Criteria.NotClipped, FindingClass.Retry,
-                    $"{trace.Channel.Name()} is at a rail of the ADC ({SiText.Format(trace.Value(trace.Codes[first]), unit)}) "
+                    $"{trace.Channel.Name()} is at a rail of the ADC "
+                    + $"({SiText.Format(trace.Value(trace.Codes[first]), unit)}) "
                     + $"for {clipped} samples from {SiText.Format(at, "s")}; next range {Next(trace, wider: true)}",
                     trace.Channel, clipped, ClippedFrom, at);
             }
@@ -131,8 +132,8 @@ internal static class RecordCriteria
                 judgement.NextRange(trace.Channel, wider: false);
                 judgement.Add(
                     Criteria.RangeUsed, FindingClass.Retry,
-                    $"{trace.Channel.Name()} uses {SiText.Percent(used)} of its range (at least {SiText.Percent(LeastUse)}); "
-                    + $"next range {Next(trace, wider: false)}",
+                    $"{trace.Channel.Name()} uses {SiText.Percent(used)} of its range "
+                    + $"(at least {SiText.Percent(LeastUse)}); next range {Next(trace, wider: false)}",
                     trace.Channel, used, LeastUse);
             }
         }

@@ -17,7 +17,9 @@ internal static class TrainCriteria
     /// <summary>Largest current before the train over the target, 1.</summary>
     private const double BaselineShare = 0.01;
 
-    /// <summary>How far an off level may lie above what was set before it is a stop, V: a step towards an unwanted turn-on.</summary>
+    /// <summary>
+    /// How far an off level may lie above what was set before it is a stop, V: a step towards an unwanted turn-on.
+    /// </summary>
     private const double OffLevelStop = 0.5;
 
     /// <summary><c>two-pulses</c>.</summary>
@@ -64,8 +66,8 @@ internal static class TrainCriteria
         {
             judgement.Add(
                 Criteria.Baseline, FindingClass.Retry,
-                $"{Current(context).Name()} is {A(seen - zero)} before the train (at most {A(bound)}): the inductor has not decayed, "
-                + "or the probe drifts; the next train waits longer",
+                $"{Current(context).Name()} is {A(seen - zero)} before the train (at most {A(bound)}): "
+                + "the inductor has not decayed, or the probe drifts; the next train waits longer",
                 Current(context), seen - zero, bound);
         }
     }

@@ -2,8 +2,10 @@ namespace BenchRunner.Acceptance.Validity;
 
 /// <summary>What validity says of one capture.</summary>
 /// <param name="Findings">All findings.</param>
-/// <param name="NotEvaluated">Criteria that could not be evaluated (channel missing, not yet supported); never counted as met.</param>
-/// <param name="CorrectedFirstPulse">Width of the first pulse that the next capture should use, s; null: unchanged.</param>
+/// <param name="NotEvaluated">Criteria that could not be evaluated (channel missing, not yet supported); never counted
+/// as met.</param>
+/// <param name="CorrectedFirstPulse">Width of the first pulse that the next capture should use, s; null:
+/// unchanged.</param>
 /// <param name="NextRange">Channels whose next range is wider (true) or narrower (false).</param>
 public sealed record Verdict(
     IReadOnlyList<Finding> Findings,

@@ -4,7 +4,8 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Validity;
 
-/// <summary>Criteria that a waveform alone can answer: <c>two-pulses</c> (edges), <c>ramp-straightness high-side-off desaturated</c>.</summary>
+/// <summary>Criteria that a waveform alone can answer: <c>two-pulses</c> (edges), <c>ramp-straightness high-side-off
+/// desaturated</c>.</summary>
 internal static class WaveformCriteria
 {
     /// <summary>Growth of the ramp's slope that is a stop, relative.</summary>
@@ -18,8 +19,10 @@ internal static class WaveformCriteria
 
     /// <summary>The finding of a train whose edges are not on, off, on, off.</summary>
     public static Finding Edges(TrainFacts train, Channel gate) => new(
-        Criteria.TwoPulses, FindingClass.Retry, gate, train.Edges.Count, 4, train.Edges.Count > 0 ? train.Edges[0].At : null,
-        $"{gate.Name()} has {train.Edges.Count} edges where a train of two pulses has 4 (on, off, on, off); taken again");
+        Criteria.TwoPulses, FindingClass.Retry, gate, train.Edges.Count, 4,
+        train.Edges.Count > 0 ? train.Edges[0].At : null,
+        $"{gate.Name()} has {train.Edges.Count} edges where a train of two pulses has 4 (on, off, on, off); "
+        + "taken again");
 
     /// <summary><c>ramp-straightness</c>.</summary>
     /// <returns>Whether it could be evaluated, and the finding.</returns>
@@ -29,8 +32,8 @@ internal static class WaveformCriteria
         {
             return (true, new Finding(
                 Criteria.RampStraightness, FindingClass.Stop, current, growth, GrowthStop, train.Off1?.At,
-                $"the slope of the first ramp grows by {SiText.Percent(growth)} (at most {SiText.Percent(GrowthStop)}): the inductor "
-                + "saturates, or a device fails; the run stops"));
+                $"the slope of the first ramp grows by {SiText.Percent(growth)} "
+                + $"(at most {SiText.Percent(GrowthStop)}): the inductor saturates, or a device fails; the run stops"));
         }
 
         if (train.RampStraightness is not { } bend)
@@ -40,7 +43,8 @@ internal static class WaveformCriteria
 
         return (true, bend <= bound ? null : new Finding(
             Criteria.RampStraightness, FindingClass.Retry, current, bend, bound, train.Off1?.At,
-            $"the first ramp is off a straight line by {SiText.Percent(bend)} of its end (at most {SiText.Percent(bound)}); taken again"));
+            $"the first ramp is off a straight line by {SiText.Percent(bend)} of its end "
+            + $"(at most {SiText.Percent(bound)}); taken again"));
     }
 
     /// <summary><c>desaturated</c>.</summary>
@@ -58,8 +62,10 @@ internal static class WaveformCriteria
         double bound = Math.Max(DesaturatedShare * bus, DesaturatedFactor * onVoltage) + (train.OnStateHysteresis ?? 0);
         return (true, seen <= bound ? null : new Finding(
             Criteria.Desaturated, FindingClass.Stop, voltage, seen, bound, train.OnStateMaximumAt,
-            $"{voltage.Name()} is {SiText.Format(seen, "V")} with the gate on (at most {SiText.Format(bound, "V")} on a bus of "
-            + $"{SiText.Format(bus, "V")}): the switch is not fully on, or the other place conducts; the run stops"));
+            $"{voltage.Name()} is {SiText.Format(seen, "V")} with the gate on (at most {SiText.Format(bound, "V")} "
+            + "on a bus "
+            + $"of {SiText.Format(bus, "V")}): the switch is not fully on, or the other place conducts; "
+            + "the run stops"));
     }
 
     /// <summary><c>high-side-off</c>: the gate held off, from the second turn-on to the end of recovery.</summary>
@@ -71,7 +77,8 @@ internal static class WaveformCriteria
     public static (bool Evaluated, Finding? Found) HighSideOff(
         GateRecord? samples, Channel gate, AnalysisResult analysis, double? threshold)
     {
-        double? end = analysis.Quantities.FirstOrDefault(value => value.Quantity == "trr" && value.Value is not null)?.To;
+        double? end = analysis.Quantities.FirstOrDefault(value =>
+            value.Quantity == "trr" && value.Value is not null)?.To;
         if (samples is null || threshold is not { } bound || analysis.Train.On2 is not { } on2 || end is not { } last)
         {
             return (false, null);
@@ -80,7 +87,7 @@ internal static class WaveformCriteria
         (double highest, double at) = samples.Highest(on2.Departure, last);
         return (true, !(highest > bound) ? null : new Finding(
             Criteria.HighSideOff, FindingClass.Stop, gate, highest, bound, at,
-            $"{gate.Name()} reaches {SiText.Format(highest, "V")} during recovery (at most {SiText.Format(bound, "V")}): the switch held "
-            + "off turns on; the run stops"));
+            $"{gate.Name()} reaches {SiText.Format(highest, "V")} during recovery "
+            + $"(at most {SiText.Format(bound, "V")}): the switch held off turns on; the run stops"));
     }
 }

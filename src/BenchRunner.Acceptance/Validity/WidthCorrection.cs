@@ -1,7 +1,8 @@
 namespace BenchRunner.Acceptance.Validity;
 
 /// <summary>How far the first pulse may be corrected so that the current meets its target.</summary>
-/// <remarks>A larger error is not a matter of width: the bench is not what its file says (a current probe at 1x reads a tenth).</remarks>
+/// <remarks>A larger error is not a matter of width: the bench is not what its file says (a current probe at 1x reads a
+/// tenth).</remarks>
 public static class WidthCorrection
 {
     /// <summary>Largest change from one capture to the next, relative.</summary>
@@ -15,7 +16,8 @@ public static class WidthCorrection
     /// <param name="set">The width of the capture, s.</param>
     /// <param name="target">The target current, A.</param>
     /// <param name="seen">The current seen, A.</param>
-    /// <returns>t1 · target/seen, moved by at most 10 %, s; null where that lies beyond 25 % of the planned width.</returns>
+    /// <returns>t1 · target/seen, moved by at most 10 %, s; null where that lies beyond 25 % of the planned
+    /// width.</returns>
     public static double? Next(double planned, double set, double target, double seen)
     {
         double wanted = set * target / seen;

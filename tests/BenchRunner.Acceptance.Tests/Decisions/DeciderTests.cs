@@ -26,13 +26,15 @@ public sealed class DeciderTests
     private static PointCaptures Captures(int valid) => new("rated", 20, [.. _analyses.Take(valid)], _budget);
 
     private static double Mean(string quantity) =>
-        Spread.Of([.. _analyses.Take(5).Select(one => one.Quantities.First(value => value.Quantity == quantity).Value!.Value)]).Mean;
+        Spread.Of([.. _analyses.Take(5)
+            .Select(one => one.Quantities.First(value => value.Quantity == quantity).Value!.Value)]).Mean;
 
-    private static Sequence Limited(params (string Quantity, double? Lower, double? Upper)[] limits) => Shipped.Rated with
-    {
-        Limits = [.. limits.Select(limit =>
+    private static Sequence Limited(params (string Quantity, double? Lower, double? Upper)[] limits) =>
+        Shipped.Rated with
+        {
+            Limits = [.. limits.Select(limit =>
             Shipped.Rated.Limits[0] with { Quantity = limit.Quantity, Lower = limit.Lower, Upper = limit.Upper })],
-    };
+        };
 
     private static DeviceDecision Decide(Sequence sequence, int valid = 5) =>
         Decider.Decide(sequence, Shipped.Bench, [Captures(valid)]);
@@ -46,7 +48,8 @@ public sealed class DeciderTests
         MeasuredValue value = decision.Values.Single(one => one.Conformity is not null);
         Assert.Equal(Mean("vds_peak_off"), value.Value!.Value, 1e-12);
         Assert.Equal(5, value.Captures);
-        Assert.Equal(value.CoverageFactor!.Value * value.StandardUncertainty!.Value, value.ExpandedUncertainty!.Value, 1e-12);
+        Assert.Equal(value.CoverageFactor!.Value * value.StandardUncertainty!.Value, value.ExpandedUncertainty!.Value,
+            1e-12);
         Assert.Equal("peak/raw", value.Definition);
     }
 
@@ -81,7 +84,8 @@ public sealed class DeciderTests
     {
         DeviceDecision decision = Decider.Decide(Shipped.Rated, Shipped.Bench, []);
         Assert.Equal(Outcome.NotMeasured, decision.Outcome);
-        Assert.Equal(Shipped.Rated.Limits.Count, decision.Values.Count(value => value.Conformity == Conformity.Undecided));
+        Assert.Equal(Shipped.Rated.Limits.Count,
+            decision.Values.Count(value => value.Conformity == Conformity.Undecided));
         Assert.All(decision.Values, value => Assert.Equal("no valid capture", value.Reason));
     }
 
@@ -96,7 +100,8 @@ public sealed class DeciderTests
         DeviceDecision decision = Decider.Decide(
             Limited(("qrr", null, 1)), Shipped.Bench, [new PointCaptures("rated", 5, without, _budget)]);
         Assert.Equal(Outcome.Undecided, decision.Outcome);
-        Assert.Contains("qrr at rated is no value, limit at most 1 C (end undecided)", decision.Reason, StringComparison.Ordinal);
+        Assert.Contains("qrr at rated is no value, limit at most 1 C (end undecided)", decision.Reason,
+            StringComparison.Ordinal);
     }
 
     [Fact]
@@ -139,7 +144,8 @@ public sealed class DeciderTests
     [Fact]
     public void One_capture_has_no_known_spread_and_leaves_a_guarded_limit_open()
     {
-        MeasuredValue value = Decide(Limited(("vds_peak_off", null, 2000)), valid: 1).Values.Single(one => one.Conformity is not null);
+        MeasuredValue value = Decide(Limited(("vds_peak_off", null, 2000)), valid: 1)
+            .Values.Single(one => one.Conformity is not null);
         Assert.Equal(Conformity.Undecided, value.Conformity);
         Assert.Contains("one capture", value.Reason, StringComparison.Ordinal);
         Assert.NotNull(value.Value);
@@ -180,5 +186,6 @@ public sealed class DeciderTests
     public void A_stop_rejects_the_device_only_where_the_place_at_fault_is_under_test(
         string criterion, DevicePosition position, Outcome outcome) =>
         Assert.Equal(outcome, StopOutcome.Of(
-            new Finding(criterion, FindingClass.Stop, null, null, null, null, ""), Shipped.Rated with { Position = position }));
+            new Finding(criterion, FindingClass.Stop, null, null, null, null, ""),
+                Shipped.Rated with { Position = position }));
 }

@@ -15,7 +15,8 @@ public sealed class ChargingRampTests
     {
         // Closed form: t = −L/R ln(1 − I R/V).
         double expected = -120e-6 / 0.05 * Math.Log(1 - (40 * 0.05 / 600));
-        Assert.Equal(expected, new ChargingRamp(600, 120e-6, 0.05, double.PositiveInfinity).TimeTo(40)!.Value, 1e-9 * expected);
+        Assert.Equal(expected, new ChargingRamp(600, 120e-6, 0.05, double.PositiveInfinity).TimeTo(40)!.Value,
+            1e-9 * expected);
     }
 
     [Fact]
@@ -39,7 +40,8 @@ public sealed class ChargingRampTests
 
     [Fact]
     public void The_time_found_is_where_the_current_is_and_grows_with_every_loss() =>
-        Gen.Select(Gen.Double[10, 1000], Gen.Double[1e-6, 1e-3], Gen.Double[0, 0.5], Gen.Double[10e-6, 1e-3], Gen.Double[1, 100])
+        Gen.Select(Gen.Double[10, 1000], Gen.Double[1e-6, 1e-3], Gen.Double[0, 0.5], Gen.Double[10e-6, 1e-3],
+            Gen.Double[1, 100])
             .Sample((voltage, inductance, resistance, capacitance, current) =>
             {
                 var ramp = new ChargingRamp(voltage, inductance, resistance, capacitance);

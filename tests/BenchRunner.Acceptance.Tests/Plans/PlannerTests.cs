@@ -14,7 +14,8 @@ public sealed class PlannerTests
     public void The_shipped_sequence_is_refused_by_neither_shipped_bench()
     {
         Assert.Empty(Planner.Plan(Shipped.Sequence, Shipped.Bench).Refusals.Select(problem => problem.ToString()));
-        Assert.Empty(Planner.Plan(Shipped.Sequence, Shipped.FourChannels).Refusals.Select(problem => problem.ToString()));
+        Assert.Empty(Planner.Plan(Shipped.Sequence, Shipped.FourChannels)
+            .Refusals.Select(problem => problem.ToString()));
     }
 
     [Fact]
@@ -100,7 +101,8 @@ public sealed class PlannerTests
     [Fact]
     public void The_junction_warms_with_current_and_only_where_an_impedance_is_stated()
     {
-        double cool = Shipped.Point(Shipped.With(point => point with { LoadCurrent = 20 }), Shipped.Bench).JunctionRise!.Value;
+        double cool = Shipped.Point(Shipped.With(point => point with { LoadCurrent = 20 }), Shipped.Bench)
+            .JunctionRise!.Value;
         double warm = Shipped.Point(Shipped.Rated, Shipped.Bench).JunctionRise!.Value;
         Assert.InRange(cool, 0.1, warm);
         Assert.InRange(warm, 1, 15);

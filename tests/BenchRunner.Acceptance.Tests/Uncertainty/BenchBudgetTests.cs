@@ -45,7 +45,8 @@ public sealed class BenchBudgetTests
 
     [Theory]
     [MemberData(nameof(Entries))]
-    public void A_larger_stated_uncertainty_gives_a_larger_one_of_the_value(string quantity, Channel channel, string error)
+    public void A_larger_stated_uncertainty_gives_a_larger_one_of_the_value(
+        string quantity, Channel channel, string error)
     {
         BenchBudget stated = Budget(Only(channel));
         BenchBudget wider = Budget(Only(channel, setup => error switch
@@ -73,7 +74,8 @@ public sealed class BenchBudgetTests
     [Fact]
     public void A_turn_off_energy_moves_by_bus_and_current_for_each_second_of_skew()
     {
-        // A current late by δ adds V I δ to an edge without recovery: 600 V · 40 A · 1 s, less the ends of the interval.
+        // A current late by δ adds V I δ to an edge without recovery: 600 V · 40 A · 1 s, less the ends of the
+        // interval.
         double sensitivity = Of(_shipped, "eoff").Entries.Single(entry => entry.Source == "id_low skew").Sensitivity;
         Assert.InRange(Math.Abs(sensitivity), 0.7 * 24000, 1.2 * 24000);
     }

@@ -41,9 +41,11 @@ public sealed class CombinedUncertaintyTests
                 new UncertaintyEntry("standard", Input("U_lS_nm") / Input("k_lS"), 1, Input("nu_lS")),
                 new UncertaintyEntry("difference", difference.Standard, 1, difference.DegreesOfFreedom),
                 new UncertaintyEntry(
-                    "expansion", Input("dalpha_halfwidth") / Math.Sqrt(3), -length * Input("theta_K"), Input("nu_dalpha")),
+                    "expansion", Input("dalpha_halfwidth") / Math.Sqrt(3), -length * Input("theta_K"),
+                        Input("nu_dalpha")),
                 new UncertaintyEntry(
-                    "temperature", Input("dtheta_halfwidth_K") / Math.Sqrt(3), -length * Input("alphaS_per_K"), Input("nu_dtheta")),
+                    "temperature", Input("dtheta_halfwidth_K") / Math.Sqrt(3), -length * Input("alphaS_per_K"),
+                        Input("nu_dtheta")),
             ],
             coverage);
     }
@@ -90,14 +92,16 @@ public sealed class CombinedUncertaintyTests
     [Fact]
     public void Coverage_factors_are_the_quantiles_of_the_normal_and_of_students_t()
     {
-        // Quantiles: tests/reference/statistics/quantiles-t-normal.csv. Broken degrees of freedom are cut (JCGM 100, G.4.1).
+        // Quantiles: tests/reference/statistics/quantiles-t-normal.csv. Broken degrees of freedom are cut (JCGM 100,
+        // G.4.1).
         int held = 0;
         foreach (string line in File.ReadLines(
             Repository.PathOf("tests", "reference", "statistics", "quantiles-t-normal.csv")).Skip(1))
         {
             string[] cells = line.Split(',');
             double probability = double.Parse(cells[1], CultureInfo.InvariantCulture);
-            double freedom = cells[0] == "normal" ? double.PositiveInfinity : double.Parse(cells[2], CultureInfo.InvariantCulture);
+            double freedom = cells[0] == "normal" ? double.PositiveInfinity
+                : double.Parse(cells[2], CultureInfo.InvariantCulture);
             double quantile = double.Parse(cells[5], CultureInfo.InvariantCulture);
             if (freedom == Math.Floor(freedom) && probability > 0.5)
             {

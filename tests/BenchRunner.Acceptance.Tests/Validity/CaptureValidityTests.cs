@@ -63,7 +63,7 @@ public sealed class CaptureValidityTests
             Analysis = CaptureAnalysis.Of(cut, Planner.AnalysisSettingsOf(healthy.Bench, healthy.Sequence)),
         });
         Assert.Contains(verdict.Findings, finding => finding is
-            { Criterion: Criteria.Complete, Channel: Channel.VdsHigh, Seen: 5000 });
+        { Criterion: Criteria.Complete, Channel: Channel.VdsHigh, Seen: 5000 });
         Assert.False(verdict.IsValid);
         Assert.Null(verdict.Stop);
         Assert.Contains(Criteria.CurrentWithin, verdict.NotEvaluated);
@@ -75,7 +75,8 @@ public sealed class CaptureValidityTests
     [InlineData(2, FindingClass.Stop)]
     public void A_count_that_stands_still_is_stale_and_the_third_in_a_row_stops(int before, FindingClass does) =>
         Only(
-            CaptureValidity.Judge(Judged.Context() with { CountAfter = 7, StaleBefore = before }), Criteria.Fresh, does);
+            CaptureValidity.Judge(Judged.Context() with { CountAfter = 7, StaleBefore = before }), Criteria.Fresh,
+                does);
 
     [Fact]
     public void The_codes_of_the_last_capture_are_stale_and_another_noise_is_not()
@@ -139,7 +140,8 @@ public sealed class CaptureValidityTests
 
     [Fact]
     public void A_current_before_the_train_is_off_the_baseline() =>
-        Only(CaptureValidity.Judge(Judged.Context() with { ZeroCurrent = -0.6 }), Criteria.Baseline, FindingClass.Retry);
+        Only(CaptureValidity.Judge(Judged.Context() with { ZeroCurrent = -0.6 }), Criteria.Baseline,
+            FindingClass.Retry);
 
     [Theory]
     [InlineData(1.05)]
@@ -148,9 +150,10 @@ public sealed class CaptureValidityTests
     {
         double width = new SyntheticTrain().First;
         Verdict verdict = CaptureValidity.Judge(Judged.Context(new SyntheticTrain { First = width * factor })
-            with { Set = new TrainSet(width * factor, 6e-6, 3e-6, 18, -4) });
+            with
+        { Set = new TrainSet(width * factor, 6e-6, 3e-6, 18, -4) });
         Only(verdict, Criteria.CurrentWithin, FindingClass.Retry);
-        
+
         // In proportion to the width set, of which some ten ns pass before the current rises.
         Assert.Equal(width, verdict.CorrectedFirstPulse!.Value, 0.01 * width);
     }
@@ -161,7 +164,8 @@ public sealed class CaptureValidityTests
         Verdict verdict = Judged.Of(new SyntheticTrain { CurrentGain = 0.5 });
         Assert.Equal(
             [Criteria.BusAgrees, Criteria.CurrentWithin],
-            verdict.Findings.Where(finding => finding.Class == FindingClass.Stop).Select(finding => finding.Criterion).Order());
+            verdict.Findings.Where(finding => finding.Class == FindingClass.Stop).Select(finding => finding.Criterion)
+                .Order());
         Assert.Null(verdict.CorrectedFirstPulse);
     }
 
@@ -180,9 +184,11 @@ public sealed class CaptureValidityTests
     public void A_bus_off_its_target_waits_and_corrects_no_width()
     {
         // 585 V is 2.5 % low, and the current with it; the voltmeter sees the same bus.
-        Verdict verdict = CaptureValidity.Judge(Judged.Context(new SyntheticTrain { Bus = 585 }) with { Voltmeter = 585 });
+        Verdict verdict = CaptureValidity.Judge(
+            Judged.Context(new SyntheticTrain { Bus = 585 }) with { Voltmeter = 585 });
         Assert.Equal(
-            [Criteria.BusWithin, Criteria.CurrentWithin], verdict.Findings.Select(finding => finding.Criterion).Order());
+            [Criteria.BusWithin, Criteria.CurrentWithin],
+                verdict.Findings.Select(finding => finding.Criterion).Order());
         Assert.All(verdict.Findings, finding => Assert.Equal(FindingClass.Retry, finding.Class));
         Assert.Null(verdict.CorrectedFirstPulse);
     }
@@ -252,7 +258,8 @@ public sealed class CaptureValidityTests
         Assert.NotEmpty(verdict.Findings);
         Assert.All(verdict.Findings, finding => Assert.Equal(Criteria.NoiseBelow, finding.Criterion));
         Assert.Contains(
-            Judged.Of(new SyntheticTrain { Noise = 0.013 }).Findings, finding => finding.Criterion == Criteria.NoiseBelow);
+            Judged.Of(new SyntheticTrain { Noise = 0.013 }).Findings, finding =>
+                finding.Criterion == Criteria.NoiseBelow);
     }
 
     [Fact]
@@ -277,7 +284,8 @@ public sealed class CaptureValidityTests
     [InlineData(17.2, -4.0, FindingClass.Retry)]
     [InlineData(18.0, -3.3, FindingClass.Stop)]
     [InlineData(18.0, -4.7, FindingClass.Retry)]
-    public void A_gate_level_off_what_was_set_is_found_and_a_high_off_level_stops(double on, double off, FindingClass does) =>
+    public void A_gate_level_off_what_was_set_is_found_and_a_high_off_level_stops(
+        double on, double off, FindingClass does) =>
         Only(Judged.Of(new SyntheticTrain { GateOn = on, GateOff = off }), Criteria.GateLevels, does);
 
     [Fact]

@@ -11,7 +11,8 @@ namespace BenchRunner.Acceptance.Tests.Validity;
 /// <remarks>Source of waveforms, thresholds and expected findings: tests/reference/waveforms.</remarks>
 public sealed class WaveformFindingsTests
 {
-    private static readonly string[] _sound = ["high-side-off", "desaturated", "two-pulses", "settled", "baseline", "not-clipped"];
+    private static readonly string[] _sound =
+        ["high-side-off", "desaturated", "two-pulses", "settled", "baseline", "not-clipped"];
 
     private static Waveform Read(string name)
     {
@@ -103,7 +104,8 @@ public sealed class WaveformFindingsTests
     {
         Waveform sound = Read("hv650soft");
         double at = sound.TimeAt(sound.Count / 2);
-        Waveform clipped = With(sound, Channel.VdsHigh, (t, value) => Math.Abs(t - at) < 2.5e-9 ? double.PositiveInfinity : value);
+        Waveform clipped = With(sound, Channel.VdsHigh, (t, value) =>
+            Math.Abs(t - at) < 2.5e-9 ? double.PositiveInfinity : value);
         Finding found = Assert.Single(Judge(clipped, 3.6).Findings, finding => finding.Criterion == "not-clipped");
         Assert.Equal(Channel.VdsHigh, found.Channel);
         Assert.InRange(found.Seen!.Value, 4, 5);
