@@ -2,8 +2,8 @@ namespace BenchRunner.Signals.Corrections;
 
 /// <summary>Moves a record in time by any part of a sample: six-point interpolation (Lagrange).</summary>
 /// <remarks>
-/// Exact for polynomials up to the fifth degree; at a fifteenth of the sampling rate (70 MHz at 1 GS/s) the largest error
-/// is 4e-5 of the amplitude. Near the ends the six points lie to one side.
+/// Exact for polynomials up to the fifth degree; at a fourteenth of the sampling rate (70 MHz at 1 GS/s) the largest
+/// error is 4e-5 of the amplitude. Near the ends the six points lie to one side.
 /// </remarks>
 internal static class SkewCorrection
 {

@@ -34,7 +34,7 @@ internal static class Csv
         return Trim(field);
     }
 
-    /// <summary>Reads a number; <c>inf</c>, <c>infinity</c> and <c>nan</c> in any case are numbers here (clipped).</summary>
+    /// <summary>Reads a number; <c>inf</c>, <c>infinity</c> and <c>nan</c> in any case are numbers here.</summary>
     /// <param name="text">The field.</param>
     /// <param name="decimalComma">Whether a comma may be the decimal sign, beside the point.</param>
     /// <param name="value">Receives the number, correctly rounded.</param>
@@ -81,7 +81,8 @@ internal static class Csv
     }
 
     /// <summary>Text as it may be shown: short, on one line, without control characters.</summary>
-    public static string Show(ReadOnlySpan<byte> text) => Show(Encoding.UTF8.GetString(text[..Math.Min(text.Length, 256)]));
+    public static string Show(ReadOnlySpan<byte> text) =>
+        Show(Encoding.UTF8.GetString(text[..Math.Min(text.Length, 256)]));
 
     /// <summary>Text as it may be shown: short, on one line, without control characters.</summary>
     public static string Show(string text)

@@ -52,7 +52,8 @@ internal readonly record struct TimeBase(double Origin, double Interval)
     /// 4.0000000000000007e-10, which the subtraction of two rounded times made.</summary>
     private static double Rounded(double interval, ReadOnlySpan<double> times)
     {
-        double rounded = double.Parse(interval.ToString("E11", CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+        string digits = interval.ToString("E11", CultureInfo.InvariantCulture);
+        double rounded = double.Parse(digits, CultureInfo.InvariantCulture);
         double largest = Math.Max(Math.Abs(times[0]), Math.Abs(times[^1]));
         return Math.Abs(rounded - interval) * (times.Length - 1) <= 4 * Ulp(largest)
             ? rounded

@@ -4,11 +4,12 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Files;
 
-/// <summary>Waveforms as text tables: a header line, times in s in a first column <c>t</c>, then channels in V and A.</summary>
+/// <summary>Waveforms as text tables: a header line, times in s in a first column <c>t</c>, then channels in V and A.
+/// </summary>
 /// <remarks>
 /// Plain or packed by gzip (told by its first bytes, not by its name). Fields are parted by commas, or by semicolons or
-/// tabs, and with these the decimal sign may be a comma. Lines before the header are passed over, so is one line of plain
-/// units behind it. <c>inf</c> and <c>nan</c> are clipped samples. Foreign tables are read by
+/// tabs, and with these the decimal sign may be a comma. Lines before the header are passed over, so is one line of
+/// plain units behind it. <c>inf</c> and <c>nan</c> are clipped samples. Foreign tables are read by
 /// <see cref="WaveformFileOptions"/>.
 /// </remarks>
 public static class WaveformFile
@@ -85,8 +86,8 @@ public static class WaveformFile
     {
         if (options.Interval is { } interval && !(double.IsFinite(interval) && interval > 0))
         {
-            problems.Add(new WaveformProblem(
-                "--interval", 0, 0, $"{interval.ToString(CultureInfo.InvariantCulture)} s", "a time above 0", "correct it"));
+            string found = $"{interval.ToString(CultureInfo.InvariantCulture)} s";
+            problems.Add(new WaveformProblem("--interval", 0, 0, found, "a time above 0", "correct it"));
             return new WaveformRead(null, problems);
         }
 
@@ -146,7 +147,7 @@ public static class WaveformFile
         catch (Exception e) when (e is IOException or UnauthorizedAccessException or ArgumentException
             or NotSupportedException)
         {
-            problems.Add(new WaveformProblem(path, 0, 0, e.Message, "a waveform file that can be read", "check the path"));
+            problems.Add(new WaveformProblem(path, 0, 0, e.Message, "a file that can be read", "check the path"));
             return null;
         }
     }
@@ -169,7 +170,8 @@ public static class WaveformFile
         }
         catch (InvalidDataException e) when (packed)
         {
-            problems.Add(new WaveformProblem(name, 0, 0, $"damaged gzip: {e.Message}", "a whole file", "copy it again"));
+            string found = $"damaged gzip: {e.Message}";
+            problems.Add(new WaveformProblem(name, 0, 0, found, "a whole file", "copy it again"));
             return null;
         }
     }

@@ -1,6 +1,6 @@
 namespace BenchRunner.Signals.Files;
 
-/// <summary>How a waveform file is to be read where it is not in the house's own form; everything has a default.</summary>
+/// <summary>How a waveform file is read where it is not in the house's own form; everything has a default.</summary>
 public sealed record WaveformFileOptions
 {
     /// <summary>The house's own form, unlimited but by the bounds below.</summary>
@@ -15,6 +15,6 @@ public sealed record WaveformFileOptions
     /// <summary>The most rows that are read.</summary>
     public int MostRows { get; init; } = 20_000_000;
 
-    /// <summary>The most bytes that are read, after unpacking: a packed file of a few bytes can hold any number.</summary>
+    /// <summary>The most bytes that are read, unpacked: a packed file of a few bytes can hold any number.</summary>
     public long MostBytes { get; init; } = 4L << 30;
 }

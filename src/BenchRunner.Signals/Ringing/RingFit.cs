@@ -4,7 +4,7 @@ namespace BenchRunner.Signals.Ringing;
 
 /// <summary>Damped oscillations fitted to the ringing after an edge, <c>ring/fit</c>.</summary>
 /// <remarks>
-/// <para>y(t) = c + d t + Σ A e^(−σ t) cos(2π f t + φ), one to three modes, t from the first sample. The order is the one
+/// <para>y(t) = c + d t + Σ A e^(−σ t) cos(2π f t + φ), one to three modes, t from the first sample. The order is that
 /// of the shortest description, N ln(rms) + (2 + 4 modes)/2 · ln N (minimum description length, Rissanen 1978, from
 /// memory). A mode closer to a stronger one than 1/T (T the window), below three times its own standard uncertainty, or
 /// not decaying is not believed: the order is lowered by one.</para>
@@ -25,6 +25,9 @@ public static class RingFit
 
     /// <summary>Samples that differ by less than this part of their size are constant within rounding.</summary>
     private const double Rounding = 1e-13;
+
+    /// <summary>Tolerance while the order is sought: a rough fit tells orders apart as well.</summary>
+    private const double RoughTolerance = 1e-5;
 
     private const string NoRinging = "no ringing found";
 
@@ -107,7 +110,7 @@ public static class RingFit
         RingFitResult none = RingFitResult.None(NoRinging);
         for (; order > 0; order--)
         {
-            if (fits[order] is not { } fit)
+            if (fits[order] is not { } fit || !fit.Refine(y))
             {
                 continue;
             }
@@ -152,7 +155,7 @@ public static class RingFit
             }
 
             var fit = new RingFitSolver(modes);
-            if (fit.Fit(y, decay, turn, target))
+            if (fit.Fit(y, decay, turn, target, RoughTolerance))
             {
                 (fits[modes], best) = (fit, modes);
                 shortest = Description(y.Length, Math.Sqrt(fit.Squares / y.Length), rms, modes);
@@ -195,7 +198,7 @@ public static class RingFit
         return true;
     }
 
-    /// <summary>Takes the straight line of least squares out; returns its value at the first sample and slope a sample.</summary>
+    /// <summary>Takes the line of least squares out; returns its value at sample 0 and its slope.</summary>
     private static (double Offset, double Slope) RemoveLine(Span<double> y)
     {
         double centre = (y.Length - 1) / 2.0, mean = 0, moment = 0;

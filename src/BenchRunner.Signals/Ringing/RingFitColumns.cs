@@ -14,7 +14,7 @@ internal static class RingFitColumns
     /// <summary>Columns of three modes, filled up to whole vectors.</summary>
     public const int Most = 16;
 
-    /// <summary>Samples between two exact values of the damped rotation, which a recurrence carries on in between.</summary>
+    /// <summary>Samples between two exact values of the damped rotation; a recurrence fills the rest.</summary>
     private const int Block = 64;
 
     /// <summary>Linear unknowns c, d and two a mode.</summary>

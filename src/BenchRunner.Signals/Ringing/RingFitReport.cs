@@ -57,7 +57,7 @@ internal static class RingFitReport
             : RingFitResult.None("no ringing found: what oscillates dies within a period");
     }
 
-    /// <summary>1 + 2 Σ ρ over the lags before the first at which the residuals' autocorrelation is not positive.</summary>
+    /// <summary>1 + 2 Σ ρ over the lags before the residuals' autocorrelation first is not positive.</summary>
     private static double Correlation(ReadOnlySpan<double> residual, double squares)
     {
         double factor = 1;

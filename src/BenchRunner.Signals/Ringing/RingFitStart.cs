@@ -7,8 +7,8 @@ namespace BenchRunner.Signals.Ringing;
 /// <summary>Start values of a ring fit by a subspace method (ESPRIT): frequencies and decays, no amplitudes.</summary>
 /// <remarks>
 /// Rows x[n + i D] of a decaying oscillation are combinations of z^(i D), whatever n: the leading eigenvectors of
-/// their correlation span that space, and shifting the rows by one turns it by the poles z^D. A constant and a slope are
-/// taken out of each row along n, which leaves the dependence on i, and so the poles, as they are. Source: Roy and
+/// their correlation span that space, and shifting the rows by one turns it by the poles z^D. A constant and a slope
+/// are taken out of each row along n, which leaves the dependence on i, and so the poles, as they are. Source: Roy and
 /// Kailath, ESPRIT, 1989 (from memory).
 /// </remarks>
 internal ref struct RingFitStart
@@ -31,13 +31,13 @@ internal ref struct RingFitStart
     public RingFitStart(ReadOnlySpan<double> x, Span<double> vectors)
     {
         int most = Math.Min(MostRows, x.Length / 2);
-        _stride = Stride(x, Math.Max(1, x.Length / 2 / (most - 1)));
+        _stride = RingFitCorrelation.Stride(x, Math.Max(1, x.Length / 2 / (most - 1)));
         _rows = most;
         _vectors = vectors[..(_rows * Vectors)];
 
         Span<double> correlation = stackalloc double[MostRows * MostRows];
         correlation = correlation[..(_rows * _rows)];
-        Correlate(x, _stride, _rows, correlation);
+        RingFitCorrelation.Form(x, _stride, _rows, correlation);
         Iterate(correlation);
     }
 
@@ -61,7 +61,7 @@ internal ref struct RingFitStart
             || (Poles((2 * modes) - 1, decay, turn, out bool decays) == modes - 1 && decays);
     }
 
-    /// <summary>Writes the oscillating poles, and behind them the slowest bare decay; returns how many oscillate.</summary>
+    /// <summary>Writes the oscillating poles, behind them the slowest bare decay; returns how many oscillate.</summary>
     private readonly int Poles(int poles, Span<double> decay, Span<double> turn, out bool decays)
     {
         const double OnRealAxis = 1e-7;
@@ -101,111 +101,6 @@ internal ref struct RingFitStart
         }
 
         return found;
-    }
-
-    /// <summary>
-    /// Distance D of the rows: an eighth of the dominant period, from the first zero of the autocorrelation (noise counts
-    /// at lag 0 alone). The lags grow by at most half, so that the negative half wave cannot be stepped over.
-    /// </summary>
-    private static int Stride(ReadOnlySpan<double> x, int most)
-    {
-        for (int lag = 1; lag / 2 < most; lag += Math.Max(1, lag / 2))
-        {
-            double sum = 0;
-            for (int n = 0; n + lag < x.Length; n++)
-            {
-                sum += x[n] * x[n + lag];
-            }
-
-            if (sum <= 0)
-            {
-                return Math.Clamp(lag / 2, 1, most);
-            }
-        }
-
-        return most;
-    }
-
-    private static void Correlate(ReadOnlySpan<double> x, int stride, int rows, Span<double> r)
-    {
-        int length = x.Length - ((rows - 1) * stride);
-        for (int j = 0; j < rows; j++)
-        {
-            ReadOnlySpan<double> late = x.Slice(j * stride, length);
-            ReadOnlySpan<double> early = x[..length];
-            // Four sums side by side: one alone waits for its own last addition.
-            double s0 = 0, s1 = 0, s2 = 0, s3 = 0;
-            int n = 0;
-            for (; n + 3 < early.Length && n + 3 < late.Length; n += 4)
-            {
-                s0 += early[n] * late[n];
-                s1 += early[n + 1] * late[n + 1];
-                s2 += early[n + 2] * late[n + 2];
-                s3 += early[n + 3] * late[n + 3];
-            }
-
-            for (; n < length; n++)
-            {
-                s0 += early[n] * late[n];
-            }
-
-            r[j] = s0 + s1 + s2 + s3;
-        }
-
-        for (int i = 1; i < rows; i++)
-        {
-            for (int j = i; j < rows; j++)
-            {
-                double sum = r[((i - 1) * rows) + j - 1];
-                int a = (i - 1) * stride, b = (j - 1) * stride;
-                for (int d = 0; d < stride; d++)
-                {
-                    sum += (x[a + length + d] * x[b + length + d]) - (x[a + d] * x[b + d]);
-                }
-
-                r[(i * rows) + j] = sum;
-            }
-        }
-
-        RemoveTrend(x, stride, rows, r);
-    }
-
-    /// <summary>Takes a constant and a slope along n out of every row, in the correlation itself.</summary>
-    private static void RemoveTrend(ReadOnlySpan<double> x, int stride, int rows, Span<double> r)
-    {
-        int length = x.Length - ((rows - 1) * stride);
-        double centre = (length - 1) / 2.0;
-        double slopes = (length * ((double)length * length - 1)) / 12;
-        Span<double> mean = stackalloc double[rows];
-        Span<double> slope = stackalloc double[rows];
-        double m = 0, s = 0;
-        for (int n = 0; n < length; n++)
-        {
-            m += x[n];
-            s += (n - centre) * x[n];
-        }
-
-        for (int i = 0; i < rows; i++)
-        {
-            (mean[i], slope[i]) = (m, s);
-            for (int d = 0; d < stride && i + 1 < rows; d++)
-            {
-                int at = (i * stride) + d;
-                // The window moves on by one sample: its first leaves, one joins, all weights fall by 1.
-                s += (centre * x[at]) + ((length - 1 - centre) * x[at + length]) - (m - x[at]);
-                m += x[at + length] - x[at];
-            }
-        }
-
-        for (int i = 0; i < rows; i++)
-        {
-            for (int j = i; j < rows; j++)
-            {
-                double value = r[(i * rows) + j] - (mean[i] * mean[j] / length) - (slope[i] * slope[j] / slopes);
-                r[(i * rows) + j] = value;
-                r[(j * rows) + i] = value;
-            }
-        }
     }
 
     /// <summary>Orthogonal iteration towards the dominant eigenvectors, all vectors side by side.</summary>
@@ -279,7 +174,7 @@ internal ref struct RingFitStart
     }
 
     /// <summary>The matrix Φ of U₁ Φ = U₂ in the least-squares sense: its eigenvalues are the poles.</summary>
-    /// <remarks>U is orthonormal, so U₁ᵀU₁ = I − u uᵀ with u its last row, and its inverse is I + u uᵀ/(1 − uᵀu).</remarks>
+    /// <remarks>U is orthonormal: U₁ᵀU₁ = I − u uᵀ with u its last row, its inverse I + u uᵀ/(1 − uᵀu).</remarks>
     private readonly bool Shift(int poles, Span<double> shift)
     {
         ReadOnlySpan<double> last = _vectors.Slice((_rows - 1) * Vectors, poles);

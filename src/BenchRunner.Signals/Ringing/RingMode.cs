@@ -1,6 +1,6 @@
 namespace BenchRunner.Signals.Ringing;
 
-/// <summary>One damped oscillation of a ring: A e^(−σ t) cos(2π f t + φ), with t from the first sample of the window.</summary>
+/// <summary>One damped oscillation of a ring: A e^(−σ t) cos(2π f t + φ), t from the window's start.</summary>
 /// <param name="Frequency">Damped frequency f = ω/2π, Hz.</param>
 /// <param name="Damping">Damping ratio ζ = σ/√(σ² + ω²), 1, in (0, 1).</param>
 /// <param name="Amplitude">Amplitude A at the first sample of the window, in the samples' unit.</param>
@@ -17,7 +17,7 @@ public readonly record struct RingMode(
     double DampingUncertainty,
     double AmplitudeUncertainty)
 {
-    /// <summary>Damping ratio from which on an oscillation no longer counts as ringing (it dies within one period).</summary>
+    /// <summary>Damping ratio from which on an oscillation is no ringing: it dies within a period.</summary>
     public const double RingingBelow = 0.3;
 
     /// <summary>Decay rate σ = 2π f ζ/√(1 − ζ²), 1/s.</summary>

@@ -87,7 +87,7 @@ public sealed class CorrectionTests
             double[] back = Moved(Moved(signal, skew), -skew);
             for (int n = 15; n < 185; n++)
             {
-                // Each move errs by less than 1e-4 of the amplitude: 5/16 sin^6(pi f) at half a sample, the worst place.
+                // Each move errs by less than 1e-4 of the amplitude: 5/16 sin^6(pi f) at half a sample.
                 Assert.Equal(signal[n], back[n], 2e-4);
             }
         });
@@ -116,7 +116,10 @@ public sealed class CorrectionTests
 
     [Fact]
     public void A_clipped_sample_stays_local_whatever_is_corrected() =>
-        Gen.Select(Gen.Double[-3, 3], Gen.Int[50, 149], Gen.OneOf(Gen.Const(double.NaN), Gen.Const(double.PositiveInfinity)))
+        Gen.Select(
+            Gen.Double[-3, 3],
+            Gen.Int[50, 149],
+            Gen.OneOf(Gen.Const(double.NaN), Gen.Const(double.PositiveInfinity)))
             .Sample((skew, at, bad) =>
             {
                 double[] samples = Make(200, n => Math.Sin(0.05 * n));

@@ -3,7 +3,7 @@ using BenchRunner.Signals.Ringing;
 
 namespace BenchRunner.Signals.Tests.Ringing;
 
-/// <summary>The ring fit against tests/reference/closed-form.json: values and Cramér-Rao bounds in 40-digit arithmetic.</summary>
+/// <summary>The ring fit against tests/reference/closed-form.json: values and Cramér-Rao bounds in 40 digits.</summary>
 public sealed class RingFitReferenceTests
 {
     private const int Draws = 200;
