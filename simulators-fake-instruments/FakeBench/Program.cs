@@ -38,7 +38,11 @@ public static class Program
         {
             switch (arguments)
             {
-                case ["serve", .. var options] when !options.Contains("--help"):
+                case []:
+                case var asked when asked.Contains("--help"):
+                    Console.Out.WriteLine(Help);
+                    return 0;
+                case ["serve", .. var options]:
                     await Serve(Arguments.Parse(options));
                     return 0;
                 case ["faults"]:
@@ -46,9 +50,6 @@ public static class Program
                     return 0;
                 case ["devices"]:
                     ListDevices();
-                    return 0;
-                case [] or ["--help"] or [_, "--help"]:
-                    Console.Out.WriteLine(Help);
                     return 0;
                 default:
                     throw new FormatException($"'{arguments[0]}': expected serve, faults or devices; see --help");

@@ -39,7 +39,7 @@ public static class FaultCatalogue
         new(ClippedRange, Fire(3), "the scope's amplifiers are at twice their gain in one train: codes stick at the ends"),
         new(LinkDrops, Block(9), "the scope's connection is reset in the middle of a block"),
         new(LateReply, Fire(3), "the scope's next reply comes 4 s late"),
-        new(SilentSupply, Volts(100), "the supply answers nothing any more; its output stays as it is"),
+        new(SilentSupply, Volts(100), "the supply answers nothing any more, though it obeys"),
         new(FireUnanswered, Fire(3), "the pulser fires, then answers nothing any more"),
         new(VoltmeterOpen, Moment.Start, "a lead of the voltmeter is off: it reads 0 V"),
         new(ErrorQueueFull, Moment.Start, "the supply's error queue is full and ends in -350"),
