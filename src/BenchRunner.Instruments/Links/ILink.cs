@@ -11,9 +11,11 @@ public interface ILink : IDisposable
     /// <exception cref="LinkException">The link is lost.</exception>
     bool HasInput { get; }
 
-    /// <summary>Hands the bytes to the system in one piece before it returns, within the link's bound; does not wait for the instrument.</summary>
+    /// <summary>Hands the bytes to the system in one piece before it returns, within the link's bound; does not wait
+    /// for the instrument.</summary>
     /// <remarks>Synchronous, so that a permit can hold its lock round it.</remarks>
-    /// <exception cref="LinkException">The link is lost or did not take the bytes in time: how many went out is unknown.</exception>
+    /// <exception cref="LinkException">The link is lost or did not take the bytes in time: how many went out is
+    /// unknown.</exception>
     void Write(ReadOnlySpan<byte> message);
 
     /// <summary>Reads what comes next, at least one byte.</summary>

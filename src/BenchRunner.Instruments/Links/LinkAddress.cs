@@ -13,7 +13,8 @@ public sealed record LinkAddress(LinkKind Kind, string Host, int Number)
 
     private const string Forms = "write 'tcp HOST PORT', 'tcp HOST:PORT' or 'serial PATH [BAUD]'";
 
-    /// <summary>Reads <c>tcp 127.0.0.1 5025</c>, <c>tcp 127.0.0.1:5025</c>, <c>tcp [::1]:5025</c>, <c>serial /dev/ttyUSB0 [9600]</c>.</summary>
+    /// <summary>Reads <c>tcp 127.0.0.1 5025</c>, <c>tcp 127.0.0.1:5025</c>, <c>tcp [::1]:5025</c>, <c>serial
+    /// /dev/ttyUSB0 [9600]</c>.</summary>
     /// <exception cref="FormatException">None of these; the message says what was found and what to write.</exception>
     public static LinkAddress Parse(string text) => TryParse(text, out var address, out var problem)
         ? address

@@ -5,7 +5,8 @@ namespace BenchRunner.Instruments.Links;
 /// <summary>A link over a serial line: 8 data bits, no parity, one stop bit, no flow control.</summary>
 /// <remarks>
 /// The modem lines are never touched: a pseudo terminal has none, and raising DTR resets some instruments. The port of
-/// an unplugged adapter stays "open": its pending read ends with an exception that says closed, which is link lost here.
+/// an unplugged adapter stays "open": its pending read ends with an exception that says closed, which is link lost
+/// here.
 /// </remarks>
 internal sealed class SerialLink : ILink
 {

@@ -50,7 +50,8 @@ internal sealed class TcpLink : ILink
         {
             await client.ConnectAsync(address.Host, address.Number, either.Token);
 
-            // Without it a command followed by a query waits for the other side's delayed acknowledgement, 40 ms and more.
+            // Without it a command followed by a query waits for the other side's delayed acknowledgement, 40 ms and
+            // more.
             client.NoDelay = true;
             client.SendTimeout = (int)writeWithin.TotalMilliseconds;
             client.Client.SetSocketOption(SocketOptionLevel.Socket, SocketOptionName.KeepAlive, true);
@@ -62,7 +63,8 @@ internal sealed class TcpLink : ILink
         catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
         {
             client.Dispose();
-            throw new LinkException(name, $"no answer within {connectWithin.TotalSeconds:0.###} s; check power and address", e);
+            throw new LinkException(
+                name, $"no answer within {connectWithin.TotalSeconds:0.###} s; check power and address", e);
         }
         catch (SocketException e)
         {

@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Head of definite length arbitrary block response data (IEEE 488.2, 8.7.9): <c>#</c>, a digit n, n digits of byte count.</summary>
+/// <summary>Head of definite length arbitrary block response data (IEEE 488.2, 8.7.9): <c>#</c>, a digit n, n digits
+/// of byte count.</summary>
 /// <param name="Start">Index of the block's first byte.</param>
 /// <param name="Length">Bytes in the block.</param>
 public readonly record struct BlockHeader(int Start, int Length)
@@ -19,7 +20,8 @@ public readonly record struct BlockHeader(int Start, int Length)
     /// <param name="bound">The longest block that is due, bytes.</param>
     /// <param name="header">The head, where whole.</param>
     /// <returns>Whether the head is whole; false: more must come.</returns>
-    /// <exception cref="ReplyException">No head, a block of unknown length (which a stream cannot end), or one longer than
+    /// <exception cref="ReplyException">No head, a block of unknown length (which a stream cannot end), or one longer
+    /// than
     /// the bound: refused on the digits alone, before anything is allocated.</exception>
     public static bool TryRead(ReadOnlySpan<byte> bytes, int bound, out BlockHeader header)
     {

@@ -3,7 +3,8 @@ using System.Buffers;
 namespace BenchRunner.Instruments.Replies;
 
 /// <summary>
-/// Collects a reply of blocks, as its bytes come, in pooled buffers: it says where the next bytes go, so that a receiver
+/// Collects a reply of blocks, as its bytes come, in pooled buffers: it says where the next bytes go, so that a
+/// receiver
 /// writes them straight there. Does no I/O.
 /// </summary>
 /// <remarks>
@@ -52,7 +53,8 @@ public sealed class BlockReader : IDisposable
         (_bound, _due) = (bound, count);
     }
 
-    /// <summary>The bytes of a block, once the reply is whole; valid until the next <see cref="Begin"/> or disposal.</summary>
+    /// <summary>The bytes of a block, once the reply is whole; valid until the next <see cref="Begin"/> or
+    /// disposal.</summary>
     /// <param name="index">Which one, from 0.</param>
     public ReadOnlySpan<byte> Block(int index) => _blocks[index].Rental.AsSpan(0, _blocks[index].Length);
 
@@ -75,7 +77,8 @@ public sealed class BlockReader : IDisposable
         }
     }
 
-    /// <summary>What is missing, for a stream that ended or a deadline that passed before the reply was whole.</summary>
+    /// <summary>What is missing, for a stream that ended or a deadline that passed before the reply was
+    /// whole.</summary>
     public ReplyException Missing()
     {
         var seen = _length < 0 ? _head.AsSpan(0, _headFilled) : _blocks[^1].Rental.AsSpan(0, Math.Min(_filled, 80));

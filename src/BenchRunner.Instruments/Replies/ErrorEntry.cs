@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>One entry of an instrument's error queue, the answer to <c>SYSTem:ERRor?</c> (SCPI-1999 volume 2, 21.8).</summary>
+/// <summary>One entry of an instrument's error queue, the answer to <c>SYSTem:ERRor?</c> (SCPI-1999 volume 2,
+/// 21.8).</summary>
 /// <param name="Number">The number; 0 says that the queue is empty, negative numbers are the standard's.</param>
 /// <param name="Text">What the instrument calls it; null where it gives the number alone.</param>
 /// <param name="Detail">What it adds after the first semicolon; null where nothing.</param>

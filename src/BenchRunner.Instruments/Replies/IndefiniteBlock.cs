@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Indefinite length arbitrary block response data (IEEE 488.2, 8.7.10): <c>#0</c>, bytes, then NL with END.</summary>
+/// <summary>Indefinite length arbitrary block response data (IEEE 488.2, 8.7.10): <c>#0</c>, bytes, then NL with
+/// END.</summary>
 /// <remarks>Only for a link that marks the end of a message. A stream does not: there it is refused by
 /// <see cref="BlockHeader.TryRead"/>, since its last newline cannot be told from data.</remarks>
 public static class IndefiniteBlock

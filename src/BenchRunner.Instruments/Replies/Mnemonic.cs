@@ -1,9 +1,11 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>The two spellings of a SCPI word (SCPI-1999 volume 1, 6.2.1): instruments answer with the short one.</summary>
+/// <summary>The two spellings of a SCPI word (SCPI-1999 volume 1, 6.2.1): instruments answer with the short
+/// one.</summary>
 public static class Mnemonic
 {
-    /// <summary>The short form: the first four letters, three where the fourth is a vowel; a word of four or fewer is its own.</summary>
+    /// <summary>The short form: the first four letters, three where the fourth is a vowel; a word of four or fewer is
+    /// its own.</summary>
     /// <param name="word">The long form, e.g. <c>VOLTage</c>; a number at its end stays.</param>
     public static string ShortForm(string word)
     {
@@ -19,7 +21,8 @@ public static class Mnemonic
         return upper + suffix;
     }
 
-    /// <summary>Whether an answer is this word in its long or its short form, whatever the case. Nothing between is.</summary>
+    /// <summary>Whether an answer is this word in its long or its short form, whatever the case. Nothing between
+    /// is.</summary>
     /// <param name="word">The long form.</param>
     /// <param name="answer">What the instrument answered; no number at the end means 1.</param>
     public static bool Matches(string word, string answer)

@@ -3,10 +3,12 @@ using System.Text;
 
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>What an instrument sent, made fit for a line of a log: one line, no control of the terminal, a bound on its length.</summary>
+/// <summary>What an instrument sent, made fit for a line of a log: one line, no control of the terminal, a bound on
+/// its length.</summary>
 public static class Printable
 {
-    /// <summary>Escapes control characters, line separators, marks of writing direction and lone surrogates as <c>\uXXXX</c>.</summary>
+    /// <summary>Escapes control characters, line separators, marks of writing direction and lone surrogates as
+    /// <c>\uXXXX</c>.</summary>
     /// <param name="text">What was sent.</param>
     /// <param name="limit">Longest text taken, in characters; the rest becomes an ellipsis.</param>
     public static string Text(string text, int limit = 256)

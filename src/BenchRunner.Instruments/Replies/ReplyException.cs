@@ -1,7 +1,8 @@
 namespace BenchRunner.Instruments.Replies;
 
 /// <summary>Bytes that are not the reply that was due.</summary>
-/// <remarks>Not to be confused with <see cref="Links.LinkException"/>, which the session makes of it and which names the link.</remarks>
+/// <remarks>Not to be confused with <see cref="Links.LinkException"/>, which the session makes of it and which names
+/// the link.</remarks>
 /// <param name="fault">What is wrong.</param>
 /// <param name="found">What came; control characters are escaped in the message.</param>
 public sealed class ReplyException(ReplyFault fault, string found)

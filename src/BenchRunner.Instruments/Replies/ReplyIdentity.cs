@@ -2,7 +2,8 @@ using BenchRunner.Instruments.Roles;
 
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>The answer to <c>*IDN?</c> (IEEE 488.2, 10.14): maker, model, serial, firmware; 0 where not known.</summary>
+/// <summary>The answer to <c>*IDN?</c> (IEEE 488.2, 10.14): maker, model, serial, firmware; 0 where not
+/// known.</summary>
 public static class ReplyIdentity
 {
     /// <summary>The longest answer taken, bytes; the standard allows 72 characters.</summary>

@@ -2,7 +2,8 @@ using System.Globalization;
 
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Whole numbers: NR1 and the hexadecimal, octal and binary forms (IEEE 488.2, 8.7.2, 8.7.5 to 8.7.7).</summary>
+/// <summary>Whole numbers: NR1 and the hexadecimal, octal and binary forms (IEEE 488.2, 8.7.2, 8.7.5 to
+/// 8.7.7).</summary>
 public static class ReplyInteger
 {
     // Above 2^53 a double no longer holds every whole number, so one sent with an exponent may not be what was meant.
@@ -10,7 +11,8 @@ public static class ReplyInteger
 
     /// <summary>Reads one whole number.</summary>
     /// <param name="reply">One element of a reply, white space round it allowed.</param>
-    /// <exception cref="ReplyException">Empty, no number, a fraction, more than one, or beyond 64 bits with sign.</exception>
+    /// <exception cref="ReplyException">Empty, no number, a fraction, more than one, or beyond 64 bits with
+    /// sign.</exception>
     /// <remarks>A whole value sent as NR2 or NR3 is taken, since exact.</remarks>
     public static long Parse(ReadOnlySpan<byte> reply)
     {

@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Framing of text replies on a stream, which has no message edges: a reply ends with NL (IEEE 488.2, 8.5).</summary>
+/// <summary>Framing of text replies on a stream, which has no message edges: a reply ends with NL (IEEE 488.2,
+/// 8.5).</summary>
 public static class ReplyLine
 {
     /// <summary>The longest reply taken, bytes: 64 KiB (house rule).</summary>

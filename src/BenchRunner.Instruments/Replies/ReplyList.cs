@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Replies of several values: units joined by semicolons (IEEE 488.2, 8.4.1), elements joined by commas (8.4.2).</summary>
+/// <summary>Replies of several values: units joined by semicolons (IEEE 488.2, 8.4.1), elements joined by commas
+/// (8.4.2).</summary>
 public static class ReplyList
 {
     /// <summary>Splits a reply into its units.</summary>

@@ -2,7 +2,8 @@ using System.Globalization;
 
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>Decimal numeric response data: NR1, NR2, NR3 (IEEE 488.2, 8.7.2 to 8.7.4) and the special values of SCPI-1999.</summary>
+/// <summary>Decimal numeric response data: NR1, NR2, NR3 (IEEE 488.2, 8.7.2 to 8.7.4) and the special values of
+/// SCPI-1999.</summary>
 public static class ReplyNumber
 {
     // SCPI-1999 volume 1, 7.2: 9.91E37 stands for not-a-number, 9.9E37 and -9.9E37 for the infinities. Instruments that

@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Replies;
 
-/// <summary>String response data (IEEE 488.2, 8.7.8): in double quotes, a quote inside doubled. Single quotes are taken too.</summary>
+/// <summary>String response data (IEEE 488.2, 8.7.8): in double quotes, a quote inside doubled. Single quotes are
+/// taken too.</summary>
 public static class ReplyString
 {
     /// <summary>Reads one string.</summary>

@@ -6,7 +6,8 @@ namespace BenchRunner.Instruments.Roles;
 /// <summary>Checks made before anything is written: is the permit live, and does it go that far.</summary>
 internal static class Bounded
 {
-    /// <summary>Refuses a missing or dead permit before anything is asked or set. The guard at the write tests it again.</summary>
+    /// <summary>Refuses a missing or dead permit before anything is asked or set. The guard at the write tests it
+    /// again.</summary>
     public static void Live(Permit permit)
     {
         ArgumentNullException.ThrowIfNull(permit);

@@ -2,7 +2,8 @@ using BenchRunner.Instruments.Permits;
 
 namespace BenchRunner.Instruments.Roles;
 
-/// <summary>The interlock controller: read, never bypassed. Its bleeder relay and watchdog are worked through it.</summary>
+/// <summary>The interlock controller: read, never bypassed. Its bleeder relay and watchdog are worked through
+/// it.</summary>
 public interface IInterlock : ISafeable
 {
     /// <summary>What the instrument said it is.</summary>

@@ -10,8 +10,10 @@ public interface IPulser : ISafeable
 
     /// <summary>Sets gate levels and pulse widths and reads each back; the gates are held at their off level.</summary>
     /// <returns>The settings as read back.</returns>
-    /// <exception cref="PermitException">The permit is dead or a value is beyond its bounds; nothing was set.</exception>
-    /// <exception cref="InstrumentException">A read-back differs from what was set, or the error queue holds something.</exception>
+    /// <exception cref="PermitException">The permit is dead or a value is beyond its bounds; nothing was
+    /// set.</exception>
+    /// <exception cref="InstrumentException">A read-back differs from what was set, or the error queue holds
+    /// something.</exception>
     /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
     Task<TrainSettings> Program(Permit permit, TrainSettings train, CancellationToken cancel);
 
@@ -19,7 +21,8 @@ public interface IPulser : ISafeable
     /// <inheritdoc cref="Program" path="/exception"/>
     Task Arm(Permit permit, CancellationToken cancel);
 
-    /// <summary>Fires one train and checks by the pulser's own count that exactly one was fired. Never repeated by itself.</summary>
+    /// <summary>Fires one train and checks by the pulser's own count that exactly one was fired. Never repeated by
+    /// itself.</summary>
     /// <inheritdoc cref="Program" path="/exception"/>
     Task Fire(Permit permit, CancellationToken cancel);
 

@@ -6,8 +6,10 @@ public interface IScope
     /// <summary>What the instrument said it is.</summary>
     InstrumentIdentity Identity { get; }
 
-    /// <summary>Sets time base, trigger and ranges and asks each back. Settings that stand already are not sent again.</summary>
-    /// <exception cref="InstrumentException">A read-back differs by more than 1 %, or the error queue holds something.</exception>
+    /// <summary>Sets time base, trigger and ranges and asks each back. Settings that stand already are not sent
+    /// again.</summary>
+    /// <exception cref="InstrumentException">A read-back differs by more than 1 %, or the error queue holds
+    /// something.</exception>
     /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
     Task Configure(ScopeSettings settings, CancellationToken cancel);
 

@@ -11,7 +11,8 @@ public interface ISupply : ISafeable
 
     /// <summary>Sets over-voltage protection, current limit and voltage, in this order, and reads each back.</summary>
     /// <exception cref="PermitException">The permit is dead or does not reach that far; nothing was set.</exception>
-    /// <exception cref="InstrumentException">A read-back differs from what was set, or the error queue holds something.</exception>
+    /// <exception cref="InstrumentException">A read-back differs from what was set, or the error queue holds
+    /// something.</exception>
     /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
     Task Program(Permit permit, Volts voltage, Amperes limit, Volts protection, CancellationToken cancel);
 

@@ -7,7 +7,8 @@ using BenchRunner.Instruments.Sessions;
 
 namespace BenchRunner.Instruments.Roles;
 
-/// <summary>What all roles share: operations by the dialect's commands, set and read back, one wording of refusals.</summary>
+/// <summary>What all roles share: operations by the dialect's commands, set and read back, one wording of
+/// refusals.</summary>
 internal sealed class Instrument : IDisposable
 {
     private readonly Dialect _dialect;
@@ -67,7 +68,8 @@ internal sealed class Instrument : IDisposable
         var command = _dialect.Commands[operation];
         if (value is { } number)
         {
-            command = command.Replace("{value}", number.ToString("R", CultureInfo.InvariantCulture), StringComparison.Ordinal);
+            command = command.Replace(
+                "{value}", number.ToString("R", CultureInfo.InvariantCulture), StringComparison.Ordinal);
         }
 
         return channel is { } input
@@ -75,13 +77,15 @@ internal sealed class Instrument : IDisposable
             : command;
     }
 
-    /// <summary>Asks for a number that is a measurement or a setting: an overload or a not-a-number is refused.</summary>
+    /// <summary>Asks for a number that is a measurement or a setting: an overload or a not-a-number is
+    /// refused.</summary>
     public async Task<double> ReadNumber(string operation, CancellationToken cancel, int? channel = null)
     {
         var number = await Session.Ask(Command(operation, channel: channel), ReplyNumber.Parse, cancel);
         return double.IsFinite(number)
             ? number
-            : throw Refusal($"answers {Command(operation, channel: channel)} with {(double.IsNaN(number) ? "no number" : "an overload")}");
+            : throw Refusal($"answers {Command(
+                operation, channel: channel)} with {(double.IsNaN(number) ? "no number" : "an overload")}");
     }
 
     public async Task<bool> ReadBoolean(string operation, CancellationToken cancel) =>
@@ -154,7 +158,8 @@ internal sealed class Instrument : IDisposable
         var (answer, error) = await Session.Probe(Command(characteristic, channel: 1), cancel);
         if (answer is null)
         {
-            throw Refusal($"'{Session.Identity.Text}' is no {Role}: it refuses {Command(characteristic)} with {error.Number}; "
+            throw Refusal(
+                $"'{Session.Identity.Text}' is no {Role}: it refuses {Command(characteristic)} with {error.Number}; "
                 + "check which link belongs to which role, and the dialect");
         }
     }

@@ -26,7 +26,8 @@ public sealed class ScpiInterlock : IInterlock, IDisposable
     public InstrumentIdentity Identity => _instrument.Session.Identity;
 
     /// <summary>Connects; nothing is switched.</summary>
-    /// <exception cref="InstrumentException">Another instrument than the dialect is for, or no interlock controller.</exception>
+    /// <exception cref="InstrumentException">Another instrument than the dialect is for, or no interlock
+    /// controller.</exception>
     /// <exception cref="LinkException">Not reachable, or no SCPI.</exception>
     public static async Task<ScpiInterlock> Connect(InstrumentConnection connection, CancellationToken cancel) =>
         new(await Instrument.Connect("interlock", Operations, "read-state", connection, cancel));

@@ -62,7 +62,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
     }
 
     /// <inheritdoc/>
-    /// <exception cref="InvalidOperationException">Nothing was programmed since the last fault: a caller's mistake.</exception>
+    /// <exception cref="InvalidOperationException">Nothing was programmed since the last fault: a caller's
+    /// mistake.</exception>
     public async Task Arm(Permit permit, CancellationToken cancel)
     {
         Bounded.Live(permit);
@@ -159,7 +160,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
     {
         if (await _instrument.ReadBoolean("read-output", cancel) != on)
         {
-            throw _instrument.Refusal($"the gate output is {(on ? "off" : "on")} though it was switched {(on ? "on" : "off")}");
+            throw _instrument.Refusal(
+                $"the gate output is {(on ? "off" : "on")} though it was switched {(on ? "on" : "off")}");
         }
     }
 
@@ -196,7 +198,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
 
         if (fired != 1)
         {
-            throw new LinkException(_instrument.Session.Link, $"{fired} trains were fired when the reply was lost: {lost.Message}", lost);
+            throw new LinkException(
+                _instrument.Session.Link, $"{fired} trains were fired when the reply was lost: {lost.Message}", lost);
         }
 
         _instrument.Report(InstrumentEventKind.Doubt, $"one train was fired though its reply was lost: {lost.Message}");

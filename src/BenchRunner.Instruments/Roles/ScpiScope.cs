@@ -44,7 +44,8 @@ public sealed class ScpiScope : IScope, IDisposable
     public InstrumentIdentity Identity => _instrument.Session.Identity;
 
     /// <summary>Connects; nothing is set.</summary>
-    /// <exception cref="InstrumentException">Another instrument than the dialect is for, no scope, or a dialect that asks for
+    /// <exception cref="InstrumentException">Another instrument than the dialect is for, no scope, or a dialect that
+    /// asks for
     /// other codes than 16 bit with sign.</exception>
     /// <exception cref="LinkException">Not reachable, or no SCPI.</exception>
     public static async Task<ScpiScope> Connect(InstrumentConnection connection, CancellationToken cancel)
@@ -53,7 +54,8 @@ public sealed class ScpiScope : IScope, IDisposable
         if (!ScopeSetting.Same("INTeger,16", ScopeSetting.Parameter(instrument.Command("set-format"))))
         {
             instrument.Dispose();
-            throw instrument.Refusal($"dialect {connection.Dialect.Name} asks for another format than INTeger,16; only that is read");
+            throw instrument.Refusal(
+                $"dialect {connection.Dialect.Name} asks for another format than INTeger,16; only that is read");
         }
 
         return new ScpiScope(instrument, connection.Options);
@@ -111,7 +113,8 @@ public sealed class ScpiScope : IScope, IDisposable
 
     /// <inheritdoc/>
     /// <exception cref="InvalidOperationException">Not configured: a caller's mistake.</exception>
-    /// <remarks>A trace that was cut, is of another length or scale than asked for, or of another acquisition is left out
+    /// <remarks>A trace that was cut, is of another length or scale than asked for, or of another acquisition is left
+    /// out
     /// and reported, never patched.</remarks>
     /// <exception cref="LinkException">The count could not be read.</exception>
     public async Task<ScopeRecord> Read(CancellationToken cancel)

@@ -90,7 +90,8 @@ public sealed class ScpiSupply : ISupply, IDisposable
     /// <inheritdoc/>
     public async Task MakeSafe(CancellationToken cancel)
     {
-        await _instrument.Session.SetDown([_instrument.Command("output-off"), _instrument.Command("set-voltage", 0)], cancel);
+        await _instrument.Session.SetDown(
+            [_instrument.Command("output-off"), _instrument.Command("set-voltage", 0)], cancel);
         await CheckOff(cancel);
         await _instrument.CheckReadBack("set-voltage", "read-voltage", 0, VoltageStep, cancel);
     }
@@ -102,7 +103,8 @@ public sealed class ScpiSupply : ISupply, IDisposable
     {
         if (await _instrument.ReadBoolean("read-output", cancel))
         {
-            throw _instrument.Refusal("the output stays on though it was switched off; use the hardware's emergency stop");
+            throw _instrument.Refusal(
+                "the output stays on though it was switched off; use the hardware's emergency stop");
         }
     }
 

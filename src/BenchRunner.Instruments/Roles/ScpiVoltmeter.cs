@@ -16,7 +16,8 @@ public sealed class ScpiVoltmeter : IVoltmeter, IDisposable
     /// <inheritdoc/>
     public InstrumentIdentity Identity => _instrument.Session.Identity;
 
-    /// <summary>Connects; refuses an instrument that has an output: a source's reading of itself is no independent proof.</summary>
+    /// <summary>Connects; refuses an instrument that has an output: a source's reading of itself is no independent
+    /// proof.</summary>
     /// <exception cref="InstrumentException">Another instrument than the dialect is for, or no voltmeter.</exception>
     /// <exception cref="Links.LinkException">Not reachable, or no SCPI.</exception>
     public static async Task<ScpiVoltmeter> Connect(InstrumentConnection connection, CancellationToken cancel)
@@ -38,7 +39,8 @@ public sealed class ScpiVoltmeter : IVoltmeter, IDisposable
     }
 
     /// <inheritdoc/>
-    public async Task<Volts> Read(CancellationToken cancel) => new(await _instrument.ReadNumber("measure-voltage", cancel));
+    public async Task<Volts> Read(CancellationToken cancel) =>
+        new(await _instrument.ReadNumber("measure-voltage", cancel));
 
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _instrument.Dispose();

@@ -1,6 +1,7 @@
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>The one deadline of an exchange, joined with the caller's token; its source is used again and again.</summary>
+/// <summary>The one deadline of an exchange, joined with the caller's token; its source is used again and
+/// again.</summary>
 internal sealed class Deadline(TimeProvider time) : IDisposable
 {
     private CancellationTokenSource? _source;
@@ -22,7 +23,8 @@ internal sealed class Deadline(TimeProvider time) : IDisposable
         return _source.Token;
     }
 
-    /// <summary>Puts the deadline to this time from now: only where the length of what is due has become known.</summary>
+    /// <summary>Puts the deadline to this time from now: only where the length of what is due has become
+    /// known.</summary>
     public void Extend(TimeSpan within) => _source?.CancelAfter(within);
 
     /// <summary>Stops the clock.</summary>

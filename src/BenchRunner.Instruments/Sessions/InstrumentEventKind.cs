@@ -9,7 +9,8 @@ public enum InstrumentEventKind
     /// <summary>The error queue held entries that no setting of ours is blamed for, e.g. at the start.</summary>
     Errors,
 
-    /// <summary>A reply was lost, late, doubled or malformed; the next exchange begins with a resynchronisation.</summary>
+    /// <summary>A reply was lost, late, doubled or malformed; the next exchange begins with a
+    /// resynchronisation.</summary>
     Doubt,
 
     /// <summary>The link was resynchronised: what came late was dropped.</summary>
@@ -21,6 +22,7 @@ public enum InstrumentEventKind
     /// <summary>The link was opened again and the same instrument answered.</summary>
     Reconnected,
 
-    /// <summary>Something the instrument gave was not used, e.g. a trace whose scale is not the one asked for.</summary>
+    /// <summary>Something the instrument gave was not used, e.g. a trace whose scale is not the one asked
+    /// for.</summary>
     Discarded,
 }

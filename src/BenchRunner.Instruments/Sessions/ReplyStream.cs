@@ -4,7 +4,8 @@ using BenchRunner.Instruments.Replies;
 
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>Replies cut out of the bytes of a link. Knows what is due, not what was asked. One owner at a time.</summary>
+/// <summary>Replies cut out of the bytes of a link. Knows what is due, not what was asked. One owner at a
+/// time.</summary>
 internal sealed class ReplyStream(ILink link)
 {
     private readonly byte[] _buffer = new byte[ReplyLine.Limit + 4096];

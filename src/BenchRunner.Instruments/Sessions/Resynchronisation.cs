@@ -3,8 +3,10 @@ using BenchRunner.Instruments.Replies;
 
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>Brings questions and replies together again: a drain, then a number asked for that nothing else answers, twice.</summary>
-/// <remarks>A late reply may happen to be the number; the second round, with another one, tells. The number is the event
+/// <summary>Brings questions and replies together again: a drain, then a number asked for that nothing else answers,
+/// twice.</summary>
+/// <remarks>A late reply may happen to be the number; the second round, with another one, tells. The number is the
+/// event
 /// status enable register (IEEE 488.2, 10.10), which is of no other use here; each is used once a connection.</remarks>
 internal sealed class Resynchronisation(
     ILink link, ReplyStream replies, Deadline deadline, SessionOptions options, TimeProvider time)
@@ -19,7 +21,8 @@ internal sealed class Resynchronisation(
     /// <param name="put">Sends one message.</param>
     /// <param name="cancel">Ends it; then it must be done again.</param>
     /// <returns>Bytes dropped.</returns>
-    /// <exception cref="LinkException">The link failed, does not fall silent, or sends what nothing asked for.</exception>
+    /// <exception cref="LinkException">The link failed, does not fall silent, or sends what nothing asked
+    /// for.</exception>
     /// <exception cref="ReplyException">A line without end.</exception>
     /// <exception cref="OperationCanceledException">Cancelled, or no answer in time.</exception>
     public async ValueTask<int> Run(Action<string> put, CancellationToken cancel) =>

@@ -8,7 +8,8 @@ using Polly.Retry;
 
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>Talks with one instrument: one exchange at a time, each with one deadline, every setting checked in the error queue.</summary>
+/// <summary>Talks with one instrument: one exchange at a time, each with one deadline, every setting checked in the
+/// error queue.</summary>
 /// <remarks>
 /// Questions and setting down are repeated when a reply is lost, over a new connection if need be. What sets is never
 /// repeated, and what energises or fires is neither repeated nor sent over any connection but the first, the one that
@@ -51,7 +52,8 @@ public sealed class ScpiSession : IDisposable
     /// <summary>The link as the bench file names it.</summary>
     public string Link => _address.ToString();
 
-    /// <summary>How often the link was opened; a change says that the instrument's settings are not known any more.</summary>
+    /// <summary>How often the link was opened; a change says that the instrument's settings are not known any
+    /// more.</summary>
     public int Connections => _connections;
 
     /// <summary>Connects, asks <c>*IDN?</c>, logs what the error queue holds and clears it (<c>*CLS</c>).</summary>
@@ -113,7 +115,8 @@ public sealed class ScpiSession : IDisposable
     /// <param name="bound">The longest block that is due, bytes.</param>
     /// <param name="parse">Reads the block's bytes, which are gone when it returns.</param>
     /// <param name="cancel">Ends the exchange; inside a block that breaks the link.</param>
-    /// <exception cref="LinkException">Late, cut, longer than due, malformed or lost. Never a part of a block.</exception>
+    /// <exception cref="LinkException">Late, cut, longer than due, malformed or lost. Never a part of a
+    /// block.</exception>
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
     {
@@ -151,7 +154,8 @@ public sealed class ScpiSession : IDisposable
     /// <exception cref="LinkException">The link failed; whether the setting was taken is unknown.</exception>
     public Task Set(string command, CancellationToken cancel) => SetOnce(null, command, cancel);
 
-    /// <summary>Sends one command that energises or fires, under the permit's lock, once, and reads the error queue.</summary>
+    /// <summary>Sends one command that energises or fires, under the permit's lock, once, and reads the error
+    /// queue.</summary>
     /// <inheritdoc cref="Set" path="/exception"/>
     /// <param name="permit">The leave to do so.</param>
     /// <param name="command">One program message without a reply.</param>
@@ -167,9 +171,11 @@ public sealed class ScpiSession : IDisposable
     /// <exception cref="LinkException">The link is lost: what the instrument does is unknown.</exception>
     public void SendNow(string command) => _wire.Send(command);
 
-    /// <summary>Sends commands that set down: at once, and again over a new connection where the link was lost.</summary>
+    /// <summary>Sends commands that set down: at once, and again over a new connection where the link was
+    /// lost.</summary>
     /// <returns>What the error queue held afterwards; the caller reads back what became of it.</returns>
-    /// <exception cref="LinkException">The instrument was not reached, as often as the options allow: its state is unknown.</exception>
+    /// <exception cref="LinkException">The instrument was not reached, as often as the options allow: its state is
+    /// unknown.</exception>
     public async Task<IReadOnlyList<ErrorEntry>> SetDown(IReadOnlyList<string> commands, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(commands);
@@ -265,7 +271,8 @@ public sealed class ScpiSession : IDisposable
         return $"refused '{command}': {string.Join(", ", errors)}{lost}";
     }
 
-    /// <summary>The wire in use, opened again where it broke and the options allow it. Only for the holder of the turn.</summary>
+    /// <summary>The wire in use, opened again where it broke and the options allow it. Only for the holder of the
+    /// turn.</summary>
     private async ValueTask<ScpiWire> Wire(CancellationToken cancel)
     {
         ObjectDisposedException.ThrowIf(_disposed, this);
@@ -296,12 +303,14 @@ public sealed class ScpiSession : IDisposable
     private async Task<ScpiWire> Connect(CancellationToken cancel)
     {
         var link = await _connecting.ExecuteAsync(
-            async token => await Links.Link.Open(_address, _options.ConnectWithin, _options.WriteWithin, _time, token), cancel);
+            async token =>
+                await Links.Link.Open(_address, _options.ConnectWithin, _options.WriteWithin, _time, token), cancel);
         _connections++;
         var wire = new ScpiWire(link, _options, _time, Report);
         if (_address.Kind == LinkKind.Serial)
         {
-            // A serial line has no start of its own: half a command or half a reply of an earlier user may be under way.
+            // A serial line has no start of its own: half a command or half a reply of an earlier user may be under
+            // way.
             wire.Terminate();
         }
 

@@ -6,12 +6,14 @@ using BenchRunner.Instruments.Replies;
 
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>One connection to one instrument: messages out, replies in, and whether the next reply can be trusted.</summary>
+/// <summary>One connection to one instrument: messages out, replies in, and whether the next reply can be
+/// trusted.</summary>
 /// <remarks>
 /// Invariants. (1) One owner at a time asks; only <see cref="Send"/> may come from any thread. (2) The doubt is noted
 /// before a question goes out and taken back only when its reply, and nothing after it, was read: whatever ends an
 /// exchange in between, time-out, cancellation or nonsense, leaves it standing. (3) With a doubt standing nothing is
-/// asked before a resynchronisation: the late reply would answer the next question. (4) A broken wire stays broken, with
+/// asked before a resynchronisation: the late reply would answer the next question. (4) A broken wire stays broken,
+/// with
 /// its first reason.
 /// </remarks>
 internal sealed class ScpiWire : IDisposable
@@ -94,7 +96,8 @@ internal sealed class ScpiWire : IDisposable
         }
         catch (Exception e)
         {
-            // With its link lost nothing more comes; inside a block no end could be told from data: either way only a new
+            // With its link lost nothing more comes; inside a block no end could be told from data: either way only a
+            // new
             // connection helps, and what is missing says more than how the link ended.
             if (e is LinkException || (_replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
             {
@@ -112,7 +115,8 @@ internal sealed class ScpiWire : IDisposable
         }
     }
 
-    /// <summary>Asks a question that the instrument may not know, and the error queue right behind it, so that a refusal shows at once.</summary>
+    /// <summary>Asks a question that the instrument may not know, and the error queue right behind it, so that a
+    /// refusal shows at once.</summary>
     /// <returns>The answer, null where the question was refused, and the entry of the error queue.</returns>
     public async ValueTask<(string? Answer, ErrorEntry Error)> Probe(string query, CancellationToken cancel)
     {
@@ -162,7 +166,8 @@ internal sealed class ScpiWire : IDisposable
         }
     }
 
-    /// <summary>Makes sure that the next reply belongs to the next question, and that the error queue holds nothing old.</summary>
+    /// <summary>Makes sure that the next reply belongs to the next question, and that the error queue holds nothing
+    /// old.</summary>
     public async ValueTask Ready(CancellationToken cancel)
     {
         if (Broken is { } why)
@@ -240,7 +245,8 @@ internal sealed class ScpiWire : IDisposable
             (entries ??= []).Add(entry);
         }
 
-        throw Break(new LinkException(_link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
+        throw Break(new LinkException(
+            _link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
     }
 
     private async ValueTask Resynchronise(CancellationToken cancel)
@@ -334,7 +340,8 @@ internal sealed class ScpiWire : IDisposable
                     _link.Name, $"no whole reply to '{query}' within {_options.ReplyWithin.TotalSeconds:0.###} s", e);
             case ReplyException reply:
                 _report(InstrumentEventKind.Doubt, $"reply to '{query}': {e.Message}");
-                var failure = new LinkException(_link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
+                var failure = new LinkException(
+                    _link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
                 return reply.Fault == ReplyFault.TooLong ? Break(failure) : failure;
             case LinkException lost:
                 Break(lost);
@@ -351,7 +358,8 @@ internal sealed class ScpiWire : IDisposable
     {
         if (command.Length is 0 or >= LongestMessage || command.AsSpan().ContainsAnyExceptInRange(' ', '~'))
         {
-            throw new ArgumentException($"'{Printable.Text(command)}' is no program message of printable ASCII on one line");
+            throw new ArgumentException(
+                $"'{Printable.Text(command)}' is no program message of printable ASCII on one line");
         }
 
         var length = Encoding.ASCII.GetBytes(command, message);

@@ -16,17 +16,20 @@ public sealed record SessionOptions
     /// <summary>The pause after the first failed attempt; doubled after each further one.</summary>
     public TimeSpan ConnectPause { get; init; } = TimeSpan.FromMilliseconds(100);
 
-    /// <summary>How long handing one message to the system may take. A permit being revoked waits at most that long.</summary>
+    /// <summary>How long handing one message to the system may take. A permit being revoked waits at most that
+    /// long.</summary>
     public TimeSpan WriteWithin { get; init; } = TimeSpan.FromMilliseconds(500);
 
     /// <summary>The one deadline of an exchange: from the command to the end of its reply.</summary>
     public TimeSpan ReplyWithin { get; init; } = TimeSpan.FromSeconds(2);
 
-    /// <summary>Slowest transfer of a block that is waited for, bytes a second; its time is added to the deadline once the
+    /// <summary>Slowest transfer of a block that is waited for, bytes a second; its time is added to the deadline
+    /// once the
     /// block's head has come.</summary>
     public double BlockRate { get; init; } = 1e6;
 
-    /// <summary>How long a link must be silent before a resynchronisation believes that nothing more is under way.</summary>
+    /// <summary>How long a link must be silent before a resynchronisation believes that nothing more is under
+    /// way.</summary>
     public TimeSpan Silence { get; init; } = TimeSpan.FromMilliseconds(100);
 
     /// <summary>How many times a question is asked whose reply was lost; at least 1. Never applied to what energises,
@@ -36,6 +39,7 @@ public sealed record SessionOptions
     /// <summary>How many times setting down is tried; at least 1.</summary>
     public int SetDownAttempts { get; init; } = 3;
 
-    /// <summary>Whether a broken link is opened again for reading and setting down. Energising is refused ever after.</summary>
+    /// <summary>Whether a broken link is opened again for reading and setting down. Energising is refused ever
+    /// after.</summary>
     public bool Reconnect { get; init; } = true;
 }

@@ -22,7 +22,8 @@ public class LinkAddressTests
 
     [Fact]
     public void A_serial_line_without_a_speed_has_115200_baud() =>
-        Assert.Equal(new LinkAddress(LinkKind.Serial, "/dev/ttyUSB0", 115_200), LinkAddress.Parse("serial /dev/ttyUSB0"));
+        Assert.Equal(
+            new LinkAddress(LinkKind.Serial, "/dev/ttyUSB0", 115_200), LinkAddress.Parse("serial /dev/ttyUSB0"));
 
     [Theory]
     [InlineData("")]

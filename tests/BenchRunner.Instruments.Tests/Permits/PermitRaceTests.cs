@@ -40,7 +40,8 @@ public class PermitRaceTests : SessionFixture
     [Fact]
     public async Task The_write_itself_is_made_under_the_lock_that_revoking_takes()
     {
-        // A write that fails is reported where it fails. Where the connection's end reaches us only after the write, the
+        // A write that fails is reported where it fails. Where the connection's end reaches us only after the write,
+        // the
         // next round tries again.
         var held = false;
         for (var round = 0; round < 20 && !held; round++)

@@ -11,9 +11,11 @@ public class ReferenceCaseTests
 {
     private const string Responses = "response-parsing.json";
 
-    public static TheoryData<string> Ids => [.. ReferenceFile.Cases(Responses, "cases").Select(c => c.GetProperty("id").GetString()!)];
+    public static TheoryData<string> Ids =>
+        [.. ReferenceFile.Cases(Responses, "cases").Select(c => c.GetProperty("id").GetString()!)];
 
-    public static TheoryData<string> ErrorIds => [.. ReferenceFile.Cases("errors.json", "replies").Select(c => c.GetProperty("id").GetString()!)];
+    public static TheoryData<string> ErrorIds =>
+        [.. ReferenceFile.Cases("errors.json", "replies").Select(c => c.GetProperty("id").GetString()!)];
 
     [Fact]
     public void No_case_is_left_out() => Assert.Equal((189, 20), (Ids.Count, ErrorIds.Count));
@@ -128,7 +130,8 @@ public class ReferenceCaseTests
         if (format == ElementFormat.Integer16)
         {
             // The scope's own way must agree with the general one.
-            Assert.Equal(ReplyArray.Numbers(input, format, order), ReplyArray.Codes(input, order).Select(c => (double)c));
+            Assert.Equal(
+                ReplyArray.Numbers(input, format, order), ReplyArray.Codes(input, order).Select(c => (double)c));
         }
 
         return ReplyArray.Numbers(input, format, order);

@@ -39,7 +39,8 @@ public class OtherRolesTests
     {
         await using var instrument = ScriptedRoles.Supply();
         instrument.On("MEASure:VOLTage:DC?", "400");
-        var e = await Assert.ThrowsAsync<InstrumentException>(() => ScpiVoltmeter.Connect(To(instrument, "voltmeter"), _cancel));
+        var e = await Assert.ThrowsAsync<InstrumentException>(
+            () => ScpiVoltmeter.Connect(To(instrument, "voltmeter"), _cancel));
         Assert.Contains("no independent voltmeter", e.Message, StringComparison.Ordinal);
     }
 

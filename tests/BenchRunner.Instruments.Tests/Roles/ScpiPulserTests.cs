@@ -65,7 +65,8 @@ public sealed class ScpiPulserTests : IAsyncLifetime
 
         await Assert.ThrowsAnyAsync<ArgumentException>(() =>
             _pulser.Program(Grants.Live(), Train with { Gap = new(-1e-6) }, _cancel));
-        Assert.DoesNotContain(_instrument.Received, l => l.StartsWith("SOURce:", StringComparison.Ordinal) && !l.Contains('?'));
+        Assert.DoesNotContain(
+            _instrument.Received, l => l.StartsWith("SOURce:", StringComparison.Ordinal) && !l.Contains('?'));
     }
 
     [Fact]

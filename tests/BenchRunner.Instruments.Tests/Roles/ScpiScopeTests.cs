@@ -35,7 +35,8 @@ public sealed class ScpiScopeTests : IAsyncLifetime
 
     private int Sent => _instrument.Received.SkipWhile(l => l != "*CLS").Skip(1).Count(l => !l.Contains('?'));
 
-    private string[] Discarded => [.. _log.Events.Where(e => e.Kind == InstrumentEventKind.Discarded).Select(e => e.Message)];
+    private string[] Discarded =>
+        [.. _log.Events.Where(e => e.Kind == InstrumentEventKind.Discarded).Select(e => e.Message)];
 
     [Fact]
     public async Task A_record_holds_codes_scale_time_base_and_count()
@@ -55,7 +56,8 @@ public sealed class ScpiScopeTests : IAsyncLifetime
         Assert.Equal(-120e-9, trace.TimeOrigin, 1e-18);
         Assert.Equal(1e-9, trace.SampleInterval);
         Assert.Equal(1600, trace.FullScale, 1e-9);
-        Assert.Equal((50.0, 100.0, (short)-2048, (short)2047), (trace.Origin, trace.Reference, trace.LowRail, trace.HighRail));
+        Assert.Equal(
+            (50.0, 100.0, (short)-2048, (short)2047), (trace.Origin, trace.Reference, trace.LowRail, trace.HighRail));
     }
 
     [Fact]
@@ -75,7 +77,8 @@ public sealed class ScpiScopeTests : IAsyncLifetime
         await _scope.Configure(Settings, _cancel);
         var first = Sent;
         _instrument.Once("STATus:OPERation:CONDition?", v => v.HangUp());
-        await Assert.ThrowsAsync<Instruments.Links.LinkException>(() => _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
+        await Assert.ThrowsAsync<Instruments.Links.LinkException>(
+            () => _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
         await _scope.Abort(_cancel);
         await _scope.Configure(Settings, _cancel);
         Assert.Equal(2 * first, Sent - 1);

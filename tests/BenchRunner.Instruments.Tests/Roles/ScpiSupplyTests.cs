@@ -28,7 +28,8 @@ public sealed class ScpiSupplyTests : IAsyncLifetime
         _supply.Program(permit, new Volts(volts), new Amperes(amperes), new Volts(protection), _cancel);
 
     /// <summary>Everything that came after connecting, except what only asks.</summary>
-    private string[] Settings() => [.. _instrument.Received.SkipWhile(l => l != "*CLS").Skip(1).Where(l => !l.Contains('?'))];
+    private string[] Settings() =>
+        [.. _instrument.Received.SkipWhile(l => l != "*CLS").Skip(1).Where(l => !l.Contains('?'))];
 
     [Fact]
     public async Task Protection_current_and_voltage_are_set_in_this_order_and_read_back()

@@ -2,7 +2,8 @@ using BenchRunner.Instruments.Dialects;
 
 namespace BenchRunner.Instruments.Tests.Scripts;
 
-/// <summary>The shipped dialect files, read as plainly as they are written: operation, colon, command in single quotes.</summary>
+/// <summary>The shipped dialect files, read as plainly as they are written: operation, colon, command in single
+/// quotes.</summary>
 internal static class GenericDialects
 {
     public static Dialect Read(string role, string? identity = null)

@@ -4,7 +4,8 @@ using BenchRunner.Signals.Units;
 
 namespace BenchRunner.Instruments.Tests.Scripts;
 
-/// <summary>Permits for tests. Only Safety's code can grant one; a test reaches past the compiler, which no source of the
+/// <summary>Permits for tests. Only Safety's code can grant one; a test reaches past the compiler, which no source of
+/// the
 /// program does.</summary>
 internal static class Grants
 {
@@ -21,7 +22,8 @@ internal static class Grants
         return permit;
     }
 
-    /// <summary>Whether another thread is kept from the permit at this moment, as it is while a guarded write goes on.</summary>
+    /// <summary>Whether another thread is kept from the permit at this moment, as it is while a guarded write goes
+    /// on.</summary>
     public static bool IsHeld(Permit permit) => !Task.Run(() => permit.WhyNot).Wait(TimeSpan.FromMilliseconds(300));
 
     [UnsafeAccessor(UnsafeAccessorKind.Constructor)]

@@ -7,7 +7,8 @@ using BenchRunner.Instruments.Links;
 
 namespace BenchRunner.Instruments.Tests.Scripts;
 
-/// <summary>An instrument on a real socket that does what a test says, for what a real one does not do on demand.</summary>
+/// <summary>An instrument on a real socket that does what a test says, for what a real one does not do on
+/// demand.</summary>
 internal sealed class ScriptedInstrument : IAsyncDisposable
 {
     private readonly TcpListener _listener = new(IPAddress.Loopback, 0);
@@ -50,7 +51,8 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
     /// <summary>Puts an entry into the error queue.</summary>
     public void Fail(string entry) => _errors.Enqueue(entry);
 
-    /// <summary>A setting that is kept and read back, e.g. <c>VOLT</c>; <paramref name="kept"/> may change it.</summary>
+    /// <summary>A setting that is kept and read back, e.g. <c>VOLT</c>; <paramref name="kept"/> may change
+    /// it.</summary>
     public void Keep(string set, string read, string initial, Func<string, string>? kept = null)
     {
         var value = initial;

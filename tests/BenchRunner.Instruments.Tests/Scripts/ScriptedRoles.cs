@@ -86,7 +86,8 @@ internal static class ScriptedRoles
             scope.Keep(set, set + "?", initial);
         }
 
-        scope.Keep("TRIGger:SEQuence:SOURce", "TRIGger:SEQuence:SOURce?", "INT1", a => a.Replace("INTernal", "INT", StringComparison.Ordinal));
+        scope.Keep("TRIGger:SEQuence:SOURce", "TRIGger:SEQuence:SOURce?", "INT1", a => a.Replace(
+            "INTernal", "INT", StringComparison.Ordinal));
         scope.Keep("TRIGger:SEQuence:SLOPe", "TRIGger:SEQuence:SLOPe?", "POS");
         scope.Keep("FORMat:DATA", "FORMat:DATA?", "ASC,0", _ => "INT,16");
         scope.Keep("FORMat:BORDer", "FORMat:BORDer?", "NORM", _ => "SWAP");
@@ -107,7 +108,8 @@ internal static class ScriptedRoles
         return scope;
     }
 
-    /// <summary>points, xincrement, xorigin, xreference, yincrement, yorigin, yreference, lowest code, highest code, count.</summary>
+    /// <summary>points, xincrement, xorigin, xreference, yincrement, yorigin, yreference, lowest code, highest code,
+    /// count.</summary>
     public static string Preamble(int points, int channel, int count = 7, double interval = 1e-9) =>
         string.Create(CultureInfo.InvariantCulture, $"{points},{interval:R},-1E-7,20,{channel * 800.0 / 4095:R},50,100,-2048,2047,{count}");
 

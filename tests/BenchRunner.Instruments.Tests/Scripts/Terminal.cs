@@ -4,7 +4,8 @@ using Microsoft.Win32.SafeHandles;
 
 namespace BenchRunner.Instruments.Tests.Scripts;
 
-/// <summary>A pseudo terminal: its far side is a serial port for the program, this side is the instrument's. Linux only.</summary>
+/// <summary>A pseudo terminal: its far side is a serial port for the program, this side is the instrument's. Linux
+/// only.</summary>
 internal sealed partial class Terminal : IDisposable
 {
     private const int ReadWrite = 2;
@@ -23,7 +24,8 @@ internal sealed partial class Terminal : IDisposable
         Assert.Equal(0, ptsname_r(master, name, name.Length));
         Path = Encoding.ASCII.GetString(name, 0, Array.IndexOf(name, (byte)0));
 
-        // Kept open, so that this side does not fail between two clients; raw, so that the terminal itself echoes nothing.
+        // Kept open, so that this side does not fail between two clients; raw, so that the terminal itself echoes
+        // nothing.
         _farSide = new FileStream(Path, FileMode.Open, FileAccess.ReadWrite);
         var attributes = new byte[256];
         var far = (int)_farSide.SafeFileHandle.DangerousGetHandle();

@@ -46,7 +46,8 @@ public class SerialSessionTests
             };
         });
 
-        var open = ScpiSession.Open("interlock", LinkAddress.Parse($"serial {terminal.Path}"), Options, clock, log, _cancel);
+        var open = ScpiSession.Open(
+            "interlock", LinkAddress.Parse($"serial {terminal.Path}"), Options, clock, log, _cancel);
         await clock.PassUntil(Options.Silence, () => open.IsCompleted);
         using var session = await open;
 
