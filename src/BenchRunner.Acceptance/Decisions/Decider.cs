@@ -94,6 +94,6 @@ public static class Decider
             _ => "no limit",
         };
         string why = value is { Reason: { } reason, Conformity: Conformity.Undecided } ? $" ({reason})" : "";
-        return $"{value.Quantity} at {value.OperatingPoint} is {found}, limit {limits}{why}";
+        return $"{value.Quantity} at {value.OperatingPoint}: {found}, limit {limits}{why}";
     }
 }

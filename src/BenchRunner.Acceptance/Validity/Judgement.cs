@@ -15,6 +15,10 @@ internal sealed class Judgement
     /// <summary>Whether a criterion found something so far.</summary>
     public bool Has(string criterion) => _findings.Exists(finding => finding.Criterion == criterion);
 
+    /// <summary>Whether a channel was found at the ADC's rails.</summary>
+    public bool IsClipped(Channel channel) =>
+        _findings.Exists(finding => finding.Criterion == Criteria.NotClipped && finding.Channel == channel);
+
     /// <summary>Adds a finding.</summary>
     public void Add(
         string criterion,

@@ -130,14 +130,23 @@ internal static class PowerCriteria
     /// <summary>
     /// <c>bus-agrees</c>: both comparisons; where one cannot be made the criterion is not evaluated, never met.
     /// </summary>
+    /// <remarks>Not evaluated on a clipped trace either: what a rail cut off is no doubt about the bench.</remarks>
     public static void BusAgrees(CaptureContext context, Judgement judgement)
     {
         TrainFacts train = context.Analysis.Train;
+        bool firesHigh = HalfBridge.FiresHigh(context.Sequence);
+        if (judgement.IsClipped(HalfBridge.Playing(Channel.VdsLow, firesHigh))
+            || judgement.IsClipped(HalfBridge.Playing(Channel.IdLow, firesHigh)))
+        {
+            judgement.NotEvaluated(Criteria.BusAgrees);
+            return;
+        }
+
         if (train.BlockingBeforeOn1 is { } blocking && context.Voltmeter is { } bank)
         {
             if (!(Math.Abs(blocking - bank) <= VoltmeterAgrees * Math.Abs(bank)))
             {
-                Channel channel = HalfBridge.Playing(Channel.VdsLow, HalfBridge.FiresHigh(context.Sequence));
+                Channel channel = HalfBridge.Playing(Channel.VdsLow, firesHigh);
                 judgement.Add(
                     Criteria.BusAgrees, FindingClass.Stop,
                     $"{channel.Name()} is {V(blocking)} before the train, the voltmeter reads {V(bank)} "

@@ -38,7 +38,7 @@ internal static class RunRules
                 "select outcome from device_outcomes where lot = ?1 and device = ?2 and current", lot, header.Device);
             return new RunRefusal(
                 RunRefusalKind.AlreadyDecided,
-                $"{header.Device} is {outcome} in lot {lot} already; give a reason to measure it again.");
+                $"{header.Device} is {outcome} in lot {lot} already; say why it is measured again (--again REASON).");
         }
 
         return null;

@@ -20,6 +20,9 @@ public interface IScope
     /// <returns>False where the deadline passed first (trigger missed): the acquisition was then aborted.</returns>
     Task<bool> WaitForRecord(TimeSpan deadline, CancellationToken cancel);
 
+    /// <summary>Acquisitions completed since the scope was switched on.</summary>
+    Task<long> ReadCount(CancellationToken cancel);
+
     /// <summary>Reads preamble and codes of every channel of the settings in force, in one stopped state.</summary>
     Task<ScopeRecord> Read(CancellationToken cancel);
 

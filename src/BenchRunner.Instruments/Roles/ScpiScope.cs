@@ -112,6 +112,9 @@ public sealed class ScpiScope : IScope, IDisposable
     }
 
     /// <inheritdoc/>
+    public async Task<long> ReadCount(CancellationToken cancel) => await _instrument.ReadInteger("read-count", cancel);
+
+    /// <inheritdoc/>
     /// <exception cref="InvalidOperationException">Not configured: a caller's mistake.</exception>
     /// <remarks>A trace that was cut, is of another length or scale than asked for, or of another acquisition is left
     /// out
@@ -120,7 +123,7 @@ public sealed class ScpiScope : IScope, IDisposable
     public async Task<ScopeRecord> Read(CancellationToken cancel)
     {
         var settings = _settings ?? throw new InvalidOperationException("configure before reading");
-        var before = await _instrument.ReadInteger("read-count", cancel);
+        var before = await ReadCount(cancel);
         var traces = new List<RawTrace>(settings.Channels.Count);
         var connections = _instrument.Session.Connections;
         foreach (var channel in settings.Channels)
@@ -131,7 +134,7 @@ public sealed class ScpiScope : IScope, IDisposable
             }
         }
 
-        var after = await _instrument.ReadInteger("read-count", cancel);
+        var after = await ReadCount(cancel);
         var stood = after == before && connections == _instrument.Session.Connections;
         return new ScopeRecord(traces, stood ? after : null);
     }

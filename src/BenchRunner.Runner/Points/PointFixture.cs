@@ -79,6 +79,7 @@ public sealed class PointFixture
         // Gates at their off level before there is any voltage for them to hold off.
         await _bench.Pulser.Program(permit, Train(state.Set), cancel);
         await _firing.Prepare(Scope(state), cancel);
+        state.Count = await _firing.Count(cancel);
         await _bench.Safety.Interlock.ReleaseBleeder(permit, cancel);
         await _bus.Up(permit, planned, cancel);
         while (IsWanting(taken))

@@ -26,7 +26,7 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 
     public long? FiredAt { get; set; }
 
-    public long? Count { get; private set; }
+    public long? Count { get; set; }
 
     public IReadOnlyList<RawTrace> Previous { get; private set; } = [];
 
@@ -39,7 +39,7 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
         bool stale = verdict.Findings.Any(finding => finding.Criterion == Criteria.Fresh);
         StaleInARow = stale ? StaleInARow + 1 : 0;
         Previous = record.Traces;
-        Count = record.Count;
+        Count = record.Count ?? Count;
         if (verdict.CorrectedFirstPulse is { } width)
         {
             Set = Set with { First = width };

@@ -17,6 +17,15 @@ public sealed class TrainFiring(OpenBench bench, EventSource events)
     public Task Prepare(ScopeSettings settings, CancellationToken cancel) =>
         OnScope(() => bench.Scope.Configure(settings, cancel));
 
+    /// <summary>The scope's acquisition count before the first train of a point, so that an old record is known as one.</summary>
+    /// <exception cref="InstrumentException">The scope cannot be reached.</exception>
+    public async Task<long> Count(CancellationToken cancel)
+    {
+        long count = 0;
+        await OnScope(async () => count = await bench.Scope.ReadCount(cancel));
+        return count;
+    }
+
     /// <summary>Arms scope and pulser, fires, waits for the record and reads it.</summary>
     /// <returns>The record; null where the trigger was missed or the record was lost on its way.</returns>
     /// <exception cref="PermitException">The permit is not live: nothing was fired.</exception>

@@ -82,6 +82,8 @@ public sealed class RunSession
             return new RunSummary([], [], IsNewEachTime);
         }
 
+        Refuse(store, [first, .. devices.Waiting]);
+
         await using FakeBenchProcess? fake = IsNewEachTime
             ? await FakeBenchProcess.Start(Bench, first, _time, operatorStop) : null;
         await using OpenBench open = await OpenBench.Open(
@@ -168,6 +170,18 @@ public sealed class RunSession
         }
     }
 
+    /// <summary>Refuses a device that is decided in its lot before anything is opened or energised.</summary>
+    private void Refuse(EvidenceStore store, IEnumerable<string> devices)
+    {
+        foreach (string device in devices)
+        {
+            if (store.Refuses(Header(device, confirmedBy: null, IsNewEachTime)) is { Kind: not RunRefusalKind.MixedOrigin } refusal)
+            {
+                throw new RunRefusedException(refusal);
+            }
+        }
+    }
+
     private async Task<string> Confirm(OpenBench open, CancellationToken operatorStop) =>
         await _confirmation.Confirm(Plan, open.IsSimulated, operatorStop)
             ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
@@ -186,7 +200,7 @@ public sealed class RunSession
             ?? throw new RefusedException(RefusalKind.Taken, $"bench {Bench.Name} is in use by {holder}; wait until that run has ended");
     }
 
-    private RunHeader Header(string device, string confirmedBy, bool simulated) => new()
+    private RunHeader Header(string device, string? confirmedBy, bool simulated) => new()
     {
         Device = device,
         Lot = _request.Lot,

@@ -32,7 +32,7 @@ internal static class RunJson
     /// <summary>The rows of the view, as the evidence has them: names and columns are the same contract.</summary>
     private static JsonArray Measurements(string evidence, string run)
     {
-        QueryTable table = QueryRunner.RunSql(evidence, $"select * from measurements where run = '{run}'");
+        QueryTable table = QueryRunner.Run(evidence, "run-values", new Dictionary<string, string> { ["run"] = run });
         return JsonOutput.Array(table.Rows, row =>
         {
             var one = new JsonObject();

@@ -100,7 +100,7 @@ public sealed class DeciderTests
         DeviceDecision decision = Decider.Decide(
             Limited(("qrr", null, 1)), Shipped.Bench, [new PointCaptures("rated", 5, without, _budget)]);
         Assert.Equal(Outcome.Undecided, decision.Outcome);
-        Assert.Contains("qrr at rated is no value, limit at most 1 C (end undecided)", decision.Reason,
+        Assert.Contains("qrr at rated: no value, limit at most 1 C (end undecided)", decision.Reason,
             StringComparison.Ordinal);
     }
 
