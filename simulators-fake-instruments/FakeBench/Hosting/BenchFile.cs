@@ -63,7 +63,8 @@ public static class BenchFile
     {
         bool single = link.StartsWith("serial", StringComparison.Ordinal)
             || options.Faults.Any(f => f.Name == Faults.FaultCatalogue.SingleClient);
-        return (single ? "" : ", connections: 4") + (role == "voltmeter" ? ", at: bank" : "");
+        return (single ? "" : ", connections: 4") + (role == "voltmeter" ? ", at: bank" : "")
+            + $", identity: '.*FAKEBENCH-{role.ToUpperInvariant()}.*'";
     }
 
     private static string Probe(string channel) => channel switch

@@ -1,3 +1,4 @@
+using System.Text.RegularExpressions;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Dialects;
 using BenchRunner.Instruments.Links;
@@ -62,8 +63,9 @@ public sealed class OpenBench : IAsyncDisposable
         var open = new OpenBench();
         try
         {
-            await open.Connect(role => Connection(bench, dialects, links, role, log, time), bench, cancel);
-            open.Identify();
+            await open.Connect(
+                (role, options) => Connection(bench, dialects, links, role, options, log, time), bench, cancel);
+            open.Identify(bench);
             return open;
         }
         catch
@@ -89,6 +91,7 @@ public sealed class OpenBench : IAsyncDisposable
         IReadOnlyDictionary<string, DialectFile> dialects,
         IReadOnlyDictionary<string, string>? links,
         string role,
+        SessionOptions options,
         IInstrumentLog log,
         TimeProvider time)
     {
@@ -96,30 +99,32 @@ public sealed class OpenBench : IAsyncDisposable
         string link = links is null ? setup.Link : links.GetValueOrDefault(role)
             ?? throw new BenchException($"the fake bench offers no {role}");
         return new InstrumentConnection(
-            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), new SessionOptions(), time, log);
+            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), options, time, log);
     }
 
-    private async Task Connect(Func<string, InstrumentConnection> at, Bench bench, CancellationToken cancel)
+    private async Task Connect(
+        Func<string, SessionOptions, InstrumentConnection> at, Bench bench, CancellationToken cancel)
     {
+        var patient = new SessionOptions();
         bool OwnToo(string role) => bench.Roles[role].Connections > 1;
 
         // Safety first: whatever fails later, these are there.
-        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock"), cancel));
-        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel));
-        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply"), cancel));
-        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser"), cancel));
+        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
+        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
+        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply", patient), cancel));
+        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser", patient), cancel));
         Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
 
         Voltmeter = OwnToo("voltmeter")
-            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter"), cancel)) : watchMeter;
+            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter", patient), cancel)) : watchMeter;
         Supply = OwnToo("supply")
-            ? Keep(await ScpiSupply.Connect(at("supply"), cancel)) : safeSupply;
+            ? Keep(await ScpiSupply.Connect(at("supply", patient), cancel)) : safeSupply;
         Pulser = OwnToo("pulser")
-            ? Keep(await ScpiPulser.Connect(at("pulser"), cancel)) : safePulser;
-        Scope = Keep(await ScpiScope.Connect(at("scope"), cancel));
+            ? Keep(await ScpiPulser.Connect(at("pulser", patient), cancel)) : safePulser;
+        Scope = Keep(await ScpiScope.Connect(at("scope", patient), cancel));
     }
 
-    private void Identify()
+    private void Identify(Bench bench)
     {
         Identities = new Dictionary<string, InstrumentIdentity>
         {
@@ -129,6 +134,17 @@ public sealed class OpenBench : IAsyncDisposable
             ["voltmeter"] = Voltmeter.Identity,
             ["interlock"] = Safety.Interlock.Identity,
         };
+        foreach ((string role, InstrumentIdentity identity) in Identities)
+        {
+            InstrumentSetup setup = bench.Roles[role];
+            if (setup.Identity is { } pattern && !Regex.IsMatch(identity.Text, $@"\A(?:{pattern})\z", RegexOptions.NonBacktracking))
+            {
+                throw new BenchException(
+                    $"{setup.Where}: the {role} says that it is '{identity.Text}', expected {pattern}; check which link belongs to "
+                        + "which role; nothing was energised");
+            }
+        }
+
         ILookup<bool, string> simulated = Identities.ToLookup(pair => pair.Value.IsSimulated, pair => pair.Key);
         if (simulated.Count > 1)
         {
