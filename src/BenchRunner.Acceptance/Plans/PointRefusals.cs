@@ -1,3 +1,4 @@
+using System.Globalization;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Sequences;
@@ -230,7 +231,10 @@ internal static class PointRefusals
         }
     }
 
-    private static string V(double value) => SiText.Format(value, "V");
+    /// <summary>Volts as files state them: 1250 V rather than 1.25 kV.</summary>
+    private static string V(double value) => Math.Abs(value) is >= 1000 and < 100_000
+        ? string.Create(CultureInfo.InvariantCulture, $"{value:0.#} V")
+        : SiText.Format(value, "V");
 
     private static string A(double value) => SiText.Format(value, "A");
 

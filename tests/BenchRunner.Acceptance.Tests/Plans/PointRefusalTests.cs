@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Sequences;
 using static BenchRunner.Acceptance.Tests.Plans.Refusals;
 
 namespace BenchRunner.Acceptance.Tests.Plans;
@@ -14,6 +15,17 @@ public sealed class PointRefusalTests
         Bench low = Shipped.Bench with { Envelope = Shipped.Bench.Envelope with { Voltage = 500 } };
         Refused(Shipped.Rated, low,
             "winch-drive-incoming.yaml:24:18: bus-voltage is 600 V; expected at most the bench envelope of 500 V");
+    }
+
+    [Fact]
+    public void Volts_are_shown_as_files_write_them()
+    {
+        Sequence high = Shipped.With(point => point with { BusVoltage = 1250 });
+        Bench large = Shipped.Bench with { Envelope = Shipped.Bench.Envelope with { Voltage = 1000, Energy = 100 } };
+        Assert.Contains(
+            Planner.Plan(high, large).Refusals,
+            problem => problem.ToString().Contains(
+                "bus-voltage is 1250 V; expected at most the bench envelope of 1000 V", StringComparison.Ordinal));
     }
 
     [Fact]
