@@ -12,6 +12,8 @@ public static class WaveformAnalysis
     /// <param name="waveform">The record as it came; an infinity or NaN is a clipped sample. Not modified.</param>
     /// <param name="settings">What is taken as given.</param>
     /// <returns>Facts and quantities in the catalogue's order; a quantity that cannot be formed has a reason.</returns>
+    /// <exception cref="ArgumentException">A stated correction cannot be undone: a gain of 0, a shunt without resistance.
+    /// </exception>
     /// <remarks>
     /// Corrections first, once, in their order; then the gate's edges, the levels, the load current, and what rests on them.
     /// A quantity whose interval holds a clipped sample of a channel it needs has no value.
@@ -37,6 +39,11 @@ public static class WaveformAnalysis
         List<QuantityValue> values = new(settings.EveryDefinition ? 128 : QuantityCatalogue.All.Count);
         foreach (Quantity quantity in QuantityCatalogue.All)
         {
+            if (settings.Quantities is { } wanted && !wanted.Contains(quantity.Name))
+            {
+                continue;
+            }
+
             if (settings.EveryDefinition)
             {
                 AddEvery(values, forming, analyser, quantity, settings);

@@ -1,4 +1,4 @@
-using System.Numerics;
+using System.Buffers;
 
 namespace BenchRunner.Signals.Levels;
 
@@ -11,26 +11,31 @@ public static class SmallestStep
     /// <remarks>An ADC of 8 bits whose codes are sent in the upper half of 16 has a step of 256.</remarks>
     public static int OfCodes(ReadOnlySpan<short> codes)
     {
-        Span<ulong> seen = stackalloc ulong[1024];
+        byte[] rented = ArrayPool<byte>.Shared.Rent(ushort.MaxValue + 1);
+        Span<byte> seen = rented.AsSpan(0, ushort.MaxValue + 1);
         seen.Clear();
+        int low = ushort.MaxValue;
+        int high = 0;
         foreach (short code in codes)
         {
             int index = code - short.MinValue;
-            seen[index >> 6] |= 1UL << (index & 63);
+            seen[index] = 1;
+            low = Math.Min(low, index);
+            high = Math.Max(high, index);
         }
 
         int smallest = int.MaxValue;
-        int before = int.MinValue / 2;
-        for (int word = 0; word < seen.Length; word++)
+        int before = low;
+        for (int index = low + 1; index <= high; index++)
         {
-            for (ulong bits = seen[word]; bits != 0; bits &= bits - 1)
+            if (seen[index] != 0)
             {
-                int index = (word << 6) + BitOperations.TrailingZeroCount(bits);
                 smallest = Math.Min(smallest, index - before);
                 before = index;
             }
         }
 
+        ArrayPool<byte>.Shared.Return(rented);
         return smallest > ushort.MaxValue ? 1 : smallest;
     }
 
