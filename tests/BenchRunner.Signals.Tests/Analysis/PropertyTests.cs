@@ -83,7 +83,38 @@ public sealed class PropertyTests
         Gen<double[]> blocks = Gen.Select(sample, Gen.Int[1, 300]).Array[1, 12]
             .Select(b => b.SelectMany(x => Enumerable.Repeat(x.Item1, x.Item2)).ToArray());
         Gen.Select(Gen.OneOf(garbage, blocks).Array[8], Gen.Int[1, 255], Gen.Bool, Gen.OneOf<double>(1e-9, 1e-12, 1e-3, 1))
-            .Sample((channels, present, every, interval) => NeverThrows(channels, present, every, interval), iter: 3000);
+            .Sample((channels, present, every, interval) => NeverThrows(channels, present, every, interval), iter: 1500);
+    }
+
+    [Fact]
+    public void A_sound_gate_beside_any_samples_gives_values_or_reasons()
+    {
+        Gen<double> sample = Gen.OneOf(Gen.Double[-1000, 1000], Gen.Double[-1, 1], Gen.Double);
+        Gen<double[]> blocks = Gen.Select(sample, Gen.Int[1, 3000], Gen.Double[0, 500]).Array[1, 30].Select(parts =>
+        {
+            List<double> samples = [];
+            foreach ((double level, int length, double noise) in parts)
+            {
+                for (int i = 0; i < length; i++)
+                {
+                    samples.Add(level + (noise * Math.Sin(i * i)));
+                }
+            }
+
+            return samples.ToArray();
+        });
+        blocks.Array[7].Sample(
+            others =>
+            {
+                Dictionary<Channel, double[]> channels = new() { [Channel.VgsLow] = _clean[Channel.VgsLow].ToArray() };
+                for (int i = 0; i < others.Length; i++)
+                {
+                    channels[(Channel)(i + 1)] = [.. Enumerable.Range(0, _clean.Count).Select(k => others[i][k % others[i].Length])];
+                }
+
+                Check(WaveformAnalysis.Analyse(new Waveform(0, 1e-9, channels), _settings));
+            },
+            iter: 100);
     }
 
     [Fact]
@@ -105,7 +136,7 @@ public sealed class PropertyTests
 
                 Check(WaveformAnalysis.Analyse(new Waveform(0, 1e-9, cut), _settings));
             },
-            iter: 300);
+            iter: 100);
     }
 
     [Fact]
