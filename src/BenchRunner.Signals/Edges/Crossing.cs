@@ -28,28 +28,43 @@ public static class Crossing
             return null;
         }
 
-        double sign = direction == CrossingDirection.Rising ? 1 : -1;
-        double aim = sign * level;
-        double counts = aim + hysteresis;
-        double before = sign * samples[start];
-        double found = double.NaN;
-        for (int i = start + 1; i <= last; i++)
+        bool rises = direction == CrossingDirection.Rising;
+        double counts = LevelSearch.Counts(level, hysteresis, rises);
+        while (start < last)
         {
-            double now = sign * samples[i];
-            if (before <= aim && now > aim)
+            int beyond = LevelSearch.First(samples, counts, rises, start + 1, last);
+            if (beyond > last)
             {
-                found = i - 1 + ((aim - before) / (now - before));
+                return null;
             }
 
-            if (now >= counts && found >= from)
+            double found = Last(samples, level, rises, start, beyond);
+            if (found >= from)
             {
                 return found <= to ? found : null;
             }
 
-            before = now;
+            // Beyond already, or crossed too early: only after coming back can it cross again.
+            start = LevelSearch.First(samples, level, !rises, beyond + 1, last);
         }
 
         return null;
+    }
+
+    /// <summary>The last crossing between two samples, NaN where there is none.</summary>
+    internal static double Last(ReadOnlySpan<double> samples, double level, bool rises, int start, int beyond)
+    {
+        for (int i = beyond; i > start; i--)
+        {
+            double before = samples[i - 1];
+            double now = samples[i];
+            if (rises ? before <= level && now > level : before >= level && now < level)
+            {
+                return i - 1 + ((level - before) / (now - before));
+            }
+        }
+
+        return double.NaN;
     }
 
     /// <summary>The first position at which a signal is at or below a level, without hysteresis.</summary>

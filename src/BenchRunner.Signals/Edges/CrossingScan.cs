@@ -13,7 +13,7 @@ public ref struct CrossingScan
     private readonly int _last;
     private int _index;
     private bool _above;
-    private double _pending;
+    private int _start;
 
     /// <summary>Starts a walk.</summary>
     /// <param name="samples">The signal, uniform; not modified.</param>
@@ -29,7 +29,7 @@ public ref struct CrossingScan
         _index = Math.Max(0, from);
         _last = Math.Min(samples.Length - 1, to);
         _above = _index <= _last && samples[_index] > level;
-        _pending = double.NaN;
+        _start = _index;
     }
 
     /// <summary>Position of the crossing last reported, in samples.</summary>
@@ -42,34 +42,20 @@ public ref struct CrossingScan
     /// <returns>False at the end of the signal.</returns>
     public bool Next()
     {
-        double sign = _above ? -1 : 1;
-        double aim = sign * _level;
-        double counts = aim + _hysteresis;
-        double pending = _pending;
-        int i = _index;
-        double before = i <= _last ? sign * _samples[i] : 0;
-        while (++i <= _last)
+        bool rises = !_above;
+        double counts = LevelSearch.Counts(_level, _hysteresis, rises);
+        int beyond = LevelSearch.First(_samples, counts, rises, _index + 1, _last);
+        double found = beyond > _last ? double.NaN : Crossing.Last(_samples, _level, rises, _start, beyond);
+        if (double.IsNaN(found))
         {
-            double now = sign * _samples[i];
-            if (before <= aim && now > aim)
-            {
-                pending = i - 1 + ((aim - before) / (now - before));
-            }
-
-            if (now >= counts && pending >= 0)
-            {
-                Position = pending;
-                Direction = _above ? CrossingDirection.Falling : CrossingDirection.Rising;
-                _above = !_above;
-                _pending = double.NaN;
-                _index = i;
-                return true;
-            }
-
-            before = now;
+            _index = _last;
+            return false;
         }
 
-        _index = _last;
-        return false;
+        Position = found;
+        Direction = rises ? CrossingDirection.Rising : CrossingDirection.Falling;
+        _above = rises;
+        _start = _index = beyond;
+        return true;
     }
 }

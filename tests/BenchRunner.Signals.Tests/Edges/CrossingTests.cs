@@ -29,6 +29,29 @@ public sealed class CrossingTests
     public void A_crossing_before_the_interval_does_not_count() =>
         Assert.Equal(4.5, Crossing.First([0, 1, 1, 0, 0, 1, 1], 0.5, 0.1, CrossingDirection.Rising, 1, 6));
 
+    /// <summary>The definition, sample by sample: the last straddle before the signal is beyond by the hysteresis.</summary>
+    [Fact]
+    public void Searching_many_samples_a_step_finds_what_the_definition_says() =>
+        Gen.Select(Gen.Int[-4, 4].Select(x => (double)x).Array[2, 60], Gen.Int[-4, 4], Gen.Int[0, 3], Gen.Int[0, 20])
+            .Sample((samples, level, hysteresis, from) =>
+            {
+                double? expected = null;
+                double straddle = double.NaN;
+                for (int i = from + 1; i < samples.Length && expected is null; i++)
+                {
+                    if (samples[i - 1] <= level && samples[i] > level)
+                    {
+                        straddle = i - 1 + ((level - samples[i - 1]) / (samples[i] - samples[i - 1]));
+                    }
+
+                    expected = samples[i] >= level + hysteresis && straddle >= from ? straddle : null;
+                }
+
+                Assert.Equal(
+                    expected,
+                    Crossing.First(samples, level, hysteresis, CrossingDirection.Rising, from, samples.Length - 1));
+            });
+
     [Fact]
     public void The_negated_signal_falls_where_the_signal_rises() =>
         Gen.Double[-10, 10].Array[2, 200].Select(Gen.Double[-10, 10], Gen.Double[0, 3]).Sample((samples, level, hysteresis) =>
