@@ -181,7 +181,8 @@ internal sealed class Analyser
                 EndOfOn2)
             : null;
 
-    /// <summary>Fits the load line; where its start hangs on trr and trr on the line, a few passes settle both.</summary>
+    /// <summary>Fits the load line; where its start hangs on trr and trr on the line, a few passes settle
+    /// both.</summary>
     private Reading FormLoadLine()
     {
         if (Train.On2 is not { } on2)

@@ -33,7 +33,8 @@ public sealed record AnalysisSettings
     /// <summary>Definitions asked for in place of the defaults: quantity to definition ID.</summary>
     public IReadOnlyDictionary<string, string> Definitions { get; init; } = new Dictionary<string, string>();
 
-    /// <summary>Names of the quantities that are wanted; null: all. Sensitivities analyse one record many times.</summary>
+    /// <summary>Names of the quantities that are wanted; null: all. Sensitivities analyse one record many
+    /// times.</summary>
     public IReadOnlySet<string>? Quantities { get; init; }
 
     /// <summary>Whether every definition of the catalogue is formed, or each quantity's chosen one alone.</summary>

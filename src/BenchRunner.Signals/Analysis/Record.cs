@@ -2,7 +2,8 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Analysis;
 
-/// <summary>A waveform as the definitions see it: the low switch fires, every sample is finite, steps are known.</summary>
+/// <summary>A waveform as the definitions see it: the low switch fires, every sample is finite, steps are
+/// known.</summary>
 /// <remarks>With the device in position high, low and high channels change places here and nowhere else.</remarks>
 internal sealed class Record
 {

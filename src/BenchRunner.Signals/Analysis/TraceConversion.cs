@@ -9,9 +9,10 @@ public static class TraceConversion
     /// <summary>Converts the traces of one capture.</summary>
     /// <param name="traces">One trace a channel, on one time base; at least one.</param>
     /// <returns>The waveform, uncorrected, with the step of each channel.</returns>
-    /// <exception cref="ArgumentException">No trace, a channel twice, or traces of different length or time base.</exception>
-    /// <remarks>value = (code − reference) · increment + origin. A code at a rail is converted like any other: whether a
-    /// capture is clipped is a question to the codes, and validity asks it there.</remarks>
+    /// <exception cref="ArgumentException">No trace, a channel twice, or traces of different length or time
+    /// base.</exception>
+    /// <remarks>value = (code − reference) · increment + origin. A code at a rail is converted like any other: whether
+    /// a capture is clipped is a question to the codes, and validity asks it there.</remarks>
     public static Waveform ToWaveform(IReadOnlyList<RawTrace> traces)
     {
         ArgumentNullException.ThrowIfNull(traces);

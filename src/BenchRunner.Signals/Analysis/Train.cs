@@ -61,7 +61,8 @@ internal sealed class Train
         return train;
     }
 
-    /// <summary>Whole-record levels find the edges first; then one pair of levels around off1 serves all of them.</summary>
+    /// <summary>Whole-record levels find the edges first; then one pair of levels around off1 serves all of
+    /// them.</summary>
     private static Train FindEdges(Record record, AnalysisSettings settings)
     {
         const Channel gate = Channel.VgsLow;
@@ -130,7 +131,8 @@ internal sealed class Train
 
     private GateEdge? Edge(int index) => index >= 0 && index < Edges.Count ? Edges[index] : null;
 
-    /// <summary>Whether the current soon after the first turn-on is already most of what it is at the pulse's end.</summary>
+    /// <summary>Whether the current soon after the first turn-on is already most of what it is at the pulse's
+    /// end.</summary>
     private bool StartsLoaded(Record record)
     {
         if (!record.Has(Channel.IdLow))
@@ -164,7 +166,8 @@ internal sealed class Train
         }
     }
 
-    /// <summary>σ before on1; without on1 over the second half of the gap; without either over the whole record.</summary>
+    /// <summary>σ before on1; without on1 over the second half of the gap; without either over the whole
+    /// record.</summary>
     private double SigmaOf(Record record, Channel role)
     {
         (int from, int to) = QuietPart(record);

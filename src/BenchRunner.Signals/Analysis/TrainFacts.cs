@@ -2,7 +2,8 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Analysis;
 
-/// <summary>What a capture says about the pulse train itself: the facts that validity rests on, none of them a measurand.</summary>
+/// <summary>What a capture says about the pulse train itself: the facts that validity rests on, none of them a
+/// measurand.</summary>
 public sealed record TrainFacts
 {
     /// <summary>Every edge of the gate found, in time order, rising and falling alternating.</summary>
@@ -44,10 +45,12 @@ public sealed record TrainFacts
     /// <summary>Slope of the first ramp, A/s (<c>ramp_slope</c>).</summary>
     public double? RampSlope { get; init; }
 
-    /// <summary>Largest |mean residual| over the twentieths of the ramp window over i_off, 1 (<c>ramp_straightness</c>).</summary>
+    /// <summary>Largest |mean residual| over the twentieths of the ramp window over i_off, 1
+    /// (<c>ramp_straightness</c>).</summary>
     public double? RampStraightness { get; init; }
 
-    /// <summary>Slope of the last quarter of the ramp window over that of its first third, less 1; a saturating inductor: +1.11.</summary>
+    /// <summary>Slope of the last quarter of the ramp window over that of its first third, less 1; a saturating
+    /// inductor: +1.11.</summary>
     public double? RampGrowth { get; init; }
 
     /// <summary>Bus voltage before on1 (mean of vbus, else of vds_low), V.</summary>
@@ -59,13 +62,15 @@ public sealed record TrainFacts
     /// <summary>Mean of the switch's vds before on1, V.</summary>
     public double? BlockingBeforeOn1 { get; init; }
 
-    /// <summary>Mean of the switch's current before on1, as recorded and gain-corrected, before its offset was removed, A.</summary>
+    /// <summary>Mean of the switch's current before on1, as recorded and gain-corrected, before its offset was removed,
+    /// A.</summary>
     public double? CurrentBeforeOn1 { get; init; }
 
     /// <summary>Where the offset that was taken off the switch's current came from.</summary>
     public BaselineSource Baseline { get; init; }
 
-    /// <summary>Largest vds of the switch while its gate is on, from 25 % of a pulse to the departure of its end, V.</summary>
+    /// <summary>Largest vds of the switch while its gate is on, from 25 % of a pulse to the departure of its end,
+    /// V.</summary>
     public double? OnStateMaximum { get; init; }
 
     /// <summary>Time of <see cref="OnStateMaximum"/>, s.</summary>

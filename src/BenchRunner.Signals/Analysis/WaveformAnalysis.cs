@@ -12,11 +12,12 @@ public static class WaveformAnalysis
     /// <param name="waveform">The record as it came; an infinity or NaN is a clipped sample. Not modified.</param>
     /// <param name="settings">What is taken as given.</param>
     /// <returns>Facts and quantities in the catalogue's order; a quantity that cannot be formed has a reason.</returns>
-    /// <exception cref="ArgumentException">A stated correction cannot be undone: a gain of 0, a shunt without resistance.
+    /// <exception cref="ArgumentException">A stated correction cannot be undone: a gain of 0, a shunt without
+    /// resistance.
     /// </exception>
     /// <remarks>
-    /// Corrections first, once, in their order; then the gate's edges, the levels, the load current, and what rests on them.
-    /// A quantity whose interval holds a clipped sample of a channel it needs has no value.
+    /// Corrections first, once, in their order; then the gate's edges, the levels, the load current, and what rests on
+    /// them. A quantity whose interval holds a clipped sample of a channel it needs has no value.
     /// </remarks>
     public static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings)
     {
@@ -90,7 +91,8 @@ public static class WaveformAnalysis
         }
     }
 
-    /// <summary>The definition that is asked for, else the default; its route, where none is named, the bench's.</summary>
+    /// <summary>The definition that is asked for, else the default; its route, where none is named, the
+    /// bench's.</summary>
     private static string Chosen(Quantity quantity, Record record, AnalysisSettings settings)
     {
         if (!settings.Definitions.TryGetValue(quantity.Name, out string? id))

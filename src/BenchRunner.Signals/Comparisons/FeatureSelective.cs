@@ -9,8 +9,8 @@ namespace BenchRunner.Signals.Comparisons;
 /// <param name="Feature">Mean feature difference measure, FDM, 1.</param>
 /// <param name="Global">Mean global difference measure, GDM, 1: the mean of √(ADM² + FDM²).</param>
 /// <remarks>
-/// Source: IEEE 1597.1 (weights from memory and public implementations; the anchor below is exact). A copy scaled by s has a
-/// mean FDM of (29/18)|s − 1|/(s + 1) and, without slow content, a mean ADM of |s − 1|/(s + 1).
+/// Source: IEEE 1597.1 (weights from memory and public implementations; the anchor below is exact). A copy scaled by s
+/// has a mean FDM of (29/18)|s − 1|/(s + 1) and, without slow content, a mean ADM of |s − 1|/(s + 1).
 /// </remarks>
 public readonly record struct FeatureSelective(double Amplitude, double Feature, double Global)
 {
@@ -39,8 +39,8 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
     /// <param name="second">The other, on the same grid; finite.</param>
     /// <returns>The measures; null for fewer than 32 samples.</returns>
     /// <exception cref="ArgumentException">The spans differ in length.</exception>
-    /// <remarks>Both spectra are split into slow (the first five bins), low and high parts; the border between low and high
-    /// lies five bins above where the lower of the two has 40 % of its content, softened over six bins.</remarks>
+    /// <remarks>Both spectra are split into slow (the first five bins), low and high parts; the border between low and
+    /// high lies five bins above where the lower of the two has 40 % of its content, softened over six bins.</remarks>
     public static FeatureSelective? Form(ReadOnlySpan<double> first, ReadOnlySpan<double> second)
     {
         if (first.Length != second.Length)

@@ -1,6 +1,7 @@
 namespace BenchRunner.Signals.Comparisons;
 
-/// <summary>How far a measured waveform is from a reference, split into size and timing, after Sprague and Geers.</summary>
+/// <summary>How far a measured waveform is from a reference, split into size and timing, after Sprague and
+/// Geers.</summary>
 /// <param name="Magnitude">Magnitude error M, 1: 0.1 where the measured one is 10 % larger.</param>
 /// <param name="Phase">Phase error P, 1, from 0 (in phase) to 1 (inverted).</param>
 public readonly record struct SpragueGeers(double Magnitude, double Phase)
@@ -13,8 +14,8 @@ public readonly record struct SpragueGeers(double Magnitude, double Phase)
     /// <param name="reference">Reference samples on the same grid; finite, not all zero.</param>
     /// <returns>The errors; null where one of the two is zero throughout.</returns>
     /// <exception cref="ArgumentException">The spans differ in length.</exception>
-    /// <remarks>M = √(Σm²/Σc²) − 1, P = acos(Σmc/√(Σm² Σc²))/π (Sprague and Geers 2004, from memory). The angle is taken
-    /// by its half, 2 atan2(|û − v̂|, |û + v̂|), since acos loses half the digits near equality.</remarks>
+    /// <remarks>M = √(Σm²/Σc²) − 1, P = acos(Σmc/√(Σm² Σc²))/π (Sprague and Geers 2004, from memory). The angle is
+    /// taken by its half, 2 atan2(|û − v̂|, |û + v̂|), since acos loses half the digits near equality.</remarks>
     /// <example>Whole periods of a sine, late by 0.5 rad: M = 0, P = 0.5/π.</example>
     public static SpragueGeers? Form(ReadOnlySpan<double> measured, ReadOnlySpan<double> reference)
     {

@@ -3,7 +3,8 @@ namespace BenchRunner.Signals.Edges;
 /// <summary>Where a signal crosses a level.</summary>
 public static class Crossing
 {
-    /// <summary>The first crossing of a level that counts: the signal goes on beyond the level by the hysteresis.</summary>
+    /// <summary>The first crossing of a level that counts: the signal goes on beyond the level by the
+    /// hysteresis.</summary>
     /// <param name="samples">The signal, uniform; not modified.</param>
     /// <param name="level">The level, in the signal's unit.</param>
     /// <param name="hysteresis">How far beyond the level the signal must go, 0 or more.</param>
@@ -14,8 +15,8 @@ public static class Crossing
     /// null where no crossing counts.</returns>
     /// <remarks>
     /// Where noise crosses several times, it is the last crossing before the hysteresis is reached. A straddle is
-    /// "at or before" then "beyond", so a signal that rests on the level crosses where it leaves it. A sample that is not
-    /// a number never straddles.
+    /// "at or before" then "beyond", so a signal that rests on the level crosses where it leaves it. A sample that is
+    /// not a number never straddles.
     /// </remarks>
     /// <example>Samples 0, 1, 3 cross 2 upwards at 1.5.</example>
     public static double? First(

@@ -2,8 +2,8 @@ namespace BenchRunner.Signals.Edges;
 
 /// <summary>Walks over all crossings of a level that count, upwards and downwards in turn.</summary>
 /// <remarks>
-/// A Schmitt trigger whose reported position is the level's, not the trigger's: a crossing counts when the signal goes on
-/// beyond the level by the hysteresis, and lies where the signal crossed last before that.
+/// A Schmitt trigger whose reported position is the level's, not the trigger's: a crossing counts when the signal goes
+/// on beyond the level by the hysteresis, and lies where the signal crossed last before that.
 /// </remarks>
 public ref struct CrossingScan
 {

@@ -20,8 +20,8 @@ public static class GateEdges
     /// <returns>The edges in time order; empty where the gate does not switch.</returns>
     /// <remarks>
     /// An edge lies at a crossing of 50 % after which further ones do not count for the dead time: a gate rings through
-    /// 50 % many times. Where the dead time ends in the other state all the same (a pulse shorter than it), the last crossing
-    /// inside it is an edge.
+    /// 50 % many times. Where the dead time ends in the other state all the same (a pulse shorter than it), the last
+    /// crossing inside it is an edge.
     /// </remarks>
     public static GateEdge[] Find(
         ReadOnlySpan<double> gate, double dt, TwoLevels levels, double hysteresis, double deadTime)
@@ -56,12 +56,14 @@ public static class GateEdges
         return [.. edges];
     }
 
-    /// <summary>Duration of a gate edge: from its departure to the crossing of the level as near to the other state.</summary>
+    /// <summary>Duration of a gate edge: from its departure to the crossing of the level as near to the other
+    /// state.</summary>
     /// <param name="gate">Gate voltage, V, uniform, finite.</param>
     /// <param name="levels">Off and on level, V.</param>
     /// <param name="hysteresis">Hysteresis of crossings, V.</param>
     /// <param name="edge">The edge.</param>
-    /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the record ends first.</returns>
+    /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the record ends
+    /// first.</returns>
     public static double? Duration(ReadOnlySpan<double> gate, TwoLevels levels, double hysteresis, in GateEdge edge)
     {
         double level = levels.At(edge.Direction == CrossingDirection.Rising ? 0.9 : 0.1);
@@ -87,7 +89,8 @@ public static class GateEdges
     }
 
     /// <summary>The earliest crossing of 10 % (90 % at turn-off) of the cluster that leads to the edge.</summary>
-    /// <remarks>The percents lie between the level the gate leaves, which may have drifted, and the other state's.</remarks>
+    /// <remarks>The percents lie between the level the gate leaves, which may have drifted, and the other
+    /// state's.</remarks>
     private static double Departure(
         ReadOnlySpan<double> gate,
         double dt,
@@ -118,7 +121,8 @@ public static class GateEdges
         return double.IsNaN(earliest) ? at : earliest;
     }
 
-    /// <summary>Median of the gate from 0.8 to 0.4 µs before the edge, or of the middle half of a shorter state, V.</summary>
+    /// <summary>Median of the gate from 0.8 to 0.4 µs before the edge, or of the middle half of a shorter state,
+    /// V.</summary>
     private static double LevelLeft(ReadOnlySpan<double> gate, double dt, double state, double at)
     {
         bool longEnough = (at - state) * dt >= StateFrom;

@@ -5,7 +5,8 @@ namespace BenchRunner.Signals.Energy;
 /// <summary>How an energy changes with the skew between voltage and current, W (J a second of skew).</summary>
 public static class SkewSensitivity
 {
-    /// <summary>The change of ∫ v i dt over an interval when the current is recorded later, per second of delay.</summary>
+    /// <summary>The change of ∫ v i dt over an interval when the current is recorded later, per second of
+    /// delay.</summary>
     /// <param name="voltage">Voltage, V, uniform.</param>
     /// <param name="current">Current, A, on the same grid.</param>
     /// <param name="dt">Sample interval, s; above 0.</param>
@@ -14,8 +15,8 @@ public static class SkewSensitivity
     /// <param name="fromMoves">Whether the interval's start is a crossing of the current, and so moves with it.</param>
     /// <param name="toMoves">Whether its end is.</param>
     /// <returns>dE/dδ = −∫ v (di/dt) dt, and where an end moves with the current ± v i there, W.</returns>
-    /// <remarks>To first order, for an edge without recovery, −V I at turn-on and +V I at turn-off: 80 µJ/ns at 800 V and
-    /// 100 A; with recovery it is more.</remarks>
+    /// <remarks>To first order, for an edge without recovery, −V I at turn-on and +V I at turn-off: 80 µJ/ns at 800 V
+    /// and 100 A; with recovery it is more.</remarks>
     public static double Form(
         ReadOnlySpan<double> voltage,
         ReadOnlySpan<double> current,

@@ -2,7 +2,8 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Signals.Levels;
 
-/// <summary>What the first pulse takes from the bus, 1: <c>bus_droop</c>, definition <c>droop/first-pulse</c>.</summary>
+/// <summary>What the first pulse takes from the bus, 1: <c>bus_droop</c>, definition
+/// <c>droop/first-pulse</c>.</summary>
 public static class Droop
 {
     /// <summary>The fall of the bus over the first pulse, as a part of what it was.</summary>

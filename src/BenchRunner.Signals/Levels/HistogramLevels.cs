@@ -1,6 +1,7 @@
 namespace BenchRunner.Signals.Levels;
 
-/// <summary>State levels by a two-state histogram: <c>vgs_on</c>, <c>vgs_off</c>, definition <c>levels/histogram</c>.</summary>
+/// <summary>State levels by a two-state histogram: <c>vgs_on</c>, <c>vgs_off</c>, definition
+/// <c>levels/histogram</c>.</summary>
 public static class HistogramLevels
 {
     /// <summary>Bins of the histogram unless told otherwise (common choice of IEEE 181 users; a parameter).</summary>
@@ -13,10 +14,11 @@ public static class HistogramLevels
     /// <param name="bins">Most bins between the extremes.</param>
     /// <returns>The levels, or null where the signal does not leave its noise.</returns>
     /// <remarks>
-    /// Bins between the extremes, at least one LSB wide (narrower ones would leave gaps and split a mode); the histogram is
-    /// split at its middle, the fullest bin of each half is its mode, refined to the mean of the samples within
-    /// ±max(3 σ, one bin) of it. Source: IEEE 181-2011 clause 5, levels by histogram mode. Overshoot moves the split, not the
-    /// modes; a signal without two states has two modes all the same, so a swing below 6 σ is refused. Not for currents.
+    /// Bins between the extremes, at least one LSB wide (narrower ones would leave gaps and split a mode); the
+    /// histogram is split at its middle, the fullest bin of each half is its mode, refined to the mean of the samples
+    /// within ±max(3 σ, one bin) of it. Source: IEEE 181-2011 clause 5, levels by histogram mode. Overshoot moves the
+    /// split, not the modes; a signal without two states has two modes all the same, so a swing below 6 σ is refused.
+    /// Not for currents.
     /// </remarks>
     public static TwoLevels? Find(ReadOnlySpan<double> samples, double sigma, double step, int bins = Bins)
     {

@@ -2,9 +2,9 @@ namespace BenchRunner.Signals.Levels;
 
 /// <summary>Integrals over an interval whose ends lie between samples.</summary>
 /// <remarks>
-/// The trapezoidal rule, with the part-samples at both ends: between samples a signal, or the product of two, is the straight
-/// line that joins them. So integrals over adjacent intervals add up. Summed left to right: the same bits everywhere. A
-/// curvature c between samples costs c · dt²/12 an unit of time.
+/// The trapezoidal rule, with the part-samples at both ends: between samples a signal, or the product of two, is the
+/// straight line that joins them. So integrals over adjacent intervals add up. Summed left to right: the same bits
+/// everywhere. A curvature c between samples costs c · dt²/12 an unit of time.
 /// </remarks>
 public static class Integral
 {
@@ -74,7 +74,8 @@ public static class Integral
         return sum + ((now + end) / 2 * (to - last));
     }
 
-    /// <summary>The mean of a signal over an interval: its integral over its length; the value itself where that is 0.</summary>
+    /// <summary>The mean of a signal over an interval: its integral over its length; the value itself where that is
+    /// 0.</summary>
     /// <param name="samples">The signal, uniform.</param>
     /// <param name="from">Start, in samples; inside the span.</param>
     /// <param name="to">End, in samples; not before <paramref name="from"/>, inside the span.</param>

@@ -6,7 +6,8 @@ public static class Median
     /// <summary>The middle value; of an even count the mean of the two middle ones.</summary>
     /// <param name="values">The numbers, finite, at least one; reordered.</param>
     /// <exception cref="ArgumentException">No numbers.</exception>
-    /// <remarks>Selection by partition around the middle of three: linear on average, the same on every platform.</remarks>
+    /// <remarks>Selection by partition around the middle of three: linear on average, the same on every
+    /// platform.</remarks>
     public static double Of(Span<double> values)
     {
         if (values.IsEmpty)

@@ -14,8 +14,8 @@ public static class Noise
     /// <param name="stride">Takes each stride-th difference; 1: all.</param>
     /// <returns>σ in the signal's unit, at least LSB/√12; that floor alone for fewer than three samples.</returns>
     /// <remarks>
-    /// σ = 1.4826 · MAD(x[i+1] − x[i]) / √2. First differences take out level and slope, the median takes out edges. The
-    /// floor is needed because codes of 8 bits repeat, and the MAD of mostly equal codes is zero. Noise that is not
+    /// σ = 1.4826 · MAD(x[i+1] − x[i]) / √2. First differences take out level and slope, the median takes out edges.
+    /// The floor is needed because codes of 8 bits repeat, and the MAD of mostly equal codes is zero. Noise that is not
     /// white up to the sample rate (a bandwidth-limited probe) comes out too small.
     /// </remarks>
     public static double Sigma(ReadOnlySpan<double> samples, double step, int stride = 1)

@@ -35,18 +35,21 @@ public sealed class FirstRamp
     /// <summary>The fitted current at off1's 50 % crossing, A.</summary>
     public Reading OffCurrent { get; }
 
-    /// <summary>Slope of the last quarter of the window over that of its first third, less 1; 0 for a straight ramp.</summary>
+    /// <summary>Slope of the last quarter of the window over that of its first third, less 1; 0 for a straight
+    /// ramp.</summary>
     public Reading Growth { get; }
 
     /// <summary>Fits the ramp.</summary>
     /// <param name="current">Current of the firing switch, A, uniform, offset removed, finite.</param>
     /// <param name="dt">Sample interval, s; above 0.</param>
-    /// <param name="on1">50 % crossing of on1, in samples; null: before the record, the fit then begins at its start.</param>
+    /// <param name="on1">50 % crossing of on1, in samples; null: before the record, the fit then begins at its
+    /// start.</param>
     /// <param name="off1">50 % crossing of off1, in samples.</param>
     /// <param name="departure">Departure of off1, in samples.</param>
     /// <param name="parts">Parts of the window for the straightness.</param>
     /// <returns>The four readings, each with its own reason where it cannot be formed.</returns>
-    /// <remarks>Source: least squares; a saturating inductor bends the ramp upwards, a slipping current limit downwards.
+    /// <remarks>Source: least squares; a saturating inductor bends the ramp upwards, a slipping current limit
+    /// downwards.
     /// </remarks>
     /// <example>0.3 A + 5 A/µs · t, pulse 0 to 5 µs: 5 A/µs, 0, 25.3 A.</example>
     public static FirstRamp Fit(

@@ -1,7 +1,8 @@
 namespace BenchRunner.Signals.LoadCurrent;
 
 /// <summary>A straight line over positions in samples: value = centre value + slope · (position − centre).</summary>
-/// <param name="Centre">Position of the middle of the fit, in samples: there value and slope do not depend on each other.</param>
+/// <param name="Centre">Position of the middle of the fit, in samples: there value and slope do not depend on each
+/// other.</param>
 /// <param name="Value">Value at <paramref name="Centre"/>.</param>
 /// <param name="Slope">Slope, a sample.</param>
 public readonly record struct Line(double Centre, double Value, double Slope)
@@ -15,8 +16,10 @@ public readonly record struct Line(double Centre, double Value, double Slope)
     /// <param name="from">Start of the interval, in samples.</param>
     /// <param name="to">End of the interval, in samples.</param>
     /// <param name="slope">The slope a sample where it is held; null: it is fitted too.</param>
-    /// <returns>The line; null where the interval holds fewer than three samples (one where the slope is held).</returns>
-    /// <remarks>Ordinary least squares on a uniform grid: the sum of squared positions is closed, n(n² − 1)/12.</remarks>
+    /// <returns>The line; null where the interval holds fewer than three samples (one where the slope is
+    /// held).</returns>
+    /// <remarks>Ordinary least squares on a uniform grid: the sum of squared positions is closed, n(n² −
+    /// 1)/12.</remarks>
     public static Line? Fit(ReadOnlySpan<double> samples, double from, double to, double? slope = null)
     {
         int first = Math.Max(0, (int)Math.Ceiling(Math.Min(from, samples.Length)));

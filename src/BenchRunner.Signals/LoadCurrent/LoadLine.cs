@@ -5,8 +5,8 @@ namespace BenchRunner.Signals.LoadCurrent;
 /// <summary>
 /// The load's current through turn-on, iL(t), and its value at turn-on: <c>i_on</c>, definition <c>iload/ramp</c>.
 /// </summary>
-/// <param name="Knee">Instant at which vds of the firing switch falls through 50 %, in samples: before it the load sees no
-/// voltage and its current is taken as constant.</param>
+/// <param name="Knee">Instant at which vds of the firing switch falls through 50 %, in samples: before it the load sees
+/// no voltage and its current is taken as constant.</param>
 /// <param name="Ramp">The line fitted to the second pulse after the ringing.</param>
 /// <param name="From">Start of the fit window, in samples.</param>
 /// <param name="To">End of the fit window, in samples.</param>
@@ -34,7 +34,8 @@ public readonly record struct LoadLine(double Knee, Line Ramp, double From, doub
     /// <param name="off2">50 % crossing of off2, in samples; null: after the record.</param>
     /// <param name="knee">Instant at which vds falls through 50 %, in samples.</param>
     /// <param name="start">Start of the fit window, in samples: the ringing has decayed, the recovery is over.</param>
-    /// <param name="firstSlope">Slope of the first ramp, A a sample, to which a short window is held; null: none.</param>
+    /// <param name="firstSlope">Slope of the first ramp, A a sample, to which a short window is held; null:
+    /// none.</param>
     /// <param name="reason">Why there is no line; null where there is one.</param>
     /// <returns>The line; default where there is none.</returns>
     public static LoadLine Fit(

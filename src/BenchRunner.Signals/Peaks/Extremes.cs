@@ -1,6 +1,7 @@
 namespace BenchRunner.Signals.Peaks;
 
-/// <summary>Walks over the maxima of a signal that stand out by a prominence; over minima, of the negated signal.</summary>
+/// <summary>Walks over the maxima of a signal that stand out by a prominence; over minima, of the negated
+/// signal.</summary>
 /// <remarks>
 /// A maximum counts when the signal rose to it by the prominence since the last minimum that counts, and falls by the
 /// prominence afterwards, inside the span: its topographic prominence. One pass, linear in the samples.

@@ -17,8 +17,8 @@ public static class HighSidePeaks
     /// <param name="to">The next edge, or the record's end, in samples.</param>
     /// <param name="number">Which maximum: 1, 2 or 3.</param>
     /// <returns>Its height by the parabola through three samples, V.</returns>
-    /// <remarks>A maximum counts when it lies above the bus and its prominence is at least max(5 σ, 0.5 % of the bus): noise
-    /// and a second mode would be counted otherwise.</remarks>
+    /// <remarks>A maximum counts when it lies above the bus and its prominence is at least max(5 σ, 0.5 % of the bus):
+    /// noise and a second mode would be counted otherwise.</remarks>
     public static Reading Form(
         ReadOnlySpan<double> vdsHigh, Reading bus, double sigma, double from, double to, int number)
     {

@@ -2,7 +2,8 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Signals.Peaks;
 
-/// <summary>The top of a signal: definitions <c>peak/raw</c>, <c>peak/above-load</c> and <c>peak/parabola-20</c>.</summary>
+/// <summary>The top of a signal: definitions <c>peak/raw</c>, <c>peak/above-load</c> and
+/// <c>peak/parabola-20</c>.</summary>
 /// <param name="Height">The maximum, in the signal's unit.</param>
 /// <param name="Position">Where it lies, in samples.</param>
 /// <param name="Sample">The highest sample.</param>
@@ -14,10 +15,11 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// <param name="samples">The signal, uniform.</param>
     /// <param name="from">First position, in samples.</param>
     /// <param name="to">Last position, in samples.</param>
-    /// <returns>The peak; null where the highest sample has no neighbour on both sides inside the interval: the signal then
-    /// still rises or already falls at its end.</returns>
-    /// <remarks>y0 + (y₊ − y₋)² / (8 (2 y0 − y₋ − y₊)), at (y₊ − y₋) / (2 (2 y0 − y₋ − y₊)) samples after the highest. Of
-    /// equal samples the first. A corner costs up to dt/8 times the difference of its slopes; noise only ever adds.</remarks>
+    /// <returns>The peak; null where the highest sample has no neighbour on both sides inside the interval: the signal
+    /// then still rises or already falls at its end.</returns>
+    /// <remarks>y0 + (y₊ − y₋)² / (8 (2 y0 − y₋ − y₊)), at (y₊ − y₋) / (2 (2 y0 − y₋ − y₊)) samples after the highest.
+    /// Of equal samples the first. A corner costs up to dt/8 times the difference of its slopes; noise only ever
+    /// adds.</remarks>
     /// <example>1.0, 3.0, 2.5 peak at 3.1125, 0.3 samples after the middle one.</example>
     public static Peak? Raw(ReadOnlySpan<double> samples, double from, double to)
     {
@@ -32,7 +34,8 @@ public readonly record struct Peak(double Height, double Position, int Sample)
         return top > first && top < last ? Vertex(samples, top) : null;
     }
 
-    /// <summary>The vertex of the parabola through a sample, not lower than its neighbours, and its neighbours.</summary>
+    /// <summary>The vertex of the parabola through a sample, not lower than its neighbours, and its
+    /// neighbours.</summary>
     /// <param name="samples">The signal, uniform.</param>
     /// <param name="top">The sample; it has a neighbour on both sides.</param>
     public static Peak Vertex(ReadOnlySpan<double> samples, int top)
@@ -49,10 +52,10 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// <param name="from">First position, in samples.</param>
     /// <param name="to">Last position, in samples.</param>
     /// <param name="base">What the peak stands on, in the signal's unit.</param>
-    /// <returns>The height over the run of samples that was fitted; a reason where fewer than three samples lie in the top
-    /// fifth or the parabola has no maximum among them.</returns>
-    /// <remarks>The run is the unbroken one around the highest sample above base + 80 % of (highest − base). For σ above
-    /// 0.2 % of the peak; a narrow peak is flattened by it.</remarks>
+    /// <returns>The height over the run of samples that was fitted; a reason where fewer than three samples lie in the
+    /// top fifth or the parabola has no maximum among them.</returns>
+    /// <remarks>The run is the unbroken one around the highest sample above base + 80 % of (highest − base). For σ
+    /// above 0.2 % of the peak; a narrow peak is flattened by it.</remarks>
     public static Reading TopFifth(ReadOnlySpan<double> samples, double from, double to, double @base)
     {
         if (Raw(samples, from, to) is not { } raw)

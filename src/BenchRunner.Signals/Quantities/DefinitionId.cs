@@ -2,7 +2,8 @@ using System.Globalization;
 
 namespace BenchRunner.Signals.Quantities;
 
-/// <summary>How a definition's ID is written: the rule, then the route to the diode's current where it has one.</summary>
+/// <summary>How a definition's ID is written: the rule, then the route to the diode's current where it has
+/// one.</summary>
 public static class DefinitionId
 {
     /// <summary>Suffix of the route by the switch's current less the load-current line.</summary>

@@ -3,7 +3,8 @@ using System.Text;
 
 namespace BenchRunner.Signals.Quantities;
 
-/// <summary>Every quantity and every definition: the one catalogue that analysis, limits, documents and reports use.</summary>
+/// <summary>Every quantity and every definition: the one catalogue that analysis, limits, documents and reports
+/// use.</summary>
 /// <remarks>Under position <c>high</c> the places change roles: an ID then reads with low and high swapped.</remarks>
 public static class QuantityCatalogue
 {

@@ -3,7 +3,8 @@ using static BenchRunner.Signals.Traces.Channel;
 
 namespace BenchRunner.Signals.Quantities;
 
-/// <summary>The catalogue's entries of the ringing after an edge: of the strongest mode of a fit of damped cosines.</summary>
+/// <summary>The catalogue's entries of the ringing after an edge: of the strongest mode of a fit of damped
+/// cosines.</summary>
 internal static class RingQuantities
 {
     private static readonly Channel[] _diode = [VgsLow, VdsHigh];

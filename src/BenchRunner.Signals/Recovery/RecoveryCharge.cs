@@ -5,10 +5,11 @@ using BenchRunner.Signals.Switching;
 
 namespace BenchRunner.Signals.Recovery;
 
-/// <summary>Reverse recovery charge, C: <c>qrr</c>, what the diode gives back after its current has crossed zero.</summary>
+/// <summary>Reverse recovery charge, C: <c>qrr</c>, what the diode gives back after its current has crossed
+/// zero.</summary>
 /// <remarks>
-/// Qrr = ∫ irr dt from t0 to an end that is part of the ID. Contains the charge of the output capacitance: for a fast device
-/// that is most of it. Source: IEC 60747-2 (recovered charge, integration time).
+/// Qrr = ∫ irr dt from t0 to an end that is part of the ID. Contains the charge of the output capacitance: for a fast
+/// device that is most of it. Source: IEC 60747-2 (recovered charge, integration time).
 /// </remarks>
 public static class RecoveryCharge
 {

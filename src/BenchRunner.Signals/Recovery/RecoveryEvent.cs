@@ -6,8 +6,9 @@ namespace BenchRunner.Signals.Recovery;
 
 /// <summary>The recovery of the freewheeling diode at turn-on: its current with peak and zero crossing.</summary>
 /// <remarks>
-/// irr is positive in the reverse direction: id_high where that is measured, id_low − iL(t) otherwise; the two differ by
-/// the current of the load's winding capacitance. Of a fast device, irr is largely the charging of its output capacitance.
+/// irr is positive in the reverse direction: id_high where that is measured, id_low − iL(t) otherwise; the two differ
+/// by the current of the load's winding capacitance. Of a fast device, irr is largely the charging of its output
+/// capacitance.
 /// </remarks>
 public readonly ref struct RecoveryEvent
 {

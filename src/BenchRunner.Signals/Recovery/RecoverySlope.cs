@@ -5,10 +5,12 @@ using BenchRunner.Signals.Switching;
 
 namespace BenchRunner.Signals.Recovery;
 
-/// <summary>Slopes around the recovery, A/s: <c>dif_dt</c> before it (commutation), <c>dirr_dt</c> after its peak.</summary>
+/// <summary>Slopes around the recovery, A/s: <c>dif_dt</c> before it (commutation), <c>dirr_dt</c> after its
+/// peak.</summary>
 public static class RecoverySlope
 {
-    /// <summary><c>dirr_dt</c>, definition <c>slope/90-25</c>: magnitude of the fall between 90 % and 25 % of irm.</summary>
+    /// <summary><c>dirr_dt</c>, definition <c>slope/90-25</c>: magnitude of the fall between 90 % and 25 % of
+    /// irm.</summary>
     /// <param name="recovery">The recovery.</param>
     /// <returns>Magnitude of the mean slope, A/s.</returns>
     /// <remarks>A snappy diode falls within a few samples: resolution and bandwidth then decide.</remarks>
@@ -25,11 +27,12 @@ public static class RecoverySlope
         return Reading.Of((0.90 - 0.25) * recovery.Top.Height / time, high.At, low.At);
     }
 
-    /// <summary><c>dif_dt</c>, definition <c>slope/50-50</c>: slope of the commutation between irr = −50 % of i_on and t0.
+    /// <summary><c>dif_dt</c>, definition <c>slope/50-50</c>: slope of the commutation between irr = −50 % of i_on and
+    /// t0.
     /// </summary>
     /// <param name="recovery">The recovery.</param>
-    /// <param name="current">Current of the firing switch, A, on the grid of irr (or irr itself: while the load's current
-    /// stands still both have one slope).</param>
+    /// <param name="current">Current of the firing switch, A, on the grid of irr (or irr itself: while the load's
+    /// current stands still both have one slope).</param>
     /// <param name="onCurrent">i_on, A.</param>
     /// <returns>The mean slope of the switch's current, A/s.</returns>
     public static Reading Commutation(in RecoveryEvent recovery, ReadOnlySpan<double> current, Reading onCurrent)

@@ -9,8 +9,8 @@ namespace BenchRunner.Signals.Recovery;
 /// ends the recovery.
 /// </summary>
 /// <remarks>
-/// From t0, where irr crosses zero upwards, to an end that is a matter of definition: one recovery (20 A after 10 ns, tail
-/// of 20 ns) lasts 47.58 ns by the chord and 88.24 ns by the fall to 2 %. Hence the rule is part of the ID.
+/// From t0, where irr crosses zero upwards, to an end that is a matter of definition: one recovery (20 A after 10 ns,
+/// tail of 20 ns) lasts 47.58 ns by the chord and 88.24 ns by the fall to 2 %. Hence the rule is part of the ID.
 /// </remarks>
 public static class RecoveryTime
 {
@@ -18,7 +18,8 @@ public static class RecoveryTime
     private const double ChordLow = 0.25;
     private const double NearPart = 0.01;
 
-    /// <summary><c>trr/chord-90-25</c>: the chord through the first 90 % and 25 % of irm after the peak meets zero.</summary>
+    /// <summary><c>trr/chord-90-25</c>: the chord through the first 90 % and 25 % of irm after the peak meets
+    /// zero.</summary>
     /// <param name="recovery">The recovery.</param>
     /// <returns>The end, or why there is none.</returns>
     /// <remarks>Source: IEC 60747-2 and -8. Exact on a straight fall; on an exponential tail 1.878960 τ after the peak.

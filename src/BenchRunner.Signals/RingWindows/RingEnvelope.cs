@@ -56,8 +56,8 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
     }
 
     /// <summary>From the distance of the first maxima; where that leads nowhere, from the dominant subspace.</summary>
-    /// <remarks>Where the model is rough the search creeps at its end; the envelope needs no twelve digits, so it is taken
-    /// as it stands when it explains the better part of the samples.</remarks>
+    /// <remarks>Where the model is rough the search creeps at its end; the envelope needs no twelve digits, so it is
+    /// taken as it stands when it explains the better part of the samples.</remarks>
     private static bool Solve(RingFitSolver solver, ReadOnlySpan<double> y, double period)
     {
         Span<double> turn = [2 * Math.PI / period];

@@ -6,9 +6,10 @@ namespace BenchRunner.Signals.RingWindows;
 
 /// <summary>The part of a signal in which its ringing is fitted, and the strongest mode found there.</summary>
 /// <remarks>
-/// It starts one period after the first extremum of the diode's voltage: at the extremum itself the tail of the recovery
-/// and the nonlinear capacitance still act, and damping comes out 6 to 27 % too high. It ends where the envelope is within
-/// the noise or below 1 % of the first swing, or at the next edge. The period is that of a one-mode fit over six periods.
+/// It starts one period after the first extremum of the diode's voltage: at the extremum itself the tail of the
+/// recovery and the nonlinear capacitance still act, and damping comes out 6 to 27 % too high. It ends where the
+/// envelope is within the noise or below 1 % of the first swing, or at the next edge. The period is that of a one-mode
+/// fit over six periods.
 /// </remarks>
 public sealed class RingWindow
 {
@@ -84,7 +85,8 @@ public sealed class RingWindow
         return window;
     }
 
-    /// <summary>The ringing of a current from the same instant on; its first swing is its envelope at the extremum.</summary>
+    /// <summary>The ringing of a current from the same instant on; its first swing is its envelope at the
+    /// extremum.</summary>
     /// <param name="current">The current, A, uniform, finite.</param>
     /// <param name="dt">Sample interval, s; above 0.</param>
     /// <param name="voltage">The window of the voltage that rings with it.</param>

@@ -16,7 +16,8 @@ public static class LoopInductance
     /// <returns>Inductance, H, over the interval from 10 % to 90 % of i_on.</returns>
     /// <remarks>
     /// L = ∫ (bus − vds_low − vds_high − R id) dt / Δid. An integral, since a fit of voltage against di/dt fails under
-    /// noise. The bus voltage is the one before the edge: the drop on the capacitor's own inductance belongs to the loop.
+    /// noise. The bus voltage is the one before the edge: the drop on the capacitor's own inductance belongs to the
+    /// loop.
     /// </remarks>
     /// <example>100 V missing for 16 ns while the current rises by 80 A: 20 nH.</example>
     public static Reading Form(

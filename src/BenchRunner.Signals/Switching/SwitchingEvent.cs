@@ -3,10 +3,11 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Signals.Switching;
 
-/// <summary>One turn-on or turn-off of the firing switch: the samples and levels that its quantities are read from.</summary>
+/// <summary>One turn-on or turn-off of the firing switch: the samples and levels that its quantities are read
+/// from.</summary>
 /// <remarks>
-/// A p % level of vds is on + p (bus − on), everywhere; a p % level of the current is p of the load's. A level that lies
-/// within the hysteresis of its 0 % state has no crossing: "level within the noise".
+/// A p % level of vds is on + p (bus − on), everywhere; a p % level of the current is p of the load's. A level that
+/// lies within the hysteresis of its 0 % state has no crossing: "level within the noise".
 /// </remarks>
 public readonly ref struct SwitchingEvent
 {
@@ -54,8 +55,8 @@ public readonly ref struct SwitchingEvent
 
     /// <summary>When vds crosses a fraction of its step: downwards at turn-on, upwards at turn-off.</summary>
     /// <param name="fraction">The fraction, 0 to 1.</param>
-    /// <param name="decided">Whether the crossing must be decided, as times and slopes need it (energies do not): vds must
-    /// not move back by the hysteresis before it is 2 % of the step beyond the level.</param>
+    /// <param name="decided">Whether the crossing must be decided, as times and slopes need it (energies do not): vds
+    /// must not move back by the hysteresis before it is 2 % of the step beyond the level.</param>
     public Instant Voltage(double fraction, bool decided)
     {
         if (Levels() is { } reason)

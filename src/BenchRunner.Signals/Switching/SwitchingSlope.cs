@@ -2,9 +2,10 @@ using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Signals.Switching;
 
-/// <summary>Mean slopes of an edge, as magnitudes: <c>dvdt_on</c>, <c>dvdt_off</c>, V/s; <c>didt_on</c>, <c>didt_off</c>,
-/// A/s.</summary>
-/// <remarks>The straight line between two crossings, not the steepest slope: that one is mostly noise and bandwidth.</remarks>
+/// <summary>Mean slopes of an edge, as magnitudes: <c>dvdt_on</c>, <c>dvdt_off</c>, V/s; <c>didt_on</c>,
+/// <c>didt_off</c>, A/s.</summary>
+/// <remarks>The straight line between two crossings, not the steepest slope: that one is mostly noise and
+/// bandwidth.</remarks>
 public static class SwitchingSlope
 {
     /// <summary><c>slope/20-80</c> and <c>slope/10-90</c> of vds.</summary>

@@ -18,7 +18,8 @@ public enum Channel
     /// <summary><c>vds_high</c>: drain-source voltage of the high position, V.</summary>
     VdsHigh,
 
-    /// <summary><c>id_high</c>: current into the drain of the high position, A; positive is a diode's reverse current.</summary>
+    /// <summary><c>id_high</c>: current into the drain of the high position, A; positive is a diode's reverse
+    /// current.</summary>
     IdHigh,
 
     /// <summary><c>vbus</c>: voltage of the bus capacitor at the half bridge, V.</summary>

@@ -14,7 +14,8 @@ public sealed class Waveform
     /// <param name="timeOrigin">Time of the first sample, s.</param>
     /// <param name="sampleInterval">Sample interval, s; finite, above 0.</param>
     /// <param name="channels">The samples of each channel, V or A.</param>
-    /// <param name="steps">The smallest step of the record of each channel (LSB), V or A; 0 or absent: found from the samples.</param>
+    /// <param name="steps">The smallest step of the record of each channel (LSB), V or A; 0 or absent: found from the
+    /// samples.</param>
     /// <exception cref="ArgumentException">No channel, or channels of different length.</exception>
     /// <exception cref="ArgumentOutOfRangeException">The sample interval is not finite and positive.</exception>
     public Waveform(

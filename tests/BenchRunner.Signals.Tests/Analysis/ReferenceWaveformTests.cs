@@ -7,8 +7,8 @@ using BenchRunner.Signals.Tests.Support;
 namespace BenchRunner.Signals.Tests.Analysis;
 
 /// <summary>
-/// Waveforms of a general-purpose circuit simulator against values extracted by code that shares nothing with ours, within
-/// the tolerances stated beside them (tests/reference/waveforms/README.md).
+/// Waveforms of a general-purpose circuit simulator against values extracted by code that shares nothing with ours,
+/// within the tolerances stated beside them (tests/reference/waveforms/README.md).
 /// </summary>
 public sealed class ReferenceWaveformTests(ITestOutputHelper output)
 {

@@ -109,7 +109,8 @@ public sealed class ClosedFormTests
         };
     }
 
-    /// <summary>The tolerance of the file; where the waveform has corners, what sampling them costs comes on top.</summary>
+    /// <summary>The tolerance of the file; where the waveform has corners, what sampling them costs comes on
+    /// top.</summary>
     private static double Allowed(JsonElement of, string key, double wanted)
     {
         double relative = of.GetProperty("tol_rel").GetDouble();

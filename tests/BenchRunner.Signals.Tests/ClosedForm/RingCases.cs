@@ -39,9 +39,10 @@ internal static class RingCases
         return got;
     }
 
-    /// <summary>What a noisy record may be off: four standard deviations at the Cramér-Rao bound, which the file gives for
-    /// frequency and damping. What follows from those two takes theirs; of the amplitude, which has no bound in the file,
-    /// the relative one at high signal to noise is near the damping's (both are the envelope's, by two thirds correlated).
+    /// <summary>What a noisy record may be off: four standard deviations at the Cramér-Rao bound, which the file gives
+    /// for frequency and damping. What follows from those two takes theirs; of the amplitude, which has no bound in the
+    /// file, the relative one at high signal to noise is near the damping's (both are the envelope's, by two thirds
+    /// correlated).
     /// </summary>
     public static double Noise(JsonElement of, string key, double wanted)
     {

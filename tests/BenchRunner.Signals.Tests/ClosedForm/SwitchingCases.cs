@@ -75,8 +75,8 @@ internal static class SwitchingCases
 
     public static double? Value(Reading reading) => reading.HasValue ? reading.Value : null;
 
-    /// <summary>What the trapezoidal rule costs where voltage and current both change: dt²/12 times the product's curvature
-    /// over the overlap, J. Twice where an energy is a difference of two.</summary>
+    /// <summary>What the trapezoidal rule costs where voltage and current both change: dt²/12 times the product's
+    /// curvature over the overlap, J. Twice where an energy is a difference of two.</summary>
     public static double Trapezoid(JsonElement voltage, JsonElement current, double shift) =>
         2 * _fine.Interval * _fine.Interval / 12 * 2 * Steepest(voltage) * Steepest(current) * Math.Abs(shift);
 

@@ -29,7 +29,8 @@ public sealed class CrossingTests
     public void A_crossing_before_the_interval_does_not_count() =>
         Assert.Equal(4.5, Crossing.First([0, 1, 1, 0, 0, 1, 1], 0.5, 0.1, CrossingDirection.Rising, 1, 6));
 
-    /// <summary>The definition, sample by sample: the last straddle before the signal is beyond by the hysteresis.</summary>
+    /// <summary>The definition, sample by sample: the last straddle before the signal is beyond by the
+    /// hysteresis.</summary>
     [Fact]
     public void Searching_many_samples_a_step_finds_what_the_definition_says() =>
         Gen.Select(Gen.Int[-4, 4].Select(x => (double)x).Array[2, 60], Gen.Int[-4, 4], Gen.Int[0, 3], Gen.Int[0, 20])
