@@ -179,5 +179,6 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             analyser.MeanBefore(Channel.Vbus, on1.Departure), analyser.MeanBefore(Channel.Vbus, off1.Departure));
     }
 
-    private static Reading Unknown(string quantity, string rule) => Reading.None($"{quantity} has no definition {rule}");
+    private static Reading Unknown(string quantity, string rule) =>
+        Reading.None($"{quantity} has no definition {rule}");
 }

@@ -118,8 +118,8 @@ internal sealed class Train
             return;
         }
 
-        // A train that begins with a turn-off began inside the first pulse; one that begins with a turn-on and has no third
-        // edge is the first pulse, unless the load already carries current when it begins.
+        // A train that begins with a turn-off began inside the first pulse; one that begins with a turn-on and has no
+        // third edge is the first pulse, unless the load already carries current when it begins.
         int offset = Edges[0].Direction == CrossingDirection.Falling ? 1
             : Edges.Count < 3 && StartsLoaded(record) ? 2
             : 0;

@@ -20,7 +20,12 @@ public static class Crossing
     /// </remarks>
     /// <example>Samples 0, 1, 3 cross 2 upwards at 1.5.</example>
     public static double? First(
-        ReadOnlySpan<double> samples, double level, double hysteresis, CrossingDirection direction, double from, double to)
+        ReadOnlySpan<double> samples,
+        double level,
+        double hysteresis,
+        CrossingDirection direction,
+        double from,
+        double to)
     {
         int start = Math.Max(0, (int)Math.Floor(Math.Min(from, samples.Length)));
         int last = (int)Math.Min(samples.Length - 1, Math.Ceiling(to));

@@ -6,8 +6,8 @@ namespace BenchRunner.Signals.Edges;
 /// <summary>The edges of a pulse train, from the firing gate.</summary>
 public static class GateEdges
 {
-    // The state before an edge is looked at from 0.8 to 0.4 µs before it: late enough to be settled, early enough not to
-    // hold the edge itself.
+    // The state before an edge is looked at from 0.8 to 0.4 µs before it: late enough to be settled, early enough
+    // not to hold the edge itself.
     private const double StateFrom = 0.8e-6;
     private const double StateTo = 0.4e-6;
 
@@ -67,7 +67,8 @@ public static class GateEdges
     public static double? Duration(ReadOnlySpan<double> gate, TwoLevels levels, double hysteresis, in GateEdge edge)
     {
         double level = levels.At(edge.Direction == CrossingDirection.Rising ? 0.9 : 0.1);
-        return Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, gate.Length - 1) - edge.Departure;
+        double? end = Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, gate.Length - 1);
+        return end - edge.Departure;
     }
 
     private static CrossingDirection Opposite(CrossingDirection direction) =>

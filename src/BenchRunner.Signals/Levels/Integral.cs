@@ -107,7 +107,8 @@ public static class Integral
     {
         if (!(from >= 0 && from <= to && to <= length - 1))
         {
-            throw new ArgumentOutOfRangeException(nameof(from), $"[{from}, {to}] is not an interval of 0 … {length - 1}.");
+            throw new ArgumentOutOfRangeException(
+                nameof(from), $"[{from}, {to}] is not an interval of 0 … {length - 1}.");
         }
     }
 }

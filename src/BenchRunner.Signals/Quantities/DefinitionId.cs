@@ -33,7 +33,8 @@ public static class DefinitionId
     public static double? WindowTime(string rule)
     {
         ArgumentNullException.ThrowIfNull(rule);
-        bool named = rule.StartsWith(WindowStart, StringComparison.Ordinal) && rule.EndsWith("ns", StringComparison.Ordinal);
+        bool named = rule.StartsWith(WindowStart, StringComparison.Ordinal)
+            && rule.EndsWith("ns", StringComparison.Ordinal);
         return named
             && rule.Length > WindowStart.Length + 2
             && double.TryParse(

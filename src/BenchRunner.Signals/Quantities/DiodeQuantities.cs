@@ -15,13 +15,13 @@ internal static class DiodeQuantities
         new("irm", "A", QuantityOwner.Diode, "Peak reverse recovery current." + Capacitance,
             [
                 Routed("peak/above-load", "Maximum of irr, by the parabola through the top three samples."),
-                Routed("peak/parabola-20", "Least-squares parabola over the samples above 80 % of the maximum; for noise "
-                    + "above 0.2 % of it."),
+                Routed("peak/parabola-20", "Least-squares parabola over the samples above 80 % of the maximum; for "
+                    + "noise above 0.2 % of it."),
             ]),
         new("trr", "s", QuantityOwner.Diode, "Reverse recovery time.",
             [
-                Routed("trr/chord-90-25", "From t0, where irr crosses zero upwards, to where the chord through the first "
-                    + "90 % and 25 % of irm after the peak meets zero (IEC 60747-2, -8)."),
+                Routed("trr/chord-90-25", "From t0, where irr crosses zero upwards, to where the chord through the "
+                    + "first 90 % and 25 % of irm after the peak meets zero (IEC 60747-2, -8)."),
                 .. Falls("trr", "From t0 to where irr first falls to"),
             ]),
         new("qrr", "C", QuantityOwner.Diode, "Reverse recovery charge." + Capacitance,
@@ -68,6 +68,6 @@ internal static class DiodeQuantities
 
     private static Quantity HighSidePeak(int number, string ordinal) =>
         new($"vds_high_peak_{number}", "V", QuantityOwner.Diode, $"The {ordinal} maximum of vds_high after on2.",
-            [new("peak/ring", $"The {ordinal} maximum above bus_voltage whose prominence is at least max(5 σ, 0.5 % of the "
-                + "bus).", [VgsLow, VdsHigh])]);
+            [new("peak/ring", $"The {ordinal} maximum above bus_voltage whose prominence is at least max(5 σ, 0.5 % of "
+                + "the bus).", [VgsLow, VdsHigh])]);
 }

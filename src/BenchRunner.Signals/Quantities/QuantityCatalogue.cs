@@ -31,12 +31,12 @@ public static class QuantityCatalogue
         StringBuilder text = new();
         text.Append("# Quantities\n\n")
             .Append("Generated from the catalogue in code (`QuantityCatalogue`); do not edit.\n\n")
-            .Append("Each value and each limit carries the ID of the definition that formed it; a limit for one definition ")
-            .Append("is never applied to another. The first definition is the default. The route `")
+            .Append("Each value and each limit carries the ID of the definition that formed it; a limit for one ")
+            .Append("definition is never applied to another. The first definition is the default. The route `")
             .Append(DefinitionId.LoadLineRoute)
             .Append("` at the end of an ID says that the diode's current is the switch's less the load-current line; ")
-            .Append("without it, `id_high` is measured. Channels are named as if the low switch fired; with the device in ")
-            .Append("position `high`, low and high change places. Values are in SI units.\n");
+            .Append("without it, `id_high` is measured. Channels are named as if the low switch fired; with the ")
+            .Append("device in position `high`, low and high change places. Values are in SI units.\n");
         foreach (QuantityOwner owner in Enum.GetValues<QuantityOwner>())
         {
             text.Append("\n## Of the ").Append(owner.ToString().ToLowerInvariant()).Append('\n');

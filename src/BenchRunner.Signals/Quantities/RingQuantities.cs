@@ -26,6 +26,6 @@ internal static class RingQuantities
 
     private static Quantity Ring(string name, string unit, string meaning, IReadOnlyList<Channel> channels) =>
         new(name, unit, QuantityOwner.Circuit, meaning,
-            [new("ring/fit", "Least-squares fit of one to three damped cosines from one period after the first extremum to "
-                + "where the envelope is within the noise; the mode of largest A²/σ.", channels)]);
+            [new("ring/fit", "Least-squares fit of one to three damped cosines from one period after the first "
+                + "extremum to where the envelope is within the noise; the mode of largest A²/σ.", channels)]);
 }

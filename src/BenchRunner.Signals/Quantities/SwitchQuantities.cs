@@ -12,11 +12,12 @@ internal static class SwitchQuantities
     public static IReadOnlyList<Quantity> All { get; } =
     [
         new("vds_on", "V", QuantityOwner.Switch, "On-state voltage at the end of the first pulse.",
-            [new("levels/window", "Mean of vds_low over the last 10 % of the first pulse, ending at the departure of off1.",
+            [new("levels/window", "Mean of vds_low over the last tenth of the first pulse, to the departure of off1.",
                 [VgsLow, VdsLow])]),
         new("td_on", "s", QuantityOwner.Switch, "Turn-on delay.",
             [
-                new("mos/10-90", $"Departure of on2 to vds_low falling through 90 % ({VoltageTimes}).", [VgsLow, VdsLow]),
+                new("mos/10-90", $"Departure of on2 to vds_low falling through 90 % ({VoltageTimes}).",
+                    [VgsLow, VdsLow]),
                 new("igbt/10-10", $"Departure of on2 to id_low rising through 10 % of i_on ({CurrentTimes}).",
                     [VgsLow, VdsLow, IdLow]),
             ],
@@ -29,7 +30,8 @@ internal static class SwitchQuantities
             IgbtDefault: "igbt/10-90"),
         new("td_off", "s", QuantityOwner.Switch, "Turn-off delay.",
             [
-                new("mos/90-10", $"Departure of off1 to vds_low rising through 10 % ({VoltageTimes}).", [VgsLow, VdsLow]),
+                new("mos/90-10", $"Departure of off1 to vds_low rising through 10 % ({VoltageTimes}).",
+                    [VgsLow, VdsLow]),
                 new("igbt/90-90", $"Departure of off1 to id_low falling through 90 % of i_off ({CurrentTimes}).",
                     [VgsLow, IdLow]),
             ],
@@ -49,7 +51,7 @@ internal static class SwitchQuantities
             ],
             IgbtDefault: "e/10-2"),
         new("eoff", "J", QuantityOwner.Switch,
-            "Energy lost at turn-off, the charge of the output capacitance included. A current late by δ raises it by V I δ.",
+            "Energy lost at turn-off, the output capacitance's charge included. A current late by δ adds V I δ.",
             [
                 new("e/10-10", "∫ vds_low id_low dt from vds_low = 10 % of its step to id_low = 10 % of i_off.",
                     [VgsLow, VdsLow, IdLow]),
@@ -66,12 +68,12 @@ internal static class SwitchQuantities
             [
                 new("peak/raw", "Maximum of vds_low after off1, by the parabola through the top three samples.",
                     [VgsLow, VdsLow]),
-                new("peak/parabola-20", "Least-squares parabola over the samples above bus_voltage + 80 % of the excursion; "
-                    + "for noise above 0.2 % of the peak.", [VgsLow, VdsLow]),
+                new("peak/parabola-20", "Least-squares parabola over the samples above bus_voltage + 80 % of the "
+                    + "excursion; for noise above 0.2 % of the peak.", [VgsLow, VdsLow]),
             ]),
         new("vds_overshoot_off", "V", QuantityOwner.Switch, "Peak voltage at turn-off above the bus.",
-            [new("peak/raw", "vds_peak_off − bus_voltage; without vbus, less the mean of vds_low over the last third of the "
-                + "ring's window.", [VgsLow, VdsLow])]),
+            [new("peak/raw", "vds_peak_off − bus_voltage; without vbus, less the mean of vds_low over the last third "
+                + "of the ring's window.", [VgsLow, VdsLow])]),
     ];
 
     private static QuantityDefinition[] Slopes() =>

@@ -44,8 +44,9 @@ public static class RecoverySlope
 
         double end = recovery.Start.At;
         double level = -0.5 * onCurrent.Value;
-        if (Crossing.First(
-            recovery.Irr, level, recovery.Hysteresis, CrossingDirection.Rising, recovery.Departure, end) is not { } start)
+        double? half = Crossing.First(
+            recovery.Irr, level, recovery.Hysteresis, CrossingDirection.Rising, recovery.Departure, end);
+        if (half is not { } start)
         {
             return Reading.None("irr does not cross -50 % of i_on before t0");
         }

@@ -51,7 +51,8 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
         }
 
         double window = y.Length * dt;
-        double amplitude = scale * Math.Sqrt((solver.Linear[2] * solver.Linear[2]) + (solver.Linear[3] * solver.Linear[3]));
+        (double p, double q) = (solver.Linear[2], solver.Linear[3]);
+        double amplitude = scale * Math.Sqrt((p * p) + (q * q));
         return new RingEnvelope(solver.Shape[1] / (2 * Math.PI * window), solver.Shape[0] / window, amplitude);
     }
 

@@ -27,7 +27,8 @@ public sealed class Waveform
         ArgumentNullException.ThrowIfNull(channels);
         if (!double.IsFinite(sampleInterval) || sampleInterval <= 0)
         {
-            throw new ArgumentOutOfRangeException(nameof(sampleInterval), sampleInterval, "must be finite and above 0 s");
+            throw new ArgumentOutOfRangeException(
+                nameof(sampleInterval), sampleInterval, "must be finite and above 0 s");
         }
 
         if (channels.Count == 0)
@@ -43,7 +44,8 @@ public sealed class Waveform
             if (samples.Length != Count)
             {
                 throw new ArgumentException(
-                    $"{channel.Name()} has {samples.Length} samples where another channel has {Count}.", nameof(channels));
+                    $"{channel.Name()} has {samples.Length} samples where another channel has {Count}.",
+                    nameof(channels));
             }
 
             _samples[(int)channel] = samples;

@@ -39,7 +39,8 @@ public sealed class MirrorTests
         Waveform gateOnly = new(0, 1e-9, new Dictionary<Channel, double[]> { [Channel.VdsHigh] = new double[100] });
         AnalysisSettings settings = new() { Position = DevicePosition.High };
 
-        QuantityValue vdsOn = WaveformAnalysis.Analyse(gateOnly, settings).Quantities.Single(q => q.Quantity == "vds_on");
+        QuantityValue vdsOn = WaveformAnalysis.Analyse(gateOnly, settings).Quantities
+            .Single(q => q.Quantity == "vds_on");
 
         Assert.Null(vdsOn.Value);
         Assert.Equal("vgs_high is not measured", vdsOn.Reason);

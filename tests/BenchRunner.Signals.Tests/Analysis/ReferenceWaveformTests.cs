@@ -32,7 +32,8 @@ public sealed class ReferenceWaveformTests(ITestOutputHelper output)
     {
         AnalysisResult result = WaveformAnalysis.Analyse(
             Reference.Waveform($"{scenario}-{mode}.csv.gz"), Reference.Settings(scenario, mode == "measured"));
-        Dictionary<(string, string), QuantityValue> got = result.Quantities.ToDictionary(q => (q.Quantity, q.Definition));
+        Dictionary<(string, string), QuantityValue> got =
+            result.Quantities.ToDictionary(q => (q.Quantity, q.Definition));
         using JsonDocument reference = Reference.Json($"waveforms/{scenario}-reference.json");
         using JsonDocument tolerances = Reference.Json("waveforms/tolerances.json");
         JsonElement truth = reference.RootElement.GetProperty("truth");
@@ -95,7 +96,8 @@ public sealed class ReferenceWaveformTests(ITestOutputHelper output)
     private static IEnumerable<string> GivenWhereThereIsNone(
         JsonElement tolerances, Dictionary<(string, string), QuantityValue> got, string scenario, string mode)
     {
-        foreach (JsonElement none in tolerances.GetProperty("no_value").GetProperty(scenario).GetProperty(mode).EnumerateArray())
+        JsonElement listed = tolerances.GetProperty("no_value").GetProperty(scenario).GetProperty(mode);
+        foreach (JsonElement none in listed.EnumerateArray())
         {
             (string, string) key = (none[0].GetString()!, none[1].GetString()!);
             if (got.GetValueOrDefault(key)?.Value is { } value)

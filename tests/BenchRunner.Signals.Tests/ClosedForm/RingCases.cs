@@ -48,7 +48,8 @@ internal static class RingCases
     {
         JsonElement bounds = of.GetProperty("relative_standard_deviation_bound");
         string mode = key.StartsWith("mode 2", StringComparison.Ordinal) ? "mode 2" : "mode 1";
-        string bound = key.EndsWith("|f", StringComparison.Ordinal) || key.StartsWith("ring_frequency", StringComparison.Ordinal)
+        string bound = key.EndsWith("|f", StringComparison.Ordinal)
+            || key.StartsWith("ring_frequency", StringComparison.Ordinal)
             ? "f"
             : "damping";
         return 4 * bounds.GetProperty($"{mode}|{bound}").GetDouble() * Math.Abs(wanted);

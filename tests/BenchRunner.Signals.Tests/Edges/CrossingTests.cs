@@ -5,6 +5,9 @@ namespace BenchRunner.Signals.Tests.Edges;
 
 public sealed class CrossingTests
 {
+    private static readonly Gen<(double[] Samples, double Level, double Hysteresis)> _signals =
+        Gen.Select(Gen.Double[-10, 10].Array[2, 200], Gen.Double[-10, 10], Gen.Double[0, 3]);
+
     [Fact]
     public void A_crossing_is_interpolated_between_the_samples_that_straddle_it() =>
         Assert.Equal(1.5, Crossing.First([0, 1, 3], 2, 0, CrossingDirection.Rising, 0, 2));
@@ -55,15 +58,20 @@ public sealed class CrossingTests
 
     [Fact]
     public void The_negated_signal_falls_where_the_signal_rises() =>
-        Gen.Double[-10, 10].Array[2, 200].Select(Gen.Double[-10, 10], Gen.Double[0, 3]).Sample((samples, level, hysteresis) =>
+        _signals.Sample((samples, level, hysteresis) =>
             Assert.Equal(
                 Crossing.First(samples, level, hysteresis, CrossingDirection.Rising, 0, samples.Length - 1),
                 Crossing.First(
-                    [.. samples.Select(x => -x)], -level, hysteresis, CrossingDirection.Falling, 0, samples.Length - 1)));
+                    [.. samples.Select(x => -x)],
+                    -level,
+                    hysteresis,
+                    CrossingDirection.Falling,
+                    0,
+                    samples.Length - 1)));
 
     [Fact]
     public void The_walk_finds_the_first_crossing_that_the_search_finds() =>
-        Gen.Double[-10, 10].Array[2, 200].Select(Gen.Double[-10, 10], Gen.Double[0, 3]).Sample((samples, level, hysteresis) =>
+        _signals.Sample((samples, level, hysteresis) =>
         {
             CrossingScan scan = new(samples, level, hysteresis, 0, samples.Length - 1);
             double? first = null;

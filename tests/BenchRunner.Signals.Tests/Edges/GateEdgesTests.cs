@@ -11,7 +11,8 @@ public sealed class GateEdgesTests
     [Fact]
     public void A_gate_that_rings_through_half_its_swing_has_one_edge()
     {
-        double[] gate = Gate(4000, t => t < 1000 ? 0 : 10 + (9 * Math.Exp(-(t - 1000) / 40) * Math.Cos((t - 1000) / 3)));
+        double[] gate = Gate(
+            4000, t => t < 1000 ? 0 : 10 + (9 * Math.Exp(-(t - 1000) / 40) * Math.Cos((t - 1000) / 3)));
         GateEdge edge = Assert.Single(Find(gate));
         Assert.Equal(CrossingDirection.Rising, edge.Direction);
         Assert.InRange(edge.At, 999, 1000);

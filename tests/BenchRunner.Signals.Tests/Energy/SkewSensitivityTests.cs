@@ -9,8 +9,8 @@ namespace BenchRunner.Signals.Tests.Energy;
 /// <summary>The change of an energy with skew, by the record's own integral and by the whole analysis.</summary>
 public sealed class SkewSensitivityTests
 {
-    // At turn-on the recovery's peak moves against the voltage's fall and the limits move with both: the first-order formula
-    // is good to 20 % over half a nanosecond, at turn-off to 5 %.
+    // At turn-on the recovery's peak moves against the voltage's fall and the limits move with both: the first-order
+    // formula is good to 20 %, at turn-off to 5 %.
     [Theory]
     [InlineData("hv650soft", "eon", true, false, 0.20)]
     [InlineData("hv650soft", "eoff", false, true, 0.05)]

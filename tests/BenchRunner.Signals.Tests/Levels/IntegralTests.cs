@@ -11,7 +11,9 @@ public sealed class IntegralTests
 
     [Fact]
     public void A_charge_is_additive_over_adjacent_windows() => _intervals.Sample(w => Near(
-        Integral.Of(w.Samples, w.A, w.B) + Integral.Of(w.Samples, w.B, w.C), Integral.Of(w.Samples, w.A, w.C), w.Samples));
+        Integral.Of(w.Samples, w.A, w.B) + Integral.Of(w.Samples, w.B, w.C),
+        Integral.Of(w.Samples, w.A, w.C),
+        w.Samples));
 
     [Fact]
     public void An_energy_is_additive_over_adjacent_windows() => _intervals.Sample(w =>

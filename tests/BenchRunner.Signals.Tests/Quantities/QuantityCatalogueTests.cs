@@ -11,7 +11,9 @@ public sealed class QuantityCatalogueTests
         Assert.Equal(QuantityCatalogue.All.Count, QuantityCatalogue.All.Select(q => q.Name).Distinct().Count());
         Assert.All(QuantityCatalogue.All, q =>
         {
-            Assert.All(Enum.GetValues<DeviceKind>(), kind => Assert.True(QuantityCatalogue.IsKnown(q.Name, q.DefaultFor(kind))));
+            Assert.All(
+                Enum.GetValues<DeviceKind>(),
+                kind => Assert.True(QuantityCatalogue.IsKnown(q.Name, q.DefaultFor(kind))));
             Assert.Equal(q.Definitions.Count, q.Definitions.Select(d => d.Id).Distinct().Count());
         });
     }
