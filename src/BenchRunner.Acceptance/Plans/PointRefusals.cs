@@ -25,6 +25,7 @@ internal static class PointRefusals
         Envelope(planned, bench)
             .Concat(Ratings(planned, sequence, bench))
             .Concat(Train(planned, train, sequence, bench))
+            .Concat(Widths(planned, sequence, bench))
             .Concat(Gate(planned.Point, bench))
             .Concat(Temperature(planned.Point, sequence, bench));
 
@@ -159,6 +160,26 @@ internal static class PointRefusals
                 "choose a larger bank, a smaller load inductance or a lower current");
         }
 
+        if (train.OnCurrent < 0.5 * point.LoadCurrent)
+        {
+            yield return new Problem(
+                At(point, "pulses.gap"),
+                $"the current falls from {A(point.LoadCurrent)} to {A(train.OnCurrent)} in a gap of {S(point.Gap)}",
+                "at least half of it at the second turn-on", "shorten the gap");
+        }
+
+        if (point.RepeatEvery < planned.Recovery)
+        {
+            yield return new Problem(
+                At(point, "pulses.repeat-every"), $"repeat-every is {S(point.RepeatEvery)}",
+                $"at least {S(planned.Recovery)}, in which the inductor decays and the bus is charged again",
+                "lengthen it");
+        }
+    }
+
+    private static IEnumerable<Problem> Widths(PlannedPoint planned, Sequence sequence, Bench bench)
+    {
+        OperatingPoint point = planned.Point;
         foreach ((string key, string name, double width, string advice) in new[]
         {
             ("load-current", "first pulse", planned.FirstPulse,
@@ -181,22 +202,6 @@ internal static class PointRefusals
                     $"at least the {S(planned.RingDecay)} in which a ringing of "
                     + $"{SiText.Format(sequence.Expected.RingFrequency, "Hz")} decays", advice);
             }
-        }
-
-        if (train.OnCurrent < 0.5 * point.LoadCurrent)
-        {
-            yield return new Problem(
-                At(point, "pulses.gap"),
-                $"the current falls from {A(point.LoadCurrent)} to {A(train.OnCurrent)} in a gap of {S(point.Gap)}",
-                "at least half of it at the second turn-on", "shorten the gap");
-        }
-
-        if (point.RepeatEvery < planned.Recovery)
-        {
-            yield return new Problem(
-                At(point, "pulses.repeat-every"), $"repeat-every is {S(point.RepeatEvery)}",
-                $"at least {S(planned.Recovery)}, in which the inductor decays and the bus is charged again",
-                "lengthen it");
         }
     }
 

@@ -7,7 +7,7 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Tests.Plans;
 
-/// <summary>Plans that must be refused, with a message that says where, what, what was expected and what to do.</summary>
+/// <summary>Plans that must be refused, and say where, what was found, what was expected and what to do.</summary>
 internal static partial class Refusals
 {
     [GeneratedRegex(@"^.+\.yaml(:\d+:\d+)?: .+; expected .+; .+\.$")]
