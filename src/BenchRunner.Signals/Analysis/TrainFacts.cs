@@ -79,6 +79,13 @@ public sealed record TrainFacts
     /// <summary>Hysteresis that section "crossings" gives the switch's vds, V.</summary>
     public double? OnStateHysteresis { get; init; }
 
+    /// <summary>Largest gate voltage of the freewheeling position from on2's departure to the end of the recovery (by
+    /// the chord), V; null where it is not measured or no recovery is seen.</summary>
+    public double? FreewheelingGateMaximum { get; init; }
+
+    /// <summary>Time of <see cref="FreewheelingGateMaximum"/>, s.</summary>
+    public double? FreewheelingGateMaximumAt { get; init; }
+
     /// <summary>Robust noise of each channel present, V or A (σ).</summary>
     public IReadOnlyDictionary<Channel, double> Noise { get; init; } = new Dictionary<Channel, double>();
 }

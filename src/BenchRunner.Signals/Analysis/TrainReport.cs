@@ -1,6 +1,8 @@
 using BenchRunner.Signals.Edges;
 using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Recovery;
+using BenchRunner.Signals.Switching;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Analysis;
@@ -14,6 +16,7 @@ internal static class TrainReport
     {
         Train train = analyser.Train;
         (double? most, double? mostAt) = OnStateMaximum(analyser);
+        (double? gate, double? gateAt) = FreewheelingGateMaximum(analyser);
         return new TrainFacts
         {
             Edges = [.. train.Edges.Select(e => ToPulseEdge(analyser.Record, e))],
@@ -36,6 +39,8 @@ internal static class TrainReport
             OnStateMaximum = most,
             OnStateMaximumAt = mostAt,
             OnStateHysteresis = OnStateHysteresis(analyser),
+            FreewheelingGateMaximum = gate,
+            FreewheelingGateMaximumAt = gateAt,
             Noise = NoiseOf(analyser),
         };
     }
@@ -120,6 +125,31 @@ internal static class TrainReport
         {
             most = most < 0 || vds[i] > vds[most] ? i : most;
         }
+    }
+
+    /// <summary>A false turn-on shows as a gate above its threshold while the diode recovers.</summary>
+    private static (double? Volts, double? Time) FreewheelingGateMaximum(Analyser analyser)
+    {
+        if (!analyser.Record.Has(Channel.VgsHigh) || analyser.Train.On2 is not { } on2 || !analyser.OnCurrent.HasValue)
+        {
+            return (null, null);
+        }
+
+        Instant end = RecoveryTime.ChordEnd(analyser.Recovery(byLoadLine: true));
+        if (end.Reason is not null)
+        {
+            return (null, null);
+        }
+
+        ReadOnlySpan<double> gate = analyser.Record[Channel.VgsHigh];
+        int most = (int)Math.Ceiling(on2.Departure);
+        int last = (int)Math.Min(analyser.Record.Last, Math.Ceiling(end.At + analyser.RecoveryOrigin));
+        for (int i = most + 1; i <= last; i++)
+        {
+            most = gate[i] > gate[most] ? i : most;
+        }
+
+        return (gate[most], analyser.Record.TimeAt(most));
     }
 
     private static double? OnStateHysteresis(Analyser analyser)
