@@ -28,6 +28,7 @@ public sealed class FaultTests : IDisposable
     [Theory]
     [InlineData("stale-record", "fresh")]
     [InlineData("clipped-range", "not-clipped")]
+    [InlineData("link-drops", "complete")]
     public async Task A_bad_capture_is_rejected_with_its_criterion_and_taken_again(string fault, string criterion)
     {
         (await Run(fault)).Expect(0);
@@ -39,14 +40,12 @@ public sealed class FaultTests : IDisposable
         AssertConsistent();
     }
 
-    [Theory]
-    [InlineData("trigger-missed", "trigger-missed")]
-    [InlineData("link-drops", "record-lost")]
-    public async Task A_train_without_a_record_costs_one_capture(string fault, string kind)
+    [Fact]
+    public async Task A_train_without_a_record_costs_one_capture()
     {
-        (await Run(fault)).Expect(0);
+        (await Run("trigger-missed")).Expect(0);
 
-        Assert.Equal(1, _place.Ask<long>($"select count(*) from events where kind = '{kind}'"));
+        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'trigger-missed'"));
         Assert.Equal(10, _place.Ask<long>("select captures_valid from device_outcomes"));
         AssertBusDown();
         AssertConsistent();
