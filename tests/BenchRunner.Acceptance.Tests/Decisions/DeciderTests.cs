@@ -58,7 +58,7 @@ public sealed class DeciderTests
     {
         DeviceDecision decision = Decide(Limited(("vds_peak_off", null, Mean("vds_peak_off") + 1)));
         Assert.Equal(Outcome.Undecided, decision.Outcome);
-        Assert.Contains("vds_peak_off at rated is", decision.Reason, StringComparison.Ordinal);
+        Assert.Contains("vds_peak_off at rated: ", decision.Reason, StringComparison.Ordinal);
         Assert.Contains("within the guard band of", decision.Reason, StringComparison.Ordinal);
     }
 
@@ -68,7 +68,7 @@ public sealed class DeciderTests
         DeviceDecision decision = Decide(Limited(
             ("vds_peak_off", null, Mean("vds_peak_off") + 1), ("vds_on", null, 0.5 * Mean("vds_on"))), valid: 3);
         Assert.Equal(Outcome.Rejected, decision.Outcome);
-        Assert.StartsWith("vds_on at rated is", decision.Reason, StringComparison.Ordinal);
+        Assert.StartsWith("vds_on at rated: ", decision.Reason, StringComparison.Ordinal);
     }
 
     [Fact]
