@@ -100,8 +100,16 @@ public static class RecoveryTime
         return Form(recovery, end, ratio, recovery.Start.At, end.At);
     }
 
-    private static Reading Form(in RecoveryEvent recovery, Instant end, double value, double from, double to) =>
-        (recovery.Reason ?? recovery.Start.Reason ?? end.Reason) is { } reason
-            ? Reading.None(reason)
-            : Reading.Of(value, from, to);
+    private static Reading Form(in RecoveryEvent recovery, Instant end, double value, double from, double to)
+    {
+        if ((recovery.Reason ?? recovery.Start.Reason ?? end.Reason) is { } reason)
+        {
+            return Reading.None(reason);
+        }
+
+        // The peak lies between samples; a fall within one sample can end before it.
+        return end.At > recovery.Top.Position && recovery.Top.Position > recovery.Start.At
+            ? Reading.Of(value, from, to)
+            : Reading.None("the recovery is too fast for its samples");
+    }
 }
