@@ -23,6 +23,7 @@ internal sealed class ScpiWire : IDisposable
 
     private const int LongestMessage = 1024;
     private const int MostErrors = 64;
+    private const string OpeningTheLine = "opening the line";
 
     private readonly ILink _link;
     private readonly SessionOptions _options;
@@ -67,7 +68,7 @@ internal sealed class ScpiWire : IDisposable
     /// <summary>Ends whatever half message an earlier user left, and notes that its reply may come.</summary>
     public void Terminate()
     {
-        _doubt = "opening the line";
+        _doubt = OpeningTheLine;
         Write("\n"u8);
     }
 
@@ -256,7 +257,10 @@ internal sealed class ScpiWire : IDisposable
         {
             var dropped = await _resynchronisation.Run(Put, cancel);
             _doubt = null;
-            _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were dropped");
+            if (dropped > 0 || why != OpeningTheLine)
+            {
+                _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were dropped");
+            }
         }
         catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
         {

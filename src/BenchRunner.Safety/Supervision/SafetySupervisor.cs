@@ -171,7 +171,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
         {
             while (await timer.WaitForNextTickAsync(end))
             {
-                if (await Poll(end) is { } doubt)
+                // A poll that has begun is ended by its own patience: cancelling it would leave its reply on the line.
+                if (await Poll(CancellationToken.None) is { } doubt)
                 {
                     OnDoubt(doubt);
                 }

@@ -41,6 +41,7 @@ internal static class RunCommand
             Companion = arguments.Companion,
             Again = arguments.Again,
         };
+        EvidenceFiles.RequireSpace(request.EvidencePath, request.Plan.Bytes);
         screen.Line($"{Simulated(fake)}{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, "
             + $"evidence in {request.EvidencePath}");
         var session = new RunSession(
