@@ -74,7 +74,7 @@ internal static class Samples
         [Trace(Channel.VdsLow, seed, count), Trace(Channel.IdLow, seed + 1, count)],
         600.25,
         23.5,
-        new PulseTrain(8e-6, 6e-6, 3e-6, 18, -4));
+        new TrainSet(8e-6, 6e-6, 3e-6, 18, -4));
 
     public static MeasuredValue Measured(
         double? value, string quantity = "eon", string point = "rated", double? upper = 705e-6,

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Evidence.Captures;
@@ -18,4 +19,4 @@ public sealed record CaptureRow(
     IReadOnlyList<RawTrace> Traces,
     double? BusVoltage,
     double? Temperature,
-    PulseTrain? Train);
+    TrainSet? Train);

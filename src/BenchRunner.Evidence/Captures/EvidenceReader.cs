@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Validity;
 using System.Globalization;
 using System.Security.Cryptography;
 using BenchRunner.Evidence.Codecs;
@@ -82,7 +83,7 @@ public sealed class EvidenceReader : IDisposable
         Real(row, 5),
         row.IsDBNull(6)
             ? null
-            : new PulseTrain(row.GetDouble(6), row.GetDouble(7), row.GetDouble(8), row.GetDouble(9), row.GetDouble(10)),
+            : new TrainSet(row.GetDouble(6), row.GetDouble(7), row.GetDouble(8), row.GetDouble(9), row.GetDouble(10)),
         row.IsDBNull(11) ? null : row.GetInt64(11) != 0);
 
     private static double? Real(SqliteDataReader row, int column) =>

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Validity;
 namespace BenchRunner.Evidence.Captures;
 
 /// <summary>A capture as the evidence holds it, without its traces.</summary>
@@ -17,5 +18,5 @@ public sealed record StoredCapture(
     DateTimeOffset TakenAt,
     double? BusVoltage,
     double? Temperature,
-    PulseTrain? Train,
+    TrainSet? Train,
     bool? Valid);

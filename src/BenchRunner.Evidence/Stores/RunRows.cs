@@ -65,7 +65,7 @@ internal static class RunRows
             values (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, ?10, ?11, ?12, ?13, ?14, ?15, ?16, ?17)
             """,
             run, ordinal, to.Word(row.OperatingPoint), row.Number, Text.Time(row.TakenAt), row.BusVoltage,
-            row.Temperature, row.Train?.FirstPulse, row.Train?.Gap, row.Train?.SecondPulse, row.Train?.GateOn,
+            row.Temperature, row.Train?.First, row.Train?.Gap, row.Train?.Second, row.Train?.GateOn,
             row.Train?.GateOff, channels, row.Traces.Max(trace => trace.Codes.Length),
             row.Traces.Sum(trace => 2L * trace.Codes.Length), payload.Bytes.Length, payload.Sha256);
         foreach (PayloadEntry entry in payload.Directory)

@@ -76,9 +76,9 @@ public sealed class RunWriter
             throw new ArgumentException("A capture has at least one trace, and each channel once.", nameof(capture));
         }
 
-        PulseTrain? train = capture.Train;
+        TrainSet? train = capture.Train;
         RefuseNaN(
-            nameof(capture), capture.BusVoltage, capture.Temperature, train?.FirstPulse, train?.Gap, train?.SecondPulse,
+            nameof(capture), capture.BusVoltage, capture.Temperature, train?.First, train?.Gap, train?.Second,
             train?.GateOn, train?.GateOff);
         foreach (RawTrace trace in capture.Traces)
         {

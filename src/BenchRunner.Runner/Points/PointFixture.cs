@@ -115,10 +115,8 @@ public sealed class PointFixture
         }
 
         state.LostInARow = 0;
-        TrainSet set = state.Set;
         long id = _evidence.AddCapture(new CaptureRow(
-            state.Planned.Point.Name, state.Taken.Taken, at, record.Traces, voltmeter, _plan.Bench.Ambient,
-            new PulseTrain(set.First, set.Gap, set.Second, set.GateOn, set.GateOff)));
+            state.Planned.Point.Name, state.Taken.Taken, at, record.Traces, voltmeter, _plan.Bench.Ambient, state.Set));
         Judge(id, record, voltmeter, state);
         if (state.TrainChanged)
         {
@@ -129,7 +127,7 @@ public sealed class PointFixture
 
     private void Judge(long id, ScopeRecord record, double voltmeter, PointState state)
     {
-        AnalysisResult result = WaveformAnalysis.Analyse(TraceConversion.ToWaveform(record.Traces), _settings);
+        AnalysisResult result = CaptureAnalysis.Of(record.Traces, _settings);
         Verdict verdict = CaptureValidity.Judge(new CaptureContext
         {
             Planned = state.Planned,

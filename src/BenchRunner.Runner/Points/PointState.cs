@@ -8,9 +8,6 @@ namespace BenchRunner.Runner.Points;
 /// <summary>What one operating point's loop carries from capture to capture.</summary>
 internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 {
-    /// <summary>How much a range grows or shrinks when a capture asks for the next one.</summary>
-    private const double RangeStep = 2;
-
     public PlannedPoint Planned { get; } = planned;
 
     public TrainSet Set { get; private set; } = new(
@@ -50,8 +47,7 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
         {
             if (verdict.NextRange.TryGetValue(Ranges[i].Channel, out bool wider))
             {
-                double factor = wider ? RangeStep : 1 / RangeStep;
-                Ranges[i] = Ranges[i] with { Span = Ranges[i].Span * factor };
+                Ranges[i] = Ranges[i].Next(wider);
             }
         }
     }
