@@ -33,7 +33,7 @@ public sealed class InputTests : IDisposable
     {
         string file = _place.SequenceFile(("bus-voltage: 600 V", "bus-voltage: 1250 V"));
 
-        await Refused(["run", file, "--device", "W1200-0001"], $"{file}:{Line(file, "1250 V")}:", "1.25 kV", "900 V");
+        await Refused(["run", file, "--device", "W1200-0001"], $"{file}:{Line(file, "1250 V")}:", "1250 V", "900 V");
     }
 
     [Theory]

@@ -44,9 +44,11 @@ public sealed class ArgumentsTests
             [("supply", "tcp 127.0.0.1 41001"), ("voltmeter", "tcp 127.0.0.1 41002"), ("interlock", "serial /dev/pts/7")]);
         Assert.StartsWith("format: 1\n", file[(file.IndexOf('\n', StringComparison.Ordinal) + 1)..], StringComparison.Ordinal);
         Assert.Contains(
-            "  supply: { link: 'tcp 127.0.0.1:41001', dialect: generic-supply, connections: 4 }\n", file, StringComparison.Ordinal);
-        Assert.Contains("connections: 4, at: bank }", file, StringComparison.Ordinal);
-        Assert.Contains("  interlock: { link: 'serial /dev/pts/7', dialect: generic-interlock }\n", file, StringComparison.Ordinal);
+            "  supply: { link: 'tcp 127.0.0.1:41001', dialect: generic-supply, connections: 4, identity: '.*FAKEBENCH-SUPPLY.*' }\n",
+            file,
+            StringComparison.Ordinal);
+        Assert.Contains("connections: 4, at: bank, identity: ", file, StringComparison.Ordinal);
+        Assert.Contains("  interlock: { link: 'serial /dev/pts/7', dialect: generic-interlock, ", file, StringComparison.Ordinal);
         Assert.Contains("bleeder: 5 kOhm", file, StringComparison.Ordinal);
         Assert.Contains("charging-current: 2.5 A", file, StringComparison.Ordinal);
         Assert.Contains("exchange: none\n", file, StringComparison.Ordinal);
