@@ -60,8 +60,15 @@ public sealed class InputTests : IDisposable
         await Refused(["run", Workplace.Sequence, "--device", "W1200-0001", "--bench", RealBench()], "--operator");
 
     [Fact]
-    public async Task A_real_bench_without_a_terminal_or_a_name_is_refused() => await Refused(
-        ["run", Workplace.Sequence, "--device", "W1200-0001", "--bench", RealBench(), "--operator", "op"], "--armed-by");
+    public async Task A_real_bench_without_a_terminal_or_a_name_is_refused()
+    {
+        Assert.SkipUnless(OperatingSystem.IsLinux(), "setsid, which takes the terminal away, is Linux's");
+        using Started run = _place.Start(
+            "setsid",
+            ["-w", Workplace.Program, "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", RealBench(), "--operator", "op"]);
+
+        Assert.Contains("--armed-by", (await run.End()).Expect(2).Error, StringComparison.Ordinal);
+    }
 
     [Fact]
     public async Task A_misspelt_option_is_said() =>
@@ -73,7 +80,8 @@ public sealed class InputTests : IDisposable
         foreach (string command in (string[])["plan", "run", "analyse", "query", "quantities", "schema"])
         {
             Finished help = (await _place.Run(command, "--help")).Expect(0);
-            Assert.Contains("Example: benchrunner", help.Output, StringComparison.Ordinal);
+            Assert.Contains($"Example: benchrunner {command}", help.Output, StringComparison.Ordinal);
+            Assert.Contains($"benchrunner {command} ", help.Output[help.Output.IndexOf("Usage:", StringComparison.Ordinal)..], StringComparison.Ordinal);
         }
     }
 

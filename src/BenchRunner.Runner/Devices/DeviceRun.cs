@@ -79,13 +79,19 @@ public sealed class DeviceRun(
                     $"{point.Point.Name}: {taken.Valid.Count} of {plan.Sequence.ValidCaptures} valid captures after {taken.Taken}");
             }
 
-            if (Decider.SkipsHigher(plan.Sequence, plan.Bench, taken.ForDecision()))
+            // Decided here only where it matters: the bus is charged meanwhile.
+            if (MaySkipHigher(point) && Decider.SkipsHigher(plan.Sequence, plan.Bench, taken.ForDecision()))
             {
                 events.Say(Severity.Warning, "higher-skipped", $"{point.Point.Name}: a limit failed; the higher points are left out");
                 return;
             }
         }
     }
+
+    private bool MaySkipHigher(PlannedPoint point) =>
+        point != plan.Points[^1]
+        && (point.Point.ElseSkipHigher
+            || plan.Sequence.Limits.Any(limit => limit.ElseSkipHigher && limit.At == point.Point.Name));
 
     /// <summary>What an exception on the road means for bench and device.</summary>
     private (BenchEnding Ending, Ended Ended) Explain(Exception broken, CancellationToken operatorStop)

@@ -86,7 +86,7 @@ public sealed class PointFixture
         {
             _sinks.Progress(new RunProgress(
                 device, point.Name, taken.Taken + 1, _plan.Sequence.CapturesAtMost, taken.Valid.Count,
-                _plan.Sequence.ValidCaptures, _supervisor.LastVoltage, left()));
+                _plan.Sequence.ValidCaptures, _supervisor.LastVoltage, _supervisor.LastInterlock, left()));
             await TakeOne(permit, state, cancel);
         }
     }

@@ -1,3 +1,5 @@
+using BenchRunner.Instruments.Roles;
+
 namespace BenchRunner.Runner.Sinks;
 
 /// <summary>Where a run stands, for a live line.</summary>
@@ -8,6 +10,7 @@ namespace BenchRunner.Runner.Sinks;
 /// <param name="Valid">Valid captures so far.</param>
 /// <param name="Wanted">Valid captures wanted.</param>
 /// <param name="BusVoltage">The voltmeter's last reading, V; NaN before the first.</param>
+/// <param name="Interlock">What the interlock controller said last; null before the first poll.</param>
 /// <param name="Left">Time left by the plan.</param>
 public sealed record RunProgress(
     string Device,
@@ -17,4 +20,5 @@ public sealed record RunProgress(
     int Valid,
     int Wanted,
     double BusVoltage,
+    InterlockState? Interlock,
     TimeSpan Left);

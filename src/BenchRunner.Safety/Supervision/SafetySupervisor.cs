@@ -53,6 +53,9 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <summary>The voltmeter's last reading by the watch, V; NaN before the first.</summary>
     public double LastVoltage => Volatile.Read(ref _lastVoltage);
 
+    /// <summary>What the interlock controller said at the last poll; null before the first.</summary>
+    public InterlockState? LastInterlock { get; private set; }
+
     /// <summary>Polls once, in full, then goes on polling in a task of its own.</summary>
     /// <exception cref="SafetyException">The first poll found a reason to trip.</exception>
     public async Task Start(CancellationToken cancel)
@@ -200,6 +203,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         {
             InterlockState interlock = await _roles.Interlock.Read(cancel);
             double volts = Math.Abs((await _roles.Voltmeter.Read(cancel)).Value);
+            LastInterlock = interlock;
             Volatile.Write(ref _lastVoltage, volts);
             Witness.Saw(volts);
             lock (_gate)

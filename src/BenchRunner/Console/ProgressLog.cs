@@ -1,6 +1,7 @@
 using System.Globalization;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Sinks;
@@ -27,7 +28,7 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
         CultureInfo.InvariantCulture,
         $"{progress.Device}  {progress.OperatingPoint}  capture {progress.Capture} of at most {progress.AtMost}  "
             + $"valid {progress.Valid} of {progress.Wanted}  bus {progress.BusVoltage:0.0} V  "
-            + $"interlock closed  {progress.Left:m\\:ss} left"));
+            + $"interlock {Interlock(progress.Interlock)}  {progress.Left:m\\:ss} left"));
 
     public void CaseEnded(CaseResult result)
     {
@@ -53,6 +54,14 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
         screen.Line($"  >>>  {report.Device}  {Word(report.Decision.Outcome)}{reason}  <<<");
         screen.Line("");
     }
+
+    private static string Interlock(InterlockState? state) => state switch
+    {
+        null => "not read yet",
+        { EmergencyStop: true } => "EMERGENCY STOP",
+        { LoopClosed: false } => "OPEN",
+        _ => "closed",
+    };
 
     private string Word(Outcome outcome) => outcome switch
     {
