@@ -95,6 +95,8 @@ public sealed class RunSession
 
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
+        // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
+        using CancellationTokenRegistration latching = supervisor.Tripped.Register(() => LeaveLatch(supervisor.Trip!));
         await supervisor.Start(operatorStop);
         return await Devices(first, devices, store, open, supervisor, fake, operatorStop);
     }
@@ -148,10 +150,8 @@ public sealed class RunSession
             }
 
             _events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
-            DeviceReport report = await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
+            return await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
                 .Walk(device, evidence, operatorStop);
-            LeaveLatch(supervisor, report);
-            return report;
         }
         finally
         {
@@ -159,14 +159,24 @@ public sealed class RunSession
         }
     }
 
-    private void LeaveLatch(SafetySupervisor supervisor, DeviceReport report)
+    private void LeaveLatch(Trip trip)
     {
-        if (!IsNewEachTime && supervisor.Trip is { Energised: true } trip)
+        if (IsNewEachTime || !trip.Energised)
         {
-            _latch.Set(trip.At, $"{report.Device}: {trip.Reason}");
+            return;
+        }
+
+        try
+        {
+            _latch.Set(trip.At, trip.Reason);
             _events.Say(
                 Severity.Alarm, "latched",
                 $"the bench is latched ({_latch.Path}); find the cause, then: benchrunner bench clear --bench {Bench.Source.Path}");
+        }
+        catch (Exception failure) when (failure is IOException or UnauthorizedAccessException)
+        {
+            // The watch must go on, and the bench be made safe, all the same.
+            _events.Say(Severity.Alarm, "latch-not-written", $"THE BENCH IS NOT LATCHED: {failure.Message}; let nobody use it");
         }
     }
 

@@ -81,7 +81,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
                     + $"for, the envelope ends at {_envelope.Voltage:0.#} V and {_envelope.Pulse * 1e6:0.##} us; no permit");
         }
 
-        if (await Poll(cancel) is { } doubt)
+        // What may be left open on an idle bench must be closed before there is leave to energise it.
+        if (await Poll(cancel, toEnergise: true) is { } doubt)
         {
             OnDoubt(doubt);
         }
@@ -163,6 +164,11 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
         await _end.CancelAsync();
         await _watching;
+        if (_reaching is { } begunByTheLastPoll)
+        {
+            await begunByTheLastPoll;
+        }
+
         _end.Dispose();
         _tripped.Dispose();
     }
@@ -197,10 +203,12 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
     /// <summary>One complete poll; renews the permit where it finds nothing.</summary>
     /// <returns>The doubt, or null.</returns>
-    private async Task<string?> Poll(CancellationToken cancel)
+    private async Task<string?> Poll(CancellationToken cancel, bool toEnergise = false)
     {
         try
         {
+            // A voltage that was read while the bank discharged is judged so, though the proof came in between.
+            bool discharging = Volatile.Read(ref _discharging);
             InterlockState interlock = await _roles.Interlock.Read(cancel);
             double volts = Math.Abs((await _roles.Voltmeter.Read(cancel)).Value);
             LastInterlock = interlock;
@@ -208,7 +216,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             Witness.Saw(volts);
             lock (_gate)
             {
-                if (Doubt(interlock, volts) is { } doubt)
+                if (Doubt(interlock, volts, discharging || _discharging, toEnergise) is { } doubt)
                 {
                     return doubt;
                 }
@@ -227,7 +235,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
     }
 
-    private string? Doubt(InterlockState interlock, double volts)
+    private string? Doubt(InterlockState interlock, double volts, bool discharging, bool toEnergise)
     {
         if (interlock.EmergencyStop)
         {
@@ -239,7 +247,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             return "the interlock controller's watchdog has acted";
         }
 
-        bool energised = _permit is not null || _discharging || volts >= SafetyLimits.BusDown;
+        bool energised = toEnergise || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
         if (!interlock.LoopClosed && energised)
         {
             return "the interlock loop is open";
@@ -247,7 +255,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
         if (_permit is null)
         {
-            return !_discharging && volts >= SafetyLimits.BusDown
+            return !discharging && volts >= SafetyLimits.BusDown
                 ? $"the bus is at {volts:0.0} V and nothing was allowed to charge it" : null;
         }
 
