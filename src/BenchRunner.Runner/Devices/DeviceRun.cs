@@ -51,7 +51,8 @@ public sealed class DeviceRun(
 
         if (!safe.Proved)
         {
-            ended = new Ended(Outcome.Stopped, Join(ended?.Why, "the bus was not proved down"));
+            // What was found wrong with the device stays found; the bench's own trouble stands beside it.
+            ended = new Ended(ended?.Outcome ?? Outcome.Stopped, Join(ended?.Why, "the bus was not proved down"));
         }
 
         return Report(device, evidence, ending, ended, safe);

@@ -10,6 +10,7 @@ using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Sinks;
+using BenchRunner.Safety;
 using BenchRunner.Safety.Supervision;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
@@ -144,10 +145,16 @@ public sealed class PointFixture
         });
         _evidence.AddVerdict(id, verdict, result.Train.OffCurrent, result.Train.BusBeforeOn1);
         _evidence.AddCaptureValues(id, result.Quantities);
-        Say(state, verdict, result.Train.OffCurrent);
+        string label = $"{state.Planned.Point.Name} capture {state.Taken.Taken}";
+        Say(label, verdict, result.Train.OffCurrent);
         if (verdict.Stop is { } stop)
         {
             throw new StopException(stop);
+        }
+
+        if (MeasuredEnvelope.Exceeded(record.Traces, _plan.Bench, _plan.Sequence.Ratings) is { } exceeded)
+        {
+            throw new SafetyException($"{label}: {exceeded}; no further train is fired");
         }
 
         if (verdict.IsValid)
@@ -158,10 +165,10 @@ public sealed class PointFixture
         state.Follow(record, verdict);
     }
 
-    private void Say(PointState state, Verdict verdict, double? offCurrent)
+    private void Say(string capture, Verdict verdict, double? offCurrent)
     {
         string current = offCurrent is { } amperes ? SiText.Format(amperes, "A") : "no current";
-        string label = $"{state.Planned.Point.Name} capture {state.Taken.Taken}: {current}";
+        string label = $"{capture}: {current}";
         if (verdict.Findings.Count == 0)
         {
             _events.Say(Severity.Information, "capture-valid", $"{label}, valid");
