@@ -104,11 +104,20 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <summary>Trips: revokes the permit for good and cancels <see cref="Tripped"/>. The first reason stands.</summary>
     public void TripNow(string reason)
     {
+        if (Mark(reason))
+        {
+            _ = MakeSafe();
+            _tripped.Cancel();
+        }
+    }
+
+    private bool Mark(string reason)
+    {
         lock (_gate)
         {
             if (Trip is not null)
             {
-                return;
+                return false;
             }
 
             _permit?.Revoke(reason);
@@ -116,8 +125,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
 
         _events.Say(Severity.Alarm, "trip", $"TRIP: {reason}");
-        _ = MakeSafe();
-        _tripped.Cancel();
+        return true;
     }
 
     /// <summary>Ends the permit and brings the bench to the safe state. The watch goes on.</summary>
@@ -144,6 +152,12 @@ public sealed class SafetySupervisor : IAsyncDisposable
         lock (_gate)
         {
             _discharging = !report.Proved;
+        }
+
+        // A bench that may be full must not be used by anybody before a person has looked.
+        if (!report.Proved && Mark("the bus was not proved down"))
+        {
+            _tripped.Cancel();
         }
 
         return report;

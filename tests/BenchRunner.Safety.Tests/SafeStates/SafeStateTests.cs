@@ -68,6 +68,22 @@ public sealed class SafeStateTests
     }
 
     [Fact]
+    public async Task A_bus_that_is_not_proved_down_is_a_trip()
+    {
+        await using LiveBench bench = await LiveBench.Start("bus-stays-up");
+        SafetySupervisor supervisor = bench.Supervisor();
+        await supervisor.Start(Cancel);
+        Permit permit = await supervisor.Grant(LiveBench.UpTo(100), Cancel);
+        await bench.Charge(permit, supervisor.Witness, 100);
+
+        Assert.False((await supervisor.MakeSafe()).Proved);
+
+        Assert.True(supervisor.Tripped.IsCancellationRequested);
+        Assert.Equal("the bus was not proved down", supervisor.Trip!.Reason);
+        Assert.True(supervisor.Trip.Energised);
+    }
+
+    [Fact]
     public async Task A_voltmeter_that_never_followed_the_bus_up_is_not_believed()
     {
         await using LiveBench bench = await LiveBench.Start("voltmeter-open");
