@@ -3,7 +3,7 @@ namespace EndToEnd;
 /// <summary>Sound devices, drawn at random, pass the shipped sequence.</summary>
 public sealed class PopulationTests : IDisposable
 {
-    private readonly Workplace _place = new();
+    private readonly Workplace _place = new Workplace().WithPatience(TimeSpan.FromMinutes(8));
 
     public void Dispose() => _place.Dispose();
 

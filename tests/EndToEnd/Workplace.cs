@@ -6,7 +6,7 @@ namespace EndToEnd;
 /// <summary>A folder of a test's own in which the built program runs as a user would run it.</summary>
 internal sealed class Workplace : IDisposable
 {
-    private static readonly TimeSpan Patience = TimeSpan.FromSeconds(120);
+    private TimeSpan _patience = TimeSpan.FromSeconds(120);
     private readonly DirectoryInfo _folder = Directory.CreateTempSubdirectory("benchrunner-");
 
     public string Folder => _folder.FullName;
@@ -20,6 +20,13 @@ internal sealed class Workplace : IDisposable
     public static string Sequence { get; } = Repository("sequences", "winch-drive-incoming.yaml");
 
     public static string Repository(params string[] parts) => System.IO.Path.Combine([Root(), .. parts]);
+
+    /// <summary>Lets processes run longer than a single device needs.</summary>
+    public Workplace WithPatience(TimeSpan patience)
+    {
+        _patience = patience;
+        return this;
+    }
 
     public string Path(string name) => System.IO.Path.Combine(Folder, name);
 
@@ -72,7 +79,7 @@ internal sealed class Workplace : IDisposable
             start.ArgumentList.Add(argument);
         }
 
-        return new Started(Process.Start(start)!, Patience);
+        return new Started(Process.Start(start)!, _patience);
     }
 
     /// <summary>One value of the evidence, by plain SQL as a quality engineer would ask it.</summary>

@@ -5,7 +5,7 @@ public sealed record SessionOptions
 {
     /// <summary>For connections that are polled for safety: a poll without its reply is a doubt soon and at once, not a
     /// reason to ask again. Setting down is tried as often as elsewhere.</summary>
-    public static SessionOptions Watching { get; } = new() { ReplyWithin = TimeSpan.FromSeconds(1), ReadAttempts = 1 };
+    public static SessionOptions Watching { get; } = new() { ReplyWithin = TimeSpan.FromSeconds(2), ReadAttempts = 1 };
 
     /// <summary>How long connecting may take.</summary>
     public TimeSpan ConnectWithin { get; init; } = TimeSpan.FromSeconds(3);
