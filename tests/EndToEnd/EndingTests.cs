@@ -60,11 +60,23 @@ public sealed class EndingTests : IDisposable
         Finished refused = (await _place.Run(run)).Expect(4);
         Assert.Contains("latch stands", refused.Error, StringComparison.Ordinal);
         Assert.Contains("interlock loop is open", refused.Error, StringComparison.Ordinal);
+        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'latched'", _place.Path("bench-evidence.db")));
 
         string bench = run[Array.IndexOf(run, "--bench") + 1];
         (await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "door closed")).Expect(0);
         Finished cleared = await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "again");
         Assert.Contains("no latch stands", cleared.Expect(0).Output, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public async Task A_bus_that_is_not_proved_down_latches_the_bench()
+    {
+        string[] run = await OtherBench("bus-stays-up");
+        (await _place.Run(run)).Expect(4);
+
+        Finished refused = (await _place.Run(run)).Expect(4);
+
+        Assert.Contains("the bus was not proved down", refused.Error, StringComparison.Ordinal);
     }
 
     [Fact]

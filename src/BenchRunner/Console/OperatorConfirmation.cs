@@ -25,7 +25,7 @@ internal sealed class OperatorConfirmation(Screen screen, string? armedBy) : ICo
             screen.Line(screen.Palette.Open("  ! ") + line);
         }
 
-        return simulated ? "simulated" : armedBy ?? await Ask(plan, cancel);
+        return armedBy ?? (simulated ? "simulated" : await Ask(plan, cancel));
     }
 
     private static async Task<string?> Ask(Plan plan, CancellationToken cancel)
