@@ -1,3 +1,5 @@
+using BenchRunner.Evidence.Audits;
+
 namespace EndToEnd;
 
 /// <summary>Each fault of the fake bench to its documented exit code, the bus down at the end, the evidence consistent.</summary>
@@ -101,9 +103,10 @@ public sealed class FaultTests : IDisposable
 
     private void AssertBusDown() => Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
 
-    /// <summary>SQLite finds the file whole, every run has its end, and every capture its payload.</summary>
+    /// <summary>SQLite finds the file whole, every run has its end and its seal, and every capture its payload.</summary>
     private void AssertConsistent()
     {
+        Assert.Empty(EvidenceAudit.Verify(_place.Evidence).Problems);
         Assert.Equal("ok", _place.Ask<string>("pragma integrity_check"));
         Assert.Equal(0, _place.Ask<long>("select count(*) from device_outcomes where finished_at is null"));
         Assert.Equal(0, _place.Ask<long>("select count(*) from capture where id not in (select capture from payload)"));

@@ -147,4 +147,24 @@ public sealed class RunTests : IDisposable
         Assert.Equal(2, _place.Ask<long>("select max(attempt) from device_outcomes"));
         Assert.Equal(1, _place.Ask<long>("select count(*) from device_outcomes where current"));
     }
+
+    [Fact]
+    public async Task An_audit_finds_a_run_as_sealed_and_a_changed_value_not()
+    {
+        (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
+        Assert.Contains("as sealed", (await _place.Run("audit")).Expect(0).Output, StringComparison.Ordinal);
+
+        using (var connection = new Microsoft.Data.Sqlite.SqliteConnection($"Data Source={_place.Evidence};Pooling=False"))
+        {
+            connection.Open();
+            using Microsoft.Data.Sqlite.SqliteCommand command = connection.CreateCommand();
+            command.CommandText =
+                "drop trigger measurement_is_never_changed; update measurement set value = 1.01 * value where conformity = 'conforms'";
+            command.ExecuteNonQuery();
+        }
+
+        using JsonDocument audit = JsonDocument.Parse((await _place.Run("audit", "--json")).Expect(6).Output);
+        Assert.False(audit.RootElement.GetProperty("ok").GetBoolean());
+        Assert.NotEmpty(audit.RootElement.GetProperty("problems").EnumerateArray());
+    }
 }

@@ -13,6 +13,7 @@ internal static class CommandTree
         RunCommand.Build(),
         AnalyseCommand.Build(),
         QueryCommand.Build(),
+        AuditCommand.Build(),
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),
         BenchCommand.Build(),
