@@ -56,7 +56,7 @@ public sealed class PointFixture
         _events = events;
         _time = time;
         _bus = new BusCharge(bench, plan.Bench, supervisor.Witness, time);
-        _firing = new TrainFiring(bench, events);
+        _firing = new TrainFiring(bench, events, time);
         _settings = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
     }
 
@@ -102,7 +102,6 @@ public sealed class PointFixture
     {
         double voltmeter = await WaitForTurn(state, cancel);
         DateTimeOffset at = _time.GetUtcNow();
-        state.FiredAt = _time.GetTimestamp();
         state.Taken.Taken++;
         ScopeRecord? record = await _firing.Fire(permit, Scope(state), cancel);
         if (record is null || record.Traces.Count == 0)
@@ -190,7 +189,7 @@ public sealed class PointFixture
     /// <returns>The voltmeter's reading, V.</returns>
     private async Task<double> WaitForTurn(PointState state, CancellationToken cancel)
     {
-        if (state.FiredAt is { } fired)
+        if (_firing.FiredAt is { } fired)
         {
             double due = Math.Max(state.Planned.Point.RepeatEvery, state.Planned.Recovery);
             TimeSpan wait = TimeSpan.FromSeconds(due) - _time.GetElapsedTime(fired);

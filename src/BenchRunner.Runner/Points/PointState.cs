@@ -21,8 +21,6 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 
     public int StaleInARow { get; private set; }
 
-    public long? FiredAt { get; set; }
-
     public long? Count { get; set; }
 
     public IReadOnlyList<RawTrace> Previous { get; private set; } = [];

@@ -8,9 +8,12 @@ namespace BenchRunner.Runner.Points;
 
 /// <summary>Fires one pulse train and gets the scope's record of it, or says why there is none.</summary>
 /// <remarks>A train is never fired twice by itself: a record that is missing or broken costs one capture.</remarks>
-public sealed class TrainFiring(OpenBench bench, EventSource events)
+public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan RecordWithin = TimeSpan.FromSeconds(2);
+
+    /// <summary>When the last train was fired, a time stamp of the clock; null before the first.</summary>
+    public long? FiredAt { get; private set; }
 
     /// <summary>Sets the scope; costs nothing where the settings stand, and after a link that was opened again all are sent.</summary>
     /// <exception cref="InstrumentException">The scope cannot be set or reached.</exception>
@@ -37,6 +40,7 @@ public sealed class TrainFiring(OpenBench bench, EventSource events)
         await OnScope(() => bench.Scope.Arm(cancel));
         await bench.Pulser.Arm(permit, cancel);
         await bench.Pulser.Fire(permit, cancel);
+        FiredAt = time.GetTimestamp();
         try
         {
             if (await bench.Scope.WaitForRecord(RecordWithin, cancel))
