@@ -29,7 +29,7 @@ internal static class RunCommand
         Job job = Job.Read(arguments.Sequence, arguments.Bench);
         bool fake = job.Bench.Fake is not null;
         arguments.Check(fake);
-        var screen = Screen.Standard(error: arguments.Json);
+        await using Screen screen = Screen.Standard(error: arguments.Json);
         var serials = new Serials(arguments.Devices, job.Sequence, screen.Line);
         var request = new RunRequest
         {

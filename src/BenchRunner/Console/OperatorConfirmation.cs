@@ -28,7 +28,7 @@ internal sealed class OperatorConfirmation(Screen screen, string? armedBy) : ICo
         return armedBy ?? (simulated ? "simulated" : await Ask(plan, cancel));
     }
 
-    private static async Task<string?> Ask(Plan plan, CancellationToken cancel)
+    private async Task<string?> Ask(Plan plan, CancellationToken cancel)
     {
         using Terminal? terminal = Terminal.Open();
         if (terminal is null)
@@ -37,6 +37,7 @@ internal sealed class OperatorConfirmation(Screen screen, string? armedBy) : ICo
         }
 
         double volts = plan.Points.Max(point => point.Point.BusVoltage);
+        await screen.Written(cancel);
         terminal.DiscardWaiting();
         terminal.Ask(string.Create(
             CultureInfo.InvariantCulture,

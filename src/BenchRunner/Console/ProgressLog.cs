@@ -24,11 +24,12 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
         screen.Line($"{screen.Palette.Faint(at)}  {happened.Source,-10}  {screen.Palette.Of(happened.Severity, text)}");
     }
 
+    // In an order that loses the least where a narrow terminal cuts it.
     public void Progress(RunProgress progress) => screen.Live(string.Create(
         CultureInfo.InvariantCulture,
-        $"{progress.Device}  {progress.OperatingPoint}  capture {progress.Capture} of at most {progress.AtMost}  "
-            + $"valid {progress.Valid} of {progress.Wanted}  bus {progress.BusVoltage:0.0} V  "
-            + $"interlock {Interlock(progress.Interlock)}  {progress.Left:m\\:ss} left"));
+        $"{progress.OperatingPoint}  capture {progress.Capture} of {progress.AtMost}  "
+            + $"{progress.Valid} of {progress.Wanted} valid  {progress.BusVoltage:0.0} V  "
+            + $"interlock {Interlock(progress.Interlock)}  {progress.Left:m\\:ss} left  {progress.Device}"));
 
     public void CaseEnded(CaseResult result)
     {

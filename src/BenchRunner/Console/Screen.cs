@@ -1,62 +1,95 @@
 using System.Text;
+using System.Threading.Channels;
 
 namespace BenchRunner.Console;
 
 /// <summary>Lines, and on a terminal one live line below them. In a pipe it writes lines alone, without control codes.</summary>
-internal sealed class Screen(TextWriter writer, bool isTerminal, Func<int> width)
+/// <remarks>
+/// A task of its own writes, in the order asked for: a terminal that was stopped (Ctrl-S) or a reader that does not read must
+/// not hold up the run, least of all its way to the safe state.
+/// </remarks>
+internal sealed class Screen : IAsyncDisposable
 {
     private const string ClearLine = "\r\u001b[2K";
-    private readonly Lock _gate = new();
+    private readonly TextWriter _writer;
+    private readonly bool _isTerminal;
+    private readonly Channel<Action> _asked = Channel.CreateUnbounded<Action>(new() { SingleReader = true });
+    private readonly Task _writing;
     private string _live = "";
 
+    private Screen(TextWriter writer, bool isTerminal)
+    {
+        _writer = writer;
+        _isTerminal = isTerminal;
+        Palette = new Palette(isTerminal && Environment.GetEnvironmentVariable("NO_COLOR") is null or "");
+        _writing = Task.Run(Write);
+    }
+
     /// <summary>Colours for this screen.</summary>
-    public Palette Palette { get; } = new(isTerminal && Environment.GetEnvironmentVariable("NO_COLOR") is null or "");
+    public Palette Palette { get; }
 
     /// <summary>A screen on standard output or standard error.</summary>
     public static Screen Standard(bool error) => error
-        ? new Screen(System.Console.Error, !System.Console.IsErrorRedirected, WindowWidth)
-        : new Screen(System.Console.Out, !System.Console.IsOutputRedirected, WindowWidth);
+        ? new Screen(System.Console.Error, !System.Console.IsErrorRedirected)
+        : new Screen(System.Console.Out, !System.Console.IsOutputRedirected);
 
     /// <summary>Writes a line above the live line.</summary>
-    public void Line(string text)
+    public void Line(string text) => _asked.Writer.TryWrite(() =>
     {
-        lock (_gate)
-        {
-            writer.Write(isTerminal && _live.Length > 0 ? ClearLine : "");
-            writer.WriteLine(text);
-            writer.Write(isTerminal ? _live : "");
-            writer.Flush();
-        }
-    }
+        _writer.Write(_isTerminal && _live.Length > 0 ? ClearLine : "");
+        _writer.WriteLine(text);
+        _writer.Write(_isTerminal ? _live : "");
+    });
 
     /// <summary>Replaces the live line; does nothing in a pipe.</summary>
     public void Live(string text)
     {
-        if (!isTerminal)
+        if (_isTerminal)
         {
-            return;
-        }
-
-        lock (_gate)
-        {
-            // Four columns stay free, or a terminal's echo of ^C would wrap the line.
-            int room = Math.Max(width() - 4, 10);
-            _live = text.Length > room ? text[..room] : text;
-            writer.Write(ClearLine + _live);
-            writer.Flush();
+            _asked.Writer.TryWrite(() =>
+            {
+                // Four columns stay free, or a terminal's echo of ^C would wrap the line.
+                int room = Math.Max(WindowWidth() - 4, 10);
+                _live = text.Length > room ? text[..room] : text;
+                _writer.Write(ClearLine + _live);
+            });
         }
     }
 
     /// <summary>Takes the live line away.</summary>
-    public void EndLive()
+    public void EndLive() => _asked.Writer.TryWrite(() =>
     {
-        lock (_gate)
+        _writer.Write(_live.Length > 0 ? ClearLine : "");
+        _live = "";
+    });
+
+    /// <summary>Waits until all that was asked for so far is written.</summary>
+    public Task Written(CancellationToken cancel)
+    {
+        var written = new TaskCompletionSource(TaskCreationOptions.RunContinuationsAsynchronously);
+        return _asked.Writer.TryWrite(written.SetResult) ? written.Task.WaitAsync(cancel) : _writing;
+    }
+
+    /// <summary>Writes what was asked for and ends.</summary>
+    public async ValueTask DisposeAsync()
+    {
+        EndLive();
+        _asked.Writer.TryComplete();
+        await _writing;
+    }
+
+    private async Task Write()
+    {
+        await foreach (Action write in _asked.Reader.ReadAllAsync())
         {
-            if (_live.Length > 0)
+            try
             {
-                _live = "";
-                writer.Write(ClearLine);
-                writer.Flush();
+                write();
+                _writer.Flush();
+            }
+            catch (IOException)
+            {
+                // Nobody reads any more; the evidence has it all.
             }
         }
     }
