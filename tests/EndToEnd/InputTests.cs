@@ -51,7 +51,7 @@ public sealed class InputTests : IDisposable
         Finished run = (await _place.Run(
             "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", bench, "--operator", "op", "--armed-by", "op")).Expect(5);
 
-        Assert.Contains("127.0.0.1", run.Error, StringComparison.Ordinal);
+        Assert.Contains("interlock: tcp 127.0.0.1", run.Error, StringComparison.Ordinal);
         Assert.Equal(0, _place.Ask<long>("select count(*) from device_outcomes", _place.Path("bench-evidence.db")));
     }
 

@@ -51,6 +51,15 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    public async Task A_leakage_that_the_sequence_bounds_is_said_not_to_be_measured()
+    {
+        (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
+
+        string said = _place.Ask<string>("select message from events where kind = 'not-evaluated' and severity = 'warning'");
+        Assert.Contains("2 mA", said, StringComparison.Ordinal);
+    }
+
+    [Fact]
     public async Task Every_limit_of_the_sequence_has_exactly_one_decided_measurement()
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);

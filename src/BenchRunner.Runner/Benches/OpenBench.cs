@@ -49,9 +49,8 @@ public sealed class OpenBench : IAsyncDisposable
     /// <param name="log">Takes what the links report.</param>
     /// <param name="time">The clock of all deadlines.</param>
     /// <param name="cancel">Ends the attempt.</param>
-    /// <exception cref="LinkException">An instrument cannot be reached.</exception>
     /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
-    /// <exception cref="BenchException">Real and simulated instruments are mixed.</exception>
+    /// <exception cref="BenchException">An instrument cannot be reached, or real and simulated ones are mixed.</exception>
     public static async Task<OpenBench> Open(
         Bench bench,
         IReadOnlyDictionary<string, DialectFile> dialects,
@@ -109,19 +108,19 @@ public sealed class OpenBench : IAsyncDisposable
         bool OwnToo(string role) => bench.Roles[role].Connections > 1;
 
         // Safety first: whatever fails later, these are there.
-        ScpiInterlock interlock = Keep(await ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
-        ScpiVoltmeter watchMeter = Keep(await ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
-        ScpiSupply safeSupply = Keep(await ScpiSupply.Connect(at("supply", patient), cancel));
-        ScpiPulser safePulser = Keep(await ScpiPulser.Connect(at("pulser", patient), cancel));
+        ScpiInterlock interlock = await Reach("interlock", ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
+        ScpiVoltmeter watchMeter = await Reach("voltmeter", ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
+        ScpiSupply safeSupply = await Reach("supply", ScpiSupply.Connect(at("supply", patient), cancel));
+        ScpiPulser safePulser = await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel));
         Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
 
         Voltmeter = OwnToo("voltmeter")
-            ? Keep(await ScpiVoltmeter.Connect(at("voltmeter", patient), cancel)) : watchMeter;
+            ? await Reach("voltmeter", ScpiVoltmeter.Connect(at("voltmeter", patient), cancel)) : watchMeter;
         Supply = OwnToo("supply")
-            ? Keep(await ScpiSupply.Connect(at("supply", patient), cancel)) : safeSupply;
+            ? await Reach("supply", ScpiSupply.Connect(at("supply", patient), cancel)) : safeSupply;
         Pulser = OwnToo("pulser")
-            ? Keep(await ScpiPulser.Connect(at("pulser", patient), cancel)) : safePulser;
-        Scope = Keep(await ScpiScope.Connect(at("scope", patient), cancel));
+            ? await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel)) : safePulser;
+        Scope = await Reach("scope", ScpiScope.Connect(at("scope", patient), cancel));
     }
 
     private void Identify(Bench bench)
@@ -156,10 +155,19 @@ public sealed class OpenBench : IAsyncDisposable
         IsSimulated = simulated.Contains(true);
     }
 
-    private T Keep<T>(T link)
+    /// <summary>Keeps what was connected, to be closed; who cannot be reached is named by its role.</summary>
+    private async Task<T> Reach<T>(string role, Task<T> connecting)
         where T : IDisposable
     {
-        _open.Push(link);
-        return link;
+        try
+        {
+            T reached = await connecting;
+            _open.Push(reached);
+            return reached;
+        }
+        catch (LinkException lost)
+        {
+            throw new BenchException($"{role}: {lost.Message}; nothing was energised");
+        }
     }
 }

@@ -1,6 +1,7 @@
 using System.Runtime.InteropServices;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;
@@ -55,7 +56,6 @@ public sealed class RunSession
     /// <param name="operatorStop">Cancelled when the operator interrupts.</param>
     /// <exception cref="RefusedException">Refused before anything was energised.</exception>
     /// <exception cref="Evidence.EvidenceException">The evidence cannot be opened.</exception>
-    /// <exception cref="Instruments.Links.LinkException">An instrument cannot be reached.</exception>
     /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
     /// <exception cref="BenchException">The bench is not fit to run on.</exception>
     /// <exception cref="SafetyException">The bench is not safe to begin with.</exception>
@@ -150,6 +150,13 @@ public sealed class RunSession
             }
 
             _events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
+            if (Plan.Sequence.Leakage is { } leakage)
+            {
+                // Silence would be taken for a pass.
+                _events.Say(
+                    Severity.Warning, "not-evaluated", $"leakage, at most {SiText.Format(leakage, "A")} by the sequence, is not measured yet");
+            }
+
             return await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
                 .Walk(device, evidence, operatorStop);
         }
