@@ -2,13 +2,13 @@ using System.Diagnostics;
 
 namespace BenchRunner.Benchmarks;
 
-/// <summary>Times works in interleaved rounds, so that a neighbour on the machine slows all of them alike.</summary>
+/// <summary>Times works in interleaved rounds, by the processor time of this process: a neighbour's work is not ours.</summary>
 internal static class Rounds
 {
     private const int Count = 7;
     private const double RoundSeconds = 0.2;
 
-    /// <summary>Median seconds a call of each work, and the relative half distance of its quartiles.</summary>
+    /// <summary>Median processor seconds a call of each work, and the relative half distance of its quartiles.</summary>
     public static (double Median, double Spread)[] Time(params Action[] works)
     {
         int[] calls = [.. works.Select(Calls)];
@@ -17,13 +17,13 @@ internal static class Rounds
         {
             for (int i = 0; i < works.Length; i++)
             {
-                long start = Stopwatch.GetTimestamp();
+                TimeSpan start = Environment.CpuUsage.TotalTime;
                 for (int call = 0; call < calls[i]; call++)
                 {
                     works[i]();
                 }
 
-                seconds[i][round] = Stopwatch.GetElapsedTime(start).TotalSeconds / calls[i];
+                seconds[i][round] = (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls[i];
             }
         }
 
