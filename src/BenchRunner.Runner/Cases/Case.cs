@@ -1,5 +1,6 @@
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Signals.Quantities;
 
 namespace BenchRunner.Runner.Cases;
 
@@ -12,9 +13,7 @@ public sealed record Case(string Device, Limit Limit)
     public CaseResult Result(DeviceDecision decision)
     {
         ArgumentNullException.ThrowIfNull(decision);
-        MeasuredValue? value = decision.Values.FirstOrDefault(one =>
-            one.OperatingPoint == Limit.At && one.Quantity == Limit.Quantity && one.Conformity is not null
-            && one.Lower == Limit.Lower && one.Upper == Limit.Upper);
+        MeasuredValue? value = decision.Values.FirstOrDefault(IsOfTheLimit);
         CaseEnding ending = value switch
         {
             null or { Captures: 0 } => CaseEnding.NotMeasured,
@@ -24,4 +23,10 @@ public sealed record Case(string Device, Limit Limit)
         };
         return new CaseResult(Device, Limit, ending, value, value is null ? decision.Reason : value.Reason);
     }
+
+    private bool IsOfTheLimit(MeasuredValue value) =>
+        value.OperatingPoint == Limit.At && value.Quantity == Limit.Quantity && value.Conformity is not null
+        && value.Lower == Limit.Lower && value.Upper == Limit.Upper
+        && (Limit.Definition is null || value.Definition == Limit.Definition
+            || DefinitionId.Split(value.Definition).Rule == Limit.Definition);
 }

@@ -71,10 +71,10 @@ public sealed class PointFixture
         string device, PlannedPoint planned, PointTaken taken, Func<TimeSpan> left, CancellationToken cancel)
     {
         OperatingPoint point = planned.Point;
+        Permit permit = await _supervisor.Grant(Bounds(planned), cancel);
         _events.Say(
             Severity.Information, "point-started",
             $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; charging the bus");
-        Permit permit = await _supervisor.Grant(Bounds(planned), cancel);
         var state = new PointState(planned, taken);
 
         // Gates at their off level before there is any voltage for them to hold off.

@@ -1,0 +1,81 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Runner.Exchanges;
+using BenchRunner.Runner.Tests.Workplaces;
+using Microsoft.Extensions.Time.Testing;
+
+namespace BenchRunner.Runner.Tests.Exchanges;
+
+public sealed class ExchangeTests : IDisposable
+{
+    private readonly Workplace _place = new();
+    private readonly RecordingSink _heard = new();
+
+    private static CancellationToken Cancel => TestContext.Current.CancellationToken;
+
+    public void Dispose() => _place.Dispose();
+
+    [Fact]
+    public async Task The_loop_is_seen_open_before_the_device_goes_in_and_closed_after()
+    {
+        Bench bench = _place.Bench();
+        await using FakeBenchProcess fake = await FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel);
+        await using OpenBench open = await Open(bench, fake);
+        var hands = new Hands(fake, async () => (await open.Safety.Interlock.Read(Cancel)).LoopClosed);
+
+        await new Exchange(hands, open.Safety.Interlock, Events(TimeProvider.System), TimeProvider.System).Insert("W1200-0002", Cancel);
+
+        Assert.Equal(["open while closed", "insert W1200-0002 while open", "close while open"], hands.Done);
+        Assert.True((await open.Safety.Interlock.Read(Cancel)).LoopClosed);
+        Assert.Equal(1, _heard.Count("device-exchanged"));
+    }
+
+    [Theory]
+    [InlineData("open", "not seen open")]
+    [InlineData("close", "not seen closed")]
+    public async Task A_loop_that_does_not_follow_the_hands_ends_the_exchange(string idle, string why)
+    {
+        Bench bench = _place.Bench();
+        await using FakeBenchProcess fake = await FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel);
+        await using OpenBench open = await Open(bench, fake);
+        var hands = new Hands(fake, () => Task.FromResult(true)) { Idle = idle };
+        var time = new FakeTimeProvider();
+
+        Task exchange = new Exchange(hands, open.Safety.Interlock, Events(time), time).Insert("W1200-0002", Cancel);
+        await Eventually.True(
+            () =>
+            {
+                time.Advance(TimeSpan.FromMilliseconds(100));
+                return exchange.IsCompleted;
+            },
+            "an end of the exchange");
+
+        var failure = await Assert.ThrowsAsync<BenchException>(() => exchange);
+        Assert.Contains(why, failure.Message, StringComparison.Ordinal);
+        Assert.Equal(idle == "open" ? 1 : 3, hands.Done.Count);
+        Assert.Equal(0, _heard.Count("device-exchanged"));
+    }
+
+    private EventSource Events(TimeProvider time) => new("runner", _heard, time);
+
+    private Task<OpenBench> Open(Bench bench, FakeBenchProcess fake) =>
+        OpenBench.Open(bench, Workplace.Dialects(bench), fake.Links, _heard, TimeProvider.System, Cancel);
+
+    /// <summary>The fake bench's hands, watched; one of their moves may be left out.</summary>
+    private sealed class Hands(IHands real, Func<Task<bool>> loopClosed) : IHands
+    {
+        public List<string> Done { get; } = [];
+
+        public string? Idle { get; init; }
+
+        public async Task Do(string hand, CancellationToken cancel)
+        {
+            Done.Add($"{hand} while {(await loopClosed() ? "closed" : "open")}");
+            if (hand != Idle)
+            {
+                await real.Do(hand, cancel);
+            }
+        }
+    }
+}

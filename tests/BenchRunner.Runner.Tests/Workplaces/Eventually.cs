@@ -1,0 +1,18 @@
+namespace BenchRunner.Runner.Tests.Workplaces;
+
+/// <summary>Waits for what a real program does, bounded.</summary>
+internal static class Eventually
+{
+    private static readonly TimeSpan Bound = TimeSpan.FromSeconds(30);
+    private static readonly TimeSpan Pause = TimeSpan.FromMilliseconds(2);
+
+    public static async Task True(Func<bool> condition, string what)
+    {
+        long began = TimeProvider.System.GetTimestamp();
+        while (!condition())
+        {
+            Assert.True(TimeProvider.System.GetElapsedTime(began) < Bound, $"did not come about: {what}");
+            await Task.Delay(Pause, TimeProvider.System);
+        }
+    }
+}
