@@ -10,7 +10,7 @@ public static class RoleOperations
             ["supply"] =
             [
                 .. Setting("voltage"), .. Setting("current"), .. Setting("protection"),
-                Do("clear-protection"), Ask("protection-tripped"),
+                Ask("protection-tripped"),
                 Do("output-on"), Do("output-off"), Ask("read-output"),
                 Ask("measure-voltage"), Ask("measure-current"), Ask("read-condition"),
             ],
