@@ -3,7 +3,8 @@ namespace BenchRunner.Safety;
 /// <summary>Bounds that the house sets for itself; the lab's hardware has its own.</summary>
 public static class SafetyLimits
 {
-    /// <summary>Below this DC voltage a bus counts as down, V. IEC 61140 puts the limit of extra-low voltage at 120 V DC (from memory); half of it is used here.</summary>
+    /// <summary>Below this DC voltage a bus counts as down, V. IEC 61140 puts the limit of extra-low voltage at 120 V
+    /// DC (from memory); half of it is used here.</summary>
     public const double BusDown = 60;
 
     /// <summary>How long a permit lives without a complete poll that finds nothing.</summary>

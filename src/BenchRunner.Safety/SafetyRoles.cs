@@ -2,7 +2,8 @@ using BenchRunner.Instruments.Roles;
 
 namespace BenchRunner.Safety;
 
-/// <summary>The instruments on connections of safety's own, so that a runner that waits on its link never holds them up.</summary>
+/// <summary>The instruments on connections of safety's own, so that a runner that waits on its link never holds them
+/// up.</summary>
 /// <param name="Pulser">Inhibited on the way to the safe state.</param>
 /// <param name="Supply">Switched off on the way to the safe state.</param>
 /// <param name="Interlock">Polled; its bleeder discharges the bank.</param>

@@ -1,6 +1,7 @@
 namespace BenchRunner;
 
-/// <summary>The one place where an exception that got this far becomes an exit code and one line for the user.</summary>
+/// <summary>The one place where an exception that got this far becomes an exit code and one line for the
+/// user.</summary>
 internal static class Ending
 {
     public static async Task<int> Of(Func<Task<int>> work, CancellationToken stop)

@@ -19,7 +19,8 @@ internal static class Program
                 System.Console.Error.WriteLine(error.Message);
             }
 
-            System.Console.Error.WriteLine("'benchrunner --help' shows the commands, 'benchrunner COMMAND --help' an example.");
+            System.Console.Error.WriteLine(
+                "'benchrunner --help' shows the commands, 'benchrunner COMMAND --help' an example.");
             return ExitCode.WrongInput;
         }
 

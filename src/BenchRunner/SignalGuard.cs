@@ -2,7 +2,8 @@ using System.Runtime.InteropServices;
 
 namespace BenchRunner;
 
-/// <summary>Turns the signals that end a program into a cancelled token: the way out leads through the safe state.</summary>
+/// <summary>Turns the signals that end a program into a cancelled token: the way out leads through the safe
+/// state.</summary>
 /// <remarks>Once or ten times makes no difference: only the first cancels, none kills.</remarks>
 internal sealed class SignalGuard : IDisposable
 {

@@ -32,7 +32,8 @@ public sealed class ConfirmationTests : IDisposable
     [InlineData("", "no\n")]
     [InlineData("", "400\n")]
     [InlineData("600\n600\n", "\n")]
-    public async Task Anything_else_ends_the_run_and_what_was_typed_before_the_question_answers_nothing(string before, string answer)
+    public async Task Anything_else_ends_the_run_and_what_was_typed_before_the_question_answers_nothing(
+        string before, string answer)
     {
         using Started run = await OnATerminal();
         await run.Input.WriteAsync(before);
@@ -63,9 +64,11 @@ public sealed class ConfirmationTests : IDisposable
     /// <summary>The run under <c>script</c>, which gives it a terminal of its own.</summary>
     private async Task<Started> OnATerminal()
     {
-        Assert.SkipUnless(OperatingSystem.IsLinux() && File.Exists("/usr/bin/script"), "script gives the run a terminal; it is Linux's");
+        Assert.SkipUnless(OperatingSystem.IsLinux() && File.Exists("/usr/bin/script"), "script gives the run a "
+            + "terminal; it is Linux's");
         _lab = await LabBench.Start(_place);
-        string command = $"{Workplace.Program} run {Workplace.Sequence} --device W1200-0001 --bench {_lab.File} --operator op";
+        string command =
+            $"{Workplace.Program} run {Workplace.Sequence} --device W1200-0001 --bench {_lab.File} --operator op";
         return _place.Start("/usr/bin/script", ["--quiet", "--flush", "--return", "--command", command, "/dev/null"]);
     }
 }

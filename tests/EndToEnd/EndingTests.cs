@@ -60,11 +60,14 @@ public sealed class EndingTests : IDisposable
         Finished refused = (await _place.Run(run)).Expect(4);
         Assert.Contains("latch stands", refused.Error, StringComparison.Ordinal);
         Assert.Contains("interlock loop is open", refused.Error, StringComparison.Ordinal);
-        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'latched'", _place.Path("bench-evidence.db")));
+        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = "
+            + "'latched'", _place.Path("bench-evidence.db")));
 
         string bench = run[Array.IndexOf(run, "--bench") + 1];
-        (await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "door closed")).Expect(0);
-        Finished cleared = await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "again");
+        (await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "door closed")).Expect(
+            0);
+        Finished cleared = await _place.Run(
+            "bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "again");
         Assert.Contains("no latch stands", cleared.Expect(0).Output, StringComparison.Ordinal);
     }
 
@@ -99,11 +102,13 @@ public sealed class EndingTests : IDisposable
         string file = Path.Combine(_place.Path("benches"), "lab.yaml");
         _bench = _place.Start(
             Workplace.FakeBench,
-            ["serve", "--ends-with-input", "--device", "W1200-0001", "--pace", "5", "--write-bench", file, .. faults.SelectMany(f => (string[])["--fault", f])]);
+            ["serve", "--ends-with-input", "--device", "W1200-0001", "--pace", "5", "--write-bench", file,
+                .. faults.SelectMany(f => (string[])["--fault", f])]);
         await _bench.Line(line => line == "ready");
         return
         [
-            "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", file, "--operator", "op", "--armed-by", "op",
+            "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", file, "--operator", "op",
+            "--armed-by", "op",
         ];
     }
 }

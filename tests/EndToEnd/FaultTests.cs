@@ -2,7 +2,8 @@ using BenchRunner.Evidence.Audits;
 
 namespace EndToEnd;
 
-/// <summary>Each fault of the fake bench to its documented exit code, the bus down at the end, the evidence consistent.</summary>
+/// <summary>Each fault of the fake bench to its documented exit code, the bus down at the end, the evidence
+/// consistent.</summary>
 public sealed class FaultTests : IDisposable
 {
     private readonly Workplace _place = new();
@@ -17,7 +18,8 @@ public sealed class FaultTests : IDisposable
     [InlineData("over-voltage-trips", 4, "stopped", "over-voltage protection")]
     [InlineData("silent-supply", 4, "stopped", "no whole reply")]
     [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
-    public async Task A_fault_that_ends_the_run_leaves_the_bus_down(string fault, int exitCode, string outcome, string reason)
+    public async Task A_fault_that_ends_the_run_leaves_the_bus_down(
+        string fault, int exitCode, string outcome, string reason)
     {
         (await Run(fault)).Expect(exitCode);
 
@@ -35,7 +37,8 @@ public sealed class FaultTests : IDisposable
     {
         (await Run(fault)).Expect(0);
 
-        Assert.Equal(1, _place.Ask<long>($"select count(*) from captures where not valid and findings like '%\"{criterion}\"%'"));
+        Assert.Equal(1, _place.Ask<long>($"select count(*) from captures where not valid and findings like "
+            + $"'%\"{criterion}\"%'"));
         Assert.Equal(11, _place.Ask<long>("select captures_taken from device_outcomes"));
         Assert.Equal(10, _place.Ask<long>("select captures_valid from device_outcomes"));
         AssertBusDown();
@@ -61,7 +64,8 @@ public sealed class FaultTests : IDisposable
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001", "--evidence", "sound.db")).Expect(0);
         (await Run(fault)).Expect(0);
 
-        const string values = "select operating_point, quantity, definition, value, conformity from measurements order by 1, 2, 3";
+        const string values =
+            "select operating_point, quantity, definition, value, conformity from measurements order by 1, 2, 3";
         Assert.Equal(_place.Rows(values, _place.Path("sound.db")), _place.Rows(values));
         AssertBusDown();
     }
@@ -101,9 +105,11 @@ public sealed class FaultTests : IDisposable
         "run", Workplace.Sequence, "--device", "W1200-0001",
         "--bench", _place.FakeBenchFile($"{{ seed: 1, pace: 5, faults: ['{fault}'] }}"));
 
-    private void AssertBusDown() => Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
+    private void AssertBusDown() =>
+        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
 
-    /// <summary>SQLite finds the file whole, every run has its end and its seal, and every capture its payload.</summary>
+    /// <summary>SQLite finds the file whole, every run has its end and its seal, and every capture its
+    /// payload.</summary>
     private void AssertConsistent()
     {
         Assert.Empty(EvidenceAudit.Verify(_place.Evidence).Problems);

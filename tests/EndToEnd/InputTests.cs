@@ -49,7 +49,8 @@ public sealed class InputTests : IDisposable
         string bench = RealBench();
 
         Finished run = (await _place.Run(
-            "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", bench, "--operator", "op", "--armed-by", "op")).Expect(5);
+            "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", bench,
+            "--operator", "op", "--armed-by", "op")).Expect(5);
 
         Assert.Contains("interlock: tcp 127.0.0.1", run.Error, StringComparison.Ordinal);
         Assert.Equal(0, _place.Ask<long>("select count(*) from device_outcomes", _place.Path("bench-evidence.db")));
@@ -65,7 +66,8 @@ public sealed class InputTests : IDisposable
         Assert.SkipUnless(OperatingSystem.IsLinux(), "setsid, which takes the terminal away, is Linux's");
         using Started run = _place.Start(
             "setsid",
-            ["-w", Workplace.Program, "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", RealBench(), "--operator", "op"]);
+            ["-w", Workplace.Program, "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", RealBench(),
+                "--operator", "op"]);
 
         Assert.Contains("--armed-by", (await run.End()).Expect(2).Error, StringComparison.Ordinal);
     }
@@ -81,7 +83,8 @@ public sealed class InputTests : IDisposable
         {
             Finished help = (await _place.Run(command, "--help")).Expect(0);
             Assert.Contains($"Example: benchrunner {command}", help.Output, StringComparison.Ordinal);
-            Assert.Contains($"benchrunner {command} ", help.Output[help.Output.IndexOf("Usage:", StringComparison.Ordinal)..], StringComparison.Ordinal);
+            Assert.Contains($"benchrunner {command} ",
+                help.Output[help.Output.IndexOf("Usage:", StringComparison.Ordinal)..], StringComparison.Ordinal);
         }
     }
 

@@ -4,8 +4,10 @@ using System.Text;
 
 namespace EndToEnd;
 
-/// <summary>A fake bench behind relays that take FAKEBENCH out of its answers: to the program it is a real one.</summary>
-/// <remarks>Only so can a test meet the confirmation that simulated benches are not asked for. Nothing is energised.</remarks>
+/// <summary>A fake bench behind relays that take FAKEBENCH out of its answers: to the program it is a real
+/// one.</summary>
+/// <remarks>Only so can a test meet the confirmation that simulated benches are not asked for. Nothing is
+/// energised.</remarks>
 internal sealed class LabBench : IDisposable
 {
     private static readonly byte[] Told = "FAKEBENCH"u8.ToArray();
@@ -24,7 +26,8 @@ internal sealed class LabBench : IDisposable
         var lab = new LabBench { File = Path.Combine(place.Path("benches"), "lab.yaml") };
         lab._bench = place.Start(
             Workplace.FakeBench,
-            ["serve", "--ends-with-input", "--interlock", "tcp", "--device", "W1200-0001", "--pace", "5", "--write-bench", written]);
+            ["serve", "--ends-with-input", "--interlock", "tcp", "--device", "W1200-0001", "--pace", "5",
+                "--write-bench", written]);
         await lab._bench.Line(line => line == "ready");
         var text = new StringBuilder();
         foreach (string line in await System.IO.File.ReadAllLinesAsync(written))
@@ -36,7 +39,8 @@ internal sealed class LabBench : IDisposable
             {
                 int start = at + mark.Length;
                 int end = line.IndexOf('\'', start);
-                own = line[..start] + lab.Relay(int.Parse(line[start..end], System.Globalization.CultureInfo.InvariantCulture)) + line[end..];
+                own = line[..start] + lab.Relay(
+                    int.Parse(line[start..end], System.Globalization.CultureInfo.InvariantCulture)) + line[end..];
             }
 
             text.Append(own.Replace("FAKEBENCH", "LABBENCH0", StringComparison.Ordinal)).Append('\n');
@@ -100,7 +104,8 @@ internal sealed class LabBench : IDisposable
                 await to.GetStream().WriteAsync(buffer.AsMemory(0, count), _end.Token);
             }
         }
-        catch (Exception over) when (over is IOException or OperationCanceledException or ObjectDisposedException or InvalidOperationException)
+        catch (Exception over) when (over
+            is IOException or OperationCanceledException or ObjectDisposedException or InvalidOperationException)
         {
             // One side has gone; so does the other.
         }

@@ -23,7 +23,9 @@ public sealed class PopulationTests : IDisposable
         Finished run = await _place.Run(["run", Workplace.Sequence, .. devices]);
 
         Assert.True(
-            _place.Ask<long>("select count(*) from device_outcomes where outcome = 'accepted'") >= 18, $"seed {seed}\n{run.All}");
-        Assert.Equal(20, _place.Ask<long>("select count(*) from device_outcomes where outcome in ('accepted', 'undecided', 'rejected')"));
+            _place.Ask<long>("select count(*) from device_outcomes where outcome = "
+                + "'accepted'") >= 18, $"seed {seed}\n{run.All}");
+        Assert.Equal(20, _place.Ask<long>("select count(*) from device_outcomes where outcome in ('accepted', "
+            + "'undecided', 'rejected')"));
     }
 }

@@ -55,7 +55,8 @@ public sealed class RunTests : IDisposable
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
 
-        string said = _place.Ask<string>("select message from events where kind = 'not-evaluated' and severity = 'warning'");
+        string said = _place.Ask<string>(
+            "select message from events where kind = 'not-evaluated' and severity = 'warning'");
         Assert.Contains("2 mA", said, StringComparison.Ordinal);
     }
 
@@ -64,7 +65,8 @@ public sealed class RunTests : IDisposable
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
 
-        int limits = File.ReadLines(Workplace.Sequence).Count(line => line.Contains("{ quantity:", StringComparison.Ordinal));
+        int limits = File.ReadLines(
+            Workplace.Sequence).Count(line => line.Contains("{ quantity:", StringComparison.Ordinal));
         Assert.Equal(limits, _place.Ask<long>("select count(*) from measurements where conformity = 'conforms'"));
         Assert.Equal(limits, _place.Ask<long>("select count(*) from measurements where conformity is not null"));
     }
@@ -81,8 +83,10 @@ public sealed class RunTests : IDisposable
         Assert.Equal(0, document.RootElement.GetProperty("exit_code").GetInt32());
         Assert.Equal("accepted", device.GetProperty("outcome").GetString());
         Assert.Contains("ACCEPTED", run.Error, StringComparison.Ordinal);
-        string[] columns = [.. device.GetProperty("measurements")[0].EnumerateObject().Select(property => property.Name)];
-        Assert.Equal(_place.Rows("select name from pragma_table_info('measurements')").Select(row => (string)row[0]), columns);
+        string[] columns =
+            [.. device.GetProperty("measurements")[0].EnumerateObject().Select(property => property.Name)];
+        Assert.Equal(
+            _place.Rows("select name from pragma_table_info('measurements')").Select(row => (string)row[0]), columns);
     }
 
     [Fact]
@@ -91,11 +95,13 @@ public sealed class RunTests : IDisposable
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "one.db")).Expect(0);
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "two.db")).Expect(0);
 
-        const string traces = "select group_concat(sha256, ' ') from (select sha256 from trace order by capture, channel)";
+        const string traces =
+            "select group_concat(sha256, ' ') from (select sha256 from trace order by capture, channel)";
         const string values =
             "select operating_point, quantity, definition, value, expanded_uncertainty, conformity from measurements "
             + "order by 1, 2, 3";
-        Assert.Equal(_place.Ask<string>(traces, _place.Path("one.db")), _place.Ask<string>(traces, _place.Path("two.db")));
+        Assert.Equal(
+            _place.Ask<string>(traces, _place.Path("one.db")), _place.Ask<string>(traces, _place.Path("two.db")));
         Assert.Equal(_place.Rows(values, _place.Path("one.db")), _place.Rows(values, _place.Path("two.db")));
     }
 
@@ -104,10 +110,13 @@ public sealed class RunTests : IDisposable
     {
         string bench = _place.FakeBenchFile("{ seed: 2, pace: 5 }");
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "one.db")).Expect(0);
-        (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "two.db", "--bench", bench)).Expect(0);
+        (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "two.db",
+            "--bench", bench)).Expect(0);
 
-        const string traces = "select group_concat(sha256, ' ') from (select sha256 from trace order by capture, channel)";
-        Assert.NotEqual(_place.Ask<string>(traces, _place.Path("one.db")), _place.Ask<string>(traces, _place.Path("two.db")));
+        const string traces =
+            "select group_concat(sha256, ' ') from (select sha256 from trace order by capture, channel)";
+        Assert.NotEqual(
+            _place.Ask<string>(traces, _place.Path("one.db")), _place.Ask<string>(traces, _place.Path("two.db")));
     }
 
     [Fact]
@@ -141,7 +150,8 @@ public sealed class RunTests : IDisposable
 
         Assert.Equal("rejected", _place.Ask<string>("select outcome from device_outcomes"));
         Assert.Equal("fails", _place.Ask<string>(
-            "select conformity from measurements where quantity = 'qrr' and operating_point = 'rated' and conformity is not null"));
+            "select conformity from measurements where quantity = 'qrr' and operating_point = 'rated' and conformity "
+                + "is not null"));
     }
 
     [Fact]
@@ -163,12 +173,14 @@ public sealed class RunTests : IDisposable
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
         Assert.Contains("as sealed", (await _place.Run("audit")).Expect(0).Output, StringComparison.Ordinal);
 
-        using (var connection = new Microsoft.Data.Sqlite.SqliteConnection($"Data Source={_place.Evidence};Pooling=False"))
+        string file = $"Data Source={_place.Evidence};Pooling=False";
+        using (var connection = new Microsoft.Data.Sqlite.SqliteConnection(file))
         {
             connection.Open();
             using Microsoft.Data.Sqlite.SqliteCommand command = connection.CreateCommand();
             command.CommandText =
-                "drop trigger measurement_is_never_changed; update measurement set value = 1.01 * value where conformity = 'conforms'";
+                "drop trigger measurement_is_never_changed; update measurement set value = 1.01 * value where "
+                    + "conformity = 'conforms'";
             command.ExecuteNonQuery();
         }
 

@@ -30,7 +30,8 @@ internal sealed class Workplace : IDisposable
 
     public string Path(string name) => System.IO.Path.Combine(Folder, name);
 
-    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects.</summary>
+    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped
+    /// dialects.</summary>
     public string FakeBenchFile(string fake)
     {
         string shipped = File.ReadAllText(Repository("sequences", "benches", "fake.yaml"));
@@ -86,7 +87,8 @@ internal sealed class Workplace : IDisposable
     public T Ask<T>(string sql, string? file = null)
     {
         List<object[]> rows = Rows(sql, file);
-        return (T)Convert.ChangeType(rows.Single().Single(), typeof(T), System.Globalization.CultureInfo.InvariantCulture);
+        return (T)Convert.ChangeType(
+            rows.Single().Single(), typeof(T), System.Globalization.CultureInfo.InvariantCulture);
     }
 
     public List<object[]> Rows(string sql, string? file = null)
@@ -123,7 +125,8 @@ internal sealed class Workplace : IDisposable
 
     private static string Built(string project, string program)
     {
-        string configuration = AppContext.BaseDirectory.Contains("release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
+        string configuration = AppContext.BaseDirectory.Contains(
+            "release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
         string name = OperatingSystem.IsWindows() ? program + ".exe" : program;
         return Repository("artifacts", "bin", project, configuration, name);
     }
@@ -136,6 +139,7 @@ internal sealed class Workplace : IDisposable
             folder = folder.Parent;
         }
 
-        return folder?.FullName ?? throw new InvalidOperationException("BenchRunner.sln is in no folder above the tests.");
+        return folder?.FullName ?? throw new InvalidOperationException(
+            "BenchRunner.sln is in no folder above the tests.");
     }
 }

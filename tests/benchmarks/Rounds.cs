@@ -2,13 +2,15 @@ using System.Diagnostics;
 
 namespace BenchRunner.Benchmarks;
 
-/// <summary>Times works in interleaved rounds, by the processor time of this process: a neighbour's work is not ours.</summary>
+/// <summary>Times works in interleaved rounds, by the processor time of this process: a neighbour's work is not
+/// ours.</summary>
 internal static class Rounds
 {
     private const int Count = 7;
     private const double RoundSeconds = 0.2;
 
-    /// <summary>Median processor seconds a call of each work, and the relative half distance of its quartiles.</summary>
+    /// <summary>Median processor seconds a call of each work, and the relative half distance of its
+    /// quartiles.</summary>
     public static (double Median, double Spread)[] Time(params Action[] works)
     {
         int[] calls = [.. works.Select(Calls)];

@@ -25,7 +25,8 @@ internal static class SignalsBenchmarks
             "signals", "signals/capture-10k", "s", times[0].Median, times[0].Spread, null, null, 0.167, "peer", "lower",
             "the peer (python3-scipy: the same definitions) is not written yet");
         yield return new Row(
-            "signals", "signals/growth", "1", times[2].Median / times[1].Median, times[1].Spread + times[2].Spread, null, null, 11,
+            "signals", "signals/growth", "1", times[2].Median / times[1].Median, times[1].Spread + times[2].Spread,
+            null, null, 11,
             "ours", "lower");
     }
 
@@ -33,7 +34,8 @@ internal static class SignalsBenchmarks
     {
         double interval = Duration / points;
         TrainTrajectory train = HalfBridge.Simulate(
-            DevicePopulation.Draw("W1200-0001", seed).On(new BenchParts()), new PulseTrain(8.08e-6, 6e-6, 3e-6, 18, -4, 600), -1e-6,
+            DevicePopulation.Draw(
+                "W1200-0001", seed).On(new BenchParts()), new PulseTrain(8.08e-6, 6e-6, 3e-6, 18, -4, 600), -1e-6,
             interval, points);
         return new Waveform(-1e-6, interval, new Dictionary<Channel, double[]>
         {

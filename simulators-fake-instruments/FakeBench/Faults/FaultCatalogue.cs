@@ -36,7 +36,8 @@ public static class FaultCatalogue
         new(BusStaysUp, Moment.Start, "the bleeder relay says that it is engaged but connects nothing"),
         new(StaleRecord, Fire(3), "the scope keeps the record and the count of the train before"),
         new(TriggerMissed, Fire(3), "the scope does not see its trigger in one train and waits on"),
-        new(ClippedRange, Fire(3), "the scope's amplifiers are at twice their gain in one train: codes stick at the ends"),
+        new(ClippedRange, Fire(3), "the scope's amplifiers are at twice their gain in one train: codes stick at "
+            + "the ends"),
         new(LinkDrops, Block(9), "the scope's connection is reset in the middle of a block"),
         new(LateReply, Fire(3), "the scope's next reply comes 4 s late"),
         new(SilentSupply, Volts(100), "the supply answers nothing any more, though it obeys"),

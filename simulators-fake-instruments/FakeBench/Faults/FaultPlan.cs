@@ -1,7 +1,8 @@
 namespace FakeBench.Faults;
 
 /// <summary>Which faults were asked for, and which of them have begun.</summary>
-/// <remarks>Under the bench's lock. A fault that lasts is asked by <see cref="Has"/>; one that happens once by <see cref="Take"/>.</remarks>
+/// <remarks>Under the bench's lock. A fault that lasts is asked by <see cref="Has"/>; one that happens once by
+/// <see cref="Take"/>.</remarks>
 public sealed class FaultPlan(IEnumerable<Fault> faults)
 {
     private readonly List<Fault> _waiting = [.. faults];

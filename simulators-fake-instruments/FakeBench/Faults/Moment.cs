@@ -17,7 +17,8 @@ public sealed record Moment(MomentKind Kind, double Value)
         ArgumentNullException.ThrowIfNull(text);
         string[] parts = text.Split(':');
         if (parts.Length != 2
-            || !double.TryParse(parts[1], NumberStyles.AllowDecimalPoint, CultureInfo.InvariantCulture, out double value))
+            || !double.TryParse(
+                parts[1], NumberStyles.AllowDecimalPoint, CultureInfo.InvariantCulture, out double value))
         {
             return null;
         }
@@ -31,7 +32,8 @@ public sealed record Moment(MomentKind Kind, double Value)
             _ => null,
         };
         bool counts = kind is MomentKind.Fire or MomentKind.Block;
-        return kind is null || (counts && (value < 1 || value != Math.Floor(value))) ? null : new Moment(kind.Value, value);
+        bool isWrong = kind is null || (counts && (value < 1 || value != Math.Floor(value)));
+        return isWrong ? null : new Moment(kind!.Value, value);
     }
 
     /// <inheritdoc/>

@@ -6,8 +6,9 @@ namespace FakeBench.Fixtures;
 
 /// <summary>What the instruments share: the bank, the device in its socket, the enclosure, the safety chain.</summary>
 /// <remarks>
-/// Nothing runs by itself: whoever looks first brings the bench up to the clock (<see cref="Advance"/>), in which everything
-/// that was due (watchdog, protection, faults) happens in its order. All members want <see cref="Gate"/> held.
+/// Nothing runs by itself: whoever looks first brings the bench up to the clock (<see cref="Advance"/>), in which
+/// everything that was due (watchdog, protection, faults) happens in its order. All members want <see cref="Gate"/>
+/// held.
 /// </remarks>
 public sealed class Bench
 {
@@ -124,7 +125,8 @@ public sealed class Bench
     /// <summary>Something has been counted: faults of that moment begin.</summary>
     public void Reached(MomentKind kind, double count) => Begun(Faults.Reach(kind, count));
 
-    /// <summary>The operator's hands: <c>open</c>, <c>insert SERIAL</c>, <c>close</c>, <c>stop</c>, <c>release</c>.</summary>
+    /// <summary>The operator's hands: <c>open</c>, <c>insert SERIAL</c>, <c>close</c>, <c>stop</c>,
+    /// <c>release</c>.</summary>
     /// <returns>Why it could not be done; null: done.</returns>
     public string? Do(string hand)
     {

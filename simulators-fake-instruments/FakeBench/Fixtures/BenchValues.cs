@@ -2,7 +2,8 @@ using FakeBench.Physics;
 
 namespace FakeBench.Fixtures;
 
-/// <summary>Component values of the bench at a pace: what charges and discharges is faster, what switches is not.</summary>
+/// <summary>Component values of the bench at a pace: what charges and discharges is faster, what switches is
+/// not.</summary>
 /// <param name="Pace">How much faster than the lab's bench, 1 to 5.</param>
 public sealed record BenchValues(double Pace)
 {

@@ -2,10 +2,10 @@ namespace FakeBench.Fixtures;
 
 /// <summary>The voltage of the capacitor bank over time, in closed form piece by piece.</summary>
 /// <remarks>
-/// C dV/dt = i − G V, where the supply gives i = min(limit, (E − V)/R), not below 0, and its inner voltage E slews linearly
-/// to the set-point. Each of the three cases (no current, limit, linear) is solved exactly; a piece ends where the case
-/// changes. A voltage within 1 mV of its end value is set to it, so that a settled bus has the same bits whenever it is
-/// looked at.
+/// C dV/dt = i − G V, where the supply gives i = min(limit, (E − V)/R), not below 0, and its inner voltage E slews
+/// linearly to the set-point. Each of the three cases (no current, limit, linear) is solved exactly; a piece ends where
+/// the case changes. A voltage within 1 mV of its end value is set to it, so that a settled bus has the same bits
+/// whenever it is looked at.
 /// </remarks>
 public sealed class Bus
 {

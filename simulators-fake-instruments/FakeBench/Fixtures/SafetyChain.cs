@@ -1,6 +1,7 @@
 namespace FakeBench.Fixtures;
 
-/// <summary>The hardware that protects people: loop, emergency stop, watchdog; when it opens, the bank is bled.</summary>
+/// <summary>The hardware that protects people: loop, emergency stop, watchdog; when it opens, the bank is
+/// bled.</summary>
 public sealed class SafetyChain
 {
     private double? _watchdog;

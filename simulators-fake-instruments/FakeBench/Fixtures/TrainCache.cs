@@ -3,7 +3,8 @@ using FakeBench.Physics;
 namespace FakeBench.Fixtures;
 
 /// <summary>Noiseless trains, computed once: the same device at the same operating point gives the same one.</summary>
-/// <remarks>A train can be asked for ahead of time, while pulser and scope are armed; it is then there when it is fired.</remarks>
+/// <remarks>A train can be asked for ahead of time, while pulser and scope are armed; it is then there when it is
+/// fired.</remarks>
 public sealed class TrainCache
 {
     private const int Places = 8;

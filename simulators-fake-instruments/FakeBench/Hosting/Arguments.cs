@@ -10,7 +10,8 @@ public static class Arguments
     private const int LongestSerial = 64;
 
     /// <summary>Reads them.</summary>
-    /// <exception cref="FormatException">An argument is wrong; the message says which and what was expected.</exception>
+    /// <exception cref="FormatException">An argument is wrong; the message says which and what was
+    /// expected.</exception>
     public static ServeOptions Parse(IReadOnlyList<string> arguments)
     {
         ArgumentNullException.ThrowIfNull(arguments);
@@ -46,7 +47,11 @@ public static class Arguments
         "--device" => options with { Device = Serial(value) },
         "--seed" => options with { Seed = (int)Number(name, value, int.MinValue, int.MaxValue) },
         "--pace" => options with { Pace = Number(name, value, 1, 5) },
-        "--bits" => options with { Bits = value is "8" or "12" ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12") },
+        "--bits" => options with
+        {
+            Bits = value is "8" or "12"
+            ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12")
+        },
         "--channels" => options with { Channels = Channels(value) },
         "--interlock" => options with { SerialInterlock = Serial(name, value) },
         "--write-bench" => options with { WriteBench = value },
@@ -57,10 +62,12 @@ public static class Arguments
         double.TryParse(value, NumberStyles.Float, CultureInfo.InvariantCulture, out double number)
             && number >= lowest && number <= highest
             ? number
-            : throw Wrong(name, value, string.Create(CultureInfo.InvariantCulture, $"a number from {lowest} to {highest}"));
+            : throw Wrong(
+                name, value, string.Create(CultureInfo.InvariantCulture, $"a number from {lowest} to {highest}"));
 
     private static string Serial(string value) =>
-        value.Length is > 0 and <= LongestSerial && value.All(c => char.IsAsciiLetterOrDigit(c) || c is '.' or '_' or '-')
+        value.Length is > 0 and <= LongestSerial && value.All(
+            c => char.IsAsciiLetterOrDigit(c) || c is '.' or '_' or '-')
             ? value
             : throw Wrong("--device", value, "1 to 64 letters, digits, dots, dashes, underscores");
 

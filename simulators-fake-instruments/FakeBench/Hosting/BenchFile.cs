@@ -30,14 +30,19 @@ public static class BenchFile
 
         double loop = LoopInductance(parts) * 1e9;
         Line($"exchange: none");
-        Line($"load: {{ inductance: {parts.LoadInductance * 1e6:0.###} uH, resistance: {parts.LoadResistance * 1e3:0.###} mOhm, to: positive }}");
-        Line($"bus: {{ capacitance: {parts.BankCapacitance * 1e6:0.###} uF, bleeder: {values.Bleeder / 1e3:0.###} kOhm, empty-socket: 0.1 mA }}");
+        (double load, double resistance) = (parts.LoadInductance * 1e6, parts.LoadResistance * 1e3);
+        Line($"load: {{ inductance: {load:0.###} uH, resistance: {resistance:0.###} mOhm, to: positive }}");
+        (double bank, double bleeder) = (parts.BankCapacitance * 1e6, values.Bleeder / 1e3);
+        Line($"bus: {{ capacitance: {bank:0.###} uF, bleeder: {bleeder:0.###} kOhm, empty-socket: 0.1 mA }}");
         Line($"supply: {{ charging-current: {values.SupplyLimit:0.###} A }}");
-        Line($"scope: {{ bits: {options.Bits}, fastest-interval: 1 ns, samples-at-most: {Instruments.Scope.MostPoints} }}");
+        int points = Instruments.Scope.MostPoints;
+        Line($"scope: {{ bits: {options.Bits}, fastest-interval: 1 ns, samples-at-most: {points} }}");
         Line($"loop: {{ inductance: {loop:0.#} nH }}");
-        Line($"gate-resistors: {{ on: {parts.GateOnResistance:0.###} Ohm, off: {parts.GateOffResistance:0.###} Ohm }}");
+        (double on, double off) = (parts.GateOnResistance, parts.GateOffResistance);
+        Line($"gate-resistors: {{ on: {on:0.###} Ohm, off: {off:0.###} Ohm }}");
         Line($"high-side: {{ gate-threshold: 0.5 V }}");
-        Line($"shunt: {{ resistance: {parts.ShuntResistance * 1e3:0.###} mOhm, inductance: {parts.ShuntSenseInductance * 1e12:0.###} pH }}");
+        (double shunt, double sense) = (parts.ShuntResistance * 1e3, parts.ShuntSenseInductance * 1e12);
+        Line($"shunt: {{ resistance: {shunt:0.###} mOhm, inductance: {sense:0.###} pH }}");
         Line($"channels:");
         for (int i = 0; i < options.Channels.Count; i++)
         {
@@ -57,7 +62,8 @@ public static class BenchFile
         return parts.BankInductance + high.DrainInductance + low.DrainInductance + low.SourceInductance;
     }
 
-    private static string Written(string link) => link.Split(' ') is ["tcp", { } host, { } port] ? $"tcp {host}:{port}" : link;
+    private static string Written(string link) =>
+        link.Split(' ') is ["tcp", { } host, { } port] ? $"tcp {host}:{port}" : link;
 
     private static string Extra(ServeOptions options, string role, string link)
     {

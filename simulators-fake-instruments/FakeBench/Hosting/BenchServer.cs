@@ -4,7 +4,8 @@ using FakeBench.Instruments;
 
 namespace FakeBench.Hosting;
 
-/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device where there are any.</summary>
+/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device
+/// where there are any.</summary>
 public sealed class BenchServer : IAsyncDisposable
 {
     private const int MostClients = 4;

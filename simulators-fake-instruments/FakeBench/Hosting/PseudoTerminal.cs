@@ -66,7 +66,8 @@ public sealed partial class PseudoTerminal : IDisposable
 
     /// <summary>Writes all bytes, unless nobody takes them.</summary>
     /// <param name="bytes">The bytes.</param>
-    /// <param name="milliseconds">How long to wait for room; what does not go out by then is lost, as on a real line.</param>
+    /// <param name="milliseconds">How long to wait for room; what does not go out by then is lost, as on a real
+    /// line.</param>
     /// <exception cref="IOException">The terminal is broken.</exception>
     public void Write(byte[] bytes, int milliseconds)
     {

@@ -6,7 +6,8 @@ using FakeBench.Scpi;
 
 namespace FakeBench.Hosting;
 
-/// <summary>Serves one instrument over TCP on the loopback: one write a reply, no delay, a bounded number of clients.</summary>
+/// <summary>Serves one instrument over TCP on the loopback: one write a reply, no delay, a bounded number of
+/// clients.</summary>
 public sealed class TcpHost : IHost
 {
     private readonly Instrument _instrument;

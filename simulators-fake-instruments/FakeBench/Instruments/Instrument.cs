@@ -3,7 +3,8 @@ using FakeBench.Scpi;
 
 namespace FakeBench.Instruments;
 
-/// <summary>A front panel: a state machine that obeys program messages. Threads and sockets are a host around it.</summary>
+/// <summary>A front panel: a state machine that obeys program messages. Threads and sockets are a host around
+/// it.</summary>
 public abstract class Instrument
 {
     /// <summary>Makes an instrument.</summary>
@@ -27,7 +28,8 @@ public abstract class Instrument
     protected Interpreter Scpi { get; }
 
     /// <summary>Obeys one message.</summary>
-    /// <param name="message">The message without its terminator, a character a byte; null: one that was too long.</param>
+    /// <param name="message">The message without its terminator, a character a byte; null: one that was too
+    /// long.</param>
     public Answer Obey(string? message)
     {
         lock (Bench.Gate)

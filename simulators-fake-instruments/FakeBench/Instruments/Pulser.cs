@@ -6,7 +6,8 @@ using FakeBench.Scpi;
 namespace FakeBench.Instruments;
 
 /// <summary>The gate pulser: a train of two pulses, armed, then fired once.</summary>
-/// <remarks>With its output off both gates are held at their off level. An armed pulser whose settings change is disarmed.</remarks>
+/// <remarks>With its output off both gates are held at their off level. An armed pulser whose settings change is
+/// disarmed.</remarks>
 public sealed class Pulser : Instrument
 {
     private const int WaitsForTrigger = 1 << 5;

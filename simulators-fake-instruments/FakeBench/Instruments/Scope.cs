@@ -7,7 +7,8 @@ using FakeBench.Scpi;
 
 namespace FakeBench.Instruments;
 
-/// <summary>The digitiser: as many inputs as the bench has channels; range and offset in the channel's own unit.</summary>
+/// <summary>The digitiser: as many inputs as the bench has channels; range and offset in the channel's own
+/// unit.</summary>
 public sealed class Scope : Instrument
 {
     /// <summary>Largest record, samples an input.</summary>

@@ -45,7 +45,8 @@ public sealed record BenchParts
     /// <summary>Inductance that the shunt adds to the loop, H.</summary>
     public double ShuntInductance { get; init; } = 0.2e-9;
 
-    /// <summary>Inductance that its sense leads see, H: a coaxial shunt's is far below what it adds to the loop.</summary>
+    /// <summary>Inductance that its sense leads see, H: a coaxial shunt's is far below what it adds to the
+    /// loop.</summary>
     public double ShuntSenseInductance { get; init; } = 5e-12;
 
     /// <summary>Gate resistor of the low place on the way up, Ohm.</summary>

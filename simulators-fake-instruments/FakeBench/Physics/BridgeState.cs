@@ -61,7 +61,8 @@ internal static class BridgeState
         return pattern;
     }
 
-    /// <summary>Size that counts as one in each state: that of the bus, 10 V of gate, 25 A, 1 A of gate current.</summary>
+    /// <summary>Size that counts as one in each state: that of the bus, 10 V of gate, 25 A, 1 A of gate
+    /// current.</summary>
     public static double[] Scales(BenchParts bench, double voltage)
     {
         const double current = 25, gate = 10, gateCurrent = 1;

@@ -51,7 +51,8 @@ public sealed record Call(IReadOnlyList<int> Suffixes, IReadOnlyList<ProgramData
     }
 
     /// <summary>A word with a numeric suffix, e.g. <c>INTernal3</c>; none written means 1.</summary>
-    /// <exception cref="ScpiException">−224 for another word or a suffix beyond the last, −104 for another type.</exception>
+    /// <exception cref="ScpiException">−224 for another word or a suffix beyond the last, −104 for another
+    /// type.</exception>
     public int Numbered(string keyword, int last)
     {
         ProgramData data = Data[0];

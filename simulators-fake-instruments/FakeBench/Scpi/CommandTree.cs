@@ -15,7 +15,8 @@ public sealed class CommandTree
     public void Ask(string pattern, Func<Call, string> answer) =>
         Add(pattern, 0, 0, (call, reply) => reply.Say(answer(call)));
 
-    /// <summary>Adds a numeric setting: the command, and the query, which may ask for MINimum, MAXimum or DEFault.</summary>
+    /// <summary>Adds a numeric setting: the command, and the query, which may ask for MINimum, MAXimum or
+    /// DEFault.</summary>
     public void Number(string pattern, NumericRange range, Action<Call, double> set, Func<Call, double> get)
     {
         Add(pattern, 1, 1, (call, _) => set(call, range.Read(call.Data[0])));
@@ -41,7 +42,8 @@ public sealed class CommandTree
         _commands.Add(new Command(new HeaderPattern(pattern), fewest, most, run));
 
     /// <summary>Finds the command of a header and checks the number of its parameters.</summary>
-    /// <exception cref="ScpiException">−113 or −114 for the header, −108 or −109 for the number of parameters.</exception>
+    /// <exception cref="ScpiException">−113 or −114 for the header, −108 or −109 for the number of
+    /// parameters.</exception>
     public (Command Command, Call Call) Find(ProgramUnit unit)
     {
         ArgumentNullException.ThrowIfNull(unit);

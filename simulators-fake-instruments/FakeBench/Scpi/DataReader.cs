@@ -96,7 +96,8 @@ internal sealed class DataReader(string message)
         int digits = form is >= '1' and <= '9' ? form - '0' : 0;
         int start = at + 2 + digits;
         if (digits == 0 || start > message.Length
-            || !int.TryParse(message.AsSpan(at + 2, digits), NumberStyles.None, CultureInfo.InvariantCulture, out int count)
+            || !int.TryParse(
+                message.AsSpan(at + 2, digits), NumberStyles.None, CultureInfo.InvariantCulture, out int count)
             || count > message.Length - start)
         {
             throw new ScpiException(-161);
@@ -166,7 +167,8 @@ internal sealed class DataReader(string message)
         }
 
         double value = double.Parse(
-            exponent.Length > 0 ? $"{mantissa}E{exponent}" : mantissa, NumberStyles.Float, CultureInfo.InvariantCulture);
+            exponent.Length > 0 ? $"{mantissa}E{exponent}" : mantissa, NumberStyles.Float,
+            CultureInfo.InvariantCulture);
         return new ProgramData(DataKind.Real, message[start..at], value, ReadSuffix(ref at));
     }
 

@@ -2,7 +2,8 @@ using System.Globalization;
 
 namespace FakeBench.Scpi;
 
-/// <summary>A header as a manual writes it: <c>[SOURce:]VOLTage[:LEVel]</c>, <c>OUTPut&lt;1|2&gt;[:STATe]?</c>, <c>*IDN?</c>.</summary>
+/// <summary>A header as a manual writes it: <c>[SOURce:]VOLTage[:LEVel]</c>, <c>OUTPut&lt;1|2&gt;[:STATe]?</c>,
+/// <c>*IDN?</c>.</summary>
 /// <remarks>Source: SCPI-1999 volume 1, 5.1 and 6.2.</remarks>
 public sealed class HeaderPattern
 {
@@ -41,7 +42,8 @@ public sealed class HeaderPattern
 
     /// <summary>Compares a whole header, from the root, e.g. <c>:SYST:ERR?</c>.</summary>
     /// <param name="header">The header; white space is no part of one.</param>
-    /// <param name="suffixes">Suffixes of the nodes that have any to choose from, in order; 1 where none was written.</param>
+    /// <param name="suffixes">Suffixes of the nodes that have any to choose from, in order; 1 where none was
+    /// written.</param>
     public HeaderMatch Match(string header, out IReadOnlyList<int> suffixes)
     {
         suffixes = [];

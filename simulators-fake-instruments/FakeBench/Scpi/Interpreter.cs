@@ -2,9 +2,10 @@ namespace FakeBench.Scpi;
 
 /// <summary>Obeys program messages: the commands of one instrument beside those that every instrument has.</summary>
 /// <remarks>
-/// Source: IEEE 488.2, 10 (common commands); SCPI-1999 volume 2, 20 and 21 (STATus, SYSTem). Every command is sequential:
-/// nothing is pending when the next one starts, so *OPC and *WAI have nothing to wait for; what lasts longer (slewing,
-/// an acquisition) shows in the operation register. After a faulty unit the rest of the message is obeyed.
+/// Source: IEEE 488.2, 10 (common commands); SCPI-1999 volume 2, 20 and 21 (STATus, SYSTem). Every command is
+/// sequential: nothing is pending when the next one starts, so *OPC and *WAI have nothing to wait for; what lasts
+/// longer (slewing, an acquisition) shows in the operation register. After a faulty unit the rest of the message is
+/// obeyed.
 /// </remarks>
 public sealed class Interpreter
 {
@@ -72,7 +73,8 @@ public sealed class Interpreter
         Commands.Ask("*IDN?", _ => identity());
         Commands.Event("*RST", _ => reset());
         Commands.Event("*CLS", _ => Status.Clear());
-        Commands.WholeNumber("*ESE", NumericRange.Mask(255), mask => Status.EventEnable = mask, () => Status.EventEnable);
+        Commands.WholeNumber(
+            "*ESE", NumericRange.Mask(255), mask => Status.EventEnable = mask, () => Status.EventEnable);
         Commands.Ask("*ESR?", _ => Numbers.Nr1(Status.ReadEvents()));
         Commands.WholeNumber("*SRE", NumericRange.Mask(255), Status.SetServiceEnable, () => Status.ServiceEnable);
         Commands.Add("*STB?", 0, 0, (_, reply) => reply.Say(Numbers.Nr1(Status.StatusByte(reply.HasContent))));

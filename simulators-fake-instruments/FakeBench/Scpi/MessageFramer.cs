@@ -4,8 +4,8 @@ namespace FakeBench.Scpi;
 
 /// <summary>Cuts a stream of bytes into program messages: at each NL that stands in no block.</summary>
 /// <remarks>
-/// Pure: bytes in, messages out. A message longer than the bound is dropped up to its NL and reported. An NL ends a message
-/// even inside a string: otherwise one missing quote would swallow every message after it.
+/// Pure: bytes in, messages out. A message longer than the bound is dropped up to its NL and reported. An NL ends a
+/// message even inside a string: otherwise one missing quote would swallow every message after it.
 /// </remarks>
 public sealed class MessageFramer
 {

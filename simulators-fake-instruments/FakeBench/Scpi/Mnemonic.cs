@@ -5,7 +5,8 @@ namespace FakeBench.Scpi;
 public static class Mnemonic
 {
     /// <summary>The short form that the rule gives a word: 4 letters, 3 where the fourth is a vowel.</summary>
-    /// <example><c>VOLTAGE</c>: <c>VOLT</c>; <c>TIMER</c>: <c>TIM</c>; <c>TIME</c> has four letters and stays.</example>
+    /// <example><c>VOLTAGE</c>: <c>VOLT</c>; <c>TIMER</c>: <c>TIM</c>; <c>TIME</c> has four letters and
+    /// stays.</example>
     public static string ShortForm(string word) =>
         word.Length <= 4 ? word : "AEIOU".Contains(char.ToUpperInvariant(word[3])) ? word[..3] : word[..4];
 

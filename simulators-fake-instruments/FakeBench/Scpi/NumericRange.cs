@@ -24,7 +24,8 @@ public sealed record NumericRange(double Minimum, double Maximum, double Default
     public int ReadInteger(ProgramData data)
     {
         double value = data.Kind == DataKind.Word ? Special(data.Text) : data.Number(Unit);
-        return (int)Read(new ProgramData(DataKind.NonDecimal, data.Text, Math.Round(value, MidpointRounding.AwayFromZero)));
+        return (int)Read(
+            new ProgramData(DataKind.NonDecimal, data.Text, Math.Round(value, MidpointRounding.AwayFromZero)));
     }
 
     private double Special(string word) => word switch

@@ -2,7 +2,8 @@ namespace FakeBench.Scpi;
 
 /// <summary>One element of program data.</summary>
 /// <param name="Kind">Its type.</param>
-/// <param name="Text">Word, string without quotes, expression, block bytes as characters, or the number as written.</param>
+/// <param name="Text">Word, string without quotes, expression, block bytes as characters, or the number as
+/// written.</param>
 /// <param name="Value">Value of a number, before its suffix counts.</param>
 /// <param name="Suffix">Suffix of a decimal number, upper case; empty: none.</param>
 public sealed record ProgramData(DataKind Kind, string Text, double Value = 0, string Suffix = "")

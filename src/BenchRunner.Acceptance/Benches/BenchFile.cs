@@ -62,7 +62,8 @@ public static class BenchFile
         [.. block.Items("faults").Select(item => (string)item.Content)]);
 
     private static InstrumentSetup Role(Fields block) => new(
-        block.Text("link")!, block.Text("dialect")!, block.Whole("connections") ?? 1, block.Text("at"), block.Text("identity"), block.Where);
+        block.Text("link")!, block.Text("dialect")!, block.Whole("connections") ?? 1, block.Text("at"),
+        block.Text("identity"), block.Where);
 
     private static ChannelSetup Channel(Channel channel, Fields block)
     {

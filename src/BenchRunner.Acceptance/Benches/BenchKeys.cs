@@ -126,7 +126,8 @@ internal static class BenchKeys
                 DialectReader.NameWanted)),
             Optional("connections", new WholeShape("Clients that it serves at once; 1 where not stated.", 1, 16, 2)),
             Optional("identity", new ExpressionShape(
-                "Regular expression that the whole answer to *IDN? must match: this very instrument.", "[^,]+,PS-[0-9]+,4711,.*")),
+                "Regular expression that the whole answer to *IDN? must match: this very "
+                    + "instrument.", "[^,]+,PS-[0-9]+,4711,.*")),
         ];
         Key place = Needed("at", new WordShape(
             "Where it measures; a run wants it at the bank.", ["bank", "supply", "device"]));

@@ -7,8 +7,8 @@ namespace BenchRunner.Acceptance.Validity;
 
 /// <summary>The last place where the envelope is held: what a train really put on the device.</summary>
 /// <remarks>
-/// Not a criterion of validity: it selects no capture, it ends the run. A part that is open or a loop that is longer than
-/// stated drives the device into avalanche at every train, and a scope at its rail says at least so much.
+/// Not a criterion of validity: it selects no capture, it ends the run. A part that is open or a loop that is longer
+/// than stated drives the device into avalanche at every train, and a scope at its rail says at least so much.
 /// </remarks>
 public static class MeasuredEnvelope
 {
@@ -33,7 +33,8 @@ public static class MeasuredEnvelope
             if (peak > rating)
             {
                 string unit = trace.Channel.Unit();
-                return $"{trace.Channel.Name()} reached {SiText.Format(peak, unit)}, above the device's rated {name} of "
+                return $"{trace.Channel.Name()} reached {SiText.Format(peak, unit)}, above the device's rated "
+                    + $"{name} of "
                     + SiText.Format(rating, unit);
             }
         }
@@ -53,6 +54,7 @@ public static class MeasuredEnvelope
 
         double offset = setup?.Offset ?? 0;
         double gain = setup?.Gain ?? 1;
-        return Math.Max(Math.Abs((trace.Value(highest) - offset) / gain), Math.Abs((trace.Value(lowest) - offset) / gain));
+        return Math.Max(
+            Math.Abs((trace.Value(highest) - offset) / gain), Math.Abs((trace.Value(lowest) - offset) / gain));
     }
 }

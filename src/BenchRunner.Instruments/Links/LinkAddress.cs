@@ -34,7 +34,8 @@ public sealed record LinkAddress(LinkKind Kind, string Host, int Number)
         address = words switch
         {
             ["tcp", var host, var port] => Tcp(host, port),
-            ["tcp", var both] when both.LastIndexOf(':') is > 0 and var colon => Tcp(both[..colon], both[(colon + 1)..]),
+            ["tcp", var both] when both.LastIndexOf(':') is > 0 and var colon =>
+                Tcp(both[..colon], both[(colon + 1)..]),
             ["serial", var path] => new LinkAddress(LinkKind.Serial, path, DefaultBaud),
             ["serial", var path, var baud] when Whole(baud, 10_000_000) is { } speed and > 0 =>
                 new LinkAddress(LinkKind.Serial, path, speed),
@@ -58,5 +59,6 @@ public sealed record LinkAddress(LinkKind Kind, string Host, int Number)
             : null;
 
     private static int? Whole(string text, int most) =>
-        int.TryParse(text, NumberStyles.None, CultureInfo.InvariantCulture, out var number) && number <= most ? number : null;
+        int.TryParse(
+            text, NumberStyles.None, CultureInfo.InvariantCulture, out var number) && number <= most ? number : null;
 }

@@ -57,7 +57,8 @@ internal sealed class TcpLink : ILink
             client.Client.SetSocketOption(SocketOptionLevel.Socket, SocketOptionName.KeepAlive, true);
             client.Client.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveTime, KeepAliveAfter);
             client.Client.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveInterval, KeepAliveEvery);
-            client.Client.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveRetryCount, KeepAliveProbes);
+            client.Client.SetSocketOption(
+                SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveRetryCount, KeepAliveProbes);
             return new TcpLink(name, client);
         }
         catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
@@ -69,7 +70,8 @@ internal sealed class TcpLink : ILink
         catch (SocketException e)
         {
             client.Dispose();
-            throw new LinkException(name, $"cannot connect ({e.SocketErrorCode}); check that the instrument is on and its address right", e);
+            throw new LinkException(name, $"cannot connect ({e.SocketErrorCode}); check that the instrument is on and "
+                + $"its address right", e);
         }
         catch
         {

@@ -2,9 +2,10 @@ namespace BenchRunner.Instruments.Permits;
 
 /// <summary>Leave to energise the bench at one operating point; no energising operation compiles without it.</summary>
 /// <remarks>
-/// Granted by Safety alone, after interlock, envelope and bus were measured; a sealed class, since <c>default</c> forges a
-/// struct and <c>with</c> edits a record. It dies at its deadline unless Safety renews it, and revoking is for good.
-/// Thread-safe. Hardware stays the safety function. Not a plan: a plan says what is wanted, a permit what is allowed.
+/// Granted by Safety alone, after interlock, envelope and bus were measured; a sealed class, since <c>default</c>
+/// forges a struct and <c>with</c> edits a record. It dies at its deadline unless Safety renews it, and revoking is for
+/// good. Thread-safe. Hardware stays the safety function. Not a plan: a plan says what is wanted, a permit what is
+/// allowed.
 /// </remarks>
 public sealed class Permit
 {

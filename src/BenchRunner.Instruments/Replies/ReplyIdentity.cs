@@ -27,7 +27,8 @@ public static class ReplyIdentity
             throw new ReplyException(ReplyFault.NotAnIdentity, value);
         }
 
-        return new InstrumentIdentity(Printable.Text(text, Limit), fields[0], fields[1], Known(fields, 2), Known(fields, 3));
+        return new InstrumentIdentity(
+            Printable.Text(text, Limit), fields[0], fields[1], Known(fields, 2), Known(fields, 3));
     }
 
     private static string Known(string[] fields, int at) =>

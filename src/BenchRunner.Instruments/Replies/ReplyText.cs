@@ -22,7 +22,8 @@ internal static class ReplyText
     /// <param name="otherwise">The fault where no more telling one is found.</param>
     public static ReplyException Refusal(ReadOnlySpan<byte> value, ReplyFault otherwise)
     {
-        if (!Utf8.IsValid(value) || value.ContainsAnyInRange((byte)0, (byte)8) || value.ContainsAnyInRange((byte)14, (byte)31))
+        if (!Utf8.IsValid(value) || value.ContainsAnyInRange((byte)0, (byte)8)
+            || value.ContainsAnyInRange((byte)14, (byte)31))
         {
             return new ReplyException(ReplyFault.BadCharacter, value);
         }

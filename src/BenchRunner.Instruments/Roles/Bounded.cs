@@ -44,8 +44,10 @@ internal static class Bounded
         }
     }
 
-    private static PermitException Beyond(Permit permit, string what, double value, string side, double bound, string unit) =>
+    private static PermitException Beyond(
+        Permit permit, string what, double value, string side, double bound, string unit) =>
         new(string.Create(
             CultureInfo.InvariantCulture,
-            $"permit for {permit.Bounds.OperatingPoint}: {what} of {value} {unit} is {side} its bound of {bound} {unit}"));
+            $"permit for {permit.Bounds.OperatingPoint}: {what} of {value} {unit} is {side} its bound of "
+                + $"{bound} {unit}"));
 }

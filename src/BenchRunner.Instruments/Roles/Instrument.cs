@@ -36,14 +36,16 @@ internal sealed class Instrument : IDisposable
     /// <param name="connection">Where and how.</param>
     /// <param name="cancel">Ends the attempt.</param>
     public static async Task<Instrument> Connect(
-        string role, string[] operations, string characteristic, InstrumentConnection connection, CancellationToken cancel)
+        string role, string[] operations, string characteristic, InstrumentConnection connection,
+        CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(connection);
         var dialect = connection.Dialect;
         if (operations.Where(o => !dialect.Commands.ContainsKey(o)).ToArray() is { Length: > 0 } missing)
         {
             throw new InstrumentException(
-                role, $"dialect {dialect.Name} has no command for {string.Join(", ", missing)}; add it or name another dialect");
+                role, $"dialect {dialect.Name} has no command for {string.Join(", ", missing)}; add it or name another "
+                    + $"dialect");
         }
 
         var session = await ScpiSession.Open(
@@ -109,7 +111,8 @@ internal sealed class Instrument : IDisposable
 
     /// <summary>Reads a setting and holds it against what was set.</summary>
     public async Task<double> CheckReadBack(
-        string operation, string readBack, double value, double tolerance, CancellationToken cancel, int? channel = null)
+        string operation, string readBack, double value, double tolerance, CancellationToken cancel,
+        int? channel = null)
     {
         var found = await ReadNumber(readBack, cancel, channel);
         return Math.Abs(found - value) <= tolerance
@@ -147,9 +150,11 @@ internal sealed class Instrument : IDisposable
     private void CheckIdentity()
     {
         var text = Session.Identity.Text;
-        if (_dialect.Identity is { } pattern && !Regex.IsMatch(text, pattern, RegexOptions.NonBacktracking | RegexOptions.CultureInvariant))
+        if (_dialect.Identity is { } pattern
+            && !Regex.IsMatch(text, pattern, RegexOptions.NonBacktracking | RegexOptions.CultureInvariant))
         {
-            throw Refusal($"'{text}' is not the instrument that dialect {_dialect.Name} is for ({pattern}); check link and dialect");
+            throw Refusal($"'{text}' is not the instrument that dialect {_dialect.Name} is for ({pattern}); check link "
+                + $"and dialect");
         }
     }
 

@@ -40,7 +40,8 @@ internal sealed record ScopePreamble(
     }
 
     public RawTrace Trace(Channel channel, short[] codes) => new(
-        channel, codes, XOrigin - (XReference * XIncrement), XIncrement, YIncrement, YOrigin, YReference, LowRail, HighRail);
+        channel, codes, XOrigin - (XReference * XIncrement), XIncrement, YIncrement, YOrigin, YReference, LowRail,
+        HighRail);
 
     private static long Whole(double field, long most, ReadOnlySpan<byte> reply) =>
         Math.Floor(field) == field && Math.Abs(field) <= most

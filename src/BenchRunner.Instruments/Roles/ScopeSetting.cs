@@ -21,7 +21,8 @@ internal sealed record ScopeSetting(string Command, string? Query, ReplyParser<s
     public static ScopeSetting Words(string command, string? query) => new(
         command,
         query,
-        reply => string.Join(',', ReplyList.Elements(reply)) is var found && Same(Parameter(command), found) ? null : found);
+        reply => string.Join(',', ReplyList.Elements(reply)) is var found && Same(Parameter(command), found)
+            ? null : found);
 
     /// <summary>What a command sets: everything after its header.</summary>
     public static string Parameter(string command) => command[(command.IndexOf(' ', StringComparison.Ordinal) + 1)..];

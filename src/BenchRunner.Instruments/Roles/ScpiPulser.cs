@@ -145,7 +145,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
         ArgumentOutOfRangeException.ThrowIfGreaterThanOrEqual(train.GateOff.Value, train.GateOn.Value, nameof(train));
     }
 
-    private async Task<Seconds> Width(Permit permit, string set, string read, Seconds width, CancellationToken cancel) =>
+    private async Task<Seconds> Width(
+        Permit permit, string set, string read, Seconds width, CancellationToken cancel) =>
         new(await _instrument.SetGuarded(permit, set, read, width.Value, WidthTolerance(width), cancel));
 
     private async Task<Seconds> CheckWidth(string set, string read, Seconds width, CancellationToken cancel) =>
@@ -193,7 +194,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
         catch (LinkException silent)
         {
             throw new LinkException(
-                _instrument.Session.Link, $"whether a train was fired is unknown: {lost.Message}; then {silent.Message}", lost);
+                _instrument.Session.Link, $"whether a train was fired is unknown: {lost.Message}; then "
+                    + $"{silent.Message}", lost);
         }
 
         if (fired != 1)

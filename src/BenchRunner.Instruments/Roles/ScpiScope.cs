@@ -18,7 +18,8 @@ public sealed class ScpiScope : IScope, IDisposable
 
     private static readonly string[] Operations =
     [
-        "set-range", "read-range", "set-offset", "read-offset", "set-interval", "read-interval", "set-points", "read-points",
+        "set-range", "read-range", "set-offset", "read-offset", "set-interval", "read-interval", "set-points",
+        "read-points",
         "set-pretrigger", "read-pretrigger", "set-trigger-source", "read-trigger-source", "set-trigger-level",
         "read-trigger-level", "set-trigger-slope", "set-format", "read-format", "set-byte-order", "read-byte-order",
         "arm", "abort", "read-condition", "read-count", "read-preamble", "read-trace",
@@ -171,7 +172,8 @@ public sealed class ScpiScope : IScope, IDisposable
             }
 
             _instrument.Report(
-                InstrumentEventKind.Discarded, $"trace of {channel.Channel}: {codes.Length} samples came where {settings.Points} are due");
+                InstrumentEventKind.Discarded, $"trace of {channel.Channel}: {codes.Length} samples came where "
+                    + $"{settings.Points} are due");
         }
         catch (LinkException e)
         {
@@ -222,7 +224,8 @@ public sealed class ScpiScope : IScope, IDisposable
         }
     }
 
-    private static string? Doubt(ScopeSettings settings, ScopeChannelSettings channel, ScopePreamble preamble, long count)
+    private static string? Doubt(
+        ScopeSettings settings, ScopeChannelSettings channel, ScopePreamble preamble, long count)
     {
         var interval = settings.Interval.Value;
         if (preamble.Count != count)

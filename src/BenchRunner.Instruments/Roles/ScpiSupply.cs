@@ -17,7 +17,8 @@ public sealed class ScpiSupply : ISupply, IDisposable
     private static readonly string[] Operations =
     [
         "set-voltage", "read-voltage", "set-current", "read-current", "set-protection", "read-protection",
-        "protection-tripped", "output-on", "output-off", "read-output", "measure-voltage", "measure-current", "read-condition",
+        "protection-tripped", "output-on", "output-off", "read-output", "measure-voltage", "measure-current",
+        "read-condition",
     ];
 
     private readonly Instrument _instrument;

@@ -29,7 +29,8 @@ public sealed class ScpiVoltmeter : IVoltmeter, IDisposable
             return output is null
                 ? new ScpiVoltmeter(instrument)
                 : throw instrument.Refusal(
-                    $"'{instrument.Session.Identity.Text}' has an output, so it is a source and no independent voltmeter; check the link");
+                    $"'{instrument.Session.Identity.Text}' has an output, so it is a source and no independent "
+                        + $"voltmeter; check the link");
         }
         catch
         {

@@ -261,13 +261,15 @@ public sealed class ScpiSession : IDisposable
         if (_connections > 1)
         {
             throw new LinkException(
-                Link, "was opened again since the instrument was identified: its state is unknown, energising is refused");
+                Link, "was opened again since the instrument was identified: its state is unknown, energising is "
+                    + "refused");
         }
     }
 
     private static string Complaint(string command, IReadOnlyList<ErrorEntry> errors)
     {
-        var lost = errors.Any(e => e.Number == ErrorEntry.QueueOverflow) ? "; entries were lost, so its settings are unknown" : "";
+        var lost = errors.Any(e => e.Number == ErrorEntry.QueueOverflow)
+            ? "; entries were lost, so its settings are unknown" : "";
         return $"refused '{command}': {string.Join(", ", errors)}{lost}";
     }
 

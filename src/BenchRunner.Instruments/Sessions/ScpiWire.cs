@@ -259,7 +259,8 @@ internal sealed class ScpiWire : IDisposable
             _doubt = null;
             if (dropped > 0 || why != OpeningTheLine)
             {
-                _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were dropped");
+                _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were "
+                    + $"dropped");
             }
         }
         catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
@@ -293,7 +294,8 @@ internal sealed class ScpiWire : IDisposable
 
     /// <summary>A reply, refused where it is the question itself.</summary>
     private ReadOnlySpan<byte> Reply(ReadOnlyMemory<byte> line) =>
-        line.Span.SequenceEqual(_sent.AsSpan(0, _sentLength - 1)) ? throw new ReplyException(ReplyFault.Echo, line.Span) : line.Span;
+        line.Span.SequenceEqual(_sent.AsSpan(0, _sentLength - 1))
+            ? throw new ReplyException(ReplyFault.Echo, line.Span) : line.Span;
 
     /// <summary>Whether a line is a number and a quoted text, as no answer of a measurement or setting is.</summary>
     private static bool IsErrorEntry(ReadOnlySpan<byte> line) => line.IndexOf(",\""u8) is > 0 and var comma

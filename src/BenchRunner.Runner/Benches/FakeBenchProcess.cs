@@ -5,7 +5,8 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Runner.Benches;
 
-/// <summary>The fake bench that <c>run</c> starts as a child: its instruments' links, and the hands that exchange devices.</summary>
+/// <summary>The fake bench that <c>run</c> starts as a child: its instruments' links, and the hands that exchange
+/// devices.</summary>
 /// <remarks>It ends when its standard input closes, so it cannot outlive the run, however the run ends.</remarks>
 public sealed class FakeBenchProcess : IHands, IAsyncDisposable
 {
@@ -26,7 +27,8 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
     /// <param name="device">Serial of the first device in the fixture.</param>
     /// <param name="time">The clock of the start's deadline.</param>
     /// <param name="cancel">Ends the waiting and the child.</param>
-    /// <exception cref="BenchException">The program is missing, or ended or kept silent before it was ready.</exception>
+    /// <exception cref="BenchException">The program is missing, or ended or kept silent before it was
+    /// ready.</exception>
     public static async Task<FakeBenchProcess> Start(
         Bench bench, string device, TimeProvider time, CancellationToken cancel)
     {

@@ -8,7 +8,8 @@ using BenchRunner.Safety;
 
 namespace BenchRunner.Runner.Benches;
 
-/// <summary>All instruments of a bench, connected and identified: those of the runner, and safety's own connections.</summary>
+/// <summary>All instruments of a bench, connected and identified: those of the runner, and safety's own
+/// connections.</summary>
 /// <remarks>
 /// Every connection that the safe state needs is opened before anything is energised, so that none has to be opened in
 /// need. An instrument that admits one client is shared; its session lets one exchange at a time through.
@@ -50,7 +51,8 @@ public sealed class OpenBench : IAsyncDisposable
     /// <param name="time">The clock of all deadlines.</param>
     /// <param name="cancel">Ends the attempt.</param>
     /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
-    /// <exception cref="BenchException">An instrument cannot be reached, or real and simulated ones are mixed.</exception>
+    /// <exception cref="BenchException">An instrument cannot be reached, or real and simulated ones are
+    /// mixed.</exception>
     public static async Task<OpenBench> Open(
         Bench bench,
         IReadOnlyDictionary<string, DialectFile> dialects,
@@ -108,8 +110,10 @@ public sealed class OpenBench : IAsyncDisposable
         bool OwnToo(string role) => bench.Roles[role].Connections > 1;
 
         // Safety first: whatever fails later, these are there.
-        ScpiInterlock interlock = await Reach("interlock", ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
-        ScpiVoltmeter watchMeter = await Reach("voltmeter", ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
+        ScpiInterlock interlock = await Reach(
+            "interlock", ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
+        ScpiVoltmeter watchMeter = await Reach(
+            "voltmeter", ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
         ScpiSupply safeSupply = await Reach("supply", ScpiSupply.Connect(at("supply", patient), cancel));
         ScpiPulser safePulser = await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel));
         Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
@@ -136,10 +140,12 @@ public sealed class OpenBench : IAsyncDisposable
         foreach ((string role, InstrumentIdentity identity) in Identities)
         {
             InstrumentSetup setup = bench.Roles[role];
-            if (setup.Identity is { } pattern && !Regex.IsMatch(identity.Text, $@"\A(?:{pattern})\z", RegexOptions.NonBacktracking))
+            if (setup.Identity is { } pattern
+                && !Regex.IsMatch(identity.Text, $@"\A(?:{pattern})\z", RegexOptions.NonBacktracking))
             {
                 throw new BenchException(
-                    $"{setup.Where}: the {role} says that it is '{identity.Text}', expected {pattern}; check which link belongs to "
+                    $"{setup.Where}: the {role} says that it is '{identity.Text}', expected {pattern}; check which "
+                        + $"link belongs to "
                         + "which role; nothing was energised");
             }
         }

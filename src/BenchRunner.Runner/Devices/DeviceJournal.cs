@@ -26,7 +26,10 @@ public sealed class DeviceJournal(IEventSink sinks) : IEventSink
         {
             sinks.Receive(happened with
             {
-                Source = "evidence", Severity = Severity.Error, Kind = "event-not-stored", Message = failure.Message,
+                Source = "evidence",
+                Severity = Severity.Error,
+                Kind = "event-not-stored",
+                Message = failure.Message,
             });
         }
 

@@ -77,13 +77,15 @@ public sealed class DeviceRun(
             {
                 events.Say(
                     Severity.Warning, "too-few-valid",
-                    $"{point.Point.Name}: {taken.Valid.Count} of {plan.Sequence.ValidCaptures} valid captures after {taken.Taken}");
+                    $"{point.Point.Name}: {taken.Valid.Count} of {plan.Sequence.ValidCaptures} valid captures after "
+                        + $"{taken.Taken}");
             }
 
             // Decided here only where it matters: the bus is charged meanwhile.
             if (MaySkipHigher(point) && Decider.SkipsHigher(plan.Sequence, plan.Bench, taken.ForDecision()))
             {
-                events.Say(Severity.Warning, "higher-skipped", $"{point.Point.Name}: a limit failed; the higher points are left out");
+                events.Say(Severity.Warning, "higher-skipped", $"{point.Point.Name}: a limit failed; the higher points "
+                    + $"are left out");
                 return;
             }
         }
@@ -155,8 +157,8 @@ public sealed class DeviceRun(
         }
 
         var report = new DeviceReport(
-            evidence.Run, device, decision, _taken.Sum(point => point.Taken), _taken.Sum(point => point.Valid.Count), ending,
-            safe.Voltage, safe.At);
+            evidence.Run, device, decision, _taken.Sum(point => point.Taken),
+            _taken.Sum(point => point.Valid.Count), ending, safe.Voltage, safe.At);
         sinks.DeviceEnded(report);
         return report;
     }

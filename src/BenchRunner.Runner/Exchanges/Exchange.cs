@@ -5,7 +5,8 @@ using BenchRunner.Runner.Benches;
 namespace BenchRunner.Runner.Exchanges;
 
 /// <summary>Exchanges the device on a bench whose hands this program moves (a fake bench that it started).</summary>
-/// <remarks>The loop must be seen open after the bus was proved down, and closed again; closing never energises by itself.</remarks>
+/// <remarks>The loop must be seen open after the bus was proved down, and closed again; closing never energises by
+/// itself.</remarks>
 public sealed class Exchange(IHands hands, IInterlock interlock, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan Within = TimeSpan.FromSeconds(5);
@@ -22,7 +23,8 @@ public sealed class Exchange(IHands hands, IInterlock interlock, EventSource eve
         await hands.Do($"insert {device}", cancel);
         await hands.Do("close", cancel);
         await See(closed: true, cancel);
-        events.Say(Severity.Information, "device-exchanged", $"enclosure seen open and closed again; {device} is in the fixture");
+        events.Say(Severity.Information, "device-exchanged", $"enclosure seen open and closed again; {device} is in "
+            + $"the fixture");
     }
 
     private async Task See(bool closed, CancellationToken cancel)
@@ -33,7 +35,8 @@ public sealed class Exchange(IHands hands, IInterlock interlock, EventSource eve
             if (time.GetElapsedTime(start) > Within)
             {
                 throw new BenchException(
-                    $"the interlock loop was not seen {(closed ? "closed" : "open")} within {Within.TotalSeconds:0} s of the exchange");
+                    $"the interlock loop was not seen {(closed ? "closed" : "open")} within {Within.TotalSeconds:0} s "
+                        + $"of the exchange");
             }
 
             await Task.Delay(ReadEvery, time, cancel);

@@ -8,19 +8,24 @@ using BenchRunner.Signals.Units;
 
 namespace BenchRunner.Runner.Points;
 
-/// <summary>Brings the bus to an operating point's voltage and holds the supply against the independent voltmeter.</summary>
+/// <summary>Brings the bus to an operating point's voltage and holds the supply against the independent
+/// voltmeter.</summary>
 public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, TimeProvider time)
 {
-    /// <summary>How far supply and voltmeter may differ from what was set, relative (a probe or meter is off).</summary>
+    /// <summary>How far supply and voltmeter may differ from what was set, relative (a probe or meter is
+    /// off).</summary>
     private const double Agreement = 0.03;
 
-    /// <summary>How much of the way from full charge the supply's protection stands above the set-point, relative.</summary>
+    /// <summary>How much of the way from full charge the supply's protection stands above the set-point,
+    /// relative.</summary>
     private const double ProtectionMargin = 0.1;
 
     private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(10);
 
-    /// <summary>Programs the supply, switches it on and waits until the voltmeter shows the bus at its voltage.</summary>
-    /// <exception cref="BusException">The bus did not get there, or stayed in current limit: see its message.</exception>
+    /// <summary>Programs the supply, switches it on and waits until the voltmeter shows the bus at its
+    /// voltage.</summary>
+    /// <exception cref="BusException">The bus did not get there, or stayed in current limit: see its
+    /// message.</exception>
     public async Task Up(Permit permit, PlannedPoint point, CancellationToken cancel)
     {
         double target = point.Point.BusVoltage;
@@ -69,11 +74,14 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
         string seen = $"the bus is at {volts:0.0} V after {limit.TotalSeconds:0.0} s where {target:0.#} V was set";
         if (supply.ProtectionTripped || !supply.OutputOn)
         {
-            return new BusException($"{seen}: the supply has switched its output off by itself (over-voltage protection)", false);
+            return new BusException(
+                $"{seen}: the supply has switched its output off by itself (over-voltage protection)", false);
         }
 
         return supply.InCurrentLimit && volts < 0.5 * target
-            ? new BusException($"{seen}, the supply in current limit with both gates off: a position is shorted or the bus leaks", true)
-            : new BusException($"{seen}, the supply reads {supply.Measured.Value:0.0} V: look at supply, leads and voltmeter", false);
+            ? new BusException($"{seen}, the supply in current limit with both gates off: a position is shorted or the "
+                + $"bus leaks", true)
+            : new BusException(
+                $"{seen}, the supply reads {supply.Measured.Value:0.0} V: look at supply, leads and voltmeter", false);
     }
 }

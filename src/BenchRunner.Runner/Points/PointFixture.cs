@@ -18,10 +18,11 @@ using BenchRunner.Signals.Units;
 
 namespace BenchRunner.Runner.Points;
 
-/// <summary>Fires at one operating point until the wanted number of captures is valid; the point's cases share what it takes.</summary>
+/// <summary>Fires at one operating point until the wanted number of captures is valid; the point's cases share what it
+/// takes.</summary>
 /// <remarks>
-/// The only loop of the road. Each capture is durable before anything is computed from it, and the next train is not fired
-/// before it has passed every criterion that stops.
+/// The only loop of the road. Each capture is durable before anything is computed from it, and the next train is not
+/// fired before it has passed every criterion that stops.
 /// </remarks>
 public sealed class PointFixture
 {
@@ -74,7 +75,8 @@ public sealed class PointFixture
         Permit permit = await _supervisor.Grant(Bounds(planned), cancel);
         _events.Say(
             Severity.Information, "point-started",
-            $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; charging the bus");
+            $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; charging "
+                + $"the bus");
         var state = new PointState(planned, taken);
 
         // Gates at their off level before there is any voltage for them to hold off.
@@ -108,7 +110,8 @@ public sealed class PointFixture
         {
             if (++state.LostInARow >= MostLostInARow)
             {
-                throw new InstrumentException("scope", $"{MostLostInARow} trains in a row left no record; check trigger and link");
+                throw new InstrumentException(
+                    "scope", $"{MostLostInARow} trains in a row left no record; check trigger and link");
             }
 
             return;
@@ -208,11 +211,13 @@ public sealed class PointFixture
         double longest = Math.Max(planned.FirstPulse * (1 + WidthCorrection.InAll), point.SecondPulse);
         return new PermitBounds(
             point.Name, new Volts(point.BusVoltage), new Amperes(_plan.Bench.ChargingCurrent),
-            new Seconds(Math.Min(longest, _plan.Bench.Envelope.Pulse)), new Volts(point.GateOn), new Volts(point.GateOff));
+            new Seconds(Math.Min(longest, _plan.Bench.Envelope.Pulse)), new Volts(point.GateOn),
+            new Volts(point.GateOff));
     }
 
     private static TrainSettings Train(TrainSet set) => new(
-        new Seconds(set.First), new Seconds(set.Gap), new Seconds(set.Second), new Volts(set.GateOn), new Volts(set.GateOff));
+        new Seconds(set.First), new Seconds(set.Gap), new Seconds(set.Second), new Volts(set.GateOn),
+        new Volts(set.GateOff));
 
     private static ScopeSettings Scope(PointState state) => new(
         new Seconds(state.Planned.SampleInterval),
@@ -220,5 +225,6 @@ public sealed class PointFixture
         new Seconds(state.Planned.Pretrigger),
         Channel.VgsLow,
         0.5 * (state.Set.GateOn + state.Set.GateOff),
-        [.. state.Ranges.Select(range => new ScopeChannelSettings(range.Channel, range.Input, range.Span, range.Offset))]);
+        [.. state.Ranges.Select(range =>
+            new ScopeChannelSettings(range.Channel, range.Input, range.Span, range.Offset))]);
 }

@@ -15,12 +15,14 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
     /// <summary>When the last train was fired, a time stamp of the clock; null before the first.</summary>
     public long? FiredAt { get; private set; }
 
-    /// <summary>Sets the scope; costs nothing where the settings stand, and after a link that was opened again all are sent.</summary>
+    /// <summary>Sets the scope; costs nothing where the settings stand, and after a link that was opened again all are
+    /// sent.</summary>
     /// <exception cref="InstrumentException">The scope cannot be set or reached.</exception>
     public Task Prepare(ScopeSettings settings, CancellationToken cancel) =>
         OnScope(() => bench.Scope.Configure(settings, cancel));
 
-    /// <summary>The scope's acquisition count before the first train of a point, so that an old record is known as one.</summary>
+    /// <summary>The scope's acquisition count before the first train of a point, so that an old record is known as
+    /// one.</summary>
     /// <exception cref="InstrumentException">The scope cannot be reached.</exception>
     public async Task<long> Count(CancellationToken cancel)
     {
@@ -32,7 +34,8 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
     /// <summary>Arms scope and pulser, fires, waits for the record and reads it.</summary>
     /// <returns>The record; null where the trigger was missed or the record was lost on its way.</returns>
     /// <exception cref="PermitException">The permit is not live: nothing was fired.</exception>
-    /// <exception cref="InstrumentException">An instrument did not do what it was told, or the scope cannot be reached.</exception>
+    /// <exception cref="InstrumentException">An instrument did not do what it was told, or the scope cannot be
+    /// reached.</exception>
     /// <exception cref="LinkException">The pulser's link failed: whether a train was fired is unknown.</exception>
     public async Task<ScopeRecord?> Fire(Permit permit, ScopeSettings settings, CancellationToken cancel)
     {
@@ -50,12 +53,14 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
 
             events.Say(
                 Severity.Warning, "trigger-missed",
-                $"the scope did not trigger within {RecordWithin.TotalSeconds:0} s; the acquisition was aborted, the train is lost");
+                $"the scope did not trigger within {RecordWithin.TotalSeconds:0} s; the acquisition was aborted, the "
+                    + $"train is lost");
         }
         catch (LinkException lost)
         {
             events.Say(
-                Severity.Warning, "record-lost", $"the scope's record was lost on its way ({lost.Message}); no part of it is kept");
+                Severity.Warning, "record-lost", $"the scope's record was lost on its way ({lost.Message}); no part of "
+                    + $"it is kept");
         }
 
         return null;

@@ -17,7 +17,8 @@ using BenchRunner.Safety.Supervision;
 
 namespace BenchRunner.Runner.Sessions;
 
-/// <summary>A session at one bench: lock and latch, evidence, instruments, confirmation, then device after device.</summary>
+/// <summary>A session at one bench: lock and latch, evidence, instruments, confirmation, then device after
+/// device.</summary>
 public sealed class RunSession
 {
     private readonly RunRequest _request;
@@ -74,7 +75,8 @@ public sealed class RunSession
         {
             _events.Say(
                 Severity.Warning, "run-closed",
-                $"run {closed.Run} of {closed.Device} had no end and was closed as stopped; {closed.Captures} captures are kept");
+                $"run {closed.Run} of {closed.Device} had no end and was closed as stopped; {closed.Captures} captures "
+                    + $"are kept");
         }
 
         if (await devices.Next(operatorStop) is not { } first)
@@ -154,7 +156,8 @@ public sealed class RunSession
             {
                 // Silence would be taken for a pass.
                 _events.Say(
-                    Severity.Warning, "not-evaluated", $"leakage, at most {SiText.Format(leakage, "A")} by the sequence, is not measured yet");
+                    Severity.Warning, "not-evaluated", $"leakage, at most {SiText.Format(leakage, "A")} by the "
+                        + $"sequence, is not measured yet");
             }
 
             return await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
@@ -178,12 +181,14 @@ public sealed class RunSession
             _latch.Set(trip.At, trip.Reason);
             _events.Say(
                 Severity.Alarm, "latched",
-                $"the bench is latched ({_latch.Path}); find the cause, then: benchrunner bench clear --bench {Bench.Source.Path}");
+                $"the bench is latched ({_latch.Path}); find the cause, then: benchrunner bench clear --bench "
+                    + $"{Bench.Source.Path}");
         }
         catch (Exception failure) when (failure is IOException or UnauthorizedAccessException)
         {
             // The watch must go on, and the bench be made safe, all the same.
-            _events.Say(Severity.Alarm, "latch-not-written", $"THE BENCH IS NOT LATCHED: {failure.Message}; let nobody use it");
+            _events.Say(Severity.Alarm, "latch-not-written", $"THE BENCH IS NOT LATCHED: {failure.Message}; let "
+                + $"nobody use it");
         }
     }
 
@@ -192,7 +197,8 @@ public sealed class RunSession
     {
         foreach (string device in devices)
         {
-            if (store.Refuses(Header(device, confirmedBy: null, IsNewEachTime)) is { Kind: not RunRefusalKind.MixedOrigin } refusal)
+            RunHeader header = Header(device, confirmedBy: null, IsNewEachTime);
+            if (store.Refuses(header) is { Kind: not RunRefusalKind.MixedOrigin } refusal)
             {
                 throw new RunRefusedException(refusal);
             }
@@ -214,7 +220,8 @@ public sealed class RunSession
         }
 
         return BenchLock.TryTake(Bench.Source.Path, _time.GetUtcNow(), out string? holder)
-            ?? throw new RefusedException(RefusalKind.Taken, $"bench {Bench.Name} is in use by {holder}; wait until that run has ended");
+            ?? throw new RefusedException(
+                RefusalKind.Taken, $"bench {Bench.Name} is in use by {holder}; wait until that run has ended");
     }
 
     private RunHeader Header(string device, string? confirmedBy, bool simulated) => new()

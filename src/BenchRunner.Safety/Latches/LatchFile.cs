@@ -4,8 +4,8 @@ namespace BenchRunner.Safety.Latches;
 
 /// <summary>A trip's mark on a bench, a file beside the bench file: no run starts until a person clears it.</summary>
 /// <remarks>
-/// The mark is written and flushed before anything else is done about the trip. Clearing moves it, with name and reason,
-/// into a history file that only grows. A latch that cannot be read stands.
+/// The mark is written and flushed before anything else is done about the trip. Clearing moves it, with name and
+/// reason, into a history file that only grows. A latch that cannot be read stands.
 /// </remarks>
 public sealed class LatchFile(string benchFile)
 {
@@ -57,7 +57,8 @@ public sealed class LatchFile(string benchFile)
         string said = File.ReadAllText(Path).Trim();
         string line = string.Create(
             CultureInfo.InvariantCulture,
-            $"{at:yyyy-MM-ddTHH:mm:ssZ} cleared by {OneLine(by)}: {OneLine(because)} (was: {OneLine(said)}){Environment.NewLine}");
+            $"{at:yyyy-MM-ddTHH:mm:ssZ} cleared by {OneLine(by)}: {OneLine(because)} (was: "
+                + $"{OneLine(said)}){Environment.NewLine}");
         File.AppendAllText(History, line);
         File.Delete(Path);
         return said;

@@ -3,7 +3,8 @@ using System.Globalization;
 namespace BenchRunner.Safety.Locks;
 
 /// <summary>One run a bench: a lock file beside the bench file, held open while the run lasts.</summary>
-/// <remarks>The operating system lets go of it when the process dies, however it dies; the file itself may stay.</remarks>
+/// <remarks>The operating system lets go of it when the process dies, however it dies; the file itself may
+/// stay.</remarks>
 public sealed class BenchLock : IDisposable
 {
     private readonly FileStream _file;
@@ -13,7 +14,8 @@ public sealed class BenchLock : IDisposable
     /// <summary>Takes the lock of a bench.</summary>
     /// <param name="benchFile">The bench file.</param>
     /// <param name="now">The time that others read as the start of the run, UTC.</param>
-    /// <param name="holder">Who holds it where it is taken already, e.g. <c>process 4711 since …</c>; else null.</param>
+    /// <param name="holder">Who holds it where it is taken already, e.g. <c>process 4711 since …</c>; else
+    /// null.</param>
     /// <returns>The lock, or null where another process holds it.</returns>
     /// <exception cref="IOException">The lock file cannot be made.</exception>
     public static BenchLock? TryTake(string benchFile, DateTimeOffset now, out string? holder)
@@ -25,7 +27,8 @@ public sealed class BenchLock : IDisposable
             var file = new FileStream(path, FileMode.OpenOrCreate, FileAccess.ReadWrite, FileShare.None);
             File.WriteAllText(
                 holderPath,
-                string.Create(CultureInfo.InvariantCulture, $"process {Environment.ProcessId} since {now:yyyy-MM-ddTHH:mm:ssZ}"));
+                string.Create(CultureInfo.InvariantCulture, $"process {Environment.ProcessId} since "
+                    + $"{now:yyyy-MM-ddTHH:mm:ssZ}"));
             holder = null;
             return new BenchLock(file);
         }

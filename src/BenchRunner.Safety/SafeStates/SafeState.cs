@@ -3,10 +3,11 @@ using BenchRunner.Safety.Watches;
 
 namespace BenchRunner.Safety.SafeStates;
 
-/// <summary>Brings the bench to the safe state: pulses inhibited, supply off, bleeder on, bus proved down by the voltmeter.</summary>
+/// <summary>Brings the bench to the safe state: pulses inhibited, supply off, bleeder on, bus proved down by the
+/// voltmeter.</summary>
 /// <remarks>
-/// It takes no caller's token: whoever asked to stop wants exactly this to be finished. Each instrument is told on its own,
-/// so that one which does not answer holds up no other; supply off is sent before bleeder on and not waited for.
+/// It takes no caller's token: whoever asked to stop wants exactly this to be finished. Each instrument is told on its
+/// own, so that one which does not answer holds up no other; supply off is sent before bleeder on and not waited for.
 /// </remarks>
 public sealed class SafeState(
     SafetyRoles roles, BusWitness witness, Discharge discharge, EventSource events, TimeProvider time)
@@ -46,7 +47,8 @@ public sealed class SafeState(
             events.Say(
                 Severity.Information,
                 "bus-down",
-                $"bus measured at {report.Voltage:0.0} V at {report.At:HH:mm:ss} UTC, below {SafetyLimits.BusDown:0} V DC");
+                $"bus measured at {report.Voltage:0.0} V at {report.At:HH:mm:ss} UTC, below "
+                    + $"{SafetyLimits.BusDown:0} V DC");
         }
         else
         {

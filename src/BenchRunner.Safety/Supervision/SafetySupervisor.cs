@@ -9,9 +9,9 @@ namespace BenchRunner.Safety.Supervision;
 
 /// <summary>Grants permits, watches interlock and bus on connections of its own, trips on any doubt.</summary>
 /// <remarks>
-/// One a bench and run. The watch polls faster than 10 Hz from <see cref="Start"/> until disposed, also while the bench is
-/// being made safe. A trip revokes the permit at once and cancels <see cref="Tripped"/>; the runner's way out is the safe
-/// state. Hardware stays the safety function.
+/// One a bench and run. The watch polls faster than 10 Hz from <see cref="Start"/> until disposed, also while the bench
+/// is being made safe. A trip revokes the permit at once and cancels <see cref="Tripped"/>; the runner's way out is the
+/// safe state. Hardware stays the safety function.
 /// </remarks>
 public sealed class SafetySupervisor : IAsyncDisposable
 {
@@ -70,15 +70,18 @@ public sealed class SafetySupervisor : IAsyncDisposable
     }
 
     /// <summary>Grants leave to energise up to the bounds, after measuring interlock and bus afresh.</summary>
-    /// <exception cref="SafetyException">A bound is above the envelope, a trip stands, or the measurement gives a doubt.</exception>
+    /// <exception cref="SafetyException">A bound is above the envelope, a trip stands, or the measurement gives a
+    /// doubt.</exception>
     public async Task<Permit> Grant(PermitBounds bounds, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(bounds);
         if (bounds.Voltage.Value > _envelope.Voltage || bounds.Pulse.Value > _envelope.Pulse)
         {
             throw new SafetyException(
-                $"{bounds.OperatingPoint}: {bounds.Voltage.Value:0.#} V and pulses of {bounds.Pulse.Value * 1e6:0.##} us asked "
-                    + $"for, the envelope ends at {_envelope.Voltage:0.#} V and {_envelope.Pulse * 1e6:0.##} us; no permit");
+                $"{bounds.OperatingPoint}: {bounds.Voltage.Value:0.#} V and pulses of {bounds.Pulse.Value * 1e6:0.##} "
+                    + $"us asked "
+                    + $"for, the envelope ends at {_envelope.Voltage:0.#} V and {_envelope.Pulse * 1e6:0.##} us; "
+                    + $"no permit");
         }
 
         // What may be left open on an idle bench must be closed before there is leave to energise it.
@@ -101,7 +104,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
     }
 
-    /// <summary>Trips: revokes the permit for good and cancels <see cref="Tripped"/>. The first reason stands.</summary>
+    /// <summary>Trips: revokes the permit for good and cancels <see cref="Tripped"/>. The first reason
+    /// stands.</summary>
     public void TripNow(string reason)
     {
         if (Mark(reason))
@@ -273,7 +277,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
                 ? $"the bus is at {volts:0.0} V and nothing was allowed to charge it" : null;
         }
 
-        double ceiling = Math.Min(_permit.Bounds.Voltage.Value * (1 + SafetyLimits.OverVoltageMargin), _envelope.Voltage);
+        double ceiling = Math.Min(
+            _permit.Bounds.Voltage.Value * (1 + SafetyLimits.OverVoltageMargin), _envelope.Voltage);
         ceiling = Math.Max(ceiling, SafetyLimits.BusDown);
         return volts > ceiling
             ? $"the bus is at {volts:0.0} V, above the {ceiling:0.0} V that the permit allows" : null;

@@ -2,8 +2,8 @@ namespace BenchRunner.Safety.Watches;
 
 /// <summary>What the voltmeter has shown so far: whether its word that the bus is down can be believed.</summary>
 /// <remarks>
-/// A voltmeter whose lead came off reads 0 V beside a full bank. So its word counts only if it followed the bus up, and a fall
-/// faster than half the planned time constant is no proof: something opened between the bank and the meter.
+/// A voltmeter whose lead came off reads 0 V beside a full bank. So its word counts only if it followed the bus up, and
+/// a fall faster than half the planned time constant is no proof: something opened between the bank and the meter.
 /// </remarks>
 public sealed class BusWitness
 {
@@ -52,7 +52,8 @@ public sealed class BusWitness
     }
 
     /// <summary>Whether the voltmeter was seen to follow the bus up, or there was nothing to follow.</summary>
-    /// <remarks>Half is enough: a run may stop while the bus still rises, and a dead lead shows nothing at all.</remarks>
+    /// <remarks>Half is enough: a run may stop while the bus still rises, and a dead lead shows nothing at
+    /// all.</remarks>
     public bool Followed
     {
         get

@@ -17,8 +17,10 @@ internal static class BenchCommand
         };
         var clear = new Command(
             "clear",
-            "takes the latch of a trip off a bench, with name and reason; only after the cause was found and put right.\n"
-                + "Example: benchrunner bench clear --bench lab-2.yaml --by 'A. Person' --because 'door switch replaced'")
+            "takes the latch of a trip off a bench, with name and reason; only after the cause was found and put "
+                + "right.\n"
+                + "Example: benchrunner bench clear --bench lab-2.yaml --by 'A. Person' --because 'door switch "
+                + "replaced'")
         {
             bench, by, because,
         };

@@ -7,7 +7,8 @@ internal static class CommandTree
 {
     public static RootCommand Build() => new(
         "Measures switching devices by double pulses, keeps the evidence, decides device by device. "
-            + "LETHAL VOLTAGES: this program is not a safety device; interlock, emergency stop and bleeder are hardware.")
+            + "LETHAL VOLTAGES: this program is not a safety device; interlock, emergency stop and bleeder are "
+            + "hardware.")
     {
         PlanCommand.Build(),
         RunCommand.Build(),

@@ -26,13 +26,15 @@ internal sealed record RunArguments(
 
         if (string.IsNullOrWhiteSpace(Operator))
         {
-            throw new InputException("this bench is not started by the program: say who operates it with --operator NAME");
+            throw new InputException(
+                "this bench is not started by the program: say who operates it with --operator NAME");
         }
 
         if (ArmedBy is null && !OperatorConfirmation.CanAsk)
         {
             throw new InputException(
-                "there is no terminal to confirm at, and no --armed-by NAME says who confirmed at the bench; nothing was energised");
+                "there is no terminal to confirm at, and no --armed-by NAME says who confirmed at the bench; nothing "
+                    + "was energised");
         }
     }
 }

@@ -16,7 +16,8 @@ internal static class RunCommand
         var command = new Command(
             "run",
             "takes devices through a sequence, stores the evidence, decides.\n"
-                + "DANGER: on a real bench this charges a capacitor to lethal voltage. Enclosure closed, nobody inside, eye "
+                + "DANGER: on a real bench this charges a capacitor to lethal voltage. Enclosure closed, nobody "
+                + "inside, eye "
                 + "protection, not alone, hardware emergency stop in reach; this program is not a safety device.\n"
                 + "Example: benchrunner run sequences/winch-drive-incoming.yaml --device W1200-0001");
         options.AddTo(command);
@@ -45,7 +46,8 @@ internal static class RunCommand
         screen.Line($"{Simulated(fake)}{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, "
             + $"evidence in {request.EvidencePath}");
         var session = new RunSession(
-            request, new SinkSet([new ProgressLog(screen)]), new OperatorConfirmation(screen, arguments.ArmedBy), TimeProvider.System);
+            request, new SinkSet([new ProgressLog(screen)]), new OperatorConfirmation(screen, arguments.ArmedBy),
+            TimeProvider.System);
         RunSummary summary = await session.Run(serials, stop);
         foreach (string device in summary.NotRun)
         {

@@ -8,7 +8,8 @@ namespace BenchRunner.Commands;
 internal static class RunExit
 {
     public static int Of(RunSummary summary) => summary.Devices.Aggregate(
-        ExitCode.Done, (code, device) => ExitCode.Worse(code, ExitCode.Worse(OfEnding(device.Ending), OfOutcome(device))));
+        ExitCode.Done, (code, device) =>
+            ExitCode.Worse(code, ExitCode.Worse(OfEnding(device.Ending), OfOutcome(device))));
 
     public static string Words(int code) => code switch
     {

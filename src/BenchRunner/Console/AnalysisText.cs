@@ -11,19 +11,22 @@ internal static class AnalysisText
 {
     public static IEnumerable<string> Lines(AnalysedFile analysed)
     {
-        yield return $"{analysed.File}: {analysed.Waveform.Count} samples at {SiText.Format(analysed.Waveform.SampleInterval, "s")}, "
+        yield return $"{analysed.File}: {analysed.Waveform.Count} samples at "
+            + $"{SiText.Format(analysed.Waveform.SampleInterval, "s")}, "
             + string.Join(' ', analysed.Waveform.Channels.Select(channel => channel.Name()));
         int name = analysed.Result.Quantities.Max(value => value.Quantity.Length);
         int definition = analysed.Result.Quantities.Max(value => value.Definition.Length);
         foreach (QuantityValue value in analysed.Result.Quantities)
         {
-            string shown = value.Value is { } number ? SiText.Format(number, value.Unit, 5) : $"no value: {value.Reason}";
+            string shown = value.Value is { } number
+                ? SiText.Format(number, value.Unit, 5) : $"no value: {value.Reason}";
             yield return $"  {value.Quantity.PadRight(name)}  {value.Definition.PadRight(definition)}  {shown}";
         }
 
         foreach (Finding finding in analysed.Verdict.Findings)
         {
-            yield return $"  finding {finding.Criterion} ({finding.Class.ToString().ToLowerInvariant()}): {finding.Message}";
+            yield return $"  finding {finding.Criterion} ({finding.Class.ToString().ToLowerInvariant()}): "
+                + $"{finding.Message}";
         }
 
         yield return $"  not evaluated: {string.Join(", ", analysed.Verdict.NotEvaluated)}";

@@ -30,7 +30,8 @@ internal static class DecisionTable
     [
         value.OperatingPoint, value.Quantity,
         value.Value is { } number
-            ? $"{SiText.Format(number, value.Unit)} ± {SiText.Format(value.ExpandedUncertainty ?? double.NaN, value.Unit, 2)}"
+            ? $"{SiText.Format(number, value.Unit)} ± "
+                + $"{SiText.Format(value.ExpandedUncertainty ?? double.NaN, value.Unit, 2)}"
             : "no value",
         Bounds(value),
     ];

@@ -43,7 +43,8 @@ internal sealed class OperatorConfirmation(Screen screen, string? armedBy) : ICo
             CultureInfo.InvariantCulture,
             $"Type the highest bus voltage in volts ({volts:0.#}) and Enter to energise; anything else ends the run:"));
         string? typed = await terminal.ReadLine(cancel);
-        return double.TryParse(typed, NumberStyles.Float, CultureInfo.InvariantCulture, out double said) && said == volts
+        return double.TryParse(
+            typed, NumberStyles.Float, CultureInfo.InvariantCulture, out double said) && said == volts
             ? Environment.UserName : null;
     }
 }

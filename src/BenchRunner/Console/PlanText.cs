@@ -17,7 +17,8 @@ internal static class PlanText
                 yield return line;
             }
 
-            yield return $"one device: about {SiText.Format(plan.Duration, "s", 3)}, at most {plan.Bytes / 1e6:0.0} MB of evidence";
+            yield return $"one device: about {SiText.Format(plan.Duration, "s", 3)}, at most {plan.Bytes / 1e6:0.0} MB "
+                + $"of evidence";
         }
 
         foreach (Problem refusal in planned.Refusals)
@@ -35,7 +36,8 @@ internal static class PlanText
             + $"{SiText.Format(point.Point.SecondPulse, "s")}; every {SiText.Format(point.Point.RepeatEvery, "s")}";
         yield return $"  stored {SiText.Format(point.StoredEnergy, "J", 3)} in the bank, "
             + $"{SiText.Format(point.LoadEnergy, "J", 3)} in the load; droop {point.BusDroop:0.00 %}";
-        string rise = point.JunctionRise is { } kelvin ? $"junction rise {SiText.Format(kelvin, "K", 2)}" : "junction rise not stated";
+        string rise = point.JunctionRise is { } kelvin ? $"junction rise "
+            + $"{SiText.Format(kelvin, "K", 2)}" : "junction rise not stated";
         yield return $"  second turn-off at {SiText.Format(point.Off2Current, "A", 3)}, peak about "
             + $"{SiText.Format(point.Off2PeakVoltage, "V", 3)}; {rise}";
         yield return $"  {point.Samples} samples a channel at {SiText.Format(point.SampleInterval, "s")}; ranges "

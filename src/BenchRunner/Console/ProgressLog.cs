@@ -45,11 +45,13 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
         }
 
         string bus = report.BusVoltage is { } volts
-            ? string.Create(CultureInfo.InvariantCulture, $"bus last measured {volts:0.0} V at {report.BusAt:HH:mm:ss} UTC")
+            ? string.Create(
+                CultureInfo.InvariantCulture, $"bus last measured {volts:0.0} V at {report.BusAt:HH:mm:ss} UTC")
             : "bus not measured";
         screen.Line(string.Create(
             CultureInfo.InvariantCulture,
-            $"{report.Device}: {report.CapturesValid} of {report.CapturesTaken} captures valid; {bus}; run {report.Run}"));
+            $"{report.Device}: {report.CapturesValid} of {report.CapturesTaken} captures valid; {bus}; run "
+                + $"{report.Run}"));
         string reason = report.Decision.Reason is { } why ? $"  ({Screen.Printable(why)})" : "";
         screen.Line("");
         screen.Line($"  >>>  {report.Device}  {Word(report.Decision.Outcome)}{reason}  <<<");

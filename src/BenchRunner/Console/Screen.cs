@@ -3,10 +3,11 @@ using System.Threading.Channels;
 
 namespace BenchRunner.Console;
 
-/// <summary>Lines, and on a terminal one live line below them. In a pipe it writes lines alone, without control codes.</summary>
+/// <summary>Lines, and on a terminal one live line below them. In a pipe it writes lines alone, without control
+/// codes.</summary>
 /// <remarks>
-/// A task of its own writes, in the order asked for: a terminal that was stopped (Ctrl-S) or a reader that does not read must
-/// not hold up the run, least of all its way to the safe state.
+/// A task of its own writes, in the order asked for: a terminal that was stopped (Ctrl-S) or a reader that does not
+/// read must not hold up the run, least of all its way to the safe state.
 /// </remarks>
 internal sealed class Screen : IAsyncDisposable
 {
@@ -113,7 +114,8 @@ internal sealed class Screen : IAsyncDisposable
 
     // Controls C0 and C1, and the characters that turn the direction of writing.
     private static bool IsUnsafe(char c) =>
-        char.IsControl(c) || c is (>= '\u202a' and <= '\u202e') or (>= '\u2066' and <= '\u2069') or '\u2028' or '\u2029';
+        char.IsControl(
+            c) || c is (>= '\u202a' and <= '\u202e') or (>= '\u2066' and <= '\u2069') or '\u2028' or '\u2029';
 
     private static int WindowWidth()
     {

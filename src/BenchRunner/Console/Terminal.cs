@@ -4,7 +4,8 @@ using Microsoft.Win32.SafeHandles;
 
 namespace BenchRunner.Console;
 
-/// <summary>The terminal that a person sits at, whatever standard input is: a list of serials or a scanner is no person.</summary>
+/// <summary>The terminal that a person sits at, whatever standard input is: a list of serials or a scanner is no
+/// person.</summary>
 internal sealed partial class Terminal : IDisposable
 {
     private const string Device = "/dev/tty";
@@ -24,7 +25,8 @@ internal sealed partial class Terminal : IDisposable
 
         try
         {
-            return new Terminal(new FileStream(Device, FileMode.Open, FileAccess.ReadWrite, FileShare.ReadWrite, bufferSize: 0));
+            return new Terminal(
+                new FileStream(Device, FileMode.Open, FileAccess.ReadWrite, FileShare.ReadWrite, bufferSize: 0));
         }
         catch (Exception none) when (none is IOException or UnauthorizedAccessException)
         {
@@ -65,7 +67,8 @@ internal sealed partial class Terminal : IDisposable
 
     /// <summary>Reads one line; null at its end.</summary>
     public Task<string?> ReadLine(CancellationToken cancel) =>
-        Task.Run(() => _device is null ? System.Console.ReadLine() : Line(_device), CancellationToken.None).WaitAsync(cancel);
+        Task.Run(() => _device is null ? System.Console.ReadLine() : Line(_device), CancellationToken.None).WaitAsync(
+            cancel);
 
     public void Dispose() => _device?.Dispose();
 

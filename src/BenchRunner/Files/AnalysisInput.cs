@@ -26,9 +26,14 @@ internal static class AnalysisInput
     public static WaveformFileOptions Options(string? interval, IReadOnlyList<string> channels)
     {
         (ChannelMapping? Mapping, WaveformProblem? Problem)[] parsed = [.. channels.Select(ChannelMapping.Parse)];
-        string[] wrong = [.. parsed.Select(one => one.Problem).OfType<WaveformProblem>().Select(problem => problem.ToString())];
+        string[] wrong =
+            [.. parsed.Select(one => one.Problem).OfType<WaveformProblem>().Select(problem => problem.ToString())];
         return wrong.Length == 0
-            ? new WaveformFileOptions { Interval = Seconds(interval), Channels = [.. parsed.Select(one => one.Mapping!)] }
+            ? new WaveformFileOptions
+            {
+                Interval = Seconds(interval),
+                Channels = [.. parsed.Select(one => one.Mapping!)],
+            }
             : throw new InputException(string.Join(Environment.NewLine, wrong));
     }
 
@@ -48,6 +53,7 @@ internal static class AnalysisInput
     {
         null => null,
         _ when SiText.TryParse(text, out double seconds, out string unit) && unit == "s" && seconds > 0 => seconds,
-        _ => throw new InputException($"--interval: '{text}'; expected a time above 0 with its unit; write for instance 400 ps."),
+        _ => throw new InputException(
+            $"--interval: '{text}'; expected a time above 0 with its unit; write for instance 400 ps."),
     };
 }

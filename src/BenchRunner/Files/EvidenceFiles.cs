@@ -26,7 +26,8 @@ internal static class EvidenceFiles
         if (free < 2 * bytesADevice)
         {
             throw new InputException(
-                $"{file}: a device needs up to {bytesADevice / 1e6:0.0} MB of evidence and {free / 1e6:0.0} MB are free there, "
+                $"{file}: a device needs up to {bytesADevice / 1e6:0.0} MB of evidence and {free / 1e6:0.0} MB are "
+                    + $"free there, "
                     + "expected twice as much; make room or name a file on another disk");
         }
     }

@@ -6,7 +6,8 @@ internal static class ExampleFiles
     /// <summary>The bench of a run that names none: a simulated one.</summary>
     public const string FakeBench = "sequences/benches/fake.yaml";
 
-    /// <summary>The path as given where it exists, else the shipped file of that name; as given where neither exists.</summary>
+    /// <summary>The path as given where it exists, else the shipped file of that name; as given where neither
+    /// exists.</summary>
     public static string Find(string path)
     {
         if (File.Exists(path) || Path.IsPathRooted(path))
@@ -18,7 +19,8 @@ internal static class ExampleFiles
         return File.Exists(shipped) ? shipped : path;
     }
 
-    /// <summary>Where dialects are looked for: the folder beside the bench file's own, the working folder's, the shipped ones.</summary>
+    /// <summary>Where dialects are looked for: the folder beside the bench file's own, the working folder's, the
+    /// shipped ones.</summary>
     public static IReadOnlyList<string> DialectFolders(string benchPath) =>
     [
         Path.GetFullPath(Path.Combine(Path.GetDirectoryName(Path.GetFullPath(benchPath)) ?? ".", "..", "dialects")),

@@ -4,8 +4,10 @@ using BenchRunner.Runner.Sessions;
 
 namespace BenchRunner.Files;
 
-/// <summary>Serials of the command line, or of standard input where <c>-</c> is given: a bar-code reader types them.</summary>
-/// <remarks>A serial of a wrong form on the command line ends everything before it begins; from a reader it is said and skipped.</remarks>
+/// <summary>Serials of the command line, or of standard input where <c>-</c> is given: a bar-code reader types
+/// them.</summary>
+/// <remarks>A serial of a wrong form on the command line ends everything before it begins; from a reader it is said and
+/// skipped.</remarks>
 internal sealed class Serials : IDeviceSource
 {
     private readonly Queue<string> _waiting;
@@ -27,7 +29,8 @@ internal sealed class Serials : IDeviceSource
         }
 
         _waiting = _fromInput ? [] : new Queue<string>(given);
-        string[] wrong = [.. _waiting.Select(serial => Check(serial, "--device")).OfType<Problem>().Select(p => p.ToString())];
+        string[] wrong =
+            [.. _waiting.Select(serial => Check(serial, "--device")).OfType<Problem>().Select(p => p.ToString())];
         if (wrong.Length > 0)
         {
             throw new InputException(string.Join(Environment.NewLine, wrong));

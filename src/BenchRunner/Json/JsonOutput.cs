@@ -3,7 +3,8 @@ using System.Text.Json.Nodes;
 
 namespace BenchRunner.Json;
 
-/// <summary>Writes the one JSON document of a command: plain SI numbers, null where a value could not be formed.</summary>
+/// <summary>Writes the one JSON document of a command: plain SI numbers, null where a value could not be
+/// formed.</summary>
 internal static class JsonOutput
 {
     private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };

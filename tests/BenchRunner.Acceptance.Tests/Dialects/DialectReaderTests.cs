@@ -79,5 +79,6 @@ public sealed class DialectReaderTests
         }
     }
 
-    private static string GenericPath(string role) => Repository.PathOf("sequences", "dialects", $"generic-{role}.yaml");
+    private static string GenericPath(string role) =>
+        Repository.PathOf("sequences", "dialects", $"generic-{role}.yaml");
 }

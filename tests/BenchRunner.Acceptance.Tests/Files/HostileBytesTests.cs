@@ -9,7 +9,8 @@ public sealed class HostileBytesTests
     private static readonly string[] _scraps =
     [
         "{", "}", "[", "]", ":", ": ", "- ", "? ", "'", "\"", "|", ">", "&a ", "*a", "!!str ", "!x ", "%YAML 1.2\n",
-        "---\n", "...\n", "\t", "\n", "\r", "\0", "\uFEFF", "\u202E", "#", ",", "<<: ", "\\", "~", "\u2028", "format: 1\n",
+        "---\n", "...\n", "\t", "\n", "\r", "\0", "\uFEFF", "\u202E", "#", ",", "<<: ", "\\", "~", "\u2028",
+        "format: 1\n",
     ];
 
     [Fact]
@@ -74,7 +75,8 @@ public sealed class HostileBytesTests
         for (int length = 0; length < whole.Length - 20; length += 7)
         {
             var problems = Readers.Problems(Readers.Source("bench.yaml", whole[..length]));
-            Assert.All(problems, problem => Assert.True(problem.Where is { Line: > 0, Column: > 0 }, problem.ToString()));
+            Assert.All(problems, problem =>
+                Assert.True(problem.Where is { Line: > 0, Column: > 0 }, problem.ToString()));
         }
     }
 

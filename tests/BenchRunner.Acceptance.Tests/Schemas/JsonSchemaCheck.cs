@@ -4,7 +4,8 @@ using System.Text.RegularExpressions;
 
 namespace BenchRunner.Acceptance.Tests.Schemas;
 
-/// <summary>Holds a JSON value against a schema: the keywords of JSON Schema 2020-12 that ours use, and no others.</summary>
+/// <summary>Holds a JSON value against a schema: the keywords of JSON Schema 2020-12 that ours use, and no
+/// others.</summary>
 internal static class JsonSchemaCheck
 {
     private static readonly string[] _notes = ["$schema", "title", "description", "examples", "format", "then"];

@@ -7,7 +7,8 @@ using YamlDotNet.RepresentationModel;
 
 namespace BenchRunner.Acceptance.Tests.Schemas;
 
-/// <summary>Schemas and readers come from one table; here both are held against each other and the shipped files.</summary>
+/// <summary>Schemas and readers come from one table; here both are held against each other and the shipped
+/// files.</summary>
 public sealed class SchemaTextTests
 {
     /// <summary>Keys that another key needs, which no schema says.</summary>
@@ -195,7 +196,8 @@ public sealed class SchemaTextTests
         YamlMappingNode map => new JsonObject(map.Children.Select(
             pair => KeyValuePair.Create(((YamlScalarNode)pair.Key).Value!, Json(pair.Value)))),
         YamlSequenceNode list => new JsonArray([.. list.Children.Select(Json)]),
-        YamlScalarNode { Style: ScalarStyle.Plain, Value: "true" or "false" } flag => JsonValue.Create(flag.Value == "true"),
+        YamlScalarNode { Style: ScalarStyle.Plain, Value: "true" or "false" } flag =>
+            JsonValue.Create(flag.Value == "true"),
         YamlScalarNode { Style: ScalarStyle.Plain } plain
             when double.TryParse(plain.Value, NumberStyles.Float, CultureInfo.InvariantCulture, out double number)
             => JsonValue.Create(number),

@@ -37,7 +37,8 @@ public class LinkTests
     {
         using var listener = new TcpListener(IPAddress.Loopback, 0);
         listener.Start();
-        using var link = await Open($"tcp 127.0.0.1 {((IPEndPoint)listener.LocalEndpoint).Port}", TimeSpan.FromMilliseconds(50));
+        using var link =
+            await Open($"tcp 127.0.0.1 {((IPEndPoint)listener.LocalEndpoint).Port}", TimeSpan.FromMilliseconds(50));
         using var far = await listener.AcceptSocketAsync(_cancel);
         var lump = new byte[1 << 20];
 

@@ -11,7 +11,8 @@ public class PermitCompilationTests
     [
         "supply.Program({0}new Volts(400), new Amperes(0.1), new Volts(440), cancel)",
         "supply.OutputOn({0}cancel)",
-        "pulser.Program({0}new TrainSettings(new Seconds(1e-6), new Seconds(1e-6), new Seconds(1e-6), new Volts(18), new Volts(-4)), cancel)",
+        "pulser.Program({0}new TrainSettings(new Seconds(1e-6), new Seconds(1e-6), new Seconds(1e-6), new Volts(18), "
+            + "new Volts(-4)), cancel)",
         "pulser.Arm({0}cancel)",
         "pulser.Fire({0}cancel)",
         "interlock.ReleaseBleeder({0}cancel)",
@@ -33,7 +34,8 @@ public class PermitCompilationTests
     }
 
     [Theory]
-    [InlineData("new Permit(bounds, TimeProvider.System, TimeSpan.FromDays(1))", "CS1729")] // no constructor that it can reach
+    // No constructor that it can reach.
+    [InlineData("new Permit(bounds, TimeProvider.System, TimeSpan.FromDays(1))", "CS1729")]
     [InlineData("new Permit()", "CS1729")]
     [InlineData("new MyPermit()", "CS0246")]
     [InlineData("null", "CS8625")] // nullable analysis, an error in this house
@@ -64,7 +66,8 @@ public class PermitCompilationTests
     [Fact]
     public void Every_operation_that_energises_is_tried_here()
     {
-        var taking = new[] { typeof(Instruments.Roles.ISupply), typeof(Instruments.Roles.IPulser), typeof(Instruments.Roles.IInterlock) }
+        var taking = new[] { typeof(Instruments.Roles.ISupply), typeof(Instruments.Roles.IPulser),
+            typeof(Instruments.Roles.IInterlock) }
             .SelectMany(t => t.GetMethods())
             .Where(m => m.GetParameters().Any(p => p.ParameterType == typeof(Permit)));
         Assert.Equal(Energising.Length, taking.Count());
@@ -82,7 +85,8 @@ public class PermitCompilationTests
         public static class Source
         {
             public static void Do(
-                ISupply supply, IPulser pulser, IInterlock interlock, Permit permit, PermitBounds bounds, CancellationToken cancel)
+                ISupply supply, IPulser pulser, IInterlock interlock, Permit permit, PermitBounds bounds,
+                CancellationToken cancel)
             {
                 _ = {{(call.StartsWith("permit.", StringComparison.Ordinal) ? $"0; {call}" : call)}};
             }
@@ -93,7 +97,8 @@ public class PermitCompilationTests
     [
         .. ((string)AppContext.GetData("TRUSTED_PLATFORM_ASSEMBLIES")!).Split(Path.PathSeparator)
             .Where(p => Path.GetFileName(p) is var name
-                && (name.StartsWith("System.", StringComparison.Ordinal) || name.StartsWith("BenchRunner.", StringComparison.Ordinal)))
+                && (name.StartsWith("System.", StringComparison.Ordinal)
+                    || name.StartsWith("BenchRunner.", StringComparison.Ordinal)))
             .Select(p => MetadataReference.CreateFromFile(p)),
     ];
 

@@ -56,7 +56,8 @@ public class ReferenceCaseTests
         Assert.Equal(
             expect.TryGetProperty("error", out var error)
                 ? "error " + error.GetString()
-                : $"{expect.GetProperty("number")}|{expect.GetProperty("text").GetString() ?? "null"}|{expect.GetProperty("detail").GetString() ?? "null"}",
+                : $"{expect.GetProperty("number")}|{expect.GetProperty("text").GetString() ?? "null"}|"
+                    + $"{expect.GetProperty("detail").GetString() ?? "null"}",
             outcome);
     }
 
@@ -180,7 +181,8 @@ public class ReferenceCaseTests
         }
 
         return reader.IsWhole
-            ? string.Join('|', Enumerable.Range(0, Math.Max(count, 1)).Select(i => Convert.ToHexString(reader.Block(i))))
+            ? string.Join(
+                '|', Enumerable.Range(0, Math.Max(count, 1)).Select(i => Convert.ToHexString(reader.Block(i))))
             : throw reader.Missing();
     }
 

@@ -56,7 +56,8 @@ public sealed class ScpiPulserTests : IAsyncLifetime
     {
         foreach (var beyond in new[]
         {
-            Train with { First = new(21e-6) }, Train with { Second = new(21e-6) }, Train with { First = new(double.NaN) },
+            Train with { First = new(21e-6) }, Train with { Second = new(21e-6) },
+            Train with { First = new(double.NaN) },
             Train with { GateOn = new(19) }, Train with { GateOff = new(-6) },
         })
         {

@@ -92,7 +92,8 @@ public sealed class ScpiScopeTests : IAsyncLifetime
     [InlineData("FORMat:BORDer?", "NORM")]
     [InlineData("TRIGger:SEQuence:SOURce?", "INT2")]
     [InlineData("TRIGger:SEQuence:LEVel?", "200")]
-    public async Task A_setting_that_reads_back_otherwise_is_refused_and_sent_again_next_time(string query, string answer)
+    public async Task A_setting_that_reads_back_otherwise_is_refused_and_sent_again_next_time(
+        string query, string answer)
     {
         _instrument.Once(query, v => v.Line(answer));
         await Assert.ThrowsAsync<InstrumentException>(() => _scope.Configure(Settings, _cancel));
@@ -125,7 +126,8 @@ public sealed class ScpiScopeTests : IAsyncLifetime
     [InlineData(99, 7, 1e-9, "samples")]
     [InlineData(Points, 6, 1e-9, "acquisition 6")]
     [InlineData(Points, 7, 2e-9, "interval")]
-    public async Task A_trace_of_another_length_acquisition_or_scale_is_left_out(int points, int count, double interval, string named)
+    public async Task A_trace_of_another_length_acquisition_or_scale_is_left_out(
+        int points, int count, double interval, string named)
     {
         await _scope.Configure(Settings, _cancel);
         _instrument.On("TRACe:PREamble? INTernal1", ScriptedRoles.Preamble(points, 1, count, interval));

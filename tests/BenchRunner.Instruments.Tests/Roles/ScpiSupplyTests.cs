@@ -38,7 +38,8 @@ public sealed class ScpiSupplyTests : IAsyncLifetime
         await _supply.OutputOn(Grants.Live(), _cancel);
 
         Assert.Equal(
-            ["SOURce:VOLTage:PROTection:LEVel 440", "SOURce:CURRent:LEVel:IMMediate:AMPLitude 0.1", SetVoltage + " 400", "OUTPut:STATe 1"],
+            ["SOURce:VOLTage:PROTection:LEVel 440", "SOURce:CURRent:LEVel:IMMediate:AMPLitude 0.1", SetVoltage + " 400",
+                "OUTPut:STATe 1"],
             Settings());
         var state = await _supply.ReadState(_cancel);
         Assert.Equal(

@@ -11,7 +11,8 @@ internal static class GenericDialects
         var folder = new DirectoryInfo(AppContext.BaseDirectory);
         while (!Directory.Exists(Path.Combine(folder.FullName, "sequences", "dialects")))
         {
-            folder = folder.Parent ?? throw new DirectoryNotFoundException("sequences/dialects is not above the test's folder");
+            folder = folder.Parent ?? throw new DirectoryNotFoundException(
+                "sequences/dialects is not above the test's folder");
         }
 
         var name = $"generic-{role}";

@@ -12,7 +12,8 @@ internal static class ReferenceFile
         var folder = new DirectoryInfo(AppContext.BaseDirectory);
         while (!Directory.Exists(Path.Combine(folder.FullName, "tests", "reference", "scpi")))
         {
-            folder = folder.Parent ?? throw new DirectoryNotFoundException("tests/reference/scpi is not above the test's folder");
+            folder = folder.Parent ?? throw new DirectoryNotFoundException(
+                "tests/reference/scpi is not above the test's folder");
         }
 
         var path = Path.Combine(folder.FullName, "tests", "reference", "scpi", file);
@@ -30,5 +31,6 @@ internal static class ReferenceFile
         : Encoding.UTF8.GetBytes(one.GetProperty("input").GetString()!);
 
     public static byte[] Hex(string text) =>
-        [.. text.Split(' ', StringSplitOptions.RemoveEmptyEntries).Select(b => byte.Parse(b, NumberStyles.HexNumber, CultureInfo.InvariantCulture))];
+        [.. text.Split(' ', StringSplitOptions.RemoveEmptyEntries)
+            .Select(b => byte.Parse(b, NumberStyles.HexNumber, CultureInfo.InvariantCulture))];
 }

@@ -112,7 +112,8 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
                 await Answer(new Visitor(client, visit, line));
             }
         }
-        catch (Exception e) when (e is OperationCanceledException or IOException or ObjectDisposedException or SocketException)
+        catch (Exception e) when (e
+            is OperationCanceledException or IOException or ObjectDisposedException or SocketException)
         {
             // The client has gone, or the test is over.
         }
@@ -129,7 +130,8 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
         {
             await act(visitor);
         }
-        else if (line.StartsWith("*ESE ", StringComparison.Ordinal) && line.EndsWith(";*ESE?", StringComparison.Ordinal))
+        else if (line.StartsWith("*ESE ", StringComparison.Ordinal)
+            && line.EndsWith(";*ESE?", StringComparison.Ordinal))
         {
             _ese = int.Parse(line.AsSpan()[5..^6], CultureInfo.InvariantCulture);
             await visitor.Line(_ese.ToString(CultureInfo.InvariantCulture));

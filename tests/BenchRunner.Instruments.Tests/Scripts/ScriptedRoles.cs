@@ -42,7 +42,8 @@ internal static class ScriptedRoles
         foreach (var (set, initial) in new[]
         {
             ("SOURce:PULSe1:WIDTh", "0"), ("SOURce:PULSe2:DELay", "0"), ("SOURce:PULSe2:WIDTh", "0"),
-            ("SOURce:VOLTage:LEVel:IMMediate:HIGH", "0"), ("SOURce:VOLTage:LEVel:IMMediate:LOW", "0"), ("OUTPut:STATe", "0"),
+            ("SOURce:VOLTage:LEVel:IMMediate:HIGH", "0"), (
+                "SOURce:VOLTage:LEVel:IMMediate:LOW", "0"), ("OUTPut:STATe", "0"),
         })
         {
             pulser.Keep(set, set + "?", initial);
@@ -50,7 +51,8 @@ internal static class ScriptedRoles
 
         pulser.On("INITiate:IMMediate", _ => ScriptedInstrument.Done(() => armed = true));
         pulser.On("ABORt", _ => ScriptedInstrument.Done(() => armed = false));
-        pulser.On("TRIGger:SEQuence:IMMediate", _ => ScriptedInstrument.Done(() => (count, armed) = (count + (armed ? 1 : 0), false)));
+        pulser.On("TRIGger:SEQuence:IMMediate", _ =>
+            ScriptedInstrument.Done(() => (count, armed) = (count + (armed ? 1 : 0), false)));
         pulser.On("STATus:OPERation:CONDition?", v => v.Line(armed ? "32" : "0"));
         pulser.On("SOURce:PULSe:COUNt?", v => v.Line(count.ToString(CultureInfo.InvariantCulture)));
         return pulser;
@@ -111,7 +113,8 @@ internal static class ScriptedRoles
     /// <summary>points, xincrement, xorigin, xreference, yincrement, yorigin, yreference, lowest code, highest code,
     /// count.</summary>
     public static string Preamble(int points, int channel, int count = 7, double interval = 1e-9) =>
-        string.Create(CultureInfo.InvariantCulture, $"{points},{interval:R},-1E-7,20,{channel * 800.0 / 4095:R},50,100,-2048,2047,{count}");
+        string.Create(CultureInfo.InvariantCulture,
+            $"{points},{interval:R},-1E-7,20,{channel * 800.0 / 4095:R},50,100,-2048,2047,{count}");
 
     public static short[] Codes(int points, int first) => [.. Enumerable.Range(first, points).Select(i => (short)i)];
 

@@ -77,5 +77,6 @@ public class SerialSessionTests
                 terminal.Write(Encoding.ASCII.GetBytes(answer(line)));
             }
         }
-    }) { IsBackground = true }.Start();
+    })
+    { IsBackground = true }.Start();
 }

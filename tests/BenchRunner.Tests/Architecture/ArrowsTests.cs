@@ -4,7 +4,8 @@ using System.Xml.Linq;
 
 namespace BenchRunner.Tests.Architecture;
 
-/// <summary>The arrows of the house, by project references (unused ones too) and by the assemblies really used.</summary>
+/// <summary>The arrows of the house, by project references (unused ones too) and by the assemblies really
+/// used.</summary>
 public sealed class ArrowsTests
 {
     private static readonly Dictionary<string, string[]> Arrows = new()

@@ -10,7 +10,8 @@ public sealed class ArgumentsTests
     {
         ServeOptions options = Arguments.Parse(
             ["--device", "W1200-0003", "--seed", "7", "--pace", "2.5", "--fault", "late-reply", "--fault",
-                "stale-record@fire:9", "--channels", "vgs_low,id_low", "--ends-with-input", "--bits", "8", "--interlock", "tcp"]);
+                "stale-record@fire:9", "--channels", "vgs_low,id_low", "--ends-with-input", "--bits", "8",
+                "--interlock", "tcp"]);
         Assert.Equal(("W1200-0003", 7, 2.5, 8), (options.Device, options.Seed, options.Pace, options.Bits));
         Assert.Equal(["vgs_low", "id_low"], options.Channels);
         Assert.Equal(new Fault("stale-record", new Moment(MomentKind.Fire, 9)), options.Faults[1]);
@@ -41,14 +42,18 @@ public sealed class ArgumentsTests
     {
         string file = BenchFile.Write(
             new ServeOptions { Pace = 5 },
-            [("supply", "tcp 127.0.0.1 41001"), ("voltmeter", "tcp 127.0.0.1 41002"), ("interlock", "serial /dev/pts/7")]);
-        Assert.StartsWith("format: 1\n", file[(file.IndexOf('\n', StringComparison.Ordinal) + 1)..], StringComparison.Ordinal);
+            [("supply", "tcp 127.0.0.1 41001"), ("voltmeter", "tcp 127.0.0.1 41002"),
+                ("interlock", "serial /dev/pts/7")]);
+        Assert.StartsWith(
+            "format: 1\n", file[(file.IndexOf('\n', StringComparison.Ordinal) + 1)..], StringComparison.Ordinal);
         Assert.Contains(
-            "  supply: { link: 'tcp 127.0.0.1:41001', dialect: generic-supply, connections: 4, identity: '.*FAKEBENCH-SUPPLY.*' }\n",
+            "  supply: { link: 'tcp 127.0.0.1:41001', dialect: generic-supply, connections: 4, identity: "
+                + "'.*FAKEBENCH-SUPPLY.*' }\n",
             file,
             StringComparison.Ordinal);
         Assert.Contains("connections: 4, at: bank, identity: ", file, StringComparison.Ordinal);
-        Assert.Contains("  interlock: { link: 'serial /dev/pts/7', dialect: generic-interlock, ", file, StringComparison.Ordinal);
+        Assert.Contains(
+            "  interlock: { link: 'serial /dev/pts/7', dialect: generic-interlock, ", file, StringComparison.Ordinal);
         Assert.Contains("bleeder: 5 kOhm", file, StringComparison.Ordinal);
         Assert.Contains("charging-current: 2.5 A", file, StringComparison.Ordinal);
         Assert.Contains("exchange: none\n", file, StringComparison.Ordinal);

@@ -79,7 +79,8 @@ public sealed partial class ProgramTests
     {
         using Process bench = Start("serve", "--pace", "9");
         Assert.Equal(2, await Ended(bench));
-        Assert.Contains("--pace: '9'", await bench.StandardError.ReadToEndAsync(TestContext.Current.CancellationToken), StringComparison.Ordinal);
+        Assert.Contains("--pace: '9'", await bench.StandardError.ReadToEndAsync(TestContext.Current.CancellationToken),
+            StringComparison.Ordinal);
     }
 
     private static bool PosixSignals => OperatingSystem.IsLinux() || OperatingSystem.IsMacOS();

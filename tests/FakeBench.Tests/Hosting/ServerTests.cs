@@ -29,7 +29,8 @@ public sealed class ServerTests
         byte[] block = await bench["scope"].Block("TRAC:DATA? INT2");
         Assert.Equal(2 * BenchClients.Value(preamble[0]), block.Length);
         double Volts(int sample) => BenchClients.Value(preamble[5])
-            + ((BitConverter.ToInt16(block, 2 * sample) - BenchClients.Value(preamble[6])) * BenchClients.Value(preamble[4]));
+            + ((BitConverter.ToInt16(block, 2 * sample) - BenchClients.Value(preamble[6]))
+                * BenchClients.Value(preamble[4]));
         Assert.Equal(600, Volts(100), 3.0);
         Assert.InRange(Volts(5000), 0, 3);
         await bench.Say("supply", "OUTP 0");

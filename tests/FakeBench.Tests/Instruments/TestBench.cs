@@ -53,7 +53,8 @@ internal sealed class TestBench
     {
         Assert.Empty(instrument.Obey(message).Bytes);
         Assert.StartsWith(
-            number.ToString(CultureInfo.InvariantCulture) + ",", Ask(instrument, "SYST:ERR?"), StringComparison.Ordinal);
+            number.ToString(CultureInfo.InvariantCulture) + ",", Ask(instrument, "SYST:ERR?"),
+            StringComparison.Ordinal);
     }
 
     public void Wait(double seconds) => _time.Advance(TimeSpan.FromSeconds(seconds));

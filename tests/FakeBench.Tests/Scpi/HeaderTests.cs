@@ -6,7 +6,8 @@ namespace FakeBench.Tests.Scpi;
 public sealed class HeaderTests
 {
     public static TheoryData<string, string, string> ShortForms() => new(
-        ScpiReference.Cases("headers.json", "short_forms").Select(c => (c.Text("id"), c.Text("long"), c.Text("short"))));
+        ScpiReference.Cases("headers.json", "short_forms")
+            .Select(c => (c.Text("id"), c.Text("long"), c.Text("short"))));
 
     public static TheoryData<string, string, string, int, int> Matchings()
     {
@@ -23,7 +24,8 @@ public sealed class HeaderTests
 
     public static TheoryData<string, string, string[]> Walks() => new(
         ScpiReference.Cases("headers.json", "tree_walk").Select(c =>
-            (c.Text("id"), c.Text("message"), c.GetProperty("headers").EnumerateArray().Select(h => h.GetString()!).ToArray())));
+            (c.Text("id"), c.Text("message"), c.GetProperty("headers").EnumerateArray().Select(h => h.GetString()!)
+                .ToArray())));
 
     [Theory]
     [MemberData(nameof(ShortForms))]
