@@ -17,7 +17,7 @@ internal static class LimitRefusals
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
     public static IEnumerable<Problem> Of(Sequence sequence, Bench bench) =>
-        sequence.Limits.SelectMany(limit => Of(limit, sequence, bench));
+        sequence.Limits.SelectMany(limit => Of(limit, sequence, bench)).Concat(Twice(sequence));
 
     private static IEnumerable<Problem> Of(Limit limit, Sequence sequence, Bench bench)
     {
@@ -46,8 +46,7 @@ internal static class LimitRefusals
                 "remove it, or test the device in the other position");
         }
 
-        string? asked = limit.Definition ?? sequence.Definitions.GetValueOrDefault(limit.Quantity);
-        string id = asked ?? quantity.DefaultFor(sequence.Kind);
+        string id = Id(limit, quantity, sequence);
         if (quantity.Find(id) is not { } definition)
         {
             yield return new Problem(
@@ -63,6 +62,32 @@ internal static class LimitRefusals
             yield return problem;
         }
     }
+
+    /// <summary>A limit that names the definition which another takes by default: one value, two limits.</summary>
+    private static IEnumerable<Problem> Twice(Sequence sequence)
+    {
+        var lines = new Dictionary<(string At, string Quantity, string Rule), int>();
+        foreach (Limit limit in sequence.Limits)
+        {
+            if (QuantityCatalogue.Find(limit.Quantity) is not { } quantity)
+            {
+                continue;
+            }
+
+            var key = (limit.At, limit.Quantity, DefinitionId.Split(Id(limit, quantity, sequence)).Rule);
+            if (!lines.TryAdd(key, limit.Where.Line))
+            {
+                yield return new Problem(
+                    limit.Where,
+                    $"a second limit on {limit.Quantity} at {limit.At} by {key.Rule}",
+                    $"one limit on a value (first in line {lines[key]})",
+                    "bring the two together, e.g. with between, or remove one");
+            }
+        }
+    }
+
+    private static string Id(Limit limit, Quantity quantity, Sequence sequence) =>
+        limit.Definition ?? sequence.Definitions.GetValueOrDefault(limit.Quantity) ?? quantity.DefaultFor(sequence.Kind);
 
     private static IEnumerable<Problem> Recorded(
         Limit limit, string id, QuantityDefinition definition, Sequence sequence, Bench bench)

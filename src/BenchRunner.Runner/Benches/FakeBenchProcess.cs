@@ -67,7 +67,15 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
     /// <inheritdoc/>
     public async ValueTask DisposeAsync()
     {
-        _process.StandardInput.Close();
+        try
+        {
+            _process.StandardInput.Close();
+        }
+        catch (IOException)
+        {
+            // It has ended by itself, and what was written last found no reader: there is nothing left to end.
+        }
+
         using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(5));
         try
         {

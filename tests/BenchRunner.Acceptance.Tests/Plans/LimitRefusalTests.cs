@@ -65,6 +65,15 @@ public sealed class LimitRefusalTests
     }
 
     [Fact]
+    public void Two_limits_on_one_value_are_refused_however_they_are_written()
+    {
+        // The first takes by default the definition that the second names.
+        Limit plain = Shipped.Rated.Limits[0] with { Quantity = "qrr", Definition = null, Upper = 785e-9 };
+        Limit named = plain with { Definition = "qrr/chord-90-25", Upper = 800e-9 };
+        Refused(Shipped.Rated with { Limits = [plain, named] }, Shipped.Bench, "second limit on qrr", "qrr/chord-90-25");
+    }
+
+    [Fact]
     public void Guard_bands_that_leave_no_room_are_refused()
     {
         // u = √((0.5 % · 700 V)² + (0.2 V)²) = 3.5 V, U = 6.9 V, two bands 13.7 V.

@@ -1,4 +1,6 @@
+using System.Diagnostics;
 using System.Net.Sockets;
+using System.Runtime.CompilerServices;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Runner.Benches;
@@ -26,6 +28,18 @@ public sealed class FakeBenchProcessTests : IDisposable
         }
 
         Assert.False(await Listens(fake.Links["supply"]));
+    }
+
+    [Fact]
+    public async Task Hands_at_a_bench_that_has_ended_by_itself_are_said_so()
+    {
+        await using FakeBenchProcess fake =
+            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+        Process program = Program(fake);
+        program.Kill();
+        await program.WaitForExitAsync(Cancel);
+
+        await Assert.ThrowsAsync<BenchException>(() => fake.Do("open", Cancel));
     }
 
     [Fact]
@@ -57,6 +71,10 @@ public sealed class FakeBenchProcessTests : IDisposable
         await Assert.ThrowsAsync<ArgumentException>(
             () => FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel));
     }
+
+    /// <summary>The process itself, which nobody but a test has a reason to end.</summary>
+    [UnsafeAccessor(UnsafeAccessorKind.Field, Name = "_process")]
+    private static extern ref Process Program(FakeBenchProcess fake);
 
     private static async Task<bool> Listens(string link)
     {
