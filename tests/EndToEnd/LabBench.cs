@@ -39,8 +39,8 @@ internal sealed class LabBench : IDisposable
             {
                 int start = at + mark.Length;
                 int end = line.IndexOf('\'', start);
-                own = line[..start] + lab.Relay(
-                    int.Parse(line[start..end], System.Globalization.CultureInfo.InvariantCulture)) + line[end..];
+                int port = int.Parse(line[start..end], System.Globalization.CultureInfo.InvariantCulture);
+                own = line[..start] + lab.Relay(port) + line[end..];
             }
 
             text.Append(own.Replace("FAKEBENCH", "LABBENCH0", StringComparison.Ordinal)).Append('\n');

@@ -65,8 +65,8 @@ public sealed class RunTests : IDisposable
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
 
-        int limits = File.ReadLines(
-            Workplace.Sequence).Count(line => line.Contains("{ quantity:", StringComparison.Ordinal));
+        int limits = File.ReadLines(Workplace.Sequence)
+            .Count(line => line.Contains("{ quantity:", StringComparison.Ordinal));
         Assert.Equal(limits, _place.Ask<long>("select count(*) from measurements where conformity = 'conforms'"));
         Assert.Equal(limits, _place.Ask<long>("select count(*) from measurements where conformity is not null"));
     }

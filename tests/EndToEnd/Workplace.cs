@@ -125,8 +125,8 @@ internal sealed class Workplace : IDisposable
 
     private static string Built(string project, string program)
     {
-        string configuration = AppContext.BaseDirectory.Contains(
-            "release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
+        string configuration = AppContext.BaseDirectory.Contains("release", StringComparison.OrdinalIgnoreCase)
+            ? "release" : "debug";
         string name = OperatingSystem.IsWindows() ? program + ".exe" : program;
         return Repository("artifacts", "bin", project, configuration, name);
     }

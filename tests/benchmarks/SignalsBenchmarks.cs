@@ -33,10 +33,9 @@ internal static class SignalsBenchmarks
     private static Waveform Record(int seed, int points)
     {
         double interval = Duration / points;
-        TrainTrajectory train = HalfBridge.Simulate(
-            DevicePopulation.Draw(
-                "W1200-0001", seed).On(new BenchParts()), new PulseTrain(8.08e-6, 6e-6, 3e-6, 18, -4, 600), -1e-6,
-            interval, points);
+        CircuitParameters circuit = DevicePopulation.Draw("W1200-0001", seed).On(new BenchParts());
+        var pulses = new PulseTrain(8.08e-6, 6e-6, 3e-6, 18, -4, 600);
+        TrainTrajectory train = HalfBridge.Simulate(circuit, pulses, -1e-6, interval, points);
         return new Waveform(-1e-6, interval, new Dictionary<Channel, double[]>
         {
             [Channel.VgsLow] = Recorded(train, Signal.VgsLow, 44, 7, seed),

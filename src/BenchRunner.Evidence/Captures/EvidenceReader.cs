@@ -1,6 +1,6 @@
-using BenchRunner.Acceptance.Validity;
 using System.Globalization;
 using System.Security.Cryptography;
+using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Codecs;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;

@@ -59,6 +59,6 @@ public sealed record LinkAddress(LinkKind Kind, string Host, int Number)
             : null;
 
     private static int? Whole(string text, int most) =>
-        int.TryParse(
-            text, NumberStyles.None, CultureInfo.InvariantCulture, out var number) && number <= most ? number : null;
+        int.TryParse(text, NumberStyles.None, CultureInfo.InvariantCulture, out var number) && number <= most
+            ? number : null;
 }

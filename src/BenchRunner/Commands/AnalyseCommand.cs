@@ -18,22 +18,26 @@ internal static class AnalyseCommand
             Description = "CSV files, plain or packed by gzip: a column t in seconds, then channels in V and A",
             Arity = ArgumentArity.OneOrMore,
         };
-        var settings = new Option<string?>(
-            "--settings")
-        { Description = "what is known of device and recording (YAML)" };
-        var every = new Option<bool>(
-            "--every-definition")
-        { Description = "every definition of the catalogue, not the chosen ones alone" };
-        var interval = new Option<string?>(
-            "--interval")
-        { Description = "sample interval in place of the file's times, e.g. 400 ps" };
-        var channels = new Option<string[]>(
-            "--channel")
-        { Description = "where a channel is: NAME=[FILE:]COLUMN; may repeat" };
+        var settings = new Option<string?>("--settings")
+        {
+            Description = "what is known of device and recording (YAML)",
+        };
+        var every = new Option<bool>("--every-definition")
+        {
+            Description = "every definition of the catalogue, not the chosen ones alone",
+        };
+        var interval = new Option<string?>("--interval")
+        {
+            Description = "sample interval in place of the file's times, e.g. 400 ps",
+        };
+        var channels = new Option<string[]>("--channel")
+        {
+            Description = "where a channel is: NAME=[FILE:]COLUMN; may repeat",
+        };
         Option<bool> json = CommonOptions.Json();
         var command = new Command(
-            "analyse", "quantities of waveforms, by stated definitions\nExample: benchrunner analyse train.csv "
-                + "--every-definition")
+            "analyse", "quantities of waveforms, by stated definitions\n"
+                + "Example: benchrunner analyse train.csv --every-definition")
         {
             files, settings, every, interval, channels, json,
         };

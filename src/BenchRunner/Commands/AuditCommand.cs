@@ -12,9 +12,10 @@ internal static class AuditCommand
     public static Command Build()
     {
         Option<string?> evidence = CommonOptions.Evidence();
-        var since = new Option<string?>(
-            "--since")
-        { Description = "a seal kept outside the file, which must be in its chain" };
+        var since = new Option<string?>("--since")
+        {
+            Description = "a seal kept outside the file, which must be in its chain",
+        };
         Option<bool> json = CommonOptions.Json();
         var command = new Command(
             "audit",

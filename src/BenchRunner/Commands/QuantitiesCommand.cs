@@ -11,14 +11,15 @@ internal static class QuantitiesCommand
 {
     public static Command Build()
     {
-        var name = new Argument<string?>(
-            "name")
-        { Description = "one quantity, e.g. qrr", DefaultValueFactory = _ => null };
+        var name = new Argument<string?>("name")
+        {
+            Description = "one quantity, e.g. qrr", DefaultValueFactory = _ => null,
+        };
         var markdown = new Option<bool>("--markdown") { Description = "the whole catalogue as a document" };
         Option<bool> json = CommonOptions.Json();
         var command = new Command(
-            "quantities", "what every quantity and definition ID means\nExample: benchrunner "
-                + "quantities qrr") { name, markdown, json };
+            "quantities", "what every quantity and definition ID means\n"
+                + "Example: benchrunner quantities qrr") { name, markdown, json };
         command.SetAction(parsed =>
         {
             IReadOnlyList<Quantity> chosen = Choose(parsed.GetValue(name));

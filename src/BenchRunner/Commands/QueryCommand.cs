@@ -9,9 +9,10 @@ internal static class QueryCommand
 {
     public static Command Build()
     {
-        var name = new Argument<string?>(
-            "question")
-        { Description = "one of those below", DefaultValueFactory = _ => null };
+        var name = new Argument<string?>("question")
+        {
+            Description = "one of those below", DefaultValueFactory = _ => null,
+        };
         var sql = new Option<string?>("--sql") { Description = "one SELECT of your own, on the views and tables" };
         Option<string?> evidence = CommonOptions.Evidence();
         var csv = new Option<bool>("--csv") { Description = "comma-separated values" };

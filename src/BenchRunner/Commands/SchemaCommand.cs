@@ -11,8 +11,8 @@ internal static class SchemaCommand
         var kind = new Argument<string>("kind") { Description = string.Join(", ", SchemaText.Kinds) };
         kind.AcceptOnlyFromAmong([.. SchemaText.Kinds]);
         var command = new Command(
-            "schema", "prints the JSON Schema of a file format\nExample: benchrunner schema sequence > "
-                + "sequence.schema.json") { kind };
+            "schema", "prints the JSON Schema of a file format\n"
+                + "Example: benchrunner schema sequence > sequence.schema.json") { kind };
         command.SetAction(parsed =>
         {
             System.Console.WriteLine(SchemaText.Of(parsed.GetRequiredValue(kind)));

@@ -114,8 +114,8 @@ internal sealed class Screen : IAsyncDisposable
 
     // Controls C0 and C1, and the characters that turn the direction of writing.
     private static bool IsUnsafe(char c) =>
-        char.IsControl(
-            c) || c is (>= '\u202a' and <= '\u202e') or (>= '\u2066' and <= '\u2069') or '\u2028' or '\u2029';
+        char.IsControl(c)
+        || c is (>= '\u202a' and <= '\u202e') or (>= '\u2066' and <= '\u2069') or '\u2028' or '\u2029';
 
     private static int WindowWidth()
     {

@@ -42,8 +42,8 @@ internal static class ScriptedRoles
         foreach (var (set, initial) in new[]
         {
             ("SOURce:PULSe1:WIDTh", "0"), ("SOURce:PULSe2:DELay", "0"), ("SOURce:PULSe2:WIDTh", "0"),
-            ("SOURce:VOLTage:LEVel:IMMediate:HIGH", "0"), (
-                "SOURce:VOLTage:LEVel:IMMediate:LOW", "0"), ("OUTPut:STATe", "0"),
+            ("SOURce:VOLTage:LEVel:IMMediate:HIGH", "0"),
+            ("SOURce:VOLTage:LEVel:IMMediate:LOW", "0"), ("OUTPut:STATe", "0"),
         })
         {
             pulser.Keep(set, set + "?", initial);
