@@ -27,6 +27,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     private Task _watching = Task.CompletedTask;
     private double _lastVoltage = double.NaN;
     private bool _discharging;
+    private bool _watchdogSet;
     private Task<SafeStateReport>? _reaching;
 
     /// <summary>Makes a supervisor; nothing is polled before <see cref="Start"/>.</summary>
@@ -56,16 +57,20 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <summary>What the interlock controller said at the last poll; null before the first.</summary>
     public InterlockState? LastInterlock { get; private set; }
 
-    /// <summary>Polls once, in full, then goes on polling in a task of its own.</summary>
+    /// <summary>Polls once, in full, arms the controller's watchdog, then goes on polling in a task of its own.</summary>
     /// <exception cref="SafetyException">The first poll found a reason to trip.</exception>
     public async Task Start(CancellationToken cancel)
     {
         if (await Poll(cancel) is { } doubt)
         {
+            // A watchdog that has acted is taken back at the end: the latch stands in its place.
+            _watchdogSet = LastInterlock is { WatchdogTripped: true };
             OnDoubt(doubt);
             throw new SafetyException($"{doubt}; put it right before the bench is used");
         }
 
+        await _roles.Interlock.SetWatchdog(SafetyLimits.Watchdog, cancel);
+        _watchdogSet = true;
         _watching = Task.Run(() => Watch(_end.Token), CancellationToken.None);
     }
 
@@ -115,6 +120,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
     }
 
+    /// <summary>Keeps the first reason. A watchdog that has acted says that a run was lost, its bus perhaps up.</summary>
     private bool Mark(string reason)
     {
         lock (_gate)
@@ -125,7 +131,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             }
 
             _permit?.Revoke(reason);
-            Trip = new Trip(reason, _time.GetUtcNow(), Witness.MayBeEnergised);
+            Trip = new Trip(reason, _time.GetUtcNow(), Witness.MayBeEnergised || LastInterlock is { WatchdogTripped: true });
         }
 
         _events.Say(Severity.Alarm, "trip", $"TRIP: {reason}");
@@ -187,8 +193,28 @@ public sealed class SafetySupervisor : IAsyncDisposable
             await begunByTheLastPoll;
         }
 
+        await DisarmWatchdog();
         _end.Dispose();
         _tripped.Dispose();
+    }
+
+    /// <summary>Takes the watchdog off a bench that is down; one that may be charged is left to it.</summary>
+    private async Task DisarmWatchdog()
+    {
+        if (!_watchdogSet || Witness.MayBeEnergised)
+        {
+            return;
+        }
+
+        try
+        {
+            using var patience = new CancellationTokenSource(SafetyLimits.Watchdog, _time);
+            await _roles.Interlock.SetWatchdog(null, patience.Token);
+        }
+        catch (Exception failure) when (failure is not OutOfMemoryException)
+        {
+            _events.Say(Severity.Warning, "watchdog-left", $"the interlock's watchdog stays armed: {failure.Message}");
+        }
     }
 
     private async Task Watch(CancellationToken end)
