@@ -61,6 +61,19 @@ public sealed class OpenBenchTests : IDisposable
     }
 
     [Fact]
+    public async Task A_real_instrument_among_simulated_ones_is_refused()
+    {
+        Bench bench = _place.Bench(("'.*FAKEBENCH-VOLTMETER.*'", "'.*VOLTMETER.*'"));
+        await using FakeBenchProcess fake = await Start(bench);
+        using var real = new Disguise(fake.Links["voltmeter"]);
+
+        var refused = await Assert.ThrowsAsync<BenchException>(
+            () => Open(bench, new Dictionary<string, string>(fake.Links) { ["voltmeter"] = real.Link }));
+
+        Assert.Contains("supply, pulser, scope, interlock are simulated, voltmeter are not", refused.Message, StringComparison.Ordinal);
+    }
+
+    [Fact]
     public async Task An_instrument_that_is_not_there_is_named()
     {
         Bench bench = _place.Bench();
