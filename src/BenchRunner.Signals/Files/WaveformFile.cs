@@ -147,7 +147,9 @@ public static class WaveformFile
         catch (Exception e) when (e is IOException or UnauthorizedAccessException or ArgumentException
             or NotSupportedException)
         {
-            problems.Add(new WaveformProblem(path, 0, 0, e.Message, "a file that can be read", "check the path"));
+            string found = e is FileNotFoundException or DirectoryNotFoundException
+                ? "there is no such file" : e.Message.TrimEnd('.');
+            problems.Add(new WaveformProblem(path, 0, 0, found, "a file that can be read", "check the path"));
             return null;
         }
     }
