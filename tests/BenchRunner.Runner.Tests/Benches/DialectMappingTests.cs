@@ -20,7 +20,8 @@ public sealed partial class DialectMappingTests
     public async Task A_dialect_file_gives_exactly_the_commands_that_the_role_needs(string role)
     {
         // A role names every command that it misses before it opens any link.
-        var missing = await Assert.ThrowsAsync<InstrumentException>(() => Connect(role, new Dictionary<string, string>()));
+        var missing = await Assert.ThrowsAsync<InstrumentException>(
+            () => Connect(role, new Dictionary<string, string>()));
         string[] needed = Listed().Match(missing.Message).Groups[1].Value.Split(", ");
 
         Assert.Equal(
@@ -32,7 +33,8 @@ public sealed partial class DialectMappingTests
     public void Name_identity_and_commands_are_taken_over()
     {
         var commands = new Dictionary<string, string> { ["measure-voltage"] = "READ?" };
-        Dialect dialect = new DialectFile("plain", "voltmeter", ".*METER.*", commands, new SourceFile("dialect", "plain.yaml", []))
+        Dialect dialect =
+            new DialectFile("plain", "voltmeter", ".*METER.*", commands, new SourceFile("dialect", "plain.yaml", []))
             .ToDialect();
 
         Assert.Equal(("plain", ".*METER.*"), (dialect.Name, dialect.Identity));
@@ -41,9 +43,11 @@ public sealed partial class DialectMappingTests
 
     private static async Task Connect(string role, IReadOnlyDictionary<string, string> commands)
     {
-        Dialect dialect = new DialectFile("empty", role, null, commands, new SourceFile("dialect", "empty.yaml", [])).ToDialect();
+        Dialect dialect =
+            new DialectFile("empty", role, null, commands, new SourceFile("dialect", "empty.yaml", [])).ToDialect();
         var at = new InstrumentConnection(
-            LinkAddress.Parse("tcp 127.0.0.1:1"), dialect, new SessionOptions(), TimeProvider.System, new RecordingSink());
+            LinkAddress.Parse("tcp 127.0.0.1:1"), dialect, new SessionOptions(), TimeProvider.System,
+            new RecordingSink());
         CancellationToken cancel = TestContext.Current.CancellationToken;
         using IDisposable connected = role switch
         {

@@ -19,10 +19,12 @@ public sealed class FakeBenchProcessTests : IDisposable
     [Fact]
     public async Task Every_role_has_a_link_that_listens_and_none_is_left_after_the_end()
     {
-        FakeBenchProcess fake = await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+        FakeBenchProcess fake = await FakeBenchProcess.Start(
+            _place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
         await using (fake)
         {
-            Assert.Equal(["interlock", "pulser", "scope", "supply", "voltmeter"], fake.Links.Keys.Order(StringComparer.Ordinal));
+            Assert.Equal(
+                ["interlock", "pulser", "scope", "supply", "voltmeter"], fake.Links.Keys.Order(StringComparer.Ordinal));
             Assert.True(await Listens(fake.Links["supply"]));
             Assert.True(await Listens(fake.Links["scope"]));
         }
@@ -45,7 +47,8 @@ public sealed class FakeBenchProcessTests : IDisposable
     [Fact]
     public async Task A_bench_that_cannot_start_is_said_at_once()
     {
-        Bench bench = _place.Bench(("fake: { seed: 1, pace: 5 }", "fake: { seed: 1, pace: 5, faults: ['no-such-fault'] }"));
+        Bench bench =
+            _place.Bench(("fake: { seed: 1, pace: 5 }", "fake: { seed: 1, pace: 5, faults: ['no-such-fault'] }"));
 
         var failure = await Assert.ThrowsAsync<BenchException>(
             () => FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel));

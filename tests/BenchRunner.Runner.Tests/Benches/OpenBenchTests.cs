@@ -21,14 +21,16 @@ public sealed class OpenBenchTests : IDisposable
 
         Assert.All(
             (string[])["supply", "pulser", "scope", "voltmeter", "interlock"],
-            role => Assert.Contains($"FAKEBENCH-{role.ToUpperInvariant()}", open.Identities[role].Text, StringComparison.Ordinal));
+            role => Assert.Contains(
+                $"FAKEBENCH-{role.ToUpperInvariant()}", open.Identities[role].Text, StringComparison.Ordinal));
         Assert.True(open.IsSimulated);
     }
 
     [Fact]
     public async Task Safety_has_connections_of_its_own_where_the_instrument_serves_more_than_one()
     {
-        Bench bench = _place.Bench(("dialect: generic-pulser, connections: 2", "dialect: generic-pulser, connections: 1"));
+        Bench bench =
+            _place.Bench(("dialect: generic-pulser, connections: 2", "dialect: generic-pulser, connections: 1"));
         await using FakeBenchProcess fake = await Start(bench);
         await using OpenBench open = await Open(bench, fake.Links);
 
@@ -41,7 +43,8 @@ public sealed class OpenBenchTests : IDisposable
     public async Task A_wrong_identity_is_refused_with_the_place_that_asks_for_another()
     {
         Bench bench = _place.Bench(("'.*FAKEBENCH-SCOPE.*'", "'.*OTHER-SCOPE.*'"));
-        int line = 1 + Array.FindIndex(File.ReadAllLines(_place.BenchFile), text => text.Contains("OTHER-SCOPE", StringComparison.Ordinal));
+        int line = 1 + Array.FindIndex(
+            File.ReadAllLines(_place.BenchFile), text => text.Contains("OTHER-SCOPE", StringComparison.Ordinal));
         await using FakeBenchProcess fake = await Start(bench);
 
         var refused = await Assert.ThrowsAsync<BenchException>(() => Open(bench, fake.Links));
@@ -70,7 +73,8 @@ public sealed class OpenBenchTests : IDisposable
         var refused = await Assert.ThrowsAsync<BenchException>(
             () => Open(bench, new Dictionary<string, string>(fake.Links) { ["voltmeter"] = real.Link }));
 
-        Assert.Contains("supply, pulser, scope, interlock are simulated, voltmeter are not", refused.Message, StringComparison.Ordinal);
+        Assert.Contains(
+            "supply, pulser, scope, interlock are simulated, voltmeter are not", refused.Message, StringComparison.Ordinal);
     }
 
     [Fact]

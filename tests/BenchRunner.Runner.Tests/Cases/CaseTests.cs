@@ -32,12 +32,15 @@ public sealed class CaseTests
     [Fact]
     public void A_value_out_of_no_capture_was_not_measured() =>
         Assert.Equal(
-            CaseEnding.NotMeasured, Result(Value with { Captures = 0, Value = null, Conformity = Conformity.Undecided }).Ending);
+            CaseEnding.NotMeasured,
+            Result(Value with { Captures = 0, Value = null, Conformity = Conformity.Undecided }).Ending);
 
     [Fact]
     public void A_limit_that_nothing_was_measured_for_says_why_the_device_ended()
     {
-        CaseResult result = new Case(Device, Limit).Result(new DeviceDecision(Outcome.Stopped, "the interlock loop is open", []));
+        var stopped = new DeviceDecision(Outcome.Stopped, "the interlock loop is open", []);
+
+        CaseResult result = new Case(Device, Limit).Result(stopped);
 
         Assert.Equal(CaseEnding.NotMeasured, result.Ending);
         Assert.Null(result.Value);
@@ -69,7 +72,8 @@ public sealed class CaseTests
         var decision = new DeviceDecision(Outcome.Rejected, "", [Value, window]);
 
         Assert.Equal(
-            CaseEnding.Conforms, new Case(Device, Limit with { Definition = "qrr/chord-90-25" }).Result(decision).Ending);
+            CaseEnding.Conforms,
+            new Case(Device, Limit with { Definition = "qrr/chord-90-25" }).Result(decision).Ending);
         Assert.Equal(
             CaseEnding.Fails, new Case(Device, Limit with { Definition = "qrr/window-100ns" }).Result(decision).Ending);
     }
@@ -90,8 +94,10 @@ public sealed class CaseTests
             var decision = new DeviceDecision(Outcome.Rejected, null, values);
             return Enumerable.Range(0, 12).All(i =>
             {
-                CaseResult result = new Case(Device, Limit with { At = $"p{i % 4}", Quantity = $"q{i / 4}" }).Result(decision);
-                return result.Value?.Value == i && result.Ending == (i % 2 == 0 ? CaseEnding.Conforms : CaseEnding.Fails);
+                Limit limit = Limit with { At = $"p{i % 4}", Quantity = $"q{i / 4}" };
+                CaseResult result = new Case(Device, limit).Result(decision);
+                return result.Value?.Value == i
+                    && result.Ending == (i % 2 == 0 ? CaseEnding.Conforms : CaseEnding.Fails);
             });
         });
 

@@ -20,11 +20,13 @@ public sealed class ExchangeTests : IDisposable
     public async Task The_loop_is_seen_open_before_the_device_goes_in_and_closed_after()
     {
         Bench bench = _place.Bench();
-        await using FakeBenchProcess fake = await FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel);
+        await using FakeBenchProcess fake = await FakeBenchProcess.Start(
+            bench, Workplace.Device, TimeProvider.System, Cancel);
         await using OpenBench open = await Open(bench, fake);
         var hands = new Hands(fake, async () => (await open.Safety.Interlock.Read(Cancel)).LoopClosed);
 
-        await new Exchange(hands, open.Safety.Interlock, Events(TimeProvider.System), TimeProvider.System).Insert("W1200-0002", Cancel);
+        var exchange = new Exchange(hands, open.Safety.Interlock, Events(TimeProvider.System), TimeProvider.System);
+        await exchange.Insert("W1200-0002", Cancel);
 
         Assert.Equal(["open while closed", "insert W1200-0002 while open", "close while open"], hands.Done);
         Assert.True((await open.Safety.Interlock.Read(Cancel)).LoopClosed);
@@ -37,7 +39,8 @@ public sealed class ExchangeTests : IDisposable
     public async Task A_loop_that_does_not_follow_the_hands_ends_the_exchange(string idle, string why)
     {
         Bench bench = _place.Bench();
-        await using FakeBenchProcess fake = await FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel);
+        await using FakeBenchProcess fake = await FakeBenchProcess.Start(
+            bench, Workplace.Device, TimeProvider.System, Cancel);
         await using OpenBench open = await Open(bench, fake);
         var hands = new Hands(fake, () => Task.FromResult(true)) { Idle = idle };
         var time = new FakeTimeProvider();

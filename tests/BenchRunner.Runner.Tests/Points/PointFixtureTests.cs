@@ -72,7 +72,8 @@ public sealed class PointFixtureTests : IDisposable
         Assert.Equal((3, 0), (report.CapturesTaken, report.CapturesValid));
         Assert.Equal(CaseEnding.NotMeasured, Assert.Single(_heard.Cases).Ending);
         Assert.Equal(1, _heard.Count("too-few-valid"));
-        Assert.Equal(3, _place.Ask<int>("select count(*) from captures where not valid and findings like '%noise-below%'"));
+        Assert.Equal(
+            3, _place.Ask<int>("select count(*) from captures where not valid and findings like '%noise-below%'"));
     }
 
     [Fact]
@@ -90,7 +91,8 @@ public sealed class PointFixtureTests : IDisposable
 
         Assert.Equal(Outcome.Accepted, report.Decision.Outcome);
         Assert.InRange(_place.Ask<double>("select load_current from captures where capture = 1"), 20.8, 21.6);
-        Assert.Equal(1, _place.Ask<int>("select count(*) from captures where not valid and findings like '%current-within%'"));
+        Assert.Equal(
+            1, _place.Ask<int>("select count(*) from captures where not valid and findings like '%current-within%'"));
         Assert.Equal(0, _place.Ask<int>("select count(*) from captures where valid and abs(load_current - 20) > 0.4"));
     }
 

@@ -58,9 +58,11 @@ public sealed class RunSessionTests : IDisposable
     public async Task What_is_not_confirmed_is_not_begun()
     {
         var person = new Person(null);
-        var session = new RunSession(_place.Request(_place.Sequence(Rest), _place.Bench()), _heard, person, TimeProvider.System);
+        var session =
+            new RunSession(_place.Request(_place.Sequence(Rest), _place.Bench()), _heard, person, TimeProvider.System);
 
-        var refused = await Assert.ThrowsAsync<RefusedException>(() => session.Run(new Serials(Workplace.Device), Cancel));
+        var refused = await Assert.ThrowsAsync<RefusedException>(
+            () => session.Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Equal(RefusalKind.Input, refused.Kind);
         Assert.Equal([true], person.Asked);
@@ -94,7 +96,8 @@ public sealed class RunSessionTests : IDisposable
         Bench bench = Elsewhere();
         new LatchFile(bench.Source.Path).Set(DateTimeOffset.UnixEpoch, "the interlock loop is open");
 
-        var refused = await Assert.ThrowsAsync<RefusedException>(() => Session(bench).Run(new Serials(Workplace.Device), Cancel));
+        var refused = await Assert.ThrowsAsync<RefusedException>(
+            () => Session(bench).Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Equal(RefusalKind.Latched, refused.Kind);
         Assert.Contains("the interlock loop is open", refused.Message, StringComparison.Ordinal);
@@ -108,7 +111,8 @@ public sealed class RunSessionTests : IDisposable
         Bench bench = Elsewhere();
         using BenchLock? held = BenchLock.TryTake(bench.Source.Path, DateTimeOffset.UnixEpoch, out _);
 
-        var refused = await Assert.ThrowsAsync<RefusedException>(() => Session(bench).Run(new Serials(Workplace.Device), Cancel));
+        var refused = await Assert.ThrowsAsync<RefusedException>(
+            () => Session(bench).Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Equal(RefusalKind.Taken, refused.Kind);
         Assert.Contains("in use by process", refused.Message, StringComparison.Ordinal);
@@ -156,7 +160,8 @@ public sealed class RunSessionTests : IDisposable
                 .Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Empty(person.Asked);
-        Assert.Contains("nothing was allowed to charge it", new LatchFile(bench.Source.Path).Read(), StringComparison.Ordinal);
+        Assert.Contains(
+            "nothing was allowed to charge it", new LatchFile(bench.Source.Path).Read(), StringComparison.Ordinal);
     }
 
     private RunSession Session(Bench bench) =>
@@ -164,5 +169,6 @@ public sealed class RunSessionTests : IDisposable
 
     /// <summary>A bench whose links lead nowhere: port 1 of this machine refuses.</summary>
     private Bench Elsewhere() => _place.OtherBench(
-        ((string[])["supply", "pulser", "scope", "voltmeter", "interlock"]).ToDictionary(role => role, _ => "tcp 127.0.0.1 1"));
+        ((string[])["supply", "pulser", "scope", "voltmeter", "interlock"])
+            .ToDictionary(role => role, _ => "tcp 127.0.0.1 1"));
 }

@@ -17,7 +17,11 @@ public sealed class SinkSetTests
     private static readonly RunProgress Step = new("W1200-0001", "half", 1, 20, 0, 5, 400, null, TimeSpan.Zero);
 
     private static readonly CaseResult Case = new(
-        "W1200-0001", new Limit("eon", null, "half", null, 1, false, new Place("s.yaml", 1, 1)), CaseEnding.NotMeasured, null, null);
+        "W1200-0001",
+        new Limit("eon", null, "half", null, 1, false, new Place("s.yaml", 1, 1)),
+        CaseEnding.NotMeasured,
+        null,
+        null);
 
     private static readonly DeviceReport Report = new(
         "run", "W1200-0001", new DeviceDecision(Outcome.Accepted, null, []), 0, 0, BenchEnding.Proved, null, null);

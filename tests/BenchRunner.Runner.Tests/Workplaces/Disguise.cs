@@ -5,7 +5,7 @@ using BenchRunner.Instruments.Links;
 
 namespace BenchRunner.Runner.Tests.Workplaces;
 
-/// <summary>Stands between the runner and one instrument, and gives it another name: a real one among simulated ones.</summary>
+/// <summary>Stands before one instrument and gives it another name: a real one among simulated ones.</summary>
 internal sealed class Disguise : IDisposable
 {
     private readonly TcpListener _listener = new(IPAddress.Loopback, 0);
@@ -59,7 +59,8 @@ internal sealed class Disguise : IDisposable
 
     private static string Renamed(string reply) => reply.Replace("FAKEBENCH", "REAL", StringComparison.Ordinal);
 
-    private static async Task Pass(NetworkStream from, NetworkStream to, Func<string, string> change, CancellationToken end)
+    private static async Task Pass(
+        NetworkStream from, NetworkStream to, Func<string, string> change, CancellationToken end)
     {
         using var lines = new StreamReader(from, Encoding.Latin1, leaveOpen: true);
         while (await lines.ReadLineAsync(end) is { } line)

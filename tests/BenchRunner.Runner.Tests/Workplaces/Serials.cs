@@ -9,5 +9,6 @@ internal sealed class Serials(params string[] serials) : IDeviceSource
 
     public IReadOnlyList<string> Waiting => [.. _waiting];
 
-    public Task<string?> Next(CancellationToken cancel) => Task.FromResult(_waiting.TryDequeue(out string? next) ? next : null);
+    public Task<string?> Next(CancellationToken cancel) =>
+        Task.FromResult(_waiting.TryDequeue(out string? next) ? next : null);
 }

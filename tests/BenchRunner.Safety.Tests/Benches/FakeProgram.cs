@@ -16,7 +16,8 @@ internal sealed class FakeProgram : IDisposable
     public static async Task<FakeProgram> Start(params string[] faults)
     {
         string name = OperatingSystem.IsWindows() ? "FakeBench.exe" : "FakeBench";
-        string configuration = AppContext.BaseDirectory.Contains("release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
+        string configuration =
+            AppContext.BaseDirectory.Contains("release", StringComparison.OrdinalIgnoreCase) ? "release" : "debug";
         var start = new ProcessStartInfo(Repository.File("artifacts", "bin", "FakeBench", configuration, name))
         {
             RedirectStandardInput = true,
@@ -24,7 +25,10 @@ internal sealed class FakeProgram : IDisposable
             UseShellExecute = false,
         };
         foreach (string argument in (string[])
-            ["serve", "--ends-with-input", "--pace", "5", "--interlock", "tcp", .. faults.SelectMany(f => (string[])["--fault", f])])
+        [
+            "serve", "--ends-with-input", "--pace", "5", "--interlock", "tcp",
+            .. faults.SelectMany(fault => (string[])["--fault", fault]),
+        ])
         {
             start.ArgumentList.Add(argument);
         }

@@ -47,8 +47,10 @@ internal sealed class LiveBench : IAsyncDisposable
         try
         {
             var options = new SessionOptions();
-            ScpiInterlock interlock = bench.Keep(await ScpiInterlock.Connect(bench.At("interlock", SessionOptions.Watching), cancel));
-            ScpiVoltmeter voltmeter = bench.Keep(await ScpiVoltmeter.Connect(bench.At("voltmeter", SessionOptions.Watching), cancel));
+            ScpiInterlock interlock =
+                bench.Keep(await ScpiInterlock.Connect(bench.At("interlock", SessionOptions.Watching), cancel));
+            ScpiVoltmeter voltmeter =
+                bench.Keep(await ScpiVoltmeter.Connect(bench.At("voltmeter", SessionOptions.Watching), cancel));
             ScpiSupply supply = bench.Keep(await ScpiSupply.Connect(bench.At("supply", options), cancel));
             ScpiPulser pulser = bench.Keep(await ScpiPulser.Connect(bench.At("pulser", options), cancel));
             bench.Roles = new SafetyRoles(pulser, supply, interlock, voltmeter);
@@ -97,7 +99,8 @@ internal sealed class LiveBench : IAsyncDisposable
     {
         await StrangerSets(volts);
         await Eventually.True(
-            async () => (await Roles.Voltmeter.Read(TestContext.Current.CancellationToken)).Value > 0.97 * volts, $"{volts} V");
+            async () => (await Roles.Voltmeter.Read(TestContext.Current.CancellationToken)).Value > 0.97 * volts,
+            $"{volts} V");
     }
 
     /// <summary>Somebody else sets the supply and switches it on.</summary>
@@ -134,7 +137,8 @@ internal sealed class LiveBench : IAsyncDisposable
     {
         DialectFile file = DialectReader.Read(Repository.File("sequences", "dialects", $"generic-{role}.yaml")).Value!;
         return new InstrumentConnection(
-            LinkAddress.Parse(_fake.Links[role]), new Dialect(file.Name, file.Identity, file.Commands), options, TimeProvider.System, Said);
+            LinkAddress.Parse(_fake.Links[role]), new Dialect(file.Name, file.Identity, file.Commands), options,
+            TimeProvider.System, Said);
     }
 
     private T Keep<T>(T link)

@@ -111,7 +111,8 @@ public sealed class SafeStateTests
 
         Assert.False(report.Proved);
         Assert.InRange(report.Voltage!.Value, 0, SafetyLimits.BusDown);
-        Assert.Contains(report.Doubts, doubt => doubt.Contains("faster than the bleeder can", StringComparison.Ordinal));
+        Assert.Contains(
+            report.Doubts, doubt => doubt.Contains("faster than the bleeder can", StringComparison.Ordinal));
         Assert.True(witness.MayBeEnergised);
     }
 

@@ -18,7 +18,8 @@ public sealed class GrantTests
         await supervisor.Start(Cancel);
 
         var high = await Assert.ThrowsAsync<SafetyException>(() => supervisor.Grant(LiveBench.UpTo(901), Cancel));
-        var wide = await Assert.ThrowsAsync<SafetyException>(() => supervisor.Grant(LiveBench.UpTo(600, 21e-6), Cancel));
+        var wide = await Assert.ThrowsAsync<SafetyException>(
+            () => supervisor.Grant(LiveBench.UpTo(600, 21e-6), Cancel));
 
         Assert.Contains("901 V", high.Message, StringComparison.Ordinal);
         Assert.Contains("ends at 900 V", high.Message, StringComparison.Ordinal);

@@ -13,7 +13,8 @@ public sealed class TripTests
     [Theory]
     [InlineData("open", "the interlock loop is open")]
     [InlineData("stop", "the emergency stop is pressed")]
-    public async Task A_doubt_while_a_permit_lives_ends_it_and_the_bench_is_made_safe_unasked(string hand, string reason)
+    public async Task A_doubt_while_a_permit_lives_ends_it_and_the_bench_is_made_safe_unasked(
+        string hand, string reason)
     {
         await using LiveBench bench = await LiveBench.Start();
         SafetySupervisor supervisor = bench.Supervisor();
