@@ -74,7 +74,7 @@ public sealed class OpenBenchTests : IDisposable
             () => Open(bench, new Dictionary<string, string>(fake.Links) { ["voltmeter"] = real.Link }));
 
         Assert.Contains(
-            "supply, pulser, scope, interlock are simulated, voltmeter are not", refused.Message, StringComparison.Ordinal);
+            "scope, interlock are simulated, voltmeter are not", refused.Message, StringComparison.Ordinal);
     }
 
     [Fact]
