@@ -13,8 +13,8 @@ public static class SafetyLimits
     /// <summary>Time from the start of a poll to the start of the next.</summary>
     public static TimeSpan PollEvery { get; } = TimeSpan.FromMilliseconds(80);
 
-    /// <summary>Time after the last poll at which the interlock controller's own watchdog acts: longer than a poll may take,
-    /// so that it acts only where this program is dead or hangs.</summary>
+    /// <summary>Time after the last poll at which the interlock controller's own watchdog acts.</summary>
+    /// <remarks>Longer than a poll may take, so that it acts only where this program is dead or hangs.</remarks>
     public static TimeSpan Watchdog { get; } = TimeSpan.FromSeconds(5);
 
     /// <summary>How far the measured bus may lie above what the permit allows before it is a trip, relative.</summary>

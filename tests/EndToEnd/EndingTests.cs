@@ -22,7 +22,7 @@ public sealed class EndingTests : IDisposable
     [InlineData(10)]
     public async Task An_interrupt_once_or_ten_times_leads_through_the_safe_state(int times)
     {
-        using Started run = _place.Start("run", Workplace.Sequence, "--device", "W1200-0001");
+        using Started run = StartInterruptible("run", Workplace.Sequence, "--device", "W1200-0001");
         await run.Line(line => line.Contains("half capture 2", StringComparison.Ordinal));
         for (int i = 0; i < times; i++)
         {
@@ -155,4 +155,10 @@ public sealed class EndingTests : IDisposable
             "--armed-by", "op",
         ];
     }
+
+    /// <summary>Starts the program as an operator would.</summary>
+    /// <remarks>Whoever runs the tests may ignore SIGINT (a job in the background does) and pass that on.</remarks>
+    private Started StartInterruptible(params string[] arguments) => OperatingSystem.IsLinux()
+        ? _place.Start("env", ["--default-signal=INT", Workplace.Program, .. arguments])
+        : _place.Start(arguments);
 }

@@ -116,7 +116,7 @@ public sealed class RunSession
         string device = first;
         while (true)
         {
-            string confirmedBy = await Confirm(open, operatorStop);
+            string confirmedBy = await Confirm(open, supervisor, operatorStop);
             reports.Add(await One(device, confirmedBy, store, open, supervisor, operatorStop));
             if (reports[^1].Ending != BenchEnding.Proved)
             {
@@ -205,9 +205,20 @@ public sealed class RunSession
         }
     }
 
-    private async Task<string> Confirm(OpenBench open, CancellationToken operatorStop) =>
-        await _confirmation.Confirm(Plan, open.IsSimulated, operatorStop)
-            ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
+    /// <summary>Asks; a trip does not wait for the answer.</summary>
+    private async Task<string> Confirm(OpenBench open, SafetySupervisor supervisor, CancellationToken operatorStop)
+    {
+        using var stop = CancellationTokenSource.CreateLinkedTokenSource(operatorStop, supervisor.Tripped);
+        try
+        {
+            return await _confirmation.Confirm(Plan, open.IsSimulated, stop.Token)
+                ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
+        }
+        catch (OperationCanceledException) when (supervisor.Trip is not null)
+        {
+            throw new SafetyException(supervisor.Trip.Reason);
+        }
+    }
 
     private BenchLock TakeBench()
     {

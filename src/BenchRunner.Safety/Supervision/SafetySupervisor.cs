@@ -131,7 +131,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
             }
 
             _permit?.Revoke(reason);
-            Trip = new Trip(reason, _time.GetUtcNow(), Witness.MayBeEnergised || LastInterlock is { WatchdogTripped: true });
+            bool energised = Witness.MayBeEnergised || LastInterlock is { WatchdogTripped: true };
+            Trip = new Trip(reason, _time.GetUtcNow(), energised);
         }
 
         _events.Say(Severity.Alarm, "trip", $"TRIP: {reason}");
