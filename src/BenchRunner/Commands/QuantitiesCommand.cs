@@ -13,7 +13,8 @@ internal static class QuantitiesCommand
     {
         var name = new Argument<string?>("name")
         {
-            Description = "one quantity, e.g. qrr", DefaultValueFactory = _ => null,
+            Description = "one quantity, e.g. qrr",
+            DefaultValueFactory = _ => null,
         };
         var markdown = new Option<bool>("--markdown") { Description = "the whole catalogue as a document" };
         Option<bool> json = CommonOptions.Json();

@@ -11,7 +11,8 @@ internal static class QueryCommand
     {
         var name = new Argument<string?>("question")
         {
-            Description = "one of those below", DefaultValueFactory = _ => null,
+            Description = "one of those below",
+            DefaultValueFactory = _ => null,
         };
         var sql = new Option<string?>("--sql") { Description = "one SELECT of your own, on the views and tables" };
         Option<string?> evidence = CommonOptions.Evidence();
