@@ -48,7 +48,7 @@ internal static class Ending
         {
             return Say(failed.Message, ExitCode.Instrument);
         }
-        catch (Exception fault) when (fault is not OutOfMemoryException)
+        catch (Exception fault)
         {
             return Say($"a fault of this program, please report it: {fault}", ExitCode.Fault);
         }

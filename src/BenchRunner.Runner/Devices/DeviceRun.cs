@@ -38,8 +38,9 @@ public sealed class DeviceRun(
         {
             await Points(device, evidence, stop.Token);
         }
-        catch (Exception broken) when (broken is not OutOfMemoryException)
+        catch (Exception broken)
         {
+            // All of them: whatever went wrong, the way out leads through the safe state.
             (ending, ended) = Explain(broken, operatorStop);
         }
 
@@ -84,8 +85,9 @@ public sealed class DeviceRun(
             // Decided here only where it matters: the bus is charged meanwhile.
             if (MaySkipHigher(point) && Decider.SkipsHigher(plan.Sequence, plan.Bench, taken.ForDecision()))
             {
-                events.Say(Severity.Warning, "higher-skipped", $"{point.Point.Name}: a limit failed; the higher points "
-                    + $"are left out");
+                events.Say(
+                    Severity.Warning, "higher-skipped",
+                    $"{point.Point.Name}: a limit failed; the higher points are left out");
                 return;
             }
         }
@@ -172,7 +174,7 @@ public sealed class DeviceRun(
                 plan.Sequence, plan.Bench, [.. _taken.Select(point => point.ForDecision())]);
             return ended is null ? decision : decision with { Outcome = ended.Outcome, Reason = ended.Why };
         }
-        catch (Exception fault) when (fault is not OutOfMemoryException)
+        catch (Exception fault)
         {
             events.Say(Severity.Error, "fault", $"a fault of this program while deciding: {fault}");
             ending = ending == BenchEnding.Proved ? BenchEnding.Fault : ending;

@@ -75,8 +75,8 @@ public sealed class PointFixture
         Permit permit = await _supervisor.Grant(Bounds(planned), cancel);
         _events.Say(
             Severity.Information, "point-started",
-            $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; charging "
-                + $"the bus");
+            $"{point.Name}: {SiText.Format(point.BusVoltage, "V")}, {SiText.Format(point.LoadCurrent, "A")}; "
+                + "charging the bus");
         var state = new PointState(planned, taken);
 
         // Gates at their off level before there is any voltage for them to hold off.

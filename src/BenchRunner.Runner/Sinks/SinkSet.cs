@@ -33,7 +33,7 @@ public sealed class SinkSet(IEnumerable<IRunSink> sinks) : IRunSink
                 {
                     what(_sinks[i]);
                 }
-                catch (Exception failure) when (failure is not OutOfMemoryException)
+                catch (Exception)
                 {
                     _sinks.RemoveAt(i);
                 }

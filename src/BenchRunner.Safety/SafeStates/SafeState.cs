@@ -98,7 +98,7 @@ public sealed class SafeState(
                     return new SafeStateReport(why is null, volts, at, doubts);
                 }
             }
-            catch (Exception failure) when (failure is not OutOfMemoryException)
+            catch (Exception failure)
             {
                 silent = failure is OperationCanceledException ? "no answer within 1 s" : failure.Message;
             }
@@ -139,7 +139,7 @@ public sealed class SafeState(
             await makeSafe(patience.Token);
             return null;
         }
-        catch (Exception failure) when (failure is not OutOfMemoryException)
+        catch (Exception failure)
         {
             string why = failure is OperationCanceledException ? "no answer within 3 s" : failure.Message;
             return $"{role} did not confirm its safe side: {why}";

@@ -212,7 +212,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             using var patience = new CancellationTokenSource(SafetyLimits.Watchdog, _time);
             await _roles.Interlock.SetWatchdog(null, patience.Token);
         }
-        catch (Exception failure) when (failure is not OutOfMemoryException)
+        catch (Exception failure)
         {
             _events.Say(Severity.Warning, "watchdog-left", $"the interlock's watchdog stays armed: {failure.Message}");
         }
@@ -274,7 +274,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         {
             throw;
         }
-        catch (Exception failure) when (failure is not OutOfMemoryException)
+        catch (Exception failure)
         {
             return $"the watch lost sight of the bench: {failure.Message}";
         }

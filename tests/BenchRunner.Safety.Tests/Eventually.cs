@@ -1,4 +1,4 @@
-namespace BenchRunner.Runner.Tests.Workplaces;
+namespace BenchRunner.Safety.Tests;
 
 /// <summary>Waits for what a real program does, bounded.</summary>
 internal static class Eventually
