@@ -21,6 +21,9 @@ public sealed class FaultPlan(IEnumerable<Fault> faults)
     /// <summary>Whether a fault has begun and has not yet been taken; it happens once.</summary>
     public bool Take(string name) => _pending.Remove(name);
 
+    /// <summary>Whether a fault that acts once has acted.</summary>
+    public bool HasActed(string name) => _begun.Contains(name) && !_pending.Contains(name);
+
     /// <summary>Something has come to a value: faults of that moment begin.</summary>
     /// <returns>The names of those that began now.</returns>
     public IReadOnlyList<string> Reach(MomentKind kind, double value)

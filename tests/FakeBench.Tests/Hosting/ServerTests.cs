@@ -1,4 +1,5 @@
 using System.Text;
+using FakeBench.Fixtures;
 using FakeBench.Hosting;
 using Microsoft.Extensions.Time.Testing;
 
@@ -113,6 +114,7 @@ public sealed class ServerTests
         await using Client other = await Client.Connect(bench.Link("scope"));
         await bench["scope"].Say("*IDN?");
         await bench["scope"].Say("SYST:VERS?");
+        await Acted(bench.Server.Bench, "late-reply");
         Assert.Equal("0,\"No error\"", await bench["supply"].Ask("SYST:ERR?"));
         Task<string> late = bench["scope"].Line();
         Assert.Equal("1", await other.Ask("*OPC?"));
@@ -176,5 +178,23 @@ public sealed class ServerTests
         await using BenchClients bench = await BenchClients.Start();
         Assert.Null(bench.Server.Do("open"));
         Assert.Equal("0,0,1,0", await bench["interlock"].Ask("SENS:DATA?"));
+    }
+
+    /// <summary>Two clients' messages have no order of their own: the other one asks only when the late reply is taken.</summary>
+    private static async Task Acted(Bench bench, string fault)
+    {
+        using CancellationTokenSource bound = new(TimeSpan.FromSeconds(30));
+        while (true)
+        {
+            lock (bench.Gate)
+            {
+                if (bench.Faults.HasActed(fault))
+                {
+                    return;
+                }
+            }
+
+            await Task.Delay(TimeSpan.FromMilliseconds(1), TimeProvider.System, bound.Token);
+        }
     }
 }
