@@ -21,7 +21,7 @@ public sealed record Bench
     /// <summary>The fake bench that <c>run</c> starts; null: real instruments, or a fake started by hand.</summary>
     public FakeSettings? Fake { get; init; }
 
-    /// <summary>Role (<c>supply pulser scope voltmeter interlock</c>) to its instrument.</summary>
+    /// <summary>Role (<c>supply pulser scope voltmeter interlock</c>, perhaps <c>hotplate</c>) to its instrument.</summary>
     public required IReadOnlyDictionary<string, InstrumentSetup> Roles { get; init; }
 
     /// <summary>Whether devices are exchanged by hand through the enclosure.</summary>
@@ -47,6 +47,9 @@ public sealed record Bench
 
     /// <summary>Current limit that the supply is given while charging, A.</summary>
     public required double ChargingCurrent { get; init; }
+
+    /// <summary>Stated accuracy of the supply's current read-back, A; null: not stated.</summary>
+    public double? SupplyCurrentAccuracy { get; init; }
 
     /// <summary>Commutation-loop inductance, H.</summary>
     public required double LoopInductance { get; init; }

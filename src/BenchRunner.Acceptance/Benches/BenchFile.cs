@@ -37,6 +37,7 @@ public static class BenchFile
             Bleeder = bus.Need("bleeder"),
             EmptySocketCurrent = bus.Number("empty-socket") ?? 0,
             ChargingCurrent = file.Block("supply").Need("charging-current"),
+            SupplyCurrentAccuracy = file.Block("supply").Number("current-accuracy"),
             LoopInductance = file.Block("loop").Need("inductance"),
             GateResistorOn = resistors.Need("on"),
             GateResistorOff = resistors.Need("off"),
@@ -48,7 +49,8 @@ public static class BenchFile
             ScopeFastestInterval = scope.Number("fastest-interval") ?? Bench.UsualScopeInterval,
             ScopeMemory = scope.Whole("samples-at-most") ?? Bench.UsualScopeMemory,
             Envelope = new Envelope(
-                envelope.Need("voltage"), envelope.Need("current"), envelope.Need("energy"), envelope.Need("pulse")),
+                envelope.Need("voltage"), envelope.Need("current"), envelope.Need("energy"), envelope.Need("pulse"),
+                envelope.Number("temperature")),
             Ambient = file.Need("ambient"),
             Cautions = [.. file.Items("cautions").Select(item => (string)item.Content)],
             Keys = file.Places(),
@@ -79,6 +81,12 @@ public static class BenchFile
             uncertainty.Need("gain"),
             uncertainty.Need("offset"),
             uncertainty.Need("skew"),
-            block.Where);
+            block.Where)
+        {
+            CommonMode = block.Number("common-mode"),
+            Bandwidth = block.Number("bandwidth"),
+            Delay = block.Number("delay") ?? 0,
+            Attenuation = block.Number("attenuation"),
+        };
     }
 }

@@ -37,6 +37,7 @@ internal static class BenchKeys
             Needed("scope", Role("Records the channels.", "generic-scope")),
             Needed("voltmeter", Role("Measures the bank by itself.", "generic-voltmeter", hasPlace: true)),
             Needed("interlock", Role("Loop, emergency stop, bleeder relay.", "generic-interlock")),
+            Optional("hotplate", Role("Heats the plate under the device and measures it.", "generic-hotplate")),
         ]);
 
     private static readonly BlockShape _load = new(
@@ -72,6 +73,8 @@ internal static class BenchKeys
             Needed("current", Positive("Highest load current.", "A", "120 A")),
             Needed("energy", Positive("Highest energy in the bank.", "J", "10 J")),
             Needed("pulse", Positive("Longest single pulse.", "s", "20 us")),
+            Optional("temperature", new QuantityShape(
+                "Highest temperature of the plate; needed with a hotplate.", "degC", new Bounds(0, 300), "150 degC")),
         ]);
 
     /// <summary>The whole file.</summary>
@@ -88,7 +91,10 @@ internal static class BenchKeys
             Needed("bus", _bus),
             Needed("supply", new BlockShape(
                 "How the supply is used.",
-                [Needed("charging-current", Positive("Its current limit while charging.", "A", "0.5 A"))])),
+                [
+                    Needed("charging-current", Positive("Its current limit while charging.", "A", "0.5 A")),
+                    Optional("current-accuracy", Positive("Accuracy of its current read-back.", "A", "1 mA")),
+                ])),
             Optional("scope", _scope),
             Needed("loop", new BlockShape(
                 "The commutation loop.", [Needed("inductance", Positive("Inductance.", "H", "34 nH"))])),

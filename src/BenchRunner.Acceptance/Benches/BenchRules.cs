@@ -21,6 +21,7 @@ internal static class BenchRules
             Link(role, roles.Block(role), file.IsWritten("fake"), problems);
         }
 
+        Ceiling(file, roles, problems);
         Fields channels = file.Block("channels");
         ChannelKeys.Check(channels, problems);
         Inputs(channels, problems);
@@ -37,6 +38,19 @@ internal static class BenchRules
                 $"{name} is measured by a shunt that is not described",
                 "a block shunt",
                 "add shunt: { resistance: 5 mOhm, inductance: 200 pH } with its own values"));
+        }
+    }
+
+    private static void Ceiling(Fields file, Fields roles, List<Problem> problems)
+    {
+        Fields envelope = file.Block("envelope");
+        if (file.IsWritten("envelope") && roles.IsWritten("hotplate") && !envelope.IsWritten("temperature"))
+        {
+            problems.Add(new Problem(
+                file.KeyOf("envelope"),
+                "envelope states no temperature and the bench has a hotplate",
+                "the highest temperature that plate and fixture bear",
+                "add temperature: 150 degC with its own value"));
         }
     }
 

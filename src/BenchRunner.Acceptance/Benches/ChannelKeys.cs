@@ -35,7 +35,7 @@ internal static class ChannelKeys
     }
 
     private static BlockShape Channels(bool isBench) => new(
-        "The recorded channels; recorded = gain · true + offset, late by skew.",
+        "The recorded channels; recorded = gain · true + offset, late by delay and skew.",
         [.. ChannelNames.All.Select(channel => Key.Optional(channel.Name(), Of(channel, isBench)))],
         AtLeast: 1);
 
@@ -49,6 +49,13 @@ internal static class ChannelKeys
                 new Key("scope", new WholeShape("The scope's own channel number.", 1, 64, 1), isBench),
                 new Key("probe", new WordShape("Kind of probe.", isVoltage ? _voltageProbes : _currentProbes), isBench),
                 Key.Optional("rating", Positive("Most that the probe bears.", unit, isVoltage ? "1500 V" : "200 A")),
+                Key.Optional("common-mode", Positive(
+                    "Highest voltage to earth that its inputs bear.", "V", "1000 V")),
+                Key.Optional("bandwidth", Positive("Bandwidth of the probe.", "Hz", "100 MHz")),
+                Key.Optional("delay", new QuantityShape(
+                    "Delay of the probe by its data sheet; the skew comes on top.", "s", new Bounds(0, 1e-6), "12 ns")),
+                Key.Optional("attenuation", Positive(
+                    "Attenuation that the scope is told and must say when asked back.", "1", "100")),
                 new Key("gain", new QuantityShape("Stated gain; 1: none.", "1", Bounds.Any, "1"), isBench),
                 Key.Optional("offset", new QuantityShape(
                     "Stated offset; left out: not known.", unit, Bounds.Any, $"0 {unit}")),

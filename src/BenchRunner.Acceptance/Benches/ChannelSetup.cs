@@ -1,4 +1,5 @@
 using BenchRunner.Acceptance.Files;
+using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Benches;
@@ -11,7 +12,7 @@ namespace BenchRunner.Acceptance.Benches;
 /// <param name="Rating">Highest voltage (or current) of the probe, V or A; null: not stated.</param>
 /// <param name="Gain">Stated gain: recorded = gain · true + offset.</param>
 /// <param name="Offset">Stated offset, V or A; null: not stated.</param>
-/// <param name="Skew">Stated delay, s.</param>
+/// <param name="Skew">Stated delay beyond the probe's own, s.</param>
 /// <param name="GainUncertainty">Standard uncertainty of the gain, 1 (relative).</param>
 /// <param name="OffsetUncertainty">Standard uncertainty of the offset, V or A.</param>
 /// <param name="SkewUncertainty">Standard uncertainty of the skew, s.</param>
@@ -27,4 +28,20 @@ public sealed record ChannelSetup(
     double GainUncertainty,
     double OffsetUncertainty,
     double SkewUncertainty,
-    Place Where);
+    Place Where)
+{
+    /// <summary>Highest voltage to earth that the probe's inputs bear, V; null: not stated.</summary>
+    public double? CommonMode { get; init; }
+
+    /// <summary>Bandwidth of the probe (−3 dB), Hz; null: not stated.</summary>
+    public double? Bandwidth { get; init; }
+
+    /// <summary>Delay of the probe by its data sheet, s; the skew comes on top.</summary>
+    public double Delay { get; init; }
+
+    /// <summary>Attenuation that the scope is told and must say when asked back, 1; null: it is not asked.</summary>
+    public double? Attenuation { get; init; }
+
+    /// <summary>The stated error, which the analysis undoes: gain, offset, and delay and skew together.</summary>
+    public ChannelCorrection Correction => new(Gain, Offset, Delay + Skew);
+}

@@ -5,4 +5,6 @@ namespace BenchRunner.Acceptance.Benches;
 /// <param name="Current">Highest load current, A.</param>
 /// <param name="Energy">Highest energy in the bank, J.</param>
 /// <param name="Pulse">Longest single pulse, s.</param>
-public sealed record Envelope(double Voltage, double Current, double Energy, double Pulse);
+/// <param name="Temperature">Highest temperature of the plate, degC; null: not stated, the plate is not heated.</param>
+public sealed record Envelope(
+    double Voltage, double Current, double Energy, double Pulse, double? Temperature = null);

@@ -79,7 +79,7 @@ public static class Planner
             Position = HalfBridge.FiresHigh(sequence) ? DevicePosition.High
                 : sequence.Position == DevicePosition.Both ? DevicePosition.Both : DevicePosition.Low,
             Corrections = bench.Channels.ToDictionary(
-                setup => setup.Channel, setup => new ChannelCorrection(setup.Gain, setup.Offset, setup.Skew)),
+                setup => setup.Channel, setup => setup.Correction),
             Shunt = bench.Shunt,
             ForwardVoltage = sequence.Expected.ForwardVoltage,
             HighSideThreshold = bench.HighSideThreshold,

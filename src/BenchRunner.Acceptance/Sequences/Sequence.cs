@@ -18,6 +18,9 @@ public sealed record Sequence
     /// <summary>Most attempts where the file does not say.</summary>
     public const int UsualAttempts = 2;
 
+    /// <summary>Time at a new temperature where the file does not say, s.</summary>
+    public const double UsualSoak = 120;
+
     /// <summary>Name, e.g. <c>wd-1200s-25 incoming</c>.</summary>
     public required string Name { get; init; }
 
@@ -57,8 +60,8 @@ public sealed record Sequence
     /// <summary>Whether the points are run as written rather than by temperature, bus voltage, current.</summary>
     public bool AsWritten { get; init; }
 
-    /// <summary>Time at a new temperature before the first capture, s; null: not stated.</summary>
-    public double? Soak { get; init; }
+    /// <summary>Time for which a new temperature is held before the first capture, s.</summary>
+    public double Soak { get; init; } = UsualSoak;
 
     /// <summary>Valid captures wanted a point.</summary>
     public int ValidCaptures { get; init; } = UsualValidCaptures;

@@ -33,7 +33,7 @@ public static class SequenceFile
             Leakage = file.Number("leakage"),
             OperatingPoints = [.. file.Blocks("operating-points").Select(Point)],
             AsWritten = file.Text("order") == "as-written",
-            Soak = file.Number("soak"),
+            Soak = file.Number("soak") ?? Sequence.UsualSoak,
             ValidCaptures = captures.Whole("valid") ?? Sequence.UsualValidCaptures,
             CapturesAtMost = captures.Whole("at-most") ?? Sequence.UsualCapturesAtMost,
             UntilDecided = file.Text("until") == "decided",

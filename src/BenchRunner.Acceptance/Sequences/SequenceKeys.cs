@@ -154,7 +154,9 @@ internal static class SequenceKeys
             Needed("operating-points", new ListShape("The operating points.", _point, "operating point", 1)),
             Optional("order", new WordShape(
                 "grouped (the default): by temperature, bus voltage, current, upwards.", ["grouped", "as-written"])),
-            Optional("soak", NotNegative("Time at a new temperature before the first capture.", "s", "300 s")),
+            Optional("soak", NotNegative(
+                "Time for which a new temperature holds, within tolerance and drifting below 0.5 K a minute, before the "
+                    + "first capture.", "s", "120 s")),
             Optional("captures", _captures),
             Optional("until", new WordShape(
                 "valid (the default): captures go on until the wanted number is valid; decided: until every limit is.",

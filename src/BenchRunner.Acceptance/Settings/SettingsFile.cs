@@ -44,5 +44,8 @@ public static class SettingsFile
     }
 
     private static ChannelCorrection Correction(Fields channel) =>
-        new(channel.Number("gain") ?? 1, channel.Number("offset"), channel.Number("skew") ?? 0);
+        new(
+            channel.Number("gain") ?? 1,
+            channel.Number("offset"),
+            (channel.Number("delay") ?? 0) + (channel.Number("skew") ?? 0));
 }

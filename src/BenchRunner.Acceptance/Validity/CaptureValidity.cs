@@ -47,7 +47,7 @@ public static class CaptureValidity
         Take(Criteria.HighSideOff, WaveformCriteria.HighSideOff(
             GateRecord.Of(
                 context.Traces.FirstOrDefault(trace => trace.Channel == gate),
-                setup is null ? null : new ChannelCorrection(setup.Gain, setup.Offset, setup.Skew)),
+                setup?.Correction),
             gate, context.Analysis, context.Bench.HighSideThreshold));
         Take(Criteria.Desaturated, WaveformCriteria.Desaturated(
             train, context.Sequence.Expected.OnVoltage, HalfBridge.Playing(Channel.VdsLow, firesHigh)));

@@ -49,6 +49,55 @@ public sealed class BenchFileTests
     }
 
     [Fact]
+    public void What_a_probe_bears_and_how_it_is_set_arrives_in_SI()
+    {
+        Bench bench = Read(Examples.Bench.With(
+            "scope: 2, probe: differential, rating: 1500 V, common-mode: 1500 V, bandwidth: 500 MHz, attenuation: 100,",
+            "scope: 2, probe: differential, rating: 1500 V, common-mode: 1 kV, bandwidth: 0.1 GHz, attenuation: 50, "
+                + "delay: 12 ns,"));
+        ChannelSetup setup = Assert.Single(bench.Channels, channel => channel.Channel == Channel.VdsLow);
+        Assert.Equal((1000, 100e6, 12e-9, 50), (setup.CommonMode, setup.Bandwidth, setup.Delay, setup.Attenuation));
+        Assert.Equal(1e-3, bench.SupplyCurrentAccuracy);
+    }
+
+    [Fact]
+    public void What_a_probe_does_not_state_is_not_known()
+    {
+        Bench bench = Read(Examples.Bench
+            .With(", bandwidth: 500 MHz, attenuation: 10, gain", ", gain").With(", current-accuracy: 1 mA", ""));
+        ChannelSetup setup = bench.Channels[0];
+        Assert.Equal((null, null, 0.0), (setup.Bandwidth, setup.Attenuation, setup.Delay));
+        Assert.Null(bench.SupplyCurrentAccuracy);
+        Assert.Null(bench.Envelope.Temperature);
+    }
+
+    [Fact]
+    public void The_shipped_probes_have_the_attenuation_that_the_scope_is_told()
+    {
+        foreach (Bench bench in new[] { Shipped.Bench, Shipped.FourChannels })
+        {
+            Assert.All(bench.Channels, setup => Assert.Equal(
+                setup.Channel switch
+                {
+                    Channel.VgsLow or Channel.VgsHigh => 10,
+                    Channel.IdLow => 1,
+                    _ => 100,
+                },
+                setup.Attenuation));
+        }
+    }
+
+    [Fact]
+    public void A_hotplate_comes_with_the_highest_temperature_of_its_plate()
+    {
+        Bench bench = Read(Examples.Bench
+            .With("exchange: none", "  hotplate: { link: 'tcp 127.0.0.1:0', dialect: generic-hotplate }\nexchange: none")
+            .With("pulse: 20 us }", "pulse: 20 us, temperature: 150 degC }"));
+        Assert.Equal("generic-hotplate", bench.Roles["hotplate"].Dialect);
+        Assert.Equal(150, bench.Envelope.Temperature);
+    }
+
+    [Fact]
     public void Real_instruments_need_no_fake_block()
     {
         Bench bench = Read(Examples.Bench

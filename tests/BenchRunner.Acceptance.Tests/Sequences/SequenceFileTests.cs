@@ -47,7 +47,7 @@ public sealed class SequenceFileTests
         Assert.Equal(new ValidityBounds(), sequence.Validity);
         Assert.Equal(new DecisionRule(), sequence.Decision);
         Assert.Null(sequence.Leakage);
-        Assert.Null(sequence.Soak);
+        Assert.Equal(120, sequence.Soak);
         Assert.False(sequence.UntilDecided);
         Assert.False(sequence.AsWritten);
     }

@@ -34,6 +34,12 @@ public sealed class SettingsFileTests
     }
 
     [Fact]
+    public void A_probe_is_late_by_its_delay_and_its_skew_together() =>
+        Assert.Equal(
+            new ChannelCorrection(1, null, 13e-9),
+            Read("channels: { vds_low: { delay: 12 ns, skew: 1 ns } }").Corrections[Channel.VdsLow]);
+
+    [Fact]
     public void A_channel_may_be_copied_from_a_bench_file()
     {
         int start = Examples.Bench.IndexOf("channels:\n", StringComparison.Ordinal);
