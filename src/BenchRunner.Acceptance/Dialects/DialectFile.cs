@@ -6,7 +6,7 @@ namespace BenchRunner.Acceptance.Dialects;
 /// <param name="Name">Name, e.g. <c>generic-supply</c>.</param>
 /// <param name="Role">The role it serves.</param>
 /// <param name="Identity">Regular expression for the answer to <c>*IDN?</c>; null: any.</param>
-/// <param name="Commands">Operation to command; every operation of the role is present.</param>
+/// <param name="Commands">Operation to command; every operation of the role is present, but for optional ones.</param>
 /// <param name="Source">The exact bytes it was read from.</param>
 public sealed record DialectFile(
     string Name, string Role, string? Identity, IReadOnlyDictionary<string, string> Commands, SourceFile Source);

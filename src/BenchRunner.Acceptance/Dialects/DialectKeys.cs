@@ -24,5 +24,5 @@ internal static class DialectKeys
         Sample: BlockShape.Shipped);
 
     private static BlockShape Commands(IReadOnlyList<RoleOperation> operations) => new BlockShape(
-        "", [.. operations.Select(operation => Key.Needed(operation.Name, new CommandShape(operation)))]);
+        "", [.. operations.Select(o => new Key(o.Name, new CommandShape(o), IsRequired: !o.IsOptional))]);
 }

@@ -1,6 +1,7 @@
 namespace BenchRunner.Acceptance.Dialects;
 
-/// <summary>The operations of each role: what a dialect file of that role must give a command for.</summary>
+/// <summary>The operations of each role: what a dialect file of that role must, or if optional may, give a command
+/// for.</summary>
 public static class RoleOperations
 {
     /// <summary>Operations by role.</summary>
@@ -23,18 +24,25 @@ public static class RoleOperations
             ],
             ["scope"] =
             [
-                .. Setting("range", ofChannel: true), .. Setting("offset", ofChannel: true),
+                .. Setting("attenuation", ofChannel: true), .. Setting("range", ofChannel: true),
+                .. Setting("offset", ofChannel: true),
                 .. Setting("interval"), .. Setting("points"), .. Setting("pretrigger"),
                 new("set-trigger-source", false, false, true), Ask("read-trigger-source"),
                 .. Setting("trigger-level"), Do("set-trigger-slope"),
                 Do("set-format"), Ask("read-format"), Do("set-byte-order"), Ask("read-byte-order"),
-                Do("arm"), Do("abort"), Ask("read-condition"), Ask("read-count"),
+                Do("arm"), Do("trigger"), Do("abort"), Ask("read-condition"), Ask("read-count"),
                 Ask("read-preamble", ofChannel: true), Ask("read-trace", ofChannel: true),
+                new("degauss", false, false, TakesChannel: true, IsOptional: true),
             ],
             ["voltmeter"] = [Ask("measure-voltage")],
             ["interlock"] =
             [
                 Ask("read-state"), Do("bleeder-on"), Do("bleeder-off"), Ask("read-bleeder"), .. Setting("watchdog"),
+            ],
+            ["hotplate"] =
+            [
+                .. Setting("temperature"), Ask("measure-temperature"),
+                Do("output-on"), Do("output-off"), Ask("read-output"),
             ],
         };
 

@@ -6,15 +6,24 @@ public interface IScope
     /// <summary>What the instrument said it is.</summary>
     InstrumentIdentity Identity { get; }
 
-    /// <summary>Sets time base, trigger and ranges and asks each back. Settings that stand already are not sent
-    /// again.</summary>
+    /// <summary>Whether the scope can degauss a current clamp on one of its inputs; where not, a person does.</summary>
+    bool CanDegauss { get; }
+
+    /// <summary>Sets time base, trigger, attenuations and ranges and asks each back. Settings that stand already are
+    /// not sent again.</summary>
     /// <exception cref="InstrumentException">A read-back differs by more than 1 %, or the error queue holds
     /// something.</exception>
     /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
     Task Configure(ScopeSettings settings, CancellationToken cancel);
 
-    /// <summary>Starts an acquisition and waits until the scope says that it waits for its trigger.</summary>
+    /// <summary>Asks every stated attenuation back, starts an acquisition and waits until the scope says that it waits
+    /// for its trigger.</summary>
+    /// <exception cref="SettingChangedException">An attenuation is another than was set; nothing was
+    /// started.</exception>
     Task Arm(CancellationToken cancel);
+
+    /// <summary>Triggers an armed scope at once, so that it records without a pulse train.</summary>
+    Task Trigger(CancellationToken cancel);
 
     /// <summary>Waits until the acquisition is complete.</summary>
     /// <returns>False where the deadline passed first (trigger missed): the acquisition was then aborted.</returns>
@@ -28,4 +37,10 @@ public interface IScope
 
     /// <summary>Ends a waiting acquisition.</summary>
     Task Abort(CancellationToken cancel);
+
+    /// <summary>Degausses the clamp on an input. The conductor must carry no current.</summary>
+    /// <param name="input">The scope's own channel number, from 1.</param>
+    /// <param name="cancel">Ends the exchange; whether the clamp was degaussed is then unknown.</param>
+    /// <exception cref="InvalidOperationException"><see cref="CanDegauss"/> is false: a caller's mistake.</exception>
+    Task Degauss(int input, CancellationToken cancel);
 }

@@ -64,6 +64,10 @@ internal sealed class Instrument : IDisposable
         }
     }
 
+    /// <summary>Whether the dialect has a command for an operation that not every instrument of the role
+    /// knows.</summary>
+    public bool Has(string operation) => _dialect.Commands.ContainsKey(operation);
+
     /// <summary>The command of an operation.</summary>
     public string Command(string operation, double? value = null, int? channel = null)
     {

@@ -4,7 +4,7 @@ namespace BenchRunner.Instruments.Roles;
 /// identity.</summary>
 /// <param name="role">The role, e.g. <c>supply</c>.</param>
 /// <param name="message">What was found, what was expected, what to do.</param>
-public sealed class InstrumentException(string role, string message) : Exception($"{role}: {message}")
+public class InstrumentException(string role, string message) : Exception($"{role}: {message}")
 {
     /// <summary>The role whose instrument it was.</summary>
     public string Role { get; } = role;

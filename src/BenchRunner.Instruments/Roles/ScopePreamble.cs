@@ -43,6 +43,32 @@ internal sealed record ScopePreamble(
         channel, codes, XOrigin - (XReference * XIncrement), XIncrement, YIncrement, YOrigin, YReference, LowRail,
         HighRail);
 
+    /// <summary>Why the codes are not of this acquisition or not of the scale that was asked for; null where they
+    /// are.</summary>
+    public string? Doubt(ScopeSettings settings, ScopeChannelSettings channel, long count)
+    {
+        const double Tolerance = ScopeSetup.Tolerance;
+        var interval = settings.Interval.Value;
+        if (Count != count)
+        {
+            return FormattableString.Invariant($"of acquisition {Count}, not {count}");
+        }
+
+        if (Points != settings.Points)
+        {
+            return FormattableString.Invariant($"{Points} samples where {settings.Points} are due");
+        }
+
+        if (!(Math.Abs(XIncrement - interval) <= interval * Tolerance))
+        {
+            return FormattableString.Invariant($"sample interval {XIncrement} s where {interval} s was set");
+        }
+
+        return Math.Abs(Span - channel.Span) <= channel.Span * Tolerance
+            ? null
+            : FormattableString.Invariant($"range {Span} where {channel.Span} was set");
+    }
+
     private static long Whole(double field, long most, ReadOnlySpan<byte> reply) =>
         Math.Floor(field) == field && Math.Abs(field) <= most
             ? (long)field

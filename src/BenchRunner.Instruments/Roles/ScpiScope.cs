@@ -10,19 +10,17 @@ public sealed class ScpiScope : IScope, IDisposable
 {
     private const int Sweeping = 3;
     private const int WaitsForTrigger = 5;
-
-    // Contract of IScope.Configure and the bound within which a preamble must agree with what was set.
-    private const double Tolerance = 0.01;
+    private const string DegaussOperation = "degauss";
 
     private static readonly TimeSpan Pause = TimeSpan.FromMilliseconds(1);
 
     private static readonly string[] Operations =
     [
-        "set-range", "read-range", "set-offset", "read-offset", "set-interval", "read-interval", "set-points",
-        "read-points",
-        "set-pretrigger", "read-pretrigger", "set-trigger-source", "read-trigger-source", "set-trigger-level",
-        "read-trigger-level", "set-trigger-slope", "set-format", "read-format", "set-byte-order", "read-byte-order",
-        "arm", "abort", "read-condition", "read-count", "read-preamble", "read-trace",
+        "set-attenuation", "read-attenuation", "set-range", "read-range", "set-offset", "read-offset",
+        "set-interval", "read-interval", "set-points", "read-points", "set-pretrigger", "read-pretrigger",
+        "set-trigger-source", "read-trigger-source", "set-trigger-level", "read-trigger-level", "set-trigger-slope",
+        "set-format", "read-format", "set-byte-order", "read-byte-order",
+        "arm", "trigger", "abort", "read-condition", "read-count", "read-preamble", "read-trace",
     ];
 
     private readonly Instrument _instrument;
@@ -43,6 +41,9 @@ public sealed class ScpiScope : IScope, IDisposable
 
     /// <inheritdoc/>
     public InstrumentIdentity Identity => _instrument.Session.Identity;
+
+    /// <inheritdoc/>
+    public bool CanDegauss => _instrument.Has(DegaussOperation);
 
     /// <summary>Connects; nothing is set.</summary>
     /// <exception cref="InstrumentException">Another instrument than the dialect is for, no scope, or a dialect that
@@ -67,7 +68,7 @@ public sealed class ScpiScope : IScope, IDisposable
     public async Task Configure(ScopeSettings settings, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(settings);
-        var wanted = Wanted(settings);
+        var wanted = ScopeSetup.Wanted(_instrument, settings);
         var standing = _standingSince == _instrument.Session.Connections ? _standing : [];
         (_settings, _standing) = (null, []);
         _standingSince = _instrument.Session.Connections;
@@ -89,6 +90,7 @@ public sealed class ScpiScope : IScope, IDisposable
     /// <inheritdoc/>
     public async Task Arm(CancellationToken cancel)
     {
+        await AskAttenuations(cancel);
         await _instrument.Session.Set(_instrument.Command("arm"), cancel);
         var waits = await _instrument.WaitFor(
             c => _instrument.ReadBit("read-condition", WaitsForTrigger, c), _options.ReplyWithin, Pause, cancel);
@@ -97,6 +99,10 @@ public sealed class ScpiScope : IScope, IDisposable
             throw _instrument.Refusal("does not wait for its trigger though it was armed");
         }
     }
+
+    /// <inheritdoc/>
+    public Task Trigger(CancellationToken cancel) =>
+        _instrument.Session.Set(_instrument.Command("trigger"), cancel);
 
     /// <inheritdoc/>
     public async Task<bool> WaitForRecord(TimeSpan deadline, CancellationToken cancel)
@@ -144,6 +150,11 @@ public sealed class ScpiScope : IScope, IDisposable
     public async Task Abort(CancellationToken cancel) =>
         await _instrument.Session.SetDown([_instrument.Command("abort")], cancel);
 
+    /// <inheritdoc/>
+    public Task Degauss(int input, CancellationToken cancel) => CanDegauss
+        ? _instrument.Session.Set(_instrument.Command(DegaussOperation, channel: input), cancel)
+        : throw new InvalidOperationException("the scope's dialect cannot degauss");
+
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _instrument.Dispose();
 
@@ -154,7 +165,7 @@ public sealed class ScpiScope : IScope, IDisposable
         {
             var preamble = await _instrument.Session.Ask(
                 _instrument.Command("read-preamble", channel: channel.Input), ScopePreamble.Parse, cancel);
-            if (Doubt(settings, channel, preamble, count) is { } doubt)
+            if (preamble.Doubt(settings, channel, count) is { } doubt)
             {
                 _instrument.Report(InstrumentEventKind.Discarded, $"trace of {channel.Channel}: {doubt}");
                 return null;
@@ -183,68 +194,32 @@ public sealed class ScpiScope : IScope, IDisposable
         return null;
     }
 
-    private List<ScopeSetting> Wanted(ScopeSettings settings)
-    {
-        var trigger = settings.Channels.FirstOrDefault(c => c.Channel == settings.TriggerOn)
-            ?? throw new ArgumentException("the trigger's channel is not recorded", nameof(settings));
-        var (interval, pretrigger) = (settings.Interval.Value, settings.Pretrigger.Value);
-        List<ScopeSetting> wanted =
-        [
-            Words("set-format", "read-format"),
-            Words("set-byte-order", "read-byte-order"),
-            Number("set-interval", "read-interval", interval, interval * Tolerance),
-            Number("set-points", "read-points", settings.Points, 0),
-            Number("set-pretrigger", "read-pretrigger", pretrigger, (pretrigger * Tolerance) + interval),
-        ];
-        foreach (var c in settings.Channels)
-        {
-            wanted.Add(Number("set-range", "read-range", c.Span, c.Span * Tolerance, c.Input));
-            wanted.Add(Number("set-offset", "read-offset", c.Offset, c.Span * Tolerance, c.Input));
-        }
-
-        wanted.Add(Words("set-trigger-source", "read-trigger-source", trigger.Input));
-        wanted.Add(Number("set-trigger-level", "read-trigger-level", settings.TriggerLevel, trigger.Span * Tolerance));
-        wanted.Add(Words("set-trigger-slope", null));
-        return wanted;
-    }
-
-    private ScopeSetting Number(string set, string read, double value, double tolerance, int? channel = null) =>
-        ScopeSetting.Number(
-            _instrument.Command(set, value, channel), _instrument.Command(read, channel: channel), value, tolerance);
-
-    private ScopeSetting Words(string set, string? read, int? channel = null) =>
-        ScopeSetting.Words(_instrument.Command(set, channel: channel), read is null ? null : _instrument.Command(read));
-
     private async Task AskBack(ScopeSetting setting, CancellationToken cancel)
     {
-        if (setting.Query is { } query && await _instrument.Session.Ask(query, setting.Difference, cancel) is { } found)
+        if (await Differs(setting, cancel) is { } found)
         {
             throw _instrument.Refusal(
                 $"'{setting.Command}' was taken as {Printable.Text(found)}; check its range and who else controls it");
         }
     }
 
-    private static string? Doubt(
-        ScopeSettings settings, ScopeChannelSettings channel, ScopePreamble preamble, long count)
+    /// <summary>Nobody but this program may change what a probe is taken for: a wrong attenuation gives wrong volts
+    /// that look right.</summary>
+    private async Task AskAttenuations(CancellationToken cancel)
     {
-        var interval = settings.Interval.Value;
-        if (preamble.Count != count)
+        foreach (var channel in _settings?.Channels ?? [])
         {
-            return FormattableString.Invariant($"of acquisition {preamble.Count}, not {count}");
+            if (ScopeSetup.Attenuation(_instrument, channel) is { } setting
+                && await Differs(setting, cancel) is { } found)
+            {
+                throw new SettingChangedException(_instrument.Role, FormattableString.Invariant(
+                    $"the attenuation of {channel.Channel.Name()} (input {channel.Input}) is {Printable.Text(found)} where ")
+                    + FormattableString.Invariant($"{channel.Attenuation} was set; check the probe's switch and who ")
+                    + $"else controls the scope ({_instrument.Session.Link})");
+            }
         }
-
-        if (preamble.Points != settings.Points)
-        {
-            return FormattableString.Invariant($"{preamble.Points} samples where {settings.Points} are due");
-        }
-
-        if (!(Math.Abs(preamble.XIncrement - interval) <= interval * Tolerance))
-        {
-            return FormattableString.Invariant($"sample interval {preamble.XIncrement} s where {interval} s was set");
-        }
-
-        return Math.Abs(preamble.Span - channel.Span) <= channel.Span * Tolerance
-            ? null
-            : FormattableString.Invariant($"range {preamble.Span} where {channel.Span} was set");
     }
+
+    private async Task<string?> Differs(ScopeSetting setting, CancellationToken cancel) =>
+        setting.Query is { } query ? await _instrument.Session.Ask(query, setting.Difference, cancel) : null;
 }

@@ -42,6 +42,14 @@ public sealed class DialectReaderTests
     }
 
     [Fact]
+    public void An_operation_that_not_every_scope_can_do_may_be_left_out()
+    {
+        string lines = string.Join(
+            '\n', File.ReadLines(GenericPath("scope")).Where(l => !l.StartsWith("  degauss:", StringComparison.Ordinal)));
+        Assert.Empty(Readers.Problems(Readers.Source("dialect.yaml", lines + "\n")));
+    }
+
+    [Fact]
     public void A_dialect_is_looked_for_in_each_folder_in_turn()
     {
         string[] folders = [Repository.PathOf("sequences", "benches"), Repository.PathOf("sequences", "dialects")];

@@ -5,7 +5,7 @@ using BenchRunner.Instruments.Tests.Scripts;
 
 namespace BenchRunner.Instruments.Tests.Roles;
 
-/// <summary>Voltmeter and interlock, and what connecting refuses.</summary>
+/// <summary>Voltmeter, interlock and hotplate, and what connecting refuses.</summary>
 public class OtherRolesTests
 {
     private readonly CancellationToken _cancel = TestContext.Current.CancellationToken;
@@ -84,11 +84,51 @@ public class OtherRolesTests
         await Assert.ThrowsAsync<InstrumentException>(() => interlock.EngageBleeder(_cancel));
     }
 
+    [Fact]
+    public async Task The_hotplate_heats_says_its_temperature_and_switches_off()
+    {
+        await using var instrument = ScriptedRoles.Hotplate();
+        using var plate = await ScpiHotplate.Connect(To(instrument, "hotplate"), _cancel);
+
+        await plate.Heat(125, _cancel);
+        Assert.Equal(124.7, await plate.Read(_cancel), 1e-12);
+        await plate.MakeSafe(_cancel);
+
+        Assert.Equal(
+            ["SOURce:TEMPerature:SPOint 125", "OUTPut:STATe 1", "OUTPut:STATe 0"],
+            instrument.Received.SkipWhile(l => l != "*CLS").Skip(1).Where(l => !l.Contains('?')));
+    }
+
+    [Fact]
+    public async Task A_temperature_that_the_plate_clips_is_refused_before_it_heats()
+    {
+        await using var instrument = ScriptedRoles.Hotplate();
+        using var plate = await ScpiHotplate.Connect(To(instrument, "hotplate"), _cancel);
+        instrument.Keep("SOURce:TEMPerature:SPOint", "SOURce:TEMPerature:SPOint?", "20", _ => "100");
+
+        var e = await Assert.ThrowsAsync<InstrumentException>(() => plate.Heat(125, _cancel));
+        Assert.Contains("125 was taken as 100", e.Message, StringComparison.Ordinal);
+        await Assert.ThrowsAsync<ArgumentOutOfRangeException>(() => plate.Heat(double.NaN, _cancel));
+        Assert.Equal(0, instrument.Count("OUTPut:STATe 1"));
+    }
+
+    [Fact]
+    public async Task A_heating_that_does_not_follow_is_said()
+    {
+        await using var instrument = ScriptedRoles.Hotplate();
+        using var plate = await ScpiHotplate.Connect(To(instrument, "hotplate"), _cancel);
+        instrument.On("OUTPut:STATe?", "0");
+        await Assert.ThrowsAsync<InstrumentException>(() => plate.Heat(60, _cancel));
+        instrument.On("OUTPut:STATe?", "1");
+        await Assert.ThrowsAsync<InstrumentException>(() => plate.MakeSafe(_cancel));
+    }
+
     [Theory]
     [InlineData("supply")]
     [InlineData("pulser")]
     [InlineData("scope")]
     [InlineData("interlock")]
+    [InlineData("hotplate")]
     public async Task An_instrument_of_another_kind_is_refused_with_one_clear_message(string role)
     {
         await using var instrument = ScriptedRoles.Voltmeter();
@@ -98,6 +138,7 @@ public class OtherRolesTests
             "supply" => (IDisposable)await ScpiSupply.Connect(to, _cancel),
             "pulser" => await ScpiPulser.Connect(to, _cancel),
             "scope" => await ScpiScope.Connect(to, _cancel),
+            "hotplate" => await ScpiHotplate.Connect(to, _cancel),
             _ => await ScpiInterlock.Connect(to, _cancel),
         }).Dispose());
 

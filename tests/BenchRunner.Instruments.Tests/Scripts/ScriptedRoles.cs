@@ -67,6 +67,15 @@ internal static class ScriptedRoles
         return interlock;
     }
 
+    public static ScriptedInstrument Hotplate()
+    {
+        var plate = new ScriptedInstrument("MAKER,HOTPLATE,1,1.0");
+        plate.Keep("SOURce:TEMPerature:SPOint", "SOURce:TEMPerature:SPOint?", "20");
+        plate.Keep("OUTPut:STATe", "OUTPut:STATe?", "0");
+        plate.On("MEASure:TEMPerature?", "+1.24700000E+02");
+        return plate;
+    }
+
     public static ScriptedInstrument Voltmeter(string reading = "+4.00012000E+02")
     {
         var voltmeter = new ScriptedInstrument("MAKER,VOLTMETER,1,1.0");
@@ -96,6 +105,8 @@ internal static class ScriptedRoles
         for (var c = 1; c <= 2; c++)
         {
             var channel = c;
+            scope.Keep($"INPut{c}:ATTenuation", $"INPut{c}:ATTenuation?", "1");
+            scope.On($"INPut{c}:DEGauss", _ => Task.CompletedTask);
             scope.Keep($"SENSe:VOLTage{c}:DC:RANGe:UPPer", $"SENSe:VOLTage{c}:DC:RANGe:UPPer?", "1");
             scope.Keep($"SENSe:VOLTage{c}:DC:RANGe:OFFSet", $"SENSe:VOLTage{c}:DC:RANGe:OFFSet?", "0");
             scope.On($"TRACe:PREamble? INTernal{c}", Preamble(points, channel));
@@ -104,7 +115,7 @@ internal static class ScriptedRoles
 
         scope.On("INITiate:IMMediate", _ => ScriptedInstrument.Done(() => condition = "32"));
         scope.On("ABORt", _ => ScriptedInstrument.Done(() => condition = "0"));
-        scope.On("TEST:TRIGger", _ => ScriptedInstrument.Done(() => condition = "0"));
+        scope.On("TRIGger:SEQuence:IMMediate", _ => ScriptedInstrument.Done(() => condition = "0"));
         scope.On("STATus:OPERation:CONDition?", v => v.Line(condition));
         scope.On("SENSe:SWEep:COUNt:ACTual?", "7");
         return scope;
