@@ -51,4 +51,8 @@ public sealed record ErrorEntry(int Number, string? Text, string? Detail)
             ? throw new ReplyException(ReplyFault.OutOfRange, value)
             : (int)number;
     }
+
+    /// <summary>Whether a line is a number and a quoted text, as no answer of a measurement or setting is.</summary>
+    internal static bool IsOne(ReadOnlySpan<byte> line) => line.IndexOf(",\""u8) is > 0 and var comma
+        && ReplyNumber.IsNumeric(ReplyText.Trim(line[..comma]));
 }

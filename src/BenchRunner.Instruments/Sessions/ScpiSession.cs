@@ -4,7 +4,6 @@ using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Replies;
 using BenchRunner.Instruments.Roles;
 using Polly;
-using Polly.Retry;
 
 namespace BenchRunner.Instruments.Sessions;
 
@@ -19,42 +18,27 @@ public sealed class ScpiSession : IDisposable
 {
     private readonly SemaphoreSlim _turn = new(1, 1);
     private readonly string _role;
-    private readonly LinkAddress _address;
-    private readonly SessionOptions _options;
-    private readonly TimeProvider _time;
-    private readonly IInstrumentLog _log;
-    private readonly ResiliencePipeline _connecting;
+    private readonly WireKeeper _wires;
     private readonly ResiliencePipeline _reading;
     private readonly ResiliencePipeline _settingDown;
-    private volatile ScpiWire _wire;
-    private volatile int _connections;
-    private bool _disposed;
 
-    private ScpiSession(string role, LinkAddress address, SessionOptions options, TimeProvider time, IInstrumentLog log)
+    private ScpiSession(string role, WireKeeper wires, SessionOptions options, TimeProvider time)
     {
         _role = role;
-        _address = address;
-        _options = options;
-        _time = time;
-        _log = log;
-        _connecting = Repeat(options.ConnectAttempts, options.ConnectPause, time);
-        _reading = Repeat(options.ReadAttempts, TimeSpan.Zero, time);
-        _settingDown = Repeat(options.SetDownAttempts, TimeSpan.Zero, time);
-
-        // Open fills both before it hands the session out.
-        _wire = null!;
-        Identity = null!;
+        _wires = wires;
+        _reading = Repetition.Of(options.ReadAttempts, TimeSpan.Zero, time);
+        _settingDown = Repetition.Of(options.SetDownAttempts, TimeSpan.Zero, time);
     }
 
     /// <summary>What the instrument said it is.</summary>
-    public InstrumentIdentity Identity { get; private set; }
+    public InstrumentIdentity Identity => _wires.Identity;
 
     /// <summary>The link as the bench file names it.</summary>
-    public string Link => _address.ToString();
+    public string Link => _wires.Link;
 
     /// <summary>How often the link was opened; a change says that the instrument's settings are not known any
     /// more.</summary>
-    public int Connections => _connections;
+    public int Connections => _wires.Connections;
 
     /// <summary>Connects, asks <c>*IDN?</c>, logs what the error queue holds and clears it (<c>*CLS</c>).</summary>
     /// <param name="role">The role, for messages.</param>
@@ -76,25 +60,8 @@ public sealed class ScpiSession : IDisposable
         ArgumentNullException.ThrowIfNull(options);
         ArgumentNullException.ThrowIfNull(time);
         ArgumentNullException.ThrowIfNull(log);
-        var session = new ScpiSession(role, address, options, time, log);
-        try
-        {
-            session._wire = await session.Connect(cancel);
-            session.Identity = await session._wire.Ask("*IDN?", ReplyIdentity.Parse, cancel);
-            foreach (var entry in await session._wire.ReadErrors(cancel))
-            {
-                session.Report(InstrumentEventKind.Errors, $"the error queue held {entry} at the start");
-            }
-
-            session._wire.Send("*CLS");
-            session.Report(InstrumentEventKind.Connected, $"is {session.Identity.Text}");
-            return session;
-        }
-        catch
-        {
-            session.Dispose();
-            throw;
-        }
+        var wires = await WireKeeper.Open(role, address, options, time, log, cancel);
+        return new ScpiSession(role, wires, options, time);
     }
 
     /// <summary>Asks a question that may be asked again, and reads its reply, one line.</summary>
@@ -123,7 +90,7 @@ public sealed class ScpiSession : IDisposable
         await _turn.WaitAsync(cancel);
         try
         {
-            return await (await Wire(cancel)).AskBlock(query, bound, parse, cancel);
+            return await (await _wires.Ready(cancel)).AskBlock(query, bound, parse, cancel);
         }
         finally
         {
@@ -139,7 +106,7 @@ public sealed class ScpiSession : IDisposable
         await _turn.WaitAsync(cancel);
         try
         {
-            return await (await Wire(cancel)).Probe(query, cancel);
+            return await (await _wires.Ready(cancel)).Probe(query, cancel);
         }
         finally
         {
@@ -169,7 +136,7 @@ public sealed class ScpiSession : IDisposable
 
     /// <summary>Sends one command that sets down, at once, even while another exchange waits for its reply.</summary>
     /// <exception cref="LinkException">The link is lost: what the instrument does is unknown.</exception>
-    public void SendNow(string command) => _wire.Send(command);
+    public void SendNow(string command) => _wires.Current.Send(command);
 
     /// <summary>Sends commands that set down: at once, and again over a new connection where the link was
     /// lost.</summary>
@@ -179,14 +146,14 @@ public sealed class ScpiSession : IDisposable
     public async Task<IReadOnlyList<ErrorEntry>> SetDown(IReadOnlyList<string> commands, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(commands);
-        var reached = SendAllNow(commands) ? _wire : null;
+        var reached = SendAllNow(commands) ? _wires.Current : null;
         return await _settingDown.ExecuteAsync(
             async token =>
             {
                 await _turn.WaitAsync(token);
                 try
                 {
-                    var wire = await Wire(token);
+                    var wire = await _wires.Ready(token);
                     if (!ReferenceEquals(wire, reached))
                     {
                         SendAll(wire, commands);
@@ -204,14 +171,7 @@ public sealed class ScpiSession : IDisposable
     }
 
     /// <summary>Closes the link. Sends nothing.</summary>
-    public void Dispose()
-    {
-        if (!_disposed)
-        {
-            _disposed = true;
-            _wire?.Dispose();
-        }
-    }
+    public void Dispose() => _wires.Dispose();
 
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
@@ -219,7 +179,7 @@ public sealed class ScpiSession : IDisposable
         await _turn.WaitAsync(cancel);
         try
         {
-            return await (await Wire(cancel)).Ask(query, parse, cancel);
+            return await (await _wires.Ready(cancel)).Ask(query, parse, cancel);
         }
         finally
         {
@@ -232,7 +192,7 @@ public sealed class ScpiSession : IDisposable
         await _turn.WaitAsync(cancel);
         try
         {
-            var wire = await Wire(cancel);
+            var wire = await _wires.Ready(cancel);
             await wire.Ready(cancel);
             if (permit is null)
             {
@@ -258,7 +218,7 @@ public sealed class ScpiSession : IDisposable
 
     private void OnlyFirstConnection()
     {
-        if (_connections > 1)
+        if (Connections > 1)
         {
             throw new LinkException(
                 Link, "was opened again since the instrument was identified: its state is unknown, energising is "
@@ -273,57 +233,11 @@ public sealed class ScpiSession : IDisposable
         return $"refused '{command}': {string.Join(", ", errors)}{lost}";
     }
 
-    /// <summary>The wire in use, opened again where it broke and the options allow it. Only for the holder of the
-    /// turn.</summary>
-    private async ValueTask<ScpiWire> Wire(CancellationToken cancel)
-    {
-        ObjectDisposedException.ThrowIf(_disposed, this);
-        if (_wire.Broken is not { } why)
-        {
-            return _wire;
-        }
-
-        if (!_options.Reconnect)
-        {
-            throw new LinkException(Link, "is broken; connect the bench anew", why);
-        }
-
-        _wire.Dispose();
-        var wire = await Connect(cancel);
-        _wire = wire;
-        var identity = await wire.Ask("*IDN?", ReplyIdentity.Parse, cancel);
-        if (identity.Text != Identity.Text)
-        {
-            throw wire.Break(new LinkException(Link, $"now '{identity.Text}' answers where '{Identity.Text}' did"));
-        }
-
-        Report(InstrumentEventKind.Reconnected, "opened again; the same instrument answers, its settings are unknown");
-        await wire.Ready(cancel);
-        return wire;
-    }
-
-    private async Task<ScpiWire> Connect(CancellationToken cancel)
-    {
-        var link = await _connecting.ExecuteAsync(
-            async token =>
-                await Links.Link.Open(_address, _options.ConnectWithin, _options.WriteWithin, _time, token), cancel);
-        _connections++;
-        var wire = new ScpiWire(link, _options, _time, Report);
-        if (_address.Kind == LinkKind.Serial)
-        {
-            // A serial line has no start of its own: half a command or half a reply of an earlier user may be under
-            // way.
-            wire.Terminate();
-        }
-
-        return wire;
-    }
-
     private bool SendAllNow(IReadOnlyList<string> commands)
     {
         try
         {
-            SendAll(_wire, commands);
+            SendAll(_wires.Current, commands);
             return true;
         }
         catch (LinkException)
@@ -339,26 +253,5 @@ public sealed class ScpiSession : IDisposable
         {
             wire.Send(command);
         }
-    }
-
-    private void Report(InstrumentEventKind kind, string message) =>
-        _log.Report(new InstrumentEvent(_role, Link, kind, Printable.Text(message, 1024)));
-
-    private static ResiliencePipeline Repeat(int attempts, TimeSpan pause, TimeProvider time)
-    {
-        ArgumentOutOfRangeException.ThrowIfLessThan(attempts, 1);
-        var builder = new ResiliencePipelineBuilder { TimeProvider = time };
-        if (attempts > 1)
-        {
-            builder.AddRetry(new RetryStrategyOptions
-            {
-                MaxRetryAttempts = attempts - 1,
-                Delay = pause,
-                BackoffType = DelayBackoffType.Exponential,
-                ShouldHandle = new PredicateBuilder().Handle<LinkException>(),
-            });
-        }
-
-        return builder.Build();
     }
 }

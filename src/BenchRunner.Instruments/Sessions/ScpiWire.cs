@@ -13,29 +13,25 @@ namespace BenchRunner.Instruments.Sessions;
 /// before a question goes out and taken back only when its reply, and nothing after it, was read: whatever ends an
 /// exchange in between, time-out, cancellation or nonsense, leaves it standing. (3) With a doubt standing nothing is
 /// asked before a resynchronisation: the late reply would answer the next question. (4) A broken wire stays broken,
-/// with
-/// its first reason.
+/// with its first reason.
 /// </remarks>
 internal sealed class ScpiWire : IDisposable
 {
     /// <summary>The question for the oldest entry of the error queue.</summary>
     public const string ErrorQuery = "SYSTem:ERRor?";
 
-    private const int LongestMessage = 1024;
     private const int MostErrors = 64;
     private const string OpeningTheLine = "opening the line";
 
     private readonly ILink _link;
     private readonly SessionOptions _options;
     private readonly Action<InstrumentEventKind, string> _report;
+    private readonly WireTrust _trust;
     private readonly ReplyStream _replies;
     private readonly Deadline _deadline;
     private readonly Resynchronisation _resynchronisation;
     private readonly Action<int> _extend;
-    private readonly byte[] _sent = new byte[LongestMessage];
-    private int _sentLength;
-    private string? _doubt;
-    private LinkException? _broken;
+    private readonly ProgramMessage _sent = new();
     private volatile bool _errorsUnread;
 
     /// <summary>Takes over a link that was just opened.</summary>
@@ -46,6 +42,7 @@ internal sealed class ScpiWire : IDisposable
     public ScpiWire(ILink link, SessionOptions options, TimeProvider time, Action<InstrumentEventKind, string> report)
     {
         (_link, _options, _report) = (link, options, report);
+        _trust = new WireTrust(link, options.ReplyWithin, report);
         _replies = new ReplyStream(link);
         _deadline = new Deadline(time);
         _resynchronisation = new Resynchronisation(link, _replies, _deadline, options, time);
@@ -53,14 +50,14 @@ internal sealed class ScpiWire : IDisposable
     }
 
     /// <summary>Why the wire is of no use any more; null while it is.</summary>
-    public LinkException? Broken => Volatile.Read(ref _broken);
+    public LinkException? Broken => _trust.Broken;
 
     /// <summary>Sends one message that has no reply. From any thread; never waits for an exchange.</summary>
     /// <exception cref="LinkException">The link is lost; the wire is broken.</exception>
     public void Send(string command)
     {
-        Span<byte> message = stackalloc byte[LongestMessage];
-        var length = Encode(command, message);
+        Span<byte> message = stackalloc byte[ProgramMessage.Longest];
+        var length = ProgramMessage.Encode(command, message);
         _errorsUnread = true;
         Write(message[..length]);
     }
@@ -68,7 +65,7 @@ internal sealed class ScpiWire : IDisposable
     /// <summary>Ends whatever half message an earlier user left, and notes that its reply may come.</summary>
     public void Terminate()
     {
-        _doubt = OpeningTheLine;
+        _trust.Note(OpeningTheLine);
         Write("\n"u8);
     }
 
@@ -85,7 +82,7 @@ internal sealed class ScpiWire : IDisposable
     public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
     {
         await Ready(cancel);
-        _doubt = query;
+        _trust.Note(query);
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
@@ -98,15 +95,16 @@ internal sealed class ScpiWire : IDisposable
         catch (Exception e)
         {
             // With its link lost nothing more comes; inside a block no end could be told from data: either way only a
-            // new
-            // connection helps, and what is missing says more than how the link ended.
+            // new connection helps, and what is missing says more than how the link ended.
             if (e is LinkException || (_replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
             {
-                Break(new LinkException(_link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
+                _trust.Break(new LinkException(
+                    _link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
             }
 
-            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_sent.AsSpan(0, _sentLength - 1));
-            ExceptionDispatchInfo.Throw(Failure(echo ? new ReplyException(ReplyFault.Echo, query) : e, query, cancel));
+            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_sent.Text);
+            var why = echo ? new ReplyException(ReplyFault.Echo, query) : e;
+            ExceptionDispatchInfo.Throw(_trust.Failure(why, query, cancel));
             throw;
         }
         finally
@@ -122,21 +120,21 @@ internal sealed class ScpiWire : IDisposable
     public async ValueTask<(string? Answer, ErrorEntry Error)> Probe(string query, CancellationToken cancel)
     {
         await Ready(cancel);
-        _doubt = query;
+        _trust.Note(query);
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
             Put(query);
             Put(ErrorQuery);
             var line = await _replies.ReadLine(token);
-            var answer = IsErrorEntry(line.Span) ? null : Encoding.UTF8.GetString(line.Span);
+            var answer = ErrorEntry.IsOne(line.Span) ? null : Encoding.UTF8.GetString(line.Span);
             var error = ErrorEntry.Parse((answer is null ? line : await _replies.ReadLine(token)).Span);
             Finish(query);
             return (answer, error);
         }
         catch (Exception e)
         {
-            ExceptionDispatchInfo.Throw(Failure(e, query, cancel));
+            ExceptionDispatchInfo.Throw(_trust.Failure(e, query, cancel));
             throw;
         }
         finally
@@ -149,7 +147,7 @@ internal sealed class ScpiWire : IDisposable
     /// <exception cref="LinkException">It does not get empty, or the link failed.</exception>
     public async ValueTask<IReadOnlyList<ErrorEntry>> ReadErrors(CancellationToken cancel)
     {
-        if (_doubt is not null)
+        if (_trust.WhyNot is not null)
         {
             await Resynchronise(cancel);
         }
@@ -176,12 +174,12 @@ internal sealed class ScpiWire : IDisposable
             throw new LinkException(_link.Name, $"not used any more since: {why.Message}", why);
         }
 
-        if (_doubt is null && await HasUnasked(cancel))
+        if (_trust.WhyNot is null && await HasUnasked(cancel))
         {
-            Doubt("something came that nothing had asked for");
+            _trust.Doubt("something came that nothing had asked for");
         }
 
-        if (_doubt is not null || _errorsUnread)
+        if (_trust.WhyNot is not null || _errorsUnread)
         {
             foreach (var entry in await ReadErrors(cancel))
             {
@@ -191,16 +189,7 @@ internal sealed class ScpiWire : IDisposable
     }
 
     /// <summary>Marks the wire as of no use and closes its link; the first reason stays.</summary>
-    public LinkException Break(LinkException why)
-    {
-        if (Interlocked.CompareExchange(ref _broken, why, null) is null)
-        {
-            _report(InstrumentEventKind.Broken, Printable.Text(why.Message));
-            _link.Dispose();
-        }
-
-        return why;
-    }
+    public LinkException Break(LinkException why) => _trust.Break(why);
 
     /// <inheritdoc/>
     public void Dispose()
@@ -212,18 +201,18 @@ internal sealed class ScpiWire : IDisposable
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<T> Exchange<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
-        _doubt = query;
+        _trust.Note(query);
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
             Put(query);
-            var value = parse(Reply(await _replies.ReadLine(token)));
+            var value = parse(_sent.Reply(await _replies.ReadLine(token)));
             Finish(query);
             return value;
         }
         catch (Exception e)
         {
-            ExceptionDispatchInfo.Throw(Failure(e, query, cancel));
+            ExceptionDispatchInfo.Throw(_trust.Failure(e, query, cancel));
             throw;
         }
         finally
@@ -246,17 +235,17 @@ internal sealed class ScpiWire : IDisposable
             (entries ??= []).Add(entry);
         }
 
-        throw Break(new LinkException(
+        throw _trust.Break(new LinkException(
             _link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
     }
 
     private async ValueTask Resynchronise(CancellationToken cancel)
     {
-        var why = _doubt;
+        var why = _trust.WhyNot;
         try
         {
             var dropped = await _resynchronisation.Run(Put, cancel);
-            _doubt = null;
+            _trust.Restore();
             if (dropped > 0 || why != OpeningTheLine)
             {
                 _report(InstrumentEventKind.Resynchronised, $"after '{why}'; {dropped} bytes that came late were "
@@ -265,19 +254,15 @@ internal sealed class ScpiWire : IDisposable
         }
         catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
         {
-            throw Break(new LinkException(_link.Name, $"gives no sign of life after '{why}'", e));
+            throw _trust.Break(new LinkException(_link.Name, $"gives no sign of life after '{why}'", e));
         }
         catch (Exception e) when (e is ReplyException or LinkException)
         {
-            throw Break(new LinkException(_link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
+            throw _trust.Break(new LinkException(_link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
         }
     }
 
-    private void Put(string query)
-    {
-        _sentLength = Encode(query, _sent);
-        Write(_sent.AsSpan(0, _sentLength));
-    }
+    private void Put(string query) => Write(_sent.Write(query));
 
     private void Write(ReadOnlySpan<byte> message)
     {
@@ -288,18 +273,9 @@ internal sealed class ScpiWire : IDisposable
         catch (LinkException e)
         {
             // Part of the message may be out: whatever went next would be joined to it.
-            throw Break(e);
+            throw _trust.Break(e);
         }
     }
-
-    /// <summary>A reply, refused where it is the question itself.</summary>
-    private ReadOnlySpan<byte> Reply(ReadOnlyMemory<byte> line) =>
-        line.Span.SequenceEqual(_sent.AsSpan(0, _sentLength - 1))
-            ? throw new ReplyException(ReplyFault.Echo, line.Span) : line.Span;
-
-    /// <summary>Whether a line is a number and a quoted text, as no answer of a measurement or setting is.</summary>
-    private static bool IsErrorEntry(ReadOnlySpan<byte> line) => line.IndexOf(",\""u8) is > 0 and var comma
-        && ReplyNumber.IsNumeric(ReplyText.Trim(line[..comma]));
 
     private void Extend(int length) =>
         _deadline.Extend(_options.ReplyWithin + TimeSpan.FromSeconds(length / _options.BlockRate));
@@ -307,18 +283,11 @@ internal sealed class ScpiWire : IDisposable
     /// <summary>Takes the doubt back, unless more came than was asked for.</summary>
     private void Finish(string query)
     {
-        _doubt = null;
+        _trust.Restore();
         if (_replies.HoldsReply)
         {
-            Doubt($"more than one reply to '{query}'");
+            _trust.Doubt($"more than one reply to '{query}'");
         }
-    }
-
-    /// <summary>Notes that what comes next may belong to something asked before.</summary>
-    private void Doubt(string why)
-    {
-        _doubt = why;
-        _report(InstrumentEventKind.Doubt, why);
     }
 
     private async ValueTask<bool> HasUnasked(CancellationToken cancel)
@@ -329,47 +298,7 @@ internal sealed class ScpiWire : IDisposable
         }
         catch (LinkException e)
         {
-            throw Break(e);
+            throw _trust.Break(e);
         }
-    }
-
-    private Exception Failure(Exception e, string query, CancellationToken cancel)
-    {
-        switch (e)
-        {
-            case OperationCanceledException when cancel.IsCancellationRequested:
-                _report(InstrumentEventKind.Doubt, $"cancelled while the reply to '{query}' was due");
-                return e;
-            case OperationCanceledException:
-                _report(InstrumentEventKind.Doubt, $"no whole reply to '{query}' in time");
-                return new LinkException(
-                    _link.Name, $"no whole reply to '{query}' within {_options.ReplyWithin.TotalSeconds:0.###} s", e);
-            case ReplyException reply:
-                _report(InstrumentEventKind.Doubt, $"reply to '{query}': {e.Message}");
-                var failure = new LinkException(
-                    _link.Name, $"reply to '{query}' is {e.Message}{Advice(reply.Fault)}", e);
-                return reply.Fault == ReplyFault.TooLong ? Break(failure) : failure;
-            case LinkException lost:
-                Break(lost);
-                return Broken!;
-            default:
-                return e;
-        }
-    }
-
-    private static string Advice(ReplyFault fault) =>
-        fault == ReplyFault.Echo ? "; switch the instrument's echo off" : string.Empty;
-
-    private static int Encode(string command, Span<byte> message)
-    {
-        if (command.Length is 0 or >= LongestMessage || command.AsSpan().ContainsAnyExceptInRange(' ', '~'))
-        {
-            throw new ArgumentException(
-                $"'{Printable.Text(command)}' is no program message of printable ASCII on one line");
-        }
-
-        var length = Encoding.ASCII.GetBytes(command, message);
-        message[length] = (byte)'\n';
-        return length + 1;
     }
 }
