@@ -20,6 +20,8 @@ public static class Program
             --bits 8|12           converter of the scope (12)
             --channels A,B,...    channels on the scope's inputs 1, 2, ...
             --interlock serial|tcp  how the interlock is reached (serial where there are pseudo-terminals)
+            --hotplate            the devices lie on a hotplate
+            --ambient DEGC        temperature of the room (23)
             --fault NAME[@WHEN]   a fault; may repeat; WHEN is fire:N, volts:V, seconds:S or block:N
             --write-bench FILE    writes a bench file that reaches the instruments
             --ends-with-input     ends when standard input ends, and ignores a terminal's interrupts

@@ -16,23 +16,24 @@ public sealed class Bench
     private readonly long _start;
     private readonly Bus _bus = new();
     private readonly int _seed;
+    private readonly double _ambient;
     private Device _device;
 
     /// <summary>Makes a bench with a device in its socket, the enclosure closed, the bank empty.</summary>
-    /// <param name="values">Its component values.</param>
-    /// <param name="serial">The device.</param>
-    /// <param name="seed">The population and the noise.</param>
+    /// <param name="setup">What it is made of.</param>
     /// <param name="faults">What goes wrong.</param>
     /// <param name="time">The clock.</param>
-    public Bench(BenchValues values, string serial, int seed, FaultPlan faults, TimeProvider time)
+    public Bench(BenchSetup setup, FaultPlan faults, TimeProvider time)
     {
-        ArgumentNullException.ThrowIfNull(values);
+        ArgumentNullException.ThrowIfNull(setup);
         ArgumentNullException.ThrowIfNull(faults);
         ArgumentNullException.ThrowIfNull(time);
-        (Values, Faults, _seed, _time) = (values, faults, seed, time);
+        (Values, Faults, _seed, _time) = (setup.Values, faults, setup.Seed, time);
         _start = time.GetTimestamp();
-        Supply = new SupplyStage { Limit = values.SupplyLimit };
-        _device = DevicePopulation.Draw(serial, seed);
+        Supply = new SupplyStage { Limit = setup.Values.SupplyLimit };
+        Plate = setup.Hotplate ? new Plate(setup.Values.PlateCapacity, setup.Ambient) : null;
+        _ambient = setup.Ambient;
+        _device = DevicePopulation.Draw(setup.Device, setup.Seed);
         Begun(Faults.Reach(MomentKind.Start, 0));
         Begun(Faults.Reach(MomentKind.Volts, 0));
     }
@@ -54,6 +55,16 @@ public sealed class Bench
 
     /// <summary>The supply's power stage.</summary>
     public SupplyStage Supply { get; }
+
+    /// <summary>The hotplate; null: none.</summary>
+    public Plate? Plate { get; }
+
+    /// <summary>Temperature of the devices, degC: that of the plate, or of the room. No train warms them.</summary>
+    /// <remarks>In steps of 0.5 K, so that a plate that has all but settled gives the same trains.</remarks>
+    public double DeviceTemperature => Math.Round(2 * (Plate?.Temperature ?? _ambient)) / 2;
+
+    /// <summary>Level at which the pulser holds both gates off, V.</summary>
+    public double GateOff { get; set; }
 
     /// <summary>Seed of population and noise.</summary>
     public int Seed => _seed;
@@ -80,7 +91,7 @@ public sealed class Bench
     public bool Slewing => Supply.Output && _bus.Source != Supply.Voltage;
 
     /// <summary>The half bridge with the device in its socket.</summary>
-    public CircuitParameters HalfBridge => _device.On(Values.Parts);
+    public CircuitParameters HalfBridge => _device.At(DeviceTemperature).On(Values.Parts);
 
     /// <summary>Brings everything up to the clock.</summary>
     public void Advance()
@@ -97,7 +108,9 @@ public sealed class Bench
 
             double span = Math.Max(stop - Now, 0);
             double moved = _bus.Advance(Circuit(), Supply.Voltage, Values.Slew, span, threshold);
-            Now = moved < span ? Now + moved : Math.Max(stop, Now);
+            double next = moved < span ? Now + moved : Math.Max(stop, Now);
+            Plate?.Advance(next - Now);
+            Now = next;
             Happen();
         }
 

@@ -30,6 +30,9 @@ public sealed record BenchValues(double Pace)
     /// <summary>Output resistance of the supply, Ohm.</summary>
     public double SupplyResistance => 20 / Pace;
 
+    /// <summary>Heat capacity of the hotplate, J/K.</summary>
+    public double PlateCapacity => 800 / Pace;
+
     /// <summary>Slew rate of the supply, V/s.</summary>
     public double Slew => 1500 * Pace;
 }

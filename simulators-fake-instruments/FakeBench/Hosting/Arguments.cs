@@ -20,9 +20,9 @@ public static class Arguments
         for (int i = 0; i < arguments.Count; i++)
         {
             string name = arguments[i];
-            if (name == "--ends-with-input")
+            if (Flag(options, name) is { } flagged)
             {
-                options = options with { EndsWithInput = true };
+                options = flagged;
                 continue;
             }
 
@@ -42,11 +42,19 @@ public static class Arguments
         return options with { Faults = faults };
     }
 
+    private static ServeOptions? Flag(ServeOptions options, string name) => name switch
+    {
+        "--ends-with-input" => options with { EndsWithInput = true },
+        "--hotplate" => options with { Hotplate = true },
+        _ => null,
+    };
+
     private static ServeOptions Set(ServeOptions options, string name, string value) => name switch
     {
         "--device" => options with { Device = Serial(value) },
         "--seed" => options with { Seed = (int)Number(name, value, int.MinValue, int.MaxValue) },
         "--pace" => options with { Pace = Number(name, value, 1, 5) },
+        "--ambient" => options with { Ambient = Number(name, value, -20, 60) },
         "--bits" => options with
         {
             Bits = value is "8" or "12"

@@ -4,8 +4,7 @@ using FakeBench.Instruments;
 
 namespace FakeBench.Hosting;
 
-/// <summary>A whole bench on its links: supply, pulser, scope, voltmeter over TCP, the interlock as a serial device
-/// where there are any.</summary>
+/// <summary>A whole bench on its links: over TCP, but the interlock as a serial device where there are any.</summary>
 public sealed class BenchServer : IAsyncDisposable
 {
     private const int MostClients = 4;
@@ -18,17 +17,15 @@ public sealed class BenchServer : IAsyncDisposable
     {
         ArgumentNullException.ThrowIfNull(options);
         var faults = new FaultPlan(options.Faults);
-        Bench = new Bench(new BenchValues(options.Pace), options.Device, options.Seed, faults, time);
+        Bench = new Bench(options.Setup, faults, time);
         int clients = faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
         var panels = new FrontPanels(Bench, options.Channels, options.Bits);
-        foreach (Instrument panel in (Instrument[])[panels.Supply, panels.Pulser, panels.Scope, panels.Voltmeter])
+        foreach (Instrument panel in panels.All)
         {
-            _hosts.Add((panel.Role, new TcpHost(panel, clients, time)));
+            _hosts.Add((panel.Role, panel == panels.Interlock && options.SerialInterlock
+                ? new SerialHost(panel)
+                : new TcpHost(panel, clients, time)));
         }
-
-        _hosts.Add((panels.Interlock.Role, options.SerialInterlock
-            ? new SerialHost(panels.Interlock)
-            : new TcpHost(panels.Interlock, clients, time)));
     }
 
     /// <summary>The bench behind the instruments.</summary>

@@ -1,4 +1,5 @@
 using FakeBench.Faults;
+using FakeBench.Fixtures;
 
 namespace FakeBench.Hosting;
 
@@ -27,9 +28,23 @@ public sealed record ServeOptions
     /// <summary>Whether the interlock is a serial device; otherwise it is served over TCP like the others.</summary>
     public bool SerialInterlock { get; init; } = PseudoTerminal.IsSupported;
 
+    /// <summary>Whether the devices lie on a hotplate.</summary>
+    public bool Hotplate { get; init; }
+
+    /// <summary>Temperature of the room, degC.</summary>
+    public double Ambient { get; init; } = 23;
+
     /// <summary>Bench file to write; null: none.</summary>
     public string? WriteBench { get; init; }
 
     /// <summary>Whether the end of standard input ends the program; it then ignores a terminal's interrupts.</summary>
     public bool EndsWithInput { get; init; }
+
+    /// <summary>What the bench is made of.</summary>
+    public BenchSetup Setup => new(new BenchValues(Pace), Device)
+    {
+        Seed = Seed,
+        Hotplate = Hotplate,
+        Ambient = Ambient,
+    };
 }

@@ -2,7 +2,7 @@ using FakeBench.Fixtures;
 
 namespace FakeBench.Instruments;
 
-/// <summary>The five instruments of a bench.</summary>
+/// <summary>The instruments of a bench.</summary>
 public sealed class FrontPanels
 {
     private readonly TrainCache _trains = new();
@@ -13,12 +13,18 @@ public sealed class FrontPanels
     /// <param name="bits">Bits of the scope's converter, 8 or 12.</param>
     public FrontPanels(Bench bench, IReadOnlyList<string> channels, int bits)
     {
+        ArgumentNullException.ThrowIfNull(bench);
         Supply = new Supply(bench);
         Scope = new Scope(bench, channels, bits);
         Pulser = new Pulser(bench, Scope, _trains);
         Voltmeter = new Voltmeter(bench);
         Interlock = new Interlock(bench);
+        Hotplate = bench.Plate is { } plate ? new Hotplate(bench, plate) : null;
     }
+
+    /// <summary>All of them.</summary>
+    public IReadOnlyList<Instrument> All =>
+        [Supply, Pulser, Scope, Voltmeter, Interlock, .. Hotplate is { } plate ? (Instrument[])[plate] : []];
 
     /// <summary>The supply.</summary>
     public Supply Supply { get; }
@@ -34,4 +40,7 @@ public sealed class FrontPanels
 
     /// <summary>The interlock controller.</summary>
     public Interlock Interlock { get; }
+
+    /// <summary>The hotplate; null: the bench has none.</summary>
+    public Hotplate? Hotplate { get; }
 }

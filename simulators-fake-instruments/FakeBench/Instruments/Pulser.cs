@@ -22,7 +22,6 @@ public sealed class Pulser : Instrument
     private double _gap;
     private double _second;
     private double _on;
-    private double _off;
     private bool _output;
     private bool _armed;
     private long _count;
@@ -44,7 +43,10 @@ public sealed class Pulser : Instrument
         commands.Number(
             "[SOURce:]VOLTage[:LEVel][:IMMediate]:HIGH", High, (_, on) => Change(() => _on = on), _ => _on);
         commands.Number(
-            "[SOURce:]VOLTage[:LEVel][:IMMediate]:LOW", Low, (_, off) => Change(() => _off = off), _ => _off);
+            "[SOURce:]VOLTage[:LEVel][:IMMediate]:LOW",
+            Low,
+            (_, off) => Change(() => Bench.GateOff = off),
+            _ => Bench.GateOff);
         commands.Switch("OUTPut[:STATe]", on => Change(() => _output = on), () => _output);
         commands.Event("INITiate[:IMMediate][:ALL]", _ => Arm());
         commands.Event("TRIGger[:SEQuence][:IMMediate]", _ => Fire());
@@ -52,7 +54,7 @@ public sealed class Pulser : Instrument
         commands.Ask("[SOURce:]PULSe:COUNt?", _ => Numbers.Nr1(_count));
     }
 
-    private PulseTrain Train => new(_first, _gap, _second, _on, _off, Bench.BankVoltage);
+    private PulseTrain Train => new(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage);
 
     /// <inheritdoc/>
     protected override void Refresh()
@@ -66,7 +68,7 @@ public sealed class Pulser : Instrument
 
     /// <inheritdoc/>
     protected override void Reset() =>
-        (_first, _gap, _second, _on, _off, _output, _armed) =
+        (_first, _gap, _second, _on, Bench.GateOff, _output, _armed) =
             (Width.Default, Width.Default, Width.Default, High.Default, Low.Default, false, false);
 
     /// <inheritdoc/>

@@ -21,6 +21,7 @@ public sealed class Scope : Instrument
 
     private static readonly NumericRange Span = new(0.01, 10_000, 10);
     private static readonly NumericRange Offset = new(-10_000, 10_000, 0);
+    private static readonly NumericRange Attenuation = new(1e-3, 1e4, 1);
     private static readonly NumericRange Level = new(-10_000, 10_000, 0);
     private static readonly NumericRange Interval = new(0.1e-9, 1e-6, 1e-9, "S");
     private static readonly NumericRange Points = new(16, MostPoints, 10_000);
@@ -34,6 +35,7 @@ public sealed class Scope : Instrument
     private ScopeRecord? _record;
     private double _completeAt;
     private long _count;
+    private long _immediate;
     private int _blocks;
 
     /// <summary>Makes a scope.</summary>
@@ -47,6 +49,7 @@ public sealed class Scope : Instrument
         _bits = bits;
         _settings = Defaults();
         AddInputs(string.Join('|', Enumerable.Range(1, channels.Count)));
+        AddProbes(string.Join('|', Enumerable.Range(1, channels.Count)));
         AddTimeBase();
         AddTrigger();
         AddReadout();
@@ -95,9 +98,7 @@ public sealed class Scope : Instrument
         var key = new CaptureKey(Bench.Seed, Bench.Serial, fire);
         double shift = key.Jitter(BenchProbes.TriggerJitter) - remainder;
         bool overdriven = Bench.Faults.Take(FaultCatalogue.ClippedRange);
-        _record = new ScopeRecord(settings, part, _probes, key, shift, _bits, overdriven);
-        _record.Prepare();
-        _count++;
+        Keep(new ScopeRecord(settings, part, _probes, key, shift, _bits, overdriven));
     }
 
     /// <inheritdoc/>
@@ -137,7 +138,7 @@ public sealed class Scope : Instrument
         1,
         Level.Default,
         true,
-        [.. _probes.Select(_ => new InputSettings(Span.Default, Offset.Default))]);
+        [.. _probes.Select(p => new InputSettings(Span.Default, Offset.Default, p.Attenuation))]);
 
     private void AddInputs(string inputs)
     {
@@ -152,6 +153,20 @@ public sealed class Scope : Instrument
             Offset,
             (call, offset) => SetInput(call.Suffix, s => s with { Offset = offset }),
             call => _settings.Inputs[call.Suffix - 1].Offset);
+    }
+
+    private void AddProbes(string inputs)
+    {
+        for (int i = 1; i <= _probes.Length; i++)
+        {
+            Scpi.Commands.Number(
+                $"INPut<{i}>:ATTenuation",
+                Attenuation with { Default = _probes[i - 1].Attenuation },
+                (call, told) => SetInput(call.Suffix, s => s with { Attenuation = told }),
+                call => _settings.Inputs[call.Suffix - 1].Attenuation);
+        }
+
+        Scpi.Commands.Event($"INPut<{inputs}>:DEGauss", _ => { }); // no probe holds any
     }
 
     private void SetInput(int input, Func<InputSettings, InputSettings> change)
@@ -199,6 +214,7 @@ public sealed class Scope : Instrument
             call => _settings = _settings with { Rising = call.Choice(0, "POSitive", "NEGative") == "POSitive" });
         Scpi.Commands.Ask("TRIGger[:SEQuence]:SLOPe?", _ => _settings.Rising ? "POS" : "NEG");
         Scpi.Commands.Event("INITiate[:IMMediate][:ALL]", _ => Arm());
+        Scpi.Commands.Event("TRIGger[:SEQuence][:IMMediate]", _ => TriggerNow());
         Scpi.Commands.Event("ABORt", _ => _waiting = null);
     }
 
@@ -225,6 +241,30 @@ public sealed class Scope : Instrument
         }
 
         _waiting = _settings;
+    }
+
+    // Without a train: both gates at their off level, the bus as it stands.
+    private void TriggerNow()
+    {
+        if (_waiting is not { } settings)
+        {
+            throw new ScpiException(-211, "not armed");
+        }
+
+        _waiting = null;
+        _completeAt = Bench.Now + (settings.Points * settings.Interval);
+        TrainTrajectory rest = HalfBridge.AtRest(
+            Bench.HalfBridge, Bench.BankVoltage, Bench.GateOff, -settings.Pretrigger, settings.Interval,
+            settings.Points);
+        var key = new CaptureKey(Bench.Seed, Bench.Serial, -++_immediate);
+        Keep(new ScopeRecord(settings, rest, _probes, key, 0, _bits, overdriven: false));
+    }
+
+    private void Keep(ScopeRecord record)
+    {
+        _record = record;
+        _record.Prepare();
+        _count++;
     }
 
     private long Count() => Bench.Now < _completeAt ? _count - 1 : _count;

@@ -35,7 +35,8 @@ public sealed class ScopeRecord
             InputSettings set = settings.Inputs[i];
             var converter = new Digitiser(bits, overdriven ? set.Span / 2 : set.Span, set.Offset);
             _codes[i] = new Lazy<short[]>(
-                () => Recorder.Record(train, probes[input], converter, key.Noise(input + 1), shift));
+                () => Recorder.Record(
+                    train, probes[input].ShownBy(set.Attenuation), converter, key.Noise(input + 1), shift));
         }
     }
 

@@ -69,6 +69,35 @@ public static class HalfBridge
             solver.Accepted);
     }
 
+    /// <summary>Samples of the half bridge at rest: no train, both gates held off.</summary>
+    /// <param name="parts">The circuit.</param>
+    /// <param name="busVoltage">Voltage of the bank, V.</param>
+    /// <param name="gateOff">Driver voltage of both places, V.</param>
+    /// <param name="start">Time of the first sample, s.</param>
+    /// <param name="interval">Sample interval, s; above 0.</param>
+    /// <param name="points">Samples of each signal; above 0.</param>
+    public static TrainTrajectory AtRest(
+        CircuitParameters parts, double busVoltage, double gateOff, double start, double interval, int points)
+    {
+        ArgumentNullException.ThrowIfNull(parts);
+        ArgumentOutOfRangeException.ThrowIfNegativeOrZero(interval);
+        ArgumentOutOfRangeException.ThrowIfNegativeOrZero(points);
+        var equations = new BridgeEquations(parts, busVoltage, gateOff) { Drive = gateOff };
+        double[] state = equations.Rest(busVoltage, gateOff);
+        var values = new double[Enum.GetValues<Signal>().Length];
+        equations.Observe(0, state, values);
+        double[][] signals = [.. values.Select(value =>
+        {
+            var row = new double[points];
+            Array.Fill(row, value);
+            return row;
+        })];
+        var end = new EndState(
+            0, busVoltage, 0, values[(int)Signal.IdLow], state[BridgeState.VLow], state[BridgeState.VHigh],
+            parts.Low.IsShorted, parts.High.IsShorted, LowDied: false);
+        return new TrainTrajectory(start, interval, signals, end, 0);
+    }
+
     private static EndState EndOf(CircuitParameters parts, BridgeEquations equations, Rodas4 solver, Peaks peaks,
         bool died)
     {

@@ -21,6 +21,11 @@ public sealed record Device(
     /// <summary>The device after its low place has died in a train: a short from now on.</summary>
     public Device AfterDeath() => this with { Low = Low.Shorted() };
 
+    /// <summary>The device at a temperature, degC.</summary>
+    public Device At(double celsius) => celsius <= ThermalDrift.Nominal
+        ? this
+        : this with { Low = ThermalDrift.At(Low, celsius), High = ThermalDrift.At(High, celsius) };
+
     /// <summary>The circuit with this device in both places of a bench.</summary>
     public CircuitParameters On(BenchParts bench) => new(bench, Low, High);
 }

@@ -5,7 +5,7 @@ namespace FakeBench.Probes;
 /// <summary>All that the chance in one capture depends on: equal keys, equal noise and jitter.</summary>
 /// <param name="Seed">Seed of the bench.</param>
 /// <param name="Serial">Device in the socket.</param>
-/// <param name="Fire">Count of fires since the bench started.</param>
+/// <param name="Fire">Count of fires since the bench started; negative: of records taken without a train.</param>
 public readonly record struct CaptureKey(int Seed, string Serial, long Fire)
 {
     private const long JitterStream = -1;

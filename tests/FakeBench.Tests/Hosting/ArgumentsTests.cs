@@ -11,11 +11,12 @@ public sealed class ArgumentsTests
         ServeOptions options = Arguments.Parse(
             ["--device", "W1200-0003", "--seed", "7", "--pace", "2.5", "--fault", "late-reply", "--fault",
                 "stale-record@fire:9", "--channels", "vgs_low,id_low", "--ends-with-input", "--bits", "8",
-                "--interlock", "tcp"]);
+                "--interlock", "tcp", "--hotplate", "--ambient", "30"]);
         Assert.Equal(("W1200-0003", 7, 2.5, 8), (options.Device, options.Seed, options.Pace, options.Bits));
         Assert.Equal(["vgs_low", "id_low"], options.Channels);
         Assert.Equal(new Fault("stale-record", new Moment(MomentKind.Fire, 9)), options.Faults[1]);
         Assert.True(options.EndsWithInput);
+        Assert.Equal((true, 30), (options.Hotplate, options.Ambient));
         Assert.False(options.SerialInterlock);
     }
 
@@ -24,6 +25,7 @@ public sealed class ArgumentsTests
     [InlineData("--pace", "fast")]
     [InlineData("--seed", "x")]
     [InlineData("--bits", "10")]
+    [InlineData("--ambient", "hot")]
     [InlineData("--device", "no spaces")]
     [InlineData("--channels", "vgs_low,what")]
     [InlineData("--channels", "vgs_low,vgs_low")]

@@ -154,6 +154,69 @@ public sealed class ScopeTests
         Assert.Equal("2", TestBench.Ask(bench.Supply, "STAT:QUES:COND?"));
     }
 
+    [Fact]
+    public void An_attenuation_is_at_first_the_probes_own_and_can_be_set_and_asked_back()
+    {
+        TestBench bench = new();
+        Assert.Equal(
+            "1.0E+01;1.0E+02;1.0E+00",
+            TestBench.Ask(bench.Scope, "INPut1:ATTenuation?;:INPut2:ATTenuation?;:INPut3:ATTenuation?"));
+        TestBench.Say(bench.Scope, "INPut2:ATTenuation 10");
+        Assert.Equal("1.0E+01", TestBench.Ask(bench.Scope, "INP2:ATT?"));
+        TestBench.Say(bench.Scope, "*RST");
+        Assert.Equal("1.0E+02", TestBench.Ask(bench.Scope, "INP2:ATT?"));
+        TestBench.Refused(bench.Scope, "INP5:ATT 1", -114);
+        TestBench.Refused(bench.Scope, "INP2:ATT 0", -222);
+    }
+
+    [Fact]
+    public void A_wrong_attenuation_scales_what_is_recorded()
+    {
+        TestBench bench = Fired();
+        double right = bench.Values(2)[..90].Average();
+        TestBench.Say(bench.Scope, "INP2:ATT 50");
+        bench.Fire();
+
+        Assert.Equal(0.5 * right, bench.Values(2)[..90].Average(), 0.3);
+    }
+
+    [Fact]
+    public void Triggered_at_once_it_records_the_bench_at_rest_and_no_train_is_fired()
+    {
+        TestBench bench = new();
+        bench.Configure();
+        TestBench.Say(bench.Scope, "INIT");
+        TestBench.Say(bench.Scope, "TRIGger:SEQuence:IMMediate");
+        Assert.Equal("8;0", TestBench.Ask(bench.Scope, "STAT:OPER:COND?;:SWE:COUN:ACT?"));
+        bench.Wait(1e-3);
+        Assert.Equal("0;1", TestBench.Ask(bench.Scope, "STAT:OPER:COND?;:SWE:COUN:ACT?"));
+        Assert.Equal("0", TestBench.Ask(bench.Pulser, "PULS:COUN?"));
+
+        // The gate's off level, then the probes' own offsets: 0.12 V, 0.06 A, 0.2 V.
+        Assert.Equal(-3.99, bench.Values(1).Average(), 0.01);
+        Assert.Equal(0.12, bench.Values(2).Average(), 0.05);
+        Assert.Equal(0.06, bench.Values(3).Average(), 0.005);
+        Assert.Equal(0.2, bench.Values(4).Average(), 0.05);
+        Assert.Equal(2000, bench.Preamble(1)[0]);
+    }
+
+    [Fact]
+    public void Triggered_at_once_it_shows_the_bus_as_it_stands_and_each_record_has_noise_of_its_own()
+    {
+        TestBench bench = new();
+        bench.Charge(400);
+        bench.Configure();
+        TestBench.Say(bench.Scope, "INIT;:TRIG");
+        bench.Wait(1e-3);
+        short[] first = bench.Codes(2);
+        Assert.Equal(400, bench.Values(2).Average(), 1.0);
+        TestBench.Say(bench.Scope, "INIT;:TRIG");
+        bench.Wait(1e-3);
+
+        Assert.NotEqual(first, bench.Codes(2));
+        TestBench.Refused(bench.Scope, "TRIG", -211);
+    }
+
     private static TestBench Fired()
     {
         var bench = new TestBench();

@@ -14,24 +14,35 @@ internal sealed class TestBench
     private readonly FakeTimeProvider _time = new();
 
     public TestBench(string serial = "W1200-0001", params string[] faults)
+        : this(new BenchSetup(new BenchValues(5), serial), Channels, faults)
     {
-        Bench = new Bench(new BenchValues(5), serial, 1, new FaultPlan(faults.Select(Fault.Parse)), _time);
-        var panels = new FrontPanels(Bench, Channels, 12);
-        (Supply, Pulser, Scope) = (panels.Supply, panels.Pulser, panels.Scope);
-        (Voltmeter, Interlock) = (panels.Voltmeter, panels.Interlock);
     }
+
+    public TestBench(BenchSetup setup, string[] channels, params string[] faults)
+    {
+        Bench = new Bench(setup, new FaultPlan(faults.Select(Fault.Parse)), _time);
+        Panels = new FrontPanels(Bench, channels, 12);
+    }
+
+    public FrontPanels Panels { get; }
 
     public Bench Bench { get; }
 
-    public Instrument Supply { get; }
+    public Instrument Supply => Panels.Supply;
 
-    public Instrument Pulser { get; }
+    public Instrument Pulser => Panels.Pulser;
 
-    public Instrument Scope { get; }
+    public Instrument Scope => Panels.Scope;
 
-    public Instrument Voltmeter { get; }
+    public Instrument Voltmeter => Panels.Voltmeter;
 
-    public Instrument Interlock { get; }
+    public Instrument Interlock => Panels.Interlock;
+
+    public Instrument Hotplate => Panels.Hotplate ?? throw new InvalidOperationException("no hotplate");
+
+    /// <summary>A bench with a hotplate.</summary>
+    public static TestBench Hot(params string[] faults) =>
+        new(new BenchSetup(new BenchValues(5), "W1200-0001") { Hotplate = true }, Channels, faults);
 
     public double Volts => Number(Voltmeter, "MEAS:VOLT:DC?");
 
