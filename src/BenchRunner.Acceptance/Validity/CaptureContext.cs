@@ -44,10 +44,8 @@ public sealed record CaptureContext
     /// <summary>The voltmeter's reading of the bank just before the train, V; null: none.</summary>
     public double? Voltmeter { get; init; }
 
-    /// <summary>
-    /// Current before the train in the zero capture, as <see cref="TrainFacts.CurrentBeforeOn1"/>, A; null: none.
-    /// </summary>
-    public double? ZeroCurrent { get; init; }
+    /// <summary>What the zero capture of the run says; null: none was taken.</summary>
+    public ZeroReading? Zero { get; init; }
 
     /// <summary>Measured temperature of the plate, degC; null: not measured.</summary>
     public double? Plate { get; init; }

@@ -36,14 +36,19 @@ public static class CaptureValidity
         return judgement.ToVerdict();
     }
 
-    private static void FromWaveform(CaptureContext context, Judgement judgement)
+    /// <summary>The criteria that a waveform alone can answer.</summary>
+    internal static void FromWaveform(CaptureContext context, Judgement judgement, bool withStraightness = true)
     {
         bool firesHigh = HalfBridge.FiresHigh(context.Sequence);
         TrainFacts train = context.Analysis.Train;
         Channel gate = HalfBridge.Playing(Channel.VgsHigh, firesHigh);
         ChannelSetup? setup = context.Bench.Channels.FirstOrDefault(one => one.Channel == gate);
-        Take(Criteria.RampStraightness, WaveformCriteria.RampStraightness(
-            train, context.Sequence.Validity.RampStraightness, HalfBridge.Playing(Channel.IdLow, firesHigh)));
+        if (withStraightness)
+        {
+            Take(Criteria.RampStraightness, WaveformCriteria.RampStraightness(
+                train, context.Sequence.Validity.RampStraightness, HalfBridge.Playing(Channel.IdLow, firesHigh)));
+        }
+
         Take(Criteria.HighSideOff, WaveformCriteria.HighSideOff(
             GateRecord.Of(
                 context.Traces.FirstOrDefault(trace => trace.Channel == gate),

@@ -54,7 +54,10 @@ public static class Criteria
     /// <summary>The gate has its levels.</summary>
     public const string GateLevels = "gate-levels";
 
-    /// <summary>All criteria, in the order in which they are judged and listed.</summary>
+    /// <summary>The freewheeling place carries the load's current: asked of proving trains alone.</summary>
+    public const string FreewheelingOpen = "freewheeling-open";
+
+    /// <summary>All criteria of a capture, in the order in which they are judged and listed.</summary>
     public static IReadOnlyList<Criterion> All { get; } =
     [
         new(Complete, "retry", "a channel is missing, has fewer samples than asked, or another time base than set",

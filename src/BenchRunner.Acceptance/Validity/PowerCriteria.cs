@@ -142,11 +142,12 @@ internal static class PowerCriteria
             return;
         }
 
-        if (train.BlockingBeforeOn1 is { } blocking && context.Voltmeter is { } bank)
+        Channel channel = HalfBridge.Playing(Channel.VdsLow, firesHigh);
+        double? less = train.BlockingBeforeOn1 - (context.Zero?.Residual(channel) ?? 0);
+        if (less is { } blocking && context.Voltmeter is { } bank)
         {
             if (!(Math.Abs(blocking - bank) <= VoltmeterAgrees * Math.Abs(bank)))
             {
-                Channel channel = HalfBridge.Playing(Channel.VdsLow, firesHigh);
                 judgement.Add(
                     Criteria.BusAgrees, FindingClass.Stop,
                     $"{channel.Name()} is {V(blocking)} before the train, the voltmeter reads {V(bank)} "
@@ -165,14 +166,13 @@ internal static class PowerCriteria
             double across = slope * context.Bench.LoadInductance;
             if (!(Math.Abs(across - bus) <= SlopeAgrees * Math.Abs(bus)))
             {
-                Channel channel = HalfBridge.Playing(Channel.IdLow, HalfBridge.FiresHigh(context.Sequence));
                 judgement.Add(
                     Criteria.BusAgrees, FindingClass.Stop,
                     $"the first ramp of {SiText.Format(slope, "A/s", 3)} in "
                     + $"{SiText.Format(context.Bench.LoadInductance, "H")} "
                     + $"means {V(across)}, the bus is at {V(bus)} (within {SiText.Percent(SlopeAgrees)}): "
-                    + "a current probe's factor, or another inductor; the run stops",
-                    channel, across, bus);
+                    + "a current probe's factor or direction, or another inductor; the run stops",
+                    HalfBridge.Playing(Channel.IdLow, firesHigh), across, bus);
             }
         }
         else

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Signals.Analysis;
@@ -55,7 +56,7 @@ internal static class TrainCriteria
     /// <summary><c>baseline</c>.</summary>
     public static void Baseline(CaptureContext context, Judgement judgement)
     {
-        if (context.ZeroCurrent is not { } zero || context.Analysis.Train.CurrentBeforeOn1 is not { } seen)
+        if (ZeroCurrent(context) is not { } zero || context.Analysis.Train.CurrentBeforeOn1 is not { } seen)
         {
             judgement.NotEvaluated(Criteria.Baseline);
             return;
@@ -155,6 +156,14 @@ internal static class TrainCriteria
 
     private static Channel Current(CaptureContext context) =>
         HalfBridge.Playing(Channel.IdLow, HalfBridge.FiresHigh(context.Sequence));
+
+    /// <summary>The zero capture's current as <see cref="TrainFacts.CurrentBeforeOn1"/> states it: its offset still in
+    /// it.</summary>
+    private static double? ZeroCurrent(CaptureContext context)
+    {
+        ChannelSetup? setup = context.Bench.Channels.FirstOrDefault(one => one.Channel == Current(context));
+        return context.Zero?.Residual(Current(context)) + ((setup?.Offset ?? 0) / (setup?.Gain ?? 1));
+    }
 
     private static string V(double value) => SiText.Format(value, "V");
 

@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Plans;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
+using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Watches;
 using BenchRunner.Signals.Units;
 
@@ -12,6 +13,8 @@ namespace BenchRunner.Runner.Points;
 /// voltmeter.</summary>
 public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, TimeProvider time)
 {
+    private readonly Discharge _discharge = new(setup.Bleeder, setup.BusCapacitance);
+
     /// <summary>How far supply and voltmeter may differ from what was set, relative (a probe or meter is
     /// off).</summary>
     private const double Agreement = 0.03;
@@ -39,10 +42,64 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
         await WaitFor(target, cancel);
     }
 
+    /// <summary>Waits until the next train of a point is due and the bus is back.</summary>
+    /// <param name="firing">Knows when the last train was fired.</param>
+    /// <param name="state">The point.</param>
+    /// <param name="enough">Ends the wait between two readings: the turn is not wanted any more.</param>
+    /// <param name="cancel">Ends the work.</param>
+    /// <returns>The voltmeter's reading, V; NaN where the turn is not wanted.</returns>
+    internal async Task<double> WaitForTurn(
+        TrainFiring firing, PointState state, CancellationToken enough, CancellationToken cancel)
+    {
+        if (firing.FiredAt is { } fired)
+        {
+            // A load that was still carrying current gets longer each time.
+            double due = Math.Max(
+                state.Planned.Point.RepeatEvery, state.Planned.Recovery * (1 + state.BaselineInARow));
+            TimeSpan wait = TimeSpan.FromSeconds(due) - time.GetElapsedTime(fired);
+            if (wait > TimeSpan.Zero && !await Pause(wait, enough, cancel))
+            {
+                return double.NaN;
+            }
+        }
+
+        return await WaitFor(state.Planned.Point.BusVoltage, cancel, enough);
+    }
+
+    /// <summary>Waits, with output off and bleeder on, until the voltmeter reads less than a voltage.</summary>
+    /// <param name="target">The voltage, V.</param>
+    /// <param name="cancel">Ends the wait.</param>
+    /// <exception cref="BusException">It takes longer than twice the bleeder's time.</exception>
+    public async Task WaitBelow(double target, CancellationToken cancel)
+    {
+        long start = time.GetTimestamp();
+        TimeSpan? limit = null;
+        while (true)
+        {
+            double volts = (await bench.Voltmeter.Read(cancel)).Value;
+            if (volts < target)
+            {
+                return;
+            }
+
+            limit ??= TimeSpan.FromSeconds(1 + (2 * _discharge.TimeTo(volts, target)));
+            if (time.GetElapsedTime(start) > limit)
+            {
+                throw new BusException(
+                    $"the bus is at {volts:0.0} V and does not fall below {target:0.#} V: look at the bleeder", false);
+            }
+
+            await Task.Delay(ReadEvery, time, cancel);
+        }
+    }
+
     /// <summary>Waits until the voltmeter shows the bus within its tolerance, with a bound from C·ΔV/I.</summary>
+    /// <param name="target">The voltage, V.</param>
+    /// <param name="cancel">Ends the wait.</param>
+    /// <param name="enough">Ends it between two readings.</param>
     /// <returns>The reading, V.</returns>
     /// <exception cref="BusException">The bound passed.</exception>
-    public async Task<double> WaitFor(double target, CancellationToken cancel)
+    public async Task<double> WaitFor(double target, CancellationToken cancel, CancellationToken enough = default)
     {
         long start = time.GetTimestamp();
         double charging = setup.BusCapacitance * target / setup.ChargingCurrent;
@@ -58,6 +115,11 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
                 return volts;
             }
 
+            if (enough.IsCancellationRequested)
+            {
+                return double.NaN;
+            }
+
             if (time.GetElapsedTime(start) > limit)
             {
                 throw await Explain(target, volts, limit, cancel);
@@ -65,6 +127,22 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
 
             previous = volts;
             await Task.Delay(ReadEvery, time, cancel);
+        }
+    }
+
+    /// <summary>Pauses.</summary>
+    /// <returns>False where it was enough before the end.</returns>
+    private async Task<bool> Pause(TimeSpan wait, CancellationToken enough, CancellationToken cancel)
+    {
+        using var either = CancellationTokenSource.CreateLinkedTokenSource(enough, cancel);
+        try
+        {
+            await Task.Delay(wait, time, either.Token);
+            return true;
+        }
+        catch (OperationCanceledException) when (!cancel.IsCancellationRequested)
+        {
+            return false;
         }
     }
 

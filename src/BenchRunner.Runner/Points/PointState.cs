@@ -21,6 +21,12 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 
     public int StaleInARow { get; private set; }
 
+    /// <summary>Captures in a row that began with a current.</summary>
+    public int BaselineInARow { get; set; }
+
+    /// <summary>Whether the plate was away from its temperature in the last capture.</summary>
+    public bool PlateIsOff { get; private set; }
+
     public long? Count { get; set; }
 
     public IReadOnlyList<RawTrace> Previous { get; private set; } = [];
@@ -31,8 +37,10 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
     /// <summary>Takes over what a capture asks of the next.</summary>
     public void Follow(ScopeRecord record, Verdict verdict)
     {
-        bool stale = verdict.Findings.Any(finding => finding.Criterion == Criteria.Fresh);
-        StaleInARow = stale ? StaleInARow + 1 : 0;
+        bool Found(string criterion) => verdict.Findings.Any(finding => finding.Criterion == criterion);
+        StaleInARow = Found(Criteria.Fresh) ? StaleInARow + 1 : 0;
+        BaselineInARow = Found(Criteria.Baseline) ? BaselineInARow + 1 : 0;
+        PlateIsOff = Found(Criteria.TemperatureWithin);
         Previous = record.Traces;
         Count = record.Count ?? Count;
         if (verdict.CorrectedFirstPulse is { } width)

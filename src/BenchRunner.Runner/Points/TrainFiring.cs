@@ -31,6 +31,17 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
         return count;
     }
 
+    /// <summary>Takes a record at once, with no train: both gates stay off.</summary>
+    /// <returns>The record; null where it was missed or lost on its way.</returns>
+    /// <exception cref="InstrumentException">The scope cannot be set or reached.</exception>
+    public async Task<ScopeRecord?> RecordNow(ScopeSettings settings, CancellationToken cancel)
+    {
+        await Prepare(settings, cancel);
+        await OnScope(() => bench.Scope.Arm(cancel));
+        await OnScope(() => bench.Scope.Trigger(cancel));
+        return await Record(cancel);
+    }
+
     /// <summary>Arms scope and pulser, fires, waits for the record and reads it.</summary>
     /// <returns>The record; null where the trigger was missed or the record was lost on its way.</returns>
     /// <exception cref="PermitException">The permit is not live: nothing was fired.</exception>
@@ -44,6 +55,11 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
         await bench.Pulser.Arm(permit, cancel);
         await bench.Pulser.Fire(permit, cancel);
         FiredAt = time.GetTimestamp();
+        return await Record(cancel);
+    }
+
+    private async Task<ScopeRecord?> Record(CancellationToken cancel)
+    {
         try
         {
             if (await bench.Scope.WaitForRecord(RecordWithin, cancel))

@@ -139,9 +139,13 @@ public sealed class CaptureValidityTests
             Judged.Context(new SyntheticTrain { Second = 3.15e-6 }) with { ShownLonger = 0.1e-6 }).IsValid);
 
     [Fact]
-    public void A_current_before_the_train_is_off_the_baseline() =>
-        Only(CaptureValidity.Judge(Judged.Context() with { ZeroCurrent = -0.6 }), Criteria.Baseline,
+    public void A_current_before_the_train_is_off_the_baseline()
+    {
+        CaptureContext context = Judged.Context();
+        Only(
+            CaptureValidity.Judge(context with { Zero = Judged.Zero(context.Traces, -0.6) }), Criteria.Baseline,
             FindingClass.Retry);
+    }
 
     [Theory]
     [InlineData(1.05)]

@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Tests.Validity;
 
@@ -27,8 +28,26 @@ internal static class Judged
             CountAfter = 8,
             Analysis = WaveformAnalysis.Analyse(TraceConversion.ToWaveform(traces), _settings),
             Voltmeter = 600,
-            ZeroCurrent = 0,
+            Zero = Zero(traces, 0),
         };
+    }
+
+    /// <summary>A zero capture on the ranges of a train: every channel at zero but the switch's current.</summary>
+    public static ZeroReading Zero(IReadOnlyList<RawTrace> traces, double current) => ZeroReading.Of(
+        [.. traces.Select(trace => Flat(trace, trace.Channel == Channel.IdLow ? current : 0))],
+        Shipped.Bench, Shipped.Rated, bank: 0);
+
+    private static RawTrace Flat(RawTrace trace, double value)
+    {
+        // Between two codes the value itself is met by the share of samples on either side.
+        double code = ((value - trace.Origin) / trace.Increment) + trace.Reference;
+        short[] codes = new short[1000];
+        for (int i = 0; i < codes.Length; i++)
+        {
+            codes[i] = (short)Math.Floor(code + ((i + 0.5) / codes.Length));
+        }
+
+        return trace with { Codes = codes };
     }
 
     public static Verdict Of(SyntheticTrain train) => CaptureValidity.Judge(Context(train));

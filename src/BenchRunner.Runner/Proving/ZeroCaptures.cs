@@ -1,0 +1,59 @@
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Validity;
+using BenchRunner.Evidence.Captures;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Devices;
+
+namespace BenchRunner.Runner.Proving;
+
+/// <summary>Captures in which no train is fired: what the probes show at zero.</summary>
+public sealed class ZeroCaptures(DeviceWork work)
+{
+    /// <summary>The name under which they are stored.</summary>
+    public const string Name = "zero";
+
+    private const int Tries = 3;
+
+    private int _taken;
+
+    /// <summary>The zero of the run, with the bus down: offsets of the voltage probes, zeros of the currents.</summary>
+    /// <exception cref="InstrumentException">The scope gives no record.</exception>
+    public async Task First(CancellationToken cancel)
+    {
+        PlannedPoint planned = work.Plan.Proving;
+        work.Zero = await Take(work.Scope(planned, planned.Ranges), cancel);
+        work.Events.Say(
+            Severity.Information, "zero-capture", "zero capture taken with no train fired: offsets of the probes");
+    }
+
+    /// <summary>A new zero of the currents, at a point whose captures keep beginning with one; both gates are
+    /// off.</summary>
+    /// <inheritdoc cref="First" path="/exception"/>
+    public async Task Again(ScopeSettings settings, CancellationToken cancel)
+    {
+        ZeroReading later = await Take(settings, cancel);
+        work.Zero = work.Zero?.WithCurrentsOf(later) ?? later;
+        work.Events.Say(
+            Severity.Warning, "zero-capture", "three captures in a row began with a current: a new zero capture was "
+                + "taken");
+    }
+
+    private async Task<ZeroReading> Take(ScopeSettings settings, CancellationToken cancel)
+    {
+        for (int i = 0; i < Tries; i++)
+        {
+            double bank = (await work.Bench.Voltmeter.Read(cancel)).Value;
+            DateTimeOffset at = work.Time.GetUtcNow();
+            if (await work.Firing.RecordNow(settings, cancel) is { Traces.Count: > 0 } record)
+            {
+                double plate = await work.Plate.Read(cancel);
+                work.Evidence.AddCapture(new CaptureRow(
+                    Name, ++_taken, at, record.Traces, bank, plate, null));
+                return ZeroReading.Of(record.Traces, work.Plan.Bench, work.Plan.Sequence, bank);
+            }
+        }
+
+        throw new InstrumentException("scope", $"{Tries} zero captures left no record; check trigger and link");
+    }
+}
