@@ -8,5 +8,7 @@ namespace BenchRunner.Safety;
 /// <param name="Supply">Switched off on the way to the safe state.</param>
 /// <param name="Interlock">Polled; its bleeder discharges the bank.</param>
 /// <param name="Voltmeter">Polled; the only proof that the bus is down.</param>
+/// <param name="Hotplate">Switched off on the way to the safe state; null: none.</param>
 /// <remarks>Where an instrument admits one client, its one connection serves both.</remarks>
-public sealed record SafetyRoles(ISafeable Pulser, ISafeable Supply, IInterlock Interlock, IVoltmeter Voltmeter);
+public sealed record SafetyRoles(
+    ISafeable Pulser, ISafeable Supply, IInterlock Interlock, IVoltmeter Voltmeter, ISafeable? Hotplate = null);

@@ -16,5 +16,5 @@ public sealed record Plan(
     /// <summary>
     /// The train that shows, below 60 V, that bench and device are what the files say; before and after the points.
     /// </summary>
-    public PlannedPoint? Proving { get; init; }
+    public required PlannedPoint Proving { get; init; }
 }

@@ -11,9 +11,6 @@ namespace BenchRunner.Acceptance.Temperatures;
 /// <param name="soak">Time that it must stay there, s.</param>
 public sealed class SoakHold(double target, double tolerance, double soak)
 {
-    /// <summary>Soak time where a sequence states none, s.</summary>
-    public const double UsualSoak = 120;
-
     /// <summary>Fastest drift of a plate at rest, K/s: 0.5 K a minute.</summary>
     public const double FastestDrift = 0.5 / 60;
 

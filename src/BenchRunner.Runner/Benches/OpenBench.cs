@@ -31,6 +31,9 @@ public sealed class OpenBench : IAsyncDisposable
     /// <summary>The scope.</summary>
     public IScope Scope { get; private set; } = null!;
 
+    /// <summary>The hotplate; null where the bench has none.</summary>
+    public IHotplate? Hotplate { get; private set; }
+
     /// <summary>The runner's own connection to the voltmeter.</summary>
     public IVoltmeter Voltmeter { get; private set; } = null!;
 
@@ -116,7 +119,9 @@ public sealed class OpenBench : IAsyncDisposable
             "voltmeter", ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
         ScpiSupply safeSupply = await Reach("supply", ScpiSupply.Connect(at("supply", patient), cancel));
         ScpiPulser safePulser = await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel));
-        Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter);
+        Hotplate = bench.Roles.ContainsKey("hotplate")
+            ? await Reach("hotplate", ScpiHotplate.Connect(at("hotplate", patient), cancel)) : null;
+        Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter, Hotplate);
 
         Voltmeter = OwnToo("voltmeter")
             ? await Reach("voltmeter", ScpiVoltmeter.Connect(at("voltmeter", patient), cancel)) : watchMeter;
@@ -129,7 +134,7 @@ public sealed class OpenBench : IAsyncDisposable
 
     private void Identify(Bench bench)
     {
-        Identities = new Dictionary<string, InstrumentIdentity>
+        var identities = new Dictionary<string, InstrumentIdentity>
         {
             ["supply"] = Supply.Identity,
             ["pulser"] = Pulser.Identity,
@@ -137,6 +142,12 @@ public sealed class OpenBench : IAsyncDisposable
             ["voltmeter"] = Voltmeter.Identity,
             ["interlock"] = Safety.Interlock.Identity,
         };
+        if (Hotplate is not null)
+        {
+            identities["hotplate"] = Hotplate.Identity;
+        }
+
+        Identities = identities;
         foreach ((string role, InstrumentIdentity identity) in Identities)
         {
             InstrumentSetup setup = bench.Roles[role];

@@ -2,6 +2,7 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Links;
@@ -10,11 +11,11 @@ using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Points;
+using BenchRunner.Runner.Proving;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
-using BenchRunner.Signals.Analysis;
 
 namespace BenchRunner.Runner.Devices;
 
@@ -23,8 +24,13 @@ namespace BenchRunner.Runner.Devices;
 public sealed class DeviceRun(
     OpenBench bench, SafetySupervisor supervisor, Plan plan, IRunSink sinks, EventSource events, TimeProvider time)
 {
+    private const string Before = "proving-before";
+    private const string After = "proving-after";
+
     private readonly List<PointTaken> _taken = [];
-    private readonly AnalysisSettings _settings = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
+
+    /// <summary>Whether every point was run and the device goes through its second proving.</summary>
+    private bool _measured;
 
     /// <summary>Runs the device of a run that has begun in the evidence.</summary>
     /// <param name="device">Serial.</param>
@@ -36,7 +42,8 @@ public sealed class DeviceRun(
         (BenchEnding ending, Ended? ended) = (BenchEnding.Proved, null);
         try
         {
-            await Points(device, evidence, stop.Token);
+            await Road(
+                new DeviceWork(device, bench, supervisor, plan, evidence, sinks, events, time), stop.Token);
         }
         catch (Exception broken)
         {
@@ -59,9 +66,32 @@ public sealed class DeviceRun(
         return Report(device, evidence, ending, ended, safe);
     }
 
-    private async Task Points(string device, RunWriter evidence, CancellationToken stop)
+    /// <summary>Zero, proving train, points by rising voltage, proving train again.</summary>
+    private async Task Road(DeviceWork work, CancellationToken stop)
     {
-        var fixture = new PointFixture(bench, supervisor, plan, evidence, sinks, events, time);
+        var zeros = new ZeroCaptures(work);
+        var proving = new ProvingTrains(work);
+        await zeros.First(stop);
+        await proving.Take(Before, stop);
+        await Points(work, new PointFixture(work, zeros, new LeakageHolds(work), CaptureAnalysis.Of), stop);
+        _measured = true;
+        await Down(stop);
+        await work.Bus.WaitBelow(ProvingTrain.BusVoltage, stop);
+        await proving.Take(After, stop);
+    }
+
+    private async Task Down(CancellationToken stop)
+    {
+        SafeStateReport down = await supervisor.MakeSafe();
+        stop.ThrowIfCancellationRequested();
+        if (!down.Proved)
+        {
+            throw new SafetyException("the bus was not proved down");
+        }
+    }
+
+    private async Task Points(DeviceWork work, PointFixture fixture, CancellationToken stop)
+    {
         long start = time.GetTimestamp();
         TimeSpan Left()
         {
@@ -69,11 +99,18 @@ public sealed class DeviceRun(
             return left > TimeSpan.Zero ? left : TimeSpan.Zero;
         }
 
+        double? heated = double.NaN;
         foreach (PlannedPoint point in plan.Points)
         {
-            var taken = new PointTaken(point.Point.Name, plan.Bench, _settings);
+            if (point.Point.Temperature != heated)
+            {
+                heated = point.Point.Temperature;
+                await Soak(work, heated, stop);
+            }
+
+            var taken = new PointTaken(point.Point.Name, plan.Bench, work.Settings);
             _taken.Add(taken);
-            await fixture.Take(device, point, taken, Left, stop);
+            await fixture.Take(point, taken, Left, stop);
             if (taken.Valid.Count < plan.Sequence.ValidCaptures)
             {
                 events.Say(
@@ -91,6 +128,19 @@ public sealed class DeviceRun(
                 return;
             }
         }
+    }
+
+    /// <summary>A plate takes minutes: nothing stays charged meanwhile.</summary>
+    private async Task Soak(DeviceWork work, double? temperature, CancellationToken stop)
+    {
+        if (bench.Hotplate is null)
+        {
+            return;
+        }
+
+        await Down(stop);
+        await work.Plate.Settle(
+            temperature, plan.Sequence.Validity.TemperatureWithin, plan.Sequence.Soak, stop);
     }
 
     private bool MaySkipHigher(PlannedPoint point) =>
@@ -112,11 +162,13 @@ public sealed class DeviceRun(
                 events.Say(Severity.Warning, "interrupted", "the operator interrupted the run");
                 return (BenchEnding.Interrupted, new Ended(Outcome.Stopped, "the operator interrupted the run"));
             case StopException stop:
-                supervisor.TripNow(stop.Message);
-                return (BenchEnding.Tripped, new Ended(StopOutcome.Of(stop.Finding, plan.Sequence), stop.Message));
-            case BusException { StuckInLimit: true } bus when plan.Sequence.Position == DevicePosition.Both:
-                supervisor.TripNow(bus.Message);
-                return (BenchEnding.Tripped, new Ended(Outcome.Rejected, bus.Message));
+                return Stopped(stop.Outcome, stop.Message);
+            case BusException { StuckInLimit: true } bus:
+                return Stopped(StopOutcome.OfShort(plan.Sequence), bus.Message);
+            case SettingChangedException changed:
+                return Stopped(Outcome.Stopped, changed.Message);
+            case DeviceFaultException fault:
+                return (BenchEnding.Proved, new Ended(Outcome.Rejected, fault.Message));
             case BusException or PermitException or SafetyException:
                 supervisor.TripNow(broken.Message);
                 return (BenchEnding.Tripped, new Ended(Outcome.Stopped, broken.Message));
@@ -136,6 +188,20 @@ public sealed class DeviceRun(
                 events.Say(Severity.Error, "fault", $"a fault of this program: {broken}");
                 return (BenchEnding.Fault, new Ended(Outcome.Stopped, $"a fault of this program: {broken.Message}"));
         }
+    }
+
+    /// <summary>A bench that is not what its files say trips; so does a device that fails above 60 V. One that is found
+    /// faulty below is taken out, and the day goes on.</summary>
+    private (BenchEnding Ending, Ended Ended) Stopped(Outcome outcome, string why)
+    {
+        var ended = new Ended(outcome, why);
+        if (outcome == Outcome.Rejected && !supervisor.Witness.MayBeEnergised)
+        {
+            return (BenchEnding.Proved, ended);
+        }
+
+        supervisor.TripNow(why);
+        return (BenchEnding.Tripped, ended);
     }
 
     private DeviceReport Report(
@@ -172,7 +238,15 @@ public sealed class DeviceRun(
         {
             DeviceDecision decision = Decider.Decide(
                 plan.Sequence, plan.Bench, [.. _taken.Select(point => point.ForDecision())]);
-            return ended is null ? decision : decision with { Outcome = ended.Outcome, Reason = ended.Why };
+            return ended is null ? decision
+                : !(_measured && ended.Outcome == Outcome.Rejected)
+                    ? decision with { Outcome = ended.Outcome, Reason = ended.Why }
+                : new DeviceDecision(
+                    ended.Outcome, $"did not survive its measurement: {ended.Why}",
+                    [.. decision.Values.Select(value => value with
+                    {
+                        Reason = Join(value.Reason, "the device did not survive its measurement"),
+                    })]);
         }
         catch (Exception fault)
         {

@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Uncertainty;
+using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Analysis;
 
 namespace BenchRunner.Runner.Points;
@@ -12,6 +13,7 @@ namespace BenchRunner.Runner.Points;
 public sealed class PointTaken(string name, Bench bench, AnalysisSettings settings)
 {
     private readonly List<ValidCapture> _valid = [];
+    private readonly List<Verdict> _verdicts = [];
     private BenchBudget? _budget;
 
     /// <summary>How many captures were taken, valid or not.</summary>
@@ -19,6 +21,9 @@ public sealed class PointTaken(string name, Bench bench, AnalysisSettings settin
 
     /// <summary>The valid captures, in the order taken.</summary>
     public IReadOnlyList<ValidCapture> Valid => _valid;
+
+    /// <summary>What validity said of every capture, valid or not, in the order taken.</summary>
+    public IReadOnlyList<Verdict> Verdicts => _verdicts;
 
     /// <summary>What the decision rests on: the analyses, and the budget formed on the first valid capture.</summary>
     public PointCaptures ForDecision()
@@ -30,6 +35,8 @@ public sealed class PointTaken(string name, Bench bench, AnalysisSettings settin
 
         return new PointCaptures(name, Taken, [.. _valid.Select(capture => capture.Result)], _budget);
     }
+
+    internal void Judged(Verdict verdict) => _verdicts.Add(verdict);
 
     internal void Add(ValidCapture capture) => _valid.Add(capture);
 }

@@ -1,7 +1,6 @@
 using System.Runtime.InteropServices;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
-using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;
@@ -152,14 +151,6 @@ public sealed class RunSession
             }
 
             _events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
-            if (Plan.Sequence.Leakage is { } leakage)
-            {
-                // Silence would be taken for a pass.
-                _events.Say(
-                    Severity.Warning, "not-evaluated", $"leakage, at most {SiText.Format(leakage, "A")} by the "
-                        + $"sequence, is not measured yet");
-            }
-
             return await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
                 .Walk(device, evidence, operatorStop);
         }

@@ -22,8 +22,10 @@ public sealed class SafeState(
         Task<string?> pulser = Try("pulser", roles.Pulser.MakeSafe);
         Task<string?> supply = Try("supply", roles.Supply.MakeSafe);
         Task<string?> bleeder = Try("interlock", roles.Interlock.MakeSafe);
+        Task<string?> heater = roles.Hotplate is { } plate
+            ? Try("hotplate", plate.MakeSafe) : Task.FromResult<string?>(null);
         SafeStateReport proof = await Prove(doubts);
-        foreach (Task<string?> told in (Task<string?>[])[pulser, supply, bleeder])
+        foreach (Task<string?> told in (Task<string?>[])[pulser, supply, bleeder, heater])
         {
             if (await told is { } doubt)
             {
