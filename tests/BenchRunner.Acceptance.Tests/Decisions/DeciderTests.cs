@@ -176,16 +176,4 @@ public sealed class DeciderTests
     [Fact]
     public void The_same_captures_give_the_same_decision_to_the_last_bit() =>
         Assert.Equal(Decide(Shipped.Rated).Values, Decide(Shipped.Rated).Values);
-
-    [Theory]
-    [InlineData(Criteria.Desaturated, DevicePosition.Low, Outcome.Rejected)]
-    [InlineData(Criteria.HighSideOff, DevicePosition.Low, Outcome.Stopped)]
-    [InlineData(Criteria.HighSideOff, DevicePosition.Both, Outcome.Rejected)]
-    [InlineData(Criteria.BusAgrees, DevicePosition.Both, Outcome.Stopped)]
-    [InlineData(Criteria.RampStraightness, DevicePosition.Both, Outcome.Stopped)]
-    public void A_stop_rejects_the_device_only_where_the_place_at_fault_is_under_test(
-        string criterion, DevicePosition position, Outcome outcome) =>
-        Assert.Equal(outcome, StopOutcome.Of(
-            new Finding(criterion, FindingClass.Stop, null, null, null, null, ""),
-                Shipped.Rated with { Position = position }));
 }
