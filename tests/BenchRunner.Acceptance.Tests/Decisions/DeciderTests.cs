@@ -2,7 +2,6 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Uncertainty;
-using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Quantities;
 

@@ -41,6 +41,7 @@ public sealed class MirroredPlacesTests
             Sequence = _sequence,
             Bench = _bench,
             Traces = swapped,
+            Zero = Judged.Zero(swapped, 0),
             Analysis = CaptureAnalysis.Of(swapped, Planner.AnalysisSettingsOf(_bench, _sequence)),
         });
     }
