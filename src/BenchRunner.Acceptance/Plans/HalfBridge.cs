@@ -31,6 +31,19 @@ public static class HalfBridge
         return sequence.Position != DevicePosition.Both;
     }
 
+    /// <summary>The place of the companion, <c>low</c> or <c>high</c>; null where there is none.</summary>
+    /// <param name="sequence">The sequence.</param>
+    public static string? CompanionPlace(Sequence sequence)
+    {
+        ArgumentNullException.ThrowIfNull(sequence);
+        return sequence.Position switch
+        {
+            DevicePosition.Low => "high",
+            DevicePosition.High => "low",
+            _ => null,
+        };
+    }
+
     /// <summary>
     /// Whether a quantity says something about the device under test or the circuit, not about a companion.
     /// </summary>

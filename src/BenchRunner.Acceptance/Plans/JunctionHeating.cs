@@ -7,8 +7,8 @@ namespace BenchRunner.Acceptance.Plans;
 /// <remarks>
 /// Losses are rectangles of power in time; the rise at a moment is the sum of P · [Zth(t − start) − Zth(t − end)] over
 /// them (superposition, common practice for transient thermal impedance), looked at the end of each. Switching energies
-/// are the upper limits that the sequence states on <c>eon</c> and <c>eoff</c>, else ½ V I times two fastest edges;
-/// they are lost at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what
+/// are the upper limits that the sequence states on <c>eon</c>, <c>eoff</c> and <c>err</c>, else ½ V I times two fastest
+/// edges (nothing for <c>err</c>); they are lost at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what
 /// the mean power of repeated trains leaves.
 /// </remarks>
 internal static class JunctionHeating
@@ -20,12 +20,12 @@ internal static class JunctionHeating
         public double Energy => Power * (End - Start);
     }
 
-    /// <summary>Rise of the warmer junction, K; null where the sequence states no thermal impedance.</summary>
+    /// <summary>Rise of the junctions of both places; null where the sequence states no thermal impedance.</summary>
     /// <param name="point">The operating point.</param>
     /// <param name="train">What its train does.</param>
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
-    public static double? Rise(OperatingPoint point, PulseTrain train, Sequence sequence, Bench bench)
+    public static JunctionRise? Rise(OperatingPoint point, PulseTrain train, Sequence sequence, Bench bench)
     {
         IReadOnlyList<ThermalPoint> impedance = sequence.ThermalImpedance;
         if (impedance.Count == 0)
@@ -37,9 +37,11 @@ internal static class JunctionHeating
         double on2 = off1 + point.Gap;
         double off2 = on2 + point.SecondPulse;
         double period = Math.Max(point.RepeatEvery, off2 + train.LoadDecay);
-        return Math.Max(
-            Warmest(SwitchLosses(point, train, sequence, off1, on2, off2), impedance, period),
-            Warmest(DiodeLosses(point, train, sequence, off1, on2, off2), impedance, period));
+        double firing = Warmest(SwitchLosses(point, train, sequence, off1, on2, off2), impedance, period);
+        double freewheeling = Warmest(DiodeLosses(point, train, sequence, off1, on2, off2), impedance, period);
+        return HalfBridge.FiresHigh(sequence)
+            ? new JunctionRise(Low: freewheeling, High: firing)
+            : new JunctionRise(Low: firing, High: freewheeling);
     }
 
     private static List<Loss> SwitchLosses(
@@ -65,7 +67,13 @@ internal static class JunctionHeating
         OperatingPoint point, PulseTrain train, Sequence sequence, double off1, double on2, double off2)
     {
         double forward = sequence.Expected.ForwardVoltage;
+        double rated = point.BusVoltage * point.LoadCurrent;
         var losses = new List<Loss> { new(off1, on2, forward * point.LoadCurrent) };
+        if (Stated(sequence, point, "err") is { } err)
+        {
+            losses.Add(new Loss(on2, on2 + (err / rated), rated));
+        }
+
         double step = train.LoadDecay / FreewheelingSteps;
         for (int i = 0; i < FreewheelingSteps; i++)
         {

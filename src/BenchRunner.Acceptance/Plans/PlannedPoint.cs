@@ -20,8 +20,8 @@ public sealed record PlannedPoint
     /// <summary>Expected droop over the first pulse, 1.</summary>
     public required double BusDroop { get; init; }
 
-    /// <summary>Junction rise of the worse place, K; null where no thermal impedance is stated.</summary>
-    public required double? JunctionRise { get; init; }
+    /// <summary>Junction rise of both places; null where no thermal impedance is stated.</summary>
+    public required JunctionRise? JunctionRise { get; init; }
 
     /// <summary>Load current at the second turn-off, A.</summary>
     public required double Off2Current { get; init; }

@@ -3,7 +3,6 @@ using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Signals.Analysis;
 
-
 namespace BenchRunner.Acceptance.Plans;
 
 /// <summary>
@@ -53,7 +52,10 @@ public static class Planner
             Proving = PlanPoint(ProvingTrain.Point(sequence), sequence, bench).Planned,
         };
         return new Planned(plan, [.. refusals.OrderBy(problem => problem.Where.File, StringComparer.Ordinal)
-            .ThenBy(problem => problem.Where.Line).ThenBy(problem => problem.Where.Column)]);
+            .ThenBy(problem => problem.Where.Line).ThenBy(problem => problem.Where.Column)])
+        {
+            Notes = [.. ProbeRefusals.Notes(sequence, bench)],
+        };
     }
 
     /// <summary>What the analysis takes as given when it reads captures of this bench for this sequence.</summary>

@@ -58,6 +58,15 @@ internal static class PointRefusals
                 $"at most the bench envelope of {A(most.Current)}", "shorten it or lower load-current");
         }
 
+        if (point.BusVoltage <= most.Voltage && planned.Off2PeakVoltage > most.Voltage)
+        {
+            yield return new Problem(
+                At(point, "pulses.second"),
+                $"the second turn-off at {A(planned.Off2Current)} peaks at about {V(planned.Off2PeakVoltage)}",
+                $"at most the bench envelope of {V(most.Voltage)}",
+                "shorten the second pulse, lower bus-voltage or current");
+        }
+
         if (planned.StoredEnergy > most.Energy)
         {
             yield return new Problem(
@@ -127,12 +136,13 @@ internal static class PointRefusals
         }
 
         double plate = point.Temperature ?? bench.Ambient;
-        if (planned.JunctionRise is { } rise && plate + rise > ratings.JunctionMaximum)
+        if (planned.JunctionRise is { } rise && plate + rise.Warmer > ratings.JunctionMaximum)
         {
             yield return new Problem(
                 At(point, "pulses.repeat-every"),
-                $"the junction reaches {SiText.Format(plate + rise, "degC", 3)} "
-                + $"({SiText.Format(rise, "K", 3)} above the plate)",
+                $"the {(rise.High > rise.Low ? "high" : "low")} junction reaches "
+                + $"{SiText.Format(plate + rise.Warmer, "degC", 3)} (above the plate: low "
+                + $"{SiText.Format(rise.Low, "K", 3)}, high {SiText.Format(rise.High, "K", 3)})",
                 $"at most the rated {SiText.Format(ratings.JunctionMaximum, "degC")}",
                 "repeat less often, shorten the second pulse or lower the temperature");
         }
@@ -225,14 +235,31 @@ internal static class PointRefusals
 
     private static IEnumerable<Problem> Temperature(OperatingPoint point, Sequence sequence, Bench bench)
     {
-        if (point.Temperature is { } hot
-            && Math.Abs(hot - bench.Ambient) > sequence.Validity.TemperatureWithin
-            && !bench.Roles.ContainsKey("hotplate"))
+        if (point.Temperature is not { } hot || Math.Abs(hot - bench.Ambient) <= sequence.Validity.TemperatureWithin)
+        {
+            yield break;
+        }
+
+        string found = $"temperature is {SiText.Format(hot, "degC")}";
+        string ambient = $"ambient ({SiText.Format(bench.Ambient, "degC")})";
+        if (!bench.Roles.ContainsKey("hotplate"))
         {
             yield return new Problem(
-                At(point, "temperature"), $"temperature is {SiText.Format(hot, "degC")}",
-                $"ambient ({SiText.Format(bench.Ambient, "degC")}) on bench {bench.Name}, which has no hotplate",
+                At(point, "temperature"), found, $"{ambient} on bench {bench.Name}, which has no hotplate",
                 "write ambient or choose a bench with a hotplate");
+        }
+        else if (hot < bench.Ambient)
+        {
+            yield return new Problem(
+                At(point, "temperature"), found, $"{ambient} or more: the hotplate of bench {bench.Name} heats only",
+                "raise it or write ambient");
+        }
+        else if (!(hot <= bench.Envelope.Temperature))
+        {
+            string most = bench.Envelope.Temperature is { } degrees ? SiText.Format(degrees, "degC") : "no temperature";
+            yield return new Problem(
+                At(point, "temperature"), found, $"at most the bench envelope of {most}",
+                "lower it or choose another bench");
         }
     }
 

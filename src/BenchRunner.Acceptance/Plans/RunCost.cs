@@ -12,17 +12,20 @@ internal static class RunCost
     /// <summary>Captures of the bench itself: the zero capture and the proving trains before and after.</summary>
     private const int OwnCaptures = 3;
 
-    /// <summary>Time that one device needs without retries, s.</summary>
+    /// <summary>Time that one device needs without retries, s; soaks count, the heating before them is not known.</summary>
     /// <param name="points">The points in the order in which they are run.</param>
     /// <param name="sequence">The sequence.</param>
     /// <param name="bench">The bench.</param>
     public static double Duration(IReadOnlyList<PlannedPoint> points, Sequence sequence, Bench bench)
     {
         double bus = ProvingTrain.BusVoltage;
+        double? plate = null;
         double time = Change(0, bus, bench);
         foreach (PlannedPoint planned in points)
         {
             time += Change(bus, planned.Point.BusVoltage, bench);
+            time += planned.Point.Temperature is { } hot && hot != plate ? sequence.Soak : 0;
+            plate = planned.Point.Temperature;
             time += sequence.ValidCaptures * Math.Max(planned.Point.RepeatEvery, planned.Recovery);
             bus = planned.Point.BusVoltage;
         }

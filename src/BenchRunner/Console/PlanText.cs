@@ -1,5 +1,6 @@
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Console;
@@ -12,6 +13,7 @@ internal static class PlanText
         if (planned.Plan is { } plan)
         {
             yield return $"{plan.Sequence.Name}, revision {plan.Sequence.Revision}, on bench {plan.Bench.Name}";
+            yield return Places(plan.Sequence);
             foreach (string line in plan.Points.SelectMany(Point))
             {
                 yield return line;
@@ -21,10 +23,23 @@ internal static class PlanText
                 + $"of evidence";
         }
 
+        foreach (Problem note in planned.Notes)
+        {
+            yield return $"note: {note}";
+        }
+
         foreach (Problem refusal in planned.Refusals)
         {
             yield return $"refused: {refusal}";
         }
+    }
+
+    private static string Places(Sequence sequence)
+    {
+        bool firesHigh = HalfBridge.FiresHigh(sequence);
+        string companion = HalfBridge.CompanionPlace(sequence) is not { } place ? "one module fills both places"
+            : $"the {place} place holds a companion with a serial of its own";
+        return $"the {(firesHigh ? "high" : "low")} switch fires; {companion}";
     }
 
     private static IEnumerable<string> Point(PlannedPoint point)
@@ -36,8 +51,9 @@ internal static class PlanText
             + $"{SiText.Format(point.Point.SecondPulse, "s")}; every {SiText.Format(point.Point.RepeatEvery, "s")}";
         yield return $"  stored {SiText.Format(point.StoredEnergy, "J", 3)} in the bank, "
             + $"{SiText.Format(point.LoadEnergy, "J", 3)} in the load; droop {point.BusDroop:0.00 %}";
-        string rise = point.JunctionRise is { } kelvin ? $"junction rise "
-            + $"{SiText.Format(kelvin, "K", 2)}" : "junction rise not stated";
+        string rise = point.JunctionRise is { } kelvin
+            ? $"junction rise {SiText.Format(kelvin.Low, "K", 2)} low, {SiText.Format(kelvin.High, "K", 2)} high"
+            : "junction rise not stated";
         yield return $"  second turn-off at {SiText.Format(point.Off2Current, "A", 3)}, peak about "
             + $"{SiText.Format(point.Off2PeakVoltage, "V", 3)}; {rise}";
         yield return $"  {point.Samples} samples a channel at {SiText.Format(point.SampleInterval, "s")}; ranges "

@@ -14,15 +14,20 @@ internal static class PlanJson
         ["sequence"] = sequence.Name,
         ["revision"] = sequence.Revision,
         ["part"] = sequence.Part,
+        ["fires"] = HalfBridge.FiresHigh(sequence) ? "high" : "low",
+        ["companion"] = HalfBridge.CompanionPlace(sequence),
         ["operating_points"] = JsonOutput.Array(planned.Plan?.Points ?? [], Point),
         ["duration"] = JsonOutput.Number(planned.Plan?.Duration),
         ["bytes"] = planned.Plan?.Bytes,
-        ["refusals"] = JsonOutput.Array(planned.Refusals, refusal => new JsonObject
-        {
-            ["where"] = refusal.Where.ToString(),
-            ["message"] = refusal.Message(),
-        }),
+        ["refusals"] = JsonOutput.Array(planned.Refusals, Told),
+        ["notes"] = JsonOutput.Array(planned.Notes, Told),
     });
+
+    private static JsonObject Told(Problem problem) => new()
+    {
+        ["where"] = problem.Where.ToString(),
+        ["message"] = problem.Message(),
+    };
 
     private static JsonObject Point(PlannedPoint point) => new()
     {
@@ -35,7 +40,9 @@ internal static class PlanJson
         ["stored_energy"] = JsonOutput.Number(point.StoredEnergy),
         ["load_energy"] = JsonOutput.Number(point.LoadEnergy),
         ["bus_droop"] = JsonOutput.Number(point.BusDroop),
-        ["junction_rise"] = JsonOutput.Number(point.JunctionRise),
+        ["junction_rise"] = JsonOutput.Number(point.JunctionRise?.Warmer),
+        ["junction_rise_low"] = JsonOutput.Number(point.JunctionRise?.Low),
+        ["junction_rise_high"] = JsonOutput.Number(point.JunctionRise?.High),
         ["off2_current"] = JsonOutput.Number(point.Off2Current),
         ["off2_peak_voltage"] = JsonOutput.Number(point.Off2PeakVoltage),
         ["sample_interval"] = JsonOutput.Number(point.SampleInterval),

@@ -43,6 +43,46 @@ public sealed class LimitRefusalTests
         }
     }
 
+    // Whose a quantity is: times, energies and on state are the transistor's (IEC 60747-8 and -9), recovery is the
+    // diode's (IEC 60747-2); what the loop rings with is neither's. The division is common practice.
+    private static readonly string[] _ofSwitch =
+    [
+        "eon", "eoff", "td_on", "td_off", "tr", "tf", "dvdt_on", "dvdt_off", "didt_on", "didt_off", "vds_on",
+        "vds_peak_off", "vds_overshoot_off",
+    ];
+
+    private static readonly string[] _ofDiode =
+    [
+        "irm", "trr", "qrr", "ta", "tb", "softness", "dirr_dt", "dif_dt", "err", "vds_high_peak_1", "vds_high_peak_2",
+        "vds_high_peak_3",
+    ];
+
+    private static readonly string[] _ofCircuit =
+    [
+        "id_peak_on", "loop_inductance", "ring_frequency", "ring_damping", "ring_amplitude", "ring_q",
+        "ring_frequency_id", "ring_damping_id", "ring_frequency_off", "ring_damping_off", "bus_voltage", "bus_droop",
+    ];
+
+    [Theory]
+    [InlineData(DeviceKind.Mosfet, DevicePosition.Low)]
+    [InlineData(DeviceKind.Igbt, DevicePosition.High)]
+    [InlineData(DeviceKind.Diode, DevicePosition.High)]
+    [InlineData(DeviceKind.Diode, DevicePosition.Low)]
+    [InlineData(DeviceKind.Mosfet, DevicePosition.Both)]
+    public void Every_quantity_of_the_companion_is_refused_and_no_other(DeviceKind kind, DevicePosition position)
+    {
+        Sequence sequence = Shipped.Rated with { Kind = kind, Position = position };
+        string[] companions = position == DevicePosition.Both ? []
+            : kind == DeviceKind.Diode ? _ofSwitch : _ofDiode;
+        foreach (string name in _ofSwitch.Concat(_ofDiode).Concat(_ofCircuit))
+        {
+            Sequence limited = sequence with { Limits = [Shipped.Rated.Limits[0] with { Quantity = name }] };
+            bool refused = Planner.Plan(limited, Shipped.Bench).Refusals
+                .Any(problem => problem.ToString().Contains("companion", StringComparison.Ordinal));
+            Assert.True(companions.Contains(name) == refused, name);
+        }
+    }
+
     [Fact]
     public void A_limit_without_its_channel_is_refused()
     {

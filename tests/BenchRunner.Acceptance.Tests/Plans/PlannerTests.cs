@@ -102,11 +102,61 @@ public sealed class PlannerTests
     public void The_junction_warms_with_current_and_only_where_an_impedance_is_stated()
     {
         double cool = Shipped.Point(Shipped.With(point => point with { LoadCurrent = 20 }), Shipped.Bench)
-            .JunctionRise!.Value;
-        double warm = Shipped.Point(Shipped.Rated, Shipped.Bench).JunctionRise!.Value;
+            .JunctionRise!.Value.Warmer;
+        double warm = Shipped.Point(Shipped.Rated, Shipped.Bench).JunctionRise!.Value.Warmer;
         Assert.InRange(cool, 0.1, warm);
         Assert.InRange(warm, 1, 15);
         Assert.Null(Shipped.Point(Shipped.Rated with { ThermalImpedance = [] }, Shipped.Bench).JunctionRise);
+    }
+
+    [Fact]
+    public void Both_junctions_are_warmed_and_the_second_turn_off_counts()
+    {
+        // An impedance that does not depend on time gives P · Zth while the power lasts: at off2 the switch loses
+        // V · i, the diode V_F · i, a sixteenth of a straight decay long. An hour between trains adds next to nothing.
+        Sequence flat = Shipped.With(point => point with { RepeatEvery = 3600 }) with
+        {
+            ThermalImpedance = [new ThermalPoint(double.PositiveInfinity, 1e-3)],
+            Limits = [],
+        };
+        JunctionRise rise = Shipped.Point(flat, Shipped.Bench).JunctionRise!.Value;
+        Assert.Equal(1e-3 * 600 * 54.75, rise.Low, 0.02);
+        Assert.Equal(1e-3 * 3 * 54.75 * 31 / 32, rise.High, 0.001);
+
+        Sequence longer = flat with { OperatingPoints = [flat.OperatingPoints[0] with { SecondPulse = 5e-6 }] };
+        Assert.Equal(
+            1e-3 * 600 * (54.75 + 10), Shipped.Point(longer, Shipped.Bench).JunctionRise!.Value.Low, 0.02);
+    }
+
+    [Fact]
+    public void The_places_are_those_that_fire_and_freewheel()
+    {
+        JunctionRise low = Shipped.Point(Shipped.Rated with { Limits = [] }, Shipped.Bench).JunctionRise!.Value;
+        JunctionRise high = Shipped.Point(
+            Shipped.Rated with { Limits = [], Position = DevicePosition.High },
+            Shipped.Bench with { LoadToPositive = false }).JunctionRise!.Value;
+        Assert.Equal((low.Low, low.High), (high.High, high.Low));
+    }
+
+    [Theory]
+    [InlineData(DevicePosition.Low, "high")]
+    [InlineData(DevicePosition.High, "low")]
+    [InlineData(DevicePosition.Both, null)]
+    public void The_companion_sits_in_the_other_place(DevicePosition position, string? place) =>
+        Assert.Equal(place, HalfBridge.CompanionPlace(Shipped.Sequence with { Position = position }));
+
+    [Fact]
+    public void Each_new_temperature_costs_a_soak()
+    {
+        OperatingPoint rated = Shipped.Rated.OperatingPoints[0];
+        Sequence At(params double?[] temperatures) => Shipped.Rated with
+        {
+            AsWritten = true,
+            OperatingPoints = [.. temperatures.Select((degrees, i) => rated with { Name = $"p{i}", Temperature = degrees })],
+        };
+        double Duration(Sequence sequence) => Planner.Plan(sequence, Shipped.Bench).Plan!.Duration;
+        Assert.Equal(Duration(At(null, null, null)) + 240, Duration(At(null, 125, 150)), 1e-6);
+        Assert.Equal(Duration(At(null, null, null)) + 60, Duration(At(125, 125, 125) with { Soak = 60 }), 1e-6);
     }
 
     [Theory]

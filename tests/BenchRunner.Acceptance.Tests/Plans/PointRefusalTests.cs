@@ -48,6 +48,22 @@ public sealed class PointRefusalTests
         Refused(bench => bench with { Envelope = bench.Envelope with { Pulse = 5e-6 } }, "first pulse of 8.0", "5 us");
 
     [Fact]
+    public void A_peak_at_the_second_turn_off_above_the_envelope_is_refused() =>
+        Refused(
+            bench => bench with { Envelope = bench.Envelope with { Voltage = 750 } }, "second turn-off", "about 786",
+            "envelope of 750 V");
+
+    [Fact]
+    public void A_second_pulse_longer_than_the_envelope_is_refused() =>
+        Refused(
+            Shipped.With(point => point with { SecondPulse = 9e-6 }),
+            Shipped.Bench with
+            {
+                Envelope = Shipped.Bench.Envelope with { Pulse = 8.5e-6 },
+            },
+            "the second pulse is 9 us", "envelope of 8.5 us");
+
+    [Fact]
     public void A_peak_at_the_second_turn_off_above_the_blocking_voltage_is_refused() =>
         Refused(
             Shipped.Rated with { Ratings = Shipped.Rated.Ratings with { BlockingVoltage = 750 } }, Shipped.Bench,
@@ -76,7 +92,27 @@ public sealed class PointRefusalTests
     public void A_junction_above_its_maximum_is_refused() =>
         Refused(
             Shipped.Rated with { Ratings = Shipped.Rated.Ratings with { JunctionMaximum = 25 } }, Shipped.Bench,
-            "the junction reaches", "25 degC");
+            "the high junction reaches", "above the plate: low", "25 degC");
+
+    [Fact]
+    public void The_junction_that_is_too_hot_is_named() =>
+        Refused(
+            Shipped.Rated with
+            {
+                Expected = Shipped.Rated.Expected with { ForwardVoltage = 0.5 },
+                Ratings = Shipped.Rated.Ratings with { JunctionMaximum = 25 },
+                Limits = [],
+            },
+            Shipped.Bench, "the low junction reaches", "25 degC");
+
+    [Fact]
+    public void A_hot_junction_is_refused_by_plate_and_rise_together()
+    {
+        Sequence hot = Shipped.With(point => point with { Temperature = 149 });
+        Sequence rated = hot with { Ratings = hot.Ratings with { JunctionMaximum = 150 } };
+        Refused(rated, HotPlate(150), "the high junction reaches 155 degC", "150 degC");
+        Assert.Empty(Planner.Plan(hot, HotPlate(150)).Refusals.Select(problem => problem.ToString()));
+    }
 
     [Fact]
     public void An_inductor_too_small_for_the_shortest_pulse_is_refused() =>
@@ -121,6 +157,26 @@ public sealed class PointRefusalTests
     [Fact]
     public void A_hot_point_without_a_hotplate_is_refused() =>
         Refused(point => point with { Temperature = 125 }, "temperature is 125 degC", "no hotplate");
+
+    [Fact]
+    public void A_point_hotter_than_the_envelope_or_cooler_than_the_room_is_refused()
+    {
+        Sequence At(double degrees) => Shipped.With(point => point with { Temperature = degrees });
+        Refused(At(126), HotPlate(125), "temperature is 126 degC", "envelope of 125 degC");
+        Refused(At(10), HotPlate(125), "temperature is 10 degC", "heats only");
+        Refused(At(60), HotPlate(null), "temperature is 60 degC", "envelope of no temperature");
+        Assert.Empty(Planner.Plan(At(125), HotPlate(125)).Refusals.Select(problem => problem.ToString()));
+        Assert.Empty(Planner.Plan(At(25), Shipped.Bench).Refusals.Select(problem => problem.ToString()));
+    }
+
+    private static Bench HotPlate(double? most) => Shipped.Bench with
+    {
+        Roles = new Dictionary<string, InstrumentSetup>(Shipped.Bench.Roles)
+        {
+            ["hotplate"] = Shipped.Bench.Roles["scope"] with { Dialect = "generic-hotplate" },
+        },
+        Envelope = Shipped.Bench.Envelope with { Temperature = most },
+    };
 
     [Fact]
     public void A_record_longer_than_the_memory_is_refused() =>

@@ -1,0 +1,85 @@
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Acceptance.Validity;
+using BenchRunner.Signals.Traces;
+using FakeBench.Fixtures;
+using FakeBench.Physics;
+using FakeBench.Population;
+using FakeBench.Probes;
+using Bench = BenchRunner.Acceptance.Benches.Bench;
+using Circuit = FakeBench.Physics.HalfBridge;
+using HalfBridge = BenchRunner.Acceptance.Plans.HalfBridge;
+using PulseTrain = FakeBench.Physics.PulseTrain;
+
+namespace BenchRunner.Acceptance.Tests.Physics;
+
+/// <summary>
+/// A bench in process: FakeBench's half bridge, probes and converter, without wires. It fires a train that a plan asks
+/// for and gives the traces that a scope would. What a test changes is the one flaw of the bench.
+/// </summary>
+internal sealed record FiredBench(Sequence Sequence, Bench Bench)
+{
+    public const string HealthySerial = "W1200-0001";
+
+    public string Serial { get; init; } = HealthySerial;
+
+    public int Seed { get; init; } = 1;
+
+    public int Bits { get; init; } = 12;
+
+    /// <summary>What is wrong with load, bank, shunt or driver.</summary>
+    public Func<BenchParts, BenchParts> Fixture { get; init; } = parts => parts;
+
+    /// <summary>What is wrong with the device.</summary>
+    public Func<Device, Device> Part { get; init; } = device => device;
+
+    /// <summary>What is wrong with the pulser, or with the bus that it fires on.</summary>
+    public Func<PulseTrain, PulseTrain> Pulser { get; init; } = train => train;
+
+    /// <summary>What is wrong with a probe.</summary>
+    public Func<Channel, ProbeChannel, ProbeChannel> Probe { get; init; } = (_, probe) => probe;
+
+    private bool FiresHigh => HalfBridge.FiresHigh(Sequence);
+
+    /// <summary>Fires a train as set, at the point's bus voltage, and records it on the ranges asked for.</summary>
+    /// <param name="planned">The point.</param>
+    /// <param name="set">The train.</param>
+    /// <param name="ranges">The ranges.</param>
+    /// <param name="fire">Count of fires since the bench started: noise and jitter depend on it.</param>
+    public IReadOnlyList<RawTrace> Fire(
+        PlannedPoint planned, TrainSet set, IReadOnlyList<PlannedRange> ranges, long fire)
+    {
+        Device device = Part(DevicePopulation.Draw(Serial, Seed));
+        var train = new PulseTrain(
+            set.First, set.Gap, set.Second, set.GateOn, set.GateOff, planned.Point.BusVoltage);
+        TrainTrajectory trajectory = Circuit.Simulate(
+            device.On(Fixture(new BenchValues(1).Parts)), Pulser(train), -planned.Pretrigger, planned.SampleInterval,
+            planned.Samples);
+        var key = new CaptureKey(Seed, Serial, fire);
+        double shift = key.Jitter(BenchProbes.TriggerJitter);
+        return [.. ranges.Select(range => Record(trajectory, range, key.Noise(range.Input), shift))];
+    }
+
+    private RawTrace Record(TrainTrajectory train, PlannedRange range, ulong noise, double shift)
+    {
+        var converter = new Digitiser(Bits, range.Span, range.Offset);
+        ProbeChannel probe = Probe(range.Channel, BenchProbes.Of(range.Channel.Name()));
+        short[] codes = Recorder.Record(
+            train, FiresHigh ? probe with { Signal = Mirrored(probe.Signal) } : probe, converter, noise, shift);
+        return new RawTrace(
+            range.Channel, codes, train.Start, train.Interval, converter.Step, converter.Centre, 0, converter.Lowest,
+            converter.Highest);
+    }
+
+    /// <summary>The circuit fires its low place; with the load on the other rail the bench is its mirror image.</summary>
+    private static Signal Mirrored(Signal signal) => signal switch
+    {
+        Signal.VgsLow => Signal.VgsHigh,
+        Signal.VdsLow => Signal.VdsHigh,
+        Signal.IdLow => Signal.IdHigh,
+        Signal.VgsHigh => Signal.VgsLow,
+        Signal.VdsHigh => Signal.VdsLow,
+        Signal.IdHigh => Signal.IdLow,
+        _ => signal,
+    };
+}
