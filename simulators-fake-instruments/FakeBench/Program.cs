@@ -15,6 +15,9 @@ public static class Program
 
           serve [options]   starts the instruments, prints a line for each link, then 'ready'
             --device SERIAL       device in the socket (W1200-0001)
+            --companion SERIAL    fills the other place; the device and its companion are single parts then
+            --load positive|negative  rail of the load; negative: the high place fires (positive)
+            --sound               named devices come without their defect
             --seed N              seed of population, noise and jitter (1)
             --pace X              how much faster charging and bleeding are than in the lab, 1 to 5 (1)
             --bits 8|12           converter of the scope (12)
@@ -24,6 +27,7 @@ public static class Program
             --ambient DEGC        temperature of the room (23)
             --fault NAME[@WHEN]   a fault; may repeat; WHEN is fire:N, volts:V, seconds:S or block:N
             --write-bench FILE    writes a bench file that reaches the instruments
+            --exchange none|by-hand  how devices are exchanged, as the bench file says it (none)
             --ends-with-input     ends when standard input ends, and ignores a terminal's interrupts
           faults            lists the faults, a line each
           devices           lists the named devices as CSV
@@ -134,10 +138,12 @@ public static class Program
 
     private static void ListDevices()
     {
-        Console.Out.WriteLine("serial,part,defect,expected_outcome");
+        Console.Out.WriteLine("serial,part,defect,expected_outcome,change");
         foreach (Device device in DevicePopulation.Named)
         {
-            Console.Out.WriteLine($"{device.Serial},{device.Part},{device.Defect},{device.ExpectedOutcome}");
+            string[] fields =
+                [device.Serial, device.Part, device.Defect ?? "", device.ExpectedOutcome, device.Change];
+            Console.Out.WriteLine(string.Join(',', fields));
         }
     }
 }

@@ -19,9 +19,66 @@ public static class FaultCatalogue
     public const string ErrorQueueFull = "error-queue-full";
     public const string WrongIdentity = "wrong-identity";
     public const string SingleClient = "single-client";
+    public const string WrongPart = "wrong-part";
+    public const string NotExchanged = "not-exchanged";
+    public const string DeviceDies = "device-dies";
+    public const string ShortRecord = "short-record";
+    public const string WeakSignal = "weak-signal";
+    public const string NoisyProbe = "noisy-probe";
+    public const string ProbeDrift = "probe-drift";
+    public const string ProbeFactorChanges = "probe-factor-changes";
+    public const string ShortPulse = "short-pulse";
+    public const string LongPulse = "long-pulse";
+    public const string ShortGap = "short-gap";
+    public const string WeakGateDriver = "weak-gate-driver";
+    public const string HighOffLevel = "high-off-level";
+    public const string GateLifts = "gate-lifts";
+    public const string InductorOff = "inductor-off";
+    public const string InductorFarOff = "inductor-far-off";
+    public const string SaturatingInductor = "saturating-inductor";
+    public const string SupplySags = "supply-sags";
+    public const string SupplyLow = "supply-low";
+    public const string BankWeak = "bank-weak";
+    public const string PlateDrifts = "plate-drifts";
 
     /// <summary>Set-point at which <see cref="SupplyClips"/> clips, V.</summary>
     public const double ClipLevel = 350;
+
+    /// <summary>What is left of the swing in <see cref="WeakSignal"/>, 1.</summary>
+    public const double WeakSwing = 0.125;
+
+    /// <summary>Noise of <see cref="NoisyProbe"/>, V rms, and the bus voltage from which on it is there, V.</summary>
+    public const double ProbeNoise = 30, NoiseFrom = 100;
+
+    /// <summary>Step of the offset in <see cref="ProbeDrift"/>, A.</summary>
+    public const double OffsetStep = 0.3;
+
+    /// <summary>What the attenuation is multiplied by in <see cref="ProbeFactorChanges"/>, 1.</summary>
+    public const double FactorChange = 10;
+
+    /// <summary>How far the second pulse is off in <see cref="ShortPulse"/> and <see cref="LongPulse"/>, 1.</summary>
+    public const double PulseError = 0.05;
+
+    /// <summary>What is left of the gap in <see cref="ShortGap"/>, 1.</summary>
+    public const double ShortGapFactor = 1.0 / 15;
+
+    /// <summary>How far a gate level is off, V.</summary>
+    public const double LevelError = 1;
+
+    /// <summary>Load inductance over the stated one, 1.</summary>
+    public const double OffInductor = 1.05, FarOffInductor = 1.4;
+
+    /// <summary>Saturation flux over a sound inductor's, 1.</summary>
+    public const double SaturatingFlux = 0.43;
+
+    /// <summary>How far the bus is below what was set, 1.</summary>
+    public const double BusError = 0.02;
+
+    /// <summary>What is left of the bank's capacitance in <see cref="BankWeak"/>, 1.</summary>
+    public const double WeakBank = 0.08;
+
+    /// <summary>How far the plate falls in <see cref="PlateDrifts"/>, K.</summary>
+    public const double PlateDrift = 6;
 
     /// <summary>How late the reply of <see cref="LateReply"/> is.</summary>
     public static TimeSpan Lateness { get; } = TimeSpan.FromSeconds(4);
@@ -46,6 +103,30 @@ public static class FaultCatalogue
         new(ErrorQueueFull, Moment.Start, "the supply's error queue is full and ends in -350"),
         new(WrongIdentity, Moment.Start, "the supply says that it is a voltmeter"),
         new(SingleClient, Moment.Start, "each instrument serves one client at a time; a second one is closed at once"),
+        new(WrongPart, Moment.Start, "the hands insert another part than they were told: one with 0.4 of its die"),
+        new(NotExchanged, Moment.Start, "the hands do nothing: the loop never opens, the device before stays in"),
+        new(DeviceDies, Fire(3), "the firing device turns into a short 30 ns after the second turn-off of one train"),
+        new(ShortRecord, Fire(3), "the scope's last input records half of its samples of one train"),
+        new(WeakSignal, Fire(3), "the voltage probe of the freewheeling place makes no contact in one train: an "
+            + "eighth of the swing couples through"),
+        new(NoisyProbe, Moment.Start, "the same probe picks up noise of 30 V rms from 100 V of bus voltage on"),
+        new(ProbeDrift, Fire(3), "the firing place's current probe gains an offset of 0.3 A until it is degaussed"),
+        new(ProbeFactorChanges, Fire(3), "after one train the scope's attenuation of the firing place's current is "
+            + "ten times what was set"),
+        new(ShortPulse, Fire(3), "the second pulse of one train is 5 % too short"),
+        new(LongPulse, Fire(3), "the second pulse of one train is 5 % too long"),
+        new(ShortGap, Fire(3), "the gap of one train is a fifteenth of what was set"),
+        new(WeakGateDriver, Fire(3), "from then on the gate is on at 1 V less than set"),
+        new(HighOffLevel, Fire(3), "from then on the gates are off at 1 V more than set"),
+        new(GateLifts, Moment.Start, "the driver of the place held off has lost its negative rail: the gate rests "
+            + "at 0 V and is lifted above 0.5 V by each turn-on"),
+        new(InductorOff, Moment.Start, "the load has 5 % more inductance than stated"),
+        new(InductorFarOff, Moment.Start, "the load has 40 % more inductance than stated"),
+        new(SaturatingInductor, Moment.Start, "the load saturates at 0.43 of its flux"),
+        new(SupplySags, Fire(3), "the bus is 2 % low in one train"),
+        new(SupplyLow, Moment.Start, "the supply gives 2 % less than it says that it was set to"),
+        new(BankWeak, Fire(3), "in one train the bank has 0.08 of its capacitance: the rest has lost contact"),
+        new(PlateDrifts, Fire(3), "a draught cools the hotplate by 6 K, once"),
     ];
 
     private static Moment Fire(int n) => new(MomentKind.Fire, n);

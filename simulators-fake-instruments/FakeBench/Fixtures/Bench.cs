@@ -15,9 +15,8 @@ public sealed class Bench
     private readonly TimeProvider _time;
     private readonly long _start;
     private readonly Bus _bus = new();
-    private readonly int _seed;
-    private readonly double _ambient;
-    private Device _device;
+    private readonly BenchSetup _setup;
+    private readonly Socket _socket;
 
     /// <summary>Makes a bench with a device in its socket, the enclosure closed, the bank empty.</summary>
     /// <param name="setup">What it is made of.</param>
@@ -28,12 +27,11 @@ public sealed class Bench
         ArgumentNullException.ThrowIfNull(setup);
         ArgumentNullException.ThrowIfNull(faults);
         ArgumentNullException.ThrowIfNull(time);
-        (Values, Faults, _seed, _time) = (setup.Values, faults, setup.Seed, time);
+        (_setup, Faults, _time) = (setup, faults, time);
         _start = time.GetTimestamp();
         Supply = new SupplyStage { Limit = setup.Values.SupplyLimit };
         Plate = setup.Hotplate ? new Plate(setup.Values.PlateCapacity, setup.Ambient) : null;
-        _ambient = setup.Ambient;
-        _device = DevicePopulation.Draw(setup.Device, setup.Seed);
+        _socket = new Socket(setup);
         Begun(Faults.Reach(MomentKind.Start, 0));
         Begun(Faults.Reach(MomentKind.Volts, 0));
     }
@@ -45,7 +43,10 @@ public sealed class Bench
     public Lock Gate { get; } = new();
 
     /// <summary>Component values.</summary>
-    public BenchValues Values { get; }
+    public BenchValues Values => _setup.Values;
+
+    /// <summary>Whether the load goes to the negative rail and the high place fires.</summary>
+    public bool LoadToNegative => _setup.LoadToNegative;
 
     /// <summary>What goes wrong.</summary>
     public FaultPlan Faults { get; }
@@ -61,16 +62,19 @@ public sealed class Bench
 
     /// <summary>Temperature of the devices, degC: that of the plate, or of the room. No train warms them.</summary>
     /// <remarks>In steps of 0.5 K, so that a plate that has all but settled gives the same trains.</remarks>
-    public double DeviceTemperature => Math.Round(2 * (Plate?.Temperature ?? _ambient)) / 2;
+    public double DeviceTemperature => Math.Round(2 * (Plate?.Temperature ?? _setup.Ambient)) / 2;
 
-    /// <summary>Level at which the pulser holds both gates off, V.</summary>
+    /// <summary>Level at which the pulser was told to hold both gates off, V.</summary>
     public double GateOff { get; set; }
 
     /// <summary>Seed of population and noise.</summary>
-    public int Seed => _seed;
+    public int Seed => _setup.Seed;
 
     /// <summary>Serial of the device in the socket.</summary>
-    public string Serial => _device.Serial;
+    public string Serial => _socket.Serial;
+
+    /// <summary>What the device in the socket brings with it.</summary>
+    public IReadOnlyList<Change> Changes => _socket.Changes;
 
     /// <summary>Time since the start, s.</summary>
     public double Now { get; private set; }
@@ -88,10 +92,11 @@ public sealed class Bench
     public bool InCurrentLimit => Supply.Output && SupplyCurrent >= Supply.Limit;
 
     /// <summary>Whether the supply's inner voltage still follows its set-point.</summary>
-    public bool Slewing => Supply.Output && _bus.Source != Supply.Voltage;
+    public bool Slewing => Supply.Output && _bus.Source != SupplyTarget();
 
     /// <summary>The half bridge with the device in its socket.</summary>
-    public CircuitParameters HalfBridge => _device.At(DeviceTemperature).On(Values.Parts);
+    public CircuitParameters HalfBridge =>
+        _socket.On(Flaws.On(Values.Parts, Faults), DeviceTemperature, BankVoltage);
 
     /// <summary>Brings everything up to the clock.</summary>
     public void Advance()
@@ -107,7 +112,7 @@ public sealed class Bench
             }
 
             double span = Math.Max(stop - Now, 0);
-            double moved = _bus.Advance(Circuit(), Supply.Voltage, Values.Slew, span, threshold);
+            double moved = _bus.Advance(Circuit(), SupplyTarget(), Values.Slew, span, threshold);
             double next = moved < span ? Now + moved : Math.Max(stop, Now);
             Plate?.Advance(next - Now);
             Now = next;
@@ -129,11 +134,11 @@ public sealed class Bench
     {
         ArgumentNullException.ThrowIfNull(end);
         _bus.SetVoltage(Math.Max(end.BankVoltageAfter, 0));
-        if (end.LowDied)
-        {
-            _device = _device.AfterDeath();
-        }
+        _socket.Fired(end.LowDied);
     }
+
+    /// <summary>Something takes a share of the bank's charge at once.</summary>
+    public void Sag(double share) => _bus.SetVoltage(_bus.Voltage * (1 - share));
 
     /// <summary>Something has been counted: faults of that moment begin.</summary>
     public void Reached(MomentKind kind, double count) => Begun(Faults.Reach(kind, count));
@@ -147,6 +152,8 @@ public sealed class Bench
         string[] words = hand.Split(' ', StringSplitOptions.RemoveEmptyEntries | StringSplitOptions.TrimEntries);
         switch (words)
         {
+            case ["open" or "close" or "insert", ..] when Faults.Has(FaultCatalogue.NotExchanged):
+                break;
             case ["open"]:
                 Chain.EnclosureOpen = true;
                 break;
@@ -165,7 +172,7 @@ public sealed class Bench
                     return "the enclosure is closed; open it first";
                 }
 
-                _device = DevicePopulation.Draw(serial, _seed);
+                _socket.Insert(serial, Faults.Has(FaultCatalogue.WrongPart));
                 break;
             default:
                 return $"no hand does '{hand}'; open, insert SERIAL, close, stop, release";
@@ -174,6 +181,9 @@ public sealed class Bench
         Happen();
         return null;
     }
+
+    private double SupplyTarget() =>
+        Supply.Voltage * (Faults.Has(FaultCatalogue.SupplyLow) ? 1 - FaultCatalogue.BusError : 1);
 
     private BusCircuit Circuit()
     {
@@ -186,10 +196,9 @@ public sealed class Bench
             Supply.Output);
     }
 
-    // Both gates off: the load pulls the switch node to the bus, so the low place alone stands across the bank.
     private double LeakConductance()
     {
-        double leak = _device.Low.Switch.Leakage;
+        double leak = _socket.Leakage;
         return leak / (1 + (leak * Values.Parts.LoadResistance));
     }
 
@@ -236,6 +245,9 @@ public sealed class Bench
                     break;
                 case FaultCatalogue.OverVoltageTrips:
                     TripSupply();
+                    break;
+                case FaultCatalogue.PlateDrifts:
+                    Plate?.Disturb(-FaultCatalogue.PlateDrift);
                     break;
                 default:
                     break;

@@ -27,9 +27,18 @@ public static class BenchProbes
     public static IReadOnlyList<string> Names { get; } = [.. All.Select(p => p.Name)];
 
     /// <summary>The probe of a channel.</summary>
+    /// <param name="channel">Its name.</param>
+    /// <param name="loadToNegative">Whether the high place fires: then each place has the other one's probes, the
+    /// shunt with them.</param>
     /// <exception cref="FormatException">No channel has that name.</exception>
-    public static ProbeChannel Of(string channel)
+    public static ProbeChannel Of(string channel, bool loadToNegative = false)
     {
+        if (loadToNegative)
+        {
+            ProbeChannel twin = Of(Mirror.Of(channel));
+            return twin with { Signal = Mirror.Of(twin.Signal) };
+        }
+
         foreach ((string name, ProbeChannel probe) in All)
         {
             if (name == channel)

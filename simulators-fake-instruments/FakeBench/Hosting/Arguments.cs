@@ -45,13 +45,17 @@ public static class Arguments
     private static ServeOptions? Flag(ServeOptions options, string name) => name switch
     {
         "--ends-with-input" => options with { EndsWithInput = true },
+        "--sound" => options with { Sound = true },
         "--hotplate" => options with { Hotplate = true },
         _ => null,
     };
 
     private static ServeOptions Set(ServeOptions options, string name, string value) => name switch
     {
-        "--device" => options with { Device = Serial(value) },
+        "--device" => options with { Device = Serial(name, value) },
+        "--companion" => options with { Companion = Serial(name, value) },
+        "--load" => options with { LoadToNegative = Either(name, value, "positive", "negative") },
+        "--exchange" => options with { ByHand = Either(name, value, "none", "by-hand") },
         "--seed" => options with { Seed = (int)Number(name, value, int.MinValue, int.MaxValue) },
         "--pace" => options with { Pace = Number(name, value, 1, 5) },
         "--ambient" => options with { Ambient = Number(name, value, -20, 60) },
@@ -61,7 +65,7 @@ public static class Arguments
             ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12")
         },
         "--channels" => options with { Channels = Channels(value) },
-        "--interlock" => options with { SerialInterlock = Serial(name, value) },
+        "--interlock" => options with { SerialInterlock = IsSerial(name, value) },
         "--write-bench" => options with { WriteBench = value },
         _ => throw new FormatException($"{name}: no such option; see --help"),
     };
@@ -73,13 +77,17 @@ public static class Arguments
             : throw Wrong(
                 name, value, string.Create(CultureInfo.InvariantCulture, $"a number from {lowest} to {highest}"));
 
-    private static string Serial(string value) =>
+    private static string Serial(string name, string value) =>
         value.Length is > 0 and <= LongestSerial && value.All(
             c => char.IsAsciiLetterOrDigit(c) || c is '.' or '_' or '-')
             ? value
-            : throw Wrong("--device", value, "1 to 64 letters, digits, dots, dashes, underscores");
+            : throw Wrong(name, value, "1 to 64 letters, digits, dots, dashes, underscores");
 
-    private static bool Serial(string name, string value) => value switch
+    // Whether it is the second of two words.
+    private static bool Either(string name, string value, string first, string second) =>
+        value == second || (value == first ? false : throw Wrong(name, value, $"{first} or {second}"));
+
+    private static bool IsSerial(string name, string value) => value switch
     {
         "tcp" => false,
         "serial" when PseudoTerminal.IsSupported => true,

@@ -29,9 +29,10 @@ public static class BenchFile
         }
 
         double loop = LoopInductance(parts) * 1e9;
-        Line($"exchange: none");
+        Line($"exchange: {(options.ByHand ? "by-hand" : "none")}");
+        string rail = options.LoadToNegative ? "negative" : "positive";
         (double load, double resistance) = (parts.LoadInductance * 1e6, parts.LoadResistance * 1e3);
-        Line($"load: {{ inductance: {load:0.###} uH, resistance: {resistance:0.###} mOhm, to: positive }}");
+        Line($"load: {{ inductance: {load:0.###} uH, resistance: {resistance:0.###} mOhm, to: {rail} }}");
         (double bank, double bleeder) = (parts.BankCapacitance * 1e6, values.Bleeder / 1e3);
         Line($"bus: {{ capacitance: {bank:0.###} uF, bleeder: {bleeder:0.###} kOhm, empty-socket: 0.1 mA }}");
         Line($"supply: {{ charging-current: {values.SupplyLimit:0.###} A }}");
@@ -46,7 +47,7 @@ public static class BenchFile
         Line($"channels:");
         for (int i = 0; i < options.Channels.Count; i++)
         {
-            Line($"  {options.Channels[i]}: {{ scope: {i + 1}, {Probe(options.Channels[i])} }}");
+            Line($"  {options.Channels[i]}: {{ scope: {i + 1}, {Probe(options.Channels[i], options.LoadToNegative)} }}");
         }
 
         Line($"envelope: {{ voltage: 900 V, current: 120 A, energy: 10 J, pulse: 20 us }}");
@@ -73,10 +74,10 @@ public static class BenchFile
             + $", identity: '.*FAKEBENCH-{role.ToUpperInvariant()}.*'";
     }
 
-    private static string Probe(string channel) => channel switch
+    private static string Probe(string channel, bool loadToNegative) => channel switch
     {
         "id_low" or "id_high" or "i_load" =>
-            $"probe: {(channel == "id_low" ? "shunt" : "transformer")}, rating: 200 A, gain: 1, skew: 0 s, "
+            $"probe: {(channel == (loadToNegative ? "id_high" : "id_low") ? "shunt" : "transformer")}, rating: 200 A, gain: 1, skew: 0 s, "
             + "uncertainty: { gain: 0.5 %, offset: 100 mA, skew: 200 ps }",
         "vgs_low" or "vgs_high" => "probe: isolated, rating: 50 V, gain: 1, offset: 0 V, skew: 0 s, "
             + "uncertainty: { gain: 1 %, offset: 50 mV, skew: 300 ps }",

@@ -1,11 +1,14 @@
 using FakeBench.Faults;
 using FakeBench.Fixtures;
+using FakeBench.Physics;
 
 namespace FakeBench.Hosting;
 
 /// <summary>What <c>serve</c> is asked for.</summary>
 public sealed record ServeOptions
 {
+    private static readonly string[] FiringFirst = ["vgs_low", "vds_low", "id_low", "vgs_high", "vds_high", "vbus"];
+
     /// <summary>Device in the socket.</summary>
     public string Device { get; init; } = "W1200-0001";
 
@@ -18,9 +21,21 @@ public sealed record ServeOptions
     /// <summary>Faults.</summary>
     public IReadOnlyList<Fault> Faults { get; init; } = [];
 
-    /// <summary>Channels on the scope's inputs 1, 2, …</summary>
-    public IReadOnlyList<string> Channels { get; init; } =
-        ["vgs_low", "vds_low", "id_low", "vgs_high", "vds_high", "vbus"];
+    /// <summary>Serial of the companion in the other place; null: the device fills both.</summary>
+    public string? Companion { get; init; }
+
+    /// <summary>Whether the load goes to the negative rail and the high place fires.</summary>
+    public bool LoadToNegative { get; init; }
+
+    /// <summary>Whether named devices come without their defect.</summary>
+    public bool Sound { get; init; }
+
+    /// <summary>Channels on the scope's inputs 1, 2, …: of the firing place first.</summary>
+    public IReadOnlyList<string> Channels
+    {
+        get => field ?? [.. FiringFirst.Select(channel => LoadToNegative ? Mirror.Of(channel) : channel)];
+        init;
+    }
 
     /// <summary>Bits of the scope's converter, 8 or 12.</summary>
     public int Bits { get; init; } = 12;
@@ -34,6 +49,9 @@ public sealed record ServeOptions
     /// <summary>Temperature of the room, degC.</summary>
     public double Ambient { get; init; } = 23;
 
+    /// <summary>Whether the bench file that is written says that devices are exchanged by hand.</summary>
+    public bool ByHand { get; init; }
+
     /// <summary>Bench file to write; null: none.</summary>
     public string? WriteBench { get; init; }
 
@@ -44,6 +62,9 @@ public sealed record ServeOptions
     public BenchSetup Setup => new(new BenchValues(Pace), Device)
     {
         Seed = Seed,
+        Companion = Companion,
+        LoadToNegative = LoadToNegative,
+        Sound = Sound,
         Hotplate = Hotplate,
         Ambient = Ambient,
     };

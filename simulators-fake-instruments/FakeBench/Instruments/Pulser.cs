@@ -54,7 +54,8 @@ public sealed class Pulser : Instrument
         commands.Ask("[SOURce:]PULSe:COUNt?", _ => Numbers.Nr1(_count));
     }
 
-    private PulseTrain Train => new(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage);
+    private PulseTrain Train =>
+        Flaws.On(new PulseTrain(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage), Bench.Faults);
 
     /// <inheritdoc/>
     protected override void Refresh()
@@ -121,10 +122,15 @@ public sealed class Pulser : Instrument
 
         _armed = false;
         _count++;
-        PulseTrain train = Train;
-        CircuitParameters circuit = Bench.HalfBridge;
         Bench.Reached(MomentKind.Fire, _count);
         _silent |= Bench.Faults.Has(FaultCatalogue.FireUnanswered);
+        if (Bench.Faults.Take(FaultCatalogue.SupplySags))
+        {
+            Bench.Sag(FaultCatalogue.BusError);
+        }
+
+        PulseTrain train = Flaws.Once(Train, Bench.Faults);
+        CircuitParameters circuit = Flaws.Once(Bench.HalfBridge, Bench.Faults);
         try
         {
             TrainTrajectory trajectory = _trains.Get(circuit, train, _scope.Window);

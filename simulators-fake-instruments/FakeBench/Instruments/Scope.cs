@@ -27,7 +27,7 @@ public sealed class Scope : Instrument
     private static readonly NumericRange Points = new(16, MostPoints, 10_000);
     private static readonly NumericRange Pretrigger = new(0, 100e-6, 1e-6, "S");
 
-    private readonly ProbeChannel[] _probes;
+    private readonly ScopeInputs _inputs;
     private readonly int _bits;
     private readonly ScopeFormat _format = new();
     private AcquisitionSettings _settings;
@@ -45,7 +45,7 @@ public sealed class Scope : Instrument
     public Scope(Bench bench, IReadOnlyList<string> channels, int bits)
         : base(bench, "scope")
     {
-        _probes = [.. channels.Select(BenchProbes.Of)];
+        _inputs = new ScopeInputs(bench, channels);
         _bits = bits;
         _settings = Defaults();
         AddInputs(string.Join('|', Enumerable.Range(1, channels.Count)));
@@ -78,7 +78,7 @@ public sealed class Scope : Instrument
             return;
         }
 
-        Signal source = _probes[settings.Source - 1].Signal;
+        Signal source = _inputs.Probes[settings.Source - 1].Signal;
         if (Trigger.Find(train, source, settings.Level, settings.Rising) is not { } at)
         {
             return;
@@ -97,13 +97,20 @@ public sealed class Scope : Instrument
 
         var key = new CaptureKey(Bench.Seed, Bench.Serial, fire);
         double shift = key.Jitter(BenchProbes.TriggerJitter) - remainder;
-        bool overdriven = Bench.Faults.Take(FaultCatalogue.ClippedRange);
-        Keep(new ScopeRecord(settings, part, _probes, key, shift, _bits, overdriven));
+        Keep(new ScopeRecord(settings, part, _inputs.Now(settings, inTrain: true), key, shift, _bits));
     }
 
     /// <inheritdoc/>
-    protected override void Refresh() => Scpi.Status.Operation.SetCondition(
-        _waiting is not null ? WaitsForTrigger : Bench.Now < _completeAt ? Sweeping : 0);
+    protected override void Refresh()
+    {
+        if (_inputs.Current is { } current && Bench.Faults.Take(FaultCatalogue.ProbeFactorChanges))
+        {
+            SetInput(current, s => s with { Attenuation = s.Attenuation * FaultCatalogue.FactorChange });
+        }
+
+        Scpi.Status.Operation.SetCondition(
+            _waiting is not null ? WaitsForTrigger : Bench.Now < _completeAt ? Sweeping : 0);
+    }
 
     /// <inheritdoc/>
     protected override void Reset()
@@ -138,7 +145,7 @@ public sealed class Scope : Instrument
         1,
         Level.Default,
         true,
-        [.. _probes.Select(p => new InputSettings(Span.Default, Offset.Default, p.Attenuation))]);
+        [.. _inputs.Probes.Select(p => new InputSettings(Span.Default, Offset.Default, p.Attenuation))]);
 
     private void AddInputs(string inputs)
     {
@@ -157,16 +164,16 @@ public sealed class Scope : Instrument
 
     private void AddProbes(string inputs)
     {
-        for (int i = 1; i <= _probes.Length; i++)
+        for (int i = 1; i <= _inputs.Probes.Count; i++)
         {
             Scpi.Commands.Number(
                 $"INPut<{i}>:ATTenuation",
-                Attenuation with { Default = _probes[i - 1].Attenuation },
+                Attenuation with { Default = _inputs.Probes[i - 1].Attenuation },
                 (call, told) => SetInput(call.Suffix, s => s with { Attenuation = told }),
                 call => _settings.Inputs[call.Suffix - 1].Attenuation);
         }
 
-        Scpi.Commands.Event($"INPut<{inputs}>:DEGauss", _ => { }); // no probe holds any
+        Scpi.Commands.Event($"INPut<{inputs}>:DEGauss", call => _inputs.Degauss(call.Suffix));
     }
 
     private void SetInput(int input, Func<InputSettings, InputSettings> change)
@@ -200,7 +207,7 @@ public sealed class Scope : Instrument
     {
         Scpi.Commands.Set(
             "TRIGger[:SEQuence]:SOURce",
-            call => _settings = _settings with { Source = call.Numbered("INTernal", _probes.Length) });
+            call => _settings = _settings with { Source = call.Numbered("INTernal", _inputs.Probes.Count) });
         Scpi.Commands.Ask(
             "TRIGger[:SEQuence]:SOURce?",
             _ => string.Create(CultureInfo.InvariantCulture, $"INT{_settings.Source}"));
@@ -223,12 +230,12 @@ public sealed class Scope : Instrument
         _format.AddTo(Scpi.Commands);
         Scpi.Commands.Add("TRACe:PREamble?", 1, 1, (call, reply) =>
         {
-            int input = call.Numbered("INTernal", _probes.Length);
+            int input = call.Numbered("INTernal", _inputs.Probes.Count);
             reply.Say(_format.Preamble(Record(), input, _bits, Count()));
         });
         Scpi.Commands.Add("TRACe[:DATA]?", 1, 1, (call, reply) =>
         {
-            int input = call.Numbered("INTernal", _probes.Length);
+            int input = call.Numbered("INTernal", _inputs.Probes.Count);
             _format.Data(Record().Codes(input), _bits, reply);
         });
     }
@@ -254,10 +261,13 @@ public sealed class Scope : Instrument
         _waiting = null;
         _completeAt = Bench.Now + (settings.Points * settings.Interval);
         TrainTrajectory rest = HalfBridge.AtRest(
-            Bench.HalfBridge, Bench.BankVoltage, Bench.GateOff, -settings.Pretrigger, settings.Interval,
+            Bench.HalfBridge,
+            Flaws.On(new PulseTrain(0, 0, 0, 0, Bench.GateOff, Bench.BankVoltage), Bench.Faults),
+            -settings.Pretrigger,
+            settings.Interval,
             settings.Points);
         var key = new CaptureKey(Bench.Seed, Bench.Serial, -++_immediate);
-        Keep(new ScopeRecord(settings, rest, _probes, key, 0, _bits, overdriven: false));
+        Keep(new ScopeRecord(settings, rest, _inputs.Now(settings, inTrain: false), key, 0, _bits));
     }
 
     private void Keep(ScopeRecord record)

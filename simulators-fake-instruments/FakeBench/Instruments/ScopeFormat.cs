@@ -41,7 +41,7 @@ public sealed class ScopeFormat
         int kept = bits - Dropped(bits);
         string[] fields =
         [
-            Numbers.Nr1(settings.Points),
+            Numbers.Nr1(record.Points(input)),
             Numbers.Nr3(settings.Interval),
             Numbers.Nr3(-settings.Pretrigger),
             "0",

@@ -7,41 +7,44 @@ namespace FakeBench.Instruments;
 public sealed class ScopeRecord
 {
     private readonly Lazy<short[]>[] _codes;
+    private readonly IReadOnlyList<RecordedInput> _inputs;
 
     /// <summary>Makes a record.</summary>
     /// <param name="settings">The settings in force when the scope was armed.</param>
     /// <param name="train">The train, cut to the record's samples.</param>
-    /// <param name="probes">What lies before each input.</param>
+    /// <param name="inputs">How each input records.</param>
     /// <param name="key">What noise and jitter depend on.</param>
     /// <param name="shift">How much later than the grid of the train says everything happens, s.</param>
     /// <param name="bits">Bits of the converter.</param>
-    /// <param name="overdriven">Whether the amplifiers are at twice their gain.</param>
     public ScopeRecord(
         AcquisitionSettings settings,
         TrainTrajectory train,
-        IReadOnlyList<ProbeChannel> probes,
+        IReadOnlyList<RecordedInput> inputs,
         CaptureKey key,
         double shift,
-        int bits,
-        bool overdriven)
+        int bits)
     {
         ArgumentNullException.ThrowIfNull(settings);
-        ArgumentNullException.ThrowIfNull(probes);
+        ArgumentNullException.ThrowIfNull(inputs);
         Settings = settings;
-        _codes = new Lazy<short[]>[probes.Count];
-        for (int i = 0; i < probes.Count; i++)
+        _inputs = inputs;
+        _codes = new Lazy<short[]>[inputs.Count];
+        for (int i = 0; i < inputs.Count; i++)
         {
             int input = i;
-            InputSettings set = settings.Inputs[i];
-            var converter = new Digitiser(bits, overdriven ? set.Span / 2 : set.Span, set.Offset);
+            var converter = new Digitiser(bits, inputs[i].Span, inputs[i].Offset);
             _codes[i] = new Lazy<short[]>(
                 () => Recorder.Record(
-                    train, probes[input].ShownBy(set.Attenuation), converter, key.Noise(input + 1), shift));
+                    train, inputs[input].Probe, converter, key.Noise(input + 1), shift)[..inputs[input].Points]);
         }
     }
 
     /// <summary>The settings in force when the scope was armed.</summary>
     public AcquisitionSettings Settings { get; }
+
+    /// <summary>Samples of an input.</summary>
+    /// <param name="input">Input, from 1.</param>
+    public int Points(int input) => _inputs[input - 1].Points;
 
     /// <summary>Codes of an input.</summary>
     /// <param name="input">Input, from 1.</param>

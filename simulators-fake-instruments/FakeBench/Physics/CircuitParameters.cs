@@ -6,6 +6,10 @@ namespace FakeBench.Physics;
 /// <param name="High">The place that freewheels.</param>
 public sealed record CircuitParameters(BenchParts Bench, PlaceParts Low, PlaceParts High)
 {
+    /// <summary>Whether the load goes to the negative rail: then the high place of the bench is the one that fires, and
+    /// the signals carry its name.</summary>
+    public bool LoadToNegative { get; init; }
+
     /// <summary>A sound WD-1200S-25 in one place, with its nominal values.</summary>
     public static PlaceParts NominalPlace(bool high) => new(
         new SwitchParts

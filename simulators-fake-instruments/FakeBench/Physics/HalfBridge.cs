@@ -43,7 +43,7 @@ public static class HalfBridge
             throw new ArgumentException("Pulses and gap must be longer than the driver's edge.", nameof(train));
         }
 
-        var equations = new BridgeEquations(parts, train.BusVoltage, train.GateOff) { Drive = train.GateOff };
+        var equations = new BridgeEquations(parts, train.BusVoltage, train.HeldOff) { Drive = train.GateOff };
         var solver = new Rodas4(equations, tolerance) { LongestStep = LongestStep };
         equations.Rest(train.BusVoltage, train.GateOff).CopyTo(solver.State, 0);
         var sampler = new Sampler(equations, start, interval, points);
@@ -65,25 +65,26 @@ public static class HalfBridge
             }
         }
 
-        return new TrainTrajectory(start, interval, sampler.Signals, EndOf(parts, equations, solver, peaks, died),
+        double[][] signals = parts.LoadToNegative ? Mirror.Of(sampler.Signals) : sampler.Signals;
+        return new TrainTrajectory(start, interval, signals, EndOf(parts, equations, solver, peaks, died),
             solver.Accepted);
     }
 
     /// <summary>Samples of the half bridge at rest: no train, both gates held off.</summary>
     /// <param name="parts">The circuit.</param>
-    /// <param name="busVoltage">Voltage of the bank, V.</param>
-    /// <param name="gateOff">Driver voltage of both places, V.</param>
+    /// <param name="train">Voltage of the bank and levels of the driver; its pulses are not fired.</param>
     /// <param name="start">Time of the first sample, s.</param>
     /// <param name="interval">Sample interval, s; above 0.</param>
     /// <param name="points">Samples of each signal; above 0.</param>
     public static TrainTrajectory AtRest(
-        CircuitParameters parts, double busVoltage, double gateOff, double start, double interval, int points)
+        CircuitParameters parts, PulseTrain train, double start, double interval, int points)
     {
         ArgumentNullException.ThrowIfNull(parts);
+        ArgumentNullException.ThrowIfNull(train);
         ArgumentOutOfRangeException.ThrowIfNegativeOrZero(interval);
         ArgumentOutOfRangeException.ThrowIfNegativeOrZero(points);
-        var equations = new BridgeEquations(parts, busVoltage, gateOff) { Drive = gateOff };
-        double[] state = equations.Rest(busVoltage, gateOff);
+        var equations = new BridgeEquations(parts, train.BusVoltage, train.HeldOff) { Drive = train.GateOff };
+        double[] state = equations.Rest(train.BusVoltage, train.GateOff);
         var values = new double[Enum.GetValues<Signal>().Length];
         equations.Observe(0, state, values);
         double[][] signals = [.. values.Select(value =>
@@ -93,9 +94,9 @@ public static class HalfBridge
             return row;
         })];
         var end = new EndState(
-            0, busVoltage, 0, values[(int)Signal.IdLow], state[BridgeState.VLow], state[BridgeState.VHigh],
+            0, train.BusVoltage, 0, values[(int)Signal.IdLow], state[BridgeState.VLow], state[BridgeState.VHigh],
             parts.Low.IsShorted, parts.High.IsShorted, LowDied: false);
-        return new TrainTrajectory(start, interval, signals, end, 0);
+        return new TrainTrajectory(start, interval, parts.LoadToNegative ? Mirror.Of(signals) : signals, end, 0);
     }
 
     private static EndState EndOf(CircuitParameters parts, BridgeEquations equations, Rodas4 solver, Peaks peaks,

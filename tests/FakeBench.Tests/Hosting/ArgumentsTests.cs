@@ -25,6 +25,9 @@ public sealed class ArgumentsTests
     [InlineData("--pace", "fast")]
     [InlineData("--seed", "x")]
     [InlineData("--bits", "10")]
+    [InlineData("--load", "sideways")]
+    [InlineData("--exchange", "robot")]
+    [InlineData("--companion", "no spaces")]
     [InlineData("--ambient", "hot")]
     [InlineData("--device", "no spaces")]
     [InlineData("--channels", "vgs_low,what")]
@@ -37,6 +40,21 @@ public sealed class ArgumentsTests
     {
         FormatException wrong = Assert.Throws<FormatException>(() => Arguments.Parse(arguments));
         Assert.NotEmpty(wrong.Message);
+    }
+
+    [Fact]
+    public void Load_companion_and_exchange_are_read()
+    {
+        ServeOptions options = Arguments.Parse(
+            ["--load", "negative", "--companion", "W1200-0002", "--sound", "--exchange", "by-hand"]);
+        Assert.Equal(
+            (true, "W1200-0002", true, true),
+            (options.LoadToNegative, options.Companion, options.Sound, options.ByHand));
+        Assert.Equal(["vgs_high", "vds_high", "id_high", "vgs_low", "vds_low", "vbus"], options.Channels);
+        string file = BenchFile.Write(options, []);
+        Assert.Contains("exchange: by-hand\n", file, StringComparison.Ordinal);
+        Assert.Contains(", to: negative }\n", file, StringComparison.Ordinal);
+        Assert.Contains("  id_high: { scope: 3, probe: shunt,", file, StringComparison.Ordinal);
     }
 
     [Fact]

@@ -45,6 +45,12 @@ public sealed partial class DialectTests
                 TestBench.Say(instrument, "OUTP 1"); // the line before switched it off
             }
 
+            if (name == "trigger" && role == "scope")
+            {
+                TestBench.Say(instrument, "ABOR;:INIT"); // it triggers an armed scope
+            }
+
+            bench.Wait(1e-3); // what was triggered is complete
             string reply = TestBench.Ask(instrument, message);
             Assert.Equal(message.Contains('?', StringComparison.Ordinal), reply.Length > 0);
             Assert.Equal("0,\"No error\"", TestBench.Ask(instrument, "SYST:ERR?"));

@@ -64,7 +64,7 @@ public sealed class DefectTests
     [Fact]
     public void A_gross_on_resistance_shows_in_the_proving_train()
     {
-        var w = Fire("W1200-9006", Proving, out _);
+        var w = Fire("W1200-9014", Proving, out _);
 
         Approximately.Equal(4.4, w.Mean(Signal.VdsLow, 0.9 * Proving.Off1, Proving.Off1), 0.03);
     }

@@ -15,14 +15,16 @@ public sealed class DevicePopulationTests
                 DevicePopulation.Draw("W1200-0001", 1).Low, DevicePopulation.Draw("W1200-0002", 1).Low));
 
     [Fact]
-    public void Named_devices_have_distinct_serials_a_defect_and_an_outcome()
+    public void Named_devices_have_distinct_serials_a_change_for_each_defect_and_an_outcome()
     {
         Assert.Equal(DevicePopulation.Named.Count, DevicePopulation.Named.Select(d => d.Serial).Distinct().Count());
         Assert.All(DevicePopulation.Named, d =>
         {
             Assert.Matches("^W1200-9[0-9]{3}$", d.Serial);
-            Assert.False(string.IsNullOrEmpty(d.Defect));
-            Assert.Contains(d.ExpectedOutcome, (string[])["accepted", "rejected", "undecided"]);
+            Assert.Equal(d.Defect is null, d.Change.Length == 0);
+            Assert.Equal(d.Defect is null, d.ExpectedOutcome == "accepted");
+            Assert.Contains(
+                d.ExpectedOutcome, (string[])["accepted", "rejected", "undecided", "not-measured", "stopped"]);
             Assert.Equal(d, DevicePopulation.Draw(d.Serial, 7));
         });
     }
