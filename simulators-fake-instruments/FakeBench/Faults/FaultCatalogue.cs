@@ -75,7 +75,7 @@ public static class FaultCatalogue
     public const double BusError = 0.02;
 
     /// <summary>What is left of the bank's capacitance in <see cref="BankWeak"/>, 1.</summary>
-    public const double WeakBank = 0.08;
+    public const double WeakBank = 0.075;
 
     /// <summary>How far the plate falls in <see cref="PlateDrifts"/>, K.</summary>
     public const double PlateDrift = 6;
@@ -125,7 +125,7 @@ public static class FaultCatalogue
         new(SaturatingInductor, Moment.Start, "the load saturates at 0.43 of its flux"),
         new(SupplySags, Fire(3), "the bus is 2 % low in one train"),
         new(SupplyLow, Moment.Start, "the supply gives 2 % less than it says that it was set to"),
-        new(BankWeak, Fire(3), "in one train the bank has 0.08 of its capacitance: the rest has lost contact"),
+        new(BankWeak, Fire(3), "in one train the bank has 0.075 of its capacitance: the rest has lost contact"),
         new(PlateDrifts, Fire(3), "a draught cools the hotplate by 6 K, once"),
     ];
 
