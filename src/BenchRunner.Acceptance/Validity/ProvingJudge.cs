@@ -17,6 +17,9 @@ public static class ProvingJudge
     /// <remarks>Freewheeling takes some percent; an open freewheeling place takes all of it.</remarks>
     private const double CarriedAtLeast = 0.5;
 
+    /// <summary>Share of the second pulse, at its end, over which the ramp is looked at, 1.</summary>
+    private const double RampEnd = 0.1;
+
     /// <summary>Judges one proving train.</summary>
     /// <param name="context">Everything that it rests on.</param>
     public static Verdict Judge(CaptureContext context)
@@ -46,8 +49,7 @@ public static class ProvingJudge
 
     private static void Carried(CaptureContext context, Judgement judgement)
     {
-        TrainFacts train = context.Analysis.Train;
-        if (train is not { OffCurrent: { } off, OnCurrent: { } on })
+        if (context.Analysis.Train.OffCurrent is not { } off || OnCurrent(context) is not { } on)
         {
             judgement.NotEvaluated(Criteria.FreewheelingOpen);
             return;
@@ -56,13 +58,42 @@ public static class ProvingJudge
         // Without a current at the first turn-off there is nothing that could go on flowing.
         if (off > CarriedAtLeast * context.Planned.Point.LoadCurrent && on < CarriedAtLeast * off)
         {
-            Channel channel = HalfBridge.Playing(Channel.IdLow, HalfBridge.FiresHigh(context.Sequence));
             judgement.Add(
                 Criteria.FreewheelingOpen, FindingClass.Stop,
                 $"of {SiText.Format(off, "A", 3)} at the first turn-off {SiText.Format(on, "A", 3)} flow at the second "
                 + $"turn-on (at least {SiText.Percent(CarriedAtLeast)}): the freewheeling place does not conduct; "
                 + "no further train is fired",
-                channel, on, CarriedAtLeast * off, train.On2?.At);
+                Current(context), on, CarriedAtLeast * off, context.Analysis.Train.On2?.At);
         }
     }
+
+    /// <summary>Load current at the second turn-on, A: the end of the second pulse less what its ramp adds.</summary>
+    /// <remarks>Not <c>i_on</c>: where the freewheeling place is open, vds is clipped and there is no load
+    /// line.</remarks>
+    private static double? OnCurrent(CaptureContext context)
+    {
+        TrainFacts train = context.Analysis.Train;
+        Channel current = Current(context);
+        if (train is not { On2: { } on2, Off2: { } off2, RampSlope: { } slope, CurrentBeforeOn1: { } zero }
+            || context.Traces.FirstOrDefault(trace => trace.Channel == current) is not { } trace)
+        {
+            return null;
+        }
+
+        double gain = context.Bench.Channels.FirstOrDefault(setup => setup.Channel == current)?.Gain ?? 1;
+        int Sample(double at) => (int)Math.Clamp((at - trace.TimeOrigin) / trace.SampleInterval, 0, trace.Codes.Length);
+        int from = Sample(off2.Departure - (RampEnd * (off2.At - on2.At)));
+        int to = Sample(off2.Departure);
+        double sum = 0;
+        for (int i = from; i < to; i++)
+        {
+            sum += trace.Value(trace.Codes[i]);
+        }
+
+        double middle = trace.TimeOrigin + (0.5 * (from + to) * trace.SampleInterval);
+        return to > from ? (sum / (to - from) / gain) - zero - (slope * (middle - on2.At)) : null;
+    }
+
+    private static Channel Current(CaptureContext context) =>
+        HalfBridge.Playing(Channel.IdLow, HalfBridge.FiresHigh(context.Sequence));
 }

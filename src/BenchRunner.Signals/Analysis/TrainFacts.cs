@@ -42,9 +42,6 @@ public sealed record TrainFacts
     /// <summary>Load current at off1 by the ramp fit, A (<c>i_off</c>).</summary>
     public double? OffCurrent { get; init; }
 
-    /// <summary>Load current at on2 by the line of the second pulse, A (<c>i_on</c>).</summary>
-    public double? OnCurrent { get; init; }
-
     /// <summary>Slope of the first ramp, A/s (<c>ramp_slope</c>).</summary>
     public double? RampSlope { get; init; }
 

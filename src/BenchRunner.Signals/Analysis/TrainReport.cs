@@ -29,7 +29,6 @@ internal static class TrainReport
             GateOn = Value(train.GateOn),
             GateOff = Value(train.GateOff),
             OffCurrent = Value(analyser.Ramp.OffCurrent),
-            OnCurrent = Value(analyser.OnCurrent),
             RampSlope = Value(analyser.Ramp.Slope),
             RampStraightness = Value(analyser.Ramp.Straightness),
             RampGrowth = Value(analyser.Ramp.Growth),

@@ -48,10 +48,16 @@ public sealed class RunSessionTests : IDisposable
         Assert.All(_heard.Cases, one => Assert.Equal(CaseEnding.Conforms, one.Ending));
 
         Assert.Equal(report.Run, _place.Ask<string>("select run from device_outcomes where outcome = 'accepted'"));
-        Assert.Equal(report.CapturesTaken, _place.Ask<int>("select count(*) from captures"));
+        Assert.Equal(
+            report.CapturesTaken, _place.Ask<int>("select count(*) from captures where operating_point = 'half'"));
+        Assert.Equal(
+            "zero,proving-before,half,proving-after",
+            _place.Ask<string>("select group_concat(distinct operating_point) from captures"));
         Assert.Equal(5, _place.Ask<int>("select count(*) from instruments"));
         Assert.Equal(2, _place.Ask<int>("select count(*) from measurements where conformity = 'conforms'"));
-        Assert.Equal(1, _place.Ask<int>("select count(*) from events where kind = 'bus-down'"));
+
+        // Once before the second proving train, once at the end.
+        Assert.Equal(2, _place.Ask<int>("select count(*) from events where kind = 'bus-down'"));
     }
 
     [Fact]
