@@ -3,6 +3,8 @@ using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
+using BenchRunner.Evidence.Holds;
+using BenchRunner.Evidence.Notes;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Quantities;
@@ -76,6 +78,13 @@ internal static class Samples
         23.5,
         new TrainSet(8e-6, 6e-6, 3e-6, 18, -4));
 
+    public static HoldRow Hold(double? supplyCurrent = 1.2e-3, double? bound = 2e-3) => new(
+        "rated", new DateTimeOffset(2026, 3, 2, 8, 0, 0, TimeSpan.Zero), 600, supplyCurrent, 599.8, 597.1, 0.1, 1.25e-3,
+        bound, true);
+
+    public static Note Note(string device = "W1200-0001", string lot = "L-1") =>
+        new(device, lot, NoteKind.Release, "K. Weber", "shipped");
+
     public static MeasuredValue Measured(
         double? value, string quantity = "eon", string point = "rated", double? upper = 705e-6,
         Conformity? conformity = Conformity.Conforms) => new(
@@ -100,6 +109,7 @@ internal static class Samples
         RunWriter run = store.BeginRun(header);
         run.AddInstrument("scope", "FAKEBENCH,SCOPE,17,1.0", "17", "1.0");
         run.AddCapture(Capture(1, "zero", seed));
+        run.AddHold(Hold());
         AddJudged(run, Capture(1, "rated", seed + 10), Rejected);
         AddJudged(run, Capture(2, "rated", seed + 20), Valid);
         run.Finish(decision ?? Decision());

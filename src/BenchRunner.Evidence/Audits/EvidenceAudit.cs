@@ -95,7 +95,7 @@ public sealed class EvidenceAudit
             "select type || ' ' || name, coalesce(sql, '') from sqlite_schema where name not like 'sqlite_%'";
         static (string Name, string Sql) Row(SqliteDataReader row) => (row.GetString(0), row.GetString(1));
         using SqlSession fresh = SqlSession.Open(":memory:", SqliteOpenMode.Memory);
-        fresh.Run(Schema.Sql);
+        fresh.Run(Schema.Sql(_session.CheckForm(_path)));
         HashSet<(string Name, string Sql)> here = [.. _session.Read(sql, Row)];
         HashSet<(string Name, string Sql)> wanted = [.. fresh.Read(sql, Row)];
         foreach ((string name, _) in here.Except(wanted).Concat(wanted.Except(here)).DistinctBy(found => found.Name))
@@ -131,7 +131,7 @@ public sealed class EvidenceAudit
                 if (seal.Ordinal != ordinal || seal.Previous != previous)
                 {
                     Report(
-                        seal.Run, "chain",
+                        seal.Kind == "run" ? seal.Uid : null, "chain",
                         $"seal {seal.Ordinal} does not follow the seal before it: one is lost or swapped");
                 }
 
@@ -151,22 +151,27 @@ public sealed class EvidenceAudit
 
     private void Seal(StoredSeal seal, string origin)
     {
-        if (seal.Run is not { } run || seal.RunRow is not { } row)
+        bool isRun = seal.Kind == "run";
+        string? run = isRun ? seal.Uid : null;
+        if (seal.Uid is not { } uid || seal.Row is not { } row)
         {
-            Report(null, "seal", $"seal {seal.Ordinal} stands for a run that is not there");
+            Report(
+                null, "seal",
+                $"seal {seal.Ordinal} stands for {(isRun ? "a run" : "an entry")} that is not there");
             return;
         }
 
-        if (CanonicalForm.Digest(_session, row) != seal.Digest)
+        string what = isRun ? "the run" : $"the entry {uid}";
+        if ((isRun ? CanonicalForm.OfRun(_session, row) : CanonicalForm.OfEntry(_session, row)) != seal.Digest)
         {
-            Report(run, "seal", "what the run stored is not what was sealed: rows were altered, added or lost");
+            Report(run, "seal", $"what {what} stored is not what was sealed: rows were altered, added or lost");
         }
 
         string formed = CanonicalForm.Seal(
-            origin, seal.Ordinal, seal.Kind, run, seal.SealedAt, seal.Digest, seal.Previous);
+            origin, seal.Ordinal, seal.Kind, uid, seal.SealedAt, seal.Digest, seal.Previous);
         if (formed != seal.Seal)
         {
-            Report(run, "seal", "the seal itself was altered");
+            Report(run, "seal", $"the seal of {what} was altered itself");
         }
     }
 
@@ -181,6 +186,17 @@ public sealed class EvidenceAudit
             Report(
                 run, "unfinished",
                 "the run has no end: it is going on, or its program was ended; the next writer closes it");
+        }
+
+        const string unsealed = """
+            select uid from entry e
+            where not exists (
+              select 1 from seal s where s.origin = e.origin and s.ordinal = e.ordinal and s.kind = 'entry')
+            order by id
+            """;
+        foreach (string entry in _session.Read(unsealed, row => row.GetString(0)))
+        {
+            Report(null, "unsealed", $"no seal covers the entry {entry}");
         }
 
         foreach (string table in new[] { "decision", "measurement", "verdict", "capture_value" })

@@ -162,6 +162,41 @@ public static class NamedQueries
             ],
             $"select at, source, severity, kind, message from events where run = $run {NamedQuery.Marker}"),
         new(
+            "notes",
+            "What became of the devices after their runs: released, scrapped, returned, conceded?",
+            [
+                new("lot", "only this lot", "lot = $lot"),
+                new("device", "only this device", "device = $device"),
+                new("kind", "only notes of this kind: release, scrap, return or concession", "kind = $kind"),
+                new("limit", "how many rows", Default: 1000),
+            ],
+            $"""
+            select at, device, lot, kind, author, because, entry
+            from notes where true {NamedQuery.Marker} order by at desc, entry desc limit $limit
+            """),
+        new(
+            "leakage-holds",
+            "What leaked at each hold of the bus with both gates off?",
+            [
+                new("device", "only this device", "device = $device"),
+                new("lot", "only this lot", "lot = $lot"),
+                new("run", "only this run", "run = $run"),
+                new("limit", "how many rows", Default: 1000),
+            ],
+            $"""
+            select at, device, lot, operating_point, bus_voltage, leakage, bound, conforms, supply_current,
+              first_voltage, last_voltage, seconds, run
+            from leakage_holds where true {NamedQuery.Marker} order by at desc limit $limit
+            """),
+        new(
+            "companions",
+            "In how many captures has each companion taken part, over all runs?",
+            [new("companion", "only this companion", "companion = $companion")],
+            $"""
+            select companion, runs, captures_taken, proving_captures, last_started_at
+            from companions where true {NamedQuery.Marker} order by companion
+            """),
+        new(
             "last-runs",
             "Which runs were the last, ended or not?",
             [

@@ -13,31 +13,46 @@ internal static class Triggers
     /// <summary>Statements that make the triggers.</summary>
     public static string Sql { get; } = Build();
 
-    private static string Build()
+    /// <summary>Triggers that keep every row of tables as it is.</summary>
+    public static string Keeping(IEnumerable<(string Table, string[][] Keys)> tables)
     {
         StringBuilder sql = new();
-        foreach ((string table, string[][] keys) in Tables.AppendOnly)
+        foreach ((string table, string[][] keys) in tables)
         {
             KeepRows(sql, table, keys);
         }
 
-        foreach (string table in new[] { "run_file", "instrument", "event", "capture" })
-        {
-            EndWithSeal(sql, table, "exists (select 1 from seal where kind = 'run' and run = new.run)");
-        }
+        return sql.ToString();
+    }
 
-        foreach (string table in new[] { "decision", "measurement" })
-        {
-            EndWithSeal(
-                sql, table, "new.scoring = 0 and exists (select 1 from seal where kind = 'run' and run = new.run)");
-        }
+    /// <summary>A trigger that takes no more rows into a table once what they belong to is sealed.</summary>
+    /// <param name="table">The table.</param>
+    /// <param name="closed">Whether the new row's is.</param>
+    /// <param name="whole">What is sealed, e.g. <c>run</c>.</param>
+    public static string Ending(string table, string closed, string whole) => $"""
+        create trigger {table}_ends_with_the_seal before insert on {table} when {closed}
+        begin select raise(abort, 'the {whole} is sealed: no row of {table} is added'); end;
 
-        const string ofCapture =
+        """;
+
+    private static string Build()
+    {
+        const string sealedRun = "exists (select 1 from seal where kind = 'run' and run = new.run)";
+        const string sealedCapture =
             "exists (select 1 from capture c join seal s on s.run = c.run and s.kind = 'run' where c.id = new.capture)";
-        EndWithSeal(sql, "trace", ofCapture);
-        EndWithSeal(sql, "payload", ofCapture);
-        EndWithSeal(sql, "verdict", "new.scoring = 0 and " + ofCapture);
-        EndWithSeal(sql, "capture_value", "new.scoring = 0 and " + ofCapture);
+        StringBuilder sql = new(Keeping(Tables.AppendOnly));
+        foreach ((string table, string closed) in ((string, string)[])
+            [
+                ("run_file", sealedRun), ("instrument", sealedRun), ("event", sealedRun), ("capture", sealedRun),
+                ("decision", "new.scoring = 0 and " + sealedRun), ("measurement", "new.scoring = 0 and " + sealedRun),
+                ("trace", sealedCapture), ("payload", sealedCapture),
+                ("verdict", "new.scoring = 0 and " + sealedCapture),
+                ("capture_value", "new.scoring = 0 and " + sealedCapture),
+            ])
+        {
+            sql.Append(Ending(table, closed, "run"));
+        }
+
         sql.Append("""
             create trigger run_is_of_the_kind_of_the_file before insert on run
             when (select simulated from run order by id limit 1) <> new.simulated
@@ -62,11 +77,4 @@ internal static class Triggers
 
             """);
     }
-
-    private static void EndWithSeal(StringBuilder sql, string table, string closed) =>
-        sql.Append($"""
-            create trigger {table}_ends_with_the_seal before insert on {table} when {closed}
-            begin select raise(abort, 'the run is sealed: no row of {table} is added'); end;
-
-            """);
 }

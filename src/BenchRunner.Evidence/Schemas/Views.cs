@@ -4,10 +4,6 @@ namespace BenchRunner.Evidence.Schemas;
 /// <remarks>Plain SQL of SQLite 3.40, no functions of ours, so that any SQLite tool can open them.</remarks>
 internal static class Views
 {
-    /// <summary>Operating points that are not the sequence's: stored, shown in <c>captures</c>, never
-    /// counted.</summary>
-    public const string UncountedPoints = "('zero', 'proving-before', 'proving-after')";
-
     // The attempt that counts is the newest that was not stopped, or the newest where all were: a bench that fails
     // while a device is measured again takes nothing away from what was decided before.
     private const string CountingRun = """

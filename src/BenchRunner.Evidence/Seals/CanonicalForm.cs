@@ -6,17 +6,19 @@ using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Seals;
 
-/// <summary>What a run stored, as one sequence of bytes that any program can form again (docs/evidence.md).</summary>
+/// <summary>What a run or an entry stored, as one sequence of bytes that any program can form again
+/// (docs/evidence.md).</summary>
 /// <remarks>
 /// Row numbers of this file are resolved to what they stand for, so that a run keeps its seal when it is brought into
-/// another file. A row is the table's name and its columns in the order given here, each as one item: <c>n</c> for
-/// NULL; <c>i</c>, decimal digits, <c>;</c> for an integer; <c>r</c> and 8 bytes (IEEE 754, big-endian) for a real;
-/// <c>t</c>, length in bytes, <c>:</c>, UTF-8 for a text; then a newline.
+/// another file. A table that has no row of a run adds nothing, so that one which came with a later format leaves the
+/// seals of older runs as they are. A row is the table's name and its columns in the order given here, each as one
+/// item: <c>n</c> for NULL; <c>i</c>, decimal digits, <c>;</c> for an integer; <c>r</c> and 8 bytes (IEEE 754,
+/// big-endian) for a real; <c>t</c>, length in bytes, <c>:</c>, UTF-8 for a text; then a newline.
 /// </remarks>
 internal static class CanonicalForm
 {
     /// <summary>The tables of a run in order: name, and the rows of the run whose id is <c>?1</c>.</summary>
-    public static IReadOnlyList<(string Table, string Sql)> OfRun { get; } =
+    private static readonly IReadOnlyList<(string Table, string Sql)> _runTables =
     [
         ("run", """
             select r.uid, o.uid, r.device, lot.text, r.attempt, r.again, part.text, r.kind, r.position, r.companion,
@@ -60,6 +62,11 @@ internal static class CanonicalForm
             join word unit on unit.id = v.unit
             where c.run = ?1 order by c.ordinal, quantity.text, definition.text
             """),
+        ("hold", """
+            select h.ordinal, point.text, h.at, h.bus_voltage, h.supply_current, h.first_voltage, h.last_voltage,
+              h.seconds, h.leakage, h.bound, h.conforms
+            from hold h join word point on point.id = h.operating_point where h.run = ?1 order by h.ordinal
+            """),
         ("measurement", """
             select point.text, quantity.text, definition.text, lot.text, m.value, unit.text, m.standard_uncertainty,
               m.expanded_uncertainty, m.coverage_factor, m.degrees_of_freedom, m.captures, m.lower_limit,
@@ -79,25 +86,43 @@ internal static class CanonicalForm
             """),
     ];
 
-    /// <summary>SHA-256 over the canonical form of a run as it is stored, lower-case hexadecimal.</summary>
-    public static string Digest(SqlSession session, long run)
-    {
-        using IncrementalHash hash = IncrementalHash.CreateHash(HashAlgorithmName.SHA256);
-        foreach ((string table, string sql) in OfRun)
-        {
-            session.Read(sql, row => Append(hash, table, row), run);
-        }
+    /// <summary>The tables of an entry in order, as those of a run. An entry has rows in those of its
+    /// kind.</summary>
+    private static readonly IReadOnlyList<(string Table, string Sql)> _entryTables =
+    [
+        ("entry", """
+            select e.uid, o.uid, e.kind, e.at, e.author from entry e join origin o on o.id = e.origin where e.id = ?1
+            """),
+        ("note", """
+            select n.device, lot.text, n.kind, n.because
+            from note n join word lot on lot.id = n.lot where n.entry = ?1
+            """),
+    ];
 
-        return Convert.ToHexStringLower(hash.GetHashAndReset());
-    }
+    /// <summary>SHA-256 over the canonical form of a run as it is stored, lower-case hexadecimal.</summary>
+    public static string OfRun(SqlSession session, long run) => Digest(session, _runTables, run);
+
+    /// <summary>SHA-256 over the canonical form of an entry, as of a run.</summary>
+    public static string OfEntry(SqlSession session, long entry) => Digest(session, _entryTables, entry);
 
     /// <summary>The seal that chains a digest to the seal before it: SHA-256 over the canonical row
     /// <c>seal</c>.</summary>
     public static string Seal(
-        string origin, long ordinal, string kind, string run, string sealedAt, string digest, string previous)
+        string origin, long ordinal, string kind, string what, string sealedAt, string digest, string previous)
     {
         using IncrementalHash hash = IncrementalHash.CreateHash(HashAlgorithmName.SHA256);
-        AppendRow(hash, "seal", [origin, ordinal, kind, run, sealedAt, digest, previous]);
+        AppendRow(hash, "seal", [origin, ordinal, kind, what, sealedAt, digest, previous]);
+        return Convert.ToHexStringLower(hash.GetHashAndReset());
+    }
+
+    private static string Digest(SqlSession session, IEnumerable<(string Table, string Sql)> tables, long id)
+    {
+        using IncrementalHash hash = IncrementalHash.CreateHash(HashAlgorithmName.SHA256);
+        foreach ((string table, string sql) in tables)
+        {
+            session.Read(sql, row => Append(hash, table, row), id);
+        }
+
         return Convert.ToHexStringLower(hash.GetHashAndReset());
     }
 

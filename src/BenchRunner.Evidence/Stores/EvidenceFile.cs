@@ -13,13 +13,10 @@ internal static class EvidenceFile
         {
             bool isNew = session.Number("select count(*) from sqlite_schema") == 0
                 && session.Number("pragma user_version") == 0;
+            int version = isNew ? 0 : session.CheckForm(path);
             if (isNew)
             {
                 session.Run($"pragma page_size = {Schema.PageSize};");
-            }
-            else
-            {
-                session.CheckForm(path);
             }
 
             // The mode is asked for and read back: where it is refused, a crash could cost what was announced.
@@ -40,6 +37,12 @@ internal static class EvidenceFile
             {
                 Make(session, time);
             }
+            else if (version < Schema.Version)
+            {
+                // One transaction: a writer that is ended meanwhile leaves the file in its old form, whole.
+                session.Run(
+                    $"begin immediate; {Schema.Upgrade(version)} pragma user_version = {Schema.Version}; commit;");
+            }
 
             return session;
         }
@@ -53,7 +56,7 @@ internal static class EvidenceFile
     private static void Make(SqlSession session, TimeProvider time)
     {
         session.Run("begin immediate");
-        session.Run(Schema.Sql);
+        session.Run(Schema.Sql());
         session.Execute(
             "insert into origin (uid, created_at) values (?1, ?2)",
             Guid.CreateVersion7(time.GetUtcNow()).ToString("D"), Text.Time(time.GetUtcNow()));

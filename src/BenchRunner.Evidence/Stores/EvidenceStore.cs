@@ -1,6 +1,8 @@
 using System.Collections.Concurrent;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Evidence.Entries;
+using BenchRunner.Evidence.Notes;
 using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Stores;
@@ -20,6 +22,10 @@ namespace BenchRunner.Evidence.Stores;
 /// <item>The first failed write latches: every later one throws the same reason, until the file is opened
 /// again.</item>
 /// <item>A reader never waits for the writer and never sees a part of a transaction.</item>
+/// <item>What comes after a run is an entry with a seal of its own in the same chain; it changes no row of the
+/// run.</item>
+/// <item>A file of an older format is brought to this one by adding alone: its runs keep their rows and
+/// seals.</item>
 /// </list>
 /// <para>What it assumes of the disk: a completed fsync is durable; before it, any page of a write may be there, not
 /// there, or torn; a page that was durable stays as it was, unless the seal says otherwise. A lock of the file system
@@ -120,10 +126,34 @@ public sealed class EvidenceStore : IDisposable
                 throw new RunRefusedException(refusal);
             }
 
-            string uid = Guid.CreateVersion7(_time.GetUtcNow()).ToString("D");
+            string uid = NewIdentity();
             int attempt = Guarded(() => RunRules.Attempt(_session, header));
-            long row = Commit(to => RunRows.Begin(to, header, uid, attempt, Now()));
+
+            // The reason belongs to a device that was decided before, however the reason came to be given.
+            bool decided = Guarded(() => RunRules.IsDecided(_session, header));
+            RunHeader kept = decided ? header : header with { Again = null };
+            long row = Commit(to => RunRows.Begin(to, kept, uid, attempt, Now()));
             return new RunWriter(this, row, uid, attempt);
+        }
+    }
+
+    /// <summary>Adds what became of a device after its runs, durably and under a seal of its own.</summary>
+    /// <param name="note">The note.</param>
+    /// <returns>Its identity, time and seal.</returns>
+    /// <exception cref="NoteRefusedException">Name or reason is empty or too long, or the device has no run in the lot;
+    /// nothing is stored.</exception>
+    /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
+    public SealedEntry AddNote(Note note)
+    {
+        ArgumentNullException.ThrowIfNull(note);
+        lock (_gate)
+        {
+            if (Guarded(() => NoteRules.Refusal(_session, note)) is { } refusal)
+            {
+                throw new NoteRefusedException(refusal);
+            }
+
+            return AddEntry(EntryRows.NoteKind, note.By, (to, entry) => EntryRows.Note(to, entry, note));
         }
     }
 
@@ -148,6 +178,10 @@ public sealed class EvidenceStore : IDisposable
             _lock.Dispose();
         }
     }
+
+    /// <summary>Adds an entry with its content and seals it, in one transaction.</summary>
+    internal SealedEntry AddEntry(string kind, string author, Action<SqlSession, long> content) =>
+        Commit(to => EntryRows.Add(to, kind, author, NewIdentity(), Now(), content));
 
     internal string Now() => Text.Time(_time.GetUtcNow());
 
@@ -190,6 +224,8 @@ public sealed class EvidenceStore : IDisposable
             });
         }
     }
+
+    private string NewIdentity() => Guid.CreateVersion7(_time.GetUtcNow()).ToString("D");
 
     private T Guarded<T>(Func<T> work)
     {

@@ -9,6 +9,12 @@ public enum RunRefusalKind
     /// <summary>The device had as many attempts in its lot as the sequence allows.</summary>
     TooManyAttempts,
 
+    /// <summary>The device has a run in its lot that has not ended.</summary>
+    InFlight,
+
+    /// <summary>A reason to measure again is given without a lot.</summary>
+    AgainWithoutLot,
+
     /// <summary>The file holds simulated runs and this one is measured, or the other way round.</summary>
     MixedOrigin,
 }

@@ -4,7 +4,7 @@ using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
-using BenchRunner.Evidence.Schemas;
+using BenchRunner.Evidence.Holds;
 using BenchRunner.Evidence.Seals;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
@@ -120,6 +120,16 @@ internal static class RunRows
             value.CoverageFactor, value.DegreesOfFreedom, value.Captures, value.Lower, value.Upper,
             Text.Of(value.Conformity), value.Reason);
 
+    public static void Hold(SqlSession to, long run, int ordinal, HoldRow row) =>
+        to.Execute(
+            """
+            insert into hold (run, ordinal, operating_point, at, bus_voltage, supply_current, first_voltage,
+              last_voltage, seconds, leakage, bound, conforms)
+            values (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, ?10, ?11, ?12)
+            """,
+            run, ordinal, to.Word(row.OperatingPoint), Text.Time(row.At), row.BusVoltage, row.SupplyCurrent,
+            row.FirstVoltage, row.LastVoltage, row.Seconds, row.Leakage, row.Bound, row.Conforms);
+
     /// <summary>Ends a run: its decision of scoring 0, then the seal over all it stored.</summary>
     public static string End(SqlSession to, long run, Outcome outcome, string? reason, string endedAt)
     {
@@ -131,13 +141,13 @@ internal static class RunRows
               r.sequence_content, r.algorithm, r.platform, ?4
             from run r
             left join capture c on c.run = r.id
-              and c.operating_point not in (select id from word where text in {Views.UncountedPoints})
+              and c.operating_point not in (select id from word where text in {UncountedPoints.Sql})
             left join verdict v on v.capture = c.id and v.scoring = 0
             where r.id = ?1
             group by r.id
             """,
             run, Text.Of(outcome), reason, endedAt);
-        return SealChain.Append(to, run, endedAt);
+        return SealChain.AppendRun(to, run, endedAt);
     }
 
     private static object Content(SqlSession to, SourceFile file) =>

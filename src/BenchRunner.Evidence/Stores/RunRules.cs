@@ -20,10 +20,23 @@ internal static class RunRules
 
         if (header.Lot is not { } lot)
         {
-            return null;
+            return header.Again is null
+                ? null
+                : new RunRefusal(
+                    RunRefusalKind.AgainWithoutLot,
+                    "a reason to measure again (--again) is given without a lot, where nothing was decided before; "
+                    + "name the lot (--lot L) or leave the reason out.");
         }
 
-        long decided = session.Number($"select count(*) {InLot} and d.outcome <> 'stopped'", lot, header.Device);
+        const string going = $"select r.uid {InLot} and d.run is null order by r.id limit 1";
+        if (session.Value(going, lot, header.Device) is { } run)
+        {
+            return new RunRefusal(
+                RunRefusalKind.InFlight,
+                $"{header.Device} has run {run} in lot {lot} that has not ended; end it first.");
+        }
+
+        long decided = Decided(session, header);
         if (decided >= header.Sequence.Attempts)
         {
             return new RunRefusal(
@@ -44,8 +57,14 @@ internal static class RunRules
         return null;
     }
 
+    /// <summary>Whether the device was decided in its lot; an attempt that was stopped decides nothing.</summary>
+    public static bool IsDecided(SqlSession session, RunHeader header) => Decided(session, header) > 0;
+
     public static int Attempt(SqlSession session, RunHeader header) =>
         header.Lot is { } lot ? (int)session.Number($"select count(*) {InLot}", lot, header.Device) + 1 : 1;
+
+    private static long Decided(SqlSession session, RunHeader header) =>
+        session.Number($"select count(*) {InLot} and d.outcome <> 'stopped'", header.Lot, header.Device);
 
     private static string Origin(bool simulated) => simulated ? "simulated" : "measured";
 }

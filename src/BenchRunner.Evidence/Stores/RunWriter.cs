@@ -2,6 +2,7 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
+using BenchRunner.Evidence.Holds;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
 
@@ -24,6 +25,7 @@ public sealed class RunWriter
     private readonly Lock _gate = new();
     private readonly HashSet<object> _taken = [];
     private readonly HashSet<long> _captures = [];
+    private int _holds;
     private volatile bool _ended;
 
     internal RunWriter(EvidenceStore store, long row, string run, int attempt)
@@ -148,10 +150,28 @@ public sealed class RunWriter
         });
     }
 
+    /// <summary>Stores a leakage hold, durably.</summary>
+    /// <param name="hold">The hold.</param>
+    /// <exception cref="ArgumentException">A NaN.</exception>
+    /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
+    public void AddHold(HoldRow hold)
+    {
+        ArgumentNullException.ThrowIfNull(hold);
+        RefuseNaN(
+            nameof(hold), hold.BusVoltage, hold.SupplyCurrent, hold.FirstVoltage, hold.LastVoltage, hold.Seconds,
+            hold.Leakage, hold.Bound);
+        Commit(to =>
+        {
+            RunRows.Hold(to, _row, ++_holds, hold);
+            return _holds;
+        });
+    }
+
     /// <summary>Ends the run with its decision: measurements, outcome and seal, in one transaction.</summary>
     /// <param name="decision">What was decided about the device.</param>
     /// <returns>The seal, lower-case hexadecimal.</returns>
-    /// <exception cref="ArgumentException">A NaN, or a quantity by one definition twice at one point.</exception>
+    /// <exception cref="ArgumentException">A NaN, a quantity by one definition twice at one point, or a value of zero
+    /// or proving captures, which are no measurement.</exception>
     /// <exception cref="EvidenceException">The run has no end in the file; the store takes nothing more.</exception>
     public string Finish(DeviceDecision decision)
     {
@@ -164,6 +184,12 @@ public sealed class RunWriter
 
         foreach (MeasuredValue value in decision.Values)
         {
+            if (UncountedPoints.Has(value.OperatingPoint))
+            {
+                throw new ArgumentException($"{value.OperatingPoint} is no operating point to measure at.",
+                    nameof(decision));
+            }
+
             RefuseNaN(
                 nameof(decision), value.Value, value.StandardUncertainty, value.ExpandedUncertainty,
                 value.CoverageFactor, value.DegreesOfFreedom, value.Lower, value.Upper);

@@ -49,8 +49,12 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
         try
         {
             session = Open(path, SqliteOpenMode.ReadOnly);
+            if (session.CheckForm(path) < Schema.Version)
+            {
+                session.Run("pragma temp_store = memory;" + Additions.OfReader);
+            }
+
             session.Run("pragma query_only = on;");
-            session.CheckForm(path);
             return session;
         }
         catch (SqliteException error)
@@ -66,8 +70,9 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
     }
 
     /// <summary>Checks that the file is an evidence file of a version this program reads.</summary>
+    /// <returns>Its version.</returns>
     /// <exception cref="EvidenceException">It is not.</exception>
-    public void CheckForm(string path)
+    public int CheckForm(string path)
     {
         long application = Number("pragma application_id");
         if (application != Schema.ApplicationId)
@@ -76,12 +81,11 @@ internal sealed class SqlSession(SqliteConnection connection) : IDisposable
         }
 
         long version = Number("pragma user_version");
-        if (version != Schema.Version)
-        {
-            throw new EvidenceException(
-                $"{path}: has format {version}, and this program knows format {Schema.Version}; " +
-                "use the program that wrote it.");
-        }
+        return version is >= Schema.OldestVersion and <= Schema.Version
+            ? (int)version
+            : throw new EvidenceException(
+                $"{path}: has format {version}, and this program knows formats {Schema.OldestVersion} to "
+                    + $"{Schema.Version}; use the program that wrote it.");
     }
 
     /// <summary>Runs statements that are not used again.</summary>

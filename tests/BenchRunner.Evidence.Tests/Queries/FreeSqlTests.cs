@@ -6,12 +6,12 @@ namespace BenchRunner.Evidence.Tests.Queries;
 public sealed class FreeSqlTests(SixRuns six) : IClassFixture<SixRuns>
 {
     [Theory]
-    [InlineData("select device, outcome from device_outcomes", 6)]
+    [InlineData("select device, outcome from device_outcomes", 8)]
     [InlineData("with recursive n(i) as (select 1 union all select i + 1 from n where i < 5) select i from n", 5)]
-    [InlineData("select json_extract(findings, '$[0].criterion') from captures where valid = 0", 6)]
+    [InlineData("select json_extract(findings, '$[0].criterion') from captures where valid = 0", 7)]
     [InlineData("select * from measurements m join device_outcomes d using (run)", 12)]
     [InlineData("select 1 where false", 0)]
-    [InlineData("select name from sqlite_schema where type = 'view'", 7)]
+    [InlineData("select name from sqlite_schema where type = 'view'", 10)]
     [InlineData("explain query plan select * from captures", null)]
     [InlineData("select 1; -- with a remark", 1)]
     public void Reading_is_answered(string sql, int? rows)

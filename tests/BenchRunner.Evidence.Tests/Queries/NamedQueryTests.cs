@@ -75,6 +75,29 @@ public sealed class NamedQueryTests(SixRuns six) : IClassFixture<SixRuns>
         Assert.Null(Ask("distribution-by-lot", new() { ["quantity"] = "eon", ["lot"] = "L-2" }).Rows[0][5]);
     }
 
+    [Fact]
+    public void A_companion_counts_every_capture_it_took_part_in_and_proving_ones_apart()
+    {
+        // By hand: two runs with C-17, the first of two captures and a proving one, the second of one.
+        string[] columns = ["companion", "runs", "captures_taken", "proving_captures"];
+        Assert.Equal(
+            [["C-17", 2L, 3L, 1L], ["C-18", 1L, 0L, 0L]], Columns(Ask("companions", []), columns));
+        Assert.Equal(
+            [["C-18", 1L, 0L, 0L]], Columns(Ask("companions", new() { ["companion"] = "C-18" }), columns));
+    }
+
+    [Fact]
+    public void Notes_are_told_newest_first()
+    {
+        string[] columns = ["device", "kind", "author", "because"];
+        Assert.Equal(
+            [["W1200-0003", "scrap", "K. Weber", "lead bent"], ["W1200-0001", "release", "K. Weber", "shipped"]],
+            Columns(Ask("notes", new() { ["lot"] = "L-1" }), columns));
+        Assert.Equal(
+            [["W1200-0003", "scrap", "K. Weber", "lead bent"]],
+            Columns(Ask("notes", new() { ["kind"] = "scrap" }), columns));
+    }
+
     [Theory]
     [InlineData("device-history", "device", "needs --device")]
     [InlineData("worst-20", "quantity", "needs --quantity")]
@@ -117,6 +140,11 @@ public sealed class NamedQueryTests(SixRuns six) : IClassFixture<SixRuns>
     [InlineData("run-values")]
     [InlineData("worst-20")]
     [InlineData("distribution-by-lot")]
+    [InlineData("notes", "lot")]
+    [InlineData("notes", "device")]
+    [InlineData("leakage-holds", "device")]
+    [InlineData("leakage-holds", "run")]
+    [InlineData("companions", "companion")]
     public void A_question_about_one_device_or_lot_scans_no_table(string name, params string[] also)
     {
         NamedQuery query = NamedQueries.Find(name);
@@ -137,7 +165,7 @@ public sealed class NamedQueryTests(SixRuns six) : IClassFixture<SixRuns>
             steps.Add(reader.GetString(3));
         }
 
-        string[] stored = ["m", "r", "d", "c", "v", "e", "a", "n", "one", "measurement", "run"];
+        string[] stored = ["m", "r", "d", "c", "v", "e", "a", "n", "one", "h", "measurement", "run", "hold"];
         string plan = string.Join("\n", steps);
         // "a" of distribution-by-lot and "one" are its own short lists of lots, not tables.
         string[] lists = name == "distribution-by-lot" ? ["a", "o", "one", "many"] : [];
@@ -158,6 +186,8 @@ public sealed class NamedQueryTests(SixRuns six) : IClassFixture<SixRuns>
         "part" => "WD-1200S-25",
         "outcome" => "accepted",
         "severity" => "alarm",
+        "companion" => "C-17",
+        "kind" => "scrap",
         "limit" => "5",
         _ => throw new ArgumentException($"no value for --{filter.Name}"),
     };

@@ -15,13 +15,15 @@ public sealed class AppendOnlyTests : IDisposable
         run.AddEvent(new(Samples.Clock().GetUtcNow(), "runner", Acceptance.Events.Severity.Detail, "fire", "train 1"));
         Samples.AddJudged(run, Samples.Capture(1), Samples.Valid);
         run.AddCapture(Samples.Capture(2));
+        run.AddHold(Samples.Hold());
         run.Finish(Samples.Decision());
+        store.AddNote(Samples.Note());
     }
 
     public static TheoryData<string> Tables { get; } =
     [
         "origin", "word", "content", "run", "run_file", "instrument", "event", "capture", "trace", "payload", "verdict",
-        "capture_value", "decision", "measurement", "seal",
+        "capture_value", "decision", "measurement", "seal", "hold", "entry", "note",
     ];
 
     public void Dispose() => _folder.Dispose();
@@ -44,13 +46,15 @@ public sealed class AppendOnlyTests : IDisposable
         Refused($"update {table} set {first} = {first}", "append-only");
         Refused($"delete from {table}", "append-only");
         string replace = $"insert or replace into {table} ({columns}) select {columns} from {table}";
-        Refused(replace, "is append-only|run is sealed");
+        Refused(replace, "is append-only|run is sealed|entry is sealed");
         Assert.Equal(before, _folder.Rows($"select * from {table}"));
     }
 
     [Theory]
     [InlineData("insert into event select run, 99, at, source, severity, kind, message from event")]
     [InlineData("insert into instrument (run, role, identity) select run, 'supply', 'x' from instrument")]
+    [InlineData("insert into hold select run, 99, operating_point, at, bus_voltage, supply_current, first_voltage, "
+        + "last_voltage, seconds, leakage, bound, conforms from hold")]
     [InlineData("insert into run_file select run, role, 'other.yaml', content from run_file limit 1")]
     [InlineData("insert into verdict (capture, scoring, valid, findings, not_evaluated) values (2, 0, 1, '', '')")]
     [InlineData("insert into measurement (run, scoring, operating_point, quantity, definition, unit, captures) "
@@ -58,6 +62,12 @@ public sealed class AppendOnlyTests : IDisposable
     [InlineData("insert into trace select capture, 'vbus', offset, length, codec, samples, time_origin, "
         + "sample_interval, increment, value_origin, reference, low_rail, high_rail, sha256 from trace limit 1")]
     public void A_sealed_run_grows_no_more(string sql) => Refused(sql, "run is sealed");
+
+    [Theory]
+    [InlineData("insert into note select entry + 1, device, lot, kind, because from note", "FOREIGN KEY")]
+    [InlineData("insert into entry select id + 1, 'x', origin, ordinal - 1, kind, at, author from entry", "sealed")]
+    public void A_sealed_entry_grows_no_more(string sql, string pattern) =>
+        Refused("pragma foreign_keys = on; " + sql, pattern);
 
     [Fact]
     public void A_later_scoring_of_a_sealed_run_is_added() => _folder.Write(

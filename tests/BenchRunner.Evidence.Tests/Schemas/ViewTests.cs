@@ -35,6 +35,13 @@ public sealed class ViewTests : IDisposable
             "lot_yield",
             "lot, part, sequence, devices, accepted, rejected, undecided, not_measured, stopped, first_pass_yield"
         },
+        {
+            "leakage_holds",
+            "run, device, lot, operating_point, at, bus_voltage, supply_current, first_voltage, last_voltage, " +
+            "seconds, leakage, bound, conforms, simulated"
+        },
+        { "notes", "at, device, lot, kind, author, because, entry" },
+        { "companions", "companion, runs, captures_taken, proving_captures, last_started_at" },
     };
 
     public void Dispose() => _folder.Dispose();
@@ -66,7 +73,8 @@ public sealed class ViewTests : IDisposable
         using (EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock()))
         {
             Samples.WholeRun(store, Samples.Header(lot: "L-1"));
-            Samples.WholeRun(store, Samples.Header("W1200-0002", "L-1"));
+            Samples.WholeRun(store, Samples.Header("W1200-0002", "L-1") with { Companion = "C-17" });
+            store.AddNote(Samples.Note());
         }
 
         foreach (string view in Contract.Select(row => row.Data.Item1))

@@ -51,6 +51,18 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
             + "sequence_content, algorithm, platform, scored_at from decision where run = 1",
             "unsealed"
         },
+        { "update hold set leakage = 1e-6 where run = 2", "seal" },
+        { "update hold set conforms = 0 where run = 1", "seal" },
+        { "delete from hold where run = 3", "seal" },
+        { "update note set kind = 'scrap'", "seal" },
+        { "update note set because = 'none'", "seal" },
+        { "update entry set author = 'A. Other'", "seal" },
+        { "update entry set ordinal = 9", "unsealed" },
+        { "delete from note", "seal" },
+        { "delete from note; delete from entry", "seal" },
+        { "delete from note; delete from entry; delete from seal where kind = 'entry' and ordinal = 3", "seal" },
+        { "delete from seal where ordinal = 4", "unsealed" },
+        { "insert into entry values (9, 'x', 1, 9, 'note', '2026-03-02T08:00:00.000Z', 'A. Other')", "unsealed" },
         { "drop view lot_yield; create view lot_yield as select 1 as devices", "schema" },
     };
 
@@ -107,7 +119,8 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
             delete from verdict where capture > 6; delete from capture_value where capture > 6;
             delete from capture where run = 3; delete from measurement where run = 3;
             delete from decision where run = 3; delete from instrument where run = 3;
-            delete from run_file where run = 3; delete from seal where run = 3;
+            delete from run_file where run = 3; delete from hold where run = 3;
+            delete from note; delete from entry; delete from seal where ordinal > 2;
             delete from run where id = 3;
             """);
         Assert.All(Audit().Problems, problem => Assert.Equal("schema", problem.What));
@@ -158,6 +171,7 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
         .. _folder.Rows("select * from captures"), .. _folder.Rows("select * from capture_values"),
         .. _folder.Rows("select * from payload"), .. _folder.Rows("select * from content"),
         .. _folder.Rows("select * from instruments"), .. _folder.Rows("select * from lot_yield"),
+        .. _folder.Rows("select * from leakage_holds"), .. _folder.Rows("select * from notes"),
     ];
 
     private AuditReport Audit() => EvidenceAudit.Verify(_folder.File, cancel: TestContext.Current.CancellationToken);

@@ -1,6 +1,8 @@
 using System.Diagnostics;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Evidence.Entries;
+using BenchRunner.Evidence.Notes;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;
 
@@ -27,6 +29,8 @@ public sealed class SealTests : IDisposable
                 run.AddEvent(new BenchEvent(
                     Samples.Clock().GetUtcNow(), "watch", Severity.Warning, "late", "two\nlines; Ω"));
                 run.AddCapture(Samples.Capture(1, "zero") with { Train = null });
+                run.AddHold(Samples.Hold());
+                run.AddHold(Samples.Hold(supplyCurrent: null, bound: null));
                 Samples.AddJudged(run, Samples.Capture(1, seed: device), Samples.Rejected);
                 run.AddCapture(Samples.Capture(2) with { Traces = [Noise(device)] });
                 string seal = device == 2
@@ -34,6 +38,12 @@ public sealed class SealTests : IDisposable
                     : run.Finish(Samples.Decision(
                         Outcome.Rejected, Samples.Measured(-0.0), Samples.Measured(null, "qrr")));
                 expected.Add($"{run.Run} {seal}");
+                if (device == 2)
+                {
+                    SealedEntry note = store.AddNote(
+                        new Note("W1200-0002", "Lös Ω", NoteKind.Concession, "K. Weber", "used on\nbench Ω"));
+                    expected.Add($"{note.Entry} {note.Seal}");
+                }
             }
         }
 

@@ -3,7 +3,7 @@ using BenchRunner.Evidence.Stores;
 
 namespace BenchRunner.Evidence.Tests.Seals;
 
-/// <summary>The bytes of a file with three sealed runs, made once.</summary>
+/// <summary>The bytes of a file with three sealed runs and a note, made once.</summary>
 public sealed class ThreeRuns
 {
     public ThreeRuns()
@@ -18,6 +18,8 @@ public sealed class ThreeRuns
                     Samples.Decision(Outcome.Accepted, Samples.Measured(650e-6 + (device * 1e-6)));
                 runs.Add(Samples.WholeRun(store, Samples.Header($"W1200-000{device}", "L-1"), decision, device));
             }
+
+            store.AddNote(Samples.Note());
         }
 
         Runs = runs;

@@ -19,13 +19,16 @@ FORM = [  # table, columns in order; *x is a text kept in word, @x the SHA-256 o
               "reference low_rail high_rail sha256"),
     ("verdict", "capture valid findings not_evaluated load_current bus_voltage next_first_pulse"),
     ("capture_value", "capture *quantity *definition value *unit from_time to_time reason"),
+    ("hold", "ordinal *operating_point at bus_voltage supply_current first_voltage last_voltage seconds leakage bound "
+             "conforms"),
     ("measurement", "*operating_point *quantity *definition *lot value *unit standard_uncertainty "
                     "expanded_uncertainty coverage_factor degrees_of_freedom captures lower_limit upper_limit "
                     "conformity reason"),
     ("decision", "outcome reason captures_taken captures_valid *sequence sequence_revision @sequence_content "
                  "*algorithm *platform scored_at"),
 ]
-ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3,
+ENTRY_FORM = [("entry", "uid origin kind at author"), ("note", "device *lot kind because")]
+ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3, "hold": 1,
          "measurement": 3}
 
 
@@ -50,7 +53,7 @@ def main(path):
     word = dict(db.execute("select id, text from word"))
     content = dict(db.execute("select id, sha256 from content"))
     origin = dict(db.execute("select id, uid from origin"))
-    rows = {table: [dict(r) for r in db.execute(f"select * from {table}")] for table, _ in FORM}
+    rows = {table: [dict(r) for r in db.execute(f"select * from {table}")] for table, _ in FORM + ENTRY_FORM}
     captures = {r["id"]: r for r in rows["capture"]}
 
     def resolve(column, r):
@@ -74,11 +77,24 @@ def main(path):
                 total.update(row(table, line))
         return total.hexdigest()
 
+    def entry_digest(entry):
+        total = hashlib.sha256()
+        for table, columns in ENTRY_FORM:
+            for r in rows[table]:
+                if r["id" if table == "entry" else "entry"] == entry:
+                    total.update(row(table, [resolve(c, r) for c in columns.split()]))
+        return total.hexdigest()
+
     good = True
     last = {}
     for s in db.execute("select * from seal order by origin, ordinal"):
-        mine = digest(s["run"])
-        uid = next(r["uid"] for r in rows["run"] if r["id"] == s["run"])
+        if s["kind"] == "run":
+            of = next(r for r in rows["run"] if r["id"] == s["run"])
+            mine = digest(of["id"])
+        else:
+            of = next(r for r in rows["entry"] if (r["origin"], r["ordinal"]) == (s["origin"], s["ordinal"]))
+            mine = entry_digest(of["id"])
+        uid = of["uid"]
         seal = hashlib.sha256(row("seal", [origin[s["origin"]], s["ordinal"], s["kind"], uid, s["sealed_at"], mine,
                                            last.get(s["origin"], "")])).hexdigest()
         good = good and seal == s["seal"]

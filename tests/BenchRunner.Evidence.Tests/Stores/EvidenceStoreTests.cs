@@ -18,7 +18,7 @@ public sealed class EvidenceStoreTests : IDisposable
     public void A_new_file_is_an_empty_evidence_file_with_a_log_ahead()
     {
         Open().Dispose();
-        Assert.Equal(1L, _folder.Value("pragma user_version"));
+        Assert.Equal(2L, _folder.Value("pragma user_version"));
         Assert.Equal(8192L, _folder.Value("pragma page_size"));
         Assert.Equal("wal", _folder.Value("pragma journal_mode"));
         Assert.Single(_folder.Rows("select * from origin"));
@@ -105,7 +105,7 @@ public sealed class EvidenceStoreTests : IDisposable
         // What a writer leaves that was ended while it made the file.
         File.WriteAllBytes(_folder.File, []);
         Open().Dispose();
-        Assert.Equal(1L, _folder.Value("pragma user_version"));
+        Assert.Equal(2L, _folder.Value("pragma user_version"));
     }
 
     [Theory]
@@ -186,6 +186,9 @@ public sealed class EvidenceStoreTests : IDisposable
         RunHeader first = Samples.Header(lot: "L-1");
         Samples.WholeRun(store, first, Samples.Decision(Outcome.Undecided));
         Assert.Equal(RunRefusalKind.AlreadyDecided, store.Refuses(first)?.Kind);
+        Assert.Equal(
+            "W1200-0001 is undecided in lot L-1 already; say why it is measured again (--again REASON).",
+            store.Refuses(first)?.Message);
         Assert.Equal(RunRefusalKind.AlreadyDecided, store.Refuses(first with { Again = "  " })?.Kind);
         Assert.Null(store.Refuses(Samples.Header(lot: "L-2")));
         Assert.Null(store.Refuses(Samples.Header("W1200-0002", "L-1")));
@@ -198,6 +201,48 @@ public sealed class EvidenceStoreTests : IDisposable
         Assert.Equal(
             [["undecided", 0L], ["accepted", 1L]],
             _folder.Rows("select outcome, current from device_outcomes order by attempt"));
+    }
+
+    [Fact]
+    public void A_device_whose_run_goes_on_gets_no_second_one_in_its_lot()
+    {
+        using EvidenceStore store = Open();
+        RunWriter first = store.BeginRun(Samples.Header(lot: "L-1"));
+        RunRefusal refusal = store.Refuses(Samples.Header(lot: "L-1", again: "in doubt"))!;
+        Assert.Equal(
+            (RunRefusalKind.InFlight, $"W1200-0001 has run {first.Run} in lot L-1 that has not ended; end it first."),
+            (refusal.Kind, refusal.Message));
+        Assert.Null(store.Refuses(Samples.Header("W1200-0002", "L-1")));
+        first.Stop("enough");
+        Assert.Null(store.Refuses(Samples.Header(lot: "L-1")));
+    }
+
+    [Fact]
+    public void A_reason_to_measure_again_wants_a_lot_and_is_kept_only_where_something_was_decided()
+    {
+        using EvidenceStore store = Open();
+        Assert.Equal(
+            RunRefusalKind.AgainWithoutLot, store.Refuses(Samples.Header(again: "contact was dirty"))?.Kind);
+        RunHeader header = Samples.Header(lot: "L-1", again: "contact was dirty");
+        store.BeginRun(header).Stop("no bus");
+        Samples.WholeRun(store, header);
+        Samples.WholeRun(store, header);
+        Assert.Equal([[null], [null], ["contact was dirty"]], _folder.Rows("select again from run order by attempt"));
+    }
+
+    [Fact]
+    public void The_sequence_says_how_many_attempts_there_are()
+    {
+        using EvidenceStore store = Open();
+        RunHeader header = Samples.Header(lot: "L-1", again: "doubt", sequence: Samples.Sequence(attempts: 3));
+        for (int attempt = 1; attempt <= 3; attempt++)
+        {
+            Samples.WholeRun(store, header);
+        }
+
+        Assert.Equal(
+            "W1200-0001 had 3 attempts in lot L-1, and the sequence allows 3; decide by what is there.",
+            store.Refuses(header)?.Message);
     }
 
     [Fact]

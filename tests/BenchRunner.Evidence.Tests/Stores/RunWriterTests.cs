@@ -2,6 +2,7 @@ using System.Collections;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Files;
+using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;
 
@@ -70,6 +71,49 @@ public sealed class RunWriterTests : IDisposable
             Assert.Single(_folder.Rows("select outcome, reason from device_outcomes")));
         Assert.Empty(_folder.Rows("select * from measurements"));
         Assert.Throws<InvalidOperationException>(() => run.AddCapture(Samples.Capture(2)));
+    }
+
+    [Fact]
+    public void Zero_and_proving_captures_are_shown_but_neither_counted_nor_measured()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        RunWriter run = store.BeginRun(Samples.Header());
+        string[] apart = [UncountedPoints.Zero, UncountedPoints.ProvingBefore, UncountedPoints.ProvingAfter];
+        foreach (string point in apart)
+        {
+            Samples.AddJudged(run, Samples.Capture(1, point), Samples.Valid);
+            Assert.Throws<ArgumentException>(
+                () => run.Finish(Samples.Decision(Outcome.Accepted, Samples.Measured(650e-6, point: point))));
+        }
+
+        Samples.AddJudged(run, Samples.Capture(1), Samples.Valid);
+        Samples.AddJudged(run, Samples.Capture(2), Samples.Rejected);
+        run.Finish(Samples.Decision());
+
+        Assert.Equal(
+            [.. apart.Select(point => new object?[] { point, 1L, 1L }), ["rated", 1L, 1L], ["rated", 2L, 0L]],
+            _folder.Rows("select operating_point, capture, valid from captures"));
+        Assert.Equal([[2L, 1L]], _folder.Rows("select captures_taken, captures_valid from device_outcomes"));
+        Assert.Equal([["rated"]], _folder.Rows("select operating_point from measurements"));
+    }
+
+    [Fact]
+    public void A_leakage_hold_is_in_the_file_when_it_was_added()
+    {
+        using EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock());
+        RunWriter run = store.BeginRun(Samples.Header(lot: "L-7"));
+        run.AddHold(Samples.Hold());
+        run.AddHold(Samples.Hold(supplyCurrent: null, bound: null) with { OperatingPoint = "high", Conforms = false });
+        Assert.Throws<ArgumentException>(() => run.AddHold(Samples.Hold() with { Leakage = double.NaN }));
+        string at = "2026-03-02T08:00:00.000Z";
+        Assert.Equal(
+            [
+                [run.Run, "W1200-0001", "L-7", "rated", at, 600.0, 1.2e-3, 599.8, 597.1, 0.1, 1.25e-3, 2e-3, 1L, 1L],
+                [run.Run, "W1200-0001", "L-7", "high", at, 600.0, null, 599.8, 597.1, 0.1, 1.25e-3, null, 0L, 1L],
+            ],
+            _folder.Rows("select * from leakage_holds"));
+        run.Finish(Samples.Decision());
+        Assert.Throws<InvalidOperationException>(() => run.AddHold(Samples.Hold()));
     }
 
     [Fact]
