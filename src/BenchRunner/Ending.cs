@@ -1,3 +1,12 @@
+using BenchRunner.Evidence;
+using BenchRunner.Evidence.Queries;
+using BenchRunner.Evidence.Stores;
+using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Runner.Sessions;
+using BenchRunner.Safety;
+
 namespace BenchRunner;
 
 /// <summary>The one place where an exception that got this far becomes an exit code and one line for the
@@ -10,53 +19,30 @@ internal static class Ending
         {
             return await work();
         }
-        catch (OperationCanceledException) when (stop.IsCancellationRequested)
+        catch (Exception ended)
         {
-            return Say("interrupted", ExitCode.Interrupted);
-        }
-        catch (InputException wrong)
-        {
-            return Say(wrong.Message, ExitCode.WrongInput);
-        }
-        catch (Runner.Sessions.RefusedException refused)
-        {
-            return Say(refused.Message, refused.Kind switch
-            {
-                Runner.Sessions.RefusalKind.Latched => ExitCode.Safety,
-                Runner.Sessions.RefusalKind.Taken => ExitCode.Instrument,
-                _ => ExitCode.WrongInput,
-            });
-        }
-        catch (Evidence.Stores.RunRefusedException refused)
-        {
-            return Say(refused.Message, ExitCode.WrongInput);
-        }
-        catch (Evidence.Queries.QueryException wrong)
-        {
-            return Say(wrong.Message, ExitCode.WrongInput);
-        }
-        catch (Evidence.EvidenceException lost)
-        {
-            return Say(lost.Message, ExitCode.Evidence);
-        }
-        catch (Safety.SafetyException stopped)
-        {
-            return Say(stopped.Message, ExitCode.Safety);
-        }
-        catch (Exception failed) when (failed is Runner.Benches.BenchException
-            or Instruments.Links.LinkException or Instruments.Roles.InstrumentException)
-        {
-            return Say(failed.Message, ExitCode.Instrument);
-        }
-        catch (Exception fault)
-        {
-            return Say($"a fault of this program, please report it: {fault}", ExitCode.Fault);
+            (string message, int code) = Explain(ended, stop);
+            System.Console.Error.WriteLine(message);
+            return code;
         }
     }
 
-    private static int Say(string message, int code)
+    /// <summary>What an exception says to the user, and its exit code.</summary>
+    public static (string Message, int Code) Explain(Exception ended, CancellationToken stop) => ended switch
     {
-        System.Console.Error.WriteLine(message);
-        return code;
-    }
+        OperationCanceledException when stop.IsCancellationRequested => ("interrupted", ExitCode.Interrupted),
+        RefusedException refused => (refused.Message, OfRefusal(refused.Kind)),
+        InputException or RunRefusedException or QueryException => (ended.Message, ExitCode.WrongInput),
+        EvidenceException => (ended.Message, ExitCode.Evidence),
+        SafetyException => (ended.Message, ExitCode.Safety),
+        BenchException or LinkException or InstrumentException => (ended.Message, ExitCode.Instrument),
+        _ => ($"a fault of this program, please report it: {ended}", ExitCode.Fault),
+    };
+
+    private static int OfRefusal(RefusalKind kind) => kind switch
+    {
+        RefusalKind.Latched => ExitCode.Safety,
+        RefusalKind.Taken => ExitCode.Instrument,
+        _ => ExitCode.WrongInput,
+    };
 }

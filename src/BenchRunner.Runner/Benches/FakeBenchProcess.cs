@@ -25,14 +25,15 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
     /// <summary>Starts the child and waits until every instrument listens.</summary>
     /// <param name="bench">The bench; it has a <c>fake:</c> block.</param>
     /// <param name="device">Serial of the first device in the fixture.</param>
+    /// <param name="companion">Serial of the companion in the other place; null: none.</param>
     /// <param name="time">The clock of the start's deadline.</param>
     /// <param name="cancel">Ends the waiting and the child.</param>
     /// <exception cref="BenchException">The program is missing, or ended or kept silent before it was
     /// ready.</exception>
     public static async Task<FakeBenchProcess> Start(
-        Bench bench, string device, TimeProvider time, CancellationToken cancel)
+        Bench bench, string device, string? companion, TimeProvider time, CancellationToken cancel)
     {
-        Process process = Launch(Arguments(bench, device));
+        Process process = Launch(Arguments(bench, device, companion));
         try
         {
             using var limit = new CancellationTokenSource(StartLimit, time);
@@ -89,7 +90,7 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
         _process.Dispose();
     }
 
-    private static List<string> Arguments(Bench bench, string device)
+    private static List<string> Arguments(Bench bench, string device, string? companion)
     {
         FakeSettings fake = bench.Fake
             ?? throw new ArgumentException("The bench has no fake: block.", nameof(bench));
@@ -101,6 +102,21 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
             "--pace", fake.Pace.ToString(CultureInfo.InvariantCulture),
             "--channels", string.Join(',', bench.Channels.OrderBy(c => c.Input).Select(c => c.Channel.Name())),
         ];
+        if (companion is not null)
+        {
+            arguments.AddRange(["--companion", companion]);
+        }
+
+        if (!bench.LoadToPositive)
+        {
+            arguments.AddRange(["--load", "negative"]);
+        }
+
+        if (bench.Roles.ContainsKey("hotplate"))
+        {
+            arguments.Add("--hotplate");
+        }
+
         foreach (string fault in fake.Faults)
         {
             arguments.AddRange(["--fault", fault]);

@@ -1,5 +1,4 @@
 using BenchRunner.Acceptance.Events;
-using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 
 namespace BenchRunner.Runner.Exchanges;
@@ -7,10 +6,9 @@ namespace BenchRunner.Runner.Exchanges;
 /// <summary>Exchanges the device on a bench whose hands this program moves (a fake bench that it started).</summary>
 /// <remarks>The loop must be seen open after the bus was proved down, and closed again; closing never energises by
 /// itself.</remarks>
-public sealed class Exchange(IHands hands, IInterlock interlock, EventSource events, TimeProvider time)
+public sealed class Exchange(IHands hands, Enclosure enclosure, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan Within = TimeSpan.FromSeconds(5);
-    private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(20);
 
     /// <summary>Opens, inserts the device, closes, and sees each in the interlock loop.</summary>
     /// <param name="device">Serial of the device that goes in.</param>
@@ -18,28 +16,28 @@ public sealed class Exchange(IHands hands, IInterlock interlock, EventSource eve
     /// <exception cref="BenchException">The loop did not follow.</exception>
     public async Task Insert(string device, CancellationToken cancel)
     {
+        int openings = enclosure.Openings;
         await hands.Do("open", cancel);
-        await See(closed: false, cancel);
+        await See(patience => enclosure.Opened(openings, patience), "open", cancel);
         await hands.Do($"insert {device}", cancel);
         await hands.Do("close", cancel);
-        await See(closed: true, cancel);
+        await See(enclosure.Closed, "closed", cancel);
         events.Say(Severity.Information, "device-exchanged", $"enclosure seen open and closed again; {device} is in "
             + $"the fixture");
     }
 
-    private async Task See(bool closed, CancellationToken cancel)
+    private async Task See(Func<CancellationToken, Task> look, string what, CancellationToken cancel)
     {
-        long start = time.GetTimestamp();
-        while ((await interlock.Read(cancel)).LoopClosed != closed)
+        using var patience = new CancellationTokenSource(Within, time);
+        using var both = CancellationTokenSource.CreateLinkedTokenSource(patience.Token, cancel);
+        try
         {
-            if (time.GetElapsedTime(start) > Within)
-            {
-                throw new BenchException(
-                    $"the interlock loop was not seen {(closed ? "closed" : "open")} within {Within.TotalSeconds:0} s "
-                        + $"of the exchange");
-            }
-
-            await Task.Delay(ReadEvery, time, cancel);
+            await look(both.Token);
+        }
+        catch (OperationCanceledException) when (!cancel.IsCancellationRequested)
+        {
+            throw new BenchException(
+                $"the interlock loop was not seen {what} within {Within.TotalSeconds:0} s of the exchange");
         }
     }
 }

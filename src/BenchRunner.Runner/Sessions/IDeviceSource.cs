@@ -8,4 +8,7 @@ public interface IDeviceSource
 
     /// <summary>Serials that are known already and were not asked for yet.</summary>
     IReadOnlyList<string> Waiting { get; }
+
+    /// <summary>Whether more may come from a reader; false: <see cref="Waiting"/> are all.</summary>
+    bool FromReader { get; }
 }

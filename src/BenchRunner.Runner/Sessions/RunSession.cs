@@ -1,4 +1,3 @@
-using System.Runtime.InteropServices;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
@@ -6,7 +5,6 @@ using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
-using BenchRunner.Runner.Exchanges;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.Latches;
@@ -22,19 +20,19 @@ public sealed class RunSession
 {
     private readonly RunRequest _request;
     private readonly IRunSink _sinks;
-    private readonly IConfirmation _confirmation;
+    private readonly IOperator _person;
     private readonly TimeProvider _time;
     private readonly DeviceJournal _journal;
     private readonly EventSource _events;
     private readonly LatchFile _latch;
 
     /// <summary>Makes a session; nothing is opened before <see cref="Run"/>.</summary>
-    public RunSession(RunRequest request, IRunSink sinks, IConfirmation confirmation, TimeProvider time)
+    public RunSession(RunRequest request, IRunSink sinks, IOperator person, TimeProvider time)
     {
         ArgumentNullException.ThrowIfNull(request);
         _request = request;
         _sinks = sinks;
-        _confirmation = confirmation;
+        _person = person;
         _time = time;
         _journal = new DeviceJournal(sinks);
         _events = new EventSource("runner", _journal, time);
@@ -62,10 +60,12 @@ public sealed class RunSession
     public async Task<RunSummary> Run(IDeviceSource devices, CancellationToken operatorStop)
     {
         ArgumentNullException.ThrowIfNull(devices);
-        if (!IsNewEachTime && devices.Waiting.Count > 1)
+        if (!IsNewEachTime && !Bench.ExchangeByHand && devices.Waiting.Count > 1 && !devices.FromReader)
         {
             throw new RefusedException(
-                RefusalKind.Input, $"bench {Bench.Name} takes one device a call; start a run for each");
+                RefusalKind.Input,
+                $"bench {Bench.Name} takes one device a call, its file says exchange: none; start a run for each, or "
+                    + "write exchange: by-hand where a person exchanges them through the interlocked enclosure");
         }
 
         using BenchLock? held = IsNewEachTime ? null : TakeBench();
@@ -78,85 +78,49 @@ public sealed class RunSession
                     + $"are kept");
         }
 
-        if (await devices.Next(operatorStop) is not { } first)
+        var queue = new DeviceQueue(devices, _request, store, _events, Algorithm);
+        queue.RefuseKnown();
+        if (await queue.Next(operatorStop) is not { } first)
         {
             return new RunSummary([], [], IsNewEachTime);
         }
 
-        Refuse(store, [first, .. devices.Waiting]);
-
         await using FakeBenchProcess? fake = IsNewEachTime
-            ? await FakeBenchProcess.Start(Bench, first, _time, operatorStop) : null;
+            ? await FakeBenchProcess.Start(Bench, first, _request.Companion, _time, operatorStop) : null;
         await using OpenBench open = await OpenBench.Open(
             Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), _time, operatorStop);
+        if (open.IsSimulated && !IsNewEachTime)
+        {
+            _events.Say(
+                Severity.Warning, "simulated", "SIMULATED: the instruments say that they stand in for real ones");
+        }
+
         foreach ((string role, InstrumentIdentity identity) in open.Identities)
         {
             _events.Say(Severity.Information, "instrument", $"{role}: {identity.Text}");
         }
 
+        RefuseUnattended(devices, open);
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         using CancellationTokenRegistration latching = supervisor.Tripped.Register(() => LeaveLatch(supervisor.Trip!));
         await supervisor.Start(operatorStop);
-        return await Devices(first, devices, store, open, supervisor, fake, operatorStop);
+        return await new Shift(
+            Plan, store, open, supervisor, fake, _person, queue, _sinks, _journal, _events, _time).Run(
+                first, operatorStop);
     }
 
-    private async Task<RunSummary> Devices(
-        string first,
-        IDeviceSource devices,
-        EvidenceStore store,
-        OpenBench open,
-        SafetySupervisor supervisor,
-        FakeBenchProcess? fake,
-        CancellationToken operatorStop)
+    /// <summary>Each closing of a real enclosure wants a person's confirmation: several need a terminal.</summary>
+    private void RefuseUnattended(IDeviceSource devices, OpenBench open)
     {
-        var reports = new List<DeviceReport>();
-        string device = first;
-        while (true)
+        if (!open.IsSimulated && Bench.ExchangeByHand && !_person.CanAsk
+            && (devices.FromReader || devices.Waiting.Count > 0))
         {
-            string confirmedBy = await Confirm(open, supervisor, operatorStop);
-            reports.Add(await One(device, confirmedBy, store, open, supervisor, operatorStop));
-            if (reports[^1].Ending != BenchEnding.Proved)
-            {
-                return new RunSummary(reports, devices.Waiting, open.IsSimulated);
-            }
-
-            // A bench whose hands are not ours takes one device a call.
-            if (fake is null || await devices.Next(operatorStop) is not { } next)
-            {
-                return new RunSummary(reports, [], open.IsSimulated);
-            }
-
-            device = next;
-            await new Exchange(fake, open.Safety.Interlock, _events, _time).Insert(device, operatorStop);
-        }
-    }
-
-    private async Task<DeviceReport> One(
-        string device,
-        string confirmedBy,
-        EvidenceStore store,
-        OpenBench open,
-        SafetySupervisor supervisor,
-        CancellationToken operatorStop)
-    {
-        RunWriter evidence = store.BeginRun(Header(device, confirmedBy, open.IsSimulated));
-        _journal.Follow(evidence);
-        try
-        {
-            foreach ((string role, InstrumentIdentity identity) in open.Identities)
-            {
-                evidence.AddInstrument(role, identity.Text, identity.Serial, identity.Firmware);
-            }
-
-            _events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
-            return await new DeviceRun(open, supervisor, Plan, _sinks, _events, _time)
-                .Walk(device, evidence, operatorStop);
-        }
-        finally
-        {
-            _journal.Follow(null);
+            throw new RefusedException(
+                RefusalKind.Input,
+                "devices exchanged by hand are confirmed at a terminal after each closing, and there is none: give one "
+                    + "--device a call; nothing was energised");
         }
     }
 
@@ -183,34 +147,6 @@ public sealed class RunSession
         }
     }
 
-    /// <summary>Refuses a device that is decided in its lot before anything is opened or energised.</summary>
-    private void Refuse(EvidenceStore store, IEnumerable<string> devices)
-    {
-        foreach (string device in devices)
-        {
-            RunHeader header = Header(device, confirmedBy: null, IsNewEachTime);
-            if (store.Refuses(header) is { Kind: not RunRefusalKind.MixedOrigin } refusal)
-            {
-                throw new RunRefusedException(refusal);
-            }
-        }
-    }
-
-    /// <summary>Asks; a trip does not wait for the answer.</summary>
-    private async Task<string> Confirm(OpenBench open, SafetySupervisor supervisor, CancellationToken operatorStop)
-    {
-        using var stop = CancellationTokenSource.CreateLinkedTokenSource(operatorStop, supervisor.Tripped);
-        try
-        {
-            return await _confirmation.Confirm(Plan, open.IsSimulated, stop.Token)
-                ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
-        }
-        catch (OperationCanceledException) when (supervisor.Trip is not null)
-        {
-            throw new SafetyException(supervisor.Trip.Reason);
-        }
-    }
-
     private BenchLock TakeBench()
     {
         if (_latch.Read() is { } said)
@@ -225,20 +161,4 @@ public sealed class RunSession
             ?? throw new RefusedException(
                 RefusalKind.Taken, $"bench {Bench.Name} is in use by {holder}; wait until that run has ended");
     }
-
-    private RunHeader Header(string device, string? confirmedBy, bool simulated) => new()
-    {
-        Device = device,
-        Lot = _request.Lot,
-        Sequence = Plan.Sequence,
-        Bench = Bench.Name,
-        Files = [Bench.Source, .. _request.Dialects.Values.Select(dialect => dialect.Source)],
-        Operator = _request.Operator,
-        ArmedBy = confirmedBy,
-        Companion = _request.Companion,
-        Simulated = simulated,
-        Again = _request.Again,
-        Algorithm = Algorithm,
-        Platform = $"{RuntimeInformation.RuntimeIdentifier} {RuntimeInformation.FrameworkDescription}",
-    };
 }

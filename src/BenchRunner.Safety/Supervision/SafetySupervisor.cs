@@ -27,6 +27,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     private Task _watching = Task.CompletedTask;
     private double _lastVoltage = double.NaN;
     private bool _discharging;
+    private bool _confirmed;
     private bool _watchdogSet;
     private Task<SafeStateReport>? _reaching;
 
@@ -56,6 +57,21 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
     /// <summary>What the interlock controller said at the last poll; null before the first.</summary>
     public InterlockState? LastInterlock { get; private set; }
+
+    /// <summary>How often the loop was found open after it was closed, or at the first poll.</summary>
+    public int LoopOpenings { get; private set; }
+
+    /// <summary>Holds a person's confirmation to the closing it was given for: from here until the bus is proved down
+    /// again, an open loop is a trip, though nothing be charged yet.</summary>
+    /// <param name="openings"><see cref="LoopOpenings"/> when the person was asked.</param>
+    /// <returns>False: the loop is open, or was in between; the confirmation is void.</returns>
+    public bool HoldConfirmed(int openings)
+    {
+        lock (_gate)
+        {
+            return _confirmed = LoopOpenings == openings && LastInterlock is { LoopClosed: true };
+        }
+    }
 
     /// <summary>Polls once, in full, arms the controller's watchdog, then goes on polling in a task of its own.</summary>
     /// <exception cref="SafetyException">The first poll found a reason to trip.</exception>
@@ -163,6 +179,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         lock (_gate)
         {
             _discharging = !report.Proved;
+            _confirmed &= !report.Proved;
         }
 
         // A bench that may be full must not be used by anybody before a person has looked.
@@ -256,11 +273,12 @@ public sealed class SafetySupervisor : IAsyncDisposable
             bool discharging = Volatile.Read(ref _discharging);
             InterlockState interlock = await _roles.Interlock.Read(cancel);
             double volts = Math.Abs((await _roles.Voltmeter.Read(cancel)).Value);
-            LastInterlock = interlock;
             Volatile.Write(ref _lastVoltage, volts);
             Witness.Saw(volts);
             lock (_gate)
             {
+                LoopOpenings += !interlock.LoopClosed && LastInterlock is not { LoopClosed: false } ? 1 : 0;
+                LastInterlock = interlock;
                 if (Doubt(interlock, volts, discharging || _discharging, toEnergise) is { } doubt)
                 {
                     return doubt;
@@ -292,7 +310,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             return "the interlock controller's watchdog has acted";
         }
 
-        bool energised = toEnergise || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
+        bool energised = toEnergise || _confirmed || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
         if (!interlock.LoopClosed && energised)
         {
             return "the interlock loop is open";

@@ -29,36 +29,42 @@ internal static class RunCommand
     {
         Job job = Job.Read(arguments.Sequence, arguments.Bench);
         bool fake = job.Bench.Fake is not null;
-        arguments.Check(fake);
+        arguments.Check(job);
         await using Screen screen = Screen.Standard(error: arguments.Json);
-        var serials = new Serials(arguments.Devices, job.Sequence, screen.Line);
-        var request = new RunRequest
-        {
-            Plan = job.Allowed(),
-            Dialects = job.Dialects,
-            EvidencePath = EvidenceFiles.ToWrite(arguments.Evidence, fake),
-            Lot = arguments.Lot,
-            Operator = arguments.Operator,
-            Companion = arguments.Companion,
-            Again = arguments.Again,
-        };
+        await using var terminal = new OperatorTerminal(screen, TimeProvider.System);
+        var serials = new Serials(
+            arguments.Devices, job.Sequence, () => Terminal.IsStandardInput
+                ? new TerminalSerials(terminal, job.Sequence, screen.Line)
+                : new StreamSerials(System.Console.OpenStandardInput(), job.Sequence, screen.Line));
+        RunRequest request = arguments.Request(job);
         EvidenceFiles.RequireSpace(request.EvidencePath, request.Plan.Bytes);
         screen.Line($"{Simulated(fake)}{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, "
             + $"evidence in {request.EvidencePath}");
         var session = new RunSession(
-            request, new SinkSet([new ProgressLog(screen)]), new OperatorConfirmation(screen, arguments.ArmedBy),
-            TimeProvider.System);
+            request, new SinkSet([new ProgressLog(screen)]),
+            new BenchOperator(screen, terminal, job.Sequence, arguments.ArmedBy), TimeProvider.System);
         RunSummary summary = await session.Run(serials, stop);
+        return Report(summary, request.EvidencePath, screen, arguments.Json, stop);
+    }
+
+    private static int Report(
+        RunSummary summary, string evidence, Screen screen, bool json, CancellationToken stop)
+    {
+        int code = RunExit.Of(summary, stop);
+        if (summary.BrokenOff is { } broken)
+        {
+            screen.Line(screen.Palette.Bad(Screen.Printable(Ending.Explain(broken, stop).Message)));
+        }
+
         foreach (string device in summary.NotRun)
         {
             screen.Line(screen.Palette.Bad($"{device}: got no run"));
         }
 
-        int code = RunExit.Of(summary);
         screen.Line($"{Simulated(summary.Simulated)}{RunExit.Words(code)}");
-        if (arguments.Json)
+        if (json)
         {
-            RunJson.Write(summary, request.EvidencePath, code);
+            RunJson.Write(summary, evidence, code);
         }
 
         return code;

@@ -7,9 +7,12 @@ namespace BenchRunner.Commands;
 /// <summary>The exit code of a session.</summary>
 internal static class RunExit
 {
-    public static int Of(RunSummary summary) => summary.Devices.Aggregate(
-        ExitCode.Done, (code, device) =>
-            ExitCode.Worse(code, ExitCode.Worse(OfEnding(device.Ending), OfOutcome(device))));
+    /// <param name="summary">The session.</param>
+    /// <param name="stop">Cancelled when the operator interrupted.</param>
+    /// <returns>The worst of its devices and of what broke it off.</returns>
+    public static int Of(RunSummary summary, CancellationToken stop) => summary.Devices.Aggregate(
+        summary.BrokenOff is { } broken ? Ending.Explain(broken, stop).Code : ExitCode.Done,
+        (code, device) => ExitCode.Worse(code, ExitCode.Worse(OfEnding(device.Ending), OfOutcome(device))));
 
     public static string Words(int code) => code switch
     {
@@ -19,6 +22,7 @@ internal static class RunExit
         ExitCode.Safety => "STOPPED BY SAFETY",
         ExitCode.Instrument => "an instrument or link failed",
         ExitCode.Evidence => "the evidence could not be written",
+        ExitCode.WrongInput => "ended before every device was run",
         ExitCode.Interrupted => "interrupted by the operator",
         _ => "a fault of this program",
     };

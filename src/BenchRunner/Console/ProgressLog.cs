@@ -11,12 +11,19 @@ namespace BenchRunner.Console;
 /// <summary>What the operator sees: one line an event, decisions at the end, and a live line on a terminal.</summary>
 internal sealed class ProgressLog(Screen screen) : IRunSink
 {
+    private const string Trip = "trip";
+
     public void Receive(BenchEvent happened)
     {
         // Details are in the evidence, for who looks for them there.
         if (happened.Severity == Severity.Detail)
         {
             return;
+        }
+
+        if (happened.Kind == Trip)
+        {
+            screen.Bell();
         }
 
         string at = happened.At.ToLocalTime().ToString("HH:mm:ss.fff", CultureInfo.InvariantCulture);
@@ -54,6 +61,7 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
                 + $"{report.Run}"));
         string reason = report.Decision.Reason is { } why ? $"  ({Screen.Printable(why)})" : "";
         screen.Line("");
+        screen.Bell();
         screen.Line($"  >>>  {report.Device}  {Word(report.Decision.Outcome)}{reason}  <<<");
         screen.Line("");
     }

@@ -57,6 +57,15 @@ internal sealed class Screen : IAsyncDisposable
         }
     }
 
+    /// <summary>Rings the terminal's bell; does nothing in a pipe or file.</summary>
+    public void Bell()
+    {
+        if (_isTerminal)
+        {
+            _asked.Writer.TryWrite(() => _writer.Write('\a'));
+        }
+    }
+
     /// <summary>Takes the live line away.</summary>
     public void EndLive() => _asked.Writer.TryWrite(() =>
     {

@@ -4,16 +4,23 @@ using Microsoft.Win32.SafeHandles;
 
 namespace BenchRunner.Console;
 
-/// <summary>The terminal that a person sits at, whatever standard input is: a list of serials or a scanner is no
-/// person.</summary>
+/// <summary>The terminal that a person sits at, whatever standard input is: a list of serials or a scanner on a line of
+/// its own is no person.</summary>
 internal sealed partial class Terminal : IDisposable
 {
     private const string Device = "/dev/tty";
     private const int FlushInputLinux = 0;
     private const int FlushInputMac = 1;
+    private const int StandardInput = 0;
     private readonly FileStream? _device;
+    private readonly List<byte> _line = [];
 
     private Terminal(FileStream? device) => _device = device;
+
+    /// <summary>Whether standard input is this very terminal: then scanner and person type into one line.</summary>
+    public static bool IsStandardInput => OperatingSystem.IsWindows()
+        ? !System.Console.IsInputRedirected
+        : ForegroundOf(StandardInput) >= 0;
 
     /// <summary>Opens the terminal; null where there is none.</summary>
     public static Terminal? Open()
@@ -37,6 +44,7 @@ internal sealed partial class Terminal : IDisposable
     /// <summary>Throws away what was typed before, so that keys or scans that waited answer nothing.</summary>
     public void DiscardWaiting()
     {
+        _line.Clear();
         if (_device is null)
         {
             while (System.Console.KeyAvailable)
@@ -47,43 +55,110 @@ internal sealed partial class Terminal : IDisposable
             return;
         }
 
-        if (Flush(_device.SafeFileHandle, OperatingSystem.IsMacOS() ? FlushInputMac : FlushInputLinux) != 0)
+        // A program in the background may not touch what was typed; the system would stop it.
+        if (!IsOurs() || Flush(Handle, OperatingSystem.IsMacOS() ? FlushInputMac : FlushInputLinux) != 0)
         {
             throw new IOException("what was typed before the question cannot be discarded; nothing is armed");
         }
     }
 
-    /// <summary>Puts a question on the terminal, wherever standard output goes.</summary>
-    public void Ask(string question)
+    /// <summary>Puts a line on the terminal, wherever standard output goes.</summary>
+    public void Write(string line)
     {
         if (_device is null)
         {
-            System.Console.Error.WriteLine(question);
+            System.Console.Error.WriteLine(line);
             return;
         }
 
-        _device.Write(Encoding.UTF8.GetBytes(question + "\n"));
+        _device.Write(Encoding.UTF8.GetBytes(line + "\n"));
     }
 
-    /// <summary>Reads one line; null at its end.</summary>
-    public Task<string?> ReadLine(CancellationToken cancel) =>
-        Task.Run(() => _device is null ? System.Console.ReadLine() : Line(_device), CancellationToken.None).WaitAsync(
-            cancel);
+    /// <summary>Takes a line that was typed, without waiting for one.</summary>
+    /// <param name="line">The line without blanks around it; null: the person has left (end of file).</param>
+    /// <returns>False where none is there.</returns>
+    /// <exception cref="IOException">The terminal is gone.</exception>
+    public bool TryTake(out string? line)
+    {
+        line = null;
+        return _device is null ? TakeKeys(ref line) : TakeBytes(_device, ref line);
+    }
 
     public void Dispose() => _device?.Dispose();
 
-    // A byte at a time: the person's next line is not ours to take.
-    private static string? Line(FileStream device)
+    private bool TakeBytes(FileStream device, ref string? line)
     {
-        var line = new List<char>();
-        while (device.ReadByte() is var read && read >= 0 && read != '\n')
+        // A byte at a time: the line after this one may belong to a question not yet put.
+        while (IsOurs() && IsReadable())
         {
-            line.Add((char)read);
+            int read = device.ReadByte();
+            if (read >= 0 && read != '\n')
+            {
+                _line.Add((byte)read);
+                continue;
+            }
+
+            line = read < 0 && _line.Count == 0 ? null : Encoding.UTF8.GetString([.. _line]).Trim();
+            _line.Clear();
+            return true;
         }
 
-        return line.Count == 0 ? null : string.Concat(line).Trim();
+        return false;
+    }
+
+    private bool TakeKeys(ref string? line)
+    {
+        while (System.Console.KeyAvailable)
+        {
+            char key = System.Console.ReadKey().KeyChar;
+            switch (key)
+            {
+                case '\r' or '\n':
+                    line = Encoding.UTF8.GetString([.. _line]).Trim();
+                    _line.Clear();
+                    return true;
+                case '\u001a':
+                    return true;
+                case '\b':
+                    _line.RemoveRange(Math.Max(_line.Count - 1, 0), Math.Min(_line.Count, 1));
+                    break;
+                default:
+                    _line.AddRange(Encoding.UTF8.GetBytes([key]));
+                    break;
+            }
+        }
+
+        return false;
+    }
+
+    private SafeFileHandle Handle => _device!.SafeFileHandle;
+
+    private bool IsOurs() => ForegroundOf(Handle.DangerousGetHandle().ToInt32()) == OwnGroup();
+
+    private bool IsReadable()
+    {
+        var look = new Look { File = Handle.DangerousGetHandle().ToInt32(), Wanted = Look.Input };
+        return Poll(ref look, 1, 0) > 0;
+    }
+
+    [StructLayout(LayoutKind.Sequential)]
+    private struct Look
+    {
+        public const short Input = 1;
+        public int File;
+        public short Wanted;
+        public short Found;
     }
 
     [LibraryImport("libc", EntryPoint = "tcflush", SetLastError = true)]
     private static partial int Flush(SafeFileHandle terminal, int queue);
+
+    [LibraryImport("libc", EntryPoint = "poll", SetLastError = true)]
+    private static partial int Poll(ref Look look, nuint count, int milliseconds);
+
+    [LibraryImport("libc", EntryPoint = "tcgetpgrp", SetLastError = true)]
+    private static partial int ForegroundOf(int terminal);
+
+    [LibraryImport("libc", EntryPoint = "getpgrp")]
+    private static partial int OwnGroup();
 }

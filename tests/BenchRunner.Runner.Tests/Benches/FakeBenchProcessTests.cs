@@ -20,7 +20,7 @@ public sealed class FakeBenchProcessTests : IDisposable
     public async Task Every_role_has_a_link_that_listens_and_none_is_left_after_the_end()
     {
         FakeBenchProcess fake = await FakeBenchProcess.Start(
-            _place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+            _place.Bench(), Workplace.Device, null, TimeProvider.System, Cancel);
         await using (fake)
         {
             Assert.Equal(
@@ -36,7 +36,7 @@ public sealed class FakeBenchProcessTests : IDisposable
     public async Task Hands_at_a_bench_that_has_ended_by_itself_are_said_so()
     {
         await using FakeBenchProcess fake =
-            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, null, TimeProvider.System, Cancel);
         Process program = Program(fake);
         program.Kill();
         await program.WaitForExitAsync(Cancel);
@@ -51,7 +51,7 @@ public sealed class FakeBenchProcessTests : IDisposable
             _place.Bench(("fake: { seed: 1, pace: 5 }", "fake: { seed: 1, pace: 5, faults: ['no-such-fault'] }"));
 
         var failure = await Assert.ThrowsAsync<BenchException>(
-            () => FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel));
+            () => FakeBenchProcess.Start(bench, Workplace.Device, null, TimeProvider.System, Cancel));
 
         Assert.Contains("ended before it was ready", failure.Message, StringComparison.Ordinal);
     }
@@ -63,7 +63,7 @@ public sealed class FakeBenchProcessTests : IDisposable
         await stop.CancelAsync();
 
         await Assert.ThrowsAnyAsync<OperationCanceledException>(
-            () => FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, stop.Token));
+            () => FakeBenchProcess.Start(_place.Bench(), Workplace.Device, null, TimeProvider.System, stop.Token));
     }
 
     [Fact]
@@ -72,7 +72,7 @@ public sealed class FakeBenchProcessTests : IDisposable
         Bench bench = _place.Bench() with { Fake = null };
 
         await Assert.ThrowsAsync<ArgumentException>(
-            () => FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel));
+            () => FakeBenchProcess.Start(bench, Workplace.Device, null, TimeProvider.System, Cancel));
     }
 
     /// <summary>The process itself, which nobody but a test has a reason to end.</summary>

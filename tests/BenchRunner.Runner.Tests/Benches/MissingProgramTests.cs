@@ -25,7 +25,7 @@ public sealed class MissingProgramTests : IDisposable
         AppContext.SetData(Base, _place.File(""));
 
         var failure = await Assert.ThrowsAsync<BenchException>(() => FakeBenchProcess.Start(
-            bench, Workplace.Device, TimeProvider.System, TestContext.Current.CancellationToken));
+            bench, Workplace.Device, null, TimeProvider.System, TestContext.Current.CancellationToken));
 
         Assert.Contains(_place.File("fakebench"), failure.Message, StringComparison.Ordinal);
         Assert.Contains("build the whole solution", failure.Message, StringComparison.Ordinal);

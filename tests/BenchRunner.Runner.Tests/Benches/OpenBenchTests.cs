@@ -94,7 +94,7 @@ public sealed class OpenBenchTests : IDisposable
     }
 
     private static Task<FakeBenchProcess> Start(Bench bench) =>
-        FakeBenchProcess.Start(bench, Workplace.Device, TimeProvider.System, Cancel);
+        FakeBenchProcess.Start(bench, Workplace.Device, null, TimeProvider.System, Cancel);
 
     private static Task<OpenBench> Open(Bench bench, IReadOnlyDictionary<string, string> links) =>
         OpenBench.Open(bench, Workplace.Dialects(bench), links, new RecordingSink(), TimeProvider.System, Cancel);

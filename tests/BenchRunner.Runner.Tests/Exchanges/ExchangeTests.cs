@@ -3,6 +3,8 @@ using BenchRunner.Acceptance.Events;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Exchanges;
 using BenchRunner.Runner.Tests.Workplaces;
+using BenchRunner.Safety.SafeStates;
+using BenchRunner.Safety.Supervision;
 using Microsoft.Extensions.Time.Testing;
 
 namespace BenchRunner.Runner.Tests.Exchanges;
@@ -21,11 +23,13 @@ public sealed class ExchangeTests : IDisposable
     {
         Bench bench = _place.Bench();
         await using FakeBenchProcess fake = await FakeBenchProcess.Start(
-            bench, Workplace.Device, TimeProvider.System, Cancel);
+            bench, Workplace.Device, null, TimeProvider.System, Cancel);
         await using OpenBench open = await Open(bench, fake);
         var hands = new Hands(fake, async () => (await open.Safety.Interlock.Read(Cancel)).LoopClosed);
 
-        var exchange = new Exchange(hands, open.Safety.Interlock, Events(TimeProvider.System), TimeProvider.System);
+        await using SafetySupervisor supervisor = await Watching(bench, open);
+        var enclosure = new Enclosure(supervisor, TimeProvider.System);
+        var exchange = new Exchange(hands, enclosure, Events(TimeProvider.System), TimeProvider.System);
         await exchange.Insert("W1200-0002", Cancel);
 
         Assert.Equal(["open while closed", "insert W1200-0002 while open", "close while open"], hands.Done);
@@ -40,12 +44,14 @@ public sealed class ExchangeTests : IDisposable
     {
         Bench bench = _place.Bench();
         await using FakeBenchProcess fake = await FakeBenchProcess.Start(
-            bench, Workplace.Device, TimeProvider.System, Cancel);
+            bench, Workplace.Device, null, TimeProvider.System, Cancel);
         await using OpenBench open = await Open(bench, fake);
         var hands = new Hands(fake, () => Task.FromResult(true)) { Idle = idle };
         var time = new FakeTimeProvider();
 
-        Task exchange = new Exchange(hands, open.Safety.Interlock, Events(time), time).Insert("W1200-0002", Cancel);
+        await using SafetySupervisor supervisor = await Watching(bench, open);
+        Task exchange = new Exchange(hands, new Enclosure(supervisor, time), Events(time), time).Insert(
+            "W1200-0002", Cancel);
         await Eventually.True(
             () =>
             {
@@ -61,6 +67,15 @@ public sealed class ExchangeTests : IDisposable
     }
 
     private EventSource Events(TimeProvider time) => new("runner", _heard, time);
+
+    private async Task<SafetySupervisor> Watching(Bench bench, OpenBench open)
+    {
+        var supervisor = new SafetySupervisor(
+            open.Safety, bench.Envelope, new Discharge(bench.Bleeder, bench.BusCapacitance),
+            Events(TimeProvider.System), TimeProvider.System);
+        await supervisor.Start(Cancel);
+        return supervisor;
+    }
 
     private Task<OpenBench> Open(Bench bench, FakeBenchProcess fake) =>
         OpenBench.Open(bench, Workplace.Dialects(bench), fake.Links, _heard, TimeProvider.System, Cancel);

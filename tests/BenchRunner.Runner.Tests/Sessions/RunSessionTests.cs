@@ -71,7 +71,7 @@ public sealed class RunSessionTests : IDisposable
             () => session.Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Equal(RefusalKind.Input, refused.Kind);
-        Assert.Equal([true], person.Asked);
+        Assert.Equal([true], person.Asked.Select(asked => asked.Simulated));
         Assert.Equal(0, _place.Ask<int>("select count(*) from device_outcomes"));
         Assert.Equal(0, _heard.Count("point-started"));
     }
@@ -128,7 +128,7 @@ public sealed class RunSessionTests : IDisposable
     public async Task A_bus_that_somebody_else_charges_while_the_person_is_asked_latches_the_bench()
     {
         await using FakeBenchProcess instruments =
-            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, null, TimeProvider.System, Cancel);
         Bench bench = _place.OtherBench(instruments.Links);
         var latch = new LatchFile(bench.Source.Path);
         var person = new Person("A. Person", async () =>
@@ -138,10 +138,8 @@ public sealed class RunSessionTests : IDisposable
         });
         var session = new RunSession(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System);
 
-        RunSummary summary = await session.Run(new Serials(Workplace.Device), Cancel);
+        await Assert.ThrowsAsync<SafetyException>(() => session.Run(new Serials(Workplace.Device), Cancel));
 
-        DeviceReport report = Assert.Single(summary.Devices);
-        Assert.Equal((Outcome.Stopped, BenchEnding.Tripped), (report.Decision.Outcome, report.Ending));
         Assert.Contains("nothing was allowed to charge it", latch.Read(), StringComparison.Ordinal);
         Assert.Equal(0, _heard.Count("point-started"));
         Assert.Equal(0, _place.Ask<int>("select count(*) from captures"));
@@ -151,7 +149,7 @@ public sealed class RunSessionTests : IDisposable
     public async Task A_bus_found_charged_latches_the_bench_before_anybody_is_asked()
     {
         await using FakeBenchProcess instruments =
-            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, TimeProvider.System, Cancel);
+            await FakeBenchProcess.Start(_place.Bench(), Workplace.Device, null, TimeProvider.System, Cancel);
         Bench bench = _place.OtherBench(instruments.Links);
         var person = new Person("A. Person");
         await using (OpenBench open = await OpenBench.Open(

@@ -9,6 +9,8 @@ internal sealed class Serials(params string[] serials) : IDeviceSource
 
     public IReadOnlyList<string> Waiting => [.. _waiting];
 
+    public bool FromReader { get; init; }
+
     public Task<string?> Next(CancellationToken cancel) =>
         Task.FromResult(_waiting.TryDequeue(out string? next) ? next : null);
 }

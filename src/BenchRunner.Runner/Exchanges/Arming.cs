@@ -1,0 +1,93 @@
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Plans;
+using BenchRunner.Runner.Sessions;
+using BenchRunner.Safety;
+using BenchRunner.Safety.Supervision;
+
+namespace BenchRunner.Runner.Exchanges;
+
+/// <summary>Has a person confirm a closed enclosure. Closing never energises by itself, and what was confirmed before an
+/// opening counts for nothing after it.</summary>
+/// <param name="supervisor">Sees the loop, and holds the confirmation to it.</param>
+/// <param name="person">Who is asked.</param>
+/// <param name="byHand">Waits for a closing where a person exchanges devices; null: an open loop ends the
+/// session.</param>
+/// <param name="events">Takes what happens.</param>
+/// <param name="time">The clock.</param>
+public sealed class Arming(
+    SafetySupervisor supervisor, IOperator person, ByHand? byHand, EventSource events, TimeProvider time)
+{
+    private readonly Enclosure _enclosure = new(supervisor, time);
+
+    /// <summary>Asks until a confirmation holds.</summary>
+    /// <returns>Who confirmed; null where it was declined or there is nobody to ask.</returns>
+    /// <exception cref="SafetyException">The loop is open and nobody is there to close it.</exception>
+    public async Task<string?> Confirm(Plan plan, string device, bool simulated, CancellationToken stop)
+    {
+        while (true)
+        {
+            await SeeClosed(simulated, stop);
+            int openings = _enclosure.Openings;
+            string? who = await Ask(plan, new Closing(device, simulated, openings > 0), openings, stop);
+            if (who is { Length: 0 } || (who is not null && !supervisor.HoldConfirmed(openings)))
+            {
+                events.Say(
+                    Severity.Warning, "confirmation-void",
+                    "the enclosure was opened: nothing is confirmed; the question comes again after it is closed");
+                continue;
+            }
+
+            return who;
+        }
+    }
+
+    private async Task SeeClosed(bool simulated, CancellationToken stop)
+    {
+        if (_enclosure.IsClosed)
+        {
+            return;
+        }
+
+        if (byHand is null || !(simulated || person.CanAsk))
+        {
+            throw new SafetyException(
+                "the interlock loop is open: close the enclosure and start again; nothing was energised");
+        }
+
+        await byHand.Closing(stop);
+    }
+
+    /// <summary>Asks; an opening does not wait for the answer.</summary>
+    /// <returns>Who; empty where the enclosure was opened meanwhile; null: declined.</returns>
+    private async Task<string?> Ask(Plan plan, Closing closing, int openings, CancellationToken stop)
+    {
+        using var over = CancellationTokenSource.CreateLinkedTokenSource(stop);
+        Task opened = EndOnOpening(over, openings);
+        try
+        {
+            return await person.Confirm(plan, closing, over.Token);
+        }
+        catch (OperationCanceledException) when (!stop.IsCancellationRequested)
+        {
+            return "";
+        }
+        finally
+        {
+            await over.CancelAsync();
+            await opened;
+        }
+    }
+
+    private async Task EndOnOpening(CancellationTokenSource question, int openings)
+    {
+        try
+        {
+            await _enclosure.Opened(openings, question.Token);
+            await question.CancelAsync();
+        }
+        catch (OperationCanceledException)
+        {
+            // It was answered, or the run is over.
+        }
+    }
+}
