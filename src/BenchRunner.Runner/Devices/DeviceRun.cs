@@ -52,6 +52,7 @@ public sealed class DeviceRun(
         }
 
         SafeStateReport safe = await supervisor.MakeSafe();
+        supervisor.EndConfirmed();
         if (!safe.Proved || supervisor.Trip is not null)
         {
             ending = BenchEnding.Tripped;

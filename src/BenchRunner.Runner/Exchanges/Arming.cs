@@ -6,8 +6,8 @@ using BenchRunner.Safety.Supervision;
 
 namespace BenchRunner.Runner.Exchanges;
 
-/// <summary>Has a person confirm a closed enclosure. Closing never energises by itself, and what was confirmed before an
-/// opening counts for nothing after it.</summary>
+/// <summary>Has a person confirm a closed enclosure. Closing never energises by itself, and what was confirmed before
+/// an opening counts for nothing after it.</summary>
 /// <param name="supervisor">Sees the loop, and holds the confirmation to it.</param>
 /// <param name="person">Who is asked.</param>
 /// <param name="byHand">Waits for a closing where a person exchanges devices; null: an open loop ends the

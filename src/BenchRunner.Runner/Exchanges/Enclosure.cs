@@ -16,7 +16,7 @@ public sealed class Enclosure(SafetySupervisor supervisor, TimeProvider time)
     /// <summary>Waits, without end, until the enclosure is closed.</summary>
     public Task Closed(CancellationToken cancel) => Until(() => IsClosed, cancel);
 
-    /// <summary>Waits, without end, until the enclosure is open, or was since the count of openings was taken.</summary>
+    /// <summary>Waits, without end, until the enclosure is open, or was since the openings were counted.</summary>
     public Task Opened(int since, CancellationToken cancel) => Until(() => !IsClosed || Openings > since, cancel);
 
     private async Task Until(Func<bool> isSo, CancellationToken cancel)

@@ -61,8 +61,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <summary>How often the loop was found open after it was closed, or at the first poll.</summary>
     public int LoopOpenings { get; private set; }
 
-    /// <summary>Holds a person's confirmation to the closing it was given for: from here until the bus is proved down
-    /// again, an open loop is a trip, though nothing be charged yet.</summary>
+    /// <summary>Holds a person's confirmation to the closing it was given for: until <see cref="EndConfirmed"/> an open
+    /// loop is a trip, also while nothing is charged.</summary>
     /// <param name="openings"><see cref="LoopOpenings"/> when the person was asked.</param>
     /// <returns>False: the loop is open, or was in between; the confirmation is void.</returns>
     public bool HoldConfirmed(int openings)
@@ -70,6 +70,16 @@ public sealed class SafetySupervisor : IAsyncDisposable
         lock (_gate)
         {
             return _confirmed = LoopOpenings == openings && LastInterlock is { LoopClosed: true };
+        }
+    }
+
+    /// <summary>Ends what <see cref="HoldConfirmed"/> began: the device's run is over, the enclosure may be
+    /// opened.</summary>
+    public void EndConfirmed()
+    {
+        lock (_gate)
+        {
+            _confirmed = false;
         }
     }
 
@@ -179,7 +189,6 @@ public sealed class SafetySupervisor : IAsyncDisposable
         lock (_gate)
         {
             _discharging = !report.Proved;
-            _confirmed &= !report.Proved;
         }
 
         // A bench that may be full must not be used by anybody before a person has looked.
@@ -310,7 +319,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
             return "the interlock controller's watchdog has acted";
         }
 
-        bool energised = toEnergise || _confirmed || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
+        bool energised =
+            toEnergise || _confirmed || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
         if (!interlock.LoopClosed && energised)
         {
             return "the interlock loop is open";

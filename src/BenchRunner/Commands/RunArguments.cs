@@ -66,14 +66,15 @@ internal sealed record RunArguments(
         if (Companion is null)
         {
             return isNeeded
-                ? $"--companion is missing: with position {sequence.Position.ToString().ToLowerInvariant()} the other place holds a companion; "
-                    + "give its serial with --companion SERIAL"
+                ? "--companion is missing: a device of position low or high has a companion in the other place; give its "
+                    + "serial with --companion SERIAL"
                 : null;
         }
 
         if (!isNeeded)
         {
-            return $"--companion {Screen.Printable(Companion)}: a device of position both fills both places; leave it out";
+            return $"--companion {Screen.Printable(Companion)}: a device of position both fills both places itself; "
+                + "leave it out";
         }
 
         // A companion of another part has serials of a form that this sequence does not know.

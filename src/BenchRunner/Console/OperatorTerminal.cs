@@ -1,6 +1,6 @@
 namespace BenchRunner.Console;
 
-/// <summary>The one owner of the terminal. A bar-code reader may type into it as the person does, so whose line is whose
+/// <summary>The one owner of the terminal. A bar-code reader may type into it as the person does, so what a line is
 /// depends on what is asked for: a serial, an answer, or nothing.</summary>
 /// <remarks>
 /// Every line is taken at once, and under the lock under which questions begin and end: a line that came while nothing
