@@ -11,6 +11,11 @@ public sealed record PlannedRange(Channel Channel, int Input, double Span, doubl
 {
     private const double Step = 2;
 
+    /// <summary>
+    /// How far bus, load current and gate alone move the channel by the plan, V or A as recorded; 0: they do not.
+    /// </summary>
+    public double Swing { get; init; }
+
     /// <summary>The next range after a capture that clipped or used too little of this one.</summary>
     /// <param name="wider">Whether twice the span is wanted; false: half of it.</param>
     /// <returns>The range scaled about zero where zero lies inside it, else about its middle.</returns>

@@ -49,7 +49,7 @@ public static class Planner
         var plan = new Plan(
             sequence, bench, points, RunCost.Duration(points, sequence, bench), RunCost.Bytes(points, sequence, bench))
         {
-            Proving = PlanPoint(ProvingTrain.Point(sequence), sequence, bench).Planned,
+            Proving = PlanPoint(ProvingTrain.Point(sequence), sequence, bench, isProving: true).Planned,
         };
         return new Planned(plan, [.. refusals.OrderBy(problem => problem.Where.File, StringComparer.Ordinal)
             .ThenBy(problem => problem.Where.Line).ThenBy(problem => problem.Where.Column)])
@@ -99,7 +99,7 @@ public static class Planner
             .ThenBy(point => point.LoadCurrent);
 
     private static (PlannedPoint Planned, PulseTrain Train, Sampling Sampling) PlanPoint(
-        OperatingPoint point, Sequence sequence, Bench bench)
+        OperatingPoint point, Sequence sequence, Bench bench, bool isProving = false)
     {
         PulseTrain train = PulseTrain.Of(point, sequence, bench);
         double first = train.FirstPulse ?? (bench.LoadInductance * point.LoadCurrent / point.BusVoltage);
@@ -118,7 +118,7 @@ public static class Planner
             SampleInterval = sampling.Interval,
             Samples = sampling.Samples,
             Pretrigger = sampling.Pretrigger,
-            Ranges = Ranges.Of(point, train, sequence, bench),
+            Ranges = Ranges.Of(point, train, sequence, bench, isProving),
             Recovery = train.LoadDecay + train.Recharge,
             RingDecay = Math.Log(1 / DecayedTo) / (PlannedDamping * ring),
         };

@@ -67,8 +67,8 @@ public static class Criteria
         new(NotClipped, "retry with the next range",
             "3 or more samples before the second turn-off lie at a rail of the ADC", "", []),
         new(RangeUsed, "retry with the next range",
-            "peak to peak below 25 % of full scale, on the channels that a train swings "
-            + "(not the bus, nor a gate held off)", "", []),
+            "bus, load current or gate, without edges and ringing, fill less than 25 % of full scale, or less than "
+            + "four fifths of what the plan says where that is less", "", []),
         new(TwoPulses, "retry, stop where a pulse is longer than set",
             "the gate's edges are not on, off, on, off, or a width is off by more than 2 % + "
             + "max(10 ns, the slower gate edge)",

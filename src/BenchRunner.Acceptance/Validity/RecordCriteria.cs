@@ -1,5 +1,6 @@
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Plans;
+using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Validity;
@@ -12,6 +13,12 @@ internal static class RecordCriteria
 
     /// <summary>Least share of full scale that a swinging trace must fill, 1.</summary>
     private const double LeastUse = 0.25;
+
+    /// <summary>Share of what bus, load current and gate must fill by the plan that is asked for, 1.</summary>
+    private const double LeastOfSwing = 0.8;
+
+    /// <summary>Share at the end of a state that counts as quiet in any case, 1.</summary>
+    private const double LastShare = 0.1;
 
     /// <summary>Difference of sample intervals that is rounding of a scope's preamble, relative.</summary>
     private const double SameInterval = 1e-6;
@@ -107,36 +114,67 @@ internal static class RecordCriteria
         }
     }
 
-    /// <summary><c>range-used</c>: on the channels that a train swings.</summary>
+    /// <summary><c>range-used</c>: on the channels that bus, load current and gate move.</summary>
+    /// <remarks>
+    /// Without the edges and the ringing after them: how high a recovery peaks must not decide whether its capture is
+    /// kept. Where the plan leaves so much room for it that bus and load current alone would fill less than a quarter,
+    /// four fifths of what they must fill are asked for.
+    /// </remarks>
     public static void RangeUsed(CaptureContext context, Judgement judgement)
     {
-        Channel heldOff = HalfBridge.Playing(Channel.VgsHigh, HalfBridge.FiresHigh(context.Sequence));
-        foreach (RawTrace trace in context.Traces)
+        foreach (PlannedRange planned in context.Planned.Ranges.Where(range => range.Swing > 0))
         {
-            if (trace.Channel == heldOff || trace.Channel == Channel.Vbus || trace.Codes.Length == 0)
+            RawTrace? trace = context.Traces.FirstOrDefault(trace => trace.Channel == planned.Channel);
+            if (trace is not { Codes.Length: > 0 })
             {
                 continue;
             }
 
-            short low = trace.Codes[0];
-            short high = low;
-            foreach (short code in trace.Codes)
-            {
-                low = Math.Min(low, code);
-                high = Math.Max(high, code);
-            }
-
-            double used = (high - low) / (double)(trace.HighRail - trace.LowRail);
-            if (used < LeastUse)
+            double least = Math.Min(LeastUse, LeastOfSwing * planned.Swing / planned.Span);
+            double used = Quiet(trace, context) / (double)(trace.HighRail - trace.LowRail);
+            if (used < least)
             {
                 judgement.NextRange(trace.Channel, wider: false);
                 judgement.Add(
                     Criteria.RangeUsed, FindingClass.Retry,
                     $"{trace.Channel.Name()} uses {SiText.Percent(used)} of its range "
-                    + $"(at least {SiText.Percent(LeastUse)}); next range {Next(trace, wider: false)}",
-                    trace.Channel, used, LeastUse);
+                    + $"(at least {SiText.Percent(least, 2)}); next range {Next(trace, wider: false)}",
+                    trace.Channel, used, least);
             }
         }
+    }
+
+    /// <summary>Peak to peak in codes, outside the edges and the ringing that the plan gives them.</summary>
+    private static int Quiet(RawTrace trace, CaptureContext context)
+    {
+        TrainFacts train = context.Analysis.Train;
+        double decay = context.Planned.RingDecay;
+        (double From, double To)[] quiet = train is { Off1: { } off1, On2: { } on2, Off2: { } off2 }
+            ?
+            [
+                (double.NegativeInfinity, off1.Departure),
+                (Decayed(off1.At, on2.Departure), on2.Departure),
+                (Decayed(on2.At, off2.Departure), off2.Departure),
+            ]
+            : [(double.NegativeInfinity, double.PositiveInfinity)];
+        int low = int.MaxValue;
+        int high = int.MinValue;
+        foreach ((double from, double to) in quiet)
+        {
+            for (int i = Sample(from); i < Sample(to); i++)
+            {
+                low = Math.Min(low, trace.Codes[i]);
+                high = Math.Max(high, trace.Codes[i]);
+            }
+        }
+
+        return high > low ? high - low : 0;
+
+        // The last tenth of a state counts even where the plan lets the ringing last longer (settled speaks of that).
+        double Decayed(double edge, double next) => Math.Min(edge + decay, next - (LastShare * (next - edge)));
+
+        int Sample(double at) =>
+            (int)Math.Clamp(Math.Ceiling((at - trace.TimeOrigin) / trace.SampleInterval), 0, trace.Codes.Length);
     }
 
     /// <summary><c>noise-below</c>.</summary>

@@ -33,13 +33,19 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
     /// <summary>What is wrong with the device.</summary>
     public Func<Device, Device> Part { get; init; } = device => device;
 
-    /// <summary>What is wrong with the pulser, or with the bus that it fires on.</summary>
+    /// <summary>What is wrong with the pulser.</summary>
     public Func<PulseTrain, PulseTrain> Pulser { get; init; } = train => train;
+
+    /// <summary>Share of the bus voltage asked for at which the bank is, by the count of fires.</summary>
+    public Func<long, double> BusShare { get; init; } = _ => 1;
 
     /// <summary>What is wrong with a probe.</summary>
     public Func<Channel, ProbeChannel, ProbeChannel> Probe { get; init; } = (_, probe) => probe;
 
     private bool FiresHigh => HalfBridge.FiresHigh(Sequence);
+
+    /// <summary>The bank's voltage before a train, V, as a voltmeter reads it.</summary>
+    public double Bank(PlannedPoint planned, long fire) => BusShare(fire) * planned.Point.BusVoltage;
 
     /// <summary>Fires a train as set, at the point's bus voltage, and records it on the ranges asked for.</summary>
     /// <param name="planned">The point.</param>
@@ -51,7 +57,7 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
     {
         Device device = Part(DevicePopulation.Draw(Serial, Seed));
         var train = new PulseTrain(
-            set.First, set.Gap, set.Second, set.GateOn, set.GateOff, planned.Point.BusVoltage);
+            set.First, set.Gap, set.Second, set.GateOn, set.GateOff, Bank(planned, fire));
         TrainTrajectory trajectory = Circuit.Simulate(
             device.On(Fixture(new BenchValues(1).Parts)), Pulser(train), -planned.Pretrigger, planned.SampleInterval,
             planned.Samples);
@@ -64,8 +70,8 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
     {
         var converter = new Digitiser(Bits, range.Span, range.Offset);
         ProbeChannel probe = Probe(range.Channel, BenchProbes.Of(range.Channel.Name()));
-        short[] codes = Recorder.Record(
-            train, FiresHigh ? probe with { Signal = Mirrored(probe.Signal) } : probe, converter, noise, shift);
+        ProbeChannel placed = FiresHigh ? probe with { Signal = Mirrored(probe.Signal) } : probe;
+        short[] codes = Recorder.Record(train, placed, converter, noise, shift);
         return new RawTrace(
             range.Channel, codes, train.Start, train.Interval, converter.Step, converter.Centre, 0, converter.Lowest,
             converter.Highest);

@@ -110,13 +110,10 @@ public sealed class CaptureValidityTests
     [Fact]
     public void A_trace_that_is_small_in_its_range_asks_for_a_narrower_one()
     {
-        PlannedPoint planned = Judged.Planned;
-        PlannedPoint wide = planned with
-        {
-            Ranges = [.. planned.Ranges.Select(range =>
-                range.Channel == Channel.VdsHigh ? range with { Span = 6000, Offset = 300 } : range)],
-        };
-        Verdict verdict = CaptureValidity.Judge(Judged.Context(planned: wide));
+        CaptureContext healthy = Judged.Context();
+        RawTrace[] traces = [.. new SyntheticTrain().Record(healthy.Planned, [.. healthy.Planned.Ranges.Select(range =>
+            range.Channel == Channel.VdsHigh ? range with { Span = 6000, Offset = 300 } : range)])];
+        Verdict verdict = CaptureValidity.Judge(healthy with { Traces = traces });
         Only(verdict, Criteria.RangeUsed, FindingClass.Retry);
         Assert.False(verdict.NextRange[Channel.VdsHigh]);
     }
