@@ -19,6 +19,11 @@ internal static class PlanText
                 yield return line;
             }
 
+            foreach (NotEvaluated open in NotEvaluatedCriteria.Of(plan.Sequence, plan.Bench))
+            {
+                yield return $"not evaluated: {open.Criterion} ({open.Because})";
+            }
+
             yield return $"one device: about {SiText.Format(plan.Duration, "s", 3)}, at most {plan.Bytes / 1e6:0.0} MB "
                 + $"of evidence";
         }

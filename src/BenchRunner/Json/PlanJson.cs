@@ -19,6 +19,9 @@ internal static class PlanJson
         ["operating_points"] = JsonOutput.Array(planned.Plan?.Points ?? [], Point),
         ["duration"] = JsonOutput.Number(planned.Plan?.Duration),
         ["bytes"] = planned.Plan?.Bytes,
+        ["not_evaluated"] = JsonOutput.Array(
+            planned.Plan is { } plan ? NotEvaluatedCriteria.Of(plan.Sequence, plan.Bench) : [],
+            open => open.Criterion),
         ["refusals"] = JsonOutput.Array(planned.Refusals, Told),
         ["notes"] = JsonOutput.Array(planned.Notes, Told),
     });

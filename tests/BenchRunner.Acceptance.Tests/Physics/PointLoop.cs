@@ -76,6 +76,14 @@ internal static class PointLoop
         };
     }
 
+    /// <summary>The zero capture of a bench without current before its trains: what its probes show before on1.</summary>
+    public static ZeroReading Zero(CaptureContext sound)
+    {
+        int before = (int)(0.8 * sound.Planned.Pretrigger / sound.Planned.SampleInterval);
+        RawTrace[] traces = [.. sound.Traces.Select(trace => trace with { Codes = trace.Codes[..before] })];
+        return ZeroReading.Of(traces, sound.Bench, sound.Sequence, sound.Voltmeter ?? 0);
+    }
+
     /// <summary>The train as planned.</summary>
     public static TrainSet Start(PlannedPoint planned) => new(
         planned.FirstPulse, planned.Point.Gap, planned.Point.SecondPulse, planned.Point.GateOn, planned.Point.GateOff);
