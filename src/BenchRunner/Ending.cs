@@ -1,4 +1,5 @@
 using BenchRunner.Evidence;
+using BenchRunner.Evidence.Notes;
 using BenchRunner.Evidence.Queries;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Links;
@@ -32,7 +33,8 @@ internal static class Ending
     {
         OperationCanceledException when stop.IsCancellationRequested => ("interrupted", ExitCode.Interrupted),
         RefusedException refused => (refused.Message, OfRefusal(refused.Kind)),
-        InputException or RunRefusedException or QueryException => (ended.Message, ExitCode.WrongInput),
+        InputException or RunRefusedException or NoteRefusedException or QueryException =>
+            (ended.Message, ExitCode.WrongInput),
         EvidenceException => (ended.Message, ExitCode.Evidence),
         SafetyException => (ended.Message, ExitCode.Safety),
         BenchException or LinkException or InstrumentException => (ended.Message, ExitCode.Instrument),

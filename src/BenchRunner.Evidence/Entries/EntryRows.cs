@@ -30,5 +30,5 @@ internal static class EntryRows
     public static void Note(SqlSession to, long entry, Note note) =>
         to.Execute(
             "insert into note (entry, device, lot, kind, because) values (?1, ?2, ?3, ?4, ?5)",
-            entry, note.Device, to.Word(note.Lot), Text.Of(note.Kind), note.Because);
+            entry, note.Device, to.Word(note.Lot), NoteWords.Of(note.Kind), note.Because);
 }

@@ -6,7 +6,6 @@ using System.Text.Json;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Validity;
-using BenchRunner.Evidence.Notes;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
 
@@ -38,15 +37,6 @@ internal static class Text
         Conformity.Conforms => "conforms",
         Conformity.Fails => "fails",
         Conformity.Undecided => "undecided",
-        _ => throw new UnreachableException(),
-    };
-
-    public static string Of(NoteKind kind) => kind switch
-    {
-        NoteKind.Release => "release",
-        NoteKind.Scrap => "scrap",
-        NoteKind.Return => "return",
-        NoteKind.Concession => "concession",
         _ => throw new UnreachableException(),
     };
 

@@ -15,6 +15,7 @@ internal static class CommandTree
         AnalyseCommand.Build(),
         QueryCommand.Build(),
         AuditCommand.Build(),
+        EvidenceCommand.Build(),
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),
         BenchCommand.Build(),
