@@ -28,15 +28,15 @@ public static class BenchProbes
 
     /// <summary>The probe of a channel.</summary>
     /// <param name="channel">Its name.</param>
-    /// <param name="loadToNegative">Whether the high place fires: then each place has the other one's probes, the
-    /// shunt with them.</param>
+    /// <param name="loadToNegative">Whether the high place fires: then each place has the other one's probes, but a
+    /// transformer instead of the shunt, whose conductor would swing with the switch node.</param>
     /// <exception cref="FormatException">No channel has that name.</exception>
     public static ProbeChannel Of(string channel, bool loadToNegative = false)
     {
         if (loadToNegative)
         {
             ProbeChannel twin = Of(Mirror.Of(channel));
-            return twin with { Signal = Mirror.Of(twin.Signal) };
+            return twin with { Signal = Mirror.Of(twin.Signal), Lead = 0 };
         }
 
         foreach ((string name, ProbeChannel probe) in All)

@@ -2,12 +2,16 @@ using System.Globalization;
 using System.Text;
 using FakeBench.Fixtures;
 using FakeBench.Physics;
+using FakeBench.Probes;
 
 namespace FakeBench.Hosting;
 
 /// <summary>Writes a bench file that reaches the instruments.</summary>
 public static class BenchFile
 {
+    // Envelope of the plate, degC: below what its controller can be set to.
+    private const double HottestPlate = 150;
+
     /// <summary>The text of the file.</summary>
     /// <param name="options">What is served.</param>
     /// <param name="links">Roles and their links.</param>
@@ -35,7 +39,9 @@ public static class BenchFile
         Line($"load: {{ inductance: {load:0.###} uH, resistance: {resistance:0.###} mOhm, to: {rail} }}");
         (double bank, double bleeder) = (parts.BankCapacitance * 1e6, values.Bleeder / 1e3);
         Line($"bus: {{ capacitance: {bank:0.###} uF, bleeder: {bleeder:0.###} kOhm, empty-socket: 0.1 mA }}");
-        Line($"supply: {{ charging-current: {values.SupplyLimit:0.###} A }}");
+        double accuracy = Instruments.Supply.CurrentAccuracy * 1e3;
+        double limit = values.SupplyLimit;
+        Line($"supply: {{ charging-current: {limit:0.###} A, current-accuracy: {accuracy:0.###} mA }}");
         int points = Instruments.Scope.MostPoints;
         Line($"scope: {{ bits: {options.Bits}, fastest-interval: 1 ns, samples-at-most: {points} }}");
         Line($"loop: {{ inductance: {loop:0.#} nH }}");
@@ -43,15 +49,21 @@ public static class BenchFile
         Line($"gate-resistors: {{ on: {on:0.###} Ohm, off: {off:0.###} Ohm }}");
         Line($"high-side: {{ gate-threshold: 0.5 V }}");
         (double shunt, double sense) = (parts.ShuntResistance * 1e3, parts.ShuntSenseInductance * 1e12);
-        Line($"shunt: {{ resistance: {shunt:0.###} mOhm, inductance: {sense:0.###} pH }}");
+        if (!options.LoadToNegative)
+        {
+            Line($"shunt: {{ resistance: {shunt:0.###} mOhm, inductance: {sense:0.###} pH }}");
+        }
+
         Line($"channels:");
         for (int i = 0; i < options.Channels.Count; i++)
         {
-            Line($"  {options.Channels[i]}: {{ scope: {i + 1}, {Probe(options.Channels[i], options.LoadToNegative)} }}");
+            string channel = options.Channels[i];
+            Line($"  {channel}: {{ scope: {i + 1}, {Probe(channel, options.LoadToNegative)} }}");
         }
 
-        Line($"envelope: {{ voltage: 900 V, current: 120 A, energy: 10 J, pulse: 20 us }}");
-        Line($"ambient: 23 degC");
+        string plate = options.Hotplate ? $", temperature: {HottestPlate:0} degC" : "";
+        Line($"envelope: {{ voltage: 900 V, current: 120 A, energy: 10 J, pulse: 20 us{plate} }}");
+        Line($"ambient: {options.Ambient:0.##} degC");
         Line($"cautions: []");
         return text.ToString();
     }
@@ -74,16 +86,25 @@ public static class BenchFile
             + $", identity: '.*FAKEBENCH-{role.ToUpperInvariant()}.*'";
     }
 
-    private static string Probe(string channel, bool loadToNegative) => channel switch
+    private static string Probe(string channel, bool loadToNegative)
     {
-        "id_low" or "id_high" or "i_load" =>
-            $"probe: {(channel == (loadToNegative ? "id_high" : "id_low") ? "shunt" : "transformer")}, rating: 200 A, gain: 1, skew: 0 s, "
-            + "uncertainty: { gain: 0.5 %, offset: 100 mA, skew: 200 ps }",
-        "vgs_low" or "vgs_high" => "probe: isolated, rating: 50 V, gain: 1, offset: 0 V, skew: 0 s, "
-            + "uncertainty: { gain: 1 %, offset: 50 mV, skew: 300 ps }",
-        "vbus" => "probe: differential, rating: 1500 V, gain: 1, offset: 0 V, skew: 0 s, "
-            + "uncertainty: { gain: 0.5 %, offset: 500 mV, skew: 500 ps }",
-        _ => "probe: differential, rating: 1500 V, gain: 1, offset: 0 V, skew: 0 s, "
-            + "uncertainty: { gain: 0.5 %, offset: 200 mV, skew: 200 ps }",
-    };
+        ProbeChannel probe = BenchProbes.Of(channel, loadToNegative);
+        string facts = string.Create(
+            CultureInfo.InvariantCulture,
+            $"bandwidth: {probe.Bandwidth / 1e6:0} MHz, attenuation: {probe.Attenuation:0}, gain: 1, ");
+        return channel switch
+        {
+            "id_low" when !loadToNegative => $"probe: shunt, rating: 200 A, {facts}skew: 0 s, "
+                + "uncertainty: { gain: 0.5 %, offset: 100 mA, skew: 200 ps }",
+            "id_low" or "id_high" or "i_load" =>
+                $"probe: transformer, rating: 200 A, common-mode: 1500 V, {facts}skew: 0 s, "
+                + "uncertainty: { gain: 0.5 %, offset: 100 mA, skew: 200 ps }",
+            "vgs_low" or "vgs_high" => $"probe: isolated, rating: 50 V, common-mode: 1500 V, {facts}"
+                + "offset: 0 V, skew: 0 s, uncertainty: { gain: 1 %, offset: 50 mV, skew: 300 ps }",
+            "vbus" => $"probe: differential, rating: 1500 V, common-mode: 1500 V, {facts}offset: 0 V, skew: 0 s, "
+                + "uncertainty: { gain: 0.5 %, offset: 500 mV, skew: 500 ps }",
+            _ => $"probe: differential, rating: 1500 V, common-mode: 1500 V, {facts}offset: 0 V, skew: 0 s, "
+                + "uncertainty: { gain: 0.5 %, offset: 200 mV, skew: 200 ps }",
+        };
+    }
 }

@@ -54,7 +54,24 @@ public sealed class ArgumentsTests
         string file = BenchFile.Write(options, []);
         Assert.Contains("exchange: by-hand\n", file, StringComparison.Ordinal);
         Assert.Contains(", to: negative }\n", file, StringComparison.Ordinal);
-        Assert.Contains("  id_high: { scope: 3, probe: shunt,", file, StringComparison.Ordinal);
+        Assert.Contains("  id_high: { scope: 3, probe: transformer,", file, StringComparison.Ordinal);
+        Assert.DoesNotContain("shunt", file, StringComparison.Ordinal);
+        Assert.DoesNotContain("temperature:", file, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void A_bench_file_states_probes_plate_and_read_back()
+    {
+        string file = BenchFile.Write(
+            new ServeOptions { Hotplate = true, Ambient = 30 }, [("hotplate", "tcp 127.0.0.1 41003")]);
+        Assert.Contains(
+            "  vds_low: { scope: 2, probe: differential, rating: 1500 V, common-mode: 1500 V, bandwidth: 500 MHz, "
+                + "attenuation: 100, ",
+            file,
+            StringComparison.Ordinal);
+        Assert.Contains("dialect: generic-hotplate, connections: 4,", file, StringComparison.Ordinal);
+        Assert.Contains("current-accuracy: 1 mA }\n", file, StringComparison.Ordinal);
+        Assert.Contains("pulse: 20 us, temperature: 150 degC }\nambient: 30 degC\n", file, StringComparison.Ordinal);
     }
 
     [Fact]

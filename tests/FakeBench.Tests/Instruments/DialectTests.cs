@@ -25,13 +25,13 @@ public sealed partial class DialectTests
     [InlineData("scope")]
     [InlineData("voltmeter")]
     [InlineData("interlock")]
+    [InlineData("hotplate")]
     public void A_generic_dialect_is_understood(string role)
     {
-        var bench = new TestBench();
+        TestBench bench = TestBench.Hot();
         bench.Configure();
         bench.Fire();
-        Instrument instrument = new[] { bench.Supply, bench.Pulser, bench.Scope, bench.Voltmeter, bench.Interlock }
-            .Single(i => i.Role == role);
+        Instrument instrument = bench.Panels.All.Single(i => i.Role == role);
         MatchCollection commands = CommandLine().Matches(File.ReadAllText(Dialect(role)));
         Assert.NotEmpty(commands);
         foreach (Match command in commands)

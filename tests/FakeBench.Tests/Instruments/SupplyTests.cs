@@ -1,3 +1,6 @@
+using System.Globalization;
+using FakeBench.Instruments;
+
 namespace FakeBench.Tests.Instruments;
 
 public sealed class SupplyTests
@@ -26,6 +29,21 @@ public sealed class SupplyTests
         TestBench.Say(bench.Supply, "OUTP 0");
         Assert.InRange(TestBench.Number(bench.Supply, "MEAS:VOLT?"), 0, 1);
         Assert.Equal(600, bench.Volts, 1.0);
+    }
+
+    [Theory]
+    [InlineData(1e-3)]
+    [InlineData(0.1)]
+    [InlineData(2.5)]
+    public void Its_reading_of_the_current_is_as_good_as_it_states(double limit)
+    {
+        var bench = new TestBench("W1200-9009"); // a short: the current is the limit
+        TestBench.Say(bench.Interlock, "OUTP 0");
+        TestBench.Say(bench.Supply, string.Create(CultureInfo.InvariantCulture, $"CURR {limit};VOLT 600;:OUTP 1"));
+        bench.Wait(2);
+        Assert.Equal("2", TestBench.Ask(bench.Supply, "STAT:QUES:COND?"));
+        double error = TestBench.Number(bench.Supply, "MEAS:CURR?") - limit;
+        Assert.InRange(Math.Abs(error), 1e-6, Supply.CurrentAccuracy);
     }
 
     [Fact]
