@@ -16,7 +16,7 @@ public sealed class FaultTests : IDisposable
     [InlineData("emergency-stop", 4, "stopped", "emergency stop")]
     [InlineData("supply-clips", 5, "stopped", "taken as 350")]
     [InlineData("over-voltage-trips", 4, "stopped", "over-voltage protection")]
-    [InlineData("silent-supply", 4, "stopped", "no whole reply")]
+    [InlineData("silent-supply", 4, "stopped", "no sign of life")]
     [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
     public async Task A_fault_that_ends_the_run_leaves_the_bus_down(
         string fault, int exitCode, string outcome, string reason)
@@ -32,7 +32,7 @@ public sealed class FaultTests : IDisposable
     [Theory]
     [InlineData("stale-record", "fresh")]
     [InlineData("clipped-range", "not-clipped")]
-    [InlineData("link-drops", "complete")]
+    [InlineData("link-drops@block:21", "complete")]
     public async Task A_bad_capture_is_rejected_with_its_criterion_and_taken_again(string fault, string criterion)
     {
         (await Run(fault)).Expect(0);
@@ -82,13 +82,27 @@ public sealed class FaultTests : IDisposable
     }
 
     [Fact]
-    public async Task A_voltmeter_whose_lead_is_off_proves_nothing()
+    public async Task A_voltmeter_whose_lead_is_off_lets_nothing_above_the_proving_train_s_voltage()
     {
         Finished run = (await Run("voltmeter-open")).Expect(4);
 
-        Assert.Contains("never followed the bus up", run.Output, StringComparison.Ordinal);
-        Assert.Equal(0, _place.Ask<long>("select count(*) from events where kind = 'bus-down'"));
+        Assert.Contains("look at supply, leads and voltmeter", run.Output, StringComparison.Ordinal);
+        Assert.Equal("stopped", _place.Ask<string>("select outcome from device_outcomes"));
+        Assert.Equal("zero", _place.Ask<string>("select group_concat(distinct operating_point) from captures"));
+        Assert.Equal(0, _place.Ask<long>("select count(*) from events where kind = 'point-started'"));
         AssertConsistent();
+    }
+
+    [Fact]
+    public async Task A_record_that_is_lost_on_its_way_costs_a_proving_train_and_no_capture()
+    {
+        (await Run("link-drops")).Expect(0);
+
+        Assert.Equal(1, _place.Ask<long>("select count(*) from events where kind = 'record-lost'"));
+        Assert.Equal(10, _place.Ask<long>("select captures_taken from device_outcomes"));
+        Assert.Equal(
+            "2", _place.Ask<string>("select group_concat(capture) from captures where operating_point = 'proving-before'"));
+        AssertBusDown();
     }
 
     [Theory]
