@@ -9,7 +9,7 @@ namespace BenchRunner.Acceptance.Benches;
 internal static class ChannelKeys
 {
     private static readonly string[] _voltageProbes = ["ground-referenced", "differential", "isolated"];
-    private static readonly string[] _currentProbes = ["shunt", "coil", "transformer", "clamp"];
+    private static readonly string[] _currentProbes = ["shunt", "coil", "transformer", ChannelSetup.Clamp];
 
     /// <summary>The channels of a bench file.</summary>
     public static BlockShape OfBench { get; } = Channels(isBench: true);

@@ -30,6 +30,9 @@ public sealed record ChannelSetup(
     double SkewUncertainty,
     Place Where)
 {
+    /// <summary>The probe that keeps a field after a current and must be degaussed: <c>clamp</c>.</summary>
+    public const string Clamp = "clamp";
+
     /// <summary>Highest voltage to earth that the probe's inputs bear, V; null: not stated.</summary>
     public double? CommonMode { get; init; }
 

@@ -9,8 +9,9 @@ internal static class RunCost
     /// <summary>Bytes of one stored sample: ADC codes are kept as 16 bits.</summary>
     private const int BytesPerSample = 2;
 
-    /// <summary>Captures of the bench itself: the zero capture and the proving trains before and after.</summary>
-    private const int OwnCaptures = 3;
+    /// <summary>Captures of the bench itself: the zero capture and up to three proving trains before and
+    /// after.</summary>
+    private const int OwnCaptures = 7;
 
     /// <summary>Time that one device needs without retries, s; soaks count, the heating before them is not known.</summary>
     /// <param name="points">The points in the order in which they are run.</param>

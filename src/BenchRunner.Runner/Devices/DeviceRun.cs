@@ -208,6 +208,12 @@ public sealed class DeviceRun(
     private DeviceReport Report(
         string device, RunWriter evidence, BenchEnding ending, Ended? ended, SafeStateReport safe)
     {
+        foreach (RejectedShare share in RejectedShares.Of([.. _taken.SelectMany(point => point.Verdicts)]))
+        {
+            events.Say(
+                share.IsAboveHalf ? Severity.Warning : Severity.Information, "criterion-counted", share.Message);
+        }
+
         DeviceDecision decision = Decide(ended, ref ending);
         try
         {

@@ -2,6 +2,7 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
+using BenchRunner.Evidence.Holds;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Devices;
@@ -39,6 +40,9 @@ public sealed class LeakageHolds(DeviceWork work)
         LeakageReading reading = await Discharge(point, drawn, cancel);
         bool conforms = LeakageHold.Conforms(reading, work.Plan.Bench, work.Plan.Sequence);
         string words = $"{point.Name}: {LeakageHold.Words(reading, work.Plan.Bench, work.Plan.Sequence)}";
+        work.Evidence.AddHold(new HoldRow(
+            point.Name, work.Time.GetUtcNow(), point.BusVoltage, drawn, reading.First, reading.Last, reading.Seconds,
+            LeakageHold.Current(reading, work.Plan.Bench), work.Plan.Sequence.Leakage, conforms));
         work.Events.Say(conforms ? Severity.Information : Severity.Error, "leakage-hold", words);
         if (!conforms)
         {

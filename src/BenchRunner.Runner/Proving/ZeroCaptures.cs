@@ -1,9 +1,11 @@
+using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Devices;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Runner.Proving;
 
@@ -22,6 +24,7 @@ public sealed class ZeroCaptures(DeviceWork work)
     public async Task First(CancellationToken cancel)
     {
         PlannedPoint planned = work.Plan.Proving;
+        await Degauss(cancel);
         work.Zero = await Take(work.Scope(planned, planned.Ranges), cancel);
         work.Events.Say(
             Severity.Information, "zero-capture", "zero capture taken with no train fired: offsets of the probes");
@@ -37,6 +40,20 @@ public sealed class ZeroCaptures(DeviceWork work)
         work.Events.Say(
             Severity.Warning, "zero-capture", "three captures in a row began with a current: a new zero capture was "
                 + "taken");
+    }
+
+    /// <summary>A clamp keeps the field of the last current; where the scope cannot take it off, the person was asked
+    /// to.</summary>
+    private async Task Degauss(CancellationToken cancel)
+    {
+        foreach (ChannelSetup clamp in work.Plan.Bench.Channels.Where(setup => setup.Probe == ChannelSetup.Clamp))
+        {
+            if (work.Bench.Scope.CanDegauss)
+            {
+                await work.Bench.Scope.Degauss(clamp.Input, cancel);
+                work.Events.Say(Severity.Information, "degaussed", $"the clamp of {clamp.Channel.Name()} is degaussed");
+            }
+        }
     }
 
     private async Task<ZeroReading> Take(ScopeSettings settings, CancellationToken cancel)
