@@ -32,6 +32,60 @@ public sealed partial class ProgramTests
     }
 
     [Fact]
+    public async Task Hands_exchange_a_device_while_the_bench_file_says_by_hand()
+    {
+        string file = Path.Combine(Path.GetTempPath(), $"fakebench-{Guid.NewGuid():N}.yaml");
+        using Process bench = Start(
+            "serve", "--ends-with-input", "--exchange", "by-hand", "--device", "W1200-9009", "--write-bench", file);
+        Dictionary<string, string> links = await Links(bench);
+        string written = await File.ReadAllTextAsync(file, TestContext.Current.CancellationToken);
+        Assert.Contains("exchange: by-hand", written, StringComparison.Ordinal);
+        File.Delete(file);
+        await using (Client interlock = await Client.Connect(links["interlock"]))
+        await using (Client supply = await Client.Connect(links["supply"]))
+        {
+            await Charge(interlock, supply);
+            await Until(supply, "2", "STAT:QUES:COND?"); // a short: the supply is in current limit
+            await Hand("insert W1200-0001"); // refused: the enclosure is closed
+            await Hand("open");
+            await Until(interlock, "0,0,1,0");
+            await Hand("insert W1200-0001");
+            await Hand("close");
+            await Until(interlock, "1,0,1,0");
+            await Charge(interlock, supply);
+            await Until(supply, "0", "STAT:QUES:COND?");
+        }
+
+        bench.StandardInput.Close();
+        Assert.Equal(0, await Ended(bench));
+        Assert.Contains(
+            "open it first",
+            await bench.StandardError.ReadToEndAsync(TestContext.Current.CancellationToken),
+            StringComparison.Ordinal);
+
+        Task Hand(string hand) => bench.StandardInput.WriteLineAsync(hand);
+
+        static async Task Charge(Client interlock, Client supply)
+        {
+            await interlock.Say("OUTP 0");
+            Assert.Equal("0", await interlock.Ask("OUTP?"));
+            await supply.Say("VOLT 48;:OUTP 1");
+            Assert.Equal("1", await supply.Ask("OUTP?"));
+        }
+
+        static async Task Until(Client client, string wanted, string question = "SENS:DATA?")
+        {
+            string said = "";
+            for (int i = 0; i < 100_000 && said != wanted; i++)
+            {
+                said = await client.Ask(question);
+            }
+
+            Assert.Equal(wanted, said);
+        }
+    }
+
+    [Fact]
     public async Task Started_by_a_run_it_ignores_an_interrupt_and_ends_on_a_request_to_end()
     {
         Assert.SkipUnless(PosixSignals, "signals of POSIX");
@@ -70,8 +124,13 @@ public sealed partial class ProgramTests
         Assert.True(faults.Split('\n', StringSplitOptions.RemoveEmptyEntries).Length >= 8);
         Assert.Contains("bus-stays-up", faults, StringComparison.Ordinal);
         string devices = await Output("devices");
-        Assert.StartsWith("serial,part,defect,expected_outcome", devices, StringComparison.Ordinal);
-        Assert.Contains(",leaky,rejected", devices, StringComparison.Ordinal);
+        Assert.StartsWith("serial,part,defect,expected_outcome,change", devices, StringComparison.Ordinal);
+        Assert.Contains(
+            "W1200-9005,WD-1200S-25,leaky,rejected,low.leakage x2000", devices, StringComparison.Ordinal);
+        Assert.Contains("W1200-9020,WD-1200S-25,,accepted,", devices, StringComparison.Ordinal);
+        Assert.All(
+            devices.Split('\n', StringSplitOptions.RemoveEmptyEntries),
+            row => Assert.Equal(5, row.Split(',').Length));
     }
 
     [Fact]
