@@ -1,4 +1,5 @@
 using BenchRunner.Evidence.Notes;
+using BenchRunner.Evidence.Placements;
 using BenchRunner.Evidence.Seals;
 using BenchRunner.Evidence.Stores;
 
@@ -8,6 +9,7 @@ namespace BenchRunner.Evidence.Entries;
 internal static class EntryRows
 {
     public const string NoteKind = "note";
+    public const string PlacementKind = "placement";
 
     /// <summary>Adds an entry with its content and seals it.</summary>
     /// <param name="to">The session.</param>
@@ -31,4 +33,9 @@ internal static class EntryRows
         to.Execute(
             "insert into note (entry, device, lot, kind, because) values (?1, ?2, ?3, ?4, ?5)",
             entry, note.Device, to.Word(note.Lot), NoteWords.Of(note.Kind), note.Because);
+
+    public static void Placement(SqlSession to, long entry, Placement placement) =>
+        to.Execute(
+            "insert into placement (entry, run, place) values (?1, (select id from run where uid = ?2), ?3)",
+            entry, placement.Run, placement.Place);
 }

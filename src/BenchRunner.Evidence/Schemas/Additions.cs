@@ -43,11 +43,18 @@ internal static class Additions
           because text not null
         ) strict;
 
+        create table placement (
+          entry integer primary key references entry (id),
+          run integer not null references run (id),
+          place text not null
+        ) strict;
+
         """;
 
     private const string Indexes = """
         create index note_by_device on note (device, lot);
         create index note_by_lot on note (lot);
+        create index placement_by_run on placement (run);
         create index run_by_companion on run (companion) where companion is not null;
 
         """;
@@ -67,6 +74,13 @@ internal static class Additions
         join entry e on e.id = n.entry
         join word lot on lot.id = n.lot;
 
+        create view placements as
+        select e.at, r.uid as run, r.device, lot.text as lot, p.place, e.author, e.uid as entry
+        from placement p
+        join entry e on e.id = p.entry
+        join run r on r.id = p.run
+        left join word lot on lot.id = r.lot;
+
         create view companions as
         select r.companion, count(distinct r.id) as runs,
           coalesce(sum(point.text not in {UncountedPoints.Sql}), 0) as captures_taken,
@@ -80,12 +94,17 @@ internal static class Additions
         group by r.companion;
         """;
 
+    private const string EntryIsSealed =
+        "exists (select 1 from entry e join seal s on s.origin = e.origin and s.ordinal = e.ordinal "
+        + "where e.id = new.entry)";
+
     /// <summary>Each table that is added, with its keys: no row of it is ever changed, deleted or replaced.</summary>
     public static IReadOnlyList<(string Table, string[][] Keys)> AppendOnly { get; } =
     [
         ("hold", [["run", "ordinal"]]),
         ("entry", [["id"], ["uid"], ["origin", "ordinal"]]),
         ("note", [["entry"]]),
+        ("placement", [["entry"]]),
     ];
 
     /// <summary>Statements that make of a file of format 1 one of format 2.</summary>
@@ -93,11 +112,8 @@ internal static class Additions
         + Triggers.Ending("hold", "exists (select 1 from seal where kind = 'run' and run = new.run)", "run")
         + Triggers.Ending(
             "entry", "exists (select 1 from seal where origin = new.origin and ordinal = new.ordinal)", "entry")
-        + Triggers.Ending(
-            "note",
-            "exists (select 1 from entry e join seal s on s.origin = e.origin and s.ordinal = e.ordinal "
-                + "where e.id = new.entry)",
-            "entry")
+        + Triggers.Ending("note", EntryIsSealed, "entry")
+        + Triggers.Ending("placement", EntryIsSealed, "entry")
         + Views;
 
     /// <summary>Statements by which a reader sees a file of format 1 as one of format 2 that has nothing of what was

@@ -97,6 +97,7 @@ internal static class CanonicalForm
             select n.device, lot.text, n.kind, n.because
             from note n join word lot on lot.id = n.lot where n.entry = ?1
             """),
+        ("placement", "select r.uid, p.place from placement p join run r on r.id = p.run where p.entry = ?1"),
     ];
 
     /// <summary>SHA-256 over the canonical form of a run as it is stored, lower-case hexadecimal.</summary>

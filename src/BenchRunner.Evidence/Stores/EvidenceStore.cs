@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Evidence.Entries;
 using BenchRunner.Evidence.Notes;
+using BenchRunner.Evidence.Placements;
 using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Stores;
@@ -154,6 +155,31 @@ public sealed class EvidenceStore : IDisposable
             }
 
             return AddEntry(EntryRows.NoteKind, note.By, (to, entry) => EntryRows.Note(to, entry, note));
+        }
+    }
+
+    /// <summary>Adds where a device that was not accepted was put, durably and under a seal of its own.</summary>
+    /// <param name="placement">The placement; its run is in this file.</param>
+    /// <returns>Its identity, time and seal.</returns>
+    /// <exception cref="ArgumentException">Place or name is empty or too long, or the run is not in the file; nothing is
+    /// stored.</exception>
+    /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
+    public SealedEntry AddPlacement(Placement placement)
+    {
+        ArgumentNullException.ThrowIfNull(placement);
+        if (Array.Exists(
+            (string[])[placement.Place, placement.By],
+            text => string.IsNullOrWhiteSpace(text) || text.Length > Placement.LongestText))
+        {
+            throw new ArgumentException("A placement says where and by whom, briefly.", nameof(placement));
+        }
+
+        lock (_gate)
+        {
+            return Guarded(() => _session.Number("select count(*) from run where uid = ?1", placement.Run)) == 0
+                ? throw new ArgumentException($"Run {placement.Run} is not in the file.", nameof(placement))
+                : AddEntry(
+                    EntryRows.PlacementKind, placement.By, (to, entry) => EntryRows.Placement(to, entry, placement));
         }
     }
 

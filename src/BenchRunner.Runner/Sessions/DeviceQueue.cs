@@ -14,6 +14,9 @@ internal sealed class DeviceQueue(
 
     public bool FromReader => source.FromReader;
 
+    /// <summary>Who acknowledges an outcome.</summary>
+    public string Operator => string.IsNullOrWhiteSpace(request.Operator) ? "not stated" : request.Operator;
+
     /// <summary>Refuses devices of the command line before anything is opened or energised.</summary>
     /// <exception cref="RunRefusedException">A device is decided in its lot.</exception>
     public void RefuseKnown()

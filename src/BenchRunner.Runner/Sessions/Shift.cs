@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
+using BenchRunner.Evidence.Placements;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
@@ -119,6 +120,7 @@ internal sealed class Shift(
             : !person.CanAsk ? "there is no terminal to ask at" : null;
         if (why is null && await person.WherePut(report, stop) is { } put)
         {
+            store.AddPlacement(new Placement(report.Run, put, queue.Operator));
             events.Say(Severity.Information, "acknowledged", $"{report.Device} was put: {put}");
             return;
         }

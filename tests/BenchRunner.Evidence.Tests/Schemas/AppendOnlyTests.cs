@@ -1,3 +1,4 @@
+using BenchRunner.Evidence.Placements;
 using BenchRunner.Evidence.Stores;
 using Microsoft.Data.Sqlite;
 
@@ -18,12 +19,13 @@ public sealed class AppendOnlyTests : IDisposable
         run.AddHold(Samples.Hold());
         run.Finish(Samples.Decision());
         store.AddNote(Samples.Note());
+        store.AddPlacement(new Placement(run.Run, "red bin", "K. Weber"));
     }
 
     public static TheoryData<string> Tables { get; } =
     [
         "origin", "word", "content", "run", "run_file", "instrument", "event", "capture", "trace", "payload", "verdict",
-        "capture_value", "decision", "measurement", "seal", "hold", "entry", "note",
+        "capture_value", "decision", "measurement", "seal", "hold", "entry", "note", "placement",
     ];
 
     public void Dispose() => _folder.Dispose();
@@ -64,8 +66,9 @@ public sealed class AppendOnlyTests : IDisposable
     public void A_sealed_run_grows_no_more(string sql) => Refused(sql, "run is sealed");
 
     [Theory]
-    [InlineData("insert into note select entry + 1, device, lot, kind, because from note", "FOREIGN KEY")]
-    [InlineData("insert into entry select id + 1, 'x', origin, ordinal - 1, kind, at, author from entry", "sealed")]
+    [InlineData("insert into note select entry + 2, device, lot, kind, because from note", "FOREIGN KEY")]
+    [InlineData("insert into placement select entry + 1, run, place from placement", "FOREIGN KEY")]
+    [InlineData("insert into entry select id + 2, 'x', origin, ordinal - 1, kind, at, author from entry", "sealed")]
     public void A_sealed_entry_grows_no_more(string sql, string pattern) =>
         Refused("pragma foreign_keys = on; " + sql, pattern);
 

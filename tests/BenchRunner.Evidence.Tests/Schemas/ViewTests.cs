@@ -41,6 +41,7 @@ public sealed class ViewTests : IDisposable
             "seconds, leakage, bound, conforms, simulated"
         },
         { "notes", "at, device, lot, kind, author, because, entry" },
+        { "placements", "at, run, device, lot, place, author, entry" },
         { "companions", "companion, runs, captures_taken, proving_captures, last_started_at" },
     };
 

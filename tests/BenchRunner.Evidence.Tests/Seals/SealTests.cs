@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Evidence.Entries;
 using BenchRunner.Evidence.Notes;
+using BenchRunner.Evidence.Placements;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;
 
@@ -43,6 +44,8 @@ public sealed class SealTests : IDisposable
                     SealedEntry note = store.AddNote(
                         new Note("W1200-0002", "Lös Ω", NoteKind.Concession, "K. Weber", "used on\nbench Ω"));
                     expected.Add($"{note.Entry} {note.Seal}");
+                    SealedEntry placement = store.AddPlacement(new Placement(run.Run, "bin Ω", "K. Weber"));
+                    expected.Add($"{placement.Entry} {placement.Seal}");
                 }
             }
         }

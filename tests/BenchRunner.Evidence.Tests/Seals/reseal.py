@@ -27,7 +27,7 @@ FORM = [  # table, columns in order; *x is a text kept in word, @x the SHA-256 o
     ("decision", "outcome reason captures_taken captures_valid *sequence sequence_revision @sequence_content "
                  "*algorithm *platform scored_at"),
 ]
-ENTRY_FORM = [("entry", "uid origin kind at author"), ("note", "device *lot kind because")]
+ENTRY_FORM = [("entry", "uid origin kind at author"), ("note", "device *lot kind because"), ("placement", "run place")]
 ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3, "hold": 1,
          "measurement": 3}
 
@@ -61,6 +61,8 @@ def main(path):
             return origin[r[column]]
         if column == "capture":
             return captures[r[column]]["ordinal"]
+        if column == "run":
+            return next(run["uid"] for run in rows["run"] if run["id"] == r[column])
         name = column.lstrip("*@")
         value = r[name]
         return value if name == column or value is None else (word if column[0] == "*" else content)[value]
