@@ -19,7 +19,10 @@ internal sealed class LabBench : IDisposable
     /// <summary>The bench file.</summary>
     public required string File { get; init; }
 
-    public static async Task<LabBench> Start(Workplace place)
+    /// <summary>Starts the bench.</summary>
+    /// <param name="place">Where its files go.</param>
+    /// <param name="options">Further options of <c>serve</c>, e.g. <c>--exchange by-hand</c>.</param>
+    public static async Task<LabBench> Start(Workplace place, params string[] options)
     {
         string written = place.Path("written.yaml");
         Directory.CreateDirectory(place.Path("benches"));
@@ -27,7 +30,7 @@ internal sealed class LabBench : IDisposable
         lab._bench = place.Start(
             Workplace.FakeBench,
             ["serve", "--ends-with-input", "--interlock", "tcp", "--device", "W1200-0001", "--pace", "5",
-                "--write-bench", written]);
+                "--write-bench", written, .. options]);
         await lab._bench.Line(line => line == "ready");
         var text = new StringBuilder();
         foreach (string line in await System.IO.File.ReadAllLinesAsync(written))
@@ -48,6 +51,13 @@ internal sealed class LabBench : IDisposable
 
         await System.IO.File.WriteAllTextAsync(lab.File, text.ToString());
         return lab;
+    }
+
+    /// <summary>Does something at the fixture, e.g. <c>open</c>.</summary>
+    public async Task Hands(string hand)
+    {
+        await _bench.Input.WriteLineAsync(hand);
+        await _bench.Input.FlushAsync();
     }
 
     public void Dispose()

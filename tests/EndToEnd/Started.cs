@@ -11,6 +11,8 @@ internal sealed partial class Started : IDisposable
     private readonly TimeSpan _patience;
     private readonly StringBuilder _output = new();
     private readonly StringBuilder _error = new();
+    private TaskCompletionSource _more = new(TaskCreationOptions.RunContinuationsAsynchronously);
+    private int _at;
     private readonly List<(Func<string, bool> Is, TaskCompletionSource<string> Seen)> _awaited = [];
 
     public Started(Process process, TimeSpan patience)
@@ -50,6 +52,44 @@ internal sealed partial class Started : IDisposable
         }
 
         return await seen.Task;
+    }
+
+    /// <summary>Waits for a line of output with a text in it, after the last line that was waited for so.</summary>
+    public async Task<string> Next(string text)
+    {
+        long began = TimeProvider.System.GetTimestamp();
+        Task ended = _process.WaitForExitAsync();
+        while (true)
+        {
+            Task more;
+            lock (_awaited)
+            {
+                string[] lines = _output.ToString().Split('\n');
+                for (; _at < lines.Length; _at++)
+                {
+                    if (lines[_at].Contains(text, StringComparison.Ordinal))
+                    {
+                        return lines[_at++];
+                    }
+                }
+
+                _at = lines.Length - 1;
+                more = _more.Task;
+            }
+
+            if (await Task.WhenAny(more, ended, Task.Delay(_patience, TimeProvider.System)) != more)
+            {
+                Assert.Fail($"'{text}' did not come: {(ended.IsCompleted ? "the process ended" : "it goes on")} after "
+                    + $"{TimeProvider.System.GetElapsedTime(began)}\n{_output}");
+            }
+        }
+    }
+
+    /// <summary>Types at its standard input.</summary>
+    public async Task Type(string text)
+    {
+        await Input.WriteAsync(text);
+        await Input.FlushAsync();
     }
 
     /// <summary>Sends a signal, e.g. SIGINT or SIGKILL.</summary>
@@ -97,6 +137,8 @@ internal sealed partial class Started : IDisposable
         lock (_awaited)
         {
             to.Append(line).Append('\n');
+            _more.SetResult();
+            _more = new TaskCompletionSource(TaskCreationOptions.RunContinuationsAsynchronously);
             foreach ((Func<string, bool> isWanted, TaskCompletionSource<string> seen) in _awaited)
             {
                 if (to == _output && isWanted(line))
