@@ -41,9 +41,10 @@ public static class NotEvaluatedCriteria
             open.Add(new NotEvaluated(
                 Criteria.TemperatureWithin, "the bench has no hotplate: the plate is taken to be at ambient"));
         }
-        else if (sequence.OperatingPoints.Where(point => point.Temperature is null).ToArray() is { Length: > 0 } ambient)
+        else if (sequence.OperatingPoints.Any(point => point.Temperature is null))
         {
-            string names = string.Join(", ", ambient.Select(point => point.Name));
+            string names = string.Join(
+                ", ", sequence.OperatingPoints.Where(point => point.Temperature is null).Select(point => point.Name));
             open.Add(new NotEvaluated(Criteria.TemperatureWithin, $"{names}: at ambient, no temperature is set"));
         }
 

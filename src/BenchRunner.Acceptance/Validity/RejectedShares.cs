@@ -4,7 +4,8 @@ namespace BenchRunner.Acceptance.Validity;
 public static class RejectedShares
 {
     /// <summary>Counts the verdicts of one device.</summary>
-    /// <param name="verdicts">Those of all its captures of measurements; zero and proving captures select nothing.</param>
+    /// <param name="verdicts">Those of all its captures of measurements; zero and proving captures select
+    /// nothing.</param>
     /// <returns>
     /// A row for each criterion that rejected a capture or could not be evaluated on one, in the order of the
     /// catalogue; a capture counts once for each criterion that rejected it. Findings of class warn reject nothing.

@@ -42,8 +42,6 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
     /// <summary>What is wrong with a probe.</summary>
     public Func<Channel, ProbeChannel, ProbeChannel> Probe { get; init; } = (_, probe) => probe;
 
-    private bool FiresHigh => HalfBridge.FiresHigh(Sequence);
-
     /// <summary>The bank's voltage before a train, V, as a voltmeter reads it.</summary>
     public double Bank(PlannedPoint planned, long fire) => BusShare(fire) * planned.Point.BusVoltage;
 
@@ -58,9 +56,12 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
         Device device = Part(DevicePopulation.Draw(Serial, Seed));
         var train = new PulseTrain(
             set.First, set.Gap, set.Second, set.GateOn, set.GateOff, Bank(planned, fire));
+        CircuitParameters circuit = device.On(Fixture(new BenchValues(1).Parts)) with
+        {
+            LoadToNegative = HalfBridge.FiresHigh(Sequence),
+        };
         TrainTrajectory trajectory = Circuit.Simulate(
-            device.On(Fixture(new BenchValues(1).Parts)), Pulser(train), -planned.Pretrigger, planned.SampleInterval,
-            planned.Samples);
+            circuit, Pulser(train), -planned.Pretrigger, planned.SampleInterval, planned.Samples);
         var key = new CaptureKey(Seed, Serial, fire);
         double shift = key.Jitter(BenchProbes.TriggerJitter);
         return [.. ranges.Select(range => Record(trajectory, range, key.Noise(range.Input), shift))];
@@ -70,22 +71,9 @@ internal sealed record FiredBench(Sequence Sequence, Bench Bench)
     {
         var converter = new Digitiser(Bits, range.Span, range.Offset);
         ProbeChannel probe = Probe(range.Channel, BenchProbes.Of(range.Channel.Name()));
-        ProbeChannel placed = FiresHigh ? probe with { Signal = Mirrored(probe.Signal) } : probe;
-        short[] codes = Recorder.Record(train, placed, converter, noise, shift);
+        short[] codes = Recorder.Record(train, probe, converter, noise, shift);
         return new RawTrace(
             range.Channel, codes, train.Start, train.Interval, converter.Step, converter.Centre, 0, converter.Lowest,
             converter.Highest);
     }
-
-    /// <summary>The circuit fires its low place; with the load on the other rail the bench is its mirror image.</summary>
-    private static Signal Mirrored(Signal signal) => signal switch
-    {
-        Signal.VgsLow => Signal.VgsHigh,
-        Signal.VdsLow => Signal.VdsHigh,
-        Signal.IdLow => Signal.IdHigh,
-        Signal.VgsHigh => Signal.VgsLow,
-        Signal.VdsHigh => Signal.VdsLow,
-        Signal.IdHigh => Signal.IdLow,
-        _ => signal,
-    };
 }

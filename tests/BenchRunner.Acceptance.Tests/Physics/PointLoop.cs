@@ -76,7 +76,8 @@ internal static class PointLoop
         };
     }
 
-    /// <summary>The zero capture of a bench without current before its trains: what its probes show before on1.</summary>
+    /// <summary>The zero capture of a bench without current before its trains: what its probes show before
+    /// on1.</summary>
     public static ZeroReading Zero(CaptureContext sound)
     {
         int before = (int)(0.8 * sound.Planned.Pretrigger / sound.Planned.SampleInterval);

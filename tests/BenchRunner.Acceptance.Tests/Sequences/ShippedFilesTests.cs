@@ -1,6 +1,8 @@
 using System.Text.RegularExpressions;
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Dialects;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Tests.Files;
 using BenchRunner.Signals.Analysis;
@@ -48,6 +50,39 @@ public sealed partial class ShippedFilesTests
             .Where(line => line.Contains("bus-voltage", StringComparison.Ordinal));
         Assert.Equal(["    bus-voltage: 400 V", "    bus-voltage: 600 V"], named);
     }
+
+    [Theory]
+    [InlineData("winch-drive-incoming", "fake")]
+    [InlineData("winch-drive-incoming", "four-channel")]
+    [InlineData("winch-drive-incoming", "hot-plate")]
+    [InlineData("winch-drive-hot", "hot-plate")]
+    [InlineData("winch-drive-high", "negative-load")]
+    public void A_sequence_is_planned_on_its_bench_and_nothing_is_left_unsaid(string sequence, string bench)
+    {
+        Read<Sequence> read = SequenceFile.Read(Repository.PathOf("sequences", sequence + ".yaml"));
+        Assert.Empty(read.Problems);
+        Planned planned = Planner.Plan(
+            read.Value!, BenchFile.Read(Repository.PathOf("sequences", "benches", bench + ".yaml")).Value!);
+        Assert.Empty(planned.Refusals.Select(problem => problem.ToString()));
+        Assert.Empty(planned.Notes.Select(problem => problem.ToString()));
+    }
+
+    [Theory]
+    [InlineData("winch-drive-hot", "fake", "no hotplate")]
+    [InlineData("winch-drive-high", "fake", "the high switch fires")]
+    [InlineData("winch-drive-incoming", "negative-load", "the low switch fires")]
+    public void A_sequence_is_refused_on_a_bench_that_is_not_for_it(string sequence, string bench, string why) =>
+        Assert.Contains(
+            Planner.Plan(
+                SequenceFile.Read(Repository.PathOf("sequences", sequence + ".yaml")).Value!,
+                BenchFile.Read(Repository.PathOf("sequences", "benches", bench + ".yaml")).Value!).Refusals,
+            problem => problem.ToString().Contains(why, StringComparison.Ordinal));
+
+    [Fact]
+    public void Every_shipped_sequence_is_planned_by_a_test() =>
+        Assert.Equal(
+            ["winch-drive-high.yaml", "winch-drive-hot.yaml", "winch-drive-incoming.yaml"],
+            Directory.GetFiles(Repository.PathOf("sequences"), "*.yaml").Select(Path.GetFileName).Order());
 
     [Theory]
     [MemberData(nameof(Benches))]
