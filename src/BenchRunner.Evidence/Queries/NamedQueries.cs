@@ -82,22 +82,21 @@ public static class NamedQueries
             [Quantity, MeasuredLot, MeasuredAt],
             $"""
             with one as (
-              select m.lot, m.operating_point, m.definition, m.unit, m.value, m.conformity
+              select m.lot, m.operating_point, m.definition, m.unit, m.value, m.conformity,
+                avg(m.value) over (partition by m.lot, m.operating_point, m.definition, m.unit) as mean
               from measurement m
               join run r on r.id = m.run
               join decision d on d.run = m.run and d.scoring = m.scoring
               where m.quantity = (select id from word where text = $quantity) and m.value is not null
                 and {Views.IsCurrent} {NamedQuery.Marker}),
             many as (
-              select lot, operating_point, definition, unit, count(*) as devices, avg(value) as mean,
+              select lot, operating_point, definition, unit, count(*) as devices, max(mean) as mean,
+                case when count(*) > 1 then sqrt(sum((value - mean) * (value - mean)) / (count(*) - 1)) end
+                  as standard_deviation,
                 min(value) as lowest, max(value) as highest, sum(conformity = 'fails') as failing
               from one group by lot, operating_point, definition, unit)
             select lot.text as lot, point.text as operating_point, definition.text as definition, a.devices, a.mean,
-              (select case when a.devices > 1
-                then sqrt(sum((o.value - a.mean) * (o.value - a.mean)) / (a.devices - 1)) end
-               from one o where o.lot is a.lot and o.operating_point = a.operating_point
-                 and o.definition = a.definition and o.unit = a.unit) as standard_deviation,
-              a.lowest, a.highest, unit.text as unit, a.failing
+              a.standard_deviation, a.lowest, a.highest, unit.text as unit, a.failing
             from many a
             left join word lot on lot.id = a.lot
             join word point on point.id = a.operating_point
