@@ -213,9 +213,9 @@ public sealed class ScpiScope : IScope, IDisposable
                 && await Differs(setting, cancel) is { } found)
             {
                 throw new SettingChangedException(_instrument.Role, FormattableString.Invariant(
-                    $"the attenuation of {channel.Channel.Name()} (input {channel.Input}) is {Printable.Text(found)} where ")
-                    + FormattableString.Invariant($"{channel.Attenuation} was set; check the probe's switch and who ")
-                    + $"else controls the scope ({_instrument.Session.Link})");
+                    $"the attenuation of {channel.Channel.Name()} (input {channel.Input}) is {Printable.Text(found)} ")
+                    + FormattableString.Invariant($"where {channel.Attenuation} was set; check the probe's switch and ")
+                    + $"who else controls the scope ({_instrument.Session.Link})");
             }
         }
     }

@@ -258,7 +258,8 @@ internal sealed class ScpiWire : IDisposable
         }
         catch (Exception e) when (e is ReplyException or LinkException)
         {
-            throw _trust.Break(new LinkException(_link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
+            throw _trust.Break(new LinkException(
+                _link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
         }
     }
 
