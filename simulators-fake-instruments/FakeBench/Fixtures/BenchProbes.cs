@@ -53,13 +53,23 @@ public static class BenchProbes
     private static ProbeChannel Gate(Signal signal, double gain, double offset, double skew) =>
         new(signal)
         {
-            Gain = gain, Offset = offset, Skew = skew, Bandwidth = Bandwidth, Noise = 0.015, Attenuation = 10,
+            Gain = gain,
+            Offset = offset,
+            Skew = skew,
+            Bandwidth = Bandwidth,
+            Noise = 0.015,
+            Attenuation = 10,
         };
 
     private static ProbeChannel Voltage(Signal signal, double gain, double offset, double skew) =>
         new(signal)
         {
-            Gain = gain, Offset = offset, Skew = skew, Bandwidth = Bandwidth, Noise = 0.3, Attenuation = 100,
+            Gain = gain,
+            Offset = offset,
+            Skew = skew,
+            Bandwidth = Bandwidth,
+            Noise = 0.3,
+            Attenuation = 100,
         };
 
     private static ProbeChannel Shunt(Signal signal, double gain, double offset, double skew)

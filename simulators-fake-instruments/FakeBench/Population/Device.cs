@@ -51,9 +51,6 @@ public sealed record Device(
         Low = Low with { DiesAfterOff2 = Death.Delay },
     };
 
-    /// <summary>The device after its low place has died in a train: a short from now on.</summary>
-    public Device AfterDeath() => this with { Low = Low.Shorted() };
-
     /// <summary>The circuit with this device in both places of a bench.</summary>
     public CircuitParameters On(BenchParts bench) => new(Population.Changes.On(bench, Changes), Low, High);
 }
