@@ -30,16 +30,18 @@ public sealed class FaultTests : IDisposable
     }
 
     [Theory]
-    [InlineData("stale-record", "fresh")]
-    [InlineData("clipped-range", "not-clipped")]
-    [InlineData("link-drops@block:21", "complete")]
-    public async Task A_bad_capture_is_rejected_with_its_criterion_and_taken_again(string fault, string criterion)
+    [InlineData("stale-record", "fresh", 11)]
+    // The wider range that follows is too wide once the fault has passed: one capture more.
+    [InlineData("clipped-range", "not-clipped", 12)]
+    [InlineData("link-drops@block:21", "complete", 11)]
+    public async Task A_bad_capture_is_rejected_with_its_criterion_and_taken_again(
+        string fault, string criterion, long taken)
     {
         (await Run(fault)).Expect(0);
 
         Assert.Equal(1, _place.Ask<long>($"select count(*) from captures where not valid and findings like "
             + $"'%\"{criterion}\"%'"));
-        Assert.Equal(11, _place.Ask<long>("select captures_taken from device_outcomes"));
+        Assert.Equal(taken, _place.Ask<long>("select captures_taken from device_outcomes"));
         Assert.Equal(10, _place.Ask<long>("select captures_valid from device_outcomes"));
         AssertBusDown();
         AssertConsistent();
