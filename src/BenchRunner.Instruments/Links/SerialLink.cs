@@ -89,5 +89,5 @@ internal sealed class SerialLink : ILink
     private static bool IsLoss(Exception e) =>
         e is IOException or InvalidOperationException or UnauthorizedAccessException or TimeoutException;
 
-    private LinkException Lost(Exception e) => new(Name, "serial line lost", e);
+    private LinkException Lost(Exception e) => new(Name, $"serial line lost: {e.Message}", e);
 }

@@ -18,7 +18,7 @@ public sealed record SessionOptions
 
     /// <summary>How long handing one message to the system may take. A permit being revoked waits at most that
     /// long.</summary>
-    public TimeSpan WriteWithin { get; init; } = TimeSpan.FromMilliseconds(500);
+    public TimeSpan WriteWithin { get; init; } = TimeSpan.FromSeconds(1);
 
     /// <summary>The one deadline of an exchange: from the command to the end of its reply.</summary>
     public TimeSpan ReplyWithin { get; init; } = TimeSpan.FromSeconds(2);
