@@ -79,7 +79,8 @@ public sealed class ZeroReading
         foreach ((Channel channel, double offset) in _offsets)
         {
             corrections[channel] = corrections.GetValueOrDefault(channel, new ChannelCorrection())
-                with { Offset = offset };
+                with
+            { Offset = offset };
         }
 
         return settings with { Corrections = corrections };

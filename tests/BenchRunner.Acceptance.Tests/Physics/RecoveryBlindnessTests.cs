@@ -67,7 +67,7 @@ public sealed class RecoveryBlindnessTests
     [InlineData("W1200-0002", 1)]
     [InlineData("W1200-0003", 7)]
     [InlineData("W1200-0100", 42)]
-    public void The_same_for_other_devices_and_seeds(string serial, int seed) => 
+    public void The_same_for_other_devices_and_seeds(string serial, int seed) =>
         SameCaptures(serial, seed, lifetimes => lifetimes);
 
     [Theory]

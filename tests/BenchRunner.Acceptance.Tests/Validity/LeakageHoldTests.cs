@@ -10,7 +10,9 @@ public sealed class LeakageHoldTests
 {
     private static readonly Bench _bench = Shipped.Bench with
     {
-        BusCapacitance = 50e-6, EmptySocketCurrent = 0.1e-3, SupplyCurrentAccuracy = 1e-3,
+        BusCapacitance = 50e-6,
+        EmptySocketCurrent = 0.1e-3,
+        SupplyCurrentAccuracy = 1e-3,
     };
 
     private static readonly Sequence _sequence = Shipped.Rated with { Leakage = 2e-3 };
