@@ -73,6 +73,25 @@ public sealed class InputTests : IDisposable
     }
 
     [Fact]
+    public async Task A_device_given_twice_is_refused() => await Refused(
+        ["run", Workplace.Sequence, "--device", "W1200-0001", "--device", "W1200-0001"],
+        "W1200-0001 is given more than once");
+
+    [Theory]
+    [InlineData("low", null, "--companion is missing")]
+    [InlineData("low", "W1200-0001", "also a --device")]
+    [InlineData("low", "X-1", "--companion")]
+    [InlineData("both", "W1200-0002", "fills both places")]
+    public async Task A_companion_is_given_where_there_is_one_and_only_there(
+        string position, string? companion, string said)
+    {
+        string file = _place.SequenceFile(("position: both", $"position: {position}"));
+        string[] given = companion is null ? [] : ["--companion", companion];
+
+        await Refused(["run", file, "--device", "W1200-0001", .. given], said);
+    }
+
+    [Fact]
     public async Task A_misspelt_option_is_said() =>
         await Refused(["run", Workplace.Sequence, "--devise", "W1200-0001"], "--device");
 

@@ -130,6 +130,35 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
+    public async Task An_exchange_that_fails_leaves_the_first_device_in_the_report_and_names_the_second()
+    {
+        string bench = _place.FakeBenchFile("{ seed: 1, pace: 5, faults: [not-exchanged] }");
+        Finished run = (await _place.Run(
+            "run", Workplace.Sequence, "--bench", bench, "--device", "W1200-0001", "--device", "W1200-0002",
+            "--json")).Expect(5);
+
+        using JsonDocument document = JsonDocument.Parse(run.Output);
+        JsonElement device = Assert.Single(document.RootElement.GetProperty("devices").EnumerateArray().ToArray());
+        Assert.Equal("W1200-0001", device.GetProperty("device").GetString());
+        Assert.Equal("W1200-0002", document.RootElement.GetProperty("not_run")[0].GetString());
+        Assert.Contains("not seen open", run.Error, StringComparison.Ordinal);
+        Assert.DoesNotContain('\a', run.Error);
+    }
+
+    [Fact]
+    [Trait("kind", "slow")]
+    public async Task Another_part_put_into_the_socket_is_rejected()
+    {
+        string bench = _place.FakeBenchFile("{ seed: 1, pace: 5, faults: [wrong-part] }");
+        (await _place.Run(
+            "run", Workplace.Sequence, "--bench", bench, "--device", "W1200-0001", "--device",
+            "W1200-0002")).Expect(1);
+
+        Assert.Equal("rejected", _place.Ask<string>("select outcome from device_outcomes where device = 'W1200-0002'"));
+    }
+
+    [Fact]
     public async Task Serials_come_from_standard_input_and_a_wrong_one_is_said_and_skipped()
     {
         using Started run = _place.Start("run", Workplace.Sequence, "--device", "-");

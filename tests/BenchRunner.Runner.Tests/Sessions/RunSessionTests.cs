@@ -97,6 +97,32 @@ public sealed class RunSessionTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
+    public async Task A_device_exchanged_by_hand_gets_no_run_before_the_enclosure_was_seen_open_and_closed()
+    {
+        await using FakeBenchProcess instruments = await FakeBenchProcess.Start(
+            _place.Bench(), Workplace.Device, null, TimeProvider.System, Cancel);
+        Bench bench = _place.OtherBench(instruments.Links, "by-hand");
+        var person = new Person("simulated");
+        var session = new RunSession(
+            _place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System);
+
+        Task<RunSummary> running = session.Run(new Serials("W1200-0001", "W1200-0002"), Cancel);
+        await Eventually.True(() => _heard.Count("exchange") == 1, "a request to exchange");
+        await instruments.Do("open", Cancel);
+        await Eventually.True(() => _heard.Count("enclosure-open") == 1, "an open enclosure");
+        Assert.Single(person.Asked);
+        await instruments.Do("insert W1200-0002", Cancel);
+        await instruments.Do("close", Cancel);
+        RunSummary summary = await running;
+
+        Assert.Equal(["W1200-0001", "W1200-0002"], summary.Devices.Select(report => report.Device));
+        Assert.Equal([false, true], person.Asked.Select(closing => closing.SeenOpen));
+        Assert.Empty(person.Acknowledged);
+        Assert.Equal(1, _heard.Count("simulated"));
+    }
+
+    [Fact]
     public async Task A_latch_that_stands_refuses_with_what_it_says()
     {
         Bench bench = Elsewhere();

@@ -64,12 +64,13 @@ internal sealed class Workplace : IDisposable
     }
 
     /// <summary>A bench of instruments that run already: no <c>fake:</c> block, so it has a lock and a latch.</summary>
-    public Bench OtherBench(IReadOnlyDictionary<string, string> links)
+    public Bench OtherBench(IReadOnlyDictionary<string, string> links, string exchange = "none")
     {
         (string, string) Link(string role, string shipped) =>
             ($"  {role}: {{ link: '{shipped}'", $"  {role}: {{ link: '{links[role]}'");
         return Bench(
             ("fake: { seed: 1, pace: 5 }\n", ""),
+            ("exchange: none", $"exchange: {exchange}"),
             Link("supply", "tcp 127.0.0.1:0"),
             Link("pulser", "tcp 127.0.0.1:0"),
             Link("scope", "tcp 127.0.0.1:0"),
