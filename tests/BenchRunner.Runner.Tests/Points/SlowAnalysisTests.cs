@@ -48,7 +48,7 @@ public sealed class SlowAnalysisTests : IDisposable
         Bench bench = _place.Bench();
         RunRequest request = _place.Request(sequence, bench);
         await using FakeBenchProcess fake = await FakeBenchProcess.Start(
-            bench, Workplace.Device, TimeProvider.System, Cancel);
+            bench, Workplace.Device, null, TimeProvider.System, Cancel);
         var events = new EventSource("runner", _heard, _time);
         await using OpenBench open = await OpenBench.Open(
             bench, request.Dialects, fake.Links, new InstrumentReports(events), TimeProvider.System, Cancel);
