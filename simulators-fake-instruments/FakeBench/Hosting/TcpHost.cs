@@ -65,8 +65,9 @@ public sealed class TcpHost : IHost
                 serving.Add(Task.Run(() => Serve(client)));
             }
         }
-        catch (Exception end) when (end is OperationCanceledException or SocketException or ObjectDisposedException)
+        catch (Exception end) when (end is OperationCanceledException or SocketException or InvalidOperationException)
         {
+            // Stopped while it waited, or before it could wait again.
             await Task.WhenAll(serving);
         }
     }

@@ -5,6 +5,7 @@ using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Points;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Runner.Proving;
@@ -17,13 +18,19 @@ public sealed class ZeroCaptures(DeviceWork work)
 
     private const int Tries = 3;
 
+    /// <summary>Bus voltage below which a bank that still discharges moves no probe while the scope records, V.</summary>
+    private const double BankIsEmpty = 1;
+
     private int _taken;
 
     /// <summary>The zero of the run, with the bus down: offsets of the voltage probes, zeros of the currents.</summary>
     /// <exception cref="InstrumentException">The scope gives no record.</exception>
+    /// <exception cref="BusException">The bank does not empty.</exception>
     public async Task First(CancellationToken cancel)
     {
         PlannedPoint planned = work.Plan.Proving;
+        await work.Bench.Safety.Interlock.EngageBleeder(cancel);
+        await work.Bus.WaitBelow(BankIsEmpty, cancel);
         await Degauss(cancel);
         work.Zero = await Take(work.Scope(planned, planned.Ranges), cancel);
         work.Events.Say(
