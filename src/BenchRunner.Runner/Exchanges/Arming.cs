@@ -21,7 +21,8 @@ public sealed class Arming(
 
     /// <summary>Asks until a confirmation holds.</summary>
     /// <returns>Who confirmed; null where it was declined or there is nobody to ask.</returns>
-    /// <exception cref="SafetyException">The loop is open and nobody is there to close it.</exception>
+    /// <exception cref="SafetyException">The loop is open and nobody is there to close it, or the bench has
+    /// tripped.</exception>
     public async Task<string?> Confirm(Plan plan, string device, bool simulated, CancellationToken stop)
     {
         while (true)
@@ -29,6 +30,12 @@ public sealed class Arming(
             await SeeClosed(simulated, stop);
             int openings = _enclosure.Openings;
             string? who = await Ask(plan, new Closing(device, simulated, openings > 0), openings, stop);
+            if (supervisor.Trip is { } trip)
+            {
+                // The answer may have been quicker than the trip's waking.
+                throw new SafetyException(trip.Reason);
+            }
+
             if (who is { Length: 0 } || (who is not null && !supervisor.HoldConfirmed(openings)))
             {
                 events.Say(

@@ -104,7 +104,7 @@ public sealed class RunSession
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
-        using CancellationTokenRegistration latching = supervisor.Tripped.Register(() => LeaveLatch(supervisor.Trip!));
+        supervisor.TripMarked += LeaveLatch;
         await supervisor.Start(operatorStop);
         return await new Shift(
             Plan, store, open, supervisor, fake, _person, queue, _sinks, _journal, _events, _time).Run(

@@ -46,6 +46,10 @@ public sealed class SafetySupervisor : IAsyncDisposable
     /// <summary>What the voltmeter has shown so far.</summary>
     public BusWitness Witness { get; } = new();
 
+    /// <summary>Raised by a trip, after the safe state was begun and before anybody is woken by it: here the latch is
+    /// left. A handler must not throw.</summary>
+    public event Action<Trip>? TripMarked;
+
     /// <summary>Cancelled by a trip.</summary>
     public CancellationToken Tripped => _tripped.Token;
 
@@ -142,7 +146,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         if (Mark(reason))
         {
             _ = MakeSafe();
-            _tripped.Cancel();
+            Wake();
         }
     }
 
@@ -163,6 +167,13 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
         _events.Say(Severity.Alarm, "trip", $"TRIP: {reason}");
         return true;
+    }
+
+    /// <summary>First the mark, then the waiting: a token's callbacks run in no order to rely on.</summary>
+    private void Wake()
+    {
+        TripMarked?.Invoke(Trip!);
+        _tripped.Cancel();
     }
 
     /// <summary>Ends the permit and brings the bench to the safe state. The watch goes on.</summary>
@@ -194,7 +205,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         // A bench that may be full must not be used by anybody before a person has looked.
         if (!report.Proved && Mark("the bus was not proved down"))
         {
-            _tripped.Cancel();
+            Wake();
         }
 
         return report;
