@@ -101,8 +101,16 @@ public sealed class DeviceRun(
         }
 
         double? heated = double.NaN;
+        double charged = 0;
         foreach (PlannedPoint point in plan.Points)
         {
+            if (point.Point.BusVoltage < charged)
+            {
+                // A supply gives and does not take: only the bleeder brings a bus down.
+                await Down(stop);
+            }
+
+            charged = point.Point.BusVoltage;
             if (point.Point.Temperature != heated)
             {
                 heated = point.Point.Temperature;

@@ -60,6 +60,29 @@ public sealed class PointFixtureTests : IDisposable
     }
 
     [Fact]
+    public async Task Points_run_as_written_may_fall_the_bleeder_brings_the_bus_down_between_them()
+    {
+        Sequence sequence = _place.Sequence(
+            """
+            order: as-written
+            captures: { valid: 2, at-most: 4 }
+            limits:
+              - { quantity: eon, at: half, at-most: 1 mJ }
+            """,
+            points: 2);
+        sequence = sequence with { OperatingPoints = [.. sequence.OperatingPoints.Reverse()] };
+
+        DeviceReport report = Assert.Single((await _place.Run(sequence, _place.Bench(), _heard)).Devices);
+
+        Assert.Equal((Outcome.Accepted, BenchEnding.Proved), (report.Decision.Outcome, report.Ending));
+        Assert.Equal(
+            "rated rated half half", string.Join(' ', Enumerable.Range(0, 4).Select(i => _place.Ask<string>(
+                "select operating_point from captures where operating_point in ('half', 'rated') order by taken_at "
+                    + $"limit 1 offset {i}"))));
+        Assert.Equal(3, _heard.Count("bus-down"));
+    }
+
+    [Fact]
     public async Task Too_few_valid_captures_are_no_measurement()
     {
         // No scope is as quiet as that: every capture is rejected.
