@@ -21,14 +21,15 @@ public sealed class SafetySupervisor : IAsyncDisposable
     private readonly EventSource _events;
     private readonly TimeProvider _time;
     private readonly SafeState _safeState;
+    private readonly Doubt _doubt;
+    private readonly Watchdog _watchdog;
+    private readonly LoopHold _loop = new();
     private readonly CancellationTokenSource _tripped = new();
     private readonly CancellationTokenSource _end = new();
     private Permit? _permit;
     private Task _watching = Task.CompletedTask;
     private double _lastVoltage = double.NaN;
     private bool _discharging;
-    private bool _confirmed;
-    private bool _watchdogSet;
     private Task<SafeStateReport>? _reaching;
 
     /// <summary>Makes a supervisor; nothing is polled before <see cref="Start"/>.</summary>
@@ -40,6 +41,8 @@ public sealed class SafetySupervisor : IAsyncDisposable
         _envelope = envelope;
         _events = events.As("watch");
         _time = time;
+        _doubt = new Doubt(envelope);
+        _watchdog = new Watchdog(roles.Interlock, Witness, _events, time);
         _safeState = new SafeState(roles, Witness, discharge, events.As("safe-state"), time);
     }
 
@@ -60,10 +63,10 @@ public sealed class SafetySupervisor : IAsyncDisposable
     public double LastVoltage => Volatile.Read(ref _lastVoltage);
 
     /// <summary>What the interlock controller said at the last poll; null before the first.</summary>
-    public InterlockState? LastInterlock { get; private set; }
+    public InterlockState? LastInterlock => _loop.Last;
 
     /// <summary>How often the loop was found open after it was closed, or at the first poll.</summary>
-    public int LoopOpenings { get; private set; }
+    public int LoopOpenings => _loop.Openings;
 
     /// <summary>Holds a person's confirmation to the closing it was given for: until <see cref="EndConfirmed"/> an open
     /// loop is a trip, also while nothing is charged.</summary>
@@ -73,7 +76,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     {
         lock (_gate)
         {
-            return _confirmed = LoopOpenings == openings && LastInterlock is { LoopClosed: true };
+            return _loop.Confirm(openings);
         }
     }
 
@@ -83,7 +86,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     {
         lock (_gate)
         {
-            _confirmed = false;
+            _loop.End();
         }
     }
 
@@ -93,14 +96,12 @@ public sealed class SafetySupervisor : IAsyncDisposable
     {
         if (await Poll(cancel) is { } doubt)
         {
-            // A watchdog that has acted is taken back at the end: the latch stands in its place.
-            _watchdogSet = LastInterlock is { WatchdogTripped: true };
-            OnDoubt(doubt);
+            _watchdog.Found(hasActed: LastInterlock is { WatchdogTripped: true });
+            TripNow(doubt);
             throw new SafetyException($"{doubt}; put it right before the bench is used");
         }
 
-        await _roles.Interlock.SetWatchdog(SafetyLimits.Watchdog, cancel);
-        _watchdogSet = true;
+        await _watchdog.Arm(cancel);
         _watching = Task.Run(() => Watch(_end.Token), CancellationToken.None);
     }
 
@@ -122,7 +123,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         // What may be left open on an idle bench must be closed before there is leave to energise it.
         if (await Poll(cancel, toEnergise: true) is { } doubt)
         {
-            OnDoubt(doubt);
+            TripNow(doubt);
         }
 
         lock (_gate)
@@ -231,28 +232,9 @@ public sealed class SafetySupervisor : IAsyncDisposable
             await begunByTheLastPoll;
         }
 
-        await DisarmWatchdog();
+        await _watchdog.Disarm();
         _end.Dispose();
         _tripped.Dispose();
-    }
-
-    /// <summary>Takes the watchdog off a bench that is down; one that may be charged is left to it.</summary>
-    private async Task DisarmWatchdog()
-    {
-        if (!_watchdogSet || Witness.MayBeEnergised)
-        {
-            return;
-        }
-
-        try
-        {
-            using var patience = new CancellationTokenSource(SafetyLimits.Watchdog, _time);
-            await _roles.Interlock.SetWatchdog(null, patience.Token);
-        }
-        catch (Exception failure)
-        {
-            _events.Say(Severity.Warning, "watchdog-left", $"the interlock's watchdog stays armed: {failure.Message}");
-        }
     }
 
     private async Task Watch(CancellationToken end)
@@ -265,21 +247,13 @@ public sealed class SafetySupervisor : IAsyncDisposable
                 // A poll that has begun is ended by its own patience: cancelling it would leave its reply on the line.
                 if (await Poll(CancellationToken.None) is { } doubt)
                 {
-                    OnDoubt(doubt);
+                    TripNow(doubt);
                 }
             }
         }
         catch (OperationCanceledException) when (end.IsCancellationRequested)
         {
             // The run has ended.
-        }
-    }
-
-    private void OnDoubt(string doubt)
-    {
-        if (Trip is null)
-        {
-            TripNow(doubt);
         }
     }
 
@@ -297,15 +271,15 @@ public sealed class SafetySupervisor : IAsyncDisposable
             Witness.Saw(volts);
             lock (_gate)
             {
-                LoopOpenings += !interlock.LoopClosed && LastInterlock is not { LoopClosed: false } ? 1 : 0;
-                LastInterlock = interlock;
-                if (Doubt(interlock, volts, discharging || _discharging, toEnergise) is { } doubt)
+                _loop.Saw(interlock);
+                string? doubt = _doubt.Of(
+                    interlock, volts, _permit?.Bounds, discharging || _discharging, toEnergise || _loop.IsConfirmed);
+                if (doubt is null)
                 {
-                    return doubt;
+                    _permit?.Renew();
                 }
 
-                _permit?.Renew();
-                return null;
+                return doubt;
             }
         }
         catch (OperationCanceledException) when (cancel.IsCancellationRequested)
@@ -316,37 +290,5 @@ public sealed class SafetySupervisor : IAsyncDisposable
         {
             return $"the watch lost sight of the bench: {failure.Message}";
         }
-    }
-
-    private string? Doubt(InterlockState interlock, double volts, bool discharging, bool toEnergise)
-    {
-        if (interlock.EmergencyStop)
-        {
-            return "the emergency stop is pressed";
-        }
-
-        if (interlock.WatchdogTripped)
-        {
-            return "the interlock controller's watchdog has acted";
-        }
-
-        bool energised =
-            toEnergise || _confirmed || _permit is not null || discharging || volts >= SafetyLimits.BusDown;
-        if (!interlock.LoopClosed && energised)
-        {
-            return "the interlock loop is open";
-        }
-
-        if (_permit is null)
-        {
-            return !discharging && volts >= SafetyLimits.BusDown
-                ? $"the bus is at {volts:0.0} V and nothing was allowed to charge it" : null;
-        }
-
-        double ceiling = Math.Min(
-            _permit.Bounds.Voltage.Value * (1 + SafetyLimits.OverVoltageMargin), _envelope.Voltage);
-        ceiling = Math.Max(ceiling, SafetyLimits.BusDown);
-        return volts > ceiling
-            ? $"the bus is at {volts:0.0} V, above the {ceiling:0.0} V that the permit allows" : null;
     }
 }

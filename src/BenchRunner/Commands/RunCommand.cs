@@ -1,7 +1,6 @@
 using System.CommandLine;
 using BenchRunner.Console;
 using BenchRunner.Files;
-using BenchRunner.Json;
 using BenchRunner.Runner.Sessions;
 using BenchRunner.Runner.Sinks;
 
@@ -28,7 +27,6 @@ internal static class RunCommand
     private static async Task<int> Run(RunArguments arguments, CancellationToken stop)
     {
         Job job = Job.Read(arguments.Sequence, arguments.Bench);
-        bool fake = job.Bench.Fake is not null;
         arguments.Check(job);
         await using Screen screen = Screen.Standard(error: arguments.Json);
         await using var terminal = new OperatorTerminal(screen, TimeProvider.System);
@@ -38,37 +36,13 @@ internal static class RunCommand
                 : new StreamSerials(System.Console.OpenStandardInput(), job.Sequence, screen.Line));
         RunRequest request = arguments.Request(job);
         EvidenceFiles.RequireSpace(request.EvidencePath, request.Plan.Bytes);
-        screen.Line($"{Simulated(fake)}{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, "
-            + $"evidence in {request.EvidencePath}");
+        screen.Line(RunReport.Simulated(job.Bench.Fake is not null)
+            + $"{job.Sequence.Name} revision {job.Sequence.Revision}, bench {job.Bench.Name}, evidence in "
+            + request.EvidencePath);
         var session = new RunSession(
             request, new SinkSet([new ProgressLog(screen)]),
             new BenchOperator(screen, terminal, job.Sequence, arguments.ArmedBy), TimeProvider.System);
         RunSummary summary = await session.Run(serials, stop);
-        return Report(summary, request.EvidencePath, screen, arguments.Json, stop);
+        return RunReport.Write(summary, request.EvidencePath, screen, arguments.Json, stop);
     }
-
-    private static int Report(
-        RunSummary summary, string evidence, Screen screen, bool json, CancellationToken stop)
-    {
-        int code = RunExit.Of(summary, stop);
-        if (summary.BrokenOff is { } broken)
-        {
-            screen.Line(screen.Palette.Bad(Screen.Printable(Ending.Explain(broken, stop).Message)));
-        }
-
-        foreach (string device in summary.NotRun)
-        {
-            screen.Line(screen.Palette.Bad($"{device}: got no run"));
-        }
-
-        screen.Line($"{Simulated(summary.Simulated)}{RunExit.Words(code)}");
-        if (json)
-        {
-            RunJson.Write(summary, evidence, code);
-        }
-
-        return code;
-    }
-
-    private static string Simulated(bool simulated) => simulated ? "SIMULATED. " : "";
 }
