@@ -212,6 +212,8 @@ public sealed class ScpiScope : IScope, IDisposable
             if (ScopeSetup.Attenuation(_instrument, channel) is { } setting
                 && await Differs(setting, cancel) is { } found)
             {
+                // It does not stand any more: whoever comes next has everything sent anew.
+                _standing = [];
                 throw new SettingChangedException(_instrument.Role, FormattableString.Invariant(
                     $"the attenuation of {channel.Channel.Name()} (input {channel.Input}) is {Printable.Text(found)} ")
                     + FormattableString.Invariant($"where {channel.Attenuation} was set; check the probe's switch and ")

@@ -10,33 +10,41 @@ namespace BenchRunner.Runner.Exchanges;
 /// an opening counts for nothing after it.</summary>
 /// <param name="supervisor">Sees the loop, and holds the confirmation to it.</param>
 /// <param name="person">Who is asked.</param>
+/// <param name="clamps">Channels whose clamps a person degausses, by name.</param>
 /// <param name="byHand">Waits for a closing where a person exchanges devices; null: an open loop ends the
 /// session.</param>
 /// <param name="events">Takes what happens.</param>
 /// <param name="time">The clock.</param>
 public sealed class Arming(
-    SafetySupervisor supervisor, IOperator person, ByHand? byHand, EventSource events, TimeProvider time)
+    SafetySupervisor supervisor,
+    IOperator person,
+    IReadOnlyList<string> clamps,
+    ByHand? byHand,
+    EventSource events,
+    TimeProvider time)
 {
+    private static readonly Confirmation Void = new("", Asked: true);
     private readonly Enclosure _enclosure = new(supervisor, time);
 
     /// <summary>Asks until a confirmation holds.</summary>
-    /// <returns>Who confirmed; null where it was declined or there is nobody to ask.</returns>
+    /// <returns>The confirmation; null where it was declined or there is nobody to ask.</returns>
     /// <exception cref="SafetyException">The loop is open and nobody is there to close it, or the bench has
     /// tripped.</exception>
-    public async Task<string?> Confirm(Plan plan, string device, bool simulated, CancellationToken stop)
+    public async Task<Confirmation?> Confirm(Plan plan, string device, bool simulated, CancellationToken stop)
     {
         while (true)
         {
             await SeeClosed(simulated, stop);
             int openings = _enclosure.Openings;
-            string? who = await Ask(plan, new Closing(device, simulated, openings > 0), openings, stop);
+            Confirmation? given = await Ask(
+                plan, new Closing(device, simulated, openings > 0, clamps), openings, stop);
             if (supervisor.Trip is { } trip)
             {
                 // The answer may have been quicker than the trip's waking.
                 throw new SafetyException(trip.Reason);
             }
 
-            if (who is { Length: 0 } || (who is not null && !supervisor.HoldConfirmed(openings)))
+            if (given == Void || (given is not null && !supervisor.HoldConfirmed(openings)))
             {
                 events.Say(
                     Severity.Warning, "confirmation-void",
@@ -44,7 +52,7 @@ public sealed class Arming(
                 continue;
             }
 
-            return who;
+            return given;
         }
     }
 
@@ -65,8 +73,9 @@ public sealed class Arming(
     }
 
     /// <summary>Asks; an opening does not wait for the answer.</summary>
-    /// <returns>Who; empty where the enclosure was opened meanwhile; null: declined.</returns>
-    private async Task<string?> Ask(Plan plan, Closing closing, int openings, CancellationToken stop)
+    /// <returns>The confirmation; <see cref="Void"/> where the enclosure was opened meanwhile; null:
+    /// declined.</returns>
+    private async Task<Confirmation?> Ask(Plan plan, Closing closing, int openings, CancellationToken stop)
     {
         using var over = CancellationTokenSource.CreateLinkedTokenSource(stop);
         Task opened = EndOnOpening(over, openings);
@@ -76,7 +85,7 @@ public sealed class Arming(
         }
         catch (OperationCanceledException) when (!stop.IsCancellationRequested)
         {
-            return "";
+            return Void;
         }
         finally
         {

@@ -49,17 +49,19 @@ public sealed class ZeroCaptures(DeviceWork work)
                 + "taken");
     }
 
-    /// <summary>A clamp keeps the field of the last current; where the scope cannot take it off, the person was asked
-    /// to.</summary>
+    /// <summary>A clamp keeps the field of the last current; where the scope cannot take it off, the confirmation
+    /// asks a person to.</summary>
     private async Task Degauss(CancellationToken cancel)
     {
+        if (!work.Bench.Scope.CanDegauss)
+        {
+            return;
+        }
+
         foreach (ChannelSetup clamp in work.Plan.Bench.Channels.Where(setup => setup.Probe == ChannelSetup.Clamp))
         {
-            if (work.Bench.Scope.CanDegauss)
-            {
-                await work.Bench.Scope.Degauss(clamp.Input, cancel);
-                work.Events.Say(Severity.Information, "degaussed", $"the clamp of {clamp.Channel.Name()} is degaussed");
-            }
+            await work.Bench.Scope.Degauss(clamp.Input, cancel);
+            work.Events.Say(Severity.Information, "degaussed", $"the clamp of {clamp.Channel.Name()} is degaussed");
         }
     }
 

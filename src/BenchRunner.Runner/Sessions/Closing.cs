@@ -5,4 +5,6 @@ namespace BenchRunner.Runner.Sessions;
 /// <param name="Simulated">Whether the bench is simulated: then the cautions are shown and nothing is asked.</param>
 /// <param name="SeenOpen">Whether the enclosure was seen open in this session: then a name given beforehand confirms
 /// nothing.</param>
-public sealed record Closing(string Device, bool Simulated, bool SeenOpen);
+/// <param name="Clamps">Channels whose current clamps a person must degauss first, by name: the scope
+/// cannot.</param>
+public sealed record Closing(string Device, bool Simulated, bool SeenOpen, IReadOnlyList<string> Clamps);

@@ -11,13 +11,12 @@ public interface IOperator
     bool CanAsk { get; }
 
     /// <summary>Shows the cautions and asks; input that waited beforehand is discarded, so that a scanner never
-    /// arms.</summary>
+    /// arms. Where clamps wait to be degaussed, the question says so first.</summary>
     /// <param name="plan">What would be done.</param>
     /// <param name="closing">The closed enclosure that the confirmation is for.</param>
     /// <param name="cancel">Ends the waiting: the run is over, or the enclosure was opened again.</param>
-    /// <returns>Who confirmed it, e.g. <c>simulated</c>; null where it was declined or there is nobody to
-    /// ask.</returns>
-    Task<string?> Confirm(Plan plan, Closing closing, CancellationToken cancel);
+    /// <returns>Who confirmed it; null where it was declined or there is nobody to ask.</returns>
+    Task<Confirmation?> Confirm(Plan plan, Closing closing, CancellationToken cancel);
 
     /// <summary>Asks where a device that was not accepted was put.</summary>
     /// <param name="report">The device and its outcome.</param>

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
@@ -10,6 +11,7 @@ using BenchRunner.Runner.Exchanges;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.Supervision;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Runner.Sessions;
 
@@ -40,15 +42,15 @@ internal sealed class Shift(
     public async Task<RunSummary> Run(string first, CancellationToken operatorStop)
     {
         using var stop = CancellationTokenSource.CreateLinkedTokenSource(operatorStop, supervisor.Tripped);
-        var arming = new Arming(supervisor, person, _byHand, events, time);
+        var arming = new Arming(supervisor, person, Clamps(), _byHand, events, time);
         string? device = first;
         try
         {
             while (true)
             {
-                string confirmedBy = await arming.Confirm(plan, device, open.IsSimulated, stop.Token)
+                Confirmation confirmed = await arming.Confirm(plan, device, open.IsSimulated, stop.Token)
                     ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
-                DeviceReport report = await One(device, confirmedBy, operatorStop);
+                DeviceReport report = await One(device, confirmed, operatorStop);
                 int openings = _enclosure.Openings;
                 _reports.Add(report);
                 device = null;
@@ -84,9 +86,9 @@ internal sealed class Shift(
         ? new Exchange(hands, _enclosure, events, time).Insert(next, stop)
         : _byHand!.Exchange(before, next, openings, stop);
 
-    private async Task<DeviceReport> One(string device, string confirmedBy, CancellationToken operatorStop)
+    private async Task<DeviceReport> One(string device, Confirmation confirmed, CancellationToken operatorStop)
     {
-        RunWriter evidence = store.BeginRun(queue.Header(device, confirmedBy, open.IsSimulated));
+        RunWriter evidence = store.BeginRun(queue.Header(device, confirmed.By, open.IsSimulated));
         journal.Follow(evidence);
         try
         {
@@ -96,12 +98,31 @@ internal sealed class Shift(
             }
 
             events.Say(Severity.Information, "device-started", $"{device}: run {evidence.Run}");
+            SayClamps(confirmed);
             return await new DeviceRun(open, supervisor, plan, sinks, events, time)
                 .Walk(device, evidence, operatorStop);
         }
         finally
         {
             journal.Follow(null);
+        }
+    }
+
+    /// <summary>Channels whose clamps only a person can degauss.</summary>
+    private IReadOnlyList<string> Clamps() => open.Scope.CanDegauss ? [] :
+    [
+        .. plan.Bench.Channels.Where(setup => setup.Probe == ChannelSetup.Clamp).Select(setup => setup.Channel.Name()),
+    ];
+
+    private void SayClamps(Confirmation confirmed)
+    {
+        if (Clamps() is { Count: > 0 } clamps)
+        {
+            events.Say(
+                confirmed.Asked ? Severity.Information : Severity.Warning,
+                confirmed.Asked ? "degauss-asked" : "degauss-not-asked",
+                $"the clamp of {string.Join(", ", clamps)} is degaussed by hand: "
+                    + (confirmed.Asked ? "the operator was asked to" : "nobody was asked to; its zero may be off"));
         }
     }
 

@@ -21,7 +21,7 @@ internal sealed class BenchOperator(Screen screen, OperatorTerminal terminal, Se
 
     public bool CanAsk => OperatorTerminal.Exists;
 
-    public async Task<string?> Confirm(Plan plan, Closing closing, CancellationToken cancel)
+    public async Task<Confirmation?> Confirm(Plan plan, Closing closing, CancellationToken cancel)
     {
         foreach (string line in CautionLines.Of(plan, plan.Bench))
         {
@@ -29,9 +29,20 @@ internal sealed class BenchOperator(Screen screen, OperatorTerminal terminal, Se
         }
 
         // A name given beforehand is for the closing that it was given for.
-        return closing.Simulated ? armedBy ?? "simulated"
-            : armedBy is not null && !closing.SeenOpen ? armedBy
-            : await AskVoltage(plan.Points.Max(point => point.Point.BusVoltage), closing.Device, cancel);
+        string? given = closing.Simulated ? armedBy ?? "simulated" : closing.SeenOpen ? null : armedBy;
+        if (given is not null)
+        {
+            return new Confirmation(given, Asked: false);
+        }
+
+        if (closing.Clamps.Count > 0)
+        {
+            screen.Line(screen.Palette.Open(
+                $"  ! {string.Join(", ", closing.Clamps)}: degauss the clamp with its own button now, then answer"));
+        }
+
+        return await AskVoltage(plan.Points.Max(point => point.Point.BusVoltage), closing.Device, cancel)
+            ? new Confirmation(Environment.UserName, Asked: true) : null;
     }
 
     public async Task<string?> WherePut(DeviceReport report, CancellationToken cancel)
@@ -58,7 +69,7 @@ internal sealed class BenchOperator(Screen screen, OperatorTerminal terminal, Se
         return null;
     }
 
-    private async Task<string?> AskVoltage(double volts, string device, CancellationToken cancel)
+    private async Task<bool> AskVoltage(double volts, string device, CancellationToken cancel)
     {
         // Where a bare number may be a serial, a bar code could be the answer: it is asked for with its unit.
         string number = volts.ToString("0.###", CultureInfo.InvariantCulture);
@@ -71,13 +82,13 @@ internal sealed class BenchOperator(Screen screen, OperatorTerminal terminal, Se
             if (!MayBeSerial(typed))
             {
                 return double.TryParse(said, NumberStyles.Float, CultureInfo.InvariantCulture, out double v)
-                    && v == volts ? Environment.UserName : null;
+                    && v == volts;
             }
 
             Complain($"'{Screen.Printable(typed)}' has the form of a serial and is no answer; nothing is energised");
         }
 
-        return null;
+        return false;
     }
 
     private bool MayBeSerial(string text) => SerialForm.Check(text, sequence, "") is null;

@@ -18,7 +18,7 @@ internal sealed class Person(string? answer, Func<Task>? first = null) : IOperat
 
     public bool CanAsk { get; init; } = true;
 
-    public async Task<string?> Confirm(Plan plan, Closing closing, CancellationToken cancel)
+    public async Task<Confirmation?> Confirm(Plan plan, Closing closing, CancellationToken cancel)
     {
         Asked.Add(closing);
         if (first is not null)
@@ -26,7 +26,7 @@ internal sealed class Person(string? answer, Func<Task>? first = null) : IOperat
             await first().WaitAsync(cancel);
         }
 
-        return answer;
+        return answer is null ? null : new Confirmation(answer, CanAsk);
     }
 
     public Task<string?> WherePut(DeviceReport report, CancellationToken cancel)

@@ -82,6 +82,18 @@ internal sealed class Workplace : IDisposable
         role => role.Value.Dialect,
         role => Value(DialectReader.Read(Repository("sequences", "dialects", role.Value.Dialect + ".yaml"))));
 
+    /// <summary>The shipped dialects of a bench, the scope's without one of its operations.</summary>
+    public IReadOnlyDictionary<string, DialectFile> DialectsWithout(Bench bench, string operation)
+    {
+        string scope = bench.Roles["scope"].Dialect;
+        string path = File(scope + ".yaml");
+        System.IO.File.WriteAllLines(
+            path,
+            System.IO.File.ReadLines(Repository("sequences", "dialects", scope + ".yaml"))
+                .Where(line => !line.StartsWith($"  {operation}:", StringComparison.Ordinal)));
+        return new Dictionary<string, DialectFile>(Dialects(bench)) { [scope] = Value(DialectReader.Read(path)) };
+    }
+
     public RunRequest Request(Sequence sequence, Bench bench)
     {
         Planned planned = Planner.Plan(sequence, bench);
