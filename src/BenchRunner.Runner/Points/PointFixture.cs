@@ -154,23 +154,7 @@ public sealed class PointFixture(
     {
         long id = work.Evidence.AddCapture(capture);
         AnalysisResult result = analyse(record.Traces, work.Settings);
-        var context = new CaptureContext
-        {
-            Planned = state.Planned,
-            Sequence = work.Plan.Sequence,
-            Bench = work.Plan.Bench,
-            Set = state.Set,
-            Traces = record.Traces,
-            Previous = state.Previous,
-            CountBefore = state.Count,
-            CountAfter = record.Count,
-            StaleBefore = state.StaleInARow,
-            Analysis = result,
-            Voltmeter = capture.BusVoltage,
-            Zero = work.Zero,
-            Plate = plate,
-            ShownLonger = work.ShownLonger,
-        };
+        CaptureContext context = state.Context(work, record, result, capture.BusVoltage, plate);
         Verdict verdict = CaptureValidity.Judge(context);
         work.Evidence.AddVerdict(id, verdict, result.Train.OffCurrent, result.Train.BusBeforeOn1);
         work.Evidence.AddCaptureValues(id, result.Quantities);

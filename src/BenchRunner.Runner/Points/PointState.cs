@@ -1,6 +1,8 @@
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Devices;
+using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Runner.Points;
@@ -33,6 +35,31 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
 
     /// <summary>Whether the pulser must be given the train again before the next one.</summary>
     public bool TrainChanged { get; set; }
+
+    /// <summary>Everything that the judgement of a capture rests on.</summary>
+    /// <param name="work">The device's work: files, zero capture, width that the proving train showed.</param>
+    /// <param name="record">What the scope recorded.</param>
+    /// <param name="analysis">What the analysis found in it.</param>
+    /// <param name="voltmeter">Reading of the bank before the train, V.</param>
+    /// <param name="plate">Measured temperature of the plate, degC; null: not measured.</param>
+    public CaptureContext Context(
+        DeviceWork work, ScopeRecord record, AnalysisResult analysis, double? voltmeter, double? plate) => new()
+    {
+        Planned = Planned,
+        Sequence = work.Plan.Sequence,
+        Bench = work.Plan.Bench,
+        Set = Set,
+        Traces = record.Traces,
+        Previous = Previous,
+        CountBefore = Count,
+        CountAfter = record.Count,
+        StaleBefore = StaleInARow,
+        Analysis = analysis,
+        Voltmeter = voltmeter,
+        Zero = work.Zero,
+        Plate = plate,
+        ShownLonger = work.ShownLonger,
+    };
 
     /// <summary>Takes over what a capture asks of the next.</summary>
     public void Follow(ScopeRecord record, Verdict verdict)

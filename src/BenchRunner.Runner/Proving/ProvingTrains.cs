@@ -68,21 +68,7 @@ public sealed class ProvingTrains(DeviceWork work)
         long id = work.Evidence.AddCapture(new CaptureRow(
             name, number, at, record.Traces, voltmeter, plate, state.Set));
         AnalysisResult result = CaptureAnalysis.Of(record.Traces, work.Settings);
-        var context = new CaptureContext
-        {
-            Planned = state.Planned,
-            Sequence = work.Plan.Sequence,
-            Bench = work.Plan.Bench,
-            Set = state.Set,
-            Traces = record.Traces,
-            Previous = state.Previous,
-            CountBefore = state.Count,
-            CountAfter = record.Count,
-            StaleBefore = state.StaleInARow,
-            Analysis = result,
-            Voltmeter = voltmeter,
-            Zero = work.Zero,
-        };
+        CaptureContext context = state.Context(work, record, result, voltmeter, plate: null);
         Verdict verdict = ProvingJudge.Judge(context);
         work.Evidence.AddVerdict(id, verdict, result.Train.OffCurrent, result.Train.BusBeforeOn1);
         CaptureWords.Say(work.Events, $"{name} train {number}", verdict, result.Train.OffCurrent);
