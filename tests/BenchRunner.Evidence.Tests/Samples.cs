@@ -76,7 +76,11 @@ internal static class Samples
         [Trace(Channel.VdsLow, seed, count), Trace(Channel.IdLow, seed + 1, count)],
         600.25,
         23.5,
-        new TrainSet(8e-6, 6e-6, 3e-6, 18, -4));
+        new TrainSet(8e-6, 6e-6, 3e-6, 18, -4))
+    {
+        CountBefore = number + 40,
+        CountAfter = number + 41,
+    };
 
     public static HoldRow Hold(double? supplyCurrent = 1.2e-3, double? bound = 2e-3) => new(
         "rated", new DateTimeOffset(2026, 3, 2, 8, 0, 0, TimeSpan.Zero), 600, supplyCurrent, 599.8, 597.1, 0.1, 1.25e-3,

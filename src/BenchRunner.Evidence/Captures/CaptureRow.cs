@@ -19,4 +19,11 @@ public sealed record CaptureRow(
     IReadOnlyList<RawTrace> Traces,
     double? BusVoltage,
     double? Temperature,
-    TrainSet? Train);
+    TrainSet? Train)
+{
+    /// <summary>The scope's acquisition count before the train; null: not known.</summary>
+    public long? CountBefore { get; init; }
+
+    /// <summary>The scope's acquisition count that belongs to the traces; null: not known.</summary>
+    public long? CountAfter { get; init; }
+}

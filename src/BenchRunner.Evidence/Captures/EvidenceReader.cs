@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Security.Cryptography;
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Codecs;
 using BenchRunner.Evidence.Stores;
@@ -8,7 +9,7 @@ using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Evidence.Captures;
 
-/// <summary>Reads captures back, bit for bit; beside a writer too. One thread at a time.</summary>
+/// <summary>Reads captures and the files that a run followed back, bit for bit; beside a writer too. One thread at a time.</summary>
 public sealed class EvidenceReader : IDisposable
 {
     private readonly string _path;
@@ -36,11 +37,27 @@ public sealed class EvidenceReader : IDisposable
         const string sql = """
             select c.id, point.text, c.number, c.taken_at, c.bus_voltage, c.temperature,
               c.first_pulse, c.gap, c.second_pulse, c.gate_on, c.gate_off,
-              (select v.valid from verdict v where v.capture = c.id order by v.scoring desc limit 1)
+              (select v.valid from verdict v where v.capture = c.id order by v.scoring desc limit 1),
+              a.count_before, a.count_after
             from run r join capture c on c.run = r.id join word point on point.id = c.operating_point
+            left join acquisition a on a.capture = c.id
             where r.uid = ?1 order by c.ordinal
             """;
         return Guarded(() => _session.Read(sql, Capture, run));
+    }
+
+    /// <summary>The files that a run followed, byte for byte: its sequence, its bench, its dialects.</summary>
+    /// <param name="run">Identity of the run.</param>
+    /// <returns>The files, ordered by role and path; none where the run is not in the file.</returns>
+    /// <exception cref="EvidenceException">A file was altered, or the evidence cannot be read.</exception>
+    public IReadOnlyList<SourceFile> Files(string run)
+    {
+        const string sql = """
+            select f.role, f.path, c.bytes, c.sha256
+            from run r join run_file f on f.run = r.id join content c on c.id = f.content
+            where r.uid = ?1 order by f.role, f.path
+            """;
+        return Guarded(() => _session.Read(sql, StoredFile, run));
     }
 
     /// <summary>The traces of a capture as the scope gave them, in the order in which they were stored.</summary>
@@ -74,6 +91,15 @@ public sealed class EvidenceReader : IDisposable
     /// <summary>Reads by a session that is open already and stays so.</summary>
     internal static EvidenceReader Over(string path, SqlSession session) => new(path, session, owned: false);
 
+    private SourceFile StoredFile(SqliteDataReader row)
+    {
+        var file = new SourceFile(row.GetString(0), row.GetString(1), row.GetFieldValue<byte[]>(2));
+        return file.Sha256 == row.GetString(3)
+            ? file
+            : throw new EvidenceException(
+                $"{_path}: {file.Role} {file.Path} is not what was stored; audit the file.");
+    }
+
     private static StoredCapture Capture(SqliteDataReader row) => new(
         row.GetInt64(0),
         row.GetString(1),
@@ -84,7 +110,11 @@ public sealed class EvidenceReader : IDisposable
         row.IsDBNull(6)
             ? null
             : new TrainSet(row.GetDouble(6), row.GetDouble(7), row.GetDouble(8), row.GetDouble(9), row.GetDouble(10)),
-        row.IsDBNull(11) ? null : row.GetInt64(11) != 0);
+        row.IsDBNull(11) ? null : row.GetInt64(11) != 0)
+    {
+        CountBefore = row.IsDBNull(12) ? null : row.GetInt64(12),
+        CountAfter = row.IsDBNull(13) ? null : row.GetInt64(13),
+    };
 
     private static double? Real(SqliteDataReader row, int column) =>
         row.IsDBNull(column) ? null : row.GetDouble(column);

@@ -1,4 +1,5 @@
 using BenchRunner.Acceptance.Validity;
+
 namespace BenchRunner.Evidence.Captures;
 
 /// <summary>A capture as the evidence holds it, without its traces.</summary>
@@ -19,4 +20,11 @@ public sealed record StoredCapture(
     double? BusVoltage,
     double? Temperature,
     TrainSet? Train,
-    bool? Valid);
+    bool? Valid)
+{
+    /// <summary>The scope's acquisition count before the train; null: not known.</summary>
+    public long? CountBefore { get; init; }
+
+    /// <summary>The scope's acquisition count that belongs to the traces; null: not known.</summary>
+    public long? CountAfter { get; init; }
+}

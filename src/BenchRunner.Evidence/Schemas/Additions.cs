@@ -2,8 +2,8 @@ using BenchRunner.Evidence.Captures;
 
 namespace BenchRunner.Evidence.Schemas;
 
-/// <summary>What format 2 adds to format 1: leakage holds, and entries with a seal of their own for what comes after a
-/// run. Nothing of format 1 is altered, so that its runs keep their seals.</summary>
+/// <summary>What format 2 adds to format 1: leakage holds, the scope's counts of a capture, and entries with a seal of
+/// their own for what comes after a run. Nothing of format 1 is altered, so that its runs keep their seals.</summary>
 /// <remarks>An entry names its seal by origin and ordinal, since the seals' table has no column for entries.</remarks>
 internal static class Additions
 {
@@ -23,6 +23,12 @@ internal static class Additions
           conforms integer not null check (conforms in (0, 1)),
           primary key (run, ordinal)
         ) strict, without rowid;
+
+        create table acquisition (
+          capture integer primary key references capture (id),
+          count_before integer,
+          count_after integer
+        ) strict;
 
         create table entry (
           id integer primary key,
@@ -68,6 +74,14 @@ internal static class Additions
         left join word lot on lot.id = r.lot
         join word point on point.id = h.operating_point;
 
+        create view acquisitions as
+        select r.uid as run, r.device, point.text as operating_point, c.number as capture, a.count_before, a.count_after,
+          r.simulated
+        from acquisition a
+        join capture c on c.id = a.capture
+        join run r on r.id = c.run
+        join word point on point.id = c.operating_point;
+
         create view notes as
         select e.at, n.device, lot.text as lot, n.kind, e.author, n.because, e.uid as entry
         from note n
@@ -102,6 +116,7 @@ internal static class Additions
     public static IReadOnlyList<(string Table, string[][] Keys)> AppendOnly { get; } =
     [
         ("hold", [["run", "ordinal"]]),
+        ("acquisition", [["capture"]]),
         ("entry", [["id"], ["uid"], ["origin", "ordinal"]]),
         ("note", [["entry"]]),
         ("placement", [["entry"]]),
@@ -110,6 +125,7 @@ internal static class Additions
     /// <summary>Statements that make of a file of format 1 one of format 2.</summary>
     public static string Sql { get; } = Tables + Indexes + Triggers.Keeping(AppendOnly)
         + Triggers.Ending("hold", "exists (select 1 from seal where kind = 'run' and run = new.run)", "run")
+        + Triggers.Ending("acquisition", Triggers.CaptureIsSealed, "run")
         + Triggers.Ending(
             "entry", "exists (select 1 from seal where origin = new.origin and ordinal = new.ordinal)", "entry")
         + Triggers.Ending("note", EntryIsSealed, "entry")

@@ -10,6 +10,10 @@ namespace BenchRunner.Evidence.Schemas;
 /// </remarks>
 internal static class Triggers
 {
+    /// <summary>Whether the run of a new row's capture is sealed.</summary>
+    public const string CaptureIsSealed =
+        "exists (select 1 from capture c join seal s on s.run = c.run and s.kind = 'run' where c.id = new.capture)";
+
     /// <summary>Statements that make the triggers.</summary>
     public static string Sql { get; } = Build();
 
@@ -38,16 +42,14 @@ internal static class Triggers
     private static string Build()
     {
         const string sealedRun = "exists (select 1 from seal where kind = 'run' and run = new.run)";
-        const string sealedCapture =
-            "exists (select 1 from capture c join seal s on s.run = c.run and s.kind = 'run' where c.id = new.capture)";
         StringBuilder sql = new(Keeping(Tables.AppendOnly));
         foreach ((string table, string closed) in ((string, string)[])
             [
                 ("run_file", sealedRun), ("instrument", sealedRun), ("event", sealedRun), ("capture", sealedRun),
                 ("decision", "new.scoring = 0 and " + sealedRun), ("measurement", "new.scoring = 0 and " + sealedRun),
-                ("trace", sealedCapture), ("payload", sealedCapture),
-                ("verdict", "new.scoring = 0 and " + sealedCapture),
-                ("capture_value", "new.scoring = 0 and " + sealedCapture),
+                ("trace", CaptureIsSealed), ("payload", CaptureIsSealed),
+                ("verdict", "new.scoring = 0 and " + CaptureIsSealed),
+                ("capture_value", "new.scoring = 0 and " + CaptureIsSealed),
             ])
         {
             sql.Append(Ending(table, closed, "run"));

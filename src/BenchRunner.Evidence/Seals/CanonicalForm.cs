@@ -67,6 +67,10 @@ internal static class CanonicalForm
               h.seconds, h.leakage, h.bound, h.conforms
             from hold h join word point on point.id = h.operating_point where h.run = ?1 order by h.ordinal
             """),
+        ("acquisition", """
+            select c.ordinal, a.count_before, a.count_after
+            from capture c join acquisition a on a.capture = c.id where c.run = ?1 order by c.ordinal
+            """),
         ("measurement", """
             select point.text, quantity.text, definition.text, lot.text, m.value, unit.text, m.standard_uncertainty,
               m.expanded_uncertainty, m.coverage_factor, m.degrees_of_freedom, m.captures, m.lower_limit,

@@ -83,6 +83,13 @@ internal static class RunRows
         }
 
         to.Execute("insert into payload (capture, bytes) values (?1, ?2)", capture, payload.Bytes);
+        if (row.CountBefore is not null || row.CountAfter is not null)
+        {
+            to.Execute(
+                "insert into acquisition (capture, count_before, count_after) values (?1, ?2, ?3)",
+                capture, row.CountBefore, row.CountAfter);
+        }
+
         return capture;
     }
 

@@ -146,7 +146,11 @@ public sealed class PointFixture(
         state.LostInARow = 0;
         var capture = new CaptureRow(
             state.Planned.Point.Name, state.Taken.Taken, at, record.Traces, voltmeter,
-            plate ?? work.Plan.Bench.Ambient, state.Set);
+            plate ?? work.Plan.Bench.Ambient, state.Set)
+        {
+            CountBefore = state.Count,
+            CountAfter = record.Count,
+        };
         return Task.Run(() => StoreAndJudge(capture, record, plate, state), CancellationToken.None);
     }
 

@@ -66,7 +66,11 @@ public sealed class ProvingTrains(DeviceWork work)
         string name = state.Planned.Point.Name;
         double plate = await work.Plate.Read(cancel);
         long id = work.Evidence.AddCapture(new CaptureRow(
-            name, number, at, record.Traces, voltmeter, plate, state.Set));
+            name, number, at, record.Traces, voltmeter, plate, state.Set)
+        {
+            CountBefore = state.Count,
+            CountAfter = record.Count,
+        });
         AnalysisResult result = CaptureAnalysis.Of(record.Traces, work.Settings);
         CaptureContext context = state.Context(work, record, result, voltmeter, plate: null);
         Verdict verdict = ProvingJudge.Judge(context);

@@ -1,3 +1,4 @@
+using System.Text;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;
@@ -23,6 +24,7 @@ public sealed class EvidenceReaderTests : IDisposable
             ],
             Train = null,
             BusVoltage = null,
+            CountAfter = null,
         };
         string run;
         using (EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock()))
@@ -36,10 +38,20 @@ public sealed class EvidenceReaderTests : IDisposable
         using EvidenceReader reader = EvidenceReader.Open(_folder.File);
         IReadOnlyList<StoredCapture> captures = reader.Captures(run);
         Assert.Equal(
-            new StoredCapture(captures[0].Id, "zero", 3, given.TakenAt, null, 23.5, null, null), captures[0]);
+            new StoredCapture(captures[0].Id, "zero", 3, given.TakenAt, null, 23.5, null, null)
+            {
+                CountBefore = given.CountBefore,
+                CountAfter = null,
+            },
+            captures[0]);
+        Assert.Equal((Samples.Capture(1).CountBefore, Samples.Capture(1).CountAfter),
+            (captures[1].CountBefore, captures[1].CountAfter));
         Assert.Equal(Samples.Capture(1).Train, captures[1].Train);
         Assert.False(captures[1].Valid);
 
+        Assert.Equal(
+            [("bench", "fake.yaml", "bench: fake\n"), ("sequence", "incoming.yaml", "format: 1\n")],
+            reader.Files(run).Select(file => (file.Role, file.Path, Encoding.UTF8.GetString(file.Bytes))));
         IReadOnlyList<RawTrace> traces = reader.ReadTraces(captures[0].Id);
         Assert.Equal(given.Traces.Count, traces.Count);
         foreach ((RawTrace wanted, RawTrace found) in given.Traces.Zip(traces))
@@ -57,6 +69,7 @@ public sealed class EvidenceReaderTests : IDisposable
         EvidenceStore.Open(_folder.File, Samples.Clock()).Dispose();
         using EvidenceReader reader = EvidenceReader.Open(_folder.File);
         Assert.Empty(reader.Captures("none"));
+        Assert.Empty(reader.Files("none"));
         Exception unknown = Assert.Throws<EvidenceException>(() => reader.ReadTraces(7));
         Assert.Contains("capture 7 has no traces", unknown.Message, StringComparison.Ordinal);
     }

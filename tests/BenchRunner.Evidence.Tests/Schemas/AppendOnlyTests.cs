@@ -25,7 +25,7 @@ public sealed class AppendOnlyTests : IDisposable
     public static TheoryData<string> Tables { get; } =
     [
         "origin", "word", "content", "run", "run_file", "instrument", "event", "capture", "trace", "payload", "verdict",
-        "capture_value", "decision", "measurement", "seal", "hold", "entry", "note", "placement",
+        "capture_value", "decision", "measurement", "seal", "hold", "acquisition", "entry", "note", "placement",
     ];
 
     public void Dispose() => _folder.Dispose();

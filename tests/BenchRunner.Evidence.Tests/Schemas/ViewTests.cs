@@ -40,6 +40,7 @@ public sealed class ViewTests : IDisposable
             "run, device, lot, operating_point, at, bus_voltage, supply_current, first_voltage, last_voltage, " +
             "seconds, leakage, bound, conforms, simulated"
         },
+        { "acquisitions", "run, device, operating_point, capture, count_before, count_after, simulated" },
         { "notes", "at, device, lot, kind, author, because, entry" },
         { "placements", "at, run, device, lot, place, author, entry" },
         { "companions", "companion, runs, captures_taken, proving_captures, last_started_at" },

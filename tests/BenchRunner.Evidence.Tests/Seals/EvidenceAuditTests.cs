@@ -54,6 +54,8 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
         { "update hold set leakage = 1e-6 where run = 2", "seal" },
         { "update hold set conforms = 0 where run = 1", "seal" },
         { "delete from hold where run = 3", "seal" },
+        { "update acquisition set count_after = 7 where capture = 2", "seal" },
+        { "delete from acquisition where capture = 6", "seal" },
         { "update note set kind = 'scrap'", "seal" },
         { "update note set because = 'none'", "seal" },
         { "update entry set author = 'A. Other'", "seal" },
@@ -116,6 +118,7 @@ public sealed class EvidenceAuditTests : IClassFixture<ThreeRuns>, IDisposable
             """
             pragma foreign_keys = off;
             delete from trace where capture > 6; delete from payload where capture > 6;
+            delete from acquisition where capture > 6;
             delete from verdict where capture > 6; delete from capture_value where capture > 6;
             delete from capture where run = 3; delete from measurement where run = 3;
             delete from decision where run = 3; delete from instrument where run = 3;

@@ -21,6 +21,7 @@ FORM = [  # table, columns in order; *x is a text kept in word, @x the SHA-256 o
     ("capture_value", "capture *quantity *definition value *unit from_time to_time reason"),
     ("hold", "ordinal *operating_point at bus_voltage supply_current first_voltage last_voltage seconds leakage bound "
              "conforms"),
+    ("acquisition", "capture count_before count_after"),
     ("measurement", "*operating_point *quantity *definition *lot value *unit standard_uncertainty "
                     "expanded_uncertainty coverage_factor degrees_of_freedom captures lower_limit upper_limit "
                     "conformity reason"),
@@ -28,8 +29,8 @@ FORM = [  # table, columns in order; *x is a text kept in word, @x the SHA-256 o
                  "*algorithm *platform scored_at"),
 ]
 ENTRY_FORM = [("entry", "uid origin kind at author"), ("note", "device *lot kind because"), ("placement", "run place")]
-ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3, "hold": 1,
-         "measurement": 3}
+ORDER = {"run_file": 3, "instrument": 1, "event": 1, "capture": 1, "trace": 2, "verdict": 1, "capture_value": 3,
+         "hold": 1, "acquisition": 1, "measurement": 3}
 
 
 def item(value):
