@@ -152,6 +152,43 @@ public sealed class ShiftTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
+    public async Task After_a_trip_the_device_is_put_away_once_the_bus_is_down_and_who_waits_is_named()
+    {
+        using Started run = await OnATerminal(
+            "--device W1200-0001 --device W1200-0002 --device W1200-0003", "W1200-0001", "interlock-opens@fire:3");
+        await run.Next("W1200-0001: Type the highest bus voltage");
+        await run.Type("400" + Enter);
+        await run.Next("below 60 V DC");
+        await run.Next("W1200-0001 is stopped: type where it was put");
+        await run.Type("quarantine shelf" + Enter);
+        await run.Next("W1200-0001 was put: quarantine shelf");
+        await run.Next("W1200-0002: got no run");
+        await run.Next("W1200-0003: got no run");
+        (await run.End()).Expect(4);
+
+        Assert.Equal("quarantine shelf", _place.Ask<string>("select place from placements", Evidence));
+        Assert.Equal(1, _place.Ask<long>("select count(*) from device_outcomes", Evidence));
+    }
+
+    [Fact]
+    [Trait("kind", "slow")]
+    public async Task A_bus_that_is_not_proved_down_has_nobody_asked_to_take_the_device_out()
+    {
+        using Started run = await OnATerminal(
+            "--device W1200-0001 --device W1200-0002", "W1200-0001", "bus-stays-up");
+        await run.Next("W1200-0001: Type the highest bus voltage");
+        await run.Type("400" + Enter);
+        await run.Next("THE BUS IS NOT PROVED DOWN");
+        await run.Next("it stays in the closed enclosure");
+        await run.Next("W1200-0002: got no run");
+        Finished ended = (await run.End()).Expect(4);
+
+        Assert.DoesNotContain("type where it was put", ended.Output, StringComparison.Ordinal);
+        Assert.Equal(0, _place.Ask<long>("select count(*) from placements", Evidence));
+    }
+
+    [Fact]
     public async Task Without_a_terminal_a_name_confirms_one_closing_and_several_devices_are_refused()
     {
         Assert.SkipUnless(OperatingSystem.IsLinux(), "setsid, which takes the terminal away, is Linux's");
@@ -177,11 +214,13 @@ public sealed class ShiftTests : IDisposable
     }
 
     /// <summary>The run under <c>script</c>, whose terminal is also its standard input.</summary>
-    private async Task<Started> OnATerminal(string devices, string inserted = "W1200-0001")
+    private async Task<Started> OnATerminal(
+        string devices, string inserted = "W1200-0001", string? fault = null)
     {
         Assert.SkipUnless(OperatingSystem.IsLinux() && File.Exists("/usr/bin/script"), "script gives the run a "
             + "terminal; it is Linux's");
-        _lab = await LabBench.Start(_place, "--exchange", "by-hand", "--device", inserted);
+        string[] faults = fault is null ? [] : ["--fault", fault];
+        _lab = await LabBench.Start(_place, ["--exchange", "by-hand", "--device", inserted, .. faults]);
         string command = $"exec env --default-signal=INT {Workplace.Program} run {Light()} --bench {_lab.File} "
             + $"--operator op {devices}";
         return _place.Start("/usr/bin/script", ["--quiet", "--flush", "--return", "--command", command, "/dev/null"]);

@@ -137,7 +137,7 @@ public sealed class RunSession
             _events.Say(
                 Severity.Alarm, "latched",
                 $"the bench is latched ({_latch.Path}); find the cause, then: benchrunner bench clear --bench "
-                    + $"{Bench.Source.Path}");
+                    + $"{Bench.Source.Path} --by NAME --because TEXT");
         }
         catch (Exception failure) when (failure is IOException or UnauthorizedAccessException)
         {

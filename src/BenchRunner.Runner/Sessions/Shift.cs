@@ -49,7 +49,7 @@ internal sealed class Shift(
             while (true)
             {
                 Confirmation confirmed = await arming.Confirm(plan, device, open.IsSimulated, stop.Token)
-                    ?? throw new RefusedException(RefusalKind.Input, "not confirmed: nothing was energised");
+                    ?? throw new RefusedException(RefusalKind.Input, $"{device} was not confirmed: nothing was energised for it");
                 DeviceReport report = await One(device, confirmed, operatorStop);
                 int openings = _enclosure.Openings;
                 _reports.Add(report);
@@ -121,7 +121,7 @@ internal sealed class Shift(
             events.Say(
                 confirmed.Asked ? Severity.Information : Severity.Warning,
                 confirmed.Asked ? "degauss-asked" : "degauss-not-asked",
-                $"the clamp of {string.Join(", ", clamps)} is degaussed by hand: "
+                $"the scope cannot degauss the clamp of {string.Join(", ", clamps)}: "
                     + (confirmed.Asked ? "the operator was asked to" : "nobody was asked to; its zero may be off"));
         }
     }

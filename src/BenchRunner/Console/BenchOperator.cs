@@ -38,7 +38,7 @@ internal sealed class BenchOperator(Screen screen, OperatorTerminal terminal, Se
         if (closing.Clamps.Count > 0)
         {
             screen.Line(screen.Palette.Open(
-                $"  ! {string.Join(", ", closing.Clamps)}: degauss the clamp with its own button now, then answer"));
+                $"  ! {string.Join(", ", closing.Clamps)}: press the clamp's degauss button before you answer"));
         }
 
         return await AskVoltage(plan.Points.Max(point => point.Point.BusVoltage), closing.Device, cancel)

@@ -12,6 +12,7 @@ namespace BenchRunner.Console;
 internal sealed class ProgressLog(Screen screen) : IRunSink
 {
     private const string Trip = "trip";
+    private const string SafeState = "safe-state";
 
     public void Receive(BenchEvent happened)
     {
@@ -24,6 +25,12 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
         if (happened.Kind == Trip)
         {
             screen.Bell();
+        }
+
+        if (happened.Kind == Trip || happened.Source == SafeState)
+        {
+            // What the last capture saw of bus and interlock is not true any more.
+            screen.EndLive();
         }
 
         string at = happened.At.ToLocalTime().ToString("HH:mm:ss.fff", CultureInfo.InvariantCulture);

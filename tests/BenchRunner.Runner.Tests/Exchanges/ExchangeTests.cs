@@ -66,6 +66,43 @@ public sealed class ExchangeTests : IDisposable
         Assert.Equal(0, _heard.Count("device-exchanged"));
     }
 
+    [Fact]
+    public async Task Who_lets_an_exchange_wait_is_reminded_each_minute_of_what_is_waited_for()
+    {
+        Bench bench = _place.Bench();
+        await using FakeBenchProcess fake = await FakeBenchProcess.Start(
+            bench, Workplace.Device, null, TimeProvider.System, Cancel);
+        await using OpenBench open = await Open(bench, fake);
+        await using SafetySupervisor supervisor = await Watching(bench, open);
+        var time = new FakeTimeProvider();
+        var enclosure = new Enclosure(supervisor, time);
+        async Task Pass(TimeSpan step, Func<bool> until) => await Eventually.True(
+            () =>
+            {
+                time.Advance(step);
+                return until();
+            },
+            "what is waited for");
+        string[] Reminders() =>
+            [.. _heard.Events.Where(said => said.Kind == "exchange-waits").Select(said => said.Message)];
+
+        Task exchange = new ByHand(enclosure, Events(time), time).Exchange(
+            Workplace.Device, "W1200-0002", enclosure.Openings, Cancel);
+        time.Advance(TimeSpan.FromSeconds(59));
+        Assert.Empty(Reminders());
+        await Pass(TimeSpan.FromSeconds(1), () => Reminders().Length == 2);
+        Assert.All(Reminders(), said => Assert.Contains("not opened yet", said, StringComparison.Ordinal));
+
+        await fake.Do("open", Cancel);
+        await Pass(TimeSpan.FromMilliseconds(20), () => _heard.Count("enclosure-open") == 1);
+        await Pass(TimeSpan.FromSeconds(1), () => Reminders()[^1].Contains("not closed yet", StringComparison.Ordinal));
+        Assert.False(exchange.IsCompleted);
+        await fake.Do("close", Cancel);
+        await Pass(TimeSpan.FromMilliseconds(20), () => exchange.IsCompleted);
+        await exchange;
+        Assert.Equal(1, _heard.Count("device-exchanged"));
+    }
+
     private EventSource Events(TimeProvider time) => new("runner", _heard, time);
 
     private async Task<SafetySupervisor> Watching(Bench bench, OpenBench open)
