@@ -36,6 +36,7 @@ public sealed class EndingTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_killed_run_leaves_a_file_that_opens_says_so_and_holds_every_announced_capture()
     {
         int announced;
@@ -97,6 +98,7 @@ public sealed class EndingTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_bus_that_is_not_proved_down_latches_the_bench()
     {
         string[] run = await OtherBench("bus-stays-up");
@@ -108,6 +110,7 @@ public sealed class EndingTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_second_run_on_one_bench_is_refused_and_told_who_holds_it()
     {
         string[] run = await OtherBench();

@@ -16,8 +16,13 @@ public sealed class FaultTests : IDisposable
     [InlineData("emergency-stop", 4, "stopped", "emergency stop")]
     [InlineData("supply-clips", 5, "stopped", "taken as 350")]
     [InlineData("over-voltage-trips", 4, "stopped", "over-voltage protection")]
-    [InlineData("silent-supply", 4, "stopped", "no sign of life")]
-    [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
+    [InlineData("silent-supply", 4, "stopped", "no sign of life", Traits = new[] { "kind", "slow" })]
+    [InlineData(
+        "fire-unanswered", 4, "stopped", "whether a train was fired is unknown",
+        Traits = new[] { "kind", "slow" })]
+    [InlineData(
+        "probe-factor-changes", 4, "stopped", "the attenuation of id_low (input 3) is 10",
+        Traits = new[] { "kind", "slow" })]
     public async Task A_fault_that_ends_the_run_leaves_the_bus_down(
         string fault, int exitCode, string outcome, string reason)
     {
@@ -61,6 +66,7 @@ public sealed class FaultTests : IDisposable
     [Theory]
     [InlineData("late-reply")]
     [InlineData("error-queue-full")]
+    [Trait("kind", "slow")]
     public async Task A_fault_that_can_be_mended_changes_no_value(string fault)
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001", "--evidence", "sound.db")).Expect(0);
@@ -73,6 +79,7 @@ public sealed class FaultTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_bus_that_stays_up_is_shouted_and_never_called_down()
     {
         Finished run = (await Run("bus-stays-up")).Expect(4);

@@ -11,6 +11,7 @@ public sealed class PopulationTests : IDisposable
     public void Dispose() => _place.Dispose();
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_device_found_faulty_below_60_V_is_taken_out_and_the_day_goes_on()
     {
         // By `FakeBench devices`: shorted, open below, open above; then a sound one.
@@ -44,6 +45,7 @@ public sealed class PopulationTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_device_that_dies_at_its_last_turn_off_is_rejected_and_its_values_say_so()
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-9019")).Expect(1);

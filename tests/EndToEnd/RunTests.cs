@@ -22,6 +22,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_pipe_gets_no_control_codes()
     {
         Finished run = (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
@@ -80,6 +81,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task One_seed_gives_the_same_traces_and_the_same_decisions()
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0002", "--evidence", "one.db")).Expect(0);
@@ -96,6 +98,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task Another_seed_gives_other_traces()
     {
         string bench = _place.FakeBenchFile("{ seed: 2, pace: 5 }");
@@ -110,6 +113,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task Several_devices_are_exchanged_through_an_enclosure_seen_open_and_closed()
     {
         Finished run = (await _place.Run(
@@ -149,6 +153,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task Serials_come_from_standard_input_and_a_wrong_one_is_said_and_skipped()
     {
         using Started run = _place.Start("run", Workplace.Sequence, "--device", "-");
@@ -162,6 +167,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_device_with_a_slow_diode_is_rejected_for_its_recovery()
     {
         // W1200-9001 is listed by `FakeBench devices` with too much recovered charge.
@@ -174,6 +180,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_device_decided_in_its_lot_is_refused_without_a_reason()
     {
         string[] run = ["run", Workplace.Sequence, "--device", "W1200-0001", "--lot", "L-7"];

@@ -20,6 +20,22 @@ public sealed class ShiftTests : IDisposable
     }
 
     [Fact]
+    public async Task Two_devices_are_confirmed_one_by_one_and_exchanged_between()
+    {
+        using Started run = await OnATerminal("--device W1200-0001 --device W1200-0002");
+        await run.Next("W1200-0001: Type the highest bus voltage");
+        await run.Type("400" + Enter);
+        await Exchange(run, "W1200-0001", "W1200-0002");
+        await run.Next("W1200-0002: Type the highest bus voltage");
+        await run.Type("400" + Enter);
+        (await run.End()).Expect(0);
+
+        Assert.Equal(
+            "W1200-0001 W1200-0002",
+            _place.Ask<string>("select group_concat(device, ' ') from device_outcomes where not simulated", Evidence));
+    }
+
+    [Fact]
     [Trait("kind", "slow")]
     public async Task Twelve_devices_are_scanned_confirmed_and_put_away_at_one_terminal()
     {

@@ -49,7 +49,8 @@ internal sealed class Shift(
             while (true)
             {
                 Confirmation confirmed = await arming.Confirm(plan, device, open.IsSimulated, stop.Token)
-                    ?? throw new RefusedException(RefusalKind.Input, $"{device} was not confirmed: nothing was energised for it");
+                    ?? throw new RefusedException(
+                        RefusalKind.Input, $"{device} was not confirmed: nothing was energised for it");
                 DeviceReport report = await One(device, confirmed, operatorStop);
                 int openings = _enclosure.Openings;
                 _reports.Add(report);
