@@ -32,8 +32,7 @@ namespace BenchRunner.Evidence.Stores;
 /// there, or torn; a page that was durable stays as it was, unless the seal says otherwise. A lock of the file system
 /// dies with its process. The file does not lie on a network share.</para>
 /// <para>States: open, then failed (for good) or closed. A run: begun, then ended; a run that is begun when the file is
-/// opened is ended as <c>stopped</c>.</para>
-/// <para>Thread-safe.</para>
+/// opened is ended as <c>stopped</c>. Thread-safe.</para>
 /// </remarks>
 public sealed class EvidenceStore : IDisposable
 {
@@ -167,17 +166,10 @@ public sealed class EvidenceStore : IDisposable
     public SealedEntry AddPlacement(Placement placement)
     {
         ArgumentNullException.ThrowIfNull(placement);
-        if (Array.Exists(
-            (string[])[placement.Place, placement.By],
-            text => string.IsNullOrWhiteSpace(text) || text.Length > Placement.LongestText))
-        {
-            throw new ArgumentException("A placement says where and by whom, briefly.", nameof(placement));
-        }
-
         lock (_gate)
         {
-            return Guarded(() => _session.Number("select count(*) from run where uid = ?1", placement.Run)) == 0
-                ? throw new ArgumentException($"Run {placement.Run} is not in the file.", nameof(placement))
+            return Guarded(() => PlacementRules.Refusal(_session, placement)) is { } refusal
+                ? throw new ArgumentException(refusal, nameof(placement))
                 : AddEntry(
                     EntryRows.PlacementKind, placement.By, (to, entry) => EntryRows.Placement(to, entry, placement));
         }

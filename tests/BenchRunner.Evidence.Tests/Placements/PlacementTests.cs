@@ -31,6 +31,28 @@ public sealed class PlacementTests : IDisposable
     }
 
     [Theory]
+    [InlineData("update placement set place = 'green bin'")]
+    [InlineData("update placement set run = (select max(id) from run)")]
+    [InlineData("delete from placement")]
+    [InlineData("update entry set author = 'A. Other' where kind = 'placement'")]
+    public void A_placement_that_was_altered_by_hand_is_found(string sql)
+    {
+        using (EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock()))
+        {
+            string run = Samples.WholeRun(store, Samples.Header(), Samples.Decision(Outcome.Rejected));
+            Samples.WholeRun(store, Samples.Header("W1200-0002"));
+            store.AddPlacement(new Placement(run, "red bin 3", "K. Weber"));
+        }
+
+        List<object?[]> triggers = _folder.Rows("select name, sql from sqlite_schema where type = 'trigger'");
+        _folder.Write(string.Concat(triggers.Select(trigger => $"drop trigger {trigger[0]};")) + sql + ";"
+            + string.Concat(triggers.Select(trigger => $"{trigger[1]};")));
+
+        Assert.Equal("seal", Assert.Single(
+            EvidenceAudit.Verify(_folder.File, null, TestContext.Current.CancellationToken).Problems).What);
+    }
+
+    [Theory]
     [InlineData("no-such-run", "bin", "K. Weber")]
     [InlineData(null, " ", "K. Weber")]
     [InlineData(null, "bin", "")]
