@@ -1,11 +1,14 @@
 using System.Globalization;
 using System.Text.Encodings.Web;
 using System.Text.Json;
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Queries;
 using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Sessions;
 using BenchRunner.Runner.Tests.Workplaces;
 using BenchRunner.Signals.Traces;
 
@@ -74,10 +77,30 @@ public sealed class RecomputationTests : IDisposable
             again.Decision.Values.Select(value => value.Value), blind.Decision.Values.Select(value => value.Value));
     }
 
-    /// <summary>Runs a device, computes the run again and holds all that is stored against it.</summary>
-    private async Task<Recomputed> RunAndCompute(string fault)
+    [Fact]
+    [Trait("kind", "slow")]
+    public async Task A_high_device_is_computed_again_and_its_companion_counts_every_capture_of_stopped_runs_too()
     {
-        DeviceReport report = await Run(fault);
+        DeviceReport whole = await RunHigh("W1200-0011", "");
+        Recomputed again = Compute(whole);
+        Assert.Equal(Outcome.Accepted, again.Decision.Outcome);
+
+        DeviceReport stopped = await RunHigh("W1200-0012", "emergency-stop@fire:3");
+        Assert.Equal(Outcome.Stopped, stopped.Decision.Outcome);
+        Assert.InRange(stopped.CapturesTaken, 1, 3);
+
+        IReadOnlyList<object?> companion = Assert.Single(QueryRunner.Run(
+            _place.Evidence, "companions", new Dictionary<string, string> { ["companion"] = "W1200-0077" },
+            TestContext.Current.CancellationToken).Rows);
+        Assert.Equal(["W1200-0077", 2L, whole.CapturesTaken + CapturesOf(stopped), 3L], companion.Take(4));
+    }
+
+    /// <summary>Runs a device, computes the run again and holds all that is stored against it.</summary>
+    private async Task<Recomputed> RunAndCompute(string fault) => Compute(await Run(fault));
+
+    /// <summary>Computes the file's only run again and holds all that is stored against it.</summary>
+    private Recomputed Compute(DeviceReport report)
+    {
 
         using EvidenceReader evidence = EvidenceReader.Open(_place.Evidence);
         Recomputed again = Recomputed.Of(evidence, report.Run);
@@ -136,6 +159,37 @@ public sealed class RecomputationTests : IDisposable
         ];
         return Assert.Single((await _place.Run(sequence, _place.Bench(edits), _heard)).Devices);
     }
+
+    /// <summary>A device in the high place, beside a companion, by the shipped files with fewer captures.</summary>
+    private async Task<DeviceReport> RunHigh(string device, string fault)
+    {
+        string sequence = _place.File("high.yaml");
+        string bench = _place.File("negative-load.yaml");
+        const string captures = "captures: { valid: 5, at-most: 20 }";
+        const string fake = "fake: { seed: 1, pace: 5 }";
+        Copy(Workplace.Repository("sequences", "winch-drive-high.yaml"), sequence, captures, "captures: { valid: 2, at-most: 8 }");
+        Copy(Workplace.Repository("sequences", "benches", "negative-load.yaml"), bench, fake,
+            fault.Length == 0 ? fake : $"fake: {{ seed: 1, pace: 5, faults: ['{fault}'] }}");
+        RunRequest request = _place.Request(
+            Workplace.Value(SequenceFile.Read(sequence)), Workplace.Value(BenchFile.Read(bench))) with
+        {
+            Companion = "W1200-0077",
+        };
+        return Assert.Single((await new RunSession(request, _heard, new Person("simulated"), TimeProvider.System)
+            .Run(new Serials(device), TestContext.Current.CancellationToken)).Devices);
+    }
+
+    private static void Copy(string from, string to, string old, string replacement)
+    {
+        string text = File.ReadAllText(from);
+        Assert.Contains(old, text, StringComparison.Ordinal);
+        File.WriteAllText(to, text.Replace(old, replacement, StringComparison.Ordinal));
+    }
+
+    /// <summary>Captures in the file: a train that was stopped under way may have left none.</summary>
+    private long CapturesOf(DeviceReport report) => (long)Assert.Single(QueryRunner.RunSql(
+        _place.Evidence, $"select captures_taken from device_outcomes where run = '{report.Run}'",
+        TestContext.Current.CancellationToken).Rows)[0]!;
 
     private IEnumerable<string> Rows(string sql) =>
         QueryRunner.RunSql(_place.Evidence, sql, TestContext.Current.CancellationToken).Rows

@@ -136,14 +136,14 @@ internal sealed class Workplace : IDisposable
 
         """;
 
-    private static T Value<T>(Read<T> read)
+    public static T Value<T>(Read<T> read)
         where T : class
     {
         Assert.Empty(read.Problems.Select(problem => problem.ToString()));
         return read.Value!;
     }
 
-    private static string Repository(params string[] parts)
+    public static string Repository(params string[] parts)
     {
         DirectoryInfo? folder = new(AppContext.BaseDirectory);
         while (folder is not null && !System.IO.File.Exists(Path.Combine(folder.FullName, "BenchRunner.sln")))
