@@ -44,22 +44,22 @@ internal sealed class PointState(PlannedPoint planned, PointTaken taken)
     /// <param name="plate">Measured temperature of the plate, degC; null: not measured.</param>
     public CaptureContext Context(
         DeviceWork work, ScopeRecord record, AnalysisResult analysis, double? voltmeter, double? plate) => new()
-    {
-        Planned = Planned,
-        Sequence = work.Plan.Sequence,
-        Bench = work.Plan.Bench,
-        Set = Set,
-        Traces = record.Traces,
-        Previous = Previous,
-        CountBefore = Count,
-        CountAfter = record.Count,
-        StaleBefore = StaleInARow,
-        Analysis = analysis,
-        Voltmeter = voltmeter,
-        Zero = work.Zero,
-        Plate = plate,
-        ShownLonger = work.ShownLonger,
-    };
+        {
+            Planned = Planned,
+            Sequence = work.Plan.Sequence,
+            Bench = work.Plan.Bench,
+            Set = Set,
+            Traces = record.Traces,
+            Previous = Previous,
+            CountBefore = Count,
+            CountAfter = record.Count,
+            StaleBefore = StaleInARow,
+            Analysis = analysis,
+            Voltmeter = voltmeter,
+            Zero = work.Zero,
+            Plate = plate,
+            ShownLonger = work.ShownLonger,
+        };
 
     /// <summary>Takes over what a capture asks of the next.</summary>
     public void Follow(ScopeRecord record, Verdict verdict)

@@ -68,5 +68,5 @@ internal sealed class DeviceQueue(
     // Whether the bench is simulated is known when its instruments are; the start of a run refuses a mixture.
     private RunRefusal? Refusal(string device) =>
         store.Refuses(Header(device, confirmedBy: null, request.Plan.Bench.Fake is not null)) is
-            { Kind: not RunRefusalKind.MixedOrigin } refusal ? refusal : null;
+        { Kind: not RunRefusalKind.MixedOrigin } refusal ? refusal : null;
 }

@@ -121,7 +121,7 @@ public sealed class SlowAnalysisTests : IDisposable
                         callback(given);
                         Interlocked.Increment(ref _ended);
                     }
-                    : callback,
+            : callback,
                 state, dueTime, period);
         }
     }
