@@ -160,8 +160,8 @@ public sealed class EvidenceStore : IDisposable
     /// <summary>Adds where a device that was not accepted was put, durably and under a seal of its own.</summary>
     /// <param name="placement">The placement; its run is in this file.</param>
     /// <returns>Its identity, time and seal.</returns>
-    /// <exception cref="ArgumentException">Place or name is empty or too long, or the run is not in the file; nothing is
-    /// stored.</exception>
+    /// <exception cref="ArgumentException">Place or name is empty or too long, or the run is not in the file; nothing
+    /// is stored.</exception>
     /// <exception cref="EvidenceException">It is not stored; the store takes nothing more.</exception>
     public SealedEntry AddPlacement(Placement placement)
     {

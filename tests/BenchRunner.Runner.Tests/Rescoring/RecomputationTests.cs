@@ -167,7 +167,8 @@ public sealed class RecomputationTests : IDisposable
         string bench = _place.File("negative-load.yaml");
         const string captures = "captures: { valid: 5, at-most: 20 }";
         const string fake = "fake: { seed: 1, pace: 5 }";
-        Copy(Workplace.Repository("sequences", "winch-drive-high.yaml"), sequence, captures, "captures: { valid: 2, at-most: 8 }");
+        Copy(Workplace.Repository("sequences", "winch-drive-high.yaml"), sequence, captures,
+            "captures: { valid: 2, at-most: 8 }");
         Copy(Workplace.Repository("sequences", "benches", "negative-load.yaml"), bench, fake,
             fault.Length == 0 ? fake : $"fake: {{ seed: 1, pace: 5, faults: ['{fault}'] }}");
         RunRequest request = _place.Request(
