@@ -75,6 +75,23 @@ public sealed class ScopeProbesTests : IAsyncLifetime
     }
 
     [Fact]
+    public async Task After_a_change_was_said_the_next_configuration_sends_everything_anew()
+    {
+        int Sent() => _instrument.Received.Count(l => l.StartsWith("INPut1:ATTenuation 1", StringComparison.Ordinal));
+        await _scope.Configure(Settings, _cancel);
+        await _scope.Configure(Settings, _cancel);
+        Assert.Equal(1, Sent());
+        _instrument.On("INPut1:ATTenuation?", "10");
+        await Assert.ThrowsAsync<SettingChangedException>(() => _scope.Arm(_cancel));
+
+        _instrument.On("INPut1:ATTenuation?", "100");
+        await _scope.Configure(Settings, _cancel);
+        await _scope.Arm(_cancel);
+
+        Assert.Equal(2, Sent());
+    }
+
+    [Fact]
     public async Task An_attenuation_that_is_not_taken_is_refused()
     {
         _instrument.Keep("INPut1:ATTenuation", "INPut1:ATTenuation?", "1", _ => "1");
