@@ -57,6 +57,40 @@ internal sealed class Workplace : IDisposable
         return file;
     }
 
+    /// <summary>A shipped sequence cut down to one of its points and 2 valid captures of at most 8.</summary>
+    /// <param name="point">The point that stays.</param>
+    /// <param name="sequence">File name of the sequence.</param>
+    /// <param name="edits">Further texts to replace.</param>
+    public string OnePoint(
+        string point, string sequence = "winch-drive-incoming.yaml", params (string Old, string New)[] edits)
+    {
+        List<string> kept = [];
+        bool isOther = false;
+        foreach (string line in File.ReadAllLines(Repository("sequences", sequence)))
+        {
+            isOther = line.StartsWith("  - name: ", StringComparison.Ordinal)
+                ? line != $"  - name: {point}"
+                : isOther && line.StartsWith("    ", StringComparison.Ordinal);
+            if (!isOther && (!line.Contains(" at: ", StringComparison.Ordinal)
+                || line.Contains($" at: {point},", StringComparison.Ordinal)))
+            {
+                kept.Add(line);
+            }
+        }
+
+        string text = string.Join('\n', kept);
+        foreach ((string old, string replacement) in
+            (IEnumerable<(string, string)>)[("valid: 5, at-most: 20", "valid: 2, at-most: 8"), .. edits])
+        {
+            Assert.Contains(old, text, StringComparison.Ordinal);
+            text = text.Replace(old, replacement, StringComparison.Ordinal);
+        }
+
+        string file = Path("one-point.yaml");
+        File.WriteAllText(file, text);
+        return file;
+    }
+
     public async Task<Finished> Run(params string[] arguments)
     {
         using Started started = Start(arguments);

@@ -11,6 +11,8 @@ namespace BenchRunner.Runner.Devices;
 /// <param name="Ending">How the bench came out of it.</param>
 /// <param name="BusVoltage">The voltmeter's last reading, V; null where there was none.</param>
 /// <param name="BusAt">Time of that reading, UTC.</param>
+/// <param name="Plate">What the hotplate measured after the safe state, degC; null where there is none or it does not
+/// answer.</param>
 public sealed record DeviceReport(
     string Run,
     string Device,
@@ -19,4 +21,5 @@ public sealed record DeviceReport(
     int CapturesValid,
     BenchEnding Ending,
     double? BusVoltage,
-    DateTimeOffset? BusAt);
+    DateTimeOffset? BusAt,
+    double? Plate);

@@ -13,6 +13,7 @@ using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Points;
 using BenchRunner.Runner.Proving;
 using BenchRunner.Runner.Sinks;
+using BenchRunner.Runner.Temperatures;
 using BenchRunner.Safety;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
@@ -64,7 +65,7 @@ public sealed class DeviceRun(
             ended = new Ended(ended?.Outcome ?? Outcome.Stopped, Join(ended?.Why, "the bus was not proved down"));
         }
 
-        return Report(device, evidence, ending, ended, safe);
+        return Report(device, evidence, ending, ended, safe, await LastPlate());
     }
 
     /// <summary>Zero, proving train, points by rising voltage, proving train again.</summary>
@@ -136,6 +137,20 @@ public sealed class DeviceRun(
                     $"{point.Point.Name}: a limit failed; the higher points are left out");
                 return;
             }
+        }
+    }
+
+    /// <summary>What the plate has when its heater is off, for who reaches into the fixture next.</summary>
+    private async Task<double?> LastPlate()
+    {
+        try
+        {
+            return await new Plate(bench.Hotplate, plan.Bench.Ambient, events, time).Measured(CancellationToken.None);
+        }
+        catch (InstrumentException silent)
+        {
+            events.Say(Severity.Warning, "plate-unknown", $"the plate's temperature is not known: {silent.Message}");
+            return null;
         }
     }
 
@@ -214,7 +229,7 @@ public sealed class DeviceRun(
     }
 
     private DeviceReport Report(
-        string device, RunWriter evidence, BenchEnding ending, Ended? ended, SafeStateReport safe)
+        string device, RunWriter evidence, BenchEnding ending, Ended? ended, SafeStateReport safe, double? plate)
     {
         foreach (RejectedShare share in RejectedShares.Of([.. _taken.SelectMany(point => point.Verdicts)]))
         {
@@ -241,7 +256,7 @@ public sealed class DeviceRun(
 
         var report = new DeviceReport(
             evidence.Run, device, decision, _taken.Sum(point => point.Taken),
-            _taken.Sum(point => point.Valid.Count), ending, safe.Voltage, safe.At);
+            _taken.Sum(point => point.Valid.Count), ending, safe.Voltage, safe.At, plate);
         sinks.DeviceEnded(report);
         return report;
     }

@@ -48,8 +48,8 @@ public sealed class ProvingTrains(DeviceWork work)
             }
         }
 
-        throw new BenchException($"{name}: {Tries} trains and none that could be judged; see the findings; nothing was "
-            + "brought to high voltage on the strength of them");
+        throw new BenchException(
+            $"{name}: {Tries} trains and none that could be judged; see the findings, and look at what they name");
     }
 
     private async Task<bool> Fire(Permit permit, PointState state, int number, CancellationToken cancel)

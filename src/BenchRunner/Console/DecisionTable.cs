@@ -31,7 +31,7 @@ internal static class DecisionTable
         value.OperatingPoint, value.Quantity,
         value.Value is { } number
             ? $"{SiText.Format(number, value.Unit)} ± "
-                + $"{SiText.Format(value.ExpandedUncertainty ?? double.NaN, value.Unit, 2)}"
+                + (value.ExpandedUncertainty is { } expanded ? SiText.Format(expanded, value.Unit, 2) : "unknown")
             : "no value",
         Bounds(value),
     ];

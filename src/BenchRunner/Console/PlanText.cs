@@ -14,6 +14,7 @@ internal static class PlanText
         {
             yield return $"{plan.Sequence.Name}, revision {plan.Sequence.Revision}, on bench {plan.Bench.Name}";
             yield return Places(plan.Sequence);
+            yield return Proving(plan);
             foreach (string line in plan.Points.SelectMany(Point))
             {
                 yield return line;
@@ -45,6 +46,14 @@ internal static class PlanText
         string companion = HalfBridge.CompanionPlace(sequence) is not { } place ? "one module fills both places"
             : $"the {place} place holds a companion with a serial of its own";
         return $"the {(firesHigh ? "high" : "low")} switch fires; {companion}";
+    }
+
+    private static string Proving(Plan plan)
+    {
+        OperatingPoint proving = plan.Proving.Point;
+        return $"before and after: a proving train at {SiText.Format(proving.BusVoltage, "V")}, "
+            + $"{SiText.Format(proving.LoadCurrent, "A")}; at each new bus voltage, both gates off: at most "
+            + $"{SiText.Format(plan.Sequence.Leakage, "A")} of leakage";
     }
 
     private static IEnumerable<string> Point(PlannedPoint point)

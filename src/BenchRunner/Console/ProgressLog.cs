@@ -1,4 +1,5 @@
 using System.Globalization;
+using BenchRunner.Acceptance.Cautions;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Instruments.Roles;
@@ -66,6 +67,12 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
             CultureInfo.InvariantCulture,
             $"{report.Device}: {report.CapturesValid} of {report.CapturesTaken} captures valid; {bus}; run "
                 + $"{report.Run}"));
+        if (report.Plate is { } plate)
+        {
+            string shown = string.Create(CultureInfo.InvariantCulture, $"the plate is at {plate:0.0} degC");
+            screen.Line(plate > CautionLines.HotFrom ? screen.Palette.Bad($"{shown}: HOT") : shown);
+        }
+
         string reason = report.Decision.Reason is { } why ? $"  ({Screen.Printable(why)})" : "";
         screen.Line("");
         screen.Bell();
