@@ -51,9 +51,10 @@ internal static class PlanText
     private static string Proving(Plan plan)
     {
         OperatingPoint proving = plan.Proving.Point;
+        string leakage = plan.Sequence.Leakage is { } amperes ? $"at most {SiText.Format(amperes, "A")} leak"
+            : "what leaks is measured, no limit is stated";
         return $"before and after: a proving train at {SiText.Format(proving.BusVoltage, "V")}, "
-            + $"{SiText.Format(proving.LoadCurrent, "A")}; at each new bus voltage, both gates off: at most "
-            + $"{SiText.Format(plan.Sequence.Leakage, "A")} of leakage";
+            + $"{SiText.Format(proving.LoadCurrent, "A")}; at each new bus voltage, both gates off: {leakage}";
     }
 
     private static IEnumerable<string> Point(PlannedPoint point)
