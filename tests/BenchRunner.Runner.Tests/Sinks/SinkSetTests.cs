@@ -24,7 +24,7 @@ public sealed class SinkSetTests
         null);
 
     private static readonly DeviceReport Report = new(
-        "run", "W1200-0001", new DeviceDecision(Outcome.Accepted, null, []), 0, 0, BenchEnding.Proved, null, null);
+        "run", "W1200-0001", new DeviceDecision(Outcome.Accepted, null, []), 0, 0, BenchEnding.Proved, null, null, null);
 
     public static TheoryData<string> Doors => ["event", "progress", "case", "device"];
 
