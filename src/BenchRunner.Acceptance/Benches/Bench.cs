@@ -21,7 +21,8 @@ public sealed record Bench
     /// <summary>The fake bench that <c>run</c> starts; null: real instruments, or a fake started by hand.</summary>
     public FakeSettings? Fake { get; init; }
 
-    /// <summary>Role (<c>supply pulser scope voltmeter interlock</c>, perhaps <c>hotplate</c>) to its instrument.</summary>
+    /// <summary>Role (<c>supply pulser scope voltmeter interlock</c>, perhaps <c>hotplate</c>) to its
+    /// instrument.</summary>
     public required IReadOnlyDictionary<string, InstrumentSetup> Roles { get; init; }
 
     /// <summary>Whether devices are exchanged by hand through the enclosure.</summary>

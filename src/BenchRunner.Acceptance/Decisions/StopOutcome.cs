@@ -17,7 +17,8 @@ public static class StopOutcome
 
     /// <summary>Criteria that speak of a place of the half bridge; they explain whatever else is found with
     /// them.</summary>
-    private static readonly string[] _ofPlaces = [Criteria.Desaturated, Criteria.HighSideOff, Criteria.FreewheelingOpen];
+    private static readonly string[] _ofPlaces =
+        [Criteria.Desaturated, Criteria.HighSideOff, Criteria.FreewheelingOpen];
 
     /// <summary>What a capture that stops the run means for the device.</summary>
     /// <param name="context">The capture.</param>

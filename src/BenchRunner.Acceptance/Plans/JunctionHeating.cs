@@ -7,9 +7,9 @@ namespace BenchRunner.Acceptance.Plans;
 /// <remarks>
 /// Losses are rectangles of power in time; the rise at a moment is the sum of P · [Zth(t − start) − Zth(t − end)] over
 /// them (superposition, common practice for transient thermal impedance), looked at the end of each. Switching energies
-/// are the upper limits that the sequence states on <c>eon</c>, <c>eoff</c> and <c>err</c>, else ½ V I times two fastest
-/// edges (nothing for <c>err</c>); they are lost at the power V I. The second turn-off and the freewheeling after it are part of the train; so is what
-/// the mean power of repeated trains leaves.
+/// are the upper limits that the sequence states on <c>eon</c>, <c>eoff</c> and <c>err</c>, else ½ V I times two
+/// fastest edges (nothing for <c>err</c>); they are lost at the power V I. The second turn-off and the freewheeling after
+/// it are part of the train; so is what the mean power of repeated trains leaves.
 /// </remarks>
 internal static class JunctionHeating
 {

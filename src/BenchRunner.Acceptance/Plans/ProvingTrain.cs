@@ -20,7 +20,7 @@ public static class ProvingTrain
         OperatingPoint lowest = sequence.OperatingPoints.MinBy(point => point.LoadCurrent)!;
         return lowest with
         {
-            Name = "proving-before",
+            Name = UncountedPoints.ProvingBefore,
             BusVoltage = Math.Min(BusVoltage, lowest.BusVoltage),
             LoadCurrent = CurrentShare * lowest.LoadCurrent,
             Temperature = null,

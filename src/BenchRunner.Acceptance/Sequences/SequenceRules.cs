@@ -6,8 +6,6 @@ namespace BenchRunner.Acceptance.Sequences;
 /// <summary>What must hold between the keys of a sequence file.</summary>
 internal static class SequenceRules
 {
-    private static readonly string[] _reserved = ["zero", "proving-before", "proving-after"];
-
     /// <summary>Checks what is sound of a file.</summary>
     /// <param name="file">The file's values.</param>
     /// <param name="problems">Takes what is wrong.</param>
@@ -34,12 +32,12 @@ internal static class SequenceRules
         {
             if (point.Text("name") is { } name)
             {
-                if (_reserved.Contains(name))
+                if (UncountedPoints.Has(name))
                 {
                     problems.Add(new Problem(
                         point.Of("name"),
                         $"an operating point is named {name}",
-                        $"a name other than {Shown.Or(_reserved)}, which stand for captures of the bench itself",
+                        $"a name other than {Shown.Or(UncountedPoints.All)}, which stand for captures of the bench itself",
                         "choose another name"));
                 }
 

@@ -1,4 +1,4 @@
-using BenchRunner.Evidence.Captures;
+using BenchRunner.Acceptance.Sequences;
 
 namespace BenchRunner.Evidence.Schemas;
 
@@ -7,6 +7,10 @@ namespace BenchRunner.Evidence.Schemas;
 /// <remarks>An entry names its seal by origin and ordinal, since the seals' table has no column for entries.</remarks>
 internal static class Additions
 {
+    /// <summary>The points that are never counted, as a list of SQL.</summary>
+    public const string Uncounted =
+        $"('{UncountedPoints.Zero}', '{UncountedPoints.ProvingBefore}', '{UncountedPoints.ProvingAfter}')";
+
     private const string Tables = """
         create table hold (
           run integer not null references run (id),
@@ -97,7 +101,7 @@ internal static class Additions
 
         create view companions as
         select r.companion, count(distinct r.id) as runs,
-          coalesce(sum(point.text not in {UncountedPoints.Sql}), 0) as captures_taken,
+          coalesce(sum(point.text not in {Uncounted}), 0) as captures_taken,
           coalesce(sum(point.text in ('{UncountedPoints.ProvingBefore}', '{UncountedPoints.ProvingAfter}')), 0)
             as proving_captures,
           max(r.started_at) as last_started_at

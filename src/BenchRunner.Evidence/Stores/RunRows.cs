@@ -5,6 +5,7 @@ using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Holds;
+using BenchRunner.Evidence.Schemas;
 using BenchRunner.Evidence.Seals;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
@@ -148,7 +149,7 @@ internal static class RunRows
               r.sequence_content, r.algorithm, r.platform, ?4
             from run r
             left join capture c on c.run = r.id
-              and c.operating_point not in (select id from word where text in {UncountedPoints.Sql})
+              and c.operating_point not in (select id from word where text in {Additions.Uncounted})
             left join verdict v on v.capture = c.id and v.scoring = 0
             where r.id = ?1
             group by r.id

@@ -1,5 +1,6 @@
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Evidence.Holds;

@@ -114,7 +114,8 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
 
         if (bench.Roles.ContainsKey("hotplate"))
         {
-            arguments.Add("--hotplate");
+            arguments.AddRange(
+                ["--hotplate", "--ambient", bench.Ambient.ToString(CultureInfo.InvariantCulture)]);
         }
 
         foreach (string fault in fake.Faults)

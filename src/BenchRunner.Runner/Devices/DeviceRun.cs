@@ -25,9 +25,6 @@ namespace BenchRunner.Runner.Devices;
 public sealed class DeviceRun(
     OpenBench bench, SafetySupervisor supervisor, Plan plan, IRunSink sinks, EventSource events, TimeProvider time)
 {
-    private const string Before = "proving-before";
-    private const string After = "proving-after";
-
     private readonly List<PointTaken> _taken = [];
 
     /// <summary>Whether every point was run and the device goes through its second proving.</summary>
@@ -74,12 +71,12 @@ public sealed class DeviceRun(
         var zeros = new ZeroCaptures(work);
         var proving = new ProvingTrains(work);
         await zeros.First(stop);
-        await proving.Take(Before, stop);
+        await proving.Take(UncountedPoints.ProvingBefore, stop);
         await Points(work, new PointFixture(work, zeros, new LeakageHolds(work), CaptureAnalysis.Of), stop);
         _measured = true;
         await Down(stop);
         await work.Bus.WaitBelow(ProvingTrain.BusVoltage, stop);
-        await proving.Take(After, stop);
+        await proving.Take(UncountedPoints.ProvingAfter, stop);
     }
 
     private async Task Down(CancellationToken stop)
@@ -147,8 +144,9 @@ public sealed class DeviceRun(
         {
             return await new Plate(bench.Hotplate, plan.Bench.Ambient, events, time).Measured(CancellationToken.None);
         }
-        catch (InstrumentException silent)
+        catch (Exception silent)
         {
+            // Whatever it is: the bench is safe, and the run must get its decision and its seal.
             events.Say(Severity.Warning, "plate-unknown", $"the plate's temperature is not known: {silent.Message}");
             return null;
         }

@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
+using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Instruments.Roles;
@@ -13,9 +14,6 @@ namespace BenchRunner.Runner.Proving;
 /// <summary>Captures in which no train is fired: what the probes show at zero.</summary>
 public sealed class ZeroCaptures(DeviceWork work)
 {
-    /// <summary>The name under which they are stored.</summary>
-    public const string Name = "zero";
-
     private const int Tries = 3;
 
     /// <summary>Bus voltage below which a bank that still discharges moves no probe while the scope records, V.</summary>
@@ -75,7 +73,7 @@ public sealed class ZeroCaptures(DeviceWork work)
             {
                 double plate = await work.Plate.Read(cancel);
                 work.Evidence.AddCapture(new CaptureRow(
-                    Name, ++_taken, at, record.Traces, bank, plate, null));
+                    UncountedPoints.Zero, ++_taken, at, record.Traces, bank, plate, null));
                 return ZeroReading.Of(record.Traces, work.Plan.Bench, work.Plan.Sequence, bank);
             }
         }

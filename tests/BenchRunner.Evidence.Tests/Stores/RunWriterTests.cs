@@ -2,7 +2,7 @@ using System.Collections;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Files;
-using BenchRunner.Evidence.Captures;
+using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Signals.Traces;
 
