@@ -21,14 +21,15 @@ internal static class Baseline
     public static Waveform Remove(
         Waveform corrected, Record record, Train train, AnalysisSettings settings, out BaselineSource source)
     {
-        (double from, double to, source) = Rest(train);
+        (double from, double to, BaselineSource rest) = Rest(train);
+        source = rest;
         Dictionary<Channel, double[]> rested = [];
         foreach (Channel channel in (ReadOnlySpan<Channel>)[Channel.IdLow, Channel.IdHigh, Channel.ILoad])
         {
             bool isSwitch = channel == record.Measured(Channel.IdLow);
             bool stated = settings.Corrections.TryGetValue(channel, out ChannelCorrection? c) && c.Offset is not null;
             // In the gap the load's current flows through the diode: only the switch rests there.
-            if (corrected.Has(channel) && !stated && (source == BaselineSource.BeforeOn1 || (isSwitch && to > from)))
+            if (corrected.Has(channel) && !stated && (rest == BaselineSource.BeforeOn1 || (isSwitch && to > from)))
             {
                 rested[channel] = Less(corrected[channel], Integral.Mean(corrected[channel], from, to));
             }

@@ -62,10 +62,20 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             ("id_peak_on", "peak/parabola-20") => edge.Current.HasValue
                 ? Peak.TopFifth(edge.Id, edge.Departure, edge.End, edge.Current.Value)
                 : edge.Current.Because("i_on"),
-            ("loop_inductance", "loop/flux") => LoopInductance.Form(
-                edge, analyser.Record[Channel.VdsHigh], settings.ForwardVoltage, settings.Shunt?.Resistance ?? 0),
+            ("loop_inductance", "loop/flux") => Loop(edge),
             _ => Unknown(quantity, rule),
         };
+    }
+
+    /// <summary>vds_high is taken where it is measured, so the catalogue does not ask for it: a clipped one is seen
+    /// here.</summary>
+    private Reading Loop(in SwitchingEvent edge)
+    {
+        Reading inductance = LoopInductance.Form(
+            edge, analyser.Record[Channel.VdsHigh], settings.ForwardVoltage, settings.Shunt?.Resistance ?? 0);
+        return inductance.HasValue && analyser.Record.IsClipped(Channel.VdsHigh, inductance.From, inductance.To)
+            ? Reading.None($"{analyser.Record.Measured(Channel.VdsHigh).Name()} is clipped")
+            : inductance;
     }
 
     private Reading TurnOff(string quantity, string rule)

@@ -50,7 +50,7 @@ public sealed record TrainFacts
     public double? RampStraightness { get; init; }
 
     /// <summary>Slope of the last quarter of the ramp window over that of its first third, less 1; a saturating
-    /// inductor: +1.11.</summary>
+    /// inductor: +1.08.</summary>
     public double? RampGrowth { get; init; }
 
     /// <summary>Bus voltage before on1 (mean of vbus, else of vds_low), V.</summary>

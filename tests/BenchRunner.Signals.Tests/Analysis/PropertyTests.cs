@@ -158,6 +158,17 @@ public sealed class PropertyTests
         Assert.NotNull(Value(clipped, "eoff"));
     }
 
+    [Fact]
+    public void A_voltage_that_is_used_where_it_is_measured_counts_when_it_is_clipped()
+    {
+        QuantityValue sound = _expected.Quantities.Single(q => q.Quantity == "loop_inductance");
+        Dictionary<Channel, double[]> channels = Channels(_clean, 1, 1);
+        channels[Channel.VdsHigh][(int)Math.Round(sound.To!.Value / _clean.SampleInterval) - 2] = double.NaN;
+        AnalysisResult clipped = WaveformAnalysis.Analyse(new Waveform(0, _clean.SampleInterval, channels), _settings);
+        Assert.Equal(
+            "vds_high is clipped", clipped.Quantities.Single(q => q.Quantity == "loop_inductance").Reason);
+    }
+
     private static QuantityValue RawPeak(AnalysisResult result) =>
         result.Quantities.Single(q => q.Quantity == "id_peak_on" && q.Definition == "peak/raw");
 
