@@ -1,55 +1,58 @@
-using System.Diagnostics;
-
 namespace BenchRunner.Benchmarks;
 
-/// <summary>Times works in interleaved rounds, by the processor time of this process: a neighbour's work is not
-/// ours.</summary>
+/// <summary>Times works in interleaved rounds (ours, peer, ours, peer …), by the processor time of the process that
+/// does them: a neighbour's work is not theirs.</summary>
 internal static class Rounds
 {
     private const int Count = 7;
-    private const double RoundSeconds = 0.2;
+    private const double RoundSeconds = 0.25;
 
-    /// <summary>Median processor seconds a call of each work, and the relative half distance of its
-    /// quartiles.</summary>
-    public static (double Median, double Spread)[] Time(params Action[] works)
+    /// <summary>Does a work some times.</summary>
+    /// <param name="calls">How many times.</param>
+    /// <returns>Processor seconds a call.</returns>
+    public delegate double Work(int calls);
+
+    /// <summary>A work of this process.</summary>
+    /// <param name="work">Done once a call.</param>
+    public static Work Here(Action work) => calls =>
+    {
+        TimeSpan start = Environment.CpuUsage.TotalTime;
+        for (int call = 0; call < calls; call++)
+        {
+            work();
+        }
+
+        return (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls;
+    };
+
+    /// <summary>Times works beside each other, after warming each up.</summary>
+    /// <param name="works">The works.</param>
+    /// <returns>Processor seconds a call of each.</returns>
+    public static Figure[] Time(params IReadOnlyList<Work> works)
     {
         int[] calls = [.. works.Select(Calls)];
         double[][] seconds = [.. works.Select(_ => new double[Count])];
         for (int round = 0; round < Count; round++)
         {
-            for (int i = 0; i < works.Length; i++)
+            for (int i = 0; i < works.Count; i++)
             {
-                TimeSpan start = Environment.CpuUsage.TotalTime;
-                for (int call = 0; call < calls[i]; call++)
-                {
-                    works[i]();
-                }
-
-                seconds[i][round] = (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls[i];
+                seconds[i][round] = works[i](calls[i]);
             }
         }
 
-        return [.. seconds.Select(Summary)];
+        return [.. seconds.Select(Figure.Of)];
     }
 
     /// <summary>Warms a work up, and says how often it fits into a round.</summary>
-    private static int Calls(Action work)
+    private static int Calls(Work work)
     {
-        long start = Stopwatch.GetTimestamp();
-        int calls = 0;
-        do
+        for (int calls = 1; ; calls *= 2)
         {
-            work();
-            calls++;
+            double spent = work(calls) * calls;
+            if (spent >= RoundSeconds)
+            {
+                return Math.Max(1, (int)(calls * RoundSeconds / spent));
+            }
         }
-        while (Stopwatch.GetElapsedTime(start).TotalSeconds < RoundSeconds);
-        return calls;
-    }
-
-    private static (double Median, double Spread) Summary(double[] seconds)
-    {
-        Array.Sort(seconds);
-        double median = seconds[Count / 2];
-        return (median, (seconds[Count * 3 / 4] - seconds[Count / 4]) / (2 * median));
     }
 }

@@ -1,38 +1,47 @@
 namespace BenchRunner.Benchmarks;
 
 /// <summary>One row of the table: what was measured, beside what, and whether the goal is met.</summary>
-/// <param name="Group">Group of the row, e.g. <c>fake</c>.</param>
-/// <param name="Work">Name of the work; the goal is its own and does not change.</param>
-/// <param name="Unit">Unit of the figures.</param>
-/// <param name="Ours">Median of the rounds.</param>
-/// <param name="Spread">Half the distance of the rounds' quartiles, relative.</param>
-/// <param name="Peer">The same of a general-purpose program in the same run; null: not there.</param>
-/// <param name="Floor">What the machine itself allows, in the same run; null: not there.</param>
-/// <param name="Goal">The goal: a ratio to peer or floor, or a figure of ours.</param>
-/// <param name="Of">What the goal is of: <c>peer</c>, <c>floor</c> or <c>ours</c>.</param>
-/// <param name="Better">Whether <c>lower</c> or <c>higher</c> is better.</param>
-/// <param name="Missing">What is missing to measure the row whole; null: nothing.</param>
-internal sealed record Row(
-    string Group,
-    string Work,
-    string Unit,
-    double Ours,
-    double Spread,
-    double? Peer,
-    double? Floor,
-    double Goal,
-    string Of,
-    string Better,
-    string? Missing = null)
+/// <param name="Goal">The goal; it does not change.</param>
+/// <param name="Last">The last measurement, which stands.</param>
+/// <param name="Figures">Of each measurement the figure that the goal is held against: a missed row is repeated
+/// twice.</param>
+internal sealed record Row(Goal Goal, Outcome Last, IReadOnlyList<double?> Figures)
 {
-    /// <summary>The figure that the goal is held against; null where what it is of is missing.</summary>
-    public double? Figure => Of switch
-    {
-        "peer" => Ours / Peer,
-        "floor" => Ours / Floor,
-        _ => Ours,
-    };
+    /// <summary>The figure that stands; null where what it is of is missing.</summary>
+    public double? Figure => FigureOf(Goal, Last);
 
     /// <summary>Whether the goal is met; never where something is missing.</summary>
-    public bool Met => Figure is { } figure && (Better == "lower" ? figure <= Goal : figure >= Goal);
+    public bool IsMet => Last.Missing is null && Figure is { } figure && Goal.IsMetBy(figure);
+
+    /// <summary>Ours over peer or floor, or ours itself.</summary>
+    public static double? FigureOf(Goal goal, Outcome outcome) => goal.Of switch
+    {
+        "peer" => outcome.Ours?.Median / outcome.Peer?.Median,
+        "floor" => outcome.Ours?.Median / outcome.Floor?.Median,
+        _ => outcome.Ours?.Median,
+    };
+
+    /// <summary>The row as it is written to JSON.</summary>
+    public object ToJson() => new
+    {
+        group = Goal.Group,
+        work = Goal.Work,
+        unit = Last.Unit,
+        ours = Last.Ours?.Median,
+        peer = Last.Peer?.Median,
+        floor = Last.Floor?.Median,
+        goal = Goal.Bounds.Count == 1 ? (object)Goal.Bounds[0] : Goal.Bounds,
+        of = Goal.Of,
+        better = Goal.Better,
+        met = IsMet,
+        figure = Figure,
+        ours_spread = Last.Ours?.Spread,
+        peer_spread = Last.Peer?.Spread,
+        floor_spread = Last.Floor?.Spread,
+        figures = Figures,
+        own = Goal.IsOwn,
+        missing = Last.Missing,
+        note = Last.Note,
+        what = Goal.What,
+    };
 }
