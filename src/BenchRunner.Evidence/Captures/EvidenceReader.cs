@@ -46,6 +46,37 @@ public sealed class EvidenceReader : IDisposable
         return Guarded(() => _session.Read(sql, Capture, run));
     }
 
+    /// <summary>The captures of a device in all its runs, the oldest run first, each run in the order in which it took
+    /// them.</summary>
+    /// <param name="device">Serial of the device.</param>
+    /// <returns>The captures; none where the device is not in the file.</returns>
+    /// <exception cref="EvidenceException">The file cannot be read.</exception>
+    public IReadOnlyList<FoundCapture> CapturesOf(string device)
+    {
+        const string sql = """
+            select c.id, r.uid, r.started_at, point.text, c.number, c.payload_sha256, v.findings, v.not_evaluated
+            from run r join capture c on c.run = r.id join word point on point.id = c.operating_point
+            left join verdict v on v.capture = c.id
+              and v.scoring = (select max(n.scoring) from verdict n where n.capture = c.id)
+            where r.device = ?1 order by r.started_at, r.id, c.ordinal
+            """;
+        return Guarded(() => _session.Read(
+            sql,
+            row => new FoundCapture(
+                row.GetInt64(0), row.GetString(1), row.GetString(2), row.GetString(3), row.GetInt32(4),
+                row.GetString(5), row.IsDBNull(6) ? null : row.GetString(6), row.IsDBNull(7) ? null : row.GetString(7)),
+            device));
+    }
+
+    /// <summary>Serials of the devices in the file, in the order of their text.</summary>
+    /// <param name="most">How many at most.</param>
+    /// <exception cref="EvidenceException">The file cannot be read.</exception>
+    public IReadOnlyList<string> Devices(int most)
+    {
+        const string sql = "select distinct device from run order by device limit ?1";
+        return Guarded(() => _session.Read(sql, row => row.GetString(0), most));
+    }
+
     /// <summary>The files that a run followed, byte for byte: its sequence, its bench, its dialects.</summary>
     /// <param name="run">Identity of the run.</param>
     /// <returns>The files, ordered by role and path; none where the run is not in the file.</returns>

@@ -11,7 +11,7 @@ internal static class AnalysisText
 {
     public static IEnumerable<string> Lines(AnalysedFile analysed)
     {
-        yield return $"{analysed.File}: {analysed.Waveform.Count} samples at "
+        yield return $"{analysed.Name}: {analysed.Waveform.Count} samples at "
             + $"{SiText.Format(analysed.Waveform.SampleInterval, "s")}, "
             + string.Join(' ', analysed.Waveform.Channels.Select(channel => channel.Name()));
         int name = analysed.Result.Quantities.Max(value => value.Quantity.Length);

@@ -1,6 +1,7 @@
 using System.Security.Cryptography;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Settings;
+using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Files;
 using BenchRunner.Signals.Traces;
@@ -37,16 +38,39 @@ internal static class AnalysisInput
             : throw new InputException(string.Join(Environment.NewLine, wrong));
     }
 
-    public static Waveform Waveform(string file, WaveformFileOptions options)
+    /// <summary>Reads a waveform file and analyses it.</summary>
+    public static AnalysedFile Analyse(string file, WaveformFileOptions options, AnalysisSettings settings)
+    {
+        (long Length, DateTime Written) before = State(file);
+        Waveform waveform = Waveform(file, options);
+        string sha256 = Sha256(file);
+        if (State(file) != before)
+        {
+            throw new InputException(
+                $"{file}: it changed while it was read; expected a finished file; wait until it is written, or copy it");
+        }
+
+        AnalysisResult result = WaveformAnalysis.Analyse(waveform, settings);
+        return new AnalysedFile(
+            file, sha256, waveform, settings, result, WaveformFindings.Judge(waveform, result, settings));
+    }
+
+    private static Waveform Waveform(string file, WaveformFileOptions options)
     {
         WaveformRead read = WaveformFile.Read(file, options);
         return read.Waveform ?? throw new InputException(string.Join(Environment.NewLine, read.Problems));
     }
 
-    public static string Sha256(string file)
+    private static string Sha256(string file)
     {
         using FileStream stream = File.OpenRead(file);
         return Convert.ToHexStringLower(SHA256.HashData(stream));
+    }
+
+    private static (long Length, DateTime Written) State(string file)
+    {
+        FileInfo info = new(file);
+        return info.Exists ? (info.Length, info.LastWriteTimeUtc) : default;
     }
 
     private static double? Seconds(string? text) => text switch

@@ -11,7 +11,12 @@ internal static class AnalyseJson
 {
     public static void Write(IReadOnlyList<AnalysedFile> files) => JsonOutput.Write(new JsonObject
     {
-        ["waveforms"] = JsonOutput.Array(files, file => new JsonObject
+        ["waveforms"] = JsonOutput.Array(files, Waveform),
+    });
+
+    private static JsonObject Waveform(AnalysedFile file)
+    {
+        JsonObject waveform = new()
         {
             ["file"] = file.File,
             ["sha256"] = file.Sha256,
@@ -21,8 +26,17 @@ internal static class AnalyseJson
             ["quantities"] = JsonOutput.Array(file.Result.Quantities, Quantity),
             ["findings"] = JsonOutput.Array(file.Verdict.Findings, Finding),
             ["not_evaluated"] = JsonOutput.Array(file.Verdict.NotEvaluated, name => JsonValue.Create(name)),
-        }),
-    });
+        };
+        if (file.Capture is { } capture)
+        {
+            waveform["device"] = capture.Device;
+            waveform["run"] = capture.Run;
+            waveform["operating_point"] = capture.OperatingPoint;
+            waveform["capture"] = capture.Number;
+        }
+
+        return waveform;
+    }
 
     private static JsonObject Quantity(QuantityValue value) => new()
     {
