@@ -44,7 +44,7 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
             y[i] /= scale;
         }
 
-        RingFitSolver solver = new(1);
+        RingFitSolver solver = new(y, 1);
         if (!Solve(solver, y, period))
         {
             return null;
@@ -63,7 +63,7 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
     {
         Span<double> turn = [2 * Math.PI / period];
         Span<double> decay = [TypicalDamping * turn[0]];
-        solver.Fit(y, decay, turn, double.PositiveInfinity);
+        solver.Fit(decay, turn, double.PositiveInfinity);
         if (Rings(solver, y))
         {
             return true;
@@ -76,7 +76,7 @@ internal readonly record struct RingEnvelope(double Frequency, double Decay, dou
             return false;
         }
 
-        solver.Fit(y, decay, turn, double.PositiveInfinity);
+        solver.Fit(decay, turn, double.PositiveInfinity);
         return Rings(solver, y);
     }
 

@@ -72,14 +72,15 @@ public static class RingFit
         double[] rented = ArrayPool<double>.Shared.Rent(samples.Length);
         try
         {
-            Span<double> y = rented.AsSpan(0, samples.Length);
+            Memory<double> scaled = rented.AsMemory(0, samples.Length);
+            Span<double> y = scaled.Span;
             for (int n = 0; n < y.Length; n++)
             {
                 y[n] = scale > 0 ? samples[n] / scale : 0;
             }
 
             (double offset, double slope) = RemoveLine(y);
-            return FitScaled(y, dt, most) switch
+            return FitScaled(scaled, dt, most) switch
             {
                 { Reason: null } ring => Restore(ring, scale, offset, slope / dt),
                 var none => none,
@@ -91,8 +92,9 @@ public static class RingFit
         }
     }
 
-    private static RingFitResult FitScaled(Span<double> y, double dt, int most)
+    private static RingFitResult FitScaled(ReadOnlyMemory<double> samples, double dt, int most)
     {
+        ReadOnlySpan<double> y = samples.Span;
         double squares = 0;
         foreach (double value in y)
         {
@@ -106,11 +108,11 @@ public static class RingFit
         }
 
         RingFitSolver?[] fits = new RingFitSolver?[most + 1];
-        int order = ChooseOrder(y, rms, fits);
+        int order = ChooseOrder(samples, rms, fits);
         RingFitResult none = RingFitResult.None(NoRinging);
         for (; order > 0; order--)
         {
-            if (fits[order] is not { } fit || !fit.Refine(y))
+            if (fits[order] is not { } fit || !fit.Refine())
             {
                 continue;
             }
@@ -133,8 +135,9 @@ public static class RingFit
     }
 
     /// <summary>Fits one mode after the other until the description no longer gets shorter.</summary>
-    private static int ChooseOrder(ReadOnlySpan<double> y, double rms, RingFitSolver?[] fits)
+    private static int ChooseOrder(ReadOnlyMemory<double> samples, double rms, RingFitSolver?[] fits)
     {
+        ReadOnlySpan<double> y = samples.Span;
         Span<double> scratch = stackalloc double[RingFitStart.ScratchLength];
         var start = new RingFitStart(y, scratch);
         Span<double> decay = stackalloc double[MostModes];
@@ -154,8 +157,8 @@ public static class RingFit
                 continue;
             }
 
-            var fit = new RingFitSolver(modes);
-            if (fit.Fit(y, decay, turn, target, RoughTolerance))
+            var fit = new RingFitSolver(samples, modes);
+            if (fit.Fit(decay, turn, target, RoughTolerance))
             {
                 (fits[modes], best) = (fit, modes);
                 shortest = Description(y.Length, Math.Sqrt(fit.Squares / y.Length), rms, modes);

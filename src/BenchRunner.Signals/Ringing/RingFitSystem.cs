@@ -1,27 +1,45 @@
+using BenchRunner.Signals.Fitting;
+
 namespace BenchRunner.Signals.Ringing;
 
-/// <summary>The normal equations of a ring fit at one shape: linear unknowns solved, the others reduced.</summary>
-internal sealed class RingFitSystem
+/// <summary>The normal equations of a ring fit: linear unknowns solved, decays and frequencies searched.</summary>
+/// <remarks>
+/// The linear unknowns are eliminated at every point (variable projection; Golub and Pereyra 1973, in the simplification
+/// of Kaufman 1975, from memory), so that only two unknowns a mode are searched and a poor start of amplitudes cannot
+/// mislead. Everything rests on <see cref="RingFitColumns"/>: one pass over the samples a point.
+/// </remarks>
+internal sealed class RingFitSystem : NormalEquations
 {
+    /// <summary>
+    /// The slowest turn, rad over the window. A mode that would turn slower is a bare decay: from there on its sine is
+    /// left out, without which amplitudes and decay could not be told apart.
+    /// </summary>
+    private const double SlowestTurn = 0.1;
+
+    private const double Resolution = 1e-12;
+
+    private readonly ReadOnlyMemory<double> _samples;
     private readonly int _modes;
+    private readonly bool[] _before;
     private readonly double[] _products;
     private readonly double[] _normal;
     private readonly double[] _cross;
-    private readonly double[] _curvature;
-    private readonly double[] _gradient;
     private readonly double[] _linear;
 
     /// <summary>Makes the system of a number of modes.</summary>
-    public RingFitSystem(int modes)
+    /// <param name="samples">Samples; not copied.</param>
+    /// <param name="modes">Modes, 1 to 3.</param>
+    public RingFitSystem(ReadOnlyMemory<double> samples, int modes)
+        : base(2 * modes)
     {
+        _samples = samples;
         _modes = modes;
-        int linear = RingFitColumns.Linear(modes), width = RingFitColumns.Width(modes), shape = 2 * modes;
+        int linear = RingFitColumns.Linear(modes), width = RingFitColumns.Width(modes);
         _products = new double[width * width];
         _normal = new double[linear * linear];
-        _cross = new double[shape * linear];
-        _curvature = new double[shape * shape];
-        _gradient = new double[shape];
+        _cross = new double[Unknowns * linear];
         _linear = new double[linear];
+        _before = new bool[modes];
         Bare = new bool[modes];
     }
 
@@ -31,25 +49,47 @@ internal sealed class RingFitSystem
     /// <summary>c, d (a window), then p and q of each mode: p cos + q sin.</summary>
     public ReadOnlySpan<double> Linear => _linear;
 
-    /// <summary>Half the falling slope of the sum of squares along s and w of each mode.</summary>
-    public ReadOnlySpan<double> Gradient => _gradient;
-
-    /// <summary>Curvature along s and w of each mode, the linear unknowns following; lower triangle.</summary>
-    public ReadOnlySpan<double> Curvature => _curvature;
-
-    /// <summary>Sum of squared residuals, as the products give it.</summary>
-    public double Squares { get; private set; }
-
-    /// <summary>Sum of the squared samples.</summary>
-    public double Whole => Product(RingFitColumns.Samples(_modes), RingFitColumns.Samples(_modes));
+    /// <summary>The sum of squares is a difference of products: a part of the samples' own.</summary>
+    public override double Rounding =>
+        Resolution * Product(RingFitColumns.Samples(_modes), RingFitColumns.Samples(_modes));
 
     /// <summary>Whether an unknown is the turn of a bare decay.</summary>
-    public bool IsHeld(int shape) => shape % 2 == 1 && Bare[shape / 2];
+    public override bool IsHeld(int unknown) => unknown % 2 == 1 && Bare[unknown / 2];
+
+    /// <summary>|s| + w of the mode: decay and frequency are known about equally well.</summary>
+    public override double Size(ReadOnlySpan<double> unknowns, int unknown) =>
+        Math.Abs(unknowns[unknown & ~1]) + unknowns[unknown | 1];
+
+    /// <summary>Makes bare decays of modes that would turn slower than can be told; refuses what is no ring.</summary>
+    public override bool Admit(Span<double> trial)
+    {
+        Bare.CopyTo(_before, 0);
+        int samples = _samples.Length;
+        bool allowed = true;
+        for (int k = 0; k < _modes; k++)
+        {
+            ref double s = ref trial[2 * k], w = ref trial[(2 * k) + 1];
+            if (!Bare[k] && w < SlowestTurn)
+            {
+                Bare[k] = true;
+                w = 0;
+            }
+
+            // Growing by e⁵ over the window, or gone within half a sample, is no ring; neither is beyond Nyquist.
+            allowed = allowed && s > -5 && s < 2.0 * samples && (Bare[k] || w < Math.PI * samples);
+        }
+
+        return allowed;
+    }
+
+    /// <inheritdoc/>
+    public override void Withdraw() => _before.CopyTo(Bare, 0);
 
     /// <summary>Solves the linear unknowns at a shape, and forms gradient and reduced curvature there.</summary>
-    public bool Evaluate(ReadOnlySpan<double> y, ReadOnlySpan<double> shape)
+    /// <param name="unknowns">s and w of each mode: σ and ω times the window.</param>
+    public override bool Evaluate(ReadOnlySpan<double> unknowns)
     {
-        RingFitColumns.Multiply(y, shape, _products);
+        RingFitColumns.Multiply(_samples.Span, unknowns, _products);
         int linear = _linear.Length, samples = RingFitColumns.Samples(_modes);
         for (int i = 0; i < linear; i++)
         {
@@ -65,18 +105,18 @@ internal sealed class RingFitSystem
         {
             if (Bare[k])
             {
-                Hold(_normal, linear, 3 + (2 * k));
+                Cholesky.Hold(_normal, linear, 3 + (2 * k));
                 _linear[3 + (2 * k)] = 0;
             }
         }
 
-        if (!RingFitAlgebra.Factor(_normal, linear))
+        if (!Cholesky.Factor(_normal, linear))
         {
             return false;
         }
 
-        RingFitAlgebra.Forward(_normal, linear, _linear);
-        RingFitAlgebra.Backward(_normal, linear, _linear);
+        Cholesky.Forward(_normal, linear, _linear);
+        Cholesky.Backward(_normal, linear, _linear);
         double squares = Product(samples, samples);
         for (int i = 0; i < linear; i++)
         {
@@ -90,7 +130,7 @@ internal sealed class RingFitSystem
 
     private void Reduce(int linear, int samples)
     {
-        int count = _gradient.Length;
+        int count = Unknowns;
         for (int i = 0; i < count; i++)
         {
             Span<double> cross = _cross.AsSpan(i * linear, linear);
@@ -101,8 +141,8 @@ internal sealed class RingFitSystem
                 gradient -= Linear[k] * cross[k];
             }
 
-            _gradient[i] = gradient;
-            RingFitAlgebra.Forward(_normal, linear, cross);
+            Gradient[i] = gradient;
+            Cholesky.Forward(_normal, linear, cross);
             for (int j = 0; j <= i; j++)
             {
                 double value = Bend(i, j);
@@ -111,7 +151,7 @@ internal sealed class RingFitSystem
                     value -= cross[k] * _cross[(j * linear) + k];
                 }
 
-                _curvature[(i * count) + j] = value;
+                Curvature[(i * count) + j] = value;
             }
         }
     }
@@ -123,7 +163,6 @@ internal sealed class RingFitSystem
     {
         int linear = RingFitColumns.Linear(_modes), size = linear + (2 * _modes);
         Span<double> factor = stackalloc double[size * size];
-        Span<double> scale = stackalloc double[size];
         for (int i = 0; i < size; i++)
         {
             for (int j = 0; j <= i; j++)
@@ -132,56 +171,18 @@ internal sealed class RingFitSystem
                     : j < linear ? Cross(i - linear, j)
                     : Bend(i - linear, j - linear);
             }
-
         }
 
         for (int k = 0; k < _modes; k++)
         {
             if (Bare[k])
             {
-                Hold(factor, size, 3 + (2 * k));
-                Hold(factor, size, linear + 1 + (2 * k));
+                Cholesky.Hold(factor, size, 3 + (2 * k));
+                Cholesky.Hold(factor, size, linear + 1 + (2 * k));
             }
         }
 
-        for (int i = 0; i < size; i++)
-        {
-            scale[i] = 1 / Math.Sqrt(factor[(i * size) + i]);
-            for (int j = 0; j <= i; j++)
-            {
-                factor[(i * size) + j] *= scale[i] * scale[j];
-            }
-        }
-
-        if (!RingFitAlgebra.Factor(factor, size))
-        {
-            return false;
-        }
-
-        for (int i = 0; i < size; i++)
-        {
-            Span<double> column = inverse.Slice(i * size, size);
-            column.Clear();
-            column[i] = 1;
-            RingFitAlgebra.Forward(factor, size, column);
-            RingFitAlgebra.Backward(factor, size, column);
-            for (int j = 0; j < size; j++)
-            {
-                column[j] *= scale[i] * scale[j];
-            }
-        }
-
-        return true;
-    }
-
-    /// <summary>Takes an unknown out of a symmetric system (lower triangle): its row and column become those of 1.
-    /// </summary>
-    public static void Hold(Span<double> matrix, int size, int unknown)
-    {
-        for (int j = 0; j < size; j++)
-        {
-            matrix[(Math.Max(j, unknown) * size) + Math.Min(j, unknown)] = j == unknown ? 1 : 0;
-        }
+        return Cholesky.Invert(factor, size, inverse);
     }
 
     private double Product(int i, int j) =>
