@@ -63,13 +63,13 @@ internal sealed class Analyser
     /// <summary>Ringing of id_low after on2.</summary>
     public RingWindow? RingId => _ringId ??= RingOn is { } voltage && Record.Has(Channel.IdLow)
         ? RingWindow.Along(
-            Record[Channel.IdLow], Record.SampleInterval, voltage, Train.Sigma(Channel.IdLow), EndOfOn2)
+            Record[Channel.IdLow].Values, Record.SampleInterval, voltage, Train.Sigma(Channel.IdLow), EndOfOn2)
         : null;
 
     /// <summary>Ringing of vds_low after off1.</summary>
     public RingWindow? RingOff => _ringOff ??= Train.Off1 is { } off1 && Bus.HasValue
         ? RingWindow.AboveBus(
-            Record[Channel.VdsLow],
+            Record[Channel.VdsLow].Values,
             Record.SampleInterval,
             Bus.Value,
             Train.Sigma(Channel.VdsLow),
@@ -127,7 +127,7 @@ internal sealed class Analyser
         int origin = RecoveryOrigin;
         ReadOnlySpan<double> irr = byLoadLine
             ? _irr
-            : Record[Channel.IdHigh].Slice(origin, RecoveryLength);
+            : Record[Channel.IdHigh].Values.Slice(origin, RecoveryLength);
         Channel current = byLoadLine ? Channel.IdLow : Channel.IdHigh;
         return new RecoveryEvent(
             irr,
@@ -173,7 +173,7 @@ internal sealed class Analyser
     private RingWindow? FormRingOn() =>
         Train.On2 is { } on2 && Bus.HasValue && Record.Has(Channel.VdsHigh)
             ? RingWindow.AboveBus(
-                Record[Channel.VdsHigh],
+                Record[Channel.VdsHigh].Values,
                 Record.SampleInterval,
                 Bus.Value,
                 Train.Sigma(Channel.VdsHigh),
@@ -239,7 +239,7 @@ internal sealed class Analyser
             _irr = new double[length];
         }
 
-        ReadOnlySpan<double> current = Record[Channel.IdLow].Slice(origin, length);
+        ReadOnlySpan<double> current = Record[Channel.IdLow].Values.Slice(origin, length);
         for (int i = 0; i < length; i++)
         {
             _irr[i] = current[i] - _line.At(origin + i);

@@ -23,7 +23,7 @@ internal static class Baseline
     {
         (double from, double to, BaselineSource rest) = Rest(train);
         source = rest;
-        Dictionary<Channel, double[]> rested = [];
+        Dictionary<Channel, ChannelSamples> rested = [];
         foreach (Channel channel in (ReadOnlySpan<Channel>)[Channel.IdLow, Channel.IdHigh, Channel.ILoad])
         {
             bool isSwitch = channel == record.Measured(Channel.IdLow);
@@ -31,13 +31,14 @@ internal static class Baseline
             // In the gap the load's current flows through the diode: only the switch rests there.
             if (corrected.Has(channel) && !stated && (rest == BaselineSource.BeforeOn1 || (isSwitch && to > from)))
             {
-                rested[channel] = Less(corrected[channel], Integral.Mean(corrected[channel], from, to));
+                ChannelSamples samples = corrected.At(channel);
+                rested[channel] = samples.Undo(Integral.Mean(samples.All, from, to), gain: 1);
             }
 
             source = isSwitch && stated ? BaselineSource.Stated : source;
         }
 
-        return rested.Count == 0 ? corrected : corrected.With(rested);
+        return corrected.With(rested);
     }
 
     private static (double From, double To, BaselineSource Source) Rest(Train train) =>
@@ -45,15 +46,4 @@ internal static class Baseline
         : train.Off1 is { } off1 && train.On2 is { } on2 && on2.Departure > off1.At
             ? (off1.At + (GapPart * (on2.Departure - off1.At)), on2.Departure, BaselineSource.Gap)
             : (0, 0, BaselineSource.None);
-
-    private static double[] Less(ReadOnlySpan<double> samples, double rest)
-    {
-        double[] less = GC.AllocateUninitializedArray<double>(samples.Length);
-        for (int i = 0; i < less.Length && i < samples.Length; i++)
-        {
-            less[i] = samples[i] - rest;
-        }
-
-        return less;
-    }
 }

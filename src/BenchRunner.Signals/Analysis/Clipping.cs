@@ -23,9 +23,8 @@ internal sealed class Clipping
                 continue;
             }
 
-            ReadOnlySpan<double> samples = waveform[channel];
             settings.Corrections.TryGetValue(channel, out ChannelCorrection? correction);
-            double step = waveform.Step(channel) > 0 ? waveform.Step(channel) : SmallestStep.OfValues(samples);
+            double step = waveform.Step(channel) > 0 ? waveform.Step(channel) : SmallestStep.OfValues(waveform[channel]);
             _step[(int)channel] = step / Math.Abs(correction?.Gain ?? 1);
             _late[(int)channel] = (correction?.Skew ?? 0) / waveform.SampleInterval;
         }
@@ -36,17 +35,18 @@ internal sealed class Clipping
     /// <param name="isCorrected">Whether its positions are corrected ones.</param>
     public Waveform Bridge(Waveform waveform, bool isCorrected)
     {
-        Dictionary<Channel, double[]>? bridged = null;
-        foreach (Channel channel in ChannelNames.All)
+        Dictionary<Channel, ChannelSamples> bridged = [];
+        foreach (Channel channel in waveform.Channels)
         {
-            if (!IsFinite(waveform[channel]))
+            ChannelSamples samples = waveform.At(channel);
+            if (!samples.HasCodes && !IsFinite(samples.Values))
             {
-                bridged ??= [];
-                bridged[channel] = Bridge(channel, waveform[channel], isCorrected ? _late[(int)channel] : 0);
+                double late = isCorrected ? _late[(int)channel] : 0;
+                bridged[channel] = samples.Filtered((from, to) => Bridge(channel, from, to, late));
             }
         }
 
-        return bridged is null ? waveform : waveform.With(bridged);
+        return waveform.With(bridged);
     }
 
     /// <summary>Smallest step of a channel after correction, V or A.</summary>
@@ -85,9 +85,9 @@ internal sealed class Clipping
         return sum == 0;
     }
 
-    private double[] Bridge(Channel channel, ReadOnlySpan<double> samples, double late)
+    private void Bridge(Channel channel, ReadOnlySpan<double> samples, Span<double> bridged, double late)
     {
-        double[] bridged = samples.ToArray();
+        samples.CopyTo(bridged);
         List<int> clipped = [.. _clipped[(int)channel] ?? []];
         int before = -1;
         for (int i = 0; i <= samples.Length; i++)
@@ -111,6 +111,5 @@ internal sealed class Clipping
 
         clipped.Sort();
         _clipped[(int)channel] = [.. clipped];
-        return bridged;
     }
 }

@@ -58,9 +58,9 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             ("dvdt_on", "slope/20-80") => SwitchingSlope.Voltage(edge, 0.2),
             ("dvdt_on", "slope/10-90") => SwitchingSlope.Voltage(edge, 0.1),
             ("didt_on", "slope/10-90") => SwitchingSlope.Current(edge),
-            ("id_peak_on", "peak/raw") => TurnOnPeak.Raw(edge.Id, edge.Departure, edge.End),
+            ("id_peak_on", "peak/raw") => TurnOnPeak.Raw(edge.Id.Values, edge.Departure, edge.End),
             ("id_peak_on", "peak/parabola-20") => edge.Current.HasValue
-                ? Peak.TopFifth(edge.Id, edge.Departure, edge.End, edge.Current.Value)
+                ? Peak.TopFifth(edge.Id.Values, edge.Departure, edge.End, edge.Current.Value)
                 : edge.Current.Because("i_on"),
             ("loop_inductance", "loop/flux") => Loop(edge),
             _ => Unknown(quantity, rule),
@@ -93,9 +93,9 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             ("dvdt_off", "slope/20-80") => SwitchingSlope.Voltage(edge, 0.2),
             ("dvdt_off", "slope/10-90") => SwitchingSlope.Voltage(edge, 0.1),
             ("didt_off", "slope/90-10") => SwitchingSlope.Current(edge),
-            ("vds_peak_off", "peak/raw") => TurnOffPeak.Raw(edge.Vds, edge.Departure, edge.End),
+            ("vds_peak_off", "peak/raw") => TurnOffPeak.Raw(edge.Vds.Values, edge.Departure, edge.End),
             ("vds_peak_off", "peak/parabola-20") => analyser.Bus.HasValue
-                ? Peak.TopFifth(edge.Vds, edge.Departure, edge.End, analyser.Bus.Value)
+                ? Peak.TopFifth(edge.Vds.Values, edge.Departure, edge.End, analyser.Bus.Value)
                 : analyser.Bus.Because("bus_voltage"),
             ("vds_overshoot_off", "peak/raw") => Overshoot(edge),
             _ => Unknown(quantity, rule),
@@ -104,7 +104,7 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
 
     private Reading Overshoot(in SwitchingEvent edge)
     {
-        Reading peak = TurnOffPeak.Raw(edge.Vds, edge.Departure, edge.End);
+        Reading peak = TurnOffPeak.Raw(edge.Vds.Values, edge.Departure, edge.End);
         if (analyser.Record.Has(Channel.Vbus))
         {
             return TurnOffPeak.Overshoot(peak, analyser.Bus);
@@ -151,7 +151,7 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
     }
 
     private ReadOnlySpan<double> Along(Channel role) =>
-        analyser.Record[role].Slice(analyser.RecoveryOrigin, analyser.RecoveryLength);
+        analyser.Record[role].Values.Slice(analyser.RecoveryOrigin, analyser.RecoveryLength);
 
     private static Instant End(in RecoveryEvent recovery, string rule, string family) => rule[family.Length..] switch
     {
@@ -165,7 +165,7 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
 
     private Reading HighPeak(int number) => analyser.Train.On2 is { } on2
         ? HighSidePeaks.Form(
-            analyser.Record[Channel.VdsHigh],
+            analyser.Record[Channel.VdsHigh].Values,
             analyser.Bus,
             analyser.Train.Sigma(Channel.VdsHigh),
             on2.Departure,

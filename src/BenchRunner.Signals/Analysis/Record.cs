@@ -27,8 +27,9 @@ internal sealed class Record
     /// <summary>Sample interval, s.</summary>
     public double SampleInterval => _waveform.SampleInterval;
 
-    /// <summary>The samples of a channel in the roles of a firing low switch.</summary>
-    public ReadOnlySpan<double> this[Channel role] => _waveform[Measured(role)];
+    /// <summary>The samples of a channel in the roles of a firing low switch; none where it is not measured.</summary>
+    public Samples this[Channel role] =>
+        _waveform.Has(Measured(role)) ? _waveform.At(Measured(role)).All : default;
 
     /// <summary>Whether the channel of a role is measured.</summary>
     public bool Has(Channel role) => _waveform.Has(Measured(role));

@@ -13,7 +13,10 @@ public static class TraceConversion
     /// base.</exception>
     /// <remarks>value = (code − reference) · increment + origin. A code at a rail is converted like any other: whether
     /// a capture is clipped is a question to the codes, and validity asks it there.</remarks>
-    public static Waveform ToWaveform(IReadOnlyList<RawTrace> traces)
+    public static Waveform ToWaveform(IReadOnlyList<RawTrace> traces) => ToWaveform(traces, buffers: null);
+
+    /// <inheritdoc cref="ToWaveform(IReadOnlyList{RawTrace})"/>
+    internal static Waveform ToWaveform(IReadOnlyList<RawTrace> traces, SampleBuffers? buffers)
     {
         ArgumentNullException.ThrowIfNull(traces);
         if (traces.Count == 0)
@@ -22,37 +25,29 @@ public static class TraceConversion
         }
 
         RawTrace first = traces[0];
-        Dictionary<Channel, double[]> channels = new(traces.Count);
-        Dictionary<Channel, double> steps = new(traces.Count);
+        Dictionary<Channel, ChannelSamples> channels = new(traces.Count);
         foreach (RawTrace trace in traces)
         {
-            if (trace.SampleInterval != first.SampleInterval || trace.TimeOrigin != first.TimeOrigin)
+            if (trace.SampleInterval != first.SampleInterval || trace.TimeOrigin != first.TimeOrigin
+                || trace.Codes.Length != first.Codes.Length)
             {
                 throw new ArgumentException(
                     $"{trace.Channel.Name()} has another time base than {first.Channel.Name()}.", nameof(traces));
             }
 
-            if (!channels.TryAdd(trace.Channel, Values(trace)))
+            double step = Math.Abs(trace.Increment) * SmallestStep.OfCodes(trace.Codes);
+            double offset = trace.Origin - (trace.Reference * trace.Increment);
+            ChannelSamples samples = ChannelSamples.Of(trace.Codes, trace.Increment, offset, step, buffers);
+            if (!channels.TryAdd(trace.Channel, samples))
             {
                 throw new ArgumentException($"{trace.Channel.Name()} is given twice.", nameof(traces));
             }
-
-            steps[trace.Channel] = Math.Abs(trace.Increment) * SmallestStep.OfCodes(trace.Codes);
         }
 
-        return new Waveform(first.TimeOrigin, first.SampleInterval, channels, steps);
-    }
-
-    private static double[] Values(RawTrace trace)
-    {
-        double[] values = GC.AllocateUninitializedArray<double>(trace.Codes.Length);
-        short[] codes = trace.Codes;
-        (double reference, double increment, double origin) = (trace.Reference, trace.Increment, trace.Origin);
-        for (int i = 0; i < codes.Length && i < values.Length; i++)
-        {
-            values[i] = ((codes[i] - reference) * increment) + origin;
-        }
-
-        return values;
+        return new Waveform(
+            first.TimeOrigin,
+            first.SampleInterval,
+            first.Codes.Length,
+            channels.Select(channel => (channel.Key, channel.Value)));
     }
 }

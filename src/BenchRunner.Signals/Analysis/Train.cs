@@ -66,7 +66,7 @@ internal sealed class Train
     private static Train FindEdges(Record record, AnalysisSettings settings)
     {
         const Channel gate = Channel.VgsLow;
-        ReadOnlySpan<double> samples = record[gate];
+        Samples samples = record[gate];
         double step = record.Step(gate);
         double sigma = Noise.Sigma(samples, step, Math.Max(1, samples.Length / MostForFirstNoise));
         if (HistogramLevels.Find(samples, sigma, step) is not { } levels)
@@ -148,7 +148,7 @@ internal sealed class Train
             return false;
         }
 
-        ReadOnlySpan<double> current = record[Channel.IdLow];
+        Samples current = record[Channel.IdLow];
         double rest = start > 0 ? Integral.Mean(current, 0, Math.Min(start, Edges[0].Departure)) : 0;
         double early = Integral.Mean(current, start + (2 * part), start + (3 * part)) - rest;
         double late = Integral.Mean(current, end - part, end) - rest;

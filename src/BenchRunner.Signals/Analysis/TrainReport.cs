@@ -92,7 +92,7 @@ internal static class TrainReport
         Channel channel = analyser.Record.Measured(Channel.IdLow);
         double gain = settings.Corrections.TryGetValue(channel, out ChannelCorrection? stated) ? stated.Gain : 1;
         return analyser.Train.On1 is { Departure: >= 1 } on1 && recorded.Has(channel)
-            ? Integral.Mean(recorded[channel], 0, on1.Departure) / gain
+            ? Integral.Mean(recorded.At(channel).All, 0, on1.Departure) / gain
             : null;
     }
 
@@ -104,7 +104,7 @@ internal static class TrainReport
             return (null, null);
         }
 
-        ReadOnlySpan<double> vds = analyser.Record[Channel.VdsLow];
+        ReadOnlySpan<double> vds = analyser.Record[Channel.VdsLow].Values;
         int most = -1;
         Search(vds, analyser.Train.On1, analyser.Train.Off1, ref most);
         Search(vds, analyser.Train.On2, analyser.Train.Off2, ref most);
@@ -141,7 +141,7 @@ internal static class TrainReport
             return (null, null);
         }
 
-        ReadOnlySpan<double> gate = analyser.Record[Channel.VgsHigh];
+        ReadOnlySpan<double> gate = analyser.Record[Channel.VgsHigh].Values;
         int most = (int)Math.Ceiling(on2.Departure);
         int last = (int)Math.Min(analyser.Record.Last, Math.Ceiling(end.At + analyser.RecoveryOrigin));
         for (int i = most + 1; i <= last; i++)

@@ -34,6 +34,20 @@ public static class WaveformAnalysis
         return new AnalysisResult(facts, FormAll(analyser, settings));
     }
 
+    /// <summary>Corrects a capture as the scope gave it, and forms every quantity.</summary>
+    /// <param name="traces">One trace a channel, on one time base; at least one.</param>
+    /// <param name="settings">What is taken as given.</param>
+    /// <returns>Facts and quantities in the catalogue's order; a quantity that cannot be formed has a reason.</returns>
+    /// <exception cref="ArgumentException">No trace, a channel twice, traces of different length or time base, or a
+    /// stated correction that cannot be undone.</exception>
+    /// <remarks>What <see cref="Analyse(Waveform, AnalysisSettings)"/> says of the same capture converted, to the last
+    /// bit, without fresh memory for its samples.</remarks>
+    public static AnalysisResult Analyse(IReadOnlyList<RawTrace> traces, AnalysisSettings settings)
+    {
+        using SampleBuffers buffers = new();
+        return Analyse(TraceConversion.ToWaveform(traces, buffers), settings);
+    }
+
     private static List<QuantityValue> FormAll(Analyser analyser, AnalysisSettings settings)
     {
         QuantityForming forming = new(analyser, settings);

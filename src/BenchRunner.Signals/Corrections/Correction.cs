@@ -13,8 +13,8 @@ public static class Correction
     /// <summary>Corrects a waveform.</summary>
     /// <param name="waveform">The record as it came; not modified.</param>
     /// <param name="settings">The stated errors of the channels, and the shunt.</param>
-    /// <returns>The corrected waveform on the same time grid. A channel without anything to undo is the very same
-    /// array, and with nothing to undo at all the result is <paramref name="waveform"/> itself. Steps are in corrected
+    /// <returns>The corrected waveform on the same time grid. A channel without anything to undo is shared,
+    /// and with nothing to undo at all the result is <paramref name="waveform"/> itself. Steps are in corrected
     /// units.</returns>
     /// <exception cref="ArgumentException">A gain is 0 or not finite, an offset or skew not finite, the shunt's
     /// resistance not above 0 or its inductance negative.</exception>
@@ -29,51 +29,44 @@ public static class Correction
         ArgumentNullException.ThrowIfNull(waveform);
         ArgumentNullException.ThrowIfNull(settings);
         double inductive = TimeConstant(settings.Shunt);
-        Dictionary<Channel, double[]> corrected = [];
-        Dictionary<Channel, double> steps = [];
+        Dictionary<Channel, ChannelSamples> corrected = [];
         foreach (Channel channel in waveform.Channels)
         {
             ChannelCorrection stated = settings.Corrections.GetValueOrDefault(channel) ?? new ChannelCorrection();
             Check(channel, stated);
             double filter = channel == Channel.IdLow ? inductive : 0;
-            if (Correct(waveform[channel], waveform.SampleInterval, stated, filter) is { } samples)
+            ChannelSamples recorded = waveform.At(channel);
+            ChannelSamples samples = Correct(recorded, waveform.SampleInterval, stated, filter);
+            if (samples != recorded)
             {
                 corrected[channel] = samples;
-                steps[channel] = waveform.Step(channel) / Math.Abs(stated.Gain);
             }
         }
 
-        return corrected.Count == 0 ? waveform : waveform.With(corrected, steps);
+        return waveform.With(corrected);
     }
 
-    /// <summary>Corrects one channel; null where there is nothing to undo.</summary>
-    private static double[]? Correct(ReadOnlySpan<double> recorded, double dt, ChannelCorrection stated, double filter)
+    /// <summary>Corrects one channel; the very same where there is nothing to undo.</summary>
+    private static ChannelSamples Correct(
+        ChannelSamples samples, double dt, ChannelCorrection stated, double filter)
     {
-        double[]? samples = null;
-        double offset = stated.Offset ?? 0;
-        if (offset != 0 || stated.Gain != 1)
+        if ((stated.Offset ?? 0) != 0 || stated.Gain != 1)
         {
-            samples = new double[recorded.Length];
-            for (int i = 0; i < samples.Length && i < recorded.Length; i++)
-            {
-                samples[i] = (recorded[i] - offset) / stated.Gain;
-            }
+            samples = samples.Undo(stated.Offset ?? 0, stated.Gain);
         }
 
         if (filter > 0)
         {
-            samples ??= recorded.ToArray();
-            ShuntCorrection.Apply(samples, dt, filter);
+            samples = samples.Filtered((recorded, current) =>
+            {
+                recorded.CopyTo(current);
+                ShuntCorrection.Apply(current, dt, filter);
+            });
         }
 
-        if (stated.Skew != 0)
-        {
-            double[] moved = new double[recorded.Length];
-            SkewCorrection.Apply(samples ?? recorded, stated.Skew / dt, moved);
-            samples = moved;
-        }
-
-        return samples;
+        return stated.Skew == 0
+            ? samples
+            : samples.Filtered((recorded, moved) => SkewCorrection.Apply(recorded, stated.Skew / dt, moved));
     }
 
     private static double TimeConstant(Shunt? shunt)

@@ -1,3 +1,5 @@
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Edges;
 
 /// <summary>Where a signal crosses a level.</summary>
@@ -25,6 +27,16 @@ public static class Crossing
         double hysteresis,
         CrossingDirection direction,
         double from,
+        double to) =>
+        First(new Samples(samples), level, hysteresis, direction, from, to);
+
+    /// <inheritdoc cref="First(ReadOnlySpan{double}, double, double, CrossingDirection, double, double)"/>
+    public static double? First(
+        Samples samples,
+        double level,
+        double hysteresis,
+        CrossingDirection direction,
+        double from,
         double to)
     {
         int start = Math.Max(0, (int)Math.Floor(Math.Min(from, samples.Length)));
@@ -44,7 +56,7 @@ public static class Crossing
                 return null;
             }
 
-            double found = Last(samples, level, rises, start, beyond);
+            double found = Last(samples.Values, level, rises, start, beyond);
             if (found >= from)
             {
                 return found <= to ? found : null;

@@ -1,3 +1,5 @@
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Edges;
 
 /// <summary>Walks over all crossings of a level that count, upwards and downwards in turn.</summary>
@@ -7,7 +9,7 @@ namespace BenchRunner.Signals.Edges;
 /// </remarks>
 public ref struct CrossingScan
 {
-    private readonly ReadOnlySpan<double> _samples;
+    private readonly Samples _samples;
     private readonly double _level;
     private readonly double _hysteresis;
     private readonly int _last;
@@ -21,7 +23,7 @@ public ref struct CrossingScan
     /// <param name="hysteresis">How far beyond the level the signal must go, 0 or more.</param>
     /// <param name="from">First sample.</param>
     /// <param name="to">Last sample.</param>
-    public CrossingScan(ReadOnlySpan<double> samples, double level, double hysteresis, int from, int to)
+    public CrossingScan(Samples samples, double level, double hysteresis, int from, int to)
     {
         _samples = samples;
         _level = level;
@@ -45,7 +47,7 @@ public ref struct CrossingScan
         bool rises = !_above;
         double counts = LevelSearch.Counts(_level, _hysteresis, rises);
         int beyond = LevelSearch.First(_samples, counts, rises, _index + 1, _last);
-        double found = beyond > _last ? double.NaN : Crossing.Last(_samples, _level, rises, _start, beyond);
+        double found = beyond > _last ? double.NaN : Crossing.Last(_samples.Values, _level, rises, _start, beyond);
         if (double.IsNaN(found))
         {
             _index = _last;

@@ -1,5 +1,5 @@
-using System.Buffers;
 using BenchRunner.Signals.Levels;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Edges;
 
@@ -24,7 +24,7 @@ public static class GateEdges
     /// crossing inside it is an edge.
     /// </remarks>
     public static GateEdge[] Find(
-        ReadOnlySpan<double> gate, double dt, TwoLevels levels, double hysteresis, double deadTime)
+        Samples gate, double dt, TwoLevels levels, double hysteresis, double deadTime)
     {
         List<GateEdge> edges = [];
         double dead = deadTime / dt;
@@ -64,7 +64,7 @@ public static class GateEdges
     /// <param name="edge">The edge.</param>
     /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the record ends
     /// first.</returns>
-    public static double? Duration(ReadOnlySpan<double> gate, TwoLevels levels, double hysteresis, in GateEdge edge)
+    public static double? Duration(Samples gate, TwoLevels levels, double hysteresis, in GateEdge edge)
     {
         double level = levels.At(edge.Direction == CrossingDirection.Rising ? 0.9 : 0.1);
         double? end = Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, gate.Length - 1);
@@ -76,7 +76,7 @@ public static class GateEdges
 
     private static void Add(
         List<GateEdge> edges,
-        ReadOnlySpan<double> gate,
+        Samples gate,
         double dt,
         TwoLevels levels,
         double hysteresis,
@@ -93,7 +93,7 @@ public static class GateEdges
     /// <remarks>The percents lie between the level the gate leaves, which may have drifted, and the other
     /// state's.</remarks>
     private static double Departure(
-        ReadOnlySpan<double> gate,
+        Samples gate,
         double dt,
         TwoLevels levels,
         double hysteresis,
@@ -124,17 +124,13 @@ public static class GateEdges
 
     /// <summary>Median of the gate from 0.8 to 0.4 µs before the edge, or of the middle half of a shorter state,
     /// V.</summary>
-    private static double LevelLeft(ReadOnlySpan<double> gate, double dt, double state, double at)
+    private static double LevelLeft(Samples gate, double dt, double state, double at)
     {
         bool longEnough = (at - state) * dt >= StateFrom;
         double from = longEnough ? at - (StateFrom / dt) : state + ((at - state) / 4);
         double to = longEnough ? at - (StateTo / dt) : at - ((at - state) / 4);
         int first = Math.Clamp((int)Math.Ceiling(from), 0, gate.Length - 1);
         int count = Math.Clamp((int)Math.Floor(to) - first + 1, 1, gate.Length - first);
-        double[] rented = ArrayPool<double>.Shared.Rent(count);
-        gate.Slice(first, count).CopyTo(rented);
-        double median = Median.Of(rented.AsSpan(0, count));
-        ArrayPool<double>.Shared.Return(rented);
-        return median;
+        return Median.Of(gate.Slice(first, count));
     }
 }

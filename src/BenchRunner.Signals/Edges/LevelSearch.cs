@@ -1,5 +1,6 @@
 using System.Numerics;
 using System.Runtime.InteropServices;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Edges;
 
@@ -18,7 +19,11 @@ internal static class LevelSearch
     /// <param name="from">First sample looked at.</param>
     /// <param name="last">Last sample looked at.</param>
     /// <returns>Its index; <paramref name="last"/> + 1 where there is none.</returns>
-    public static int First(ReadOnlySpan<double> samples, double level, bool upwards, int from, int last)
+    public static int First(Samples samples, double level, bool upwards, int from, int last) => samples.HasCodes
+        ? CodeSearch.First(samples, level, upwards, from, last)
+        : First(samples.Values, level, upwards, from, last);
+
+    private static int First(ReadOnlySpan<double> samples, double level, bool upwards, int from, int last)
     {
         int i = from;
         Vector<double> wall = new(level);

@@ -1,4 +1,5 @@
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Levels;
 
@@ -14,7 +15,7 @@ public static class BusVoltage
     /// <param name="departure">Departure of the edge, in samples; inside the record.</param>
     /// <returns>The mean, V, over the 200 ns or what the record holds of them.</returns>
     /// <example>800 V falling by 0.02 V/ns, departure at 2 ns: 801.96 V.</example>
-    public static Reading Before(ReadOnlySpan<double> samples, double dt, double departure)
+    public static Reading Before(Samples samples, double dt, double departure)
     {
         double from = Math.Max(0, departure - (Window / dt));
         return departure - from >= 1

@@ -1,3 +1,6 @@
+using System.Buffers;
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Levels;
 
 /// <summary>State levels by a two-state histogram: <c>vgs_on</c>, <c>vgs_off</c>, definition
@@ -20,7 +23,33 @@ public static class HistogramLevels
     /// split, not the modes; a signal without two states has two modes all the same, so a swing below 6 σ is refused.
     /// Not for currents.
     /// </remarks>
-    public static TwoLevels? Find(ReadOnlySpan<double> samples, double sigma, double step, int bins = Bins)
+    public static TwoLevels? Find(ReadOnlySpan<double> samples, double sigma, double step, int bins = Bins) =>
+        Find(new Samples(samples), sigma, step, bins);
+
+    /// <inheritdoc cref="Find(ReadOnlySpan{double}, double, double, int)"/>
+    public static TwoLevels? Find(Samples samples, double sigma, double step, int bins = Bins)
+    {
+        if (!samples.HasCodes)
+        {
+            return Find(samples.Values, [], sigma, step, bins);
+        }
+
+        using CodeCounts counts = new(samples.Codes);
+        double[] rented = ArrayPool<double>.Shared.Rent(counts.Table.Length);
+        Span<double> values = rented.AsSpan(0, counts.Table.Length);
+        for (int i = 0; i < values.Length; i++)
+        {
+            values[i] = samples.Value(counts.Lowest + i);
+        }
+
+        TwoLevels? levels = Find(values, counts.Table, sigma, step, bins);
+        ArrayPool<double>.Shared.Return(rented);
+        return levels;
+    }
+
+    /// <summary>Finds the levels of values that occur each as often as its count says; once, without counts.</summary>
+    private static TwoLevels? Find(
+        ReadOnlySpan<double> samples, ReadOnlySpan<int> counts, double sigma, double step, int bins)
     {
         double low = double.PositiveInfinity;
         double high = double.NegativeInfinity;
@@ -41,15 +70,15 @@ public static class HistogramLevels
         Span<int> histogram = stackalloc int[count];
         histogram.Clear();
         double scale = 1 / width;
-        foreach (double x in samples)
+        for (int i = 0; i < samples.Length; i++)
         {
-            histogram[Math.Min(count - 1, (int)((x - low) * scale))]++;
+            histogram[Math.Min(count - 1, (int)((samples[i] - low) * scale))] += counts.IsEmpty ? 1 : counts[i];
         }
 
         int half = count / 2;
         double reach = Math.Max(3 * sigma, width);
-        double first = MeanNear(samples, low + ((Fullest(histogram[..half]) + 0.5) * width), reach);
-        double second = MeanNear(samples, low + ((half + Fullest(histogram[half..]) + 0.5) * width), reach);
+        double first = MeanNear(samples, counts, low + ((Fullest(histogram[..half]) + 0.5) * width), reach);
+        double second = MeanNear(samples, counts, low + ((half + Fullest(histogram[half..]) + 0.5) * width), reach);
         return second - first > 6 * sigma ? new TwoLevels(first, second) : null;
     }
 
@@ -64,17 +93,19 @@ public static class HistogramLevels
         return best;
     }
 
-    private static double MeanNear(ReadOnlySpan<double> samples, double centre, double reach)
+    private static double MeanNear(
+        ReadOnlySpan<double> samples, ReadOnlySpan<int> counts, double centre, double reach)
     {
         double sum = 0;
         int count = 0;
-        foreach (double x in samples)
+        for (int i = 0; i < samples.Length; i++)
         {
-            double away = x - centre;
+            double away = samples[i] - centre;
             if (away <= reach && away >= -reach)
             {
-                sum += away;
-                count++;
+                int times = counts.IsEmpty ? 1 : counts[i];
+                sum += away * times;
+                count += times;
             }
         }
 

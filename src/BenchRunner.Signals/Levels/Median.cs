@@ -1,3 +1,6 @@
+using System.Buffers;
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Levels;
 
 /// <summary>The median of numbers.</summary>
@@ -29,6 +32,28 @@ public static class Median
         }
 
         return lower + ((upper - lower) / 2);
+    }
+
+    /// <summary>The middle value of a stretch; of an even count the mean of the two middle ones.</summary>
+    /// <param name="samples">The stretch, at least one sample; not reordered.</param>
+    internal static double Of(Samples samples)
+    {
+        int middle = samples.Length / 2;
+        if (samples.HasCodes)
+        {
+            using CodeCounts counts = new(samples.Codes);
+            double above = samples.Value(counts.At(middle));
+            double below = samples.Length % 2 == 1 ? above : samples.Value(counts.At(middle - 1));
+            (below, above) = (Math.Min(below, above), Math.Max(below, above));
+            return below + ((above - below) / 2);
+        }
+
+        double[] rented = ArrayPool<double>.Shared.Rent(samples.Length);
+        Span<double> copy = rented.AsSpan(0, samples.Length);
+        samples.Values.CopyTo(copy);
+        double median = Of(copy);
+        ArrayPool<double>.Shared.Return(rented);
+        return median;
     }
 
     private static double Select(Span<double> values, int rank)

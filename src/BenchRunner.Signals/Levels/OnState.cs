@@ -1,4 +1,5 @@
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Levels;
 
@@ -15,7 +16,7 @@ public static class OnState
     /// <returns>The level, V.</returns>
     /// <remarks>A window, not a histogram: the on state ramps with the current. A probe that recovers slowly from the
     /// blocking voltage reads too high in a short pulse.</remarks>
-    public static Reading Form(ReadOnlySpan<double> vds, double on, double off, double departure)
+    public static Reading Form(Samples vds, double on, double off, double departure)
     {
         double from = Math.Max(0, departure - (Part * (off - on)));
         return departure > from && departure <= vds.Length - 1

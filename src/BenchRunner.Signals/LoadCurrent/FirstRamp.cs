@@ -1,4 +1,6 @@
+using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.LoadCurrent;
 
@@ -53,7 +55,7 @@ public sealed class FirstRamp
     /// </remarks>
     /// <example>0.3 A + 5 A/µs · t, pulse 0 to 5 µs: 5 A/µs, 0, 25.3 A.</example>
     public static FirstRamp Fit(
-        ReadOnlySpan<double> current, double dt, double? on1, double off1, double departure, int parts = Parts)
+        Samples current, double dt, double? on1, double off1, double departure, int parts = Parts)
     {
         double pulse = off1 - (on1 ?? 0);
         double from = on1 is null ? 0 : on1.Value + (Lead * pulse);
@@ -85,7 +87,7 @@ public sealed class FirstRamp
         return new FirstRamp(none, none, none, none);
     }
 
-    private static double LargestResidual(ReadOnlySpan<double> current, Line line, double from, double to, int parts)
+    private static double LargestResidual(Samples current, Line line, double from, double to, int parts)
     {
         int first = Math.Max(0, (int)Math.Ceiling(from));
         int count = (int)Math.Min(current.Length - 1, Math.Floor(to)) - first + 1;
@@ -94,15 +96,28 @@ public sealed class FirstRamp
         {
             int start = first + (int)((long)count * part / parts);
             int end = first + (int)((long)count * (part + 1) / parts);
-            double sum = 0;
-            for (int i = start; i < end; i++)
-            {
-                sum += current[i] - line.At(i);
-            }
-
-            largest = end > start ? Math.Max(largest, Math.Abs(sum / (end - start))) : largest;
+            double residual = end > start
+                ? Mean(current.Slice(start, end - start)) - line.At(start + ((end - start - 1) / 2.0))
+                : 0;
+            largest = Math.Max(largest, Math.Abs(residual));
         }
 
         return largest;
+    }
+
+    private static double Mean(Samples samples)
+    {
+        if (samples.HasCodes)
+        {
+            return samples.Offset + (samples.Gain * ((double)CodeSums.Sum(samples.Codes) / samples.Length));
+        }
+
+        double sum = 0;
+        foreach (double sample in samples.Values)
+        {
+            sum += sample - samples[0];
+        }
+
+        return samples[0] + (sum / samples.Length);
     }
 }

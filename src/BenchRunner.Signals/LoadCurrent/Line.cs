@@ -1,3 +1,6 @@
+using BenchRunner.Signals.Levels;
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.LoadCurrent;
 
 /// <summary>A straight line over positions in samples: value = centre value + slope · (position − centre).</summary>
@@ -20,7 +23,11 @@ public readonly record struct Line(double Centre, double Value, double Slope)
     /// held).</returns>
     /// <remarks>Ordinary least squares on a uniform grid: the sum of squared positions is closed, n(n² −
     /// 1)/12.</remarks>
-    public static Line? Fit(ReadOnlySpan<double> samples, double from, double to, double? slope = null)
+    public static Line? Fit(ReadOnlySpan<double> samples, double from, double to, double? slope = null) =>
+        Fit(new Samples(samples), from, to, slope);
+
+    /// <inheritdoc cref="Fit(ReadOnlySpan{double}, double, double, double?)"/>
+    public static Line? Fit(Samples samples, double from, double to, double? slope = null)
     {
         int first = Math.Max(0, (int)Math.Ceiling(Math.Min(from, samples.Length)));
         int last = (int)Math.Min(samples.Length - 1, Math.Floor(to));
@@ -31,17 +38,34 @@ public readonly record struct Line(double Centre, double Value, double Slope)
         }
 
         double half = (count - 1) / 2.0;
-        double reference = samples[first];
+        (double mean, double moment) = samples.HasCodes
+            ? Moments(samples.Slice(first, count))
+            : Moments(samples.Values.Slice(first, count));
+        double squares = (double)count * (((double)count * count) - 1) / 12;
+        return new Line(first + half, mean, slope ?? (moment / squares));
+    }
+
+    /// <summary>Mean, and sum of the samples times their distance from the middle.</summary>
+    private static (double Mean, double Moment) Moments(ReadOnlySpan<double> samples)
+    {
+        double half = (samples.Length - 1) / 2.0;
+        double reference = samples[0];
         double sum = 0;
         double moment = 0;
-        for (int i = 0; i < count; i++)
+        for (int i = 0; i < samples.Length; i++)
         {
-            double y = samples[first + i] - reference;
+            double y = samples[i] - reference;
             sum += y;
             moment += y * (i - half);
         }
 
-        double squares = (double)count * (((double)count * count) - 1) / 12;
-        return new Line(first + half, reference + (sum / count), slope ?? (moment / squares));
+        return (reference + (sum / samples.Length), moment);
+    }
+
+    private static (double Mean, double Moment) Moments(Samples samples)
+    {
+        long sum = CodeSums.Sum(samples.Codes);
+        Int128 twice = (2 * CodeSums.Moment(samples.Codes)) - ((Int128)(samples.Length - 1) * sum);
+        return ((samples.Gain * ((double)sum / samples.Length)) + samples.Offset, samples.Gain * (double)twice / 2);
     }
 }

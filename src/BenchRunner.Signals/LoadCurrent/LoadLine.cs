@@ -1,4 +1,5 @@
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.LoadCurrent;
 
@@ -39,7 +40,7 @@ public readonly record struct LoadLine(double Knee, Line Ramp, double From, doub
     /// <param name="reason">Why there is no line; null where there is one.</param>
     /// <returns>The line; default where there is none.</returns>
     public static LoadLine Fit(
-        ReadOnlySpan<double> current,
+        Samples current,
         double on2,
         double? off2,
         double knee,

@@ -1,5 +1,6 @@
 using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Peaks;
 
@@ -34,7 +35,7 @@ public static class TurnOffPeak
     /// <param name="windowFrom">Start of the ring's window, in samples.</param>
     /// <param name="windowTo">End of the ring's window, in samples.</param>
     /// <returns>The level, V.</returns>
-    public static Reading Settled(ReadOnlySpan<double> vds, double windowFrom, double windowTo)
+    public static Reading Settled(Samples vds, double windowFrom, double windowTo)
     {
         double from = windowTo - ((windowTo - windowFrom) / 3);
         return Reading.Of(Integral.Mean(vds, from, windowTo), from, windowTo);

@@ -1,5 +1,6 @@
 using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Switching;
 
@@ -21,7 +22,7 @@ public static class LoopInductance
     /// </remarks>
     /// <example>100 V missing for 16 ns while the current rises by 80 A: 20 nH.</example>
     public static Reading Form(
-        in SwitchingEvent turnOn, ReadOnlySpan<double> vdsHigh, double? forwardVoltage, double shuntResistance)
+        in SwitchingEvent turnOn, Samples vdsHigh, double? forwardVoltage, double shuntResistance)
     {
         Instant start = turnOn.CurrentAt(0.1);
         Instant end = turnOn.CurrentAt(0.9);
@@ -30,7 +31,7 @@ public static class LoopInductance
             return Reading.None(reason);
         }
 
-        if (vdsHigh.IsEmpty && forwardVoltage is null)
+        if (vdsHigh.Length == 0 && forwardVoltage is null)
         {
             return Reading.None("vds_high is not measured and the diode's forward voltage is not stated");
         }
@@ -41,12 +42,12 @@ public static class LoopInductance
         }
 
         double length = end.At - start.At;
-        double high = vdsHigh.IsEmpty ? -forwardVoltage!.Value * length : Integral.Of(vdsHigh, start.At, end.At);
+        double high = vdsHigh.Length == 0 ? -forwardVoltage!.Value * length : Integral.Of(vdsHigh, start.At, end.At);
         double flux = (turnOn.Bus.Value * length)
             - Integral.Of(turnOn.Vds, start.At, end.At)
             - high
             - (shuntResistance * Integral.Of(turnOn.Id, start.At, end.At));
-        double change = Integral.At(turnOn.Id, end.At) - Integral.At(turnOn.Id, start.At);
+        double change = Integral.At(turnOn.Id.Values, end.At) - Integral.At(turnOn.Id.Values, start.At);
         return Reading.Of(flux * turnOn.SampleInterval / change, start.At, end.At);
     }
 }

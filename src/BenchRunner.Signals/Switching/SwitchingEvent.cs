@@ -1,5 +1,6 @@
 using BenchRunner.Signals.Edges;
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Switching;
 
@@ -15,10 +16,10 @@ public readonly ref struct SwitchingEvent
     private const double DecidedPart = 0.02;
 
     /// <summary>Voltage of the firing switch, V, uniform, finite.</summary>
-    public required ReadOnlySpan<double> Vds { get; init; }
+    public required Samples Vds { get; init; }
 
     /// <summary>Current of the firing switch, A, on the same grid.</summary>
-    public required ReadOnlySpan<double> Id { get; init; }
+    public required Samples Id { get; init; }
 
     /// <summary>Sample interval, s; above 0.</summary>
     public required double SampleInterval { get; init; }
@@ -117,10 +118,11 @@ public readonly ref struct SwitchingEvent
             return false;
         }
 
+        ReadOnlySpan<double> vds = Vds.Values;
         double sign = TurnsOn ? -1 : 1;
-        int last = (int)Math.Min(Vds.Length - 1, Math.Floor(End));
+        int last = (int)Math.Min(vds.Length - 1, Math.Floor(End));
         int i = Math.Max(1, (int)Math.Ceiling(Departure));
-        while (i <= last && !(sign * Vds[i - 1] <= sign * level && sign * Vds[i] > sign * level))
+        while (i <= last && !(sign * vds[i - 1] <= sign * level && sign * vds[i] > sign * level))
         {
             i++;
         }
@@ -128,7 +130,7 @@ public readonly ref struct SwitchingEvent
         double furthest = double.NegativeInfinity;
         for (; i <= last; i++)
         {
-            double beyond = sign * (Vds[i] - level);
+            double beyond = sign * (vds[i] - level);
             if (beyond >= clear)
             {
                 return false;

@@ -7,8 +7,7 @@ namespace BenchRunner.Signals.Traces;
 /// </remarks>
 public sealed class Waveform
 {
-    private readonly double[]?[] _samples = new double[]?[ChannelNames.All.Count];
-    private readonly double[] _step = new double[ChannelNames.All.Count];
+    private readonly ChannelSamples?[] _channels = new ChannelSamples?[ChannelNames.All.Count];
 
     /// <summary>Makes a waveform of channels of equal length.</summary>
     /// <param name="timeOrigin">Time of the first sample, s.</param>
@@ -23,22 +22,14 @@ public sealed class Waveform
         double sampleInterval,
         IReadOnlyDictionary<Channel, double[]> channels,
         IReadOnlyDictionary<Channel, double>? steps = null)
+        : this(timeOrigin, sampleInterval, channels?.Values.FirstOrDefault()?.Length ?? 0)
     {
         ArgumentNullException.ThrowIfNull(channels);
-        if (!double.IsFinite(sampleInterval) || sampleInterval <= 0)
-        {
-            throw new ArgumentOutOfRangeException(
-                nameof(sampleInterval), sampleInterval, "must be finite and above 0 s");
-        }
-
         if (channels.Count == 0)
         {
             throw new ArgumentException("A waveform needs at least one channel.", nameof(channels));
         }
 
-        TimeOrigin = timeOrigin;
-        SampleInterval = sampleInterval;
-        Count = channels.Values.First().Length;
         foreach ((Channel channel, double[] samples) in channels)
         {
             if (samples.Length != Count)
@@ -48,13 +39,31 @@ public sealed class Waveform
                     nameof(channels));
             }
 
-            _samples[(int)channel] = samples;
+            double step = steps is not null && steps.TryGetValue(channel, out double stated) ? stated : 0;
+            _channels[(int)channel] = new ChannelSamples(samples, Count, step);
+        }
+    }
+
+    /// <summary>Makes a waveform of channels that may be codes still.</summary>
+    internal Waveform(
+        double timeOrigin, double sampleInterval, int count, IEnumerable<(Channel, ChannelSamples)> channels)
+        : this(timeOrigin, sampleInterval, count)
+    {
+        foreach ((Channel channel, ChannelSamples samples) in channels)
+        {
+            _channels[(int)channel] = samples;
+        }
+    }
+
+    private Waveform(double timeOrigin, double sampleInterval, int count)
+    {
+        if (!double.IsFinite(sampleInterval) || sampleInterval <= 0)
+        {
+            throw new ArgumentOutOfRangeException(
+                nameof(sampleInterval), sampleInterval, "must be finite and above 0 s");
         }
 
-        foreach ((Channel channel, double step) in steps ?? new Dictionary<Channel, double>())
-        {
-            _step[(int)channel] = step;
-        }
+        (TimeOrigin, SampleInterval, Count) = (timeOrigin, sampleInterval, count);
     }
 
     /// <summary>Time of the first sample, s.</summary>
@@ -70,32 +79,26 @@ public sealed class Waveform
     public IEnumerable<Channel> Channels => ChannelNames.All.Where(Has);
 
     /// <summary>Whether a channel is present.</summary>
-    public bool Has(Channel channel) => _samples[(int)channel] is not null;
+    public bool Has(Channel channel) => _channels[(int)channel] is not null;
 
     /// <summary>The samples of a channel, V or A; empty where the channel is absent.</summary>
-    public ReadOnlySpan<double> this[Channel channel] => _samples[(int)channel];
+    public ReadOnlySpan<double> this[Channel channel] =>
+        _channels[(int)channel] is { } samples ? samples.Values : default;
 
     /// <summary>The smallest step of the record (LSB) of a channel, V or A; 0 where it was not stated.</summary>
-    public double Step(Channel channel) => _step[(int)channel];
+    public double Step(Channel channel) => _channels[(int)channel]?.Step ?? 0;
+
+    /// <summary>A channel that is present, with its codes where it has any.</summary>
+    internal ChannelSamples At(Channel channel) => _channels[(int)channel]!;
 
     /// <summary>The same waveform with some channels replaced; the other channels are shared, not copied.</summary>
-    /// <param name="channels">New samples of channels that the waveform has, V or A.</param>
-    /// <param name="steps">New steps of those channels, V or A; absent: as they were.</param>
-    /// <exception cref="ArgumentException">A channel of another length.</exception>
-    public Waveform With(
-        IReadOnlyDictionary<Channel, double[]> channels, IReadOnlyDictionary<Channel, double>? steps = null)
-    {
-        ArgumentNullException.ThrowIfNull(channels);
-        Dictionary<Channel, double[]> all = [];
-        Dictionary<Channel, double> allSteps = [];
-        foreach (Channel channel in Channels)
-        {
-            all[channel] = channels.GetValueOrDefault(channel) ?? _samples[(int)channel]!;
-            allSteps[channel] = steps is not null && steps.TryGetValue(channel, out double step) ? step : Step(channel);
-        }
-
-        return new Waveform(TimeOrigin, SampleInterval, all, allSteps);
-    }
+    internal Waveform With(IReadOnlyDictionary<Channel, ChannelSamples> channels) => channels.Count == 0
+        ? this
+        : new Waveform(
+            TimeOrigin,
+            SampleInterval,
+            Count,
+            Channels.Select(channel => (channel, channels.GetValueOrDefault(channel) ?? At(channel))));
 
     /// <summary>Time of a (fractional) sample index, s.</summary>
     public double TimeAt(double index) => TimeOrigin + (index * SampleInterval);
