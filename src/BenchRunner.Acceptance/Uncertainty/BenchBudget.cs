@@ -32,13 +32,16 @@ public sealed class BenchBudget
         ArgumentNullException.ThrowIfNull(traces);
         ArgumentNullException.ThrowIfNull(bench);
         ArgumentNullException.ThrowIfNull(settings);
-        Waveform waveform = TraceConversion.ToWaveform(traces);
-        AnalysisResult centre = WaveformAnalysis.Analyse(waveform, settings);
+        AnalysisResult centre = WaveformAnalysis.Analyse(traces, settings);
         var entries = centre.Quantities.Select(_ => new List<UncertaintyEntry>()).ToArray();
         string?[] reasons = new string?[entries.Length];
-        foreach (ChannelSetup setup in bench.Channels.Where(setup => waveform.Has(setup.Channel)))
+        foreach (ChannelSetup setup in bench.Channels)
         {
-            RawTrace trace = traces.First(one => one.Channel == setup.Channel);
+            if (traces.FirstOrDefault(one => one.Channel == setup.Channel) is not { } trace)
+            {
+                continue;
+            }
+
             double rounding = trace.FullScale / Math.Pow(2, bench.ScopeBits) / Math.Sqrt(12);
             string name = setup.Channel.Name();
             ChannelCorrection stated = Stated(settings, setup.Channel, centre.Train);
@@ -56,7 +59,7 @@ public sealed class BenchBudget
 
             double[] Vary(string source, double standard, double step, Func<double, ChannelCorrection> by)
             {
-                double[] sensitivities = Sensitivities(waveform, settings, centre, setup.Channel, step, by);
+                double[] sensitivities = Sensitivities(traces, settings, centre, setup.Channel, step, by);
                 for (int i = 0; i < entries.Length; i++)
                 {
                     entries[i].Add(new UncertaintyEntry(source, standard, sensitivities[i]));
@@ -100,7 +103,7 @@ public sealed class BenchBudget
     /// <summary>Change of each quantity over the change of one error; 0 where the error is stated as 0, NaN where none
     /// could be formed.</summary>
     private static double[] Sensitivities(
-        Waveform waveform,
+        IReadOnlyList<RawTrace> traces,
         AnalysisSettings settings,
         AnalysisResult centre,
         Channel channel,
@@ -112,8 +115,8 @@ public sealed class BenchBudget
             return new double[centre.Quantities.Count];
         }
 
-        AnalysisResult above = WaveformAnalysis.Analyse(waveform, With(settings, channel, by(step)));
-        AnalysisResult below = WaveformAnalysis.Analyse(waveform, With(settings, channel, by(-step)));
+        AnalysisResult above = WaveformAnalysis.Analyse(traces, With(settings, channel, by(step)));
+        AnalysisResult below = WaveformAnalysis.Analyse(traces, With(settings, channel, by(-step)));
         double[] sensitivities = new double[centre.Quantities.Count];
         for (int i = 0; i < sensitivities.Length; i++)
         {

@@ -18,7 +18,7 @@ public static class CaptureAnalysis
         ArgumentNullException.ThrowIfNull(traces);
         ArgumentNullException.ThrowIfNull(settings);
         return FitTogether(traces)
-            ? WaveformAnalysis.Analyse(TraceConversion.ToWaveform(traces), settings)
+            ? WaveformAnalysis.Analyse(traces, settings)
             : new AnalysisResult(new TrainFacts(), []);
     }
 

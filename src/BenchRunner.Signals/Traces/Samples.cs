@@ -13,7 +13,7 @@ public readonly ref struct Samples
     /// <param name="values">The values, V or A; finite.</param>
     public Samples(ReadOnlySpan<double> values) => Values = values;
 
-    /// <summary>A stretch with the codes behind it.</summary>
+    /// <summary>A stretch with the codes behind it, its values at hand already.</summary>
     /// <param name="values">The values, V or A: code · gain + offset, to the last bit.</param>
     /// <param name="codes">The codes, as many.</param>
     /// <param name="gain">Volts or amperes a code; finite, not 0.</param>
@@ -43,6 +43,23 @@ public readonly ref struct Samples
 
     /// <summary>Whether there are codes behind the values.</summary>
     public bool HasCodes => !Codes.IsEmpty;
+
+    /// <summary>A stretch of codes, with their values.</summary>
+    /// <param name="codes">The codes.</param>
+    /// <param name="gain">Volts or amperes a code; finite, not 0.</param>
+    /// <param name="offset">Value of code 0, V or A; finite.</param>
+    /// <exception cref="ArgumentOutOfRangeException">Gain or offset are not finite, or the gain is 0.</exception>
+    public static Samples Of(ReadOnlySpan<short> codes, double gain, double offset)
+    {
+        if (!double.IsFinite(gain) || gain == 0 || !double.IsFinite(offset))
+        {
+            throw new ArgumentOutOfRangeException(nameof(gain), $"a gain of {gain} and an offset of {offset}");
+        }
+
+        double[] values = new double[codes.Length];
+        CodeConversion.ToValues(codes, gain, offset, values);
+        return new Samples(values, codes, gain, offset);
+    }
 
     /// <summary>The value of a sample, V or A.</summary>
     public double this[int index] => Values[index];
