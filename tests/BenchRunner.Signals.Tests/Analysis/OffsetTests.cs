@@ -71,8 +71,8 @@ public sealed class OffsetTests
     };
 
     private static Waveform Shifted(Waveform waveform, Dictionary<Channel, double> offsets) =>
-        waveform.With(offsets.ToDictionary(
-            p => p.Key, p => waveform[p.Key].ToArray().Select(x => x + p.Value).ToArray()));
+        new(waveform.TimeOrigin, waveform.SampleInterval, waveform.Channels.ToDictionary(
+            c => c, c => waveform[c].ToArray().Select(x => x + offsets.GetValueOrDefault(c)).ToArray()));
 
     private static Waveform Cut(Waveform waveform, int first) => new(
         waveform.TimeAt(first),
