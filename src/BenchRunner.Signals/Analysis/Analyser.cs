@@ -19,12 +19,14 @@ internal sealed class Analyser
 
     private readonly AnalysisSettings _settings;
     private LoadLine _line;
-    private double[] _irr = [];
+    private readonly SampleBuffers _buffers;
+    private double[]? _irr;
     private RingWindow? _ringId;
     private RingWindow? _ringOff;
 
-    public Analyser(Record record, Train train, AnalysisSettings settings)
+    public Analyser(Record record, Train train, AnalysisSettings settings, SampleBuffers buffers)
     {
+        _buffers = buffers;
         Record = record;
         Train = train;
         _settings = settings;
@@ -126,7 +128,7 @@ internal sealed class Analyser
     {
         int origin = RecoveryOrigin;
         ReadOnlySpan<double> irr = byLoadLine
-            ? _irr
+            ? _irr.AsSpan(0, RecoveryLength)
             : Record[Channel.IdHigh].Values.Slice(origin, RecoveryLength);
         Channel current = byLoadLine ? Channel.IdLow : Channel.IdHigh;
         return new RecoveryEvent(
@@ -213,7 +215,7 @@ internal sealed class Analyser
                 Record[Channel.IdLow], on2.At, Train.Off2?.At, knee.At, start, slope, out string? reason);
             if (reason is not null)
             {
-                _irr = [];
+                _irr = null;
                 return Reading.None(reason);
             }
 
@@ -234,15 +236,12 @@ internal sealed class Analyser
     {
         int origin = RecoveryOrigin;
         int length = RecoveryLength;
-        if (_irr.Length != length)
-        {
-            _irr = new double[length];
-        }
-
+        _irr ??= _buffers.Rent(length);
         ReadOnlySpan<double> current = Record[Channel.IdLow].Values.Slice(origin, length);
+        Span<double> irr = _irr.AsSpan(0, length);
         for (int i = 0; i < length; i++)
         {
-            _irr[i] = current[i] - _line.At(origin + i);
+            irr[i] = current[i] - _line.At(origin + i);
         }
     }
 }

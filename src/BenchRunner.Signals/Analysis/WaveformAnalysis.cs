@@ -23,15 +23,8 @@ public static class WaveformAnalysis
     {
         ArgumentNullException.ThrowIfNull(waveform);
         ArgumentNullException.ThrowIfNull(settings);
-        Clipping clipping = new(waveform, settings);
-        Waveform recorded = clipping.Bridge(waveform, isCorrected: false);
-        Waveform corrected = clipping.Bridge(Correction.Correct(recorded, settings), isCorrected: true);
-        Record record = new(corrected, clipping, settings);
-        Train train = Train.Find(record, settings);
-        Waveform rested = Baseline.Remove(corrected, record, train, settings, out BaselineSource baseline);
-        Analyser analyser = new(new Record(rested, clipping, settings), train, settings);
-        TrainFacts facts = TrainReport.Form(analyser, recorded, settings) with { Baseline = baseline };
-        return new AnalysisResult(facts, FormAll(analyser, settings));
+        using SampleBuffers buffers = new();
+        return Analyse(waveform, settings, buffers);
     }
 
     /// <summary>Corrects a capture as the scope gave it, and forms every quantity.</summary>
@@ -44,8 +37,22 @@ public static class WaveformAnalysis
     /// bit, without fresh memory for its samples.</remarks>
     public static AnalysisResult Analyse(IReadOnlyList<RawTrace> traces, AnalysisSettings settings)
     {
+        ArgumentNullException.ThrowIfNull(settings);
         using SampleBuffers buffers = new();
-        return Analyse(TraceConversion.ToWaveform(traces, buffers), settings);
+        return Analyse(TraceConversion.ToWaveform(traces, buffers), settings, buffers);
+    }
+
+    private static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings, SampleBuffers buffers)
+    {
+        Clipping clipping = new(waveform, settings);
+        Waveform recorded = clipping.Bridge(waveform, isCorrected: false);
+        Waveform corrected = clipping.Bridge(Correction.Correct(recorded, settings), isCorrected: true);
+        Record record = new(corrected, clipping, settings);
+        Train train = Train.Find(record, settings);
+        Waveform rested = Baseline.Remove(corrected, record, train, settings, out BaselineSource baseline);
+        Analyser analyser = new(new Record(rested, clipping, settings), train, settings, buffers);
+        TrainFacts facts = TrainReport.Form(analyser, recorded, settings) with { Baseline = baseline };
+        return new AnalysisResult(facts, FormAll(analyser, settings));
     }
 
     private static List<QuantityValue> FormAll(Analyser analyser, AnalysisSettings settings)
