@@ -3,8 +3,8 @@ using System.Text.Json;
 
 namespace BenchRunner.Benchmarks;
 
-/// <summary>The benchmark table: <c>dotnet run -c Release --project tests/benchmarks -- [group…] [--seed N] [--json]
-/// [--list]</c>.</summary>
+/// <summary>The benchmark table: <c>dotnet run -c Release --project tests/benchmarks -- [group | group/work]…
+/// [--seed N] [--json] [--list]</c>.</summary>
 internal static class Program
 {
     private const int Repeats = 2;
@@ -19,40 +19,35 @@ internal static class Program
     private static int Main(string[] arguments)
     {
         List<Goal> goals = [.. Goal.Read("goals.json", isOwn: false), .. Goal.Read("own-goals.json", isOwn: true)];
-        string[] known = [.. goals.Select(goal => goal.Group).Distinct()];
-        if (Options.Read(arguments, known) is not { } options)
+        if (Options.Read(arguments, goals) is not { } options)
         {
-            Console.Error.WriteLine($"usage: [{string.Join(" | ", known)}]… [--seed N] [--json] [--list]");
+            Console.Error.WriteLine(
+                "usage: [group | group/work]… [--seed N] [--json] [--list]; groups: "
+                    + string.Join(" ", goals.Select(goal => goal.Group).Distinct()));
             return 2;
         }
 
         List<Row> rows = [];
-        foreach (string group in known.Where(options.Wants))
+        foreach (IGrouping<string, Goal> group in goals.Where(options.Wants).GroupBy(goal => goal.Group))
         {
-            rows.AddRange(options.List
-                ? goals.Where(goal => goal.Group == group).Select(NotMeasured)
-                : Measure(group, goals, options.Seed));
+            rows.AddRange(options.List ? group.Select(NotMeasured) : Measure(group, options.Seed));
         }
 
         Write(rows, options);
         return 0;
     }
 
-    private static List<Row> Measure(string name, List<Goal> goals, int seed)
+    /// <summary>Measures the goals of one group, in the order of their file.</summary>
+    private static List<Row> Measure(IGrouping<string, Goal> goals, int seed)
     {
-        List<Row> rows = [];
-        if (_groups.TryGetValue(name, out Func<int, IGroup>? make))
+        if (!_groups.TryGetValue(goals.Key, out Func<int, IGroup>? make))
         {
-            using IGroup group = make(seed);
-            foreach (Benchmark benchmark in group.Benchmarks)
-            {
-                rows.Add(Measure(benchmark, goals.Single(goal => goal.Work == benchmark.Work)));
-            }
+            return [.. goals.Select(NotMeasured)];
         }
 
-        rows.AddRange(goals.Where(goal => goal.Group == name && !rows.Exists(row => row.Goal == goal))
-            .Select(NotMeasured));
-        return rows;
+        using IGroup group = make(seed);
+        return [.. goals.Select(goal => group.Benchmarks.SingleOrDefault(benchmark => benchmark.Work == goal.Work)
+            is { } benchmark ? Measure(benchmark, goal) : NotMeasured(goal))];
     }
 
     /// <summary>A missed row is repeated twice; the last stands, all are shown.</summary>

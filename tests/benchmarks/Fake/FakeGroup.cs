@@ -7,8 +7,8 @@ using FakeBench.Physics;
 namespace BenchRunner.Benchmarks;
 
 /// <summary>What one simulated capture costs, beside LSODA on the same equations.</summary>
-/// <remarks>Ours holds the observation of eight signals, the probes, noise and rounding of four channels; the peer's does
-/// not: it solves, and forms four signals without noise.</remarks>
+/// <remarks>Ours holds the observation of eight signals, the probes, noise and rounding of four channels; the peer's
+/// does not: it solves, and forms four signals without noise.</remarks>
 internal sealed class FakeGroup : IGroup
 {
     private const int Points = 10_000;

@@ -7,14 +7,18 @@ namespace BenchRunner.Benchmarks;
 /// <summary>Whether ours and the peer say the same of one record: else their times cannot be compared.</summary>
 internal static class CaptureAgreement
 {
+    private const double Tolerance = 1e-3;
+
+    // A weak further mode (a harmonic of the ring) at the edge of being described is taken in from one start and left
+    // out from another; the decay of the strong one then moves by a tenth of a percent.
+    private const double DecayTolerance = 3e-3;
+
     /// <summary>Compares every quantity that the four channels allow, and the facts that both form.</summary>
     /// <param name="ours">Our analysis.</param>
     /// <param name="theirs">The peer's values by name.</param>
-    /// <param name="tolerance">Largest relative difference.</param>
     /// <param name="note">What was compared, and the largest difference.</param>
     /// <returns>What differs; null: nothing.</returns>
-    public static string? Check(
-        AnalysisResult ours, Dictionary<string, double> theirs, double tolerance, out string note)
+    public static string? Check(AnalysisResult ours, Dictionary<string, double> theirs, out string note)
     {
         Dictionary<string, double> values = Values(ours);
         List<string> wrong = [];
@@ -29,7 +33,9 @@ internal static class CaptureAgreement
 
             double away = Math.Abs(mine - other) / Math.Max(Math.Abs(mine), Math.Abs(other));
             worst = away > worst.Away ? (name, away) : worst;
-            if (!(away <= tolerance))
+            bool isDecay = name.StartsWith("ring_", StringComparison.Ordinal)
+                && !name.StartsWith("ring_frequency", StringComparison.Ordinal);
+            if (!(away <= (isDecay ? DecayTolerance : Tolerance)))
             {
                 wrong.Add(string.Create(CultureInfo.InvariantCulture, $"{name} {mine:G6} against {other:G6}"));
             }

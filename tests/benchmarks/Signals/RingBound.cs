@@ -2,8 +2,8 @@ namespace BenchRunner.Benchmarks;
 
 /// <summary>The Cramér-Rao bound of a ring in white noise: no unbiased estimate scatters less.</summary>
 /// <remarks>
-/// Fisher's matrix of the whole model (offset, slope, amplitude, phase, decay, turn) is JᵀJ/σ², J the samples' slopes by
-/// these six; its inverse bounds their covariance, and through its own slopes that of the damping ratio (S. Kay,
+/// Fisher's matrix of the whole model (offset, slope, amplitude, phase, decay, turn) is JᵀJ/σ², J the samples' slopes
+/// by these six; its inverse bounds their covariance, and through its own slopes that of the damping ratio (S. Kay,
 /// Fundamentals of Statistical Signal Processing, volume 1, chapter 3; from memory).
 /// </remarks>
 internal static class RingBound

@@ -6,8 +6,8 @@ namespace BenchRunner.Benchmarks;
 /// <summary>Scatter and bias of the ring fit over many draws of the noise, beside the Cramér-Rao bound.</summary>
 /// <remarks>
 /// The phase is drawn with the noise, and each error is taken in units of the bound at its phase. Of 4,000 draws the
-/// spread is known to 1/√(2 · 4,000) = 1.1 %, the bias to 1/√4,000 = 1.6 % of the spread. The fit is free to choose one to
-/// three modes, as in an analysis.
+/// spread is known to 1/√(2 · 4,000) = 1.1 %, the bias to 1/√4,000 = 1.6 % of the spread. The fit is free to choose one
+/// to three modes, as in an analysis.
 /// </remarks>
 /// <param name="seed">Seed of the draws.</param>
 internal sealed class RingMonteCarlo(int seed)

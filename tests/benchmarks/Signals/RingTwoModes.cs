@@ -4,8 +4,8 @@ using BenchRunner.Signals.Ringing;
 namespace BenchRunner.Benchmarks;
 
 /// <summary>How often two modes of equal amplitude, 15 % apart, are told apart.</summary>
-/// <remarks>Damping 0.03, noise 1 % of an amplitude, exactly ten periods of the slower mode; phases drawn. Told apart: two
-/// modes, each frequency within 2 % of its truth.</remarks>
+/// <remarks>Damping 0.03, noise 1 % of an amplitude, exactly ten periods of the slower mode; phases drawn. Told apart:
+/// two modes, each frequency within 2 % of its truth.</remarks>
 internal static class RingTwoModes
 {
     private const int Trials = 500;

@@ -13,7 +13,6 @@ internal sealed class SignalsGroup : IGroup
     private const int Small = 10_000;
     private const int Middle = 100_000;
     private const int Large = 1_000_000;
-    private const double Agreement = 1e-3;
     private const double RingAgreement = 1e-6;
 
     private static readonly AnalysisSettings _settings = new() { ForwardVoltage = 3 };
@@ -62,7 +61,7 @@ internal sealed class SignalsGroup : IGroup
         }
 
         LoadCapture(traces);
-        string? wrong = CaptureAgreement.Check(Analyse(traces), _peer.Result("capture"), Agreement, out string note);
+        string? wrong = CaptureAgreement.Check(Analyse(traces), _peer.Result("capture"), out string note);
         Figure[] times = Rounds.Time(ours, _peer.Run("capture"));
         return new Outcome("s", times[0], Peer: times[1], Missing: wrong, Note: note);
     }

@@ -127,8 +127,8 @@ class Bridge:
             supply = min(max((supply_voltage - vc) / rout, 0.0), limit)
             dgh, dvh, dmh = high_rates(gh, vh, mh, jh, h)
             dgl, dvl, dml = low_rates(gl, vl, ml, jl, i)
-            return (across - rload * load, winding / cw, rp * (h - ip) / lp, i11 * loop + i12 * gate, dvh, dvl, dgh, dgl,
-                    (held - (rhigh + rgi_high) * jh - gh) / lg, i12 * loop + i22 * gate, dmh, dml,
+            return (across - rload * load, winding / cw, rp * (h - ip) / lp, i11 * loop + i12 * gate,
+                    dvh, dvl, dgh, dgl, (held - (rhigh + rgi_high) * jh - gh) / lg, i12 * loop + i22 * gate, dmh, dml,
                     (supply - i - vc / bleeder) / cb, (damping - esr * ic) / esl)
 
         return rates

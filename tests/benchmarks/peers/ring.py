@@ -1,7 +1,7 @@
 """Damped cosines fitted to a ring: subspace start by a singular value decomposition, then Levenberg-Marquardt.
 
-Model over t from 0 to 1 (the window): c + d t + sum of exp(-s t) (p cos(w t) + q sin(w t)), one to three modes; the order
-is that of the shortest description. Parameters in the order c, d, (p, q) a mode, (s, w) a mode.
+Model over t from 0 to 1 (the window): c + d t + sum of exp(-s t) (p cos(w t) + q sin(w t)), one to three modes; the
+order is that of the shortest description. Parameters in the order c, d, (p, q) a mode, (s, w) a mode.
 """
 
 import math
@@ -11,9 +11,12 @@ from scipy.linalg import svd
 from scipy.optimize import least_squares
 
 MOST_MODES = 3
-POINTS = 120  # of the start: more cost their cube and move it little
+POINTS = 100  # of the start: more cost their cube and move it little
 ROUGH = 1e-5
-FINE = 1e-12
+FINE = 1e-9  # the least squares are within rounding there: 1e-12 changes frequency and damping by less than 1e-9
+ROUGH_STEPS = 25  # an order that has not settled by then is taken as it stands
+FINE_STEPS = 60
+SLOWEST_TURN = 0.1  # rad over the window: what turns slower is a bare decay
 FLOOR = 1e-7
 
 
@@ -51,8 +54,9 @@ class Model:
         return whole
 
     def move(self, x):
-        if self.at is None or not np.array_equal(x, self.at):
-            self.at = x.copy()
+        at = x.tobytes()
+        if at != self.at:
+            self.at = at
             self.basis(self.full(x)[2 + 2 * self.modes:])
 
     def residual(self, x):
@@ -80,11 +84,10 @@ class Model:
             normal[-1, -1] = 1
         return np.concatenate((np.linalg.solve(normal, right), shape))[self.free]
 
-    def fit(self, x, tolerance):
-        """Least squares; None where it does not end."""
-        found = least_squares(self.residual, x, self.jacobian, method="lm",
-                              ftol=max(tolerance * tolerance, 1e-15), xtol=tolerance, gtol=1e-15, max_nfev=400)
-        return found if found.status > 0 else None
+    def fit(self, x, tolerance, most):
+        """Least squares to a relative tolerance."""
+        return least_squares(self.residual, x, self.jacobian, method="lm",
+                             ftol=max(tolerance * tolerance, 1e-14), xtol=tolerance, gtol=1e-15, max_nfev=most)
 
 
 class Start:
@@ -92,7 +95,7 @@ class Start:
 
     def __init__(self, y):
         self.n = len(y)
-        self.stride = max(1, self.n // POINTS)
+        self.stride = -(-self.n // POINTS)
         points = self.n // self.stride
         x = y[: points * self.stride].reshape(points, self.stride).mean(axis=1) if self.stride > 1 else y
         rows = points // 3
@@ -156,10 +159,7 @@ def fit(samples, dt, most=MOST_MODES):
         shape = start.shape(modes)
         if shape is None:
             continue
-        model = Model(y, modes, shape[1])
-        found = model.fit(model.start(shape[0]), ROUGH)
-        if found is None:
-            continue
+        model, found = settled(y, modes, *shape)
         rms = math.sqrt(2 * found.cost / n)
         length = n * math.log(max(rms, FLOOR * math.sqrt(whole / n))) + (2 + 4 * modes) / 2 * log_n
         if length < shortest:
@@ -168,13 +168,30 @@ def fit(samples, dt, most=MOST_MODES):
         elif fits:
             break
     for model, found in reversed(fits):
-        found = model.fit(found.x, FINE)
-        if found is None or 2 * found.cost > whole / 2:
+        found = model.fit(found.x, FINE, FINE_STEPS)
+        if found.status <= 0 or 2 * found.cost > whole / 2:
             continue
         modes = described(model, found, n, dt, scale)
         if modes is not None:
             return modes
     return None
+
+
+def settled(y, modes, shape, bare):
+    """The rough fit of an order. A mode that stops turning is a bare decay and starts again as one: with its sine left
+    in, its amplitudes and its decay could not be told apart."""
+    model = Model(y, modes, bare)
+    found = model.fit(model.start(shape), ROUGH, ROUGH_STEPS)
+    if bare:
+        return model, found
+    shape = found.x[2 + 2 * modes:].reshape(modes, 2)
+    slow = int((shape[:, 1] / np.abs(shape[:, 0])).argmin())
+    if shape[slow, 1] >= SLOWEST_TURN and (found.status > 0 or shape[slow, 1] >= shape[slow, 0]):
+        return model, found
+    shape = np.concatenate((np.delete(shape, slow, axis=0), [[shape[slow, 0], 0]])).ravel()
+    decay = Model(y, modes, True)
+    again = decay.fit(decay.start(shape), ROUGH, ROUGH_STEPS)
+    return (decay, again) if again.cost < found.cost or found.status <= 0 else (model, found)
 
 
 def described(model, found, n, dt, scale):
@@ -222,9 +239,7 @@ def envelope(samples, dt, period):
     n = len(y)
     model = Model(y, 1)
     turn = 2 * math.pi / period * n
-    found = model.fit(model.start(np.array([0.05 * turn, turn])), FINE)
-    if found is None:
-        return None
+    found = model.fit(model.start(np.array([0.05 * turn, turn])), FINE, FINE_STEPS)
     p, q, s, w = found.x[2:]
     if not (0 < s < w) or 2 * found.cost >= y @ y / 2:
         return None

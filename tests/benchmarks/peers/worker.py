@@ -66,6 +66,11 @@ def main():
         except ImportError:
             missing.append("python3-" + module)
     print(json.dumps({"missing": missing}), flush=True)
+    if missing:
+        return
+    import numpy as np
+
+    np.seterr(all="ignore")  # a trial step that overflows is refused by the search
     works = {}
     for text in sys.stdin:
         order = json.loads(text)
