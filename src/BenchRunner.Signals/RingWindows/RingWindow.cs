@@ -148,7 +148,8 @@ public sealed class RingWindow
             return;
         }
 
-        RingFitResult fit = RingFit.Fit(signal[(int)Math.Ceiling(From)..((int)To + 1)], dt, RingFit.MostModes);
+        RingFitResult fit = RingThinning.Fit(
+            signal[(int)Math.Ceiling(From)..((int)To + 1)], dt, Period, RingFit.MostModes);
         if (fit.Strongest is { IsRinging: true } strongest)
         {
             Mode = strongest;
