@@ -220,6 +220,12 @@ internal sealed class Analyser
             }
 
             FormIrr();
+            if (!Finite.All(_irr))
+            {
+                _irr = [];
+                return Reading.None("the load-current line is not a finite number");
+            }
+
             Instant end = RecoveryTime.ChordEnd(Recovery(byLoadLine: true));
             double over = end.At + RecoveryOrigin + (AfterRecovery / dt);
             if (!rings || end.Reason is not null || over <= start || pass == MostPasses)

@@ -32,7 +32,16 @@ internal static class Baseline
             if (corrected.Has(channel) && !stated && (rest == BaselineSource.BeforeOn1 || (isSwitch && to > from)))
             {
                 ChannelSamples samples = corrected.At(channel);
-                rested[channel] = samples.Undo(Integral.Mean(samples.All, from, to), gain: 1);
+                ChannelSamples less = samples.Undo(Integral.Mean(samples.All, from, to), gain: 1);
+                if (less.HasCodes || Finite.All(less.Values))
+                {
+                    rested[channel] = less;
+                }
+                else if (isSwitch)
+                {
+                    // Beyond what a double holds: left as it was.
+                    source = BaselineSource.None;
+                }
             }
 
             source = isSwitch && stated ? BaselineSource.Stated : source;

@@ -1,5 +1,3 @@
-using System.Numerics;
-using System.Runtime.InteropServices;
 using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Traces;
 
@@ -39,7 +37,7 @@ internal sealed class Clipping
         foreach (Channel channel in waveform.Channels)
         {
             ChannelSamples samples = waveform.At(channel);
-            if (!samples.HasCodes && !IsFinite(samples.Values))
+            if (!samples.HasCodes && !Finite.All(samples.Values))
             {
                 double late = isCorrected ? _late[(int)channel] : 0;
                 bridged[channel] = samples.Filtered((from, to) => Bridge(channel, from, to, late));
@@ -66,25 +64,6 @@ internal sealed class Clipping
         return first < clipped.Length && clipped[first] <= Math.Ceiling(to + late);
     }
 
-    /// <summary>Whether all samples are finite: x · 0 is 0, or NaN from the first infinity or NaN on.</summary>
-    private static bool IsFinite(ReadOnlySpan<double> samples)
-    {
-        ReadOnlySpan<Vector<double>> wide = MemoryMarshal.Cast<double, Vector<double>>(samples);
-        Vector<double> sums = Vector<double>.Zero;
-        foreach (Vector<double> x in wide)
-        {
-            sums += x * Vector<double>.Zero;
-        }
-
-        double sum = Vector.Sum(sums);
-        foreach (double x in samples[(wide.Length * Vector<double>.Count)..])
-        {
-            sum += x * 0;
-        }
-
-        return sum == 0;
-    }
-
     private void Bridge(Channel channel, ReadOnlySpan<double> samples, Span<double> bridged, double late)
     {
         samples.CopyTo(bridged);
@@ -103,7 +82,9 @@ internal sealed class Clipping
             double right = end ? left : samples[i];
             for (int k = before + 1; k < i; k++)
             {
-                bridged[k] = left + ((right - left) * (k - before) / (i - before));
+                // By parts of both: their difference can overflow.
+                double part = (k - before) / (double)(i - before);
+                bridged[k] = (left * (1 - part)) + (right * part);
             }
 
             before = i;

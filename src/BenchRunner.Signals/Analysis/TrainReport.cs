@@ -61,10 +61,12 @@ internal static class TrainReport
         }
 
         double? slowest = null;
-        foreach (GateEdge edge in analyser.Train.Edges)
+        IReadOnlyList<GateEdge> edges = analyser.Train.Edges;
+        for (int i = 0; i < edges.Count; i++)
         {
+            double end = i + 1 < edges.Count ? edges[i + 1].Departure : analyser.Record.Last;
             double? duration = GateEdges.Duration(
-                analyser.Record[Channel.VgsLow], levels, analyser.Train.GateHysteresis, edge);
+                analyser.Record[Channel.VgsLow], levels, analyser.Train.GateHysteresis, edges[i], end);
             slowest = duration > (slowest ?? 0) ? duration : slowest;
         }
 

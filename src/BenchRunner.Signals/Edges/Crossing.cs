@@ -15,10 +15,11 @@ public static class Crossing
     /// <param name="to">Latest position, in samples.</param>
     /// <returns>Position in samples, interpolated on the straight line between the two samples that straddle the level;
     /// null where no crossing counts.</returns>
+    /// <exception cref="ArgumentException">A sample up to where the search ends is NaN or infinite.</exception>
     /// <remarks>
     /// Where noise crosses several times, it is the last crossing before the hysteresis is reached. A straddle is
-    /// "at or before" then "beyond", so a signal that rests on the level crosses where it leaves it. A sample that is
-    /// not a number never straddles.
+    /// "at or before" then "beyond", so a signal that rests on the level crosses where it leaves it. Source: IEEE
+    /// 181-2011, interpolation between the samples that straddle a reference level; the hysteresis is our own.
     /// </remarks>
     /// <example>Samples 0, 1, 3 cross 2 upwards at 1.5.</example>
     public static double? First(
@@ -51,6 +52,7 @@ public static class Crossing
         while (start < last)
         {
             int beyond = LevelSearch.First(samples, counts, rises, start + 1, last);
+            Finite.Require(samples, start, Math.Min(beyond, last), nameof(samples));
             if (beyond > last)
             {
                 return null;
@@ -64,6 +66,7 @@ public static class Crossing
 
             // Beyond already, or crossed too early: only after coming back can it cross again.
             start = LevelSearch.First(samples, level, !rises, beyond + 1, last);
+            Finite.Require(samples, beyond, Math.Min(start, last), nameof(samples));
         }
 
         return null;
@@ -91,12 +94,14 @@ public static class Crossing
     /// <param name="from">Earliest position, in samples.</param>
     /// <param name="to">Latest position, in samples.</param>
     /// <returns>Position in samples, interpolated; null where the signal stays above.</returns>
+    /// <exception cref="ArgumentException">A sample up to where the search ends is NaN or infinite.</exception>
     public static double? FirstAtOrBelow(ReadOnlySpan<double> samples, double level, double from, double to)
     {
         int start = Math.Max(0, (int)Math.Ceiling(from));
         int last = (int)Math.Min(samples.Length - 1, Math.Floor(to));
         for (int i = start; i <= last; i++)
         {
+            Finite.Require(samples[i], nameof(samples));
             if (samples[i] <= level)
             {
                 return i == start || samples[i - 1] <= level

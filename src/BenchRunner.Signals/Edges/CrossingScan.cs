@@ -23,7 +23,14 @@ public ref struct CrossingScan
     /// <param name="hysteresis">How far beyond the level the signal must go, 0 or more.</param>
     /// <param name="from">First sample.</param>
     /// <param name="to">Last sample.</param>
+    /// <exception cref="ArgumentException">A sample between the two is NaN or infinite.</exception>
     public CrossingScan(Samples samples, double level, double hysteresis, int from, int to)
+        : this(samples, level, hysteresis, from, to, isFinite: false)
+    {
+    }
+
+    /// <summary>Starts a walk over samples that may be known to be finite.</summary>
+    internal CrossingScan(Samples samples, double level, double hysteresis, int from, int to, bool isFinite)
     {
         _samples = samples;
         _level = level;
@@ -32,6 +39,10 @@ public ref struct CrossingScan
         _last = Math.Min(samples.Length - 1, to);
         _above = _index <= _last && samples[_index] > level;
         _start = _index;
+        if (!isFinite && _index <= _last)
+        {
+            Finite.Require(samples, _index, _last, nameof(samples));
+        }
     }
 
     /// <summary>Position of the crossing last reported, in samples.</summary>

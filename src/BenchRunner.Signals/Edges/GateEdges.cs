@@ -18,6 +18,7 @@ public static class GateEdges
     /// <param name="hysteresis">How far beyond a level the gate must go for a crossing to count, V.</param>
     /// <param name="deadTime">Time after an edge in which further crossings of 50 % do not count, s.</param>
     /// <returns>The edges in time order; empty where the gate does not switch.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
     /// <remarks>
     /// An edge lies at a crossing of 50 % after which further ones do not count for the dead time: a gate rings through
     /// 50 % many times. Where the dead time ends in the other state all the same (a pulse shorter than it), the last
@@ -29,7 +30,7 @@ public static class GateEdges
         List<GateEdge> edges = [];
         double dead = deadTime / dt;
         double skipped = double.NaN;
-        CrossingScan scan = new(gate, levels.At(0.5), hysteresis, 0, gate.Length - 1);
+        CrossingScan scan = new(gate, levels.At(0.5), hysteresis, 0, gate.Length - 1, isFinite: false);
         bool above = gate.Length > 0 && gate[0] > levels.At(0.5);
         while (scan.Next())
         {
@@ -62,13 +63,17 @@ public static class GateEdges
     /// <param name="levels">Off and on level, V.</param>
     /// <param name="hysteresis">Hysteresis of crossings, V.</param>
     /// <param name="edge">The edge.</param>
-    /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the record ends
+    /// <param name="end">Where the search ends, in samples: the departure of the next edge, or the record's
+    /// end.</param>
+    /// <returns>10 % to 90 % (turn-on) or 90 % to 10 % (turn-off), in samples; null where the end comes
     /// first.</returns>
-    public static double? Duration(Samples gate, TwoLevels levels, double hysteresis, in GateEdge edge)
+    /// <exception cref="ArgumentException">A sample of the edge is NaN or infinite.</exception>
+    public static double? Duration(
+        Samples gate, TwoLevels levels, double hysteresis, in GateEdge edge, double end)
     {
         double level = levels.At(edge.Direction == CrossingDirection.Rising ? 0.9 : 0.1);
-        double? end = Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, gate.Length - 1);
-        return end - edge.Departure;
+        double? reached = Crossing.First(gate, level, hysteresis, edge.Direction, edge.Departure, end);
+        return reached - edge.Departure;
     }
 
     private static CrossingDirection Opposite(CrossingDirection direction) =>
@@ -105,7 +110,8 @@ public static class GateEdges
         double left = LevelLeft(gate, dt, state, at);
         double other = direction == CrossingDirection.Rising ? levels.High : levels.Low;
         double level = left + (0.1 * (other - left));
-        CrossingScan scan = new(gate, level, hysteresis, (int)state, Math.Min(gate.Length - 1, (int)Math.Ceiling(at)));
+        int until = Math.Min(gate.Length - 1, (int)Math.Ceiling(at));
+        CrossingScan scan = new(gate, level, hysteresis, (int)state, until, isFinite: true);
         double last = double.NegativeInfinity;
         double earliest = double.NaN;
         while (scan.Next() && scan.Position <= at)

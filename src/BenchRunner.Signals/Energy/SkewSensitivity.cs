@@ -15,6 +15,9 @@ public static class SkewSensitivity
     /// <param name="fromMoves">Whether the interval's start is a crossing of the current, and so moves with it.</param>
     /// <param name="toMoves">Whether its end is.</param>
     /// <returns>dE/dδ = −∫ v (di/dt) dt, and where an end moves with the current ± v i there, W.</returns>
+    /// <exception cref="ArgumentOutOfRangeException">The interval is outside the record.</exception>
+    /// <exception cref="ArgumentException">The spans differ in length, or a sample of the interval is NaN or
+    /// infinite.</exception>
     /// <remarks>To first order, for an edge without recovery, −V I at turn-on and +V I at turn-off: 80 µJ/ns at 800 V
     /// and 100 A; with recovery it is more.</remarks>
     public static double Form(
@@ -26,6 +29,11 @@ public static class SkewSensitivity
         bool fromMoves,
         bool toMoves)
     {
+        if (voltage.Length != current.Length)
+        {
+            throw new ArgumentException("Two signals on one grid have one length.", nameof(current));
+        }
+
         // By parts on straight lines: −∫ v di = ∫ i dv − [v i], each segment exact.
         double sum = 0;
         double v0 = Integral.At(voltage, from);

@@ -10,12 +10,17 @@ public static class HistogramLevels
     /// <summary>Bins of the histogram unless told otherwise (common choice of IEEE 181 users; a parameter).</summary>
     public const int Bins = 256;
 
+    // More are finer than any ADC of 16 bits, and the histogram lies on the stack.
+    private const int MostBins = 65_536;
+
     /// <summary>Finds the two levels of a signal.</summary>
     /// <param name="samples">The signal from the middle of one state to the middle of the next; finite.</param>
     /// <param name="sigma">Noise of the signal (σ), in its unit.</param>
     /// <param name="step">Smallest step of the record (LSB), in its unit; 0: not known.</param>
     /// <param name="bins">Most bins between the extremes.</param>
     /// <returns>The levels, or null where the signal does not leave its noise.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
+    /// <exception cref="ArgumentOutOfRangeException">Fewer than 2 bins, or more than 65,536.</exception>
     /// <remarks>
     /// Bins between the extremes, at least one LSB wide (narrower ones would leave gaps and split a mode); the
     /// histogram is split at its middle, the fullest bin of each half is its mode, refined to the mean of the samples
@@ -51,6 +56,9 @@ public static class HistogramLevels
     private static TwoLevels? Find(
         ReadOnlySpan<double> samples, ReadOnlySpan<int> counts, double sigma, double step, int bins)
     {
+        ArgumentOutOfRangeException.ThrowIfLessThan(bins, 2);
+        ArgumentOutOfRangeException.ThrowIfGreaterThan(bins, MostBins);
+        Finite.Require(samples, nameof(samples));
         double low = double.PositiveInfinity;
         double high = double.NegativeInfinity;
         foreach (double x in samples)

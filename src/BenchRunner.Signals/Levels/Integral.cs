@@ -17,6 +17,7 @@ public static class Integral
     /// <param name="to">End, in samples; not before <paramref name="from"/>, inside the span.</param>
     /// <returns>The integral; times the sample interval it is in unit·s.</returns>
     /// <exception cref="ArgumentOutOfRangeException">The interval is empty or outside the span.</exception>
+    /// <exception cref="ArgumentException">A sample of the interval is NaN or infinite.</exception>
     /// <example>Samples 0, 2 from 0 to 1 give 1.</example>
     public static double Of(ReadOnlySpan<double> samples, double from, double to) =>
         Of(new Samples(samples), from, to);
@@ -25,10 +26,17 @@ public static class Integral
     public static double Of(Samples samples, double from, double to)
     {
         Check(samples.Length, from, to);
+        double integral = Sum(samples, from, to);
+        Finite.Require(integral, samples, from, to, nameof(samples));
+        return integral;
+    }
+
+    private static double Sum(Samples samples, double from, double to)
+    {
         int first = (int)Math.Ceiling(from);
         int last = (int)Math.Floor(to);
-        double start = At(samples.Values, from);
-        double end = At(samples.Values, to);
+        double start = Between(samples.Values, from);
+        double end = Between(samples.Values, to);
         if (first > last)
         {
             return (start + end) / 2 * (to - from);
@@ -48,7 +56,8 @@ public static class Integral
     /// <param name="to">End, in samples; not before <paramref name="from"/>, inside the span.</param>
     /// <returns>The integral; times the sample interval it is in unit·unit·s.</returns>
     /// <exception cref="ArgumentOutOfRangeException">The interval is empty or outside the span.</exception>
-    /// <exception cref="ArgumentException">The spans differ in length.</exception>
+    /// <exception cref="ArgumentException">The spans differ in length, or a sample of the interval is NaN or
+    /// infinite.</exception>
     /// <example>x = y = 0, 1 from 0 to 1 gives 1/2.</example>
     public static double OfProduct(ReadOnlySpan<double> x, ReadOnlySpan<double> y, double from, double to) =>
         OfProduct(new Samples(x), new Samples(y), from, to);
@@ -62,10 +71,18 @@ public static class Integral
         }
 
         Check(x.Length, from, to);
+        double integral = Sum(x, y, from, to);
+        Finite.Require(integral, x, from, to, nameof(x));
+        Finite.Require(integral, y, from, to, nameof(y));
+        return integral;
+    }
+
+    private static double Sum(Samples x, Samples y, double from, double to)
+    {
         int first = (int)Math.Ceiling(from);
         int last = (int)Math.Floor(to);
-        double start = At(x.Values, y.Values, from);
-        double end = At(x.Values, y.Values, to);
+        double start = Between(x.Values, y.Values, from);
+        double end = Between(x.Values, y.Values, to);
         if (first > last)
         {
             return (start + end) / 2 * (to - from);
@@ -85,6 +102,7 @@ public static class Integral
     /// <param name="to">End, in samples; not before <paramref name="from"/>, inside the span.</param>
     /// <returns>The mean, in the signal's unit.</returns>
     /// <exception cref="ArgumentOutOfRangeException">The interval is empty or outside the span.</exception>
+    /// <exception cref="ArgumentException">A sample of the interval is NaN or infinite.</exception>
     public static double Mean(ReadOnlySpan<double> samples, double from, double to) =>
         Mean(new Samples(samples), from, to);
 
@@ -96,7 +114,17 @@ public static class Integral
     /// <param name="samples">The signal, uniform.</param>
     /// <param name="position">Position, in samples; inside the span.</param>
     /// <returns>The value, in the signal's unit.</returns>
+    /// <exception cref="ArgumentOutOfRangeException">The position is outside the span.</exception>
+    /// <exception cref="ArgumentException">A sample beside the position is NaN or infinite.</exception>
     public static double At(ReadOnlySpan<double> samples, double position)
+    {
+        Check(samples.Length, position, position);
+        double value = Between(samples, position);
+        Finite.Require(value, samples, position, position, nameof(samples));
+        return value;
+    }
+
+    private static double Between(ReadOnlySpan<double> samples, double position)
     {
         int before = (int)position;
         double part = position - before;
@@ -149,7 +177,7 @@ public static class Integral
     private static long Twice(ReadOnlySpan<short> codes, int first, int last) =>
         (2 * CodeSums.Sum(codes[first..(last + 1)])) - codes[first] - codes[last];
 
-    private static double At(ReadOnlySpan<double> x, ReadOnlySpan<double> y, double position)
+    private static double Between(ReadOnlySpan<double> x, ReadOnlySpan<double> y, double position)
     {
         int before = (int)position;
         double part = position - before;

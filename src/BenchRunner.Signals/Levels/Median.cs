@@ -1,4 +1,5 @@
 using System.Buffers;
+using System.Numerics;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Levels;
@@ -8,10 +9,18 @@ public static class Median
 {
     /// <summary>The middle value; of an even count the mean of the two middle ones.</summary>
     /// <param name="values">The numbers, finite, at least one; reordered.</param>
-    /// <exception cref="ArgumentException">No numbers.</exception>
-    /// <remarks>Selection by partition around the middle of three: linear on average, the same on every
-    /// platform.</remarks>
+    /// <returns>The median, in their unit.</returns>
+    /// <exception cref="ArgumentException">No numbers, or one that is NaN or infinite.</exception>
+    /// <remarks>Selection by partition around the middle of three, linear; where partitions stay lopsided what is left
+    /// is sorted, so no order of the numbers makes it quadratic. The same on every platform.</remarks>
     public static double Of(Span<double> values)
+    {
+        Finite.Require(values, nameof(values));
+        return OfFinite(values);
+    }
+
+    /// <summary>The same of numbers that are known to be finite, or whose overflow does no harm.</summary>
+    internal static double OfFinite(Span<double> values)
     {
         if (values.IsEmpty)
         {
@@ -60,8 +69,15 @@ public static class Median
     {
         int low = 0;
         int high = values.Length - 1;
+        int left = 2 * BitOperations.Log2((uint)values.Length | 1);
         while (low < high)
         {
+            if (left-- == 0)
+            {
+                values[low..(high + 1)].Sort();
+                break;
+            }
+
             double a = values[low];
             double b = values[(low + high) >>> 1];
             double c = values[high];

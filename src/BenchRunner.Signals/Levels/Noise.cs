@@ -17,6 +17,8 @@ public static class Noise
     /// <param name="step">Smallest step of the record (LSB), in the signal's unit; 0: not known.</param>
     /// <param name="stride">Takes each stride-th difference; 1: all.</param>
     /// <returns>σ in the signal's unit, at least LSB/√12; that floor alone for fewer than three samples.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
+    /// <exception cref="ArgumentOutOfRangeException">The stride is below 1.</exception>
     /// <remarks>
     /// σ = 1.4826 · MAD(x[i+1] − x[i]) / √2. First differences take out level and slope, the median takes out edges.
     /// The floor is needed because codes of 8 bits repeat, and the MAD of mostly equal codes is zero. Noise that is not
@@ -28,6 +30,8 @@ public static class Noise
     /// <inheritdoc cref="Sigma(ReadOnlySpan{double}, double, int)"/>
     public static double Sigma(Samples samples, double step, int stride = 1)
     {
+        ArgumentOutOfRangeException.ThrowIfLessThan(stride, 1);
+        Finite.Require(samples, 0, samples.Length - 1, nameof(samples));
         double floor = step / Math.Sqrt(12);
         int count = (samples.Length - 2 + stride) / stride;
         if (samples.Length < 3)
@@ -51,13 +55,13 @@ public static class Noise
             work[i] = samples[(i * stride) + 1] - samples[i * stride];
         }
 
-        double centre = Median.Of(work);
+        double centre = Median.OfFinite(work);
         for (int i = 0; i < count; i++)
         {
             work[i] = Math.Abs(work[i] - centre);
         }
 
-        double deviation = Median.Of(work);
+        double deviation = Median.OfFinite(work);
         ArrayPool<double>.Shared.Return(rented);
         return deviation;
     }

@@ -21,6 +21,7 @@ public readonly record struct Line(double Centre, double Value, double Slope)
     /// <param name="slope">The slope a sample where it is held; null: it is fitted too.</param>
     /// <returns>The line; null where the interval holds fewer than three samples (one where the slope is
     /// held).</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
     /// <remarks>Ordinary least squares on a uniform grid: the sum of squared positions is closed, n(n² −
     /// 1)/12.</remarks>
     public static Line? Fit(ReadOnlySpan<double> samples, double from, double to, double? slope = null) =>
@@ -59,6 +60,7 @@ public readonly record struct Line(double Centre, double Value, double Slope)
             moment += y * (i - half);
         }
 
+        Finite.Require(moment, samples, 0, samples.Length - 1, nameof(samples));
         return (reference + (sum / samples.Length), moment);
     }
 

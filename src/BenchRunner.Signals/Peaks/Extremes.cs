@@ -1,3 +1,5 @@
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Peaks;
 
 /// <summary>Walks over the maxima of a signal that stand out by a prominence; over minima, of the negated
@@ -36,13 +38,16 @@ public ref struct Extremes
 
     /// <summary>Goes on to the next extreme.</summary>
     /// <returns>False at the end of the signal.</returns>
+    /// <exception cref="ArgumentException">A sample on the way is NaN or infinite.</exception>
     public bool Next()
     {
+        Finite.Require(_low, "samples");
         double high = double.NegativeInfinity;
         int top = _index;
         while (++_index <= _last)
         {
             double now = _sign * _samples[_index];
+            Finite.Require(now, "samples");
             if (double.IsNegativeInfinity(high))
             {
                 _low = now < _low ? now : _low;

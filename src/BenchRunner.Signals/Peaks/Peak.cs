@@ -1,4 +1,5 @@
 using BenchRunner.Signals.Quantities;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Peaks;
 
@@ -17,6 +18,7 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// <param name="to">Last position, in samples.</param>
     /// <returns>The peak; null where the highest sample has no neighbour on both sides inside the interval: the signal
     /// then still rises or already falls at its end.</returns>
+    /// <exception cref="ArgumentException">A sample of the interval is NaN or infinite.</exception>
     /// <remarks>y0 + (y₊ − y₋)² / (8 (2 y0 − y₋ − y₊)), at (y₊ − y₋) / (2 (2 y0 − y₋ − y₊)) samples after the highest.
     /// Of equal samples the first. A corner costs up to dt/8 times the difference of its slopes; noise only ever
     /// adds.</remarks>
@@ -25,6 +27,11 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     {
         int first = Math.Max(0, (int)Math.Ceiling(Math.Min(from, samples.Length)));
         int last = (int)Math.Min(samples.Length - 1, Math.Floor(to));
+        if (last > first)
+        {
+            Finite.Require(samples[first..(last + 1)], nameof(samples));
+        }
+
         int top = first;
         for (int i = first + 1; i <= last; i++)
         {
@@ -38,8 +45,14 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// neighbours.</summary>
     /// <param name="samples">The signal, uniform.</param>
     /// <param name="top">The sample; it has a neighbour on both sides.</param>
+    /// <returns>The peak; the sample itself where the three lie on a line.</returns>
+    /// <exception cref="ArgumentOutOfRangeException">The sample has no neighbour on a side.</exception>
+    /// <exception cref="ArgumentException">One of the three is NaN or infinite.</exception>
     public static Peak Vertex(ReadOnlySpan<double> samples, int top)
     {
+        ArgumentOutOfRangeException.ThrowIfLessThan(top, 1);
+        ArgumentOutOfRangeException.ThrowIfGreaterThan(top, samples.Length - 2);
+        Finite.Require(samples[(top - 1)..(top + 2)], nameof(samples));
         double difference = samples[top + 1] - samples[top - 1];
         double bend = (samples[top] - samples[top - 1]) + (samples[top] - samples[top + 1]);
         return bend > 0
@@ -54,6 +67,7 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// <param name="base">What the peak stands on, in the signal's unit.</param>
     /// <returns>The height over the run of samples that was fitted; a reason where fewer than three samples lie in the
     /// top fifth or the parabola has no maximum among them.</returns>
+    /// <exception cref="ArgumentException">A sample of the interval is NaN or infinite.</exception>
     /// <remarks>The run is the unbroken one around the highest sample above base + 80 % of (highest − base). For σ
     /// above 0.2 % of the peak; a narrow peak is flattened by it.</remarks>
     public static Reading TopFifth(ReadOnlySpan<double> samples, double from, double to, double @base)
@@ -90,8 +104,16 @@ public readonly record struct Peak(double Height, double Position, int Sample)
     /// <param name="run">At least three samples.</param>
     /// <param name="height">Height of the vertex.</param>
     /// <param name="position">Position of the vertex, in samples of the run.</param>
+    /// <returns>Whether height and position are those of a maximum.</returns>
+    /// <exception cref="ArgumentException">Fewer than three samples, or one that is NaN or infinite.</exception>
     public static bool Parabola(ReadOnlySpan<double> run, out double height, out double position)
     {
+        if (run.Length < 3)
+        {
+            throw new ArgumentException("A parabola needs three samples.", nameof(run));
+        }
+
+        Finite.Require(run, nameof(run));
         // Orthogonal polynomials 1, u, u² − m on a centred uniform grid: no matrix to invert.
         double n = run.Length;
         double half = (n - 1) / 2;

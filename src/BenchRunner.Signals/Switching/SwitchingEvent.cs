@@ -131,6 +131,7 @@ public readonly ref struct SwitchingEvent
         for (; i <= last; i++)
         {
             double beyond = sign * (vds[i] - level);
+            Finite.Require(vds[i], nameof(Vds));
             if (beyond >= clear)
             {
                 return false;

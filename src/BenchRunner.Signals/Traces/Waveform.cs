@@ -16,7 +16,8 @@ public sealed class Waveform
     /// <param name="steps">The smallest step of the record of each channel (LSB), V or A; 0 or absent: found from the
     /// samples.</param>
     /// <exception cref="ArgumentException">No channel, or channels of different length.</exception>
-    /// <exception cref="ArgumentOutOfRangeException">The sample interval is not finite and positive.</exception>
+    /// <exception cref="ArgumentOutOfRangeException">The sample interval is not finite and positive, or the origin not
+    /// finite.</exception>
     public Waveform(
         double timeOrigin,
         double sampleInterval,
@@ -61,6 +62,11 @@ public sealed class Waveform
         {
             throw new ArgumentOutOfRangeException(
                 nameof(sampleInterval), sampleInterval, "must be finite and above 0 s");
+        }
+
+        if (!double.IsFinite(timeOrigin))
+        {
+            throw new ArgumentOutOfRangeException(nameof(timeOrigin), timeOrigin, "must be finite");
         }
 
         (TimeOrigin, SampleInterval, Count) = (timeOrigin, sampleInterval, count);

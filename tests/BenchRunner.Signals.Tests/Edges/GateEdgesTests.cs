@@ -58,7 +58,8 @@ public sealed class GateEdgesTests
     {
         double[] gate = Gate(4000, t => t < 2000 ? 10 : Math.Max(0, 10 - ((t - 2000) / 10)));
         GateEdge edge = Assert.Single(Find(gate));
-        Assert.Equal(80, GateEdges.Duration(gate, _levels, 0.1, edge)!.Value, 9);
+        Assert.Equal(80, GateEdges.Duration(gate, _levels, 0.1, edge, 3999)!.Value, 9);
+        Assert.Null(GateEdges.Duration(gate, _levels, 0.1, edge, 2050));
     }
 
     private static GateEdge[] Find(double[] gate) => GateEdges.Find(gate, Interval, _levels, 0.1, 250e-9);
