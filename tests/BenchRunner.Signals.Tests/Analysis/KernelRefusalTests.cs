@@ -10,6 +10,7 @@ using BenchRunner.Signals.Recovery;
 using BenchRunner.Signals.Ringing;
 using BenchRunner.Signals.RingWindows;
 using BenchRunner.Signals.Switching;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Tests.Analysis;
 
@@ -81,6 +82,9 @@ public sealed class KernelRefusalTests
 
         // Needs the window of a voltage that rings; its fit is RingFit.Fit's.
         "RingWindow.Along",
+
+        // Holds samples and looks at none.
+        "Samples..ctor",
     ];
 
     public static TheoryData<int> Numbers => [.. Enumerable.Range(0, _kernels.Length)];
@@ -108,10 +112,10 @@ public sealed class KernelRefusalTests
     [Fact]
     public void Every_public_kernel_of_levels_edges_energy_peaks_and_so_on_is_tried()
     {
-        // Comparisons take two waveforms and are tried beside their own anchors; Correction takes whole waveforms.
+        // Comparisons and the matrices of a fit are tried beside their own anchors; Correction takes whole waveforms.
         string[] tried = [.. _kernels.Select(k => k.Kernel).Concat(_takeAnything)];
         string[] kernels = [.. typeof(WaveformAnalysis).Assembly.GetExportedTypes()
-            .Where(t => t.Namespace != "BenchRunner.Signals.Comparisons")
+            .Where(t => t.Namespace is not ("BenchRunner.Signals.Comparisons" or "BenchRunner.Signals.Fitting"))
             .SelectMany(t => t.GetMembers(BindingFlags.Public | BindingFlags.Static | BindingFlags.Instance))
             .OfType<MethodBase>()
             .Where(m => m.GetParameters().Any(p => IsSamples(p.ParameterType))
@@ -127,7 +131,7 @@ public sealed class KernelRefusalTests
         new RecoveryEvent(Hump(), 1e-9, 2, 60, 0, 0), current, Reading.Stated(20));
 
     private static bool IsSamples(Type type) =>
-        type == typeof(ReadOnlySpan<double>) || type == typeof(Span<double>);
+        type == typeof(ReadOnlySpan<double>) || type == typeof(Span<double>) || type == typeof(Samples);
 
     private static double[] Up() => [.. Enumerable.Range(0, Count).Select(i => (double)i)];
 
