@@ -98,7 +98,7 @@ public sealed class InputTests : IDisposable
     [Fact]
     public async Task Every_command_has_help_with_an_example()
     {
-        foreach (string command in (string[])["plan", "run", "analyse", "query", "quantities", "schema"])
+        foreach (string command in (string[])["plan", "run", "analyse", "compare", "query", "quantities", "schema"])
         {
             Finished help = (await _place.Run(command, "--help")).Expect(0);
             Assert.Contains($"Example: benchrunner {command}", help.Output, StringComparison.Ordinal);

@@ -5,6 +5,7 @@ using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Dialects;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Settings;
+using BenchRunner.Acceptance.Tolerances;
 
 namespace BenchRunner.Acceptance.Schemas;
 
@@ -21,6 +22,7 @@ public static class SchemaText
         ["bench"] = BenchKeys.Root,
         ["dialect"] = DialectKeys.Root,
         ["settings"] = SettingsKeys.Root,
+        ["tolerances"] = TolerancesKeys.Root,
     };
 
     private static readonly JsonSerializerOptions _readable = new()
@@ -33,7 +35,7 @@ public static class SchemaText
     public static IReadOnlyCollection<string> Kinds => _roots.Keys;
 
     /// <summary>The schema of a kind of file.</summary>
-    /// <param name="kind"><c>sequence</c>, <c>bench</c>, <c>dialect</c> or <c>settings</c>.</param>
+    /// <param name="kind">One of <see cref="Kinds"/>.</param>
     /// <returns>The schema as indented JSON.</returns>
     /// <exception cref="ArgumentException">The kind is not known.</exception>
     public static string Of(string kind)

@@ -39,4 +39,11 @@ public sealed record AnalysisSettings
 
     /// <summary>Whether every definition of the catalogue is formed, or each quantity's chosen one alone.</summary>
     public bool EveryDefinition { get; init; }
+
+    /// <summary>The same for a record that is right as it is: no errors of channels or shunt to undo.</summary>
+    public AnalysisSettings WithoutCorrections() => this with
+    {
+        Corrections = new Dictionary<Channel, ChannelCorrection>(),
+        Shunt = Shunt is null ? null : Shunt with { Inductance = 0 },
+    };
 }

@@ -19,12 +19,16 @@ public static class WaveformAnalysis
     /// Corrections first, once, in their order; then the gate's edges, the levels, the load current, and what rests on
     /// them. A quantity whose interval holds a clipped sample of a channel it needs has no value.
     /// </remarks>
-    public static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings)
+    public static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings) =>
+        Analyse(waveform, settings, out _);
+
+    /// <summary>The same, and the corrected traces from which the quantities were read.</summary>
+    internal static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings, out Waveform rested)
     {
         ArgumentNullException.ThrowIfNull(waveform);
         ArgumentNullException.ThrowIfNull(settings);
         using SampleBuffers buffers = new();
-        return Analyse(waveform, settings, buffers);
+        return Analyse(waveform, settings, buffers, out rested);
     }
 
     /// <summary>Corrects a capture as the scope gave it, and forms every quantity.</summary>
@@ -39,17 +43,18 @@ public static class WaveformAnalysis
     {
         ArgumentNullException.ThrowIfNull(settings);
         using SampleBuffers buffers = new();
-        return Analyse(TraceConversion.ToWaveform(traces, buffers), settings, buffers);
+        return Analyse(TraceConversion.ToWaveform(traces, buffers), settings, buffers, out _);
     }
 
-    private static AnalysisResult Analyse(Waveform waveform, AnalysisSettings settings, SampleBuffers buffers)
+    private static AnalysisResult Analyse(
+        Waveform waveform, AnalysisSettings settings, SampleBuffers buffers, out Waveform rested)
     {
         Clipping clipping = new(waveform, settings);
         Waveform recorded = clipping.Bridge(waveform, isCorrected: false);
         Waveform corrected = clipping.Bridge(Correction.Correct(recorded, settings), isCorrected: true);
         Record record = new(corrected, clipping, settings);
         Train train = Train.Find(record, settings);
-        Waveform rested = Baseline.Remove(corrected, record, train, settings, out BaselineSource baseline);
+        rested = Baseline.Remove(corrected, record, train, settings, out BaselineSource baseline);
         Analyser analyser = new(new Record(rested, clipping, settings), train, settings, buffers);
         TrainFacts facts = TrainReport.Form(analyser, recorded, settings) with { Baseline = baseline };
         return new AnalysisResult(facts, FormAll(analyser, settings));

@@ -1,5 +1,4 @@
 using System.Numerics;
-using MathNet.Numerics.IntegralTransforms;
 
 namespace BenchRunner.Signals.Comparisons;
 
@@ -24,14 +23,15 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
 
     /// <summary>The word that a measure stands for.</summary>
     /// <param name="measure">ADM, FDM or GDM.</param>
+    /// <remarks>Source: IEEE 1597.1, the table of its six words (from memory).</remarks>
     public static string Word(double measure) => measure switch
     {
-        <= 0.1 => "excellent",
-        <= 0.2 => "very good",
-        <= 0.4 => "good",
-        <= 0.8 => "fair",
-        <= 1.6 => "poor",
-        _ => "very poor",
+        <= 0.1 => "Excellent",
+        <= 0.2 => "Very good",
+        <= 0.4 => "Good",
+        <= 0.8 => "Fair",
+        <= 1.6 => "Poor",
+        _ => "Very poor",
     };
 
     /// <summary>Compares two aligned waveforms.</summary>
@@ -53,8 +53,8 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
             return null;
         }
 
-        Complex[] a = Spectrum(first);
-        Complex[] b = Spectrum(second);
+        Complex[] a = Spectrum.Of(first);
+        Complex[] b = Spectrum.Of(second);
         int border = Math.Min(ShareBin(a), ShareBin(b)) + Offset;
         (double[] slow, double[] low, double[] high) one = Split(a, border);
         (double[] slow, double[] low, double[] high) two = Split(b, border);
@@ -80,18 +80,6 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
         }
 
         return new FeatureSelective(adm / first.Length, fdm / first.Length, gdm / first.Length);
-    }
-
-    private static Complex[] Spectrum(ReadOnlySpan<double> samples)
-    {
-        Complex[] spectrum = new Complex[samples.Length];
-        for (int i = 0; i < spectrum.Length; i++)
-        {
-            spectrum[i] = samples[i];
-        }
-
-        Fourier.Forward(spectrum, FourierOptions.Matlab);
-        return spectrum;
     }
 
     /// <summary>The bin below which 40 % of the content above the slow bins lies.</summary>
@@ -131,13 +119,7 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
             high[i] = bin < SlowBins ? 0 : spectrum[i] * (1 - share);
         }
 
-        return (Back(slow), Back(low), Back(high));
-    }
-
-    private static double[] Back(Complex[] spectrum)
-    {
-        Fourier.Inverse(spectrum, FourierOptions.Matlab);
-        return [.. spectrum.Select(x => x.Real)];
+        return (Spectrum.Back(slow), Spectrum.Back(low), Spectrum.Back(high));
     }
 
     /// <summary>Central differences, one-sided at the ends.</summary>

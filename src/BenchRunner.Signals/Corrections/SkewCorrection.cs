@@ -75,7 +75,7 @@ internal static class SkewCorrection
     }
 
     /// <summary>The record at a position, from the nearest six points that it has (or all, if fewer).</summary>
-    private static double At(ReadOnlySpan<double> recorded, double position)
+    public static double At(ReadOnlySpan<double> recorded, double position)
     {
         if (position <= 0 || position >= recorded.Length - 1)
         {

@@ -13,6 +13,7 @@ internal static class CommandTree
         PlanCommand.Build(),
         RunCommand.Build(),
         AnalyseCommand.Build(),
+        CompareCommand.Build(),
         QueryCommand.Build(),
         AuditCommand.Build(),
         EvidenceCommand.Build(),

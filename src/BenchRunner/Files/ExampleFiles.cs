@@ -6,6 +6,9 @@ internal static class ExampleFiles
     /// <summary>The bench of a run that names none: a simulated one.</summary>
     public const string FakeBench = "sequences/benches/fake.yaml";
 
+    /// <summary>The tolerances of a comparison that names none.</summary>
+    public const string Tolerances = "sequences/tolerances/common-practice.yaml";
+
     /// <summary>The path as given where it exists, else the shipped file of that name; as given where neither
     /// exists.</summary>
     public static string Find(string path)

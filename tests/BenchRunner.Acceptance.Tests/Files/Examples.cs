@@ -21,8 +21,13 @@ internal static class Examples
 
     public static string Dialect => File.ReadAllText(Repository.PathOf("sequences", "dialects", "generic-scope.yaml"));
 
+    public static string Tolerances => File.ReadAllText(Repository.TolerancesPath);
+
     public static (string Kind, string Text)[] All =>
-        [("sequence", Sequence), ("bench", Bench), ("dialect", Dialect), ("settings", Settings)];
+    [
+        ("sequence", Sequence), ("bench", Bench), ("dialect", Dialect), ("settings", Settings),
+        ("tolerances", Tolerances),
+    ];
 
     /// <summary>A file with one text in place of another, which must be there.</summary>
     public static string With(this string text, string found, string replacement)

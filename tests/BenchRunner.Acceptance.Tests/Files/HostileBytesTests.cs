@@ -15,7 +15,7 @@ public sealed class HostileBytesTests
 
     [Fact]
     public void Mutated_files_never_throw() =>
-        Gen.Select(Gen.Int[0, 3], Edit.Array[1, 6]).Sample((file, edits) =>
+        Gen.Select(Gen.Int[0, Examples.All.Length - 1], Edit.Array[1, 6]).Sample((file, edits) =>
         {
             (string kind, string text) = Examples.All[file];
             byte[] bytes = edits.Aggregate(Encoding.UTF8.GetBytes(text), (so, edit) => edit(so));
@@ -25,7 +25,7 @@ public sealed class HostileBytesTests
     [Fact]
     [Trait("kind", "slow")]
     public void Very_many_mutated_files_never_throw() =>
-        Gen.Select(Gen.Int[0, 3], Edit.Array[1, 6]).Sample(
+        Gen.Select(Gen.Int[0, Examples.All.Length - 1], Edit.Array[1, 6]).Sample(
             (file, edits) =>
             {
                 (string kind, string text) = Examples.All[file];
@@ -36,7 +36,7 @@ public sealed class HostileBytesTests
 
     [Fact]
     public void Random_bytes_never_throw() =>
-        Gen.Select(Gen.Int[0, 3], Gen.Byte.Array[0, 300]).Sample((file, bytes) =>
+        Gen.Select(Gen.Int[0, Examples.All.Length - 1], Gen.Byte.Array[0, 300]).Sample((file, bytes) =>
             Readers.Problems(Readers.Source(Examples.All[file].Kind + ".yaml", bytes)));
 
     [Fact]

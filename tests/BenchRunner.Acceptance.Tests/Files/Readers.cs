@@ -4,6 +4,7 @@ using BenchRunner.Acceptance.Dialects;
 using BenchRunner.Acceptance.Files;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Settings;
+using BenchRunner.Acceptance.Tolerances;
 
 namespace BenchRunner.Acceptance.Tests.Files;
 
@@ -20,6 +21,7 @@ internal static class Readers
         "bench" => Checked(BenchFile.Read(source)),
         "dialect" => Checked(DialectReader.Read(source)),
         "settings" => Checked(SettingsFile.Read(source)),
+        "tolerances" => Checked(TolerancesFile.Read(source)),
         _ => throw new ArgumentException(source.Role),
     };
 

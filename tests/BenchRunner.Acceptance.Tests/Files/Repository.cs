@@ -10,6 +10,8 @@ internal static class Repository
 
     public static string SequencePath => PathOf("sequences", "winch-drive-incoming.yaml");
 
+    public static string TolerancesPath => PathOf("sequences", "tolerances", "common-practice.yaml");
+
     public static string BenchPath => PathOf("sequences", "benches", "fake.yaml");
 
     private static string Find()

@@ -126,6 +126,7 @@ public sealed class SchemaTextTests
     {
         "benches" => "bench",
         "dialects" => "dialect",
+        "tolerances" => "tolerances",
         _ => "sequence",
     };
 
