@@ -12,8 +12,8 @@ internal static class CompareText
     public static IEnumerable<string> Lines(ComparedFiles compared)
     {
         ComparisonResult result = compared.Result;
-        yield return $"measured   {File(compared.Measured, compared.MeasuredWaveform)}";
-        yield return $"reference  {File(compared.Reference, compared.ReferenceWaveform)}";
+        yield return $"measured   {File(compared.Measured)}";
+        yield return $"reference  {File(compared.Reference)}";
         yield return $"tolerances {compared.Tolerances.Source.Path} ({compared.Tolerances.Basis})";
         yield return result is { Shift: { } shift, Window: { } window, Headline: { } headline }
             ? $"measured {(shift < 0 ? "earlier" : "later")} by {SiText.Format(Math.Abs(shift), "s", 6)}, where "
@@ -32,9 +32,9 @@ internal static class CompareText
                 + string.Join(", ", outside);
     }
 
-    private static string File(string file, Waveform waveform) =>
-        $"{file}: {waveform.Count} samples at {SiText.Format(waveform.SampleInterval, "s")}, "
-            + string.Join(' ', waveform.Channels.Select(channel => channel.Name()));
+    private static string File(ComparedFile file) =>
+        $"{file.File}: {file.Waveform.Count} samples at {SiText.Format(file.Waveform.SampleInterval, "s")}, "
+            + file.Channels;
 
     private static IEnumerable<string> Scalars(ComparedFiles compared)
     {

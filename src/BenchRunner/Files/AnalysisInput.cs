@@ -41,6 +41,15 @@ internal static class AnalysisInput
     /// <summary>Reads a waveform file and analyses it.</summary>
     public static AnalysedFile Analyse(string file, WaveformFileOptions options, AnalysisSettings settings)
     {
+        (Waveform waveform, string sha256) = Unchanged(file, options);
+        AnalysisResult result = WaveformAnalysis.Analyse(waveform, settings);
+        return new AnalysedFile(
+            file, sha256, waveform, settings, result, WaveformFindings.Judge(waveform, result, settings));
+    }
+
+    /// <summary>Reads a waveform file, with the SHA-256 of the very bytes that were read.</summary>
+    public static (Waveform Waveform, string Sha256) Unchanged(string file, WaveformFileOptions options)
+    {
         (long Length, DateTime Written) before = State(file);
         Waveform waveform = Waveform(file, options);
         string sha256 = Sha256(file);
@@ -50,9 +59,7 @@ internal static class AnalysisInput
                 $"{file}: it changed while it was read; expected a finished file; wait until it is written, or copy it");
         }
 
-        AnalysisResult result = WaveformAnalysis.Analyse(waveform, settings);
-        return new AnalysedFile(
-            file, sha256, waveform, settings, result, WaveformFindings.Judge(waveform, result, settings));
+        return (waveform, sha256);
     }
 
     private static Waveform Waveform(string file, WaveformFileOptions options)

@@ -3,16 +3,13 @@ using BenchRunner.Acceptance.Tolerances;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Comparisons;
 using BenchRunner.Signals.Files;
-using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Files;
 
 /// <summary>A measured waveform file and a reference, compared and judged.</summary>
 internal sealed record ComparedFiles(
-    string Measured,
-    string Reference,
-    Waveform MeasuredWaveform,
-    Waveform ReferenceWaveform,
+    ComparedFile Measured,
+    ComparedFile Reference,
     ToleranceSet Tolerances,
     ComparisonResult Result,
     ComparisonVerdict Verdict)
@@ -27,22 +24,18 @@ internal sealed record ComparedFiles(
         Read<ToleranceSet> read = TolerancesFile.Read(ExampleFiles.Find(tolerancesPath ?? ExampleFiles.Tolerances));
         ToleranceSet tolerances = read.Value
             ?? throw new InputException(string.Join(Environment.NewLine, read.Problems));
-        Waveform ours = AnalysisInput.Waveform(measured.File, measured.Options);
-        Waveform theirs = AnalysisInput.Waveform(reference.File, reference.Options);
-        if (!ours.Channels.Any(theirs.Has))
+        ComparedFile ours = ComparedFile.Read(measured.File, measured.Options);
+        ComparedFile theirs = ComparedFile.Read(reference.File, reference.Options);
+        if (!ours.Waveform.Channels.Any(theirs.Waveform.Has))
         {
             throw new InputException(
-                $"{measured.File} and {reference.File} have no channel in common: the first has {Names(ours)}, the "
-                    + $"second {Names(theirs)}; say where the channels are by --channel and --reference-channel.");
+                $"{measured.File} and {reference.File} have no channel in common: the first has {ours.Channels}, the "
+                    + $"second {theirs.Channels}; say where the channels are by --channel and --reference-channel.");
         }
 
         ComparisonResult result = WaveformComparison.Compare(
-            ours, measured.Settings, theirs, reference.Settings, ComparisonVerdict.Wanted(tolerances));
+            ours.Waveform, measured.Settings, theirs.Waveform, reference.Settings, ComparisonVerdict.Wanted(tolerances));
         return new ComparedFiles(
-            measured.File, reference.File, ours, theirs, tolerances, result,
-            ComparisonVerdict.Judge(result, tolerances));
+            ours, theirs, tolerances, result, ComparisonVerdict.Judge(result, tolerances));
     }
-
-    private static string Names(Waveform waveform) =>
-        string.Join(' ', waveform.Channels.Select(channel => channel.Name()));
 }

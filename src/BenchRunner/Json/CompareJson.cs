@@ -16,8 +16,8 @@ internal static class CompareJson
         ChannelComparison? whole = result.Whole;
         JsonOutput.Write(new JsonObject
         {
-            ["measured"] = File(compared.Measured, compared.MeasuredWaveform),
-            ["reference"] = File(compared.Reference, compared.ReferenceWaveform),
+            ["measured"] = File(compared.Measured),
+            ["reference"] = File(compared.Reference),
             ["window"] = result.Window is { } window
                 ? new JsonObject
                 {
@@ -51,13 +51,13 @@ internal static class CompareJson
         });
     }
 
-    private static JsonObject File(string file, Waveform waveform) => new()
+    private static JsonObject File(ComparedFile file) => new()
     {
-        ["file"] = file,
-        ["sha256"] = AnalysisInput.Sha256(file),
-        ["samples"] = waveform.Count,
-        ["sample_interval"] = JsonOutput.Number(waveform.SampleInterval),
-        ["channels"] = JsonOutput.Array(waveform.Channels, channel => JsonValue.Create(channel.Name())),
+        ["file"] = file.File,
+        ["sha256"] = file.Sha256,
+        ["samples"] = file.Waveform.Count,
+        ["sample_interval"] = JsonOutput.Number(file.Waveform.SampleInterval),
+        ["channels"] = JsonOutput.Array(file.Waveform.Channels, channel => JsonValue.Create(channel.Name())),
     };
 
     private static JsonObject Scalar(ScalarComparison scalar, JudgedScalar? judged) => new()
