@@ -34,7 +34,11 @@ internal sealed record ComparedFiles(
         }
 
         ComparisonResult result = WaveformComparison.Compare(
-            ours.Waveform, measured.Settings, theirs.Waveform, reference.Settings, ComparisonVerdict.Wanted(tolerances));
+            ours.Waveform,
+            measured.Settings,
+            theirs.Waveform,
+            reference.Settings,
+            ComparisonVerdict.Wanted(tolerances));
         return new ComparedFiles(
             ours, theirs, tolerances, result, ComparisonVerdict.Judge(result, tolerances));
     }

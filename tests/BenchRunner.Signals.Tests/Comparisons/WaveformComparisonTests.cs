@@ -148,7 +148,12 @@ public sealed class WaveformComparisonTests
         Waveform reference = Reference.Waveform("hv650soft-clean.csv.gz");
         double[] clipped = reference[Channel.IdLow].ToArray();
         clipped[8630] = double.PositiveInfinity;
-        Waveform measured = reference.With(new Dictionary<Channel, double[]> { [Channel.IdLow] = clipped });
+        Waveform measured = new(
+            reference.TimeOrigin,
+            reference.SampleInterval,
+            reference.Channels.ToDictionary(
+                channel => channel,
+                channel => channel == Channel.IdLow ? clipped : reference[channel].ToArray()));
 
         ComparisonResult result = Compare(measured, _usual, reference);
 
