@@ -31,6 +31,8 @@ internal sealed class SignalsGroup : IGroup
         [
             new Benchmark("signals/capture-10k", () => Capture(Small)),
             new Benchmark("signals/capture-1m", () => Capture(Large)),
+            new Benchmark("signals/crossings", () => new CodeKernels(Record(Large)).MeasureCrossings()),
+            new Benchmark("signals/integrals", () => new CodeKernels(Record(Large)).MeasureIntegrals()),
             new Benchmark("signals/ring-fit", RingFitBesidePeer),
             new Benchmark("signals/growth", Growth),
             new Benchmark("signals/ring-frequency-spread", _rings.FrequencySpread),
@@ -47,7 +49,7 @@ internal sealed class SignalsGroup : IGroup
     public void Dispose() => _peer.Dispose();
 
     private static AnalysisResult Analyse(IReadOnlyList<RawTrace> traces) =>
-        WaveformAnalysis.Analyse(TraceConversion.ToWaveform(traces), _settings);
+        WaveformAnalysis.Analyse(traces, _settings);
 
     private List<RawTrace> Record(int points) => Captures.Record(Captures.Circuit(_seed), _seed, points);
 
