@@ -1,33 +1,44 @@
-using System.Numerics;
 using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
+using System.Runtime.Intrinsics.X86;
 
 namespace BenchRunner.Benchmarks;
 
 /// <summary>The least that any work on codes costs: reading each of them once.</summary>
 internal static class CodeFloor
 {
+    private const int Unrolled = 4;
+
     /// <summary>The sum of codes, many at a time.</summary>
-    /// <param name="codes">The codes; few enough that a lane's sum stays within 32 bits: 2 million of 12 bits.</param>
+    /// <param name="codes">The codes; few enough that a lane's sum stays within 32 bits: 10 million of 12 bits.</param>
     public static long Sum(ReadOnlySpan<short> codes)
     {
-        ReadOnlySpan<Vector<short>> wide = MemoryMarshal.Cast<short, Vector<short>>(codes);
-        Vector<int> first = Vector<int>.Zero;
-        Vector<int> second = Vector<int>.Zero;
-        Vector<int> third = Vector<int>.Zero;
-        Vector<int> fourth = Vector<int>.Zero;
+        long sum = 0;
         int i = 0;
-        for (; i + 1 < wide.Length; i += 2)
+        if (Avx2.IsSupported)
         {
-            first += Vector.WidenLower(wide[i]);
-            second += Vector.WidenUpper(wide[i]);
-            third += Vector.WidenLower(wide[i + 1]);
-            fourth += Vector.WidenUpper(wide[i + 1]);
+            ref short source = ref MemoryMarshal.GetReference(codes);
+            Vector256<short> ones = Vector256.Create((short)1);
+            Vector256<int> a = default;
+            Vector256<int> b = default;
+            Vector256<int> c = default;
+            Vector256<int> d = default;
+            int width = Vector256<short>.Count;
+            for (; i <= codes.Length - (Unrolled * width); i += Unrolled * width)
+            {
+                nuint at = (nuint)i;
+                a += Avx2.MultiplyAddAdjacent(Vector256.LoadUnsafe(ref source, at), ones);
+                b += Avx2.MultiplyAddAdjacent(Vector256.LoadUnsafe(ref source, at + (nuint)width), ones);
+                c += Avx2.MultiplyAddAdjacent(Vector256.LoadUnsafe(ref source, at + (nuint)(2 * width)), ones);
+                d += Avx2.MultiplyAddAdjacent(Vector256.LoadUnsafe(ref source, at + (nuint)(3 * width)), ones);
+            }
+
+            sum = (long)Vector256.Sum(a) + Vector256.Sum(b) + Vector256.Sum(c) + Vector256.Sum(d);
         }
 
-        long sum = (long)Vector.Sum(first) + Vector.Sum(second) + Vector.Sum(third) + Vector.Sum(fourth);
-        foreach (short code in codes[(i * Vector<short>.Count)..])
+        for (; i < codes.Length; i++)
         {
-            sum += code;
+            sum += codes[i];
         }
 
         return sum;
