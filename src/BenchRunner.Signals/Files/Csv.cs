@@ -34,6 +34,10 @@ internal static class Csv
         return Trim(field);
     }
 
+    /// <summary>Whether a line holds nothing, or nothing but blanks and separators: spreadsheets leave such
+    /// lines.</summary>
+    public static bool IsEmpty(ReadOnlySpan<byte> line) => line.IndexOfAnyExcept(" ,;\t"u8) < 0;
+
     /// <summary>Reads a number; <c>inf</c>, <c>infinity</c> and <c>nan</c> in any case are numbers here.</summary>
     /// <param name="text">The field.</param>
     /// <param name="decimalComma">Whether a comma may be the decimal sign, beside the point.</param>

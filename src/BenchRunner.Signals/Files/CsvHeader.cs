@@ -44,6 +44,12 @@ internal sealed record CsvHeader(byte Separator, string[] Names, int[] Starts, i
             names.Add(Encoding.UTF8.GetString(Csv.Field(ref rest, separator, out more)));
         }
 
+        // A separator behind the last name, as behind every row, makes no column.
+        if (names.Count > 1 && names[^1].Length == 0)
+        {
+            names.RemoveAt(names.Count - 1);
+        }
+
         return new CsvHeader(separator, [.. names], [.. starts], number);
     }
 
@@ -51,9 +57,17 @@ internal sealed record CsvHeader(byte Separator, string[] Names, int[] Starts, i
     public CsvHeader Unnamed() =>
         this with { Names = [.. Names.Select((_, i) => (i + 1).ToString(Invariant))], Line = 0 };
 
-    /// <summary>Whether the line names something that is looked for.</summary>
-    public bool Knows(IEnumerable<string> wanted) =>
-        Names.Any(name => ChannelNames.Parse(name) is not null) || wanted.Any(Names.Contains);
+    /// <summary>Whether the line names something that is looked for; a number is a column's place, not its
+    /// name.</summary>
+    public bool Knows(IReadOnlyList<string> wanted) => Names.Any(name => IsLookedFor(name, wanted));
+
+    /// <summary>Whether the line can be nothing but a header: times come first, or every name is looked for. A line of
+    /// key and value in front of the table may name a channel too.</summary>
+    public bool IsSurely(IReadOnlyList<string> wanted) => HasTime || Names.All(name => IsLookedFor(name, wanted));
+
+    /// <summary>Whether a line can be the first row below this header: as many fields, a number in front.</summary>
+    public bool CanStandAbove(CsvHeader row) => row.Names.Length == Names.Length
+        && Csv.TryNumber(Encoding.UTF8.GetBytes(row.Names[0]), row.DecimalComma, out _);
 
     /// <summary>Whether every field is a number, so that the line is data.</summary>
     public bool IsData() => Names.All(name => Csv.TryNumber(Encoding.UTF8.GetBytes(name), DecimalComma, out _));
@@ -62,6 +76,9 @@ internal sealed record CsvHeader(byte Separator, string[] Names, int[] Starts, i
     public bool IsUnits() => Names.All(name => name.Trim('(', ')', '[', ']').ToUpperInvariant() is
         "" or "S" or "SEC" or "SECOND" or "SECONDS" or "V" or "VOLT" or "VOLTS" or "A" or "AMP" or "AMPS" or "AMPERE"
         or "AMPERES");
+
+    private static bool IsLookedFor(string name, IReadOnlyList<string> wanted) =>
+        ChannelNames.Parse(name) is not null || (wanted.Contains(name) && !int.TryParse(name, out _));
 
     private static System.Globalization.CultureInfo Invariant => System.Globalization.CultureInfo.InvariantCulture;
 }

@@ -30,6 +30,19 @@ internal sealed class CsvLines(Stream stream, long mostBytes)
         TextTooLong,
     }
 
+    /// <summary>Lines of a text that are not empty, up to where it can be read no further.</summary>
+    public static int CountFilled(Stream stream, long mostBytes)
+    {
+        CsvLines lines = new(stream, mostBytes);
+        int filled = 0;
+        while (lines.TryRead(out ReadOnlySpan<byte> line) == Stop.None)
+        {
+            filled += Csv.IsEmpty(line) ? 0 : 1;
+        }
+
+        return filled;
+    }
+
     /// <summary>Number of the line read last, from 1.</summary>
     public int Number { get; private set; }
 

@@ -15,7 +15,10 @@ internal sealed partial class CsvTable
     private readonly CsvLines _lines;
     private readonly int _before;
     private readonly List<(int Column, Channel? Channel)> _wanted = [];
+    private readonly TimeGrid _times = new();
+    private readonly int _filledLines;
     private double[][] _values = [];
+    private int _filled;
     private int _rows;
     private int _firstLine;
 
@@ -24,9 +27,11 @@ internal sealed partial class CsvTable
         string file,
         WaveformFileOptions options,
         IReadOnlyList<ChannelMapping> mappings,
-        List<WaveformProblem> problems)
+        List<WaveformProblem> problems,
+        int filledLines)
     {
         (_file, _options, _mappings, _problems) = (file, options, mappings, problems);
+        _filledLines = filledLines;
         _lines = new CsvLines(stream, options.MostBytes);
         _before = problems.Count;
     }
@@ -48,15 +53,18 @@ internal sealed partial class CsvTable
     /// <param name="options">Interval and bounds.</param>
     /// <param name="mappings">The mappings that concern this file.</param>
     /// <param name="problems">Receives problems.</param>
+    /// <param name="filledLines">How many lines are not empty, so that no more memory is taken than the table needs;
+    /// 0: not known.</param>
     /// <returns>The table; null where there were problems.</returns>
     public static CsvTable? Read(
         Stream stream,
         string file,
         WaveformFileOptions options,
         IReadOnlyList<ChannelMapping> mappings,
-        List<WaveformProblem> problems)
+        List<WaveformProblem> problems,
+        int filledLines = 0)
     {
-        CsvTable table = new(stream, file, options, mappings, problems);
+        CsvTable table = new(stream, file, options, mappings, problems, filledLines);
         table.ReadAll();
         return table.HasProblems ? null : table;
     }
@@ -68,33 +76,25 @@ internal sealed partial class CsvTable
             return;
         }
 
-        _values = [.. _wanted.Select(_ => new double[1024])];
-        bool first = true, ended = false;
-        ReadOnlySpan<byte> line = pending;
+        bool ended = false;
         if (!pending.IsEmpty)
         {
-            Add(line, header);
+            Add(pending, header);
         }
 
-        while (_problems.Count < WaveformRead.MostProblems && _rows <= _options.MostRows && Next(out line))
+        while (_problems.Count < WaveformRead.MostProblems && _rows <= _options.MostRows
+            && Next(out ReadOnlySpan<byte> line))
         {
-            bool units = first && pending.IsEmpty && !line.IsEmpty && CsvHeader.Of(line, _lines.Number).IsUnits();
-            first = false;
-            if (units)
+            if (Csv.IsEmpty(line))
             {
-                continue;
-            }
-
-            if (line.IsEmpty)
-            {
-                ended = true;
+                ended |= _rows > 0;
             }
             else if (ended)
             {
                 Report(0, "a row behind an empty line", "rows one after the other", "remove the empty line");
                 return;
             }
-            else
+            else if (_rows > 0 || !CsvHeader.Of(line, _lines.Number).IsUnits())
             {
                 Add(line, header);
             }
@@ -107,7 +107,7 @@ internal sealed partial class CsvTable
     /// <param name="pending">Receives the line where it is data already.</param>
     private CsvHeader? FindHeader(out ReadOnlySpan<byte> pending)
     {
-        CsvHeader? before = null;
+        CsvHeader? before = null, perhaps = null;
         string? firstLine = null;
         string[] wanted = [.. _mappings.Select(mapping => mapping.Column)];
         pending = default;
@@ -115,11 +115,39 @@ internal sealed partial class CsvTable
         {
             line = _lines.Number == 1 && line.StartsWith("\uFEFF"u8) ? line[3..] : line;
             firstLine ??= Csv.Show(line);
+            if (line.Contains((byte)0))
+            {
+                ReportAt(_lines.Number, line.IndexOf((byte)0) + 1, "a NUL byte", "a text table in UTF-8",
+                    "save it as text in UTF-8");
+                return null;
+            }
+
+            if (Csv.IsEmpty(line))
+            {
+                continue;
+            }
+
             CsvHeader header = CsvHeader.Of(line, _lines.Number);
-            bool data = !line.IsEmpty && header.IsData();
+            if (perhaps is not null && !header.IsUnits())
+            {
+                if (perhaps.CanStandAbove(header))
+                {
+                    pending = line;
+                    return perhaps;
+                }
+
+                perhaps = null;
+            }
+
+            bool data = header.IsData();
             if (!data && header.Knows(wanted))
             {
-                return header;
+                if (header.IsSurely(wanted))
+                {
+                    return header;
+                }
+
+                perhaps = header;
             }
 
             if (data && _mappings.Count > 0)
@@ -128,7 +156,7 @@ internal sealed partial class CsvTable
                 return before is not null && before.Names.Length == header.Names.Length ? before : header.Unnamed();
             }
 
-            before = line.IsEmpty ? before : header;
+            before = header;
         }
 
         if (!HasProblems)
@@ -154,17 +182,11 @@ internal sealed partial class CsvTable
         }
 
         _firstLine = _rows == 0 ? _lines.Number : _firstLine;
-        if (_rows == _values[0].Length)
-        {
-            for (int i = 0; i < _values.Length; i++)
-            {
-                Array.Resize(ref _values[i], _rows * 2);
-            }
-        }
-
+        MakeRoom();
         ReadOnlySpan<byte> rest = line;
         int column = 0;
-        for (bool more = true; more; column++)
+        bool more = true;
+        for (; more && column < header.Names.Length; column++)
         {
             int start = line.Length - rest.Length + 1;
             ReadOnlySpan<byte> field = Csv.Field(ref rest, header.Separator, out more);
@@ -172,17 +194,52 @@ internal sealed partial class CsvTable
             {
                 if (_wanted[i].Column == column)
                 {
-                    _values[i][_rows] = Number(field, header, start, isTime: _wanted[i].Channel is null);
+                    Take(i, field, header, start);
                 }
             }
         }
 
-        if (column != header.Names.Length)
+        if (column < header.Names.Length || (more && !Csv.IsEmpty(rest)))
         {
-            Report(0, $"{column} fields", $"{header.Names.Length} as in the header", "complete or remove the row");
+            int fields = column + (more ? 1 + rest.Count(header.Separator) : 0);
+            Report(
+                0, $"{Counted(fields, "field")}", $"{header.Names.Length} as in the header",
+                more && header.Separator == ','
+                    ? "correct the row; where the comma is the decimal sign, part the fields by ; or tab"
+                    : "complete or remove the row");
         }
 
         _rows++;
+    }
+
+    /// <summary>Makes room for one more row; at the first one for all that are to come.</summary>
+    private void MakeRoom()
+    {
+        if (_rows == 0)
+        {
+            int rows = _filledLines == 0 ? 1024 : Math.Clamp(_filledLines - _filled + 1, 1, _options.MostRows);
+            _values = [.. _wanted.Select(wanted => wanted.Channel is null ? [] : new double[rows])];
+        }
+
+        for (int i = 0; i < _values.Length; i++)
+        {
+            if (_wanted[i].Channel is not null && _rows == _values[i].Length)
+            {
+                Array.Resize(ref _values[i], _rows * 2);
+            }
+        }
+    }
+
+    private void Take(int wanted, ReadOnlySpan<byte> field, CsvHeader header, int start)
+    {
+        if (_wanted[wanted].Channel is not null)
+        {
+            _values[wanted][_rows] = Number(field, header, start, isTime: false);
+        }
+        else
+        {
+            _times.Add(Number(field, header, start, isTime: true));
+        }
     }
 
     private double Number(ReadOnlySpan<byte> field, CsvHeader header, int start, bool isTime)
@@ -207,16 +264,19 @@ internal sealed partial class CsvTable
             return;
         }
 
-        int times = _wanted.FindIndex(wanted => wanted.Channel is null);
         if (_rows == 0 || (_rows == 1 && _options.Interval is null))
         {
-            ReportAt(Math.Max(1, _lines.Number), 0, $"{_rows} rows of data", "at least two", "is the file cut short?");
+            ReportAt(
+                Math.Max(1, _lines.Number), 0, $"{Counted(_rows, "row")} of data", "at least two",
+                "is the file cut short?");
+            return;
         }
-        else if (_options.Interval is { } interval)
+
+        if (_options.Interval is { } interval)
         {
-            Time = new TimeBase(times >= 0 ? _values[times][0] : 0, interval);
+            Time = new TimeBase(_times.First, interval);
         }
-        else if (TimeBase.Of(_values[times].AsSpan(0, _rows), out int row, out string found) is { } time)
+        else if (_times.Base(out int row, out string found) is { } time)
         {
             Time = time;
         }
@@ -233,6 +293,7 @@ internal sealed partial class CsvTable
             {
                 Array.Resize(ref _values[i], _rows);
                 Channels[channel] = _values[i];
+                _values[i] = [];
             }
         }
     }
@@ -242,6 +303,7 @@ internal sealed partial class CsvTable
         switch (_lines.TryRead(out line))
         {
             case CsvLines.Stop.None:
+                _filled += Csv.IsEmpty(line) ? 0 : 1;
                 return true;
             case CsvLines.Stop.LineTooLong:
                 Report(0, "a line of more than 64 kB", "rows of a text table", "is this a waveform file?");
@@ -253,6 +315,8 @@ internal sealed partial class CsvTable
                 return false;
         }
     }
+
+    private static string Counted(int count, string what) => count == 1 ? $"1 {what}" : $"{count} {what}s";
 
     private void Report(int column, string found, string expected, string advice) =>
         ReportAt(_lines.Number, column, found, expected, advice);

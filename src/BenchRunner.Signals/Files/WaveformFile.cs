@@ -17,6 +17,10 @@ public static class WaveformFile
     /// <summary>How far the intervals of two files of one record may differ, 1.</summary>
     private const double SameInterval = 1e-6;
 
+    /// <summary>Bytes from which on the rows are counted first: then no array has to grow, and the memory taken is that
+    /// of the samples.</summary>
+    private const int WorthCounting = 1 << 20;
+
     /// <summary>Reads a waveform file.</summary>
     /// <param name="path">The file.</param>
     /// <param name="options">How to read it; null: the house's own form.</param>
@@ -91,6 +95,14 @@ public static class WaveformFile
             return new WaveformRead(null, problems);
         }
 
+        if (options.Channels.GroupBy(mapping => mapping.Channel).FirstOrDefault(same => same.Count() > 1) is { } twice)
+        {
+            problems.Add(new WaveformProblem(
+                $"--channel {twice.Key.Name()}", 0, 0, $"{twice.Count()} columns for one channel", "one",
+                "leave the others out"));
+            return new WaveformRead(null, problems);
+        }
+
         CsvTable? main = readMain([.. options.Channels.Where(mapping => mapping.File is null)]);
         Dictionary<Channel, double[]> channels = main?.Channels ?? [];
         foreach (IGrouping<string?, ChannelMapping> file in options.Channels.GroupBy(mapping => mapping.File))
@@ -139,6 +151,12 @@ public static class WaveformFile
         IReadOnlyList<ChannelMapping> mappings,
         List<WaveformProblem> problems)
     {
+        if (Directory.Exists(path))
+        {
+            problems.Add(new WaveformProblem(path, 0, 0, "a directory", "a file", "name a file in it"));
+            return null;
+        }
+
         try
         {
             using FileStream file = new(path, FileMode.Open, FileAccess.Read, FileShare.Read, bufferSize: 0);
@@ -161,14 +179,30 @@ public static class WaveformFile
         IReadOnlyList<ChannelMapping> mappings,
         List<WaveformProblem> problems)
     {
+        long start = stream.CanSeek ? stream.Position : -1;
         byte[] front = new byte[2];
         int count = stream.ReadAtLeast(front, front.Length, throwOnEndOfStream: false);
         using PrefixedStream whole = new(front[..count], stream);
         bool packed = count == 2 && front[0] == 0x1F && front[1] == 0x8B;
-        using Stream text = packed ? new GZipStream(whole, CompressionMode.Decompress) : whole;
+        if (count == 2 && front is [0xFF, 0xFE] or [0xFE, 0xFF])
+        {
+            problems.Add(new WaveformProblem(name, 1, 1, "UTF-16 text", "UTF-8", "save it as UTF-8 or plain ASCII"));
+            return null;
+        }
+
+        using Stream text = packed ? Unpacked(whole) : whole;
         try
         {
-            return CsvTable.Read(text, name, options, mappings, problems);
+            int filled = 0;
+            if (start >= 0 && stream.Length - start > WorthCounting)
+            {
+                stream.Position = start;
+                using Stream counted = packed ? Unpacked(stream) : new PrefixedStream([], stream);
+                filled = CsvLines.CountFilled(counted, options.MostBytes);
+                stream.Position = start + count;
+            }
+
+            return CsvTable.Read(text, name, options, mappings, problems, filled);
         }
         catch (InvalidDataException e) when (packed)
         {
@@ -177,4 +211,8 @@ public static class WaveformFile
             return null;
         }
     }
+
+    // A file that was cut short shows only where the host sets System.IO.Compression.UseStrictValidation, as ours does.
+    private static GZipStream Unpacked(Stream stream) =>
+        new(stream, CompressionMode.Decompress, leaveOpen: true);
 }

@@ -56,7 +56,8 @@ internal static class AnalysisInput
         if (State(file) != before)
         {
             throw new InputException(
-                $"{file}: it changed while it was read; expected a finished file; wait until it is written, or copy it");
+                $"{file}: it changed while it was read; expected a finished file; wait until it is written, or copy "
+                    + "it");
         }
 
         return (waveform, sha256);

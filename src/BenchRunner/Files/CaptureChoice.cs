@@ -57,7 +57,10 @@ internal sealed record CaptureChoice(string Device, int Number, string? Run, str
         }
 
         FoundCapture[] numbered =
-            [.. ofRun.Where(one => one.Number == Number && (OperatingPoint ?? one.OperatingPoint) == one.OperatingPoint)];
+        [
+            .. ofRun.Where(
+                one => one.Number == Number && (OperatingPoint is null || one.OperatingPoint == OperatingPoint)),
+        ];
         if (numbered.Length == 0)
         {
             string at = OperatingPoint is null ? "" : $" at '{OperatingPoint}'";
@@ -78,8 +81,11 @@ internal sealed record CaptureChoice(string Device, int Number, string? Run, str
 
     private static string There(IEnumerable<FoundCapture> captures) => string.Join("; ", captures
         .GroupBy(one => (one.Run, one.OperatingPoint))
-        .Select(point => (point.Key.OperatingPoint, First: point.Min(one => one.Number), Last: point.Max(one => one.Number)))
-        .Select(point => $"{point.OperatingPoint} {point.First}" + (point.Last > point.First ? $" to {point.Last}" : ""))
+        .Select(point =>
+        {
+            (int first, int last) = (point.Min(one => one.Number), point.Max(one => one.Number));
+            return $"{point.Key.OperatingPoint} {first}" + (last > first ? $" to {last}" : "");
+        })
         .Distinct()
         .Take(MostShown));
 

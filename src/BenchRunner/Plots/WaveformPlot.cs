@@ -36,8 +36,8 @@ internal static class WaveformPlot
         svg.Text(
             Left, 34,
             $"{file.Waveform.Count} samples at {SiText.Format(file.Waveform.SampleInterval, "s")}; stated offset, gain "
-                + "and skew of each channel are taken out; triangles: clipped samples; of each pixel the lowest and the "
-                + "highest sample are drawn",
+                + "and skew of each channel are taken out; triangles: clipped samples; of each pixel the lowest and "
+                + "the highest sample are drawn",
             "subtitle");
         new Panels(svg, file, View.Whole(file), Left, Width - Left - Right).Draw(Head, 0, WholePanel);
         double width = (Width - Left - Right - Between) / 2;

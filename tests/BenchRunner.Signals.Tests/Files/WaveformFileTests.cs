@@ -115,7 +115,7 @@ public sealed class WaveformFileTests
     [InlineData("t,vds_low\n0,1\n1e-9,\n2e-9,3\n",
         "f.csv:3:6: an empty field; expected a number in V or A; write inf or nan for a clipped sample.")]
     [InlineData("t,vds_low\n0,1\n1e-9\n2e-9,3\n",
-        "f.csv:3: 1 fields; expected 2 as in the header; complete or remove the row.")]
+        "f.csv:3: 1 field; expected 2 as in the header; complete or remove the row.")]
     [InlineData("t,vds_low\n0,1\n1e-9,2\n3e-9,3\n4e-9,4\n",
         "f.csv:4:1: an interval of 2E-09 s where the first is 1E-09 s; expected times that rise by equal intervals; "
         + "resample the record, or state the interval by --interval if the times are wrong.")]

@@ -8,7 +8,7 @@ namespace FakeBench.Tests.Physics;
 /// ours.</summary>
 internal static class ReferenceFiles
 {
-    private static string Folder
+    public static string Folder
     {
         get
         {
