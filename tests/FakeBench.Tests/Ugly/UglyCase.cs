@@ -19,7 +19,10 @@ internal sealed record UglyCase(
     /// <summary>What happens to the noiseless signals before any probe: it is part of the truth.</summary>
     public Action<TrainTrajectory> Spoil { get; init; } = _ => { };
 
-    /// <summary>The gate probe's resonance: frequency, Hz, and damping, 1; null: none.</summary>
+    /// <summary>Whether a sample at a rail of the converter is written as an infinity.</summary>
+    public bool MarksClipped { get; init; }
+
+    /// <summary>The gate loop's resonance: frequency, Hz, and damping, 1; null: none.</summary>
     public (double Frequency, double Damping)? GateResonance { get; init; }
 
     /// <summary>Each channel's probe and converter, in the file's order.</summary>

@@ -13,7 +13,7 @@ internal static class UglyCases
     /// <summary>All of them.</summary>
     public static IReadOnlyList<UglyCase> All { get; } =
     [
-        new("ringing-gate", "The gate's probe rings on every edge through 50 % and up to twice the level.",
+        new("ringing-gate", "The gate rings on every edge through 50 % and up to twice its level.",
             _train, -1e-6, 2e-9, 8000)
         {
             GateResonance = (30e6, 0.012),
@@ -23,7 +23,6 @@ internal static class UglyCases
                 ("id_low", Current(), Amperes), ("vbus", Voltage(Signal.Vbus), Volts),
             ],
             Tolerance = 0.03,
-            // The gate is all that is late or early: its delay begins at a departure that the ringing moves.
             Tolerances = new Dictionary<string, double> { ["irm"] = 0.06, ["trr"] = 0.12, ["qrr"] = 0.08 },
         },
         new("coarse-steps", "Eight bits over far too wide a range: a step of the voltage is 1 % of the bus.",
@@ -32,12 +31,13 @@ internal static class UglyCases
             Channels =
             [
                 ("vgs_low", Gate(), new Digitiser(8, 60, 8)), ("vds_low", Voltage(Signal.VdsLow), Coarse),
-                ("id_low", Current(), new Digitiser(8, 0.01 * 256 * 60, 20)), ("vds_high", Voltage(Signal.VdsHigh), Coarse),
+                ("id_low", Current(), new Digitiser(8, 0.01 * 256 * 60, 20)),
+                ("vds_high", Voltage(Signal.VdsHigh), Coarse),
             ],
             Tolerance = 0.06,
             Tolerances = new Dictionary<string, double>
             {
-                ["vds_on"] = 4, ["irm"] = 0.12, ["trr"] = 0.3, ["qrr"] = 0.25, ["bus_voltage"] = 0.02,
+                ["irm"] = 0.12, ["trr"] = 0.3, ["qrr"] = 0.25, ["bus_voltage"] = 0.02,
             },
         },
         new("below-zero", "The voltage probe sees 12 nH of the loop: vds falls far below zero after the turn-on.",
@@ -67,7 +67,11 @@ internal static class UglyCases
                 ["id_low"] = (1, null, (1 / (2 * Math.PI * 60e6)) - (1 / (2 * Math.PI * Fast))),
             },
             Tolerance = 0.05,
-            Tolerances = new Dictionary<string, double> { ["irm"] = 0.1, ["trr"] = 0.15, ["qrr"] = 0.1 },
+            // What the pole takes off the peak and the slope is lost.
+            Tolerances = new Dictionary<string, double>
+            {
+                ["irm"] = 0.1, ["trr"] = 0.15, ["qrr"] = 0.1, ["didt_on"] = 0.2,
+            },
         },
         new("ringing-load", "The load rings at 3 MHz after each turn-on, over the whole second ramp.",
             _train, -1e-6, 2e-9, 8000)
@@ -99,10 +103,22 @@ internal static class UglyCases
             Tolerance = 0.05,
             Tolerances = new Dictionary<string, double> { ["irm"] = 0.06, ["trr"] = 0.12, ["qrr"] = 0.08 },
         },
+        new("clipped-peak", "The range ends below the peak of vds_high and of the current; clipped samples are marked.",
+            _train, -1e-6, 2e-9, 8000)
+        {
+            MarksClipped = true,
+            Channels =
+            [
+                ("vgs_low", Gate(), new Digitiser(8, 60, 8)), ("vds_low", Voltage(Signal.VdsLow), Volts),
+                ("id_low", Current(), new Digitiser(8, 60, 20)),
+                ("vds_high", Voltage(Signal.VdsHigh), new Digitiser(8, 600, 260)),
+            ],
+            Tolerance = 0.05,
+        },
         new("everything", "All of it at once, in a record that ends inside the second pulse.",
             _train, -0.8e-6, 2e-9, 6700)
         {
-            GateResonance = (35e6, 0.02),
+            GateResonance = (33e6, 0.06),
             Spoil = train =>
             {
                 AddRing(train, 0, 0.8, 4e6, 0.6e-6);
@@ -125,12 +141,12 @@ internal static class UglyCases
             Tolerance = 0.08,
             Tolerances = new Dictionary<string, double>
             {
-                ["vds_on"] = 4, ["irm"] = 0.15, ["trr"] = 0.3, ["qrr"] = 0.25,
+                ["irm"] = 0.15, ["trr"] = 0.3, ["qrr"] = 0.25, ["didt_on"] = 0.2,
             },
         },
     ];
 
-    private static Digitiser Volts => new(8, 700, 250);
+    private static Digitiser Volts => new(8, 800, 290);
 
     private static Digitiser Coarse => new(8, 0.01 * 256 * 400, 300);
 

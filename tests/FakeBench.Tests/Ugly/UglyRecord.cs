@@ -17,18 +17,13 @@ internal static class UglyRecord
     public static double[][] Samples(UglyCase ugly)
     {
         TrainTrajectory train = HalfBridge.Simulate(ugly.Parts, ugly.Train, ugly.Start, ugly.Interval, ugly.Points);
-        ugly.Spoil(train);
-        if (ugly.GateResonance is { } resonance)
-        {
-            Resonate(train[Signal.VgsLow], resonance.Frequency, resonance.Damping, train.Interval);
-        }
-
+        Spoil(ugly, train);
         var key = new CaptureKey(Seed, ugly.Name, 1);
         return
         [
             .. ugly.Channels.Select((channel, i) => Recorder
                 .Record(train, channel.Probe, channel.Digitiser, key.Noise(i + 1), key.Jitter(20e-12))
-                .Select(channel.Digitiser.Value).ToArray()),
+                .Select(code => Value(ugly, channel.Digitiser, code)).ToArray()),
         ];
     }
 
@@ -56,7 +51,7 @@ internal static class UglyRecord
         TrainTrajectory fine = HalfBridge.Simulate(
             ugly.Parts, ugly.Train, ugly.Start - 1e-7, ugly.Interval / Finer,
             Finer * (ugly.Points + (int)(2e-7 / ugly.Interval)));
-        ugly.Spoil(fine);
+        Spoil(ugly, fine);
         PulseTrain train = ugly.Train;
         double end = ugly.Start + (ugly.Interval * (ugly.Points - 1));
         var edges = new (string Name, double At)[]
@@ -71,14 +66,35 @@ internal static class UglyRecord
             + $"\"skew\": {Number(one.Value.Skew, 9)} }}")).Append("\n  },\n");
         text.Append("  \"truth\": {\n").AppendJoin(",\n", Truth.Of(fine, train).Select(one =>
             $"    \"{one.Key}\": {{ \"value\": {Number(one.Value, 7)}, "
-            + $"\"tolerance\": {Number(ugly.Tolerances.GetValueOrDefault(one.Key, ugly.Tolerance), 9)} }}"));
+            + $"\"tolerance\": {Number(Tolerance(ugly, one.Key, one.Value), 3)} }}"));
         return text.Append("\n  }\n}\n").ToString();
     }
 
-    private static string Number(double value, int digits) =>
+    private static double Value(UglyCase ugly, Digitiser digitiser, short code) =>
+        ugly.MarksClipped && code == digitiser.Highest ? double.PositiveInfinity
+        : ugly.MarksClipped && code == digitiser.Lowest ? double.NegativeInfinity
+        : digitiser.Value(code);
+
+    private static void Spoil(UglyCase ugly, TrainTrajectory train)
+    {
+        ugly.Spoil(train);
+        if (ugly.GateResonance is { } resonance)
+        {
+            Resonate(train[Signal.VgsLow], resonance.Frequency, resonance.Damping, train.Interval);
+        }
+    }
+
+    /// <summary>How far the mean of a channel may be off where its noise is below its step: half a step.</summary>
+    private static double Tolerance(UglyCase ugly, string quantity, double value)
+    {
+        double step = ugly.Channels.Single(channel => channel.Channel == "vds_low").Digitiser.Step;
+        return quantity == "vds_on" ? 0.5 * step / value : ugly.Tolerances.GetValueOrDefault(quantity, ugly.Tolerance);
+    }
+
+    private static string Number(double value, int digits) => double.IsInfinity(value) ? value > 0 ? "inf" : "-inf" :
         value.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
 
-    /// <summary>A probe with a long lead to ground: y'' = w² (x − y) − 2 z w y', solved in small steps with x straight
+    /// <summary>A gate loop that rings: y'' = w² (x − y) − 2 z w y', solved in small steps with x straight
     /// between samples.</summary>
     private static void Resonate(double[] samples, double frequency, double damping, double interval)
     {
