@@ -220,7 +220,7 @@ internal sealed class Analyser
             }
 
             FormIrr();
-            if (!Finite.All(_irr))
+            if (!Finite.All(_irr.AsSpan(0, RecoveryLength)))
             {
                 _irr = [];
                 return Reading.None("the load-current line is not a finite number");
