@@ -14,6 +14,7 @@ public readonly ref struct SwitchingEvent
 {
     private const double HysteresisPart = 0.01;
     private const double DecidedPart = 0.02;
+    private const double HalfWay = 0.5;
 
     /// <summary>Voltage of the firing switch, V, uniform, finite.</summary>
     public required Samples Vds { get; init; }
@@ -97,9 +98,32 @@ public readonly ref struct SwitchingEvent
         }
 
         CrossingDirection direction = TurnsOn ? CrossingDirection.Rising : CrossingDirection.Falling;
-        return Crossing.First(Id, fraction * Current.Value, hysteresis, direction, Departure, End) is { } at
-            ? Instant.Of(at)
-            : Instant.None($"the current does not cross {Percent(fraction)}");
+        double level = fraction * Current.Value;
+        if (Crossing.First(Id, level, hysteresis, direction, Departure, End) is not { } at)
+        {
+            return Instant.None($"the current does not cross {Percent(fraction)}");
+        }
+
+        return Instant.Of(TurnsOn && fraction < HalfWay ? LastBeforeHalf(level, hysteresis, at) : at);
+    }
+
+    /// <summary>The last rise through a level before the current is half the load's: the gate's current, which a
+    /// source-side probe sees from the departure on, may rise through 10 % and fall back.</summary>
+    private double LastBeforeHalf(double level, double hysteresis, double first)
+    {
+        const CrossingDirection rising = CrossingDirection.Rising;
+        if (Crossing.First(Id, HalfWay * Current.Value, hysteresis, rising, first, End) is not { } half)
+        {
+            return first;
+        }
+
+        double last = first;
+        while (Crossing.First(Id, level, hysteresis, rising, Math.BitIncrement(last), half) is { } next)
+        {
+            last = next;
+        }
+
+        return last;
     }
 
     /// <summary>Why there are no levels of vds; null where there are.</summary>
