@@ -89,7 +89,10 @@ internal sealed class Peer : IDisposable
     /// <summary>A loaded work, to be timed.</summary>
     /// <param name="work">Its name.</param>
     public Rounds.Work Run(string work) => calls =>
-        Ask(new JsonObject { ["do"] = "run", ["work"] = work, ["count"] = calls })["seconds"]!.GetValue<double>();
+    {
+        JsonObject answer = Ask(new JsonObject { ["do"] = "run", ["work"] = work, ["count"] = calls });
+        return new Spent(answer["seconds"]!.GetValue<double>(), answer["least"]!.GetValue<double>());
+    };
 
     /// <summary>The values that a loaded work gives; those that cannot be formed are left out.</summary>
     /// <param name="work">Its name.</param>

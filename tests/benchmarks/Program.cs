@@ -30,7 +30,7 @@ internal static class Program
         List<Row> rows = [];
         foreach (IGrouping<string, Goal> group in goals.Where(options.Wants).GroupBy(goal => goal.Group))
         {
-            rows.AddRange(options.List ? group.Select(NotMeasured) : Measure(group, options.Seed));
+            rows.AddRange(options.List ? group.Select(NotMeasured) : Measure(group, goals, options.Seed));
         }
 
         Write(rows, options);
@@ -38,15 +38,23 @@ internal static class Program
     }
 
     /// <summary>Measures the goals of one group, in the order of their file.</summary>
-    private static List<Row> Measure(IGrouping<string, Goal> goals, int seed)
+    private static List<Row> Measure(IGrouping<string, Goal> wanted, List<Goal> goals, int seed)
     {
-        if (!_groups.TryGetValue(goals.Key, out Func<int, IGroup>? make))
+        if (!_groups.TryGetValue(wanted.Key, out Func<int, IGroup>? make))
         {
-            return [.. goals.Select(NotMeasured)];
+            return [.. wanted.Select(NotMeasured)];
         }
 
         using IGroup group = make(seed);
-        return [.. goals.Select(goal => group.Benchmarks.SingleOrDefault(benchmark => benchmark.Work == goal.Work)
+        foreach (Benchmark benchmark in group.Benchmarks)
+        {
+            if (!goals.Exists(goal => goal.Work == benchmark.Work))
+            {
+                throw new InvalidOperationException($"{benchmark.Work} has no goal: a row without one says nothing.");
+            }
+        }
+
+        return [.. wanted.Select(goal => group.Benchmarks.SingleOrDefault(benchmark => benchmark.Work == goal.Work)
             is { } benchmark ? Measure(benchmark, goal) : NotMeasured(goal))];
     }
 

@@ -9,38 +9,39 @@ internal static class Rounds
 
     /// <summary>Does a work some times.</summary>
     /// <param name="calls">How many times.</param>
-    /// <returns>Processor seconds a call.</returns>
-    public delegate double Work(int calls);
+    /// <returns>What a call took.</returns>
+    public delegate Spent Work(int calls);
 
     /// <summary>A work of this process.</summary>
     /// <param name="work">Done once a call.</param>
     public static Work Here(Action work) => calls =>
     {
-        TimeSpan start = Environment.CpuUsage.TotalTime;
+        Meter meter = Meter.Start();
         for (int call = 0; call < calls; call++)
         {
             work();
+            meter.Call();
         }
 
-        return (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls;
+        return meter.Stop();
     };
 
     /// <summary>Times works beside each other, after warming each up.</summary>
     /// <param name="works">The works.</param>
-    /// <returns>Processor seconds a call of each.</returns>
+    /// <returns>What a call of each takes.</returns>
     public static Figure[] Time(params IReadOnlyList<Work> works)
     {
         int[] calls = [.. works.Select(Calls)];
-        double[][] seconds = [.. works.Select(_ => new double[Count])];
+        Spent[][] spent = [.. works.Select(_ => new Spent[Count])];
         for (int round = 0; round < Count; round++)
         {
             for (int i = 0; i < works.Count; i++)
             {
-                seconds[i][round] = works[i](calls[i]);
+                spent[i][round] = works[i](calls[i]);
             }
         }
 
-        return [.. seconds.Select(Figure.Of)];
+        return [.. spent.Select(Figure.Of)];
     }
 
     /// <summary>Warms a work up, and says how often it fits into a round.</summary>
@@ -48,7 +49,7 @@ internal static class Rounds
     {
         for (int calls = 1; ; calls *= 2)
         {
-            double spent = work(calls) * calls;
+            double spent = work(calls).Processor * calls;
             if (spent >= RoundSeconds)
             {
                 return Math.Max(1, (int)(calls * RoundSeconds / spent));

@@ -42,7 +42,7 @@ internal sealed class CodeKernels(IReadOnlyList<RawTrace> traces)
 
     /// <summary>The values of the codes are made before the clock starts: the kernels read codes, and look at a value
     /// here and there.</summary>
-    private double Crossings(int calls)
+    private Spent Crossings(int calls)
     {
         Samples gate = SamplesOf(0);
         Samples low = SamplesOf(1);
@@ -50,30 +50,32 @@ internal sealed class CodeKernels(IReadOnlyList<RawTrace> traces)
         Samples high = SamplesOf(3);
         ((double, double) g, (double, double) l) = (Middle(gate), Middle(low));
         ((double, double) c, (double, double) h) = (Middle(current), Middle(high));
-        TimeSpan start = Environment.CpuUsage.TotalTime;
+        Meter meter = Meter.Start();
         for (int call = 0; call < calls; call++)
         {
             _kept = Count(gate, g) + Count(low, l) + Count(current, c) + Count(high, h);
+            meter.Call();
         }
 
-        return (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls;
+        return meter.Stop();
     }
 
-    private double Integrals(int calls)
+    private Spent Integrals(int calls)
     {
         Samples gate = SamplesOf(0);
         Samples low = SamplesOf(1);
         Samples current = SamplesOf(2);
         Samples high = SamplesOf(3);
         double end = gate.Length - 1;
-        TimeSpan start = Environment.CpuUsage.TotalTime;
+        Meter meter = Meter.Start();
         for (int call = 0; call < calls; call++)
         {
             _kept = Integral.Of(gate, 0, end) + Integral.Of(low, 0, end) + Integral.Of(current, 0, end)
                 + Integral.Of(high, 0, end) + Integral.OfProduct(low, current, 0, end);
+            meter.Call();
         }
 
-        return (Environment.CpuUsage.TotalTime - start).TotalSeconds / calls;
+        return meter.Stop();
     }
 
     private Samples SamplesOf(int at)

@@ -86,7 +86,7 @@ class Model:
 
     def fit(self, x, tolerance, most):
         """Least squares to a relative tolerance."""
-        return least_squares(self.residual, x, self.jacobian, method="lm",
+        return least_squares(self.residual, x, self.jacobian, method="lm", x_scale="jac",
                              ftol=max(tolerance * tolerance, 1e-14), xtol=tolerance, gtol=1e-15, max_nfev=most)
 
 
