@@ -222,7 +222,7 @@ internal sealed class Analyser
             FormIrr();
             if (!Finite.All(_irr.AsSpan(0, RecoveryLength)))
             {
-                _irr = [];
+                _irr = null;
                 return Reading.None("the load-current line is not a finite number");
             }
 
