@@ -17,23 +17,27 @@ internal static class CodeSums
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static long Sum(ReadOnlySpan<short> codes)
     {
+        const int Stride = 64;
         long sum = 0;
         int i = 0;
         if (Avx2.IsSupported)
         {
             ref short source = ref MemoryMarshal.GetReference(codes);
-            Vector256<short> ones = Vector256.Create((short)1);
-            while (codes.Length - i >= Vector256<short>.Count)
+            while (codes.Length - i >= Stride)
             {
-                // 2^15 steps of two codes each stay inside 32 bits a lane.
-                int end = i + (Math.Min((codes.Length - i) / Vector256<short>.Count, Block) * Vector256<short>.Count);
-                Vector256<int> part = Vector256<int>.Zero;
-                for (; i < end; i += Vector256<short>.Count)
+                // 2^15 steps of two codes each stay inside 32 bits a lane; four lanes' sums wait for nobody.
+                int end = i + (Math.Min((codes.Length - i) / Stride, Block) * Stride);
+                Vector256<int> first = Vector256<int>.Zero, second = first, third = first, fourth = first;
+                for (; i < end; i += Stride)
                 {
-                    part += Avx2.MultiplyAddAdjacent(Vector256.LoadUnsafe(ref source, (nuint)i), ones);
+                    nuint at = (nuint)i;
+                    first += Pairs(Vector256.LoadUnsafe(ref source, at));
+                    second += Pairs(Vector256.LoadUnsafe(ref source, at + 16));
+                    third += Pairs(Vector256.LoadUnsafe(ref source, at + 32));
+                    fourth += Pairs(Vector256.LoadUnsafe(ref source, at + 48));
                 }
 
-                sum += WideSum(part);
+                sum += WideSum(first) + WideSum(second) + WideSum(third) + WideSum(fourth);
             }
         }
 
@@ -45,38 +49,54 @@ internal static class CodeSums
         return sum;
     }
 
-    /// <summary>Σ a·b of two channels of one length.</summary>
+    /// <summary>Σ a, Σ b and Σ a·b of two channels of one length, in one pass.</summary>
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    public static long Products(ReadOnlySpan<short> a, ReadOnlySpan<short> b)
+    public static (long First, long Second, long Products) Products(ReadOnlySpan<short> a, ReadOnlySpan<short> b)
     {
         b = b[..a.Length];
-        long sum = 0;
+        (long sumA, long sumB, long below) = (0, 0, 0);
         int i = 0;
         if (Avx2.IsSupported)
         {
             ref short first = ref MemoryMarshal.GetReference(a);
             ref short second = ref MemoryMarshal.GetReference(b);
             // Two products a lane reach 2^31, one too many, only where all four codes are −32768; lanes are taken as
-            // their distance below 2^31, which always fits 32 bits without a sign.
-            Vector256<long> below = Vector256<long>.Zero;
+            // their distance below 2^31, which always fits 32 bits without a sign. Its halves are summed by themselves:
+            // 2^15 of them stay inside 32 bits.
             Vector256<int> top = Vector256.Create(int.MinValue);
-            for (; i <= a.Length - Vector256<short>.Count; i += Vector256<short>.Count)
+            Vector256<uint> half = Vector256.Create(0xFFFFu);
+            int width = Vector256<short>.Count;
+            while (a.Length - i >= width)
             {
-                Vector256<int> pairs = Avx2.MultiplyAddAdjacent(
-                    Vector256.LoadUnsafe(ref first, (nuint)i), Vector256.LoadUnsafe(ref second, (nuint)i));
-                (Vector256<ulong> low, Vector256<ulong> high) = Vector256.Widen((top - pairs).AsUInt32());
-                below += (low + high).AsInt64();
-            }
+                int end = i + (Math.Min((a.Length - i) / width, Block) * width);
+                Vector256<int> partA = Vector256<int>.Zero, partB = partA;
+                Vector256<uint> low = Vector256<uint>.Zero, high = low;
+                for (; i < end; i += width)
+                {
+                    Vector256<short> x = Vector256.LoadUnsafe(ref first, (nuint)i);
+                    Vector256<short> y = Vector256.LoadUnsafe(ref second, (nuint)i);
+                    partA += Pairs(x);
+                    partB += Pairs(y);
+                    Vector256<uint> distance = (top - Avx2.MultiplyAddAdjacent(x, y)).AsUInt32();
+                    low += distance & half;
+                    high += distance >>> 16;
+                }
 
-            sum = ((long)i / 2 << 31) - Vector256.Sum(below);
+                sumA += WideSum(partA);
+                sumB += WideSum(partB);
+                below += WideSum(low.AsInt32()) + (WideSum(high.AsInt32()) << 16);
+            }
         }
 
+        long products = ((long)i / 2 << 31) - below;
         for (; i < a.Length; i++)
         {
-            sum += a[i] * b[i];
+            sumA += a[i];
+            sumB += b[i];
+            products += a[i] * b[i];
         }
 
-        return sum;
+        return (sumA, sumB, products);
     }
 
     /// <summary>Σ j·c, j from 0: the first moment of a stretch.</summary>
@@ -121,6 +141,10 @@ internal static class CodeSums
 
         return sum;
     }
+
+    /// <summary>Sums of neighbours.</summary>
+    private static Vector256<int> Pairs(Vector256<short> codes) =>
+        Avx2.MultiplyAddAdjacent(codes, Vector256.Create((short)1));
 
     private static long WideSum(Vector256<int> lanes)
     {

@@ -166,11 +166,13 @@ public static class Integral
     {
         ReadOnlySpan<short> a = x.Codes[first..(last + 1)];
         ReadOnlySpan<short> b = y.Codes[first..(last + 1)];
-        long product = (2 * CodeSums.Products(a, b)) - (a[0] * b[0]) - (a[^1] * b[^1]);
-        int intervals = last - first;
-        return (x.Gain * y.Gain * (product / 2.0))
-            + (x.Gain * y.Offset * (Twice(x.Codes, first, last) / 2.0))
-            + (x.Offset * Inside(y, Twice(y.Codes, first, last), intervals));
+        (long sumX, long sumY, long products) = CodeSums.Products(a, b);
+        long twice = (2 * products) - (a[0] * b[0]) - (a[^1] * b[^1]);
+        long twiceX = (2 * sumX) - a[0] - a[^1];
+        long twiceY = (2 * sumY) - b[0] - b[^1];
+        return (x.Gain * y.Gain * (twice / 2.0))
+            + (x.Gain * y.Offset * (twiceX / 2.0))
+            + (x.Offset * Inside(y, twiceY, last - first));
     }
 
     /// <summary>Twice the trapezoidal sum of codes over whole sample intervals: a whole number.</summary>
