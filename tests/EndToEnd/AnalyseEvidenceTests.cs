@@ -113,6 +113,29 @@ public sealed class AnalyseEvidenceTests(StoredCaptures stored) : IClassFixture<
         Assert.Contains("--operating-point: half, rated", refused.Error, StringComparison.Ordinal);
     }
 
+    [Fact]
+    public async Task Samples_at_the_rails_of_a_stored_capture_are_marked()
+    {
+        using Workplace place = new();
+        string bench = place.FakeBenchFile("{ seed: 1, pace: 5, faults: [clipped-range] }");
+        await place.Run("run", place.OnePoint("half"), "--device", StoredCaptures.Device, "--bench", bench);
+        object[] clipped = place.Rows(
+            "select capture, json_extract(findings, '$[0].channel') from captures "
+                + "where json_extract(findings, '$[0].criterion') = 'not-clipped' and operating_point = 'half'")[0];
+
+        (await place.Run(
+            "analyse", "--device", StoredCaptures.Device, "--capture", $"{clipped[0]}", "--plot", "clipped.svg"))
+            .Expect(0);
+
+        string[] marked =
+        [
+            .. System.Xml.Linq.XDocument.Load(place.Path("clipped.svg")).Descendants()
+                .Where(one => one.Attribute("class")?.Value == "clipped")
+                .Select(one => one.Parent!.Attribute("data-channel")!.Value).Distinct(),
+        ];
+        Assert.Contains((string)clipped[1], marked);
+    }
+
     [Theory]
     [InlineData("--capture 9", "has no capture 9; expected one of zero 1; proving-before 1; half 1 to 2")]
     [InlineData("--capture 1 --operating-point full", "has no capture 1 at 'full'; expected one of zero 1")]

@@ -111,6 +111,7 @@ public sealed class AnalyseFileTests : IDisposable
     }
 
     [Theory]
+    [Trait("kind", "slow")]
     [InlineData(2.0, 10.8, "bus_droop", "on1 is outside the record", "eon eoff qrr trr irm i_on i_off ring_frequency")]
     [InlineData(0, 9.6, null, null, "eon eoff qrr trr irm i_on i_off bus_droop ring_frequency")]
     [InlineData(4.0, 7.0, "eon", "on2 is outside the record", "i_off vds_peak_off vds_on ramp_slope")]
@@ -146,6 +147,7 @@ public sealed class AnalyseFileTests : IDisposable
     }
 
     [Theory]
+    [Trait("kind", "slow")]
     [InlineData("vbus", "bus_voltage", "vbus is not measured and the diode's forward voltage is not stated")]
     [InlineData("vds_high", "ring_frequency", "vds_high is not measured")]
     [InlineData("vgs_low", "eon", "vgs_low is not measured")]

@@ -41,10 +41,18 @@ internal static class AnalysisInput
     /// <summary>Reads a waveform file and analyses it.</summary>
     public static AnalysedFile Analyse(string file, WaveformFileOptions options, AnalysisSettings settings)
     {
-        (Waveform waveform, string sha256) = Unchanged(file, options);
-        AnalysisResult result = WaveformAnalysis.Analyse(waveform, settings);
-        return new AnalysedFile(
-            file, sha256, waveform, settings, result, WaveformFindings.Judge(waveform, result, settings));
+        try
+        {
+            (Waveform waveform, string sha256) = Unchanged(file, options);
+            AnalysisResult result = WaveformAnalysis.Analyse(waveform, settings);
+            return new AnalysedFile(
+                file, sha256, waveform, settings, result, WaveformFindings.Judge(waveform, result, settings));
+        }
+        catch (OutOfMemoryException)
+        {
+            throw new InputException(
+                $"{file}: it is longer than this computer's memory holds; cut the record to the pulse train");
+        }
     }
 
     /// <summary>Reads a waveform file, with the SHA-256 of the very bytes that were read.</summary>

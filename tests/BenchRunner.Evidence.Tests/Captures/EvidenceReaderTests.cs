@@ -12,6 +12,35 @@ public sealed class EvidenceReaderTests : IDisposable
     public void Dispose() => _folder.Dispose();
 
     [Fact]
+    public void Captures_of_a_device_are_found_in_all_its_runs_with_their_newest_verdict()
+    {
+        string first, second;
+        using (EvidenceStore store = EvidenceStore.Open(_folder.File, Samples.Clock()))
+        {
+            RunWriter writer = store.BeginRun(Samples.Header());
+            first = writer.Run;
+            writer.AddCapture(Samples.Capture(1, "zero"));
+            Samples.AddJudged(writer, Samples.Capture(1), Samples.Rejected);
+            writer.Finish(Samples.Decision(Acceptance.Decisions.Outcome.Rejected));
+            second = Samples.WholeRun(store, Samples.Header(lot: null));
+        }
+
+        using EvidenceReader reader = EvidenceReader.Open(_folder.File);
+        string device = Assert.Single(reader.Devices(9));
+        IReadOnlyList<FoundCapture> found = reader.CapturesOf(device);
+
+        Assert.Equal(
+            [(first, "zero", 1, false), (first, "rated", 1, true)],
+            found.Where(one => one.Run == first)
+                .Select(one => (one.Run, one.OperatingPoint, one.Number, one.Findings is not null)));
+        Assert.Contains(Samples.Rejected.Findings[0].Criterion, found[1].Findings, StringComparison.Ordinal);
+        Assert.All(found.Skip(2), one => Assert.Equal(second, one.Run));
+        Assert.Equal(
+            reader.Captures(first).Concat(reader.Captures(second)).Select(one => one.Id), found.Select(one => one.Id));
+        Assert.Empty(reader.CapturesOf("W1200-0099"));
+    }
+
+    [Fact]
     public void A_capture_comes_back_as_it_was_given()
     {
         CaptureRow given = Samples.Capture(3, "zero") with
