@@ -49,6 +49,7 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
         SwitchingEvent edge = analyser.TurnOn(analyser.OnCurrent);
         return (quantity, rule) switch
         {
+            ("td_on", _) when analyser.Train.IsDepartureInNoise => Reading.None("level within the noise"),
             ("td_on", "mos/10-90") => SwitchingTime.VoltageDelay(edge),
             ("td_on", "igbt/10-10") => SwitchingTime.CurrentDelay(edge),
             ("tr", "mos/90-10") => SwitchingTime.VoltageTransition(edge),

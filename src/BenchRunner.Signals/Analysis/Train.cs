@@ -9,6 +9,7 @@ namespace BenchRunner.Signals.Analysis;
 internal sealed class Train
 {
     private const double GateHysteresisPart = 0.01;
+    private const double DeparturePart = 0.1;
     private const int FewestForNoise = 8;
     private const int MostForFirstNoise = 2048;
 
@@ -44,6 +45,10 @@ internal sealed class Train
     public string? Absent { get; }
 
     public double GateHysteresis { get; private set; }
+
+    /// <summary>Whether the gate's 10 %, at which a turn-on departs, lies within the hysteresis of its off
+    /// state.</summary>
+    public bool IsDepartureInNoise => Levels is { } levels && DeparturePart * levels.Swing <= GateHysteresis;
 
     public bool IsTwoPulses =>
         Edges.Count == 4 && Edges[0].Direction == CrossingDirection.Rising;

@@ -48,6 +48,24 @@ public sealed class TrainFactsTests
         Assert.InRange(train.OnStateMaximum!.Value / train.BusBeforeOn1!.Value, 0.9, 1);
     }
 
+    [Fact]
+    public void A_gate_whose_10_percent_is_within_its_noise_gives_no_turn_on_delay_and_everything_else()
+    {
+        // 3 σ of 0.5 V is above 10 % of 12 V.
+        Waveform clean = Reference.Waveform("hv650soft-clean.csv.gz");
+        AnalysisSettings settings = Reference.Settings("hv650soft", measured: false);
+        Random random = new(3);
+        Dictionary<Channel, double[]> noisy = clean.Channels.ToDictionary(c => c, c => clean[c].ToArray());
+        noisy[Channel.VgsLow] = [.. noisy[Channel.VgsLow].Select(x => x + (0.5 * (Enumerable.Range(0, 12)
+            .Sum(_ => random.NextDouble()) - 6)))];
+        AnalysisResult result = WaveformAnalysis.Analyse(new Waveform(0, clean.SampleInterval, noisy), settings);
+        Assert.True(result.Train.IsTwoPulses);
+        Assert.All(
+            result.Quantities.Where(q => q.Quantity == "td_on"), q => Assert.Equal("level within the noise", q.Reason));
+        Assert.All(
+            result.Quantities.Where(q => q.Quantity is "td_off" or "eon" or "eoff"), q => Assert.NotNull(q.Value));
+    }
+
     private static double[] Numbers(JsonElement of, string name) =>
         [.. of.GetProperty(name).EnumerateArray().Select(x => x.GetDouble())];
 
