@@ -113,7 +113,8 @@ public sealed class LevenbergMarquardt
             lastFine = fine ? change : lastFine;
             // What the step kept of its promise says how far the equations can be trusted.
             double kept = (2 * (before - _problem.Squares) / expected) - 1;
-            damping = damping < LeastDamping ? 0 : damping * (fine ? Relief : Math.Max(Relief, 1 - (kept * kept * kept)));
+            double relief = fine ? Relief : Math.Max(Relief, 1 - (kept * kept * kept));
+            damping = damping < LeastDamping ? 0 : damping * relief;
             growth = Growth;
         }
 

@@ -5,8 +5,8 @@ namespace BenchRunner.Signals.Fitting;
 /// <remarks>
 /// With r(x) the residuals, data less model, and J the model's derivatives: the sum of squares rᵀr, half its falling
 /// slope Jᵀr and its curvature JᵀJ. Unknowns in which the model is linear may be eliminated (variable projection); then
-/// slope and curvature are those of what remains. Forming JᵀJ squares the condition of J, but not the error of the
-/// answer: that is where Jᵀr vanishes, and Jᵀr is formed from the residuals at each step.
+/// slope and curvature are those of what remains. JᵀJ has the squared condition of J, which slows the search but does
+/// not move its answer: that lies where Jᵀr vanishes.
 /// </remarks>
 public abstract class NormalEquations
 {

@@ -6,10 +6,15 @@ namespace BenchRunner.Signals.Ringing;
 /// <remarks>
 /// <para>y(t) = c + d t + Σ A e^(−σ t) cos(2π f t + φ), one to three modes, t from the first sample. The order is that
 /// of the shortest description, N ln(rms) + (2 + 4 modes)/2 · ln N (minimum description length, Rissanen 1978, from
-/// memory). A mode closer to a stronger one than 1/T (T the window), below three times its own standard uncertainty, or
-/// not decaying is not believed: the order is lowered by one.</para>
-/// <para>Standard uncertainties come from the covariance of the least squares with the scatter of the residuals, their
-/// correlation taken in by the factor 1 + 2 Σ ρ up to the first zero of their autocorrelation.</para>
+/// memory). A mode closer to a stronger one than 1/T (T the window), not decaying, or within what chance makes of noise
+/// is not believed: the order is lowered by one. Chance: the strongest mode must be six times its own standard
+/// uncertainty, any other √(3 ln N) times and at least three.</para>
+/// <para>Standard uncertainties come from the covariance of the least squares in noise of the residuals' variance and
+/// colour (<see cref="RingFitSpread"/>). They hold in white noise and behind a probe's pole alike; they know nothing of
+/// a frequency that moves within the window.</para>
+/// <para>What can go wrong: a window that still holds the recovery's tail or the bend of a capacitance gives dampings
+/// that are too high; two or three slow waves of noise that is strongly correlated from sample to sample may pass for
+/// a ring (1 record in 100 at 100 samples and a correlation of 0.9).</para>
 /// </remarks>
 public static class RingFit
 {
@@ -19,6 +24,10 @@ public static class RingFit
     private const int SamplesPerParameter = 4;
     private const double FewestPeriods = 2;
     private const double SignificantAt = 3;
+
+    /// <summary>How many times its own standard uncertainty the strongest mode must be: what is sought over all
+    /// frequencies and decays is found at four in noise alone.</summary>
+    private const double BeyondChanceAt = 6;
 
     /// <summary>A residual below this part of the record's own rms is none: no recorder resolves it.</summary>
     private const double Floor = 1e-7;
@@ -117,13 +126,12 @@ public static class RingFit
                 continue;
             }
 
-            // A fit that leaves more than it explains is a chance pattern in something else.
-            RingFitResult result = fit.Squares > squares / 2 ? none : RingFitReport.Describe(fit, y, dt);
+            RingFitResult result = RingFitReport.Describe(fit, y, dt);
             if (result.Reason is not null)
             {
                 none = result;
             }
-            else if (IsBelievable(result.Modes, y.Length * dt))
+            else if (IsBelievable(result.Modes, y.Length, y.Length * dt))
             {
                 return result.Modes[0].Frequency * y.Length * dt < FewestPeriods
                     ? RingFitResult.None("fewer than 2 periods")
@@ -180,11 +188,12 @@ public static class RingFit
 
     private static double Square(double x) => x * x;
 
-    private static bool IsBelievable(IReadOnlyList<RingMode> modes, double window)
+    private static bool IsBelievable(IReadOnlyList<RingMode> modes, int samples, double window)
     {
+        double least = BeyondChanceAt;
         for (int i = 0; i < modes.Count; i++)
         {
-            if (!(modes[i].Amplitude >= SignificantAt * modes[i].AmplitudeUncertainty))
+            if (!(modes[i].Amplitude >= least * modes[i].AmplitudeUncertainty))
             {
                 return false;
             }
@@ -196,6 +205,9 @@ public static class RingFit
                     return false;
                 }
             }
+
+            // With the samples grows the number of patterns among which chance finds one.
+            least = Math.Max(SignificantAt, Math.Sqrt(3 * Math.Log(samples)));
         }
 
         return true;

@@ -51,27 +51,27 @@ internal static class RingFitColumns
         }
     }
 
-    /// <summary>Replaces the samples by samples less model.</summary>
-    /// <param name="y">Samples; receives the residuals.</param>
+    /// <summary>Forms a combination of the columns.</summary>
     /// <param name="shape">As for <see cref="Multiply"/>.</param>
-    /// <param name="linear">c, d, then p and q of each mode.</param>
-    public static void Subtract(Span<double> y, ReadOnlySpan<double> shape, ReadOnlySpan<double> linear)
+    /// <param name="factors">What each column counts, from the first on; the samples' column is none of them.</param>
+    /// <param name="sum">Receives the combination, one value a sample.</param>
+    public static void Combine(ReadOnlySpan<double> shape, ReadOnlySpan<double> factors, Span<double> sum)
     {
         int width = Width(shape.Length / 2);
         Span<double> rows = stackalloc double[Block * Most];
-        for (int start = 0; start < y.Length; start += Block)
+        for (int start = 0; start < sum.Length; start += Block)
         {
-            int count = Math.Min(Block, y.Length - start);
-            Fill(y, start, count, shape, rows, width);
+            int count = Math.Min(Block, sum.Length - start);
+            Fill(sum, start, count, shape, rows, width);
             for (int n = 0; n < count; n++)
             {
-                double model = 0;
-                for (int k = 0; k < linear.Length; k++)
+                double value = 0;
+                for (int k = 0; k < factors.Length; k++)
                 {
-                    model += linear[k] * rows[(n * width) + k];
+                    value += factors[k] * rows[(n * width) + k];
                 }
 
-                y[start + n] -= model;
+                sum[start + n] = value;
             }
         }
     }

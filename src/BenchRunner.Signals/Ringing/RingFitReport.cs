@@ -13,22 +13,24 @@ internal static class RingFitReport
     /// <returns>The modes, or the reason why the fit is none.</returns>
     public static RingFitResult Describe(RingFitSolver fit, ReadOnlySpan<double> y, double dt)
     {
-        int modes = fit.Shape.Length / 2, size = 2 + (4 * modes);
-        double[] residual = y.ToArray();
-        RingFitColumns.Subtract(residual, fit.Shape, fit.Linear);
+        int modes = fit.Shape.Length / 2, size = RingFitColumns.Samples(modes);
+        double[] padded = new double[y.Length + RingFitNoise.Longest];
+        Span<double> residual = padded.AsSpan(0, y.Length);
+        RingFitColumns.Combine(fit.Shape, fit.Linear, residual);
         double squares = 0;
-        foreach (double value in residual)
+        for (int n = 0; n < y.Length; n++)
         {
-            squares += value * value;
+            residual[n] = y[n] - residual[n];
+            squares += residual[n] * residual[n];
         }
 
-        Span<double> covariance = stackalloc double[size * size];
-        if (!fit.Covariance(covariance))
+        Span<double> inverse = stackalloc double[size * size];
+        if (!fit.Covariance(inverse))
         {
             return RingFitResult.None("no ringing found");
         }
 
-        double variance = squares / (y.Length - size) * Correlation(residual, squares);
+        RingFitSpread spread = new(fit, inverse, RingFitNoise.Of(padded), squares / (y.Length - size), residual);
         double window = y.Length * dt;
         var found = new List<RingMode>(modes);
         for (int k = 0; k < modes; k++)
@@ -43,7 +45,7 @@ internal static class RingFitReport
                 return RingFitResult.None("no ringing found: the oscillation does not decay");
             }
 
-            found.Add(Mode(fit, k, covariance, variance, window));
+            found.Add(Mode(fit, k, spread, window));
         }
 
         if (found.Count == 0)
@@ -57,34 +59,9 @@ internal static class RingFitReport
             : RingFitResult.None("no ringing found: what oscillates dies within a period");
     }
 
-    /// <summary>1 + 2 Σ ρ over the lags before the residuals' autocorrelation first is not positive.</summary>
-    private static double Correlation(ReadOnlySpan<double> residual, double squares)
+    private static RingMode Mode(RingFitSolver fit, int k, RingFitSpread spread, double window)
     {
-        double factor = 1;
-        for (int lag = 1; lag < residual.Length; lag++)
-        {
-            double sum = 0;
-            for (int n = 0; n + lag < residual.Length; n++)
-            {
-                sum += residual[n] * residual[n + lag];
-            }
-
-            if (!(sum > 0))
-            {
-                break;
-            }
-
-            factor += 2 * sum / squares;
-        }
-
-        return factor;
-    }
-
-    private static RingMode Mode(
-        RingFitSolver fit, int k, ReadOnlySpan<double> covariance, double variance, double window)
-    {
-        int modes = fit.Shape.Length / 2, size = 2 + (4 * modes);
-        int cosine = 2 + (2 * k), shape = cosine + (2 * modes);
+        int cosine = 2 + (2 * k), shape = cosine + fit.Shape.Length;
         double p = fit.Linear[cosine], q = fit.Linear[cosine + 1];
         double s = fit.Shape[2 * k], w = fit.Shape[(2 * k) + 1];
         double amplitude = Math.Sqrt((p * p) + (q * q));
@@ -95,18 +72,8 @@ internal static class RingFitReport
             Damping: s / natural,
             Amplitude: amplitude,
             Phase: Math.Atan2(-q, p),
-            FrequencyUncertainty: Spread(covariance, size, shape, 0, 1, variance) / (2 * Math.PI * window),
-            DampingUncertainty: Spread(covariance, size, shape, bySine, byTurn, variance),
-            AmplitudeUncertainty: Spread(covariance, size, cosine, p / amplitude, q / amplitude, variance));
-    }
-
-    /// <summary>Standard uncertainty of a combination of two neighbouring unknowns.</summary>
-    private static double Spread(
-        ReadOnlySpan<double> covariance, int size, int at, double first, double second, double variance)
-    {
-        double v = (first * first * covariance[(at * size) + at])
-            + (2 * first * second * covariance[(at * size) + at + 1])
-            + (second * second * covariance[((at + 1) * size) + at + 1]);
-        return Math.Sqrt(Math.Max(0, v * variance));
+            FrequencyUncertainty: spread.Of(shape, 0, 1) / (2 * Math.PI * window),
+            DampingUncertainty: spread.Of(shape, bySine, byTurn),
+            AmplitudeUncertainty: spread.Of(cosine, p / amplitude, q / amplitude));
     }
 }

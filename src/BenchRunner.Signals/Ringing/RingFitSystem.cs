@@ -4,9 +4,9 @@ namespace BenchRunner.Signals.Ringing;
 
 /// <summary>The normal equations of a ring fit: linear unknowns solved, decays and frequencies searched.</summary>
 /// <remarks>
-/// The linear unknowns are eliminated at every point (variable projection; Golub and Pereyra 1973, in the simplification
-/// of Kaufman 1975, from memory), so that only two unknowns a mode are searched and a poor start of amplitudes cannot
-/// mislead. Everything rests on <see cref="RingFitColumns"/>: one pass over the samples a point.
+/// The linear unknowns are eliminated at every point (variable projection; Golub and Pereyra 1973, in the
+/// simplification of Kaufman 1975, from memory), so that only two unknowns a mode are searched and a poor start of
+/// amplitudes cannot mislead. Everything rests on <see cref="RingFitColumns"/>: one pass over the samples a point.
 /// </remarks>
 internal sealed class RingFitSystem : NormalEquations
 {
@@ -16,6 +16,7 @@ internal sealed class RingFitSystem : NormalEquations
     /// </summary>
     private const double SlowestTurn = 0.1;
 
+    /// <summary>Changes below this part of the samples' squares cannot be told from rounding.</summary>
     private const double Resolution = 1e-12;
 
     private readonly ReadOnlyMemory<double> _samples;

@@ -63,6 +63,18 @@ internal sealed record RingRecord(
         return values;
     }
 
+    /// <summary>Standard normal values, each correlated with the one before it: r[n] = ρ r[n−1] + √(1 − ρ²) e[n].</summary>
+    public static double[] Noise(ulong seed, int count, double correlation)
+    {
+        double[] values = Noise(seed, count);
+        for (int n = 1; n < count; n++)
+        {
+            values[n] = (correlation * values[n - 1]) + (Math.Sqrt(1 - (correlation * correlation)) * values[n]);
+        }
+
+        return values;
+    }
+
     private static double Uniform(ref ulong state)
     {
         state += 0x9E3779B97F4A7C15;

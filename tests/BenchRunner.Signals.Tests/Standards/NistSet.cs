@@ -17,9 +17,8 @@ internal sealed class NistSet : NormalEquations
         Certified = Numbers(certified.GetProperty("b"));
         Deviations = Numbers(certified.GetProperty("sd"));
         CertifiedSquares = certified.GetProperty("rss").GetDouble();
-        double[][] rows = [.. File.ReadLines(Path.Combine(Reference.Folder, "statistics", $"nist-{kind}-{name}.csv"))
-            .Skip(1)
-            .Select(line => Array.ConvertAll(line.Split(','), cell => double.Parse(cell, CultureInfo.InvariantCulture)))];
+        string file = Path.Combine(Reference.Folder, "statistics", $"nist-{kind}-{name}.csv");
+        double[][] rows = [.. File.ReadLines(file).Skip(1).Select(line => Array.ConvertAll(line.Split(','), Number))];
         X = [.. rows.Select(row => row[0])];
         Y = [.. rows.Select(row => row[1])];
     }
@@ -94,6 +93,8 @@ internal sealed class NistSet : NormalEquations
         double variance = Squares / (X.Length - Unknowns);
         return [.. Enumerable.Range(0, Unknowns).Select(i => Math.Sqrt(variance * inverse[i * (Unknowns + 1)]))];
     }
+
+    private static double Number(string cell) => double.Parse(cell, CultureInfo.InvariantCulture);
 
     private static double[] Numbers(JsonElement array) => [.. array.EnumerateArray().Select(item => item.GetDouble())];
 }

@@ -47,9 +47,9 @@ public sealed class NistTests
     }
 
     /// <summary>
-    /// The loads of Pontius are equally spaced, each measured twice. What the certified parabola b1 + b2 x + b3 x² leaves
-    /// of the data is at right angles to 1 and x, so that the line of least squares through the data is that through the
-    /// parabola: slope b2 + 2 b3 x̄, and b1 + b2 x̄ + b3 (x² on average) at x̄.
+    /// The loads of Pontius are equally spaced, each measured twice. What the certified parabola b1 + b2 x + b3 x²
+    /// leaves of the data is at right angles to 1 and x, so that the line of least squares through the data is that
+    /// through the parabola: slope b2 + 2 b3 x̄, and b1 + b2 x̄ + b3 (x² on average) at x̄.
     /// </summary>
     [Fact]
     public void The_line_of_the_load_current_holds_to_eleven_digits()
