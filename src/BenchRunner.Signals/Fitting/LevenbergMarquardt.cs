@@ -66,9 +66,11 @@ public sealed class LevenbergMarquardt
     /// <summary>Searches on from where the last search ended, or from the start.</summary>
     /// <param name="tolerance">Relative change of all unknowns at which the search ends.</param>
     /// <param name="target">Sum of squares that must be reached: a search that will not is given up.</param>
+    /// <param name="enough">Part of the sum of squares: the search also ends where a nearly plain step promises no larger
+    /// reduction.</param>
     /// <returns>Whether the search ended within its tolerance, below the target. False also where 200 steps do not
     /// suffice or no step improves.</returns>
-    public bool Search(double tolerance = Tolerance, double target = double.PositiveInfinity)
+    public bool Search(double tolerance = Tolerance, double target = double.PositiveInfinity, double enough = 0)
     {
         double damping = FirstDamping, growth = Growth, lastFine = double.PositiveInfinity;
         for (int step = 0; step < MostSteps; step++)
@@ -83,6 +85,11 @@ public sealed class LevenbergMarquardt
             if (step >= StepsGranted && _problem.Squares - (Hope * expected) > target)
             {
                 return false;
+            }
+
+            if (expected < enough * _problem.Squares && damping <= FirstDamping)
+            {
+                return _problem.Squares < target;
             }
 
             double change = Try();

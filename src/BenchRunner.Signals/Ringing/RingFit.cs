@@ -38,6 +38,9 @@ public static class RingFit
     /// <summary>Tolerance while the order is sought: a rough fit tells orders apart as well.</summary>
     private const double RoughTolerance = 1e-5;
 
+    /// <summary>A reduction of the sum of squares by this many of its mean terms tells no orders apart.</summary>
+    private const double RoughSquares = 0.01;
+
     private const string NoRinging = "no ringing found";
 
     /// <summary>Fits the ring of a window.</summary>
@@ -121,25 +124,31 @@ public static class RingFit
         RingFitResult none = RingFitResult.None(NoRinging);
         for (; order > 0; order--)
         {
-            if (fits[order] is not { } fit || !fit.Refine())
+            if (fits[order] is not { } fit)
             {
                 continue;
             }
 
-            RingFitResult result = RingFitReport.Describe(fit, y, dt);
-            if (result.Reason is not null)
-            {
-                none = result;
-            }
-            else if (IsBelievable(result.Modes, y.Length, y.Length * dt))
+            // More than one mode is mostly judged by the rough fit: what is not there takes the search long to pin down.
+            RingFitResult result = none;
+            bool believed = (order == 1 || Judge(fit, y, dt, out result)) && fit.Refine() && Judge(fit, y, dt, out result);
+            if (believed)
             {
                 return result.Modes[0].Frequency * y.Length * dt < FewestPeriods
                     ? RingFitResult.None("fewer than 2 periods")
                     : result;
             }
+
+            none = result.Reason is null ? none : result;
         }
 
         return none;
+    }
+
+    private static bool Judge(RingFitSolver fit, ReadOnlySpan<double> y, double dt, out RingFitResult result)
+    {
+        result = RingFitReport.Describe(fit, y, dt);
+        return result.Reason is null && IsBelievable(result.Modes, y.Length, y.Length * dt);
     }
 
     /// <summary>Fits one mode after the other until the description no longer gets shorter.</summary>
@@ -166,7 +175,7 @@ public static class RingFit
             }
 
             var fit = new RingFitSolver(samples, modes);
-            if (fit.Fit(decay, turn, target, RoughTolerance))
+            if (fit.Fit(decay, turn, target, RoughTolerance, RoughSquares / y.Length))
             {
                 (fits[modes], best) = (fit, modes);
                 shortest = Description(y.Length, Math.Sqrt(fit.Squares / y.Length), rms, modes);

@@ -39,12 +39,14 @@ internal sealed class RingFitSolver
     /// <param name="turn">Start of ω a sample, one a mode; 0 for a bare decay.</param>
     /// <param name="target">Sum of squares that must be reached: a search that will not is given up.</param>
     /// <param name="tolerance">Relative change of frequencies and decays at which the search ends.</param>
+    /// <param name="enough">Part of the sum of squares that is not worth a further step.</param>
     /// <returns>Whether the search ended within its tolerance, below the target.</returns>
     public bool Fit(
         ReadOnlySpan<double> decay,
         ReadOnlySpan<double> turn,
         double target,
-        double tolerance = LevenbergMarquardt.Tolerance)
+        double tolerance = LevenbergMarquardt.Tolerance,
+        double enough = 0)
     {
         Span<double> start = stackalloc double[_system.Unknowns];
         for (int k = 0; k < _system.Bare.Length; k++)
@@ -54,7 +56,7 @@ internal sealed class RingFitSolver
             _system.Bare[k] = turn[k] == 0;
         }
 
-        return _search.Start(start) && _search.Search(tolerance, target);
+        return _search.Start(start) && _search.Search(tolerance, target, enough);
     }
 
     /// <summary>Carries a rough fit on to the full tolerance.</summary>

@@ -23,7 +23,7 @@ public sealed class RingMonteCarloTests
         RingTrials trials = new();
         foreach (RingRecord record in Records(noise, [500]))
         {
-            trials.Draw(record, 150);
+            trials.Draw(record, 100);
         }
 
         HoldsBound(trials, 0);
@@ -36,7 +36,7 @@ public sealed class RingMonteCarloTests
         RingTrials trials = new();
         foreach (RingRecord record in Records(0.02, [500]))
         {
-            trials.Draw(record, 100, correlation);
+            trials.Draw(record, 60, correlation);
         }
 
         Assert.InRange(trials.Wrong, 0, 3);
@@ -51,11 +51,11 @@ public sealed class RingMonteCarloTests
     {
         foreach (RingRecord record in Records(noise, [500, 2000]))
         {
-            HoldsBound(new RingTrials().Draw(record, 2500), 2);
+            HoldsBound(new RingTrials().Draw(record, 1500), 2);
         }
 
         RingRecord two = new(400, 0, Dt, 500, [(35e6, 0.03, 100, 0.3), (80e6, 0.04, 40, 1)], 100 * noise, Seed: 6);
-        HoldsBound(new RingTrials().Draw(two, 2500), 2);
+        HoldsBound(new RingTrials().Draw(two, 1500), 2);
     }
 
     [Theory]
@@ -65,9 +65,9 @@ public sealed class RingMonteCarloTests
     {
         foreach (RingRecord record in Records(0.05, [500, 2000]))
         {
-            RingTrials trials = new RingTrials().Draw(record, 1500, correlation);
+            RingTrials trials = new RingTrials().Draw(record, 800, correlation);
 
-            Assert.InRange(trials.Wrong, 0, 15);
+            Assert.InRange(trials.Wrong, 0, 8);
             Assert.InRange(trials.Frequency.Own, 0.9, 1.1);
             Assert.InRange(trials.Damping.Own, 0.9, 1.1);
         }
@@ -89,8 +89,8 @@ public sealed class RingMonteCarloTests
     [InlineData(30)]
     [InlineData(50)]
     [Trait("kind", "slow")]
-    public void Two_equal_modes_are_told_apart_in_a_thousand_trials(int samplesAPeriod) =>
-        Assert.All([10, 12, 15, 20], periods => Assert.InRange(ToldApart(samplesAPeriod, periods, 1000), 0.95, 1));
+    public void Two_equal_modes_are_told_apart_in_hundreds_of_trials(int samplesAPeriod) =>
+        Assert.All([10, 12, 15, 20], periods => Assert.InRange(ToldApart(samplesAPeriod, periods, 300), 0.95, 1));
 
     private static IEnumerable<RingRecord> Records(double noise, int[] lengths) =>
         from count in lengths
