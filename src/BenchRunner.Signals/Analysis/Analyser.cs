@@ -142,7 +142,7 @@ internal sealed class Analyser
 
     /// <summary>Mean of a channel in the 200 ns before a position, or in what the record holds of them.</summary>
     public Reading MeanBefore(Channel role, double position) => Record.Has(role)
-        ? BusVoltage.Before(Record[role], Record.SampleInterval, position)
+        ? Record.Unclipped(role, BusVoltage.Before(Record[role], Record.SampleInterval, position))
         : Reading.None($"{Record.Measured(role).Name()} is not measured");
 
     /// <summary>The reading of a quantity whose edge is not in the record.</summary>
@@ -163,14 +163,21 @@ internal sealed class Analyser
     private Reading FormOnState(GateEdge? on, GateEdge? off, string edge) =>
         !Record.Has(Channel.VdsLow) ? Reading.None($"{Record.Measured(Channel.VdsLow).Name()} is not measured")
         : off is not { } end || (on is null && edge == "on2") ? Outside(edge)
-        : OnState.Form(Record[Channel.VdsLow], on?.At ?? 0, end.At, end.Departure);
+        : Record.Unclipped(
+            Channel.VdsLow, OnState.Form(Record[Channel.VdsLow], on?.At ?? 0, end.At, end.Departure));
 
     private GateEdge EndOfRecord() => new(Record.Last, Record.Last, CrossingDirection.Falling);
 
     private FirstRamp FormRamp() =>
         !Record.Has(Channel.IdLow) ? FirstRamp.Without($"{Record.Measured(Channel.IdLow).Name()} is not measured")
         : Train.Off1 is not { } off1 ? FirstRamp.Without(Outside("off1").Reason!)
-        : FirstRamp.Fit(Record[Channel.IdLow], Record.SampleInterval, Train.On1?.At, off1.At, off1.Departure);
+        : Unclipped(FirstRamp.Fit(
+            Record[Channel.IdLow], Record.SampleInterval, Train.On1?.At, off1.At, off1.Departure));
+
+    private FirstRamp Unclipped(FirstRamp ramp) =>
+        Record.Unclipped(Channel.IdLow, ramp.OffCurrent) is { HasValue: false } none
+            ? FirstRamp.Without(none.Reason!)
+            : ramp;
 
     private RingWindow? FormRingOn() =>
         Train.On2 is { } on2 && Bus.HasValue && Record.Has(Channel.VdsHigh)
@@ -230,7 +237,7 @@ internal sealed class Analyser
             double over = end.At + RecoveryOrigin + (AfterRecovery / dt);
             if (!rings || end.Reason is not null || over <= start || pass == MostPasses)
             {
-                return _line.ToReading();
+                return Record.Unclipped(Channel.IdLow, _line.ToReading());
             }
 
             start = over;

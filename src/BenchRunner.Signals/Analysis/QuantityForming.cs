@@ -138,7 +138,7 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             ("qrr", _) => DefinitionId.WindowTime(rule) is { } time
                 ? RecoveryCharge.OverTime(recovery, time)
                 : RecoveryCharge.UntilEnd(recovery, End(recovery, rule, "qrr")),
-            ("dirr_dt", "slope/90-25") => RecoverySlope.Fall(recovery),
+            ("dirr_dt", "slope/90-25") => Fall(recovery, byLoadLine),
             ("dif_dt", "slope/50-50") => RecoverySlope.Commutation(
                 recovery, Along(Channel.IdLow), analyser.OnCurrent),
             ("err", "e/recovery") => RecoveryEnergy.Form(
@@ -149,6 +149,16 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
             _ => Unknown(quantity, rule),
         };
         return reading.Shifted(origin);
+    }
+
+    /// <summary>The fall's levels are parts of the peak, which lies outside its interval and must not be clipped
+    /// either.</summary>
+    private Reading Fall(in RecoveryEvent recovery, bool byLoadLine)
+    {
+        Reading peak = analyser.Record.Unclipped(
+            byLoadLine ? Channel.IdLow : Channel.IdHigh,
+            RecoveryPeak.AboveLoad(recovery).Shifted(analyser.RecoveryOrigin));
+        return peak.HasValue ? RecoverySlope.Fall(recovery) : peak.Because("irm");
     }
 
     private ReadOnlySpan<double> Along(Channel role) =>

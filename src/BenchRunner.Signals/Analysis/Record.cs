@@ -1,3 +1,4 @@
+using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Analysis;
@@ -46,6 +47,13 @@ internal sealed class Record
     /// <summary>Whether an interval of a role's channel holds a sample that was not finite.</summary>
     public bool IsClipped(Channel role, double from, double to) =>
         _clipping.Holds(Measured(role), from, to);
+
+    /// <summary>A reading of a role's channel; the reason instead where its interval holds a sample that was not
+    /// finite. For what other quantities rest on: they would pass a bridged value on.</summary>
+    public Reading Unclipped(Channel role, Reading reading) =>
+        reading.HasValue && IsClipped(role, reading.From, reading.To)
+            ? Reading.None($"{Measured(role).Name()} is clipped")
+            : reading;
 
     private static Channel Mirror(Channel role) => role switch
     {
