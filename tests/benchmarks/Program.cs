@@ -102,8 +102,8 @@ internal static class Program
 
     private static string Listed(Goal goal) => string.Create(
         CultureInfo.InvariantCulture,
-        $"{goal.Work,-32} {(_groups.ContainsKey(goal.Group) ? "built" : "not built"),-10} {goal.Better} than "
-            + $"{Bounds(goal)} of {goal.Of}{(goal.IsOwn ? " (own)" : "")}: {goal.What}");
+        $"{goal.Work,-32} {(_groups.ContainsKey(goal.Group) ? "built" : "not built"),-10} goal {Bounds(goal)} of "
+            + $"{goal.Of} ({goal.Better}){(goal.IsOwn ? ", our own" : "")}: {goal.What}");
 
     private static string Line(Row row)
     {
