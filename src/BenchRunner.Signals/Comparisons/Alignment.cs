@@ -1,5 +1,6 @@
 using System.Numerics;
 using BenchRunner.Signals.Corrections;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Comparisons;
 
@@ -27,6 +28,7 @@ public readonly record struct Alignment(double Shift, double Correlation)
     /// <param name="reach">How far around it is sought, in measured samples.</param>
     /// <returns>The alignment; null where the largest correlation lies at the end of the reach, or one of the two is
     /// flat.</returns>
+    /// <exception cref="ArgumentException">A sample that is looked at is NaN or infinite.</exception>
     /// <remarks>
     /// Whole samples first; then a parabola through the correlation at three shifts around the best one, the reference
     /// interpolated by six points, again and again with shifts closer together (to a thousandth of a sample).
@@ -39,8 +41,10 @@ public readonly record struct Alignment(double Shift, double Correlation)
         double guess,
         int reach)
     {
+        Finite.Require(measured, nameof(measured));
         double[] moved = new double[measured.Length + (2 * reach)];
         (int first, int end) = Resample(reference, start - ((reach + guess) * step), step, moved);
+        Finite.Require(moved, nameof(reference));
         int fewest = Fewest(measured, reference, step);
         double best = double.NegativeInfinity;
         int at = 0;

@@ -27,7 +27,7 @@ public sealed record ChannelComparison(
     /// <param name="reference">The reference on the same grid, V or A; finite.</param>
     /// <param name="ownShift">See <see cref="OwnShift"/>.</param>
     /// <returns>The errors; a reason for fewer than 32 samples, or a reference that is flat.</returns>
-    /// <exception cref="ArgumentException">The spans differ in length.</exception>
+    /// <exception cref="ArgumentException">The spans differ in length, or a sample is NaN or infinite.</exception>
     public static ChannelComparison Form(
         Channel channel, ReadOnlySpan<double> measured, ReadOnlySpan<double> reference, double? ownShift)
     {
@@ -36,6 +36,8 @@ public sealed record ChannelComparison(
             throw new ArgumentException("Compared waveforms have one length.", nameof(reference));
         }
 
+        Finite.Require(measured, nameof(measured));
+        Finite.Require(reference, nameof(reference));
         if (measured.Length < FewestSamples)
         {
             return None(channel, $"fewer than {FewestSamples} samples");

@@ -1,4 +1,5 @@
 using System.Numerics;
+using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Comparisons;
 
@@ -38,7 +39,7 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
     /// <param name="first">One waveform; finite.</param>
     /// <param name="second">The other, on the same grid; finite.</param>
     /// <returns>The measures; null for fewer than 32 samples.</returns>
-    /// <exception cref="ArgumentException">The spans differ in length.</exception>
+    /// <exception cref="ArgumentException">The spans differ in length, or a sample is NaN or infinite.</exception>
     /// <remarks>Both spectra are split into slow (the first five bins), low and high parts; the border between low and
     /// high lies five bins above where the lower of the two has 40 % of its content, softened over six bins.</remarks>
     public static FeatureSelective? Form(ReadOnlySpan<double> first, ReadOnlySpan<double> second)
@@ -48,6 +49,8 @@ public readonly record struct FeatureSelective(double Amplitude, double Feature,
             throw new ArgumentException("Compared waveforms have one length.", nameof(second));
         }
 
+        Finite.Require(first, nameof(first));
+        Finite.Require(second, nameof(second));
         if (first.Length < 32)
         {
             return null;

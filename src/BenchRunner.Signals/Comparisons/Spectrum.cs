@@ -1,4 +1,5 @@
 using System.Numerics;
+using BenchRunner.Signals.Traces;
 using MathNet.Numerics.IntegralTransforms;
 
 namespace BenchRunner.Signals.Comparisons;
@@ -9,8 +10,10 @@ public static class Spectrum
     /// <summary>The spectrum of real samples.</summary>
     /// <param name="samples">The samples; finite.</param>
     /// <returns>X[k] = Σ x[n] e^(−2πi k n/N), not scaled, as many bins as samples.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
     public static Complex[] Of(ReadOnlySpan<double> samples)
     {
+        Finite.Require(samples, nameof(samples));
         Complex[] spectrum = new Complex[samples.Length];
         for (int i = 0; i < spectrum.Length; i++)
         {

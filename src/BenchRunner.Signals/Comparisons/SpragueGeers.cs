@@ -1,3 +1,5 @@
+using BenchRunner.Signals.Traces;
+
 namespace BenchRunner.Signals.Comparisons;
 
 /// <summary>How far a measured waveform is from a reference, split into size and timing, after Sprague and
@@ -13,7 +15,7 @@ public readonly record struct SpragueGeers(double Magnitude, double Phase)
     /// <param name="measured">Measured samples; finite.</param>
     /// <param name="reference">Reference samples on the same grid; finite, not all zero.</param>
     /// <returns>The errors; null where one of the two is zero throughout.</returns>
-    /// <exception cref="ArgumentException">The spans differ in length.</exception>
+    /// <exception cref="ArgumentException">The spans differ in length, or a sample is NaN or infinite.</exception>
     /// <remarks>M = √(Σm²/Σc²) − 1, P = acos(Σmc/√(Σm² Σc²))/π (Sprague and Geers 2004, from memory). The angle is
     /// taken by its half, 2 atan2(|û − v̂|, |û + v̂|), since acos loses half the digits near equality.</remarks>
     /// <example>Whole periods of a sine, late by 0.5 rad: M = 0, P = 0.5/π.</example>
@@ -24,6 +26,8 @@ public readonly record struct SpragueGeers(double Magnitude, double Phase)
             throw new ArgumentException("Compared waveforms have one length.", nameof(reference));
         }
 
+        Finite.Require(measured, nameof(measured));
+        Finite.Require(reference, nameof(reference));
         double m = Math.Sqrt(Squares(measured));
         double c = Math.Sqrt(Squares(reference));
         if (!(m > 0) || !(c > 0))
