@@ -9,7 +9,8 @@ namespace BenchRunner.Signals.RingWindows;
 /// It starts one period after the first extremum of the diode's voltage: at the extremum itself the tail of the
 /// recovery and the nonlinear capacitance still act, and damping comes out 6 to 27 % too high. It ends where the
 /// envelope is within the noise or below 1 % of the first swing, or at the next edge. The period is that of a one-mode
-/// fit over six periods.
+/// fit over six periods. What can go wrong: a tail that lasts longer than a period, or a capacitance that still changes
+/// there, adds to the damping; the next edge may leave fewer than two periods, which is a reason.
 /// </remarks>
 public sealed class RingWindow
 {
@@ -38,7 +39,8 @@ public sealed class RingWindow
     /// <summary>End of the window, in samples.</summary>
     public double To { get; private set; }
 
-    /// <summary>The strongest mode: the largest A²/σ among those damped less than 0.3.</summary>
+    /// <summary>The strongest mode: the largest A²/σ among those damped less than 0.3. Its amplitude is that at
+    /// <see cref="From"/>, its phase that at the first sample from there on.</summary>
     public RingMode Mode { get; private set; }
 
     /// <summary>The ringing of a voltage after it rises through the bus.</summary>
@@ -48,7 +50,9 @@ public sealed class RingWindow
     /// <param name="sigma">Noise of the voltage (σ), V.</param>
     /// <param name="from">Departure of the edge, in samples.</param>
     /// <param name="to">The next edge, or the record's end, in samples.</param>
-    /// <returns>Window and mode, or a reason.</returns>
+    /// <returns>Window and mode, or a reason: no maximum above the bus with another behind it, no damped cosine in the
+    /// first six periods, fewer than two periods left, no ringing found.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
     public static RingWindow AboveBus(
         ReadOnlySpan<double> voltage, double dt, double bus, double sigma, double from, double to)
     {
@@ -92,7 +96,8 @@ public sealed class RingWindow
     /// <param name="voltage">The window of the voltage that rings with it.</param>
     /// <param name="sigma">Noise of the current (σ), A.</param>
     /// <param name="to">The next edge, or the record's end, in samples.</param>
-    /// <returns>Window and mode, or a reason.</returns>
+    /// <returns>Window and mode, or a reason; that of the voltage where it does not ring.</returns>
+    /// <exception cref="ArgumentException">A sample is NaN or infinite.</exception>
     public static RingWindow Along(
         ReadOnlySpan<double> current, double dt, RingWindow voltage, double sigma, double to)
     {
@@ -131,9 +136,11 @@ public sealed class RingWindow
             return null;
         }
 
-        ReadOnlySpan<double> part = signal[(int)Math.Ceiling(extremum)..((int)end + 1)];
+        int first = (int)Math.Ceiling(extremum);
         reason = NoRinging;
-        return RingEnvelope.Fit(part, dt, period);
+        return RingEnvelope.Fit(signal[first..((int)end + 1)], dt, period) is { } mode
+            ? mode with { Amplitude = mode.Amplitude * Math.Exp(mode.Decay * (first - extremum) * dt) }
+            : null;
     }
 
     private void Fit(ReadOnlySpan<double> signal, double dt, RingEnvelope first, double swing, double sigma, double to)
@@ -148,11 +155,17 @@ public sealed class RingWindow
             return;
         }
 
-        RingFitResult fit = RingThinning.Fit(
-            signal[(int)Math.Ceiling(From)..((int)To + 1)], dt, Period, RingFit.MostModes);
+        int start = (int)Math.Ceiling(From);
+        RingFitResult fit = RingThinning.Fit(signal[start..((int)To + 1)], dt, Period, RingFit.MostModes);
         if (fit.Strongest is { IsRinging: true } strongest)
         {
-            Mode = strongest;
+            // The first sample lies up to one interval after the start, and the envelope has fallen since.
+            double since = Math.Exp(strongest.Decay * (start - From) * dt);
+            Mode = strongest with
+            {
+                Amplitude = strongest.Amplitude * since,
+                AmplitudeUncertainty = strongest.AmplitudeUncertainty * since,
+            };
         }
         else
         {
