@@ -144,6 +144,16 @@ public sealed class CompareTests : IDisposable
     }
 
     [Fact]
+    public async Task A_wrong_interval_names_its_option()
+    {
+        Finished run = (await _place.Run(
+            "compare", Waveform("lv40-clean"), "--reference", Waveform("lv40-clean"),
+            "--reference-interval", "4 V")).Expect(2);
+
+        Assert.StartsWith("--reference-interval: '4 V'", run.Error, StringComparison.Ordinal);
+    }
+
+    [Fact]
     public async Task The_schema_of_a_tolerance_file_is_printed()
     {
         using JsonDocument schema = JsonDocument.Parse((await _place.Run("schema", "tolerances")).Expect(0).Output);

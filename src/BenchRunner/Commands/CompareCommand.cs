@@ -48,7 +48,10 @@ internal static class CompareCommand
                     AnalysisInput.Options(parsed.GetValue(interval), parsed.GetValue(channels) ?? []), known),
                 (parsed.GetRequiredValue(reference),
                     AnalysisInput.Options(
-                        parsed.GetValue(referenceInterval), parsed.GetValue(referenceChannels) ?? []), theirs),
+                        parsed.GetValue(referenceInterval),
+                        parsed.GetValue(referenceChannels) ?? [],
+                        referenceInterval.Name),
+                    theirs),
                 parsed.GetValue(tolerances));
             if (parsed.GetValue(json))
             {

@@ -24,7 +24,8 @@ internal static class AnalysisInput
             : throw new InputException(string.Join(Environment.NewLine, read.Problems));
     }
 
-    public static WaveformFileOptions Options(string? interval, IReadOnlyList<string> channels)
+    public static WaveformFileOptions Options(
+        string? interval, IReadOnlyList<string> channels, string option = "--interval")
     {
         (ChannelMapping? Mapping, WaveformProblem? Problem)[] parsed = [.. channels.Select(ChannelMapping.Parse)];
         string[] wrong =
@@ -32,7 +33,7 @@ internal static class AnalysisInput
         return wrong.Length == 0
             ? new WaveformFileOptions
             {
-                Interval = Seconds(interval),
+                Interval = Seconds(interval, option),
                 Channels = [.. parsed.Select(one => one.Mapping!)],
             }
             : throw new InputException(string.Join(Environment.NewLine, wrong));
@@ -89,11 +90,11 @@ internal static class AnalysisInput
         return info.Exists ? (info.Length, info.LastWriteTimeUtc) : default;
     }
 
-    private static double? Seconds(string? text) => text switch
+    private static double? Seconds(string? text, string option) => text switch
     {
         null => null,
         _ when SiText.TryParse(text, out double seconds, out string unit) && unit == "s" && seconds > 0 => seconds,
         _ => throw new InputException(
-            $"--interval: '{text}'; expected a time above 0 with its unit; write for instance 400 ps."),
+            $"{option}: '{text}'; expected a time above 0 with its unit; write for instance 400 ps."),
     };
 }
