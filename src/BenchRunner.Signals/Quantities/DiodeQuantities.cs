@@ -18,7 +18,8 @@ internal static class DiodeQuantities
                 Routed("peak/parabola-20", "Least-squares parabola over the samples above 80 % of the maximum; for "
                     + "noise above 0.2 % of it."),
             ]),
-        new("trr", "s", QuantityOwner.Diode, "Reverse recovery time.",
+        new("trr", "s", QuantityOwner.Diode, "Reverse recovery time. The rule that ends it makes it twice as long or "
+                + "half: values of two rules are not compared.",
             [
                 Routed("trr/chord-90-25", "From t0, where irr crosses zero upwards, to where the chord through the "
                     + "first 90 % and 25 % of irm after the peak meets zero (IEC 60747-2, -8)."),
@@ -32,12 +33,17 @@ internal static class DiodeQuantities
                 Routed(DefinitionId.WindowTemplate,
                     "∫ irr dt over a stated time from t0, e.g. qrr/window-100ns (IEC 60747-2, integration time)."),
             ]),
-        new("ta", "s", QuantityOwner.Diode, "Part of trr from t0 to the peak.", Parts()),
-        new("tb", "s", QuantityOwner.Diode, "Part of trr from the peak to its end.", Parts()),
-        new("softness", "1", QuantityOwner.Diode, "tb / ta: well below 1 for a snappy diode.", Parts()),
-        new("dirr_dt", "A/s", QuantityOwner.Diode, "Slope of the recovery current's fall, as a magnitude.",
+        new("ta", "s", QuantityOwner.Diode, "Part of trr from t0 to the peak. An error of the load line moves t0.",
+            Parts()),
+        new("tb", "s", QuantityOwner.Diode, "Part of trr from the peak to its end. A flat peak leaves its instant "
+            + "uncertain.", Parts()),
+        new("softness", "1", QuantityOwner.Diode, "tb / ta: well below 1 for a snappy diode. Noise at a flat peak "
+            + "moves both parts.", Parts()),
+        new("dirr_dt", "A/s", QuantityOwner.Diode, "Slope of the recovery current's fall, as a magnitude. "
+                + "A snappy diode falls within a few samples: bandwidth decides.",
             [Routed("slope/90-25", "Mean slope of irr between 90 % and 25 % of irm after the peak.")]),
-        new("dif_dt", "A/s", QuantityOwner.Diode, "Slope of the commutation into the recovery.",
+        new("dif_dt", "A/s", QuantityOwner.Diode, "Slope of the commutation into the recovery. It sets irm and "
+                + "qrr: values at two slopes are not compared.",
             [new("slope/50-50", "Mean slope of id_low between irr = −50 % of i_on and t0.",
                 [VgsLow, VdsLow, IdLow, IdHigh], HasRoutes: true)]),
         new("err", "J", QuantityOwner.Diode, "Energy lost in the recovering diode." + Capacitance,
@@ -67,7 +73,8 @@ internal static class DiodeQuantities
     ];
 
     private static Quantity HighSidePeak(int number, string ordinal) =>
-        new($"vds_high_peak_{number}", "V", QuantityOwner.Diode, $"The {ordinal} maximum of vds_high after on2.",
+        new($"vds_high_peak_{number}", "V", QuantityOwner.Diode, $"The {ordinal} maximum of vds_high after on2, at the "
+                + "probe's terminals. A second mode can add a maximum of its own.",
             [new("peak/ring", $"The {ordinal} maximum above bus_voltage whose prominence is at least max(5 σ, 0.5 % of "
                 + "the bus).", [VgsLow, VdsHigh])]);
 }

@@ -36,7 +36,18 @@ public static class QuantityCatalogue
             .Append(DefinitionId.LoadLineRoute)
             .Append("` at the end of an ID says that the diode's current is the switch's less the load-current line; ")
             .Append("without it, `id_high` is measured. Channels are named as if the low switch fired; with the ")
-            .Append("device in position `high`, low and high change places. Values are in SI units.\n");
+            .Append("device in position `high`, low and high change places. Values are in SI units.\n\n")
+            .Append("- A quantity that cannot be formed has a reason and no value; each value has the interval (from, ")
+            .Append("to) that it was formed on.\n")
+            .Append("- An edge is the gate's crossing of 50 %; its departure is where the gate left its state, by ")
+            .Append("10 %, and every search for the edge's events begins there.\n")
+            .Append("- A p % level of vds is on + p (bus_voltage − on); of a current, p of i_on or i_off. A crossing ")
+            .Append("counts when the signal goes on by max(3 σ, 1 % of the step), and lies on the line between the ")
+            .Append("two samples that straddle the level (IEEE 181). A level within that of its 0 % state: \"level within ")
+            .Append("the noise\".\n")
+            .Append("- Integrals are trapezoidal, with the part-samples at both ends.\n")
+            .Append("- irr is the diode's current, positive in reverse; iL is constant until vds_low falls through ")
+            .Append("50 %, and the line of i_on after.\n");
         foreach (QuantityOwner owner in Enum.GetValues<QuantityOwner>())
         {
             text.Append("\n## Of the ").Append(owner.ToString().ToLowerInvariant()).Append('\n');

@@ -14,14 +14,19 @@ internal static class RingQuantities
     /// <summary>The entries, in the catalogue's order.</summary>
     public static IReadOnlyList<Quantity> All { get; } =
     [
-        Ring("ring_frequency", "Hz", "Damped frequency of the ringing of vds_high after on2.", _diode),
-        Ring("ring_damping", "1", "Damping ratio of that ringing.", _diode),
-        Ring("ring_amplitude", "V", "Amplitude of that ringing where its window starts.", _diode),
-        Ring("ring_q", "1", "Quality of that ringing: 1/(2 damping).", _diode),
-        Ring("ring_frequency_id", "Hz", "Damped frequency of the ringing of id_low after on2.", _current),
-        Ring("ring_damping_id", "1", "Damping ratio of that ringing.", _current),
-        Ring("ring_frequency_off", "Hz", "Damped frequency of the ringing of vds_low after off1.", _switch),
-        Ring("ring_damping_off", "1", "Damping ratio of that ringing.", _switch),
+        Ring("ring_frequency", "Hz", "Damped frequency of the ringing of vds_high after on2. "
+            + "Capacitance that depends on the voltage lowers it while the swing is large.", _diode),
+        Ring("ring_damping", "1", "Damping ratio of that ringing. A second mode close by spoils it first.",
+            _diode),
+        Ring("ring_amplitude", "V", "Amplitude of that ringing where its window starts: an "
+            + "instant that moves with the first extremum.", _diode),
+        Ring("ring_q", "1", "Quality of that ringing: 1/(2 damping). As uncertain as the damping.", _diode),
+        Ring("ring_frequency_id", "Hz", "Damped frequency of the ringing of id_low after on2. "
+            + "A slow current probe sees little of it.", _current),
+        Ring("ring_damping_id", "1", "Damping ratio of that ringing. Bandwidth and order of the fit move it.", _current),
+        Ring("ring_frequency_off", "Hz", "Damped frequency of the ringing of vds_low after "
+            + "off1. Often too short to fit.", _switch),
+        Ring("ring_damping_off", "1", "Damping ratio of that ringing. Few periods make it uncertain.", _switch),
     ];
 
     private static Quantity Ring(string name, string unit, string meaning, IReadOnlyList<Channel> channels) =>

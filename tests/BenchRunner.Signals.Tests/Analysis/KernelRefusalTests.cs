@@ -139,7 +139,7 @@ public sealed class KernelRefusalTests
 
     /// <summary>−20 to 20 from 0 to 36, back to zero, and on at zero.</summary>
     private static double[] Hump() =>
-        [.. Enumerable.Range(0, Count).Select(i => i <= 36 ? (i * 40 / 36.0) - 20 : Math.Max(0, 20 - (2 * (i - 36.0))))];
+        [.. Enumerable.Range(0, Count).Select(i => i <= 36 ? (i * 40 / 36.0) - 20 : Math.Max(0, 92 - (2.0 * i)))];
 
     private static SwitchingEvent TurnOn(double[] vds, double[] id) => new()
     {

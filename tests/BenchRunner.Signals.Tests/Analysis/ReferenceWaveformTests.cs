@@ -124,7 +124,8 @@ public sealed class ReferenceWaveformTests(ITestOutputHelper output)
             if (value is null || value.Value is not null || value.Reason != reason)
             {
                 yield return string.Create(
-                    CultureInfo.InvariantCulture, $"{key}: {value?.Value:G7} {value?.Reason} where there is none: {reason}");
+                    CultureInfo.InvariantCulture,
+                    $"{key}: {value?.Value:G7} {value?.Reason} where there is none: {reason}");
             }
         }
     }

@@ -48,6 +48,21 @@ public sealed class QuantityCatalogueTests
     }
 
     [Fact]
+    public void Each_quantity_says_what_it_means_and_what_can_go_wrong() => Assert.All(QuantityCatalogue.All, q =>
+    {
+        int sentences = q.Meaning.Count(c => c is '.' or ';' or ':');
+        Assert.True(sentences >= 2 && q.Meaning.EndsWith('.'), $"{q.Name}: {q.Meaning}");
+    });
+
+    [Theory]
+    [InlineData("irm")]
+    [InlineData("qrr")]
+    [InlineData("err")]
+    [InlineData("eoff")]
+    public void What_holds_the_output_capacitances_charge_says_so(string quantity) =>
+        Assert.Contains("output capacitance", QuantityCatalogue.Find(quantity)!.Meaning, StringComparison.Ordinal);
+
+    [Fact]
     public void The_document_names_every_quantity_and_definition()
     {
         string document = QuantityCatalogue.ToMarkdown();

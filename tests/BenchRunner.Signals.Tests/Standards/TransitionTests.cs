@@ -13,9 +13,9 @@ namespace BenchRunner.Signals.Tests.Standards;
 /// <summary>State levels, reference levels, transition durations and overshoot as IEEE 181-2011 defines them.</summary>
 /// <remarks>
 /// The standard's clause numbers and the sense of its definitions are from memory: 5.2 state levels by histogram, 5.3.2
-/// reference levels, 5.3.3 their instants, 5.3.4 transition duration, 5.3.5 overshoot and undershoot. The durations of the three
-/// shapes are closed forms: 80 % of a straight edge, τ ln 9 of an exponential one, 2·Φ⁻¹(0.9) σ = 2.563103 σ of a
-/// Gaussian one (Abramowitz and Stegun, table 26.5: Φ⁻¹(0.9) = 1.281552).
+/// reference levels, 5.3.3 their instants, 5.3.4 transition duration, 5.3.5 overshoot and undershoot. The durations of
+/// the three shapes are closed forms: 80 % of a straight edge, τ ln 9 of an exponential one, 2·Φ⁻¹(0.9) σ = 2.563103 σ
+/// of a Gaussian one (Φ⁻¹(0.9) = 1.281552, the normal distribution's 90 % quantile in any table).
 /// </remarks>
 public sealed class TransitionTests
 {
@@ -104,8 +104,8 @@ public sealed class TransitionTests
     [Fact]
     public void The_waveform_epoch_of_the_levels_ends_in_the_middles_of_the_states()
     {
-        // Waveform epoch, in the standard's words: the span over which levels are formed is stated; here the middle of the state
-        // before off1 to the middle of the state after it, and it is reported with the value.
+        // Waveform epoch, in the standard's words: the span over which levels are formed is stated; here the middle of
+        // the state before off1 to the middle of the state after it, and it is reported with the value.
         Waveform train = new SmoothTrain(20e-9, 20e-9, 20e-9, 20e-9, 0.5).Sample(1e-9, 0);
         AnalysisResult result = WaveformAnalysis.Analyse(train, new AnalysisSettings());
         TrainFacts facts = result.Train;
