@@ -44,6 +44,35 @@ internal sealed class QuantityForming(Analyser analyser, AnalysisSettings settin
         _ => analyser.Train.On2 is null ? analyser.Outside("on2") : Recovery(quantity, rule, byLoadLine),
     };
 
+    /// <summary>How an energy changes with the skew of its current, W; null for what is no energy.</summary>
+    /// <param name="quantity">The quantity's name.</param>
+    /// <param name="formed">Its reading, with a value.</param>
+    /// <param name="byLoadLine">The route to the diode's current.</param>
+    public double? PerSkew(string quantity, Reading formed, bool byLoadLine) => quantity switch
+    {
+        "eon" => PerSkew(analyser.TurnOn(analyser.OnCurrent), formed),
+        "eoff" => PerSkew(analyser.TurnOff(), formed),
+        "err" => SkewSensitivity.Form(
+            Along(Channel.VdsHigh),
+            analyser.Recovery(byLoadLine).Irr,
+            analyser.Record.SampleInterval,
+            formed.From - analyser.RecoveryOrigin,
+            formed.To - analyser.RecoveryOrigin,
+            fromMoves: true,
+            toMoves: true),
+        _ => null,
+    };
+
+    /// <summary>The current's 10 % begins eon and ends eoff; the other end is the voltage's.</summary>
+    private static double PerSkew(in SwitchingEvent edge, Reading formed) => SkewSensitivity.Form(
+        edge.Vds.Values,
+        edge.Id.Values,
+        edge.SampleInterval,
+        formed.From,
+        formed.To,
+        fromMoves: edge.TurnsOn,
+        toMoves: !edge.TurnsOn);
+
     private Reading TurnOn(string quantity, string rule)
     {
         SwitchingEvent edge = analyser.TurnOn(analyser.OnCurrent);

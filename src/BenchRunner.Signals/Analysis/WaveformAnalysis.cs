@@ -146,6 +146,9 @@ public static class WaveformAnalysis
                 null,
                 analyser.Record.TimeAt(reading.From),
                 analyser.Record.TimeAt(reading.To))
+            {
+                PerSkew = forming.PerSkew(quantity.Name, reading, DefinitionId.Split(id).ByLoadLine),
+            }
             : new QuantityValue(quantity.Name, id, null, quantity.Unit, reading.Reason, null, null);
     }
 

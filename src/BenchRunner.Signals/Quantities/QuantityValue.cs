@@ -15,4 +15,9 @@ public sealed record QuantityValue(
     string Unit,
     string? Reason,
     double? From,
-    double? To);
+    double? To)
+{
+    /// <summary>Of an energy: its change per second by which the current is recorded late against the voltage, W
+    /// (1 W is 1 nJ/ns), from the record itself; null for every other quantity.</summary>
+    public double? PerSkew { get; init; }
+}

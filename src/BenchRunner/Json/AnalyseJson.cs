@@ -23,6 +23,7 @@ internal static class AnalyseJson
             ["samples"] = file.Waveform.Count,
             ["sample_interval"] = JsonOutput.Number(file.Waveform.SampleInterval),
             ["channels"] = JsonOutput.Array(file.Waveform.Channels, channel => JsonValue.Create(channel.Name())),
+            ["baseline"] = Words.Of(file.Result.Train.Baseline),
             ["quantities"] = JsonOutput.Array(file.Result.Quantities, Quantity),
             ["findings"] = JsonOutput.Array(file.Verdict.Findings, Finding),
             ["not_evaluated"] = JsonOutput.Array(file.Verdict.NotEvaluated, name => JsonValue.Create(name)),
@@ -38,16 +39,25 @@ internal static class AnalyseJson
         return waveform;
     }
 
-    private static JsonObject Quantity(QuantityValue value) => new()
+    private static JsonObject Quantity(QuantityValue value)
     {
-        ["quantity"] = value.Quantity,
-        ["definition"] = value.Definition,
-        ["value"] = JsonOutput.Number(value.Value),
-        ["unit"] = value.Unit,
-        ["reason"] = value.Reason,
-        ["from"] = JsonOutput.Number(value.From),
-        ["to"] = JsonOutput.Number(value.To),
-    };
+        JsonObject quantity = new()
+        {
+            ["quantity"] = value.Quantity,
+            ["definition"] = value.Definition,
+            ["value"] = JsonOutput.Number(value.Value),
+            ["unit"] = value.Unit,
+            ["reason"] = value.Reason,
+            ["from"] = JsonOutput.Number(value.From),
+            ["to"] = JsonOutput.Number(value.To),
+        };
+        if (value.PerSkew is { } perSkew)
+        {
+            quantity["per_skew"] = JsonOutput.Number(perSkew);
+        }
+
+        return quantity;
+    }
 
     private static JsonObject Finding(Finding finding) => new()
     {
