@@ -215,11 +215,24 @@ internal sealed class Analyser
         double start = rings
             ? on2.At + (TimeConstants / (RingOn!.Mode.Decay * dt))
             : on2.At + (QuietPart * ((Train.Off2?.At ?? Record.Last) - on2.At));
+        if (Train.Off2 is null)
+        {
+            // The record may end amid the recovery, which never ends before the voltage has fallen.
+            start = Math.Max(start, knee.At + (AfterRecovery / dt));
+        }
+
         double? slope = Ramp.Slope.HasValue ? Ramp.Slope.Value * dt : null;
         for (int pass = 1; ; pass++)
         {
             _line = LoadLine.Fit(
-                Record[Channel.IdLow], on2.At, Train.Off2?.At, knee.At, start, slope, out string? reason);
+                Record[Channel.IdLow],
+                on2.At,
+                Train.Off2?.At,
+                knee.At,
+                start,
+                slope,
+                Train.Sigma(Channel.IdLow),
+                out string? reason);
             if (reason is not null)
             {
                 _irr = null;
@@ -235,7 +248,8 @@ internal sealed class Analyser
 
             Instant end = RecoveryTime.ChordEnd(Recovery(byLoadLine: true));
             double over = end.At + RecoveryOrigin + (AfterRecovery / dt);
-            if (!rings || end.Reason is not null || over <= start || pass == MostPasses)
+            bool isStated = !rings && Train.Off2 is not null;
+            if (isStated || end.Reason is not null || over <= start || pass == MostPasses)
             {
                 return Record.Unclipped(Channel.IdLow, _line.ToReading());
             }

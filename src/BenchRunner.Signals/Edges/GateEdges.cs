@@ -22,7 +22,7 @@ public static class GateEdges
     /// <remarks>
     /// An edge lies at a crossing of 50 % after which further ones do not count for the dead time: a gate rings through
     /// 50 % many times. Where the dead time ends in the other state all the same (a pulse shorter than it), the last
-    /// crossing inside it is an edge.
+    /// crossing inside it is an edge. A record that ends within the dead time does not say so: the gate may be ringing.
     /// </remarks>
     public static GateEdge[] Find(
         Samples gate, double dt, TwoLevels levels, double hysteresis, double deadTime)
@@ -49,7 +49,8 @@ public static class GateEdges
             Add(edges, gate, dt, levels, hysteresis, dead, scan.Position, scan.Direction);
         }
 
-        if (edges.Count > 0 && above != (edges[^1].Direction == CrossingDirection.Rising))
+        if (edges.Count > 0 && gate.Length - 1 - edges[^1].At >= dead
+            && above != (edges[^1].Direction == CrossingDirection.Rising))
         {
             Add(edges, gate, dt, levels, hysteresis, dead, skipped, Opposite(edges[^1].Direction));
         }

@@ -14,13 +14,19 @@ namespace BenchRunner.Signals.LoadCurrent;
 /// <param name="IsSlopeHeld">Whether the slope was held to the first ramp's.</param>
 /// <remarks>
 /// Within 0.2 % of the true current in most circuits, some percent off where the load's winding rings or its core
-/// saturates: part of the definition, and of its uncertainty.
+/// saturates: part of the definition, and of its uncertainty. Where off2 is after the record, nothing says how far the
+/// pulse goes on, and a record may end amid recovery or ringing, or amid a slope that is not the first ramp's: there
+/// the window must be a third as long as what lies between on2 and it, and its two halves on one line, within their
+/// noise or 2 % of the current.
 /// </remarks>
 public readonly record struct LoadLine(double Knee, Line Ramp, double From, double To, bool IsSlopeHeld)
 {
     private const double Trail = 0.05;
     private const double ShortestPart = 0.10;
     private const int FewestSamples = 100;
+    private const double MostStep = 0.02;
+    private const double LeastWindow = 1 / 3.0;
+    private const double Noises = 3;
 
     /// <summary>The current at turn-on, A: <c>i_on</c>.</summary>
     public double OnCurrent => Ramp.At(Knee);
@@ -37,6 +43,7 @@ public readonly record struct LoadLine(double Knee, Line Ramp, double From, doub
     /// <param name="start">Start of the fit window, in samples: the ringing has decayed, the recovery is over.</param>
     /// <param name="firstSlope">Slope of the first ramp, A a sample, to which a short window is held; null:
     /// none.</param>
+    /// <param name="noise">Standard deviation of the current's noise, A.</param>
     /// <param name="reason">Why there is no line; null where there is one.</param>
     /// <returns>The line; default where there is none.</returns>
     public static LoadLine Fit(
@@ -46,6 +53,7 @@ public readonly record struct LoadLine(double Knee, Line Ramp, double From, doub
         double knee,
         double start,
         double? firstSlope,
+        double noise,
         out string? reason)
     {
         reason = null;
@@ -65,9 +73,31 @@ public readonly record struct LoadLine(double Knee, Line Ramp, double From, doub
             return default;
         }
 
-        return new LoadLine(knee, line, start, to, held);
+        LoadLine found = new(knee, line, start, to, held);
+        if (off2 is null && (to - start < LeastWindow * (start - on2) || !found.IsOneLine(current, noise)))
+        {
+            reason = "the record ends before the current follows the load's ramp";
+            return default;
+        }
+
+        return found;
     }
 
     /// <summary>The current at turn-on as a reading.</summary>
     public Reading ToReading() => Reading.Of(OnCurrent, From, To);
+
+    /// <summary>Whether both halves of the window lie on one line of the held slope.</summary>
+    private bool IsOneLine(Samples current, double noise)
+    {
+        double middle = (From + To) / 2;
+        if (Line.Fit(current, From, Math.BitDecrement(middle), Ramp.Slope) is not { } early
+            || Line.Fit(current, middle, To, Ramp.Slope) is not { } late)
+        {
+            return false;
+        }
+
+        double step = Math.Abs(late.At(middle) - early.At(middle));
+        double chance = Noises * noise * 2 / Math.Sqrt(Math.Max(1, To - From));
+        return step <= Math.Max(chance, MostStep * Math.Abs(OnCurrent));
+    }
 }

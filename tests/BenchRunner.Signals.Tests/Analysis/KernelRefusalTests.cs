@@ -44,7 +44,7 @@ public sealed class KernelRefusalTests
         ("FirstRamp.Fit", 18, 57, x => FirstRamp.Fit(x, 1e-9, 0, 60, 60)),
         ("Line.Fit", 4, 59, x => Line.Fit(x, 3.5, 59.5)),
         ("Line.Fit", 4, 59, x => Line.Fit(x, 3.5, 59.5, slope: 1)),
-        ("LoadLine.Fit", 20, 57, x => LoadLine.Fit(x, 0, 60, 10, 20, 1, out _)),
+        ("LoadLine.Fit", 20, 57, x => LoadLine.Fit(x, 0, 60, 10, 20, 1, 0, out _)),
         ("Extremes..ctor", 5, 60, x =>
         {
             Extremes maxima = new(x, 0.5, minima: false, 5, 60);

@@ -76,7 +76,7 @@ internal static class LevelCases
         double knee = turnOn.Voltage(0.5, decided: false).At;
         double pulse = grid.At(2e-6) - grid.At(0);
         LoadLine line = LoadLine.Fit(
-            id, grid.At(0), grid.At(2e-6), knee, grid.At(0) + (0.25 * pulse) + 1, null, out string? reason);
+            id, grid.At(0), grid.At(2e-6), knee, grid.At(0) + (0.25 * pulse) + 1, null, 0, out string? reason);
         Assert.Null(reason);
         Assert.Equal(line.OnCurrent, line.At(grid.At(0)));
         return new() { ["i_on|iload/ramp"] = line.ToReading().Value };

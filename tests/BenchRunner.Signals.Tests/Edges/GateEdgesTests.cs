@@ -28,6 +28,13 @@ public sealed class GateEdgesTests
     }
 
     [Fact]
+    public void A_record_that_ends_while_the_gate_rings_below_half_its_swing_holds_no_further_edge()
+    {
+        double[] gate = Gate(2070, t => t is < 2000 or >= 2050 ? 0 : 10);
+        Assert.Equal(CrossingDirection.Rising, Assert.Single(Find(gate)).Direction);
+    }
+
+    [Fact]
     public void A_departure_is_the_earliest_crossing_of_ten_percent_of_a_gate_that_rings_back_past_it()
     {
         // 0 to 3 V at 1000, back to 0.5 V, then on: the 10 % level of 1 V is crossed upwards at 1001 and again at 1021.
