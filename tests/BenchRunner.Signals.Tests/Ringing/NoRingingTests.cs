@@ -23,7 +23,7 @@ public sealed class NoRingingTests
     [MemberData(nameof(Kinds))]
     [Trait("kind", "slow")]
     public void Noise_line_step_and_exponential_give_a_reason_in_hundreds_of_trials(int count, double correlation) =>
-        Assert.Equal([], Found(count, correlation, 500));
+        Assert.Equal([], Found(count, correlation, 200));
 
     [Fact]
     [Trait("kind", "slow")]
