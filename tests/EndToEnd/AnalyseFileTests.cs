@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.IO.Compression;
+using System.Security.Cryptography;
 using System.Text;
 using System.Text.Json;
 
@@ -93,6 +94,25 @@ public sealed class AnalyseFileTests : IDisposable
         File.WriteAllBytes(_place.Path("cut.csv.gz"), File.ReadAllBytes(_train)[..^2000]);
         await Refused("cut.csv.gz: damaged gzip:", "cut.csv.gz");
         await Refused("none.csv: there is no such file", "none.csv");
+    }
+
+    [Fact]
+    public async Task What_can_be_read_only_once_is_read_once()
+    {
+        Assert.SkipWhen(OperatingSystem.IsWindows(), "its standard input is no file");
+        byte[] bytes = File.ReadAllBytes(_train);
+        using Started analyse = _place.Start("analyse", "/dev/stdin", "--json");
+        await analyse.Input.BaseStream.WriteAsync(bytes, TestContext.Current.CancellationToken);
+        analyse.Input.Close();
+
+        Finished said = (await analyse.End()).Expect(0);
+
+        using JsonDocument document = JsonDocument.Parse(said.Output);
+        JsonElement waveform = document.RootElement.GetProperty("waveforms")[0];
+        Assert.Equal(Convert.ToHexStringLower(SHA256.HashData(bytes)), waveform.GetProperty("sha256").GetString());
+        Assert.Equal(10801, waveform.GetProperty("samples").GetInt32());
+        await Refused("/dev/null:1:1: the file is empty", "/dev/null");
+        await Refused("/dev/zero:1: a line of more than 64 kB", "/dev/zero");
     }
 
     [Fact]

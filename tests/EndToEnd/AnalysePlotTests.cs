@@ -64,6 +64,28 @@ public sealed class AnalysePlotTests : IDisposable
     }
 
     [Fact]
+    public async Task No_name_hides_what_it_names()
+    {
+        (XElement svg, _) = await Draw(Workplace.Repository(
+            "tests", "reference", "waveforms", "hv650snap-measured.csv.gz"));
+
+        foreach (XElement name in Of(svg, "interval-name"))
+        {
+            XElement ground = name.ElementsBeforeSelf().Last();
+            double start = Length(ground, "x"), end = start + Length(ground, "width");
+            string quantity = name.Attribute("data-quantity")!.Value;
+            XElement shaded = Of(svg, "interval").First(one => one.Attribute("data-quantity")!.Value == quantity);
+            foreach (double x in (double[])[Length(shaded, "x"), Length(shaded, "x") + Length(shaded, "width")])
+            {
+                Assert.False(x > start && x < end, $"{quantity}: {x} lies behind the name, {start} to {end}");
+            }
+        }
+
+        Assert.All(Of(svg, "peak-name"), name =>
+            Assert.True(Length(name, "y") < Length(Of(name.Parent!, "frame").Single(), "y")));
+    }
+
+    [Fact]
     public async Task A_marked_peak_lies_on_the_trace()
     {
         (XElement svg, _) = await Draw(_train);

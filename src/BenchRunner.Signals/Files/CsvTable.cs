@@ -115,10 +115,10 @@ internal sealed partial class CsvTable
         {
             line = _lines.Number == 1 && line.StartsWith("\uFEFF"u8) ? line[3..] : line;
             firstLine ??= Csv.Show(line);
-            if (line.Contains((byte)0))
+            if (line.IndexOfAny((byte)0, (byte)'\r') is var odd && odd >= 0)
             {
-                ReportAt(_lines.Number, line.IndexOf((byte)0) + 1, "a NUL byte", "a text table in UTF-8",
-                    "save it as text in UTF-8");
+                ReportAt(_lines.Number, odd + 1, line[odd] == 0 ? "a NUL byte" : "a carriage return inside a line",
+                    "a text table in UTF-8", "save it as text in UTF-8, with the usual line ends");
                 return null;
             }
 
@@ -253,7 +253,9 @@ internal sealed partial class CsvTable
             start,
             field.IsEmpty ? "an empty field" : $"'{Csv.Show(field)}'",
             isTime ? "a time in s" : "a number in V or A",
-            "write inf or nan for a clipped sample");
+            isTime
+                ? "correct it, or state the interval by --interval and leave the times out"
+                : "correct it, or write inf or nan for a clipped sample");
         return 0;
     }
 

@@ -39,7 +39,8 @@ internal static class CircuitQuantities
         new("i_on", "A", QuantityOwner.Circuit,
             "Load current at the second turn-on; percents off where the load's winding rings or its core saturates.",
             [new(Ramp, "Line fitted to the second pulse after ringing and recovery, at the instant at which vds_low "
-                + "falls through 50 %.", [VgsLow, VdsLow, IdLow])]),
+                + "falls through 50 %. Without off2 its slope is that of the first ramp, and there is no value unless "
+                + "the current follows it to the record's end.", [VgsLow, VdsLow, IdLow])]),
         new("id_peak_on", "A", QuantityOwner.Circuit, "Peak current at turn-on: load and recovery current "
                 + "together. A long second pulse has its maximum at its end.",
             [
@@ -50,7 +51,8 @@ internal static class CircuitQuantities
             ]),
         new("loop_inductance", "H", QuantityOwner.Circuit,
             "Inductance of the commutation loop outside the voltage probes. Skew of the current spoils it.",
-            [new("loop/flux", "∫ (bus_voltage − vds_low − vds_high − R id_low) dt / Δid_low between 10 % and 90 % of "
-                + "i_on; R the stated shunt; −V_F for vds_high where that is not measured.", [VgsLow, VdsLow, IdLow])]),
+            [new("loop/flux", "∫ (bus_voltage − vds_low − vds_high − R id_low) dt / Δid_low between "
+                + $"{SwitchQuantities.TenPercentRise} and 90 %; R the stated shunt; −V_F for vds_high where that is not "
+                + "measured.", [VgsLow, VdsLow, IdLow])]),
     ];
 }

@@ -8,6 +8,10 @@ internal static class SwitchQuantities
     private const string VoltageTimes = "IEC 60747-8";
     private const string CurrentTimes = "IEC 60747-9";
 
+    /// <summary>Where the current's rise at turn-on begins.</summary>
+    internal const string TenPercentRise = "10 % of i_on (the last rise through it before half of i_on: the gate's own "
+        + "current may cross it first)";
+
     /// <summary>The entries, in the catalogue's order.</summary>
     public static IReadOnlyList<Quantity> All { get; } =
     [
@@ -19,7 +23,7 @@ internal static class SwitchQuantities
             [
                 new("mos/10-90", $"Departure of on2 to vds_low falling through 90 % ({VoltageTimes}).",
                     [VgsLow, VdsLow]),
-                new("igbt/10-10", $"Departure of on2 to id_low rising through 10 % of i_on ({CurrentTimes}).",
+                new("igbt/10-10", $"Departure of on2 to id_low rising through {TenPercentRise} ({CurrentTimes}).",
                     [VgsLow, VdsLow, IdLow]),
             ],
             IgbtDefault: "igbt/10-10"),
@@ -27,7 +31,8 @@ internal static class SwitchQuantities
                 + "than the edge measures itself.",
             [
                 new("mos/90-10", $"vds_low falls from 90 % to 10 % ({VoltageTimes}).", [VgsLow, VdsLow]),
-                new("igbt/10-90", $"id_low rises from 10 % to 90 % of i_on ({CurrentTimes}).", [VgsLow, VdsLow, IdLow]),
+                new("igbt/10-90", $"id_low rises from {TenPercentRise} to 90 % ({CurrentTimes}).",
+                    [VgsLow, VdsLow, IdLow]),
             ],
             IgbtDefault: "igbt/10-90"),
         new("td_off", "s", QuantityOwner.Switch, "Turn-off delay. Skew between the two probes adds in full.",
@@ -48,10 +53,10 @@ internal static class SwitchQuantities
         new("eon", "J", QuantityOwner.Switch,
             "Energy lost at turn-on, the diode's recovery included. A current late by δ lowers it by V I δ and more.",
             [
-                new("e/10-10", "∫ vds_low id_low dt from id_low = 10 % of i_on to vds_low = 10 % of its step "
+                new("e/10-10", $"∫ vds_low id_low dt from id_low = {TenPercentRise} to vds_low = 10 % of its step "
                     + $"({VoltageTimes}; limits not verified).",
                     [VgsLow, VdsLow, IdLow]),
-                new("e/10-2", $"The same, to vds_low = 2 % of its step ({CurrentTimes}; limits not verified).",
+                new("e/10-2", $"The same start, to vds_low = 2 % of its step ({CurrentTimes}; limits not verified).",
                     [VgsLow, VdsLow, IdLow]),
             ],
             IgbtDefault: "e/10-2"),
@@ -72,7 +77,7 @@ internal static class SwitchQuantities
             + "the steepest slope.", Slopes()),
         new("didt_on", "A/s", QuantityOwner.Switch, "Slope of the current at turn-on. A shunt's inductance makes it "
                 + "look early, a slow current probe flat.",
-            [new("slope/10-90", "Mean slope of id_low between 10 % and 90 % of i_on.", [VgsLow, VdsLow, IdLow])]),
+            [new("slope/10-90", $"Mean slope of id_low between {TenPercentRise} and 90 %.", [VgsLow, VdsLow, IdLow])]),
         new("didt_off", "A/s", QuantityOwner.Switch, "Slope of the current at turn-off, as a magnitude. A slow "
                 + "current probe flattens it.",
             [new("slope/90-10", "Mean slope of id_low between 90 % and 10 % of i_off.", [VgsLow, IdLow])]),

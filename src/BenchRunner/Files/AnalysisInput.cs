@@ -59,8 +59,13 @@ internal static class AnalysisInput
     /// <summary>Reads a waveform file, with the SHA-256 of the very bytes that were read.</summary>
     public static (Waveform Waveform, string Sha256) Unchanged(string file, WaveformFileOptions options)
     {
+        if (Passing(file, options) is { } passed)
+        {
+            return passed;
+        }
+
         (long Length, DateTime Written) before = State(file);
-        Waveform waveform = Waveform(file, options);
+        Waveform waveform = Checked(WaveformFile.Read(file, options));
         string sha256 = Sha256(file);
         if (State(file) != before)
         {
@@ -72,11 +77,38 @@ internal static class AnalysisInput
         return (waveform, sha256);
     }
 
-    private static Waveform Waveform(string file, WaveformFileOptions options)
+    /// <summary>Reads what can be read only once, a pipe or standard input.</summary>
+    /// <returns>Null where it is a file on disk, or cannot be opened.</returns>
+    private static (Waveform Waveform, string Sha256)? Passing(string file, WaveformFileOptions options)
     {
-        WaveformRead read = WaveformFile.Read(file, options);
-        return read.Waveform ?? throw new InputException(string.Join(Environment.NewLine, read.Problems));
+        FileStream stream;
+        try
+        {
+            stream = new FileStream(file, FileMode.Open, FileAccess.Read, FileShare.ReadWrite, bufferSize: 0);
+        }
+        catch (Exception error) when (error is IOException or UnauthorizedAccessException or ArgumentException
+            or NotSupportedException)
+        {
+            return null;
+        }
+
+        using (stream)
+        {
+            if (stream.CanSeek)
+            {
+                return null;
+            }
+
+            using SHA256 hash = SHA256.Create();
+            using CryptoStream hashed = new(stream, hash, CryptoStreamMode.Read);
+            Waveform waveform = Checked(WaveformFile.Read(hashed, file, options));
+            hashed.CopyTo(Stream.Null);
+            return (waveform, Convert.ToHexStringLower(hash.Hash!));
+        }
     }
+
+    private static Waveform Checked(WaveformRead read) =>
+        read.Waveform ?? throw new InputException(string.Join(Environment.NewLine, read.Problems));
 
     private static string Sha256(string file)
     {

@@ -17,8 +17,9 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
     /// <summary>Height of a line that names an interval.</summary>
     public const double Row = 15;
 
-    /// <summary>Above each panel: its channel's name stands there.</summary>
+    /// <summary>Above each panel: its channel's name stands there, and a peak's value.</summary>
     private const double Gap = 16;
+
     /// <summary>About the width of a letter.</summary>
     private const double Letter = 6;
 
@@ -87,11 +88,13 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
                 + $"M{Svg.Length(to)} {Svg.Length(middle - 4)}L{Svg.Length(to)} {Svg.Length(middle + 4)}"),
             ("stroke", Dark), ("fill", "none"));
         string text = $"{value.Quantity} = {SiText.Format(value.Value!.Value, value.Unit, 4)}, {value.Definition}";
-        bool right = to + 6 + (Letter * text.Length) <= left + width + 20;
-        bool before = from - 6 - (Letter * text.Length) >= left - 60;
-        Label(
-            right ? to + 6 : before ? from - 6 : left + width, middle + 4, text, "interval-name",
-            right ? "start" : "end", value.Quantity);
+        double length = Letter * text.Length;
+        (double x, string anchor) = to + 6 + length <= left + width + 20 ? (to + 6, "start")
+            : from - 6 - length >= left - 60 ? (from - 6, "end")
+            : to - from >= length + 24 ? ((from + to) / 2, "middle")
+            : (left + width, "end");
+        Ground(x, middle + 4, length, anchor);
+        svg.Text(x, middle + 4, text, "interval-name", anchor, ("data-quantity", value.Quantity));
     }
 
     private void Panel(Channel channel, double top, double height)
@@ -118,7 +121,7 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
             svg.Shape("path", ("class", "clipped"), ("d", clipped), ("fill", Dark));
         }
 
-        Peaks(channel, values);
+        Peaks(channel, values, top);
         svg.Text(left, top - 3, $"{channel.Name()}, {values.ScaledUnit}", "channel");
         svg.Close();
     }
@@ -138,7 +141,8 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
         }
     }
 
-    private void Peaks(Channel channel, Axis values)
+    /// <summary>Rings the peaks; what they are stands above the panel, where it hides nothing.</summary>
+    private void Peaks(Channel channel, Axis values, double top)
     {
         foreach (QuantityValue peak in view.Peaks.Where(
             peak => View.Channels(peak, file.Settings).LastOrDefault() == channel))
@@ -146,21 +150,18 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
             double x = _times.Pixel(TraceLine.TimeOfMaximum(file, channel, peak.From!.Value, peak.To!.Value));
             double y = values.Pixel(peak.Value!.Value);
             string text = $"{peak.Quantity} = {SiText.Format(peak.Value.Value, peak.Unit, 4)}, {peak.Definition}";
-            bool right = x + 8 + (Letter * text.Length) <= left + width;
             svg.Shape("circle", ("class", "peak"), ("data-quantity", peak.Quantity), ("cx", Svg.Length(x)),
                 ("cy", Svg.Length(y)), ("r", "3"), ("fill", "none"), ("stroke", Dark));
-            Label(right ? x + 8 : x - 8, y + 4, text, "peak-name", right ? "start" : "end", peak.Quantity);
+            svg.Text(left + width, top - 3, text, "peak-name", "end", ("data-quantity", peak.Quantity));
         }
     }
 
-    /// <summary>A text on a ground of its own, over whatever is drawn below it.</summary>
-    private void Label(double x, double y, string text, string kind, string anchor, string quantity)
+    /// <summary>White ground for a text over whatever is drawn below it.</summary>
+    private void Ground(double x, double y, double length, string anchor)
     {
-        double length = Letter * text.Length;
-        svg.Shape("rect", ("class", "ground"), ("x", Svg.Length(anchor == "start" ? x - 1 : x - length)),
-            ("y", Svg.Length(y - 10)), ("width", Svg.Length(length + 1)), ("height", "13"), ("fill", "#ffffff"),
-            ("fill-opacity", "0.85"));
-        svg.Text(x, y, text, kind, anchor, ("data-quantity", quantity));
+        double start = anchor switch { "start" => x - 1, "end" => x - length, _ => x - (length / 2) };
+        svg.Shape("rect", ("class", "ground"), ("x", Svg.Length(start)), ("y", Svg.Length(y - 10)),
+            ("width", Svg.Length(length + 1)), ("height", "13"), ("fill", "#ffffff"), ("fill-opacity", "0.85"));
     }
 
     private void Edges(double top, double bottom)
@@ -173,6 +174,7 @@ internal sealed class Panels(Svg svg, AnalysedFile file, View view, double left,
             {
                 double x = _times.Pixel(found.At);
                 svg.Line(x, top, x, bottom, Grey, "edge", "2 3");
+                Ground(x + 3, bottom - 3, Letter * name.Length, "start");
                 svg.Text(x + 3, bottom - 3, name, "edge", "start", ("data-edge", name), ("font-size", "10"));
             }
         }

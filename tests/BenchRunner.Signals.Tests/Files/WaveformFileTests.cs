@@ -109,11 +109,14 @@ public sealed class WaveformFileTests
 
     [Theory]
     [InlineData("t,vds_low\n0,1\n1e-9,abc\n2e-9,3\n",
-        "f.csv:3:6: 'abc'; expected a number in V or A; write inf or nan for a clipped sample.")]
+        "f.csv:3:6: 'abc'; expected a number in V or A; correct it, or write inf or nan "
+            + "for a clipped sample.")]
     [InlineData("t,vds_low\n0,1\nnan,2\n2e-9,3\n",
-        "f.csv:3:1: 'nan'; expected a time in s; write inf or nan for a clipped sample.")]
+        "f.csv:3:1: 'nan'; expected a time in s; correct it, or state the "
+            + "interval by --interval and leave the times out.")]
     [InlineData("t,vds_low\n0,1\n1e-9,\n2e-9,3\n",
-        "f.csv:3:6: an empty field; expected a number in V or A; write inf or nan for a clipped sample.")]
+        "f.csv:3:6: an empty field; expected a number in V or A; correct it, or write inf or nan "
+            + "for a clipped sample.")]
     [InlineData("t,vds_low\n0,1\n1e-9\n2e-9,3\n",
         "f.csv:3: 1 field; expected 2 as in the header; complete or remove the row.")]
     [InlineData("t,vds_low\n0,1\n1e-9,2\n3e-9,3\n4e-9,4\n",
