@@ -1,5 +1,6 @@
 using System.CommandLine;
 using System.CommandLine.Invocation;
+using System.CommandLine.Parsing;
 using BenchRunner.Commands;
 
 namespace BenchRunner;
@@ -12,11 +13,14 @@ internal static class Program
         using var stop = new CancellationTokenSource();
         using SignalGuard signals = SignalGuard.Cancelling(stop);
         ParseResult parsed = CommandTree.Build().Parse(arguments);
-        if (parsed.Action is ParseErrorAction)
+        string[] wrong = parsed.Action is ParseErrorAction
+            ? [.. parsed.Errors.Select(error => error.Message)]
+            : [.. UnknownOptions(parsed)];
+        if (parsed.Action is ParseErrorAction || wrong.Length > 0)
         {
-            foreach (System.CommandLine.Parsing.ParseError error in parsed.Errors)
+            foreach (string message in wrong)
             {
-                System.Console.Error.WriteLine(error.Message);
+                System.Console.Error.WriteLine(message);
             }
 
             System.Console.Error.WriteLine(
@@ -30,4 +34,12 @@ internal static class Program
                 stop.Token),
             stop.Token);
     }
+
+    /// <summary>What looks like an option and was taken for a file: a mistyped one.</summary>
+    private static IEnumerable<string> UnknownOptions(ParseResult parsed) => parsed.CommandResult.Children
+        .OfType<ArgumentResult>()
+        .SelectMany(argument => argument.Tokens)
+        .Where(token => token.Value.StartsWith("--", StringComparison.Ordinal))
+        .Select(token => $"'{token.Value}' is no option of {parsed.CommandResult.Command.Name}; correct it, or write "
+            + $"./{token.Value} if it is a file.");
 }

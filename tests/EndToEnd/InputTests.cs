@@ -72,6 +72,12 @@ public sealed class InputTests : IDisposable
         Assert.Contains("--armed-by", (await run.End()).Expect(2).Error, StringComparison.Ordinal);
     }
 
+    [Theory]
+    [InlineData("analyse")]
+    [InlineData("plan")]
+    public async Task A_mistyped_option_is_not_taken_for_a_file(string command) =>
+        await Refused([command, "--setings"], $"'--setings' is no option of {command}");
+
     [Fact]
     public async Task A_device_given_twice_is_refused() => await Refused(
         ["run", Workplace.Sequence, "--device", "W1200-0001", "--device", "W1200-0001"],
