@@ -57,7 +57,7 @@ public sealed class SkewFromDipTests(ITestOutputHelper output)
     [InlineData("saturating")]
     public void Twice_the_stated_uncertainty_holds_95_percent_of_the_draws(string scenario)
     {
-        SkewDraw draw = new(scenario);
+        SkewDraw draw = new(scenario, Channel.IdLow);
         double truth = 4.6 * draw.Interval;
         int held = 0, none = 0;
         for (int seed = FirstSeed; seed < FirstSeed + Draws; seed++)

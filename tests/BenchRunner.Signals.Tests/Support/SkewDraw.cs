@@ -5,15 +5,17 @@ using BenchRunner.Signals.Traces;
 namespace BenchRunner.Signals.Tests.Support;
 
 /// <summary>Records as a bench would make them of one clean waveform: the recording chain of
-/// tests/reference/waveforms/README.md with a skew of the current and a seed of one's own.</summary>
+/// tests/reference/waveforms/README.md with a skew of one channel and a seed of one's own.</summary>
 internal sealed class SkewDraw
 {
     private readonly Waveform _clean;
     private readonly JsonDocument _chain;
+    private readonly Channel _skewed;
     private readonly Dictionary<double, Dictionary<Channel, double[]>> _late = [];
 
-    public SkewDraw(string scenario)
+    public SkewDraw(string scenario, Channel skewed)
     {
+        _skewed = skewed;
         _clean = Reference.Waveform($"{scenario}-clean.csv.gz");
         _chain = Reference.Json($"waveforms/{scenario}-measured.json");
         Settings = Reference.Settings(scenario, measured: false);
@@ -23,7 +25,7 @@ internal sealed class SkewDraw
 
     public AnalysisSettings Settings { get; }
 
-    /// <summary>lowpass, late by the skew (the current alone), noise, quantised; gain 1, offset 0.</summary>
+    /// <summary>lowpass, late by the skew (one channel alone), noise, quantised; gain 1, offset 0.</summary>
     public Waveform Of(int seed, double skew)
     {
         if (!_late.TryGetValue(skew, out Dictionary<Channel, double[]>? late))
@@ -53,7 +55,7 @@ internal sealed class SkewDraw
         {
             Channel channel = ChannelNames.Parse(one.Name)!.Value;
             double[] slow = Lowpass(_clean[channel], tau / Interval);
-            late[channel] = channel == Channel.IdLow
+            late[channel] = channel == _skewed
                 ? [.. Enumerable.Range(0, slow.Length).Select(i => Between(slow, i - (skew / Interval)))]
                 : slow;
         }
