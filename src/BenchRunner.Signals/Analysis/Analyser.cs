@@ -16,6 +16,7 @@ internal sealed class Analyser
     private const double TimeConstants = 5;
     private const double AfterRecovery = 20e-9;
     private const int MostPasses = 3;
+    private const double SettledPart = 0.02;
 
     private readonly AnalysisSettings _settings;
     private LoadLine _line;
@@ -35,7 +36,7 @@ internal sealed class Analyser
         Bus = BusFor(settings.Definitions.GetValueOrDefault("bus_voltage")
             ?? (record.Has(Channel.Vbus) ? "levels/window" : "levels/window-vds"));
         OnStateOff1 = FormOnState(train.On1, train.Off1, "off1");
-        OnStateOn2 = FormOnState(train.On2, train.Off2 ?? EndOfRecord(), "on2");
+        OnStateOn2 = train.Off2 is null ? FormOnStateAtEnd() : FormOnState(train.On2, train.Off2, "on2");
         Ramp = FormRamp();
         RingOn = FormRingOn();
         OnCurrent = FormLoadLine();
@@ -166,7 +167,25 @@ internal sealed class Analyser
         : Record.Unclipped(
             Channel.VdsLow, OnState.Form(Record[Channel.VdsLow], on?.At ?? 0, end.At, end.Departure));
 
-    private GateEdge EndOfRecord() => new(Record.Last, Record.Last, CrossingDirection.Falling);
+    /// <summary>The on state of a second pulse that goes on beyond the record, which may end before vds has come
+    /// down.</summary>
+    private Reading FormOnStateAtEnd()
+    {
+        GateEdge end = new(Record.Last, Record.Last, CrossingDirection.Falling);
+        Reading state = FormOnState(Train.On2, end, "on2");
+        if (!state.HasValue || !Bus.HasValue)
+        {
+            return state;
+        }
+
+        Reading before = FormOnState(Train.On2, end with { Departure = state.From }, "on2");
+        double moved = before.Value - state.Value;
+        bool isDown = before.HasValue && state.Value < Bus.Value / 2
+            && moved <= (3 * Train.Sigma(Channel.VdsLow)) + (SettledPart * Bus.Value);
+        return !isDown
+            ? Reading.None("the record ends while vds falls")
+            : state;
+    }
 
     private FirstRamp FormRamp() =>
         !Record.Has(Channel.IdLow) ? FirstRamp.Without($"{Record.Measured(Channel.IdLow).Name()} is not measured")

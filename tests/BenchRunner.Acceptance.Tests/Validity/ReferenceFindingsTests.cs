@@ -1,9 +1,8 @@
-using System.Globalization;
-using System.IO.Compression;
 using System.Text.Json;
 using BenchRunner.Acceptance.Tests.Files;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Files;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Tests.Validity;
@@ -68,23 +67,6 @@ public sealed class ReferenceFindingsTests
     private static JsonDocument Json(string name) =>
         JsonDocument.Parse(File.ReadAllBytes(Repository.PathOf("tests", "reference", "waveforms", name)));
 
-    private static Waveform Read(string name)
-    {
-        string path = Repository.PathOf("tests", "reference", "waveforms", $"{name}.csv.gz");
-        using var lines = new StreamReader(new GZipStream(File.OpenRead(path), CompressionMode.Decompress));
-        string[] header = lines.ReadLine()!.Split(',');
-        List<double>[] columns = [.. header.Select(_ => new List<double>())];
-        while (lines.ReadLine() is { } line)
-        {
-            string[] cells = line.Split(',');
-            for (int i = 0; i < cells.Length; i++)
-            {
-                columns[i].Add(double.Parse(cells[i], CultureInfo.InvariantCulture));
-            }
-        }
-
-        double interval = (columns[0][^1] - columns[0][0]) / (columns[0].Count - 1);
-        return new Waveform(columns[0][0], interval, Enumerable.Range(1, header.Length - 1).ToDictionary(
-            i => ChannelNames.Parse(header[i])!.Value, i => columns[i].ToArray()));
-    }
+    private static Waveform Read(string name) => WaveformFile.Read(
+        Repository.PathOf("tests", "reference", "waveforms", $"{name}.csv.gz")).Waveform!;
 }
