@@ -21,7 +21,10 @@ internal sealed class BridgeEquations : IOdeSystem
     private readonly double _kh;
     private readonly double _inverse11, _inverse12, _inverse22;
     private readonly double _supplyVoltage, _highDrive;
+    private readonly double _perWinding, _perGate, _perBank, _perBankInductance, _perLoop, _perLoad, _perSaturation;
     private readonly double[] _scale;
+    private readonly double[] _constant = new double[N * N];
+    private double _gateResistor;
 
     /// <summary>The equations of one circuit at one bus voltage.</summary>
     /// <param name="parts">The circuit.</param>
@@ -44,7 +47,11 @@ internal sealed class BridgeEquations : IOdeSystem
         (_inverse11, _inverse12, _inverse22) = (gate / determinant, -_ls / determinant, loop / determinant);
         _supplyVoltage = busVoltage * (1 + _b.SupplyResistance / _b.BleederResistance);
         _highDrive = highDrive;
+        (_perLoad, _perSaturation) = (1 / _b.LoadInductance, 1 / _b.SaturationFlux);
+        (_perWinding, _perGate) = (1 / _b.WindingCapacitance, 1 / _b.GateInductance);
+        (_perBank, _perBankInductance, _perLoop) = (1 / _b.BankCapacitance, 1 / _b.BankInductance, _rp / _lp);
         _scale = BridgeState.Scales(_b, Math.Max(20, Math.Abs(busVoltage)));
+        ConstantSlopes(_constant);
     }
 
     /// <inheritdoc/>
@@ -52,6 +59,9 @@ internal sealed class BridgeEquations : IOdeSystem
 
     /// <inheritdoc/>
     public SparseElimination Elimination => Order;
+
+    /// <inheritdoc/>
+    public int Turning => JLow;
 
     /// <inheritdoc/>
     public ReadOnlySpan<double> Scale => _scale;
@@ -75,8 +85,8 @@ internal sealed class BridgeEquations : IOdeSystem
     /// <inheritdoc/>
     public void Evaluate(double time, ReadOnlySpan<double> y, Span<double> dy)
     {
-        var linear = Circuit(time, y, dy);
-        _high.Rates(y[GHigh], y[VHigh], y[MHigh], y[JHigh], linear.High, out var high);
+        double highCurrent = Circuit(time, y, dy);
+        _high.Rates(y[GHigh], y[VHigh], y[MHigh], y[JHigh], highCurrent, out var high);
         _low.Rates(y[GLow], y[VLow], y[MLow], y[JLow], y[Low], out var low);
         (dy[GHigh], dy[VHigh], dy[MHigh]) = (high.G, high.V, high.M);
         (dy[GLow], dy[VLow], dy[MLow]) = (low.G, low.V, low.M);
@@ -86,14 +96,20 @@ internal sealed class BridgeEquations : IOdeSystem
     public void Linearise(double time, ReadOnlySpan<double> y, Span<double> dy, Span<double> jacobian,
         Span<double> timeDerivative)
     {
-        var linear = Circuit(time, y, dy);
-        _high.RatesAndSlopes(y[GHigh], y[VHigh], y[MHigh], y[JHigh], linear.High, out var high);
+        _gateResistor = GateResistor(y[JLow]);
+        double highCurrent = Circuit(time, y, dy);
+        // A gate current that is just turning: its rate, to which the resistor adds nothing yet, tells where to.
+        if (y[JLow] == 0) _gateResistor = GateResistor(dy[JLow]);
+        _high.RatesAndSlopes(y[GHigh], y[VHigh], y[MHigh], y[JHigh], highCurrent, out var high);
         _low.RatesAndSlopes(y[GLow], y[VLow], y[MLow], y[JLow], y[Low], out var low);
         (dy[GHigh], dy[VHigh], dy[MHigh]) = (high.G, high.V, high.M);
         (dy[GLow], dy[VLow], dy[MLow]) = (low.G, low.V, low.M);
 
+        _constant.CopyTo(jacobian);
         double load = LoadSlope(y[Phi]);
-        CircuitSlopes(y, load, jacobian);
+        PhiSlopes(load, jacobian);
+        SharedRows(JLow, -_rs, -_gateResistor - _rs, jacobian);
+        jacobian[Bank * N + Bank] -= SupplySlope(y[Bank]) * _perBank;
         HighSlopes(high, load, jacobian);
         DeviceSlopes(low, GLow, VLow, MLow, JLow, jacobian);
         jacobian[GLow * N + Low] = low.GById;
@@ -105,17 +121,16 @@ internal sealed class BridgeEquations : IOdeSystem
     /// <summary>The eight signals at the probe tips, in the order of <see cref="Signal"/>.</summary>
     public void Observe(double time, ReadOnlySpan<double> y, Span<double> signals)
     {
-        Span<double> dy = stackalloc double[N];
-        var linear = Circuit(time, y, dy);
-        double source = _ls * (dy[Low] + dy[JLow]) + _rs * (y[Low] + y[JLow]);
+        var mesh = MeshAt(time, y);
+        double source = _ls * (mesh.LowRate + mesh.GateRate) + _rs * (y[Low] + y[JLow]);
         signals[(int)Signal.VgsLow] = y[GLow] + _rgiLow * y[JLow] + source;
         signals[(int)Signal.VdsLow] = y[VLow] + source;
         signals[(int)Signal.IdLow] = y[Low];
         signals[(int)Signal.VgsHigh] = y[GHigh] + _rgiHigh * y[JHigh];
-        signals[(int)Signal.VdsHigh] = y[VHigh] + _rh * linear.High;
-        signals[(int)Signal.IdHigh] = linear.High;
-        signals[(int)Signal.Vbus] = linear.Bus;
-        signals[(int)Signal.ILoad] = y[Low] - linear.High;
+        signals[(int)Signal.VdsHigh] = y[VHigh] + _rh * mesh.High;
+        signals[(int)Signal.IdHigh] = mesh.High;
+        signals[(int)Signal.Vbus] = mesh.Bus;
+        signals[(int)Signal.ILoad] = y[Low] - mesh.High;
     }
 
     /// <summary>The state at rest: both places off, the low one blocking the bus through the load.</summary>
@@ -137,13 +152,7 @@ internal sealed class BridgeEquations : IOdeSystem
     }
 
     /// <summary>Current of the load inductor, A.</summary>
-    public double LoadCurrent(double phi)
-    {
-        double r = phi / _b.SaturationFlux;
-        double r2 = r * r;
-        double r4 = r2 * r2;
-        return phi / _b.LoadInductance * (1 + r4 * r4);
-    }
+    public double LoadCurrent(double phi) => phi * _perLoad * (1 + Saturation(phi));
 
     /// <summary>Flux at which the load carries a current, Wb: by halving, since the curve only rises.</summary>
     private double LoadFlux(double current)
@@ -160,15 +169,18 @@ internal sealed class BridgeEquations : IOdeSystem
         return high;
     }
 
-    private double LoadSlope(double phi)
+    private double LoadSlope(double phi) => _perLoad * (1 + 9 * Saturation(phi));
+
+    private double Saturation(double phi)
     {
-        double r = phi / _b.SaturationFlux;
+        double r = phi * _perSaturation;
         double r2 = r * r;
         double r4 = r2 * r2;
-        return (1 + 9 * r4 * r4) / _b.LoadInductance;
+        return r4 * r4;
     }
 
-    private (double High, double Bus) Circuit(double time, ReadOnlySpan<double> y, Span<double> dy)
+    /// <summary>Currents and voltages of the meshes that follow from the states without a delay.</summary>
+    private Mesh MeshAt(double time, ReadOnlySpan<double> y)
     {
         double i = y[Low];
         double rw = _b.WindingResistance;
@@ -181,18 +193,33 @@ internal sealed class BridgeEquations : IOdeSystem
         double drive = Drive + DriveSlope * (time - DriveSince);
         double source = _rs * (i + y[JLow]);
         double loopVoltage = bus - across - _b.ShuntResistance * i - y[VLow] - source;
-        double gateVoltage = drive - GateResistor(y[JLow]) * y[JLow] - y[GLow] - source;
-        double supply = Supply(y[Bank]);
+        double gateVoltage = drive - _gateResistor * y[JLow] - y[GLow] - source;
+        return new Mesh
+        {
+            High = high,
+            Load = load,
+            Winding = winding,
+            Across = across,
+            Damping = damping,
+            Bus = bus,
+            LowRate = _inverse11 * loopVoltage + _inverse12 * gateVoltage,
+            GateRate = _inverse12 * loopVoltage + _inverse22 * gateVoltage,
+        };
+    }
 
-        dy[Phi] = across - _b.LoadResistance * load;
-        dy[Winding] = winding / _b.WindingCapacitance;
-        dy[Loop] = _rp * (high - y[Loop]) / _lp;
-        dy[Low] = _inverse11 * loopVoltage + _inverse12 * gateVoltage;
-        dy[JLow] = _inverse12 * loopVoltage + _inverse22 * gateVoltage;
-        dy[JHigh] = (_highDrive - (_b.HighGateResistance + _rgiHigh) * y[JHigh] - y[GHigh]) / _b.GateInductance;
-        dy[Bank] = (supply - i - y[Bank] / _b.BleederResistance) / _b.BankCapacitance;
-        dy[BankCurrent] = (damping - _b.BankResistance * y[BankCurrent]) / _b.BankInductance;
-        return (high, bus);
+    /// <summary>Writes the rates of all states outside the devices; gives the current of the high place, A.</summary>
+    private double Circuit(double time, ReadOnlySpan<double> y, Span<double> dy)
+    {
+        var mesh = MeshAt(time, y);
+        dy[Phi] = mesh.Across - _b.LoadResistance * mesh.Load;
+        dy[Winding] = mesh.Winding * _perWinding;
+        dy[Loop] = (mesh.High - y[Loop]) * _perLoop;
+        dy[Low] = mesh.LowRate;
+        dy[JLow] = mesh.GateRate;
+        dy[JHigh] = (_highDrive - (_b.HighGateResistance + _rgiHigh) * y[JHigh] - y[GHigh]) * _perGate;
+        dy[Bank] = (Supply(y[Bank]) - y[Low] - y[Bank] / _b.BleederResistance) * _perBank;
+        dy[BankCurrent] = (mesh.Damping - _b.BankResistance * y[BankCurrent]) * _perBankInductance;
+        return mesh.High;
     }
 
     private double GateResistor(double current) =>
@@ -201,44 +228,52 @@ internal sealed class BridgeEquations : IOdeSystem
     private double Supply(double bank) =>
         Math.Clamp((_supplyVoltage - bank) / _b.SupplyResistance, 0, _b.SupplyCurrentLimit);
 
-    private void CircuitSlopes(ReadOnlySpan<double> y, double load, Span<double> j)
+    private double SupplySlope(double bank)
+    {
+        double wanted = (_supplyVoltage - bank) / _b.SupplyResistance;
+        return wanted > 0 && wanted < _b.SupplyCurrentLimit ? 1 / _b.SupplyResistance : 0;
+    }
+
+    /// <summary>Slopes that no state changes.</summary>
+    private void ConstantSlopes(Span<double> j)
     {
         double rw = _b.WindingResistance;
         Span<double> high = stackalloc double[N];
-        HighGradient(load, high);
-        ReadOnlySpan<int> touching = [Phi, Winding, Loop, Low, VHigh];
-        double gateResistor = GateResistor(y[JLow]);
+        HighGradient(0, high);
+        ReadOnlySpan<int> touching = [Winding, Loop, Low, VHigh];
         foreach (int s in touching)
         {
-            double winding = (s == Low ? 1 : 0) - high[s] - (s == Phi ? load : 0);
+            double winding = (s == Low ? 1 : 0) - high[s];
             double across = (s == Winding ? 1 : 0) + rw * winding;
-            double loop = -across;
-            double gate = 0;
-            if (s == Low)
-            {
-                loop -= _b.BankDamping + _b.ShuntResistance + _rs;
-                gate -= _rs;
-            }
-
-            j[Phi * N + s] = across - (s == Phi ? _b.LoadResistance * load : 0);
-            j[Winding * N + s] = winding / _b.WindingCapacitance;
-            j[Loop * N + s] = _rp * (high[s] - (s == Loop ? 1 : 0)) / _lp;
-            SharedRows(s, loop, gate, j);
+            j[Phi * N + s] = across;
+            j[Winding * N + s] = winding * _perWinding;
+            j[Loop * N + s] = (high[s] - (s == Loop ? 1 : 0)) * _perLoop;
+            double loop = s == Low ? _b.BankDamping + _b.ShuntResistance + _rs : 0;
+            SharedRows(s, -across - loop, s == Low ? -_rs : 0, j);
         }
 
         SharedRows(VLow, -1, 0, j);
         SharedRows(GLow, 0, -1, j);
-        SharedRows(JLow, -_rs, -gateResistor - _rs, j);
         SharedRows(Bank, 1, 0, j);
         SharedRows(BankCurrent, _b.BankDamping, 0, j);
-        j[JHigh * N + JHigh] = -(_b.HighGateResistance + _rgiHigh) / _b.GateInductance;
-        j[JHigh * N + GHigh] = -1 / _b.GateInductance;
-        double wanted = (_supplyVoltage - y[Bank]) / _b.SupplyResistance;
-        bool linear = wanted > 0 && wanted < _b.SupplyCurrentLimit;
-        j[Bank * N + Bank] = (-1 / _b.BleederResistance - (linear ? 1 / _b.SupplyResistance : 0)) / _b.BankCapacitance;
-        j[Bank * N + Low] = -1 / _b.BankCapacitance;
-        j[BankCurrent * N + Low] = _b.BankDamping / _b.BankInductance;
-        j[BankCurrent * N + BankCurrent] = -(_b.BankDamping + _b.BankResistance) / _b.BankInductance;
+        j[JHigh * N + JHigh] = -(_b.HighGateResistance + _rgiHigh) * _perGate;
+        j[JHigh * N + GHigh] = -_perGate;
+        j[Bank * N + Bank] = -_perBank / _b.BleederResistance;
+        j[Bank * N + Low] = -_perBank;
+        j[BankCurrent * N + Low] = _b.BankDamping * _perBankInductance;
+        j[BankCurrent * N + BankCurrent] = -(_b.BankDamping + _b.BankResistance) * _perBankInductance;
+    }
+
+    /// <summary>Column of the load's flux, whose current bends as the core saturates.</summary>
+    private void PhiSlopes(double load, Span<double> j)
+    {
+        double high = -_kh * _b.WindingResistance * load;
+        double winding = -high - load;
+        double across = _b.WindingResistance * winding;
+        j[Phi * N + Phi] = across - _b.LoadResistance * load;
+        j[Winding * N + Phi] = winding * _perWinding;
+        j[Loop * N + Phi] = high * _perLoop;
+        SharedRows(Phi, -across, 0, j);
     }
 
     /// <summary>Rows of the two currents that share the source inductance.</summary>
@@ -285,5 +320,24 @@ internal sealed class BridgeEquations : IOdeSystem
         j[v * N + gate] = rates.VByJ;
         j[m * N + v] = rates.MByV;
         j[m * N + m] = rates.MByM;
+    }
+
+    private readonly struct Mesh
+    {
+        public required double High { get; init; }
+
+        public required double Load { get; init; }
+
+        public required double Winding { get; init; }
+
+        public required double Across { get; init; }
+
+        public required double Damping { get; init; }
+
+        public required double Bus { get; init; }
+
+        public required double LowRate { get; init; }
+
+        public required double GateRate { get; init; }
     }
 }

@@ -45,7 +45,7 @@ public static class HalfBridge
 
         var equations = new BridgeEquations(parts, train.BusVoltage, train.HeldOff) { Drive = train.GateOff };
         var solver = new Rodas4(equations, tolerance) { LongestStep = LongestStep };
-        equations.Rest(train.BusVoltage, train.GateOff).CopyTo(solver.State, 0);
+        equations.Rest(train.BusVoltage, train.GateOff).CopyTo(solver.State);
         var sampler = new Sampler(equations, start, interval, points);
         sampler.AtRest(solver.State);
         double end = Math.Max(train.Off2 + Tail, start + interval * (points - 1));

@@ -13,6 +13,10 @@ public interface IOdeSystem
     /// <summary>Size of one "unit" of each state: the error norm is absolute.</summary>
     ReadOnlySpan<double> Scale { get; }
 
+    /// <summary>The state whose sign decides between two sets of equations that meet where it is 0; negative: none.
+    /// <see cref="Linearise"/> decides, and what it has decided holds until it is called again.</summary>
+    int Turning => -1;
+
     /// <summary>Writes f(t, y).</summary>
     void Evaluate(double time, ReadOnlySpan<double> state, Span<double> derivative);
 

@@ -1,3 +1,6 @@
+using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
+
 namespace FakeBench.Physics;
 
 /// <summary>A stiff solver: the Rosenbrock method RODAS of order 4(3) with six stages and its own dense
@@ -27,14 +30,19 @@ public sealed class Rodas4
     private const double D31 = -0.6762803392801253, D32 = 6.087714651680015, D33 = 16.43084320892478;
     private const double D34 = 24.76722511418386, D35 = -6.594389125716872;
 
+    /// <summary>Rows are as long as a multiple of this, so that they can be worked on in whole vectors; what is beyond
+    /// the system's size stays 0.</summary>
+    private const int Lanes = 4;
+
     private const double Safety = 0.9, Shrink = 0.2, Grow = 6;
 
     private readonly IOdeSystem _system;
     private readonly SparseElimination _elimination;
     private readonly double _tolerance;
-    private readonly double[] _matrix, _jacobian;
+    private readonly int _size;
+    private readonly double[] _matrix, _jacobian, _state, _perScale;
     private readonly double[] _f, _ft, _stage, _k1, _k2, _k3, _k4, _k5, _k6, _next;
-    private readonly double[] _old, _dense2, _dense3;
+    private readonly double[] _old, _end, _dense2, _dense3;
 
     /// <summary>Prepares an integration.</summary>
     /// <param name="system">The equations.</param>
@@ -46,17 +54,19 @@ public sealed class Rodas4
         _system = system;
         _elimination = system.Elimination;
         _tolerance = tolerance;
-        int n = system.Size;
-        (_matrix, _jacobian) = (new double[n * n], new double[n * n]);
-        (_f, _ft, _stage, _next) = (new double[n], new double[n], new double[n], new double[n]);
-        (_k1, _k2, _k3) = (new double[n], new double[n], new double[n]);
-        (_k4, _k5, _k6) = (new double[n], new double[n], new double[n]);
-        (_old, _dense2, _dense3) = (new double[n], new double[n], new double[n]);
-        State = new double[n];
+        _size = system.Size;
+        double[] Padded(int length) => new double[(length + Lanes - 1) / Lanes * Lanes];
+        (_matrix, _jacobian) = (Padded(_size * _size), Padded(_size * _size));
+        (_f, _ft, _stage, _next) = (Padded(_size), Padded(_size), Padded(_size), Padded(_size));
+        (_k1, _k2, _k3) = (Padded(_size), Padded(_size), Padded(_size));
+        (_k4, _k5, _k6) = (Padded(_size), Padded(_size), Padded(_size));
+        (_old, _end, _dense2, _dense3) = (Padded(_size), Padded(_size), Padded(_size), Padded(_size));
+        (_state, _perScale) = (Padded(_size), Padded(_size));
+        for (int i = 0; i < _size; i++) _perScale[i] = 1 / system.Scale[i];
     }
 
     /// <summary>The state reached; set it before the first step.</summary>
-    public double[] State { get; }
+    public Span<double> State => _state.AsSpan(0, _size);
 
     /// <summary>The time reached, s.</summary>
     public double Time { get; set; }
@@ -64,7 +74,7 @@ public sealed class Rodas4
     /// <summary>Start of the last step, s.</summary>
     public double StepStart { get; private set; }
 
-    /// <summary>Length of the last step, s.</summary>
+    /// <summary>Length of the last step, s; where a state turned, it ended before.</summary>
     public double StepLength { get; private set; }
 
     /// <summary>The step to try next, s; set it at a corner of the input.</summary>
@@ -86,7 +96,7 @@ public sealed class Rodas4
     /// <exception cref="ArithmeticException">No step however small meets the tolerance.</exception>
     public void Advance(double limit)
     {
-        _system.Linearise(Time, State, _f, _jacobian, _ft);
+        _system.Linearise(Time, State, _f, _jacobian.AsSpan(0, _size * _size), _ft);
         while (true)
         {
             double step = NextStep;
@@ -100,6 +110,7 @@ public sealed class Rodas4
                 // A step cut short by the limit says nothing against the longer one that was planned.
                 double wanted = last ? Math.Max(NextStep, step * factor) : step * factor;
                 NextStep = StepLadder.RoundDown(Math.Min(wanted, LongestStep));
+                if (_system.Turning >= 0) StopAtTurn(_system.Turning);
                 return;
             }
 
@@ -115,26 +126,48 @@ public sealed class Rodas4
     public void Interpolate(double time, Span<double> state)
     {
         double s = (time - StepStart) / StepLength;
+        for (int i = 0; i < _size && i < state.Length; i++) state[i] = Inside(i, s);
+    }
+
+    private double Inside(int i, double s)
+    {
         double r = 1 - s;
-        double[] old = _old, end = State, dense2 = _dense2, dense3 = _dense3;
-        for (int i = 0; i < old.Length && i < state.Length; i++)
-        {
-            state[i] = old[i] * r + s * (end[i] + r * (dense2[i] + s * dense3[i]));
-        }
+        return _old[i] * r + s * (_end[i] + r * (_dense2[i] + s * _dense3[i]));
     }
 
     private void Accept(double step, double time)
     {
-        for (int i = 0; i < _next.Length; i++)
+        Span<Vector256<double>> k1 = Wide(_k1), k2 = Wide(_k2), k3 = Wide(_k3), k4 = Wide(_k4), k5 = Wide(_k5);
+        Span<Vector256<double>> dense2 = Wide(_dense2), dense3 = Wide(_dense3);
+        for (int i = 0; i < dense2.Length; i++)
         {
-            _dense2[i] = D21 * _k1[i] + D22 * _k2[i] + D23 * _k3[i] + D24 * _k4[i] + D25 * _k5[i];
-            _dense3[i] = D31 * _k1[i] + D32 * _k2[i] + D33 * _k3[i] + D34 * _k4[i] + D35 * _k5[i];
+            dense2[i] = D21 * k1[i] + D22 * k2[i] + D23 * k3[i] + D24 * k4[i] + D25 * k5[i];
+            dense3[i] = D31 * k1[i] + D32 * k2[i] + D33 * k3[i] + D34 * k4[i] + D35 * k5[i];
         }
 
-        State.CopyTo(_old, 0);
-        _next.CopyTo(State, 0);
+        _state.CopyTo(_old, 0);
+        _next.CopyTo(_state, 0);
+        _next.CopyTo(_end, 0);
         (StepStart, StepLength, Time) = (Time, step, time);
         Accepted++;
+    }
+
+    /// <summary>Ends the last step just after a state has passed 0, so that no step holds two sets of equations; never
+    /// before a sixteenth of it, so that it gets on.</summary>
+    private void StopAtTurn(int turning)
+    {
+        double side = _old[turning] != 0 ? _old[turning] : _f[turning];
+        if (side * _state[turning] >= 0) return;
+        double before = 1.0 / 16, after = 1;
+        for (int i = 0; i < 40; i++)
+        {
+            double middle = 0.5 * (before + after);
+            if (side * Inside(turning, middle) > 0) before = middle;
+            else after = middle;
+        }
+
+        Time = StepStart + after * StepLength;
+        for (int i = 0; i < _size; i++) _state[i] = Inside(i, after);
     }
 
     private double Try(double step)
@@ -142,64 +175,68 @@ public sealed class Rodas4
         Factor(step);
         double r = 1 / step;
         double t = Time;
-        double[] y = State, f = _f, ft = _ft, stage = _stage;
-        double[] k1 = _k1, k2 = _k2, k3 = _k3, k4 = _k4, k5 = _k5, k6 = _k6;
+        Span<Vector256<double>> y = Wide(_state), f = Wide(_f), ft = Wide(_ft), stage = Wide(_stage);
+        Span<Vector256<double>> k1 = Wide(_k1), k2 = Wide(_k2), k3 = Wide(_k3), k4 = Wide(_k4), k5 = Wide(_k5);
+        var k6 = Wide(_k6);
         int n = y.Length;
 
         for (int i = 0; i < n; i++) k1[i] = f[i] + step * G1 * ft[i];
-        _elimination.Solve(_matrix, k1);
+        _elimination.Solve(_matrix, _k1);
 
         for (int i = 0; i < n; i++) stage[i] = y[i] + A21 * k1[i];
-        _system.Evaluate(t + T2 * step, stage, k2);
+        _system.Evaluate(t + T2 * step, _stage, _k2);
         for (int i = 0; i < n; i++) k2[i] += r * C21 * k1[i] + step * G2 * ft[i];
-        _elimination.Solve(_matrix, k2);
+        _elimination.Solve(_matrix, _k2);
 
         for (int i = 0; i < n; i++) stage[i] = y[i] + A31 * k1[i] + A32 * k2[i];
-        _system.Evaluate(t + T3 * step, stage, k3);
+        _system.Evaluate(t + T3 * step, _stage, _k3);
         for (int i = 0; i < n; i++) k3[i] += r * (C31 * k1[i] + C32 * k2[i]) + step * G3 * ft[i];
-        _elimination.Solve(_matrix, k3);
+        _elimination.Solve(_matrix, _k3);
 
         for (int i = 0; i < n; i++) stage[i] = y[i] + A41 * k1[i] + A42 * k2[i] + A43 * k3[i];
-        _system.Evaluate(t + T4 * step, stage, k4);
+        _system.Evaluate(t + T4 * step, _stage, _k4);
         for (int i = 0; i < n; i++) k4[i] += r * (C41 * k1[i] + C42 * k2[i] + C43 * k3[i]) + step * G4 * ft[i];
-        _elimination.Solve(_matrix, k4);
+        _elimination.Solve(_matrix, _k4);
 
         for (int i = 0; i < n; i++) stage[i] = y[i] + A51 * k1[i] + A52 * k2[i] + A53 * k3[i] + A54 * k4[i];
-        _system.Evaluate(t + step, stage, k5);
+        _system.Evaluate(t + step, _stage, _k5);
         for (int i = 0; i < n; i++) k5[i] += r * (C51 * k1[i] + C52 * k2[i] + C53 * k3[i] + C54 * k4[i]);
-        _elimination.Solve(_matrix, k5);
+        _elimination.Solve(_matrix, _k5);
 
         for (int i = 0; i < n; i++) stage[i] += k5[i];
-        _system.Evaluate(t + step, stage, k6);
+        _system.Evaluate(t + step, _stage, _k6);
         for (int i = 0; i < n; i++)
         {
             k6[i] += r * (C61 * k1[i] + C62 * k2[i] + C63 * k3[i] + C64 * k4[i] + C65 * k5[i]);
         }
 
-        _elimination.Solve(_matrix, k6);
+        _elimination.Solve(_matrix, _k6);
         return Finish();
     }
 
     private double Finish()
     {
-        var scale = _system.Scale;
-        double sum = 0;
-        for (int i = 0; i < _next.Length; i++)
+        Span<Vector256<double>> next = Wide(_next), stage = Wide(_stage), k6 = Wide(_k6), perScale = Wide(_perScale);
+        var sum = Vector256<double>.Zero;
+        for (int i = 0; i < next.Length; i++)
         {
-            _next[i] = _stage[i] + _k6[i];
-            double e = _k6[i] / scale[i];
+            next[i] = stage[i] + k6[i];
+            var e = k6[i] * perScale[i];
             sum += e * e;
         }
 
-        return Math.Sqrt(sum / _next.Length) / _tolerance;
+        return Math.Sqrt(Vector256.Sum(sum) / _size) / _tolerance;
     }
 
     private void Factor(double step)
     {
-        foreach (int at in _elimination.Filled) _matrix[at] = -_jacobian[at];
+        Span<Vector256<double>> matrix = Wide(_matrix), jacobian = Wide(_jacobian);
+        for (int i = 0; i < matrix.Length; i++) matrix[i] = -jacobian[i];
         double diagonal = 1 / (step * Gamma);
-        int n = State.Length;
-        for (int i = 0; i < n; i++) _matrix[i * n + i] += diagonal;
+        for (int i = 0; i < _size; i++) _matrix[i * _size + i] += diagonal;
         _elimination.Factor(_matrix);
     }
+
+    private static Span<Vector256<double>> Wide(double[] row) =>
+        MemoryMarshal.Cast<double, Vector256<double>>(row.AsSpan());
 }

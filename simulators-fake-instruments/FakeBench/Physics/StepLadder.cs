@@ -12,32 +12,28 @@ public static class StepLadder
     public const double Smallest = 1e-15;
 
     private const int Octaves = 64;
+    private static readonly double[] Quarters = [1, 1.189207115002721, 1.4142135623730951, 1.681792830507429];
     private static readonly double[] Rungs = Build();
 
     /// <summary>Rounds a step down to a rung; the lowest rung for anything below it.</summary>
     public static double RoundDown(double step)
     {
-        int low = 0;
-        int high = Rungs.Length;
-        while (high - low > 1)
-        {
-            int middle = (low + high) / 2;
-            if (Rungs[middle] <= step) low = middle;
-            else high = middle;
-        }
-
-        return Rungs[low];
+        if (!(step > Smallest)) return Smallest;
+        // The octave by the exponent; a rung's last digits may put the step just below its first one.
+        int rung = Math.Min(Math.ILogB(step / Smallest), Octaves - 1) * Quarters.Length;
+        while (rung > 0 && Rungs[rung] > step) rung--;
+        while (rung + 1 < Rungs.Length && Rungs[rung + 1] <= step) rung++;
+        return Rungs[rung];
     }
 
     private static double[] Build()
     {
-        double[] quarters = [1, 1.189207115002721, 1.4142135623730951, 1.681792830507429];
-        var rungs = new double[Octaves * quarters.Length];
+        var rungs = new double[Octaves * Quarters.Length];
         double octave = Smallest;
         for (int i = 0; i < rungs.Length; i++)
         {
-            rungs[i] = octave * quarters[i % quarters.Length];
-            if (i % quarters.Length == quarters.Length - 1) octave *= 2;
+            rungs[i] = octave * Quarters[i % Quarters.Length];
+            if (i % Quarters.Length == Quarters.Length - 1) octave *= 2;
         }
 
         return rungs;

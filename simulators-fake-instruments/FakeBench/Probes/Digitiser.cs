@@ -22,6 +22,19 @@ public sealed record Digitiser(int Bits, double Span, double Centre)
         return (short)Math.Clamp(code, Lowest, Highest);
     }
 
+    /// <summary>The nearest code of each value, or the rail.</summary>
+    /// <param name="values">V or A.</param>
+    /// <param name="codes">Receives the codes; as long as the values.</param>
+    public void Code(ReadOnlySpan<double> values, Span<short> codes)
+    {
+        double step = Step, lowest = Lowest, highest = Highest;
+        for (int i = 0; i < values.Length; i++)
+        {
+            double code = Math.Floor((values[i] - Centre) / step + 0.5);
+            codes[i] = (short)(int)Math.Min(Math.Max(code, lowest), highest);
+        }
+    }
+
     /// <summary>The value that a code stands for, V or A.</summary>
     public double Value(short code) => Centre + code * Step;
 }

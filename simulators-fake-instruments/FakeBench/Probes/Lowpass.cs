@@ -1,3 +1,6 @@
+using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
+
 namespace FakeBench.Probes;
 
 /// <summary>Delay and one-pole low pass of a uniformly sampled signal, both exact for a cubic through four
@@ -21,18 +24,23 @@ public static class Lowpass
         int shift = (int)Math.Clamp(floor, -samples.Length - 4, samples.Length + 4);
         double a = -s * (s - 1) * (s - 2) / 6, b = (s + 1) * (s - 1) * (s - 2) / 2;
         double c = -(s + 1) * s * (s - 2) / 2, d = (s + 1) * s * (s - 1) / 6;
-        for (int i = 0; i < result.Length; i++)
+        int first = Math.Clamp(1 - shift, 0, result.Length);
+        int inside = Math.Max(0, Math.Min(result.Length, samples.Length - 2 - shift) - first);
+        var to = Wide(result.Slice(first, inside));
+        if (to.Length > 0)
         {
-            int at = i + shift;
-            if (at >= 1 && at + 2 < samples.Length)
-            {
-                result[i] = a * samples[at - 1] + b * samples[at] + c * samples[at + 1] + d * samples[at + 2];
-                continue;
-            }
-
-            result[i] = a * Held(samples, at - 1) + b * Held(samples, at)
-                + c * Held(samples, at + 1) + d * Held(samples, at + 2);
+            var before = samples[(first + shift - 1)..];
+            ReadOnlySpan<Vector256<double>> y0 = Wide(before), y1 = Wide(before[1..]);
+            ReadOnlySpan<Vector256<double>> y2 = Wide(before[2..]), y3 = Wide(before[3..]);
+            for (int k = 0; k < to.Length; k++) to[k] = a * y0[k] + b * y1[k] + c * y2[k] + d * y3[k];
         }
+
+        int done = first + Vector256<double>.Count * to.Length;
+        for (int i = 0; i < first; i++) result[i] = AtEnds(samples, i + shift);
+        for (int i = done; i < result.Length; i++) result[i] = AtEnds(samples, i + shift);
+
+        double AtEnds(ReadOnlySpan<double> y, int at) =>
+            a * Held(y, at - 1) + b * Held(y, at) + c * Held(y, at + 1) + d * Held(y, at + 2);
     }
 
     /// <summary>Filters in place; the signal was at its first value for ever before.</summary>
@@ -47,7 +55,8 @@ public static class Lowpass
         {
             double next = samples[i + 1];
             double later = i + 2 < samples.Length ? samples[i + 2] : next;
-            output = keep * output + w0 * before + w1 * now + w2 * next + w3 * later;
+            // One fused operation is all that waits for the sample before.
+            output = Math.FusedMultiplyAdd(keep, output, w0 * before + w1 * now + w2 * next + w3 * later);
             (before, now) = (now, next);
             samples[i + 1] = output;
         }
@@ -83,4 +92,10 @@ public static class Lowpass
     }
 
     private static double Held(ReadOnlySpan<double> samples, int at) => samples[Math.Clamp(at, 0, samples.Length - 1)];
+
+    private static Span<Vector256<double>> Wide(Span<double> row) =>
+        MemoryMarshal.Cast<double, Vector256<double>>(row);
+
+    private static ReadOnlySpan<Vector256<double>> Wide(ReadOnlySpan<double> row) =>
+        MemoryMarshal.Cast<double, Vector256<double>>(row);
 }

@@ -1,3 +1,4 @@
+using System.Buffers;
 using FakeBench.Physics;
 
 namespace FakeBench.Probes;
@@ -20,14 +21,23 @@ public static class Recorder
         ArgumentNullException.ThrowIfNull(train);
         ArgumentNullException.ThrowIfNull(probe);
         ArgumentNullException.ThrowIfNull(digitiser);
-        var values = new double[train.Points];
-        Lowpass.Delay(train[probe.Signal], (probe.Skew + jitter) / train.Interval, values);
-        AddSlope(values, probe.Lead / train.Interval);
-        Lowpass.Filter(values, 2 * Math.PI * probe.Bandwidth * train.Interval);
-        for (int i = 0; i < values.Length; i++) values[i] = probe.Gain * values[i] + probe.Offset;
-        GaussianNoise.Add(values, probe.Noise, noise);
-        var codes = new short[values.Length];
-        for (int i = 0; i < codes.Length; i++) codes[i] = digitiser.Code(values[i]);
+        var codes = GC.AllocateUninitializedArray<short>(train.Points);
+        double[] rented = ArrayPool<double>.Shared.Rent(train.Points);
+        try
+        {
+            var values = rented.AsSpan(0, train.Points);
+            Lowpass.Delay(train[probe.Signal], (probe.Skew + jitter) / train.Interval, values);
+            AddSlope(values, probe.Lead / train.Interval);
+            Lowpass.Filter(values, 2 * Math.PI * probe.Bandwidth * train.Interval);
+            for (int i = 0; i < values.Length; i++) values[i] = probe.Gain * values[i] + probe.Offset;
+            GaussianNoise.Add(values, probe.Noise, noise);
+            digitiser.Code(values, codes);
+        }
+        finally
+        {
+            ArrayPool<double>.Shared.Return(rented);
+        }
+
         return codes;
     }
 

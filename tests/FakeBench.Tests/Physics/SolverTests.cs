@@ -65,6 +65,29 @@ public sealed class SolverTests
         });
 
     [Fact]
+    public void A_state_that_turns_ends_the_step_and_is_followed_by_the_other_equations()
+    {
+        // y' = -1 while y > 0 and -3 below: from 0.25 it passes 0 at t = 0.25, and is -2.25 at t = 1.
+        var solver = new Rodas4(new Bent(), 1e-3) { NextStep = 1 };
+        solver.State[0] = 0.25;
+        solver.Advance(1);
+        Assert.Equal(0.25, solver.Time, 1e-9);
+        while (solver.Time < 1) solver.Advance(1);
+
+        Assert.Equal(-2.25, solver.State[0], 1e-9);
+        Assert.Equal(2, solver.Accepted);
+    }
+
+    [Fact]
+    public void Wright_omega_solves_its_equation_everywhere() =>
+        Gen.Double[-60, 600].Sample(z =>
+        {
+            // w + ln w has the slope 1 + 1/w.
+            double w = WrightOmega.Of(z);
+            return Math.Abs(w + Math.Log(w) - z) < 1e-8 * (1 + w) + 1e-15 * Math.Abs(z);
+        }, iter: 20_000);
+
+    [Fact]
     public void Step_ladder_has_four_rungs_an_octave_and_never_rounds_up() =>
         Gen.Double[-14, -6].Sample(power =>
         {
@@ -125,6 +148,28 @@ public sealed class SolverTests
             Evaluate(time, y, dy);
             (jacobian[0], jacobian[1], jacobian[2], jacobian[3]) = (-y[1], -y[0], 2 * y[0], -time);
             (timeDerivative[0], timeDerivative[1]) = (Math.Cos(time), -y[1]);
+        }
+    }
+
+    private sealed class Bent : IOdeSystem
+    {
+        private double _rate;
+
+        public int Size => 1;
+
+        public int Turning => 0;
+
+        public SparseElimination Elimination { get; } = new([true], 1);
+
+        public ReadOnlySpan<double> Scale => new double[] { 1 };
+
+        public void Evaluate(double time, ReadOnlySpan<double> y, Span<double> dy) => dy[0] = _rate;
+
+        public void Linearise(double time, ReadOnlySpan<double> y, Span<double> dy, Span<double> jacobian,
+            Span<double> timeDerivative)
+        {
+            _rate = y[0] > 0 ? -1 : -3;
+            Evaluate(time, y, dy);
         }
     }
 

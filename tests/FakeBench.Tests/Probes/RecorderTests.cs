@@ -91,6 +91,9 @@ public sealed class RecorderTests
         {
             var digitiser = new Digitiser(fine ? 12 : 8, 800, 10);
             var (low, high) = (digitiser.Code(Math.Min(a, b)), digitiser.Code(Math.Max(a, b)));
-            return low <= high && low >= digitiser.Lowest && high <= digitiser.Highest;
+            var codes = new short[2];
+            digitiser.Code([a, b], codes);
+            bool same = codes.Order().SequenceEqual([low, high]);
+            return same && low <= high && low >= digitiser.Lowest && high <= digitiser.Highest;
         });
 }
