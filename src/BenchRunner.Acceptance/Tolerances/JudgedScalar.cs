@@ -8,5 +8,5 @@ namespace BenchRunner.Acceptance.Tolerances;
 public sealed record JudgedScalar(ScalarComparison Scalar, double Within)
 {
     /// <summary>Whether it is inside; without an error it is not: what was not evaluated is no pass.</summary>
-    public bool IsInside => Scalar.RelativeError is { } error && Math.Abs(error) <= 100 * Within;
+    public bool IsInside => Scalar.RelativeError is { } error && Math.Abs(error) <= Within;
 }

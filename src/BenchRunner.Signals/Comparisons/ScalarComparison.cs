@@ -8,7 +8,7 @@ namespace BenchRunner.Signals.Comparisons;
 /// <param name="Unit">SI unit; <c>1</c> for a ratio.</param>
 /// <param name="Reference">Value of the reference; null where it could not be formed.</param>
 /// <param name="Measured">Value of the measured waveform; null where it could not be formed.</param>
-/// <param name="RelativeError">100 · (measured − reference)/reference, %; null where there is none.</param>
+/// <param name="RelativeError">(measured − reference)/reference, 1; null where there is none.</param>
 /// <param name="Reason">Why there is no error; null where there is one.</param>
 public sealed record ScalarComparison(
     string Quantity,
@@ -27,7 +27,7 @@ public sealed record ScalarComparison(
         ArgumentNullException.ThrowIfNull(measured);
         ArgumentNullException.ThrowIfNull(reference);
         bool isSame = measured.Definition == reference.Definition;
-        double? error = 100 * (measured.Value - reference.Value) / reference.Value;
+        double? error = (measured.Value - reference.Value) / reference.Value;
         string? reason =
             !isSame ? $"formed by {measured.Definition} here and by {reference.Definition} in the reference"
             : measured.Reason is { } here ? $"measured: {here}"

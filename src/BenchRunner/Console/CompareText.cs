@@ -51,7 +51,7 @@ internal static class CompareText
         one.Definition,
         one.Reference is { } reference ? SiText.Format(reference, one.Unit) : "no value",
         one.Measured is { } measured ? SiText.Format(measured, one.Unit) : "no value",
-        one.RelativeError is { } error ? SiText.Percent(error / 100) : "none",
+        one.RelativeError is { } error ? SiText.Percent(error) : "none",
         within,
         word.Length > 0 && one.Reason is not null ? $"{word}, not evaluated: {one.Reason}"
             : word + (one.Reason ?? ""),
@@ -88,7 +88,7 @@ internal static class CompareText
     private static string Measure(double value) => $"{SiText.Format(value, "1", 3)} {FeatureSelective.Word(value)}";
 
     private static string Outside(JudgedScalar one) => one.Scalar.RelativeError is { } error
-        ? $"{one.Scalar.Quantity} ({SiText.Percent(error / 100)}, within {SiText.Percent(one.Within)})"
+        ? $"{one.Scalar.Quantity} ({SiText.Percent(error)}, within {SiText.Percent(one.Within)})"
         : $"{one.Scalar.Quantity} (not evaluated: {one.Scalar.Reason})";
 
     private static IEnumerable<string> Table(List<string[]> rows)

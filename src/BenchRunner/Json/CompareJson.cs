@@ -6,8 +6,7 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Json;
 
-/// <summary>Two waveform files compared, as JSON; errors of quantities are in percent of the reference, all else in
-/// SI.</summary>
+/// <summary>Two waveform files compared, as JSON, all in SI: an error of 1 % is 0.01.</summary>
 internal static class CompareJson
 {
     public static void Write(ComparedFiles compared)
@@ -69,7 +68,7 @@ internal static class CompareJson
         ["measured"] = JsonOutput.Number(scalar.Measured),
         ["relative_error"] = JsonOutput.Number(scalar.RelativeError),
         ["reason"] = scalar.Reason,
-        ["within"] = JsonOutput.Number(100 * judged?.Within),
+        ["within"] = JsonOutput.Number(judged?.Within),
         ["inside"] = judged?.IsInside,
     };
 

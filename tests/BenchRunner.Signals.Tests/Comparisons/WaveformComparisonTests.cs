@@ -51,7 +51,7 @@ public sealed class WaveformComparisonTests
         Assert.Equal("Excellent", FeatureSelective.Word(whole.FeatureSelective!.Value.Amplitude));
         Assert.All(
             result.Others.Where(one => one.Quantity.StartsWith("vds_high_peak", StringComparison.Ordinal)),
-            one => Assert.InRange(one.RelativeError!.Value, -4, 4));
+            one => Assert.InRange(one.RelativeError!.Value, -0.04, 0.04));
         Assert.Contains(
             result.Others, one => one is { Quantity: "trr", Definition: "trr/chord-90-25@id_low-iL" });
     }
