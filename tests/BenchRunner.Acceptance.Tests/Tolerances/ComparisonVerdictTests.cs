@@ -13,10 +13,10 @@ public sealed class ComparisonVerdictTests
         new SourceFile("tolerances", "ours.yaml", []));
 
     [Theory]
-    [InlineData(0.9, -1.9, true)]
-    [InlineData(-1.0, 2.0, true)]
-    [InlineData(1.1, 0.0, false)]
-    [InlineData(0.0, -2.1, false)]
+    [InlineData(0.009, -0.019, true)]
+    [InlineData(-0.01, 0.02, true)]
+    [InlineData(0.011, 0.0, false)]
+    [InlineData(0.0, -0.021, false)]
     public void Every_one_must_be_inside_either_way(double trr, double irm, bool isInside) =>
         Assert.Equal(isInside, Judge(trr, irm).IsInside);
 
@@ -43,5 +43,5 @@ public sealed class ComparisonVerdictTests
         new([], null, null, null, null, named, []);
 
     private static ScalarComparison Scalar(string quantity, double? error) => new(
-        quantity, quantity + "/rule", "1", 1, 1 + (error / 100), error, error is null ? "no level" : null);
+        quantity, quantity + "/rule", "1", 1, 1 + error, error, error is null ? "no level" : null);
 }
