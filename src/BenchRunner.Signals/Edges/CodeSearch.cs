@@ -28,7 +28,7 @@ internal static class CodeSearch
         int wall = Wall(samples.Gain, samples.Offset, level, upwards, highCodes);
         int found = wall is < short.MinValue or > short.MaxValue
             ? (highCodes == wall < short.MinValue ? 0 : -1)
-            : highCodes ? FirstAtLeast(codes, (short)wall) : FirstAtMost(codes, (short)wall);
+            : First(codes, (short)wall, turned: !highCodes);
         return found < 0 ? last + 1 : from + found;
     }
 
@@ -54,17 +54,22 @@ internal static class CodeSearch
         bool IsBeyond(int code) => upwards ? (code * gain) + offset >= level : (code * gain) + offset <= level;
     }
 
+    /// <summary>The first code at or above a wall; at or below it, where every bit is turned (~c falls as c rises).
+    /// </summary>
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    private static int FirstAtLeast(ReadOnlySpan<short> codes, short wall)
+    private static int First(ReadOnlySpan<short> codes, short wall, bool turned)
     {
+        short turn = (short)(turned ? -1 : 0);
+        wall ^= turn;
         Vector256<short> walls = Vector256.Create(wall);
+        Vector256<short> turns = Vector256.Create(turn);
         ref short source = ref MemoryMarshal.GetReference(codes);
         int width = Vector256<short>.Count, i = 0;
         for (; i <= codes.Length - (2 * width); i += 2 * width)
         {
-            Vector256<short> higher = Vector256.Max(
-                Vector256.LoadUnsafe(ref source, (nuint)i), Vector256.LoadUnsafe(ref source, (nuint)(i + width)));
-            if (Vector256.GreaterThanOrEqualAny(higher, walls))
+            Vector256<short> first = Vector256.LoadUnsafe(ref source, (nuint)i) ^ turns;
+            Vector256<short> second = Vector256.LoadUnsafe(ref source, (nuint)(i + width)) ^ turns;
+            if (Vector256.GreaterThanOrEqualAny(Vector256.Max(first, second), walls))
             {
                 break;
             }
@@ -72,34 +77,7 @@ internal static class CodeSearch
 
         for (; i < codes.Length; i++)
         {
-            if (codes[i] >= wall)
-            {
-                return i;
-            }
-        }
-
-        return -1;
-    }
-
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    private static int FirstAtMost(ReadOnlySpan<short> codes, short wall)
-    {
-        Vector256<short> walls = Vector256.Create(wall);
-        ref short source = ref MemoryMarshal.GetReference(codes);
-        int width = Vector256<short>.Count, i = 0;
-        for (; i <= codes.Length - (2 * width); i += 2 * width)
-        {
-            Vector256<short> lower = Vector256.Min(
-                Vector256.LoadUnsafe(ref source, (nuint)i), Vector256.LoadUnsafe(ref source, (nuint)(i + width)));
-            if (Vector256.LessThanOrEqualAny(lower, walls))
-            {
-                break;
-            }
-        }
-
-        for (; i < codes.Length; i++)
-        {
-            if (codes[i] <= wall)
+            if ((codes[i] ^ turn) >= wall)
             {
                 return i;
             }
