@@ -223,7 +223,13 @@ class Capture:
         if stop - begin < 2 * period:
             return None
         modes = ring.fit(x[math.ceil(begin):int(stop) + 1], self.dt)
-        return None if modes is None else (*modes[0], extremum, period, begin, stop)
+        if modes is None:
+            return None
+        frequency, damping, amplitude = modes[0]
+        decay = 2 * math.pi * frequency * damping / math.sqrt(1 - damping * damping)
+        # The fit counts from its first sample, the quantity from the window's start.
+        amplitude *= math.exp(decay * (math.ceil(begin) - begin) * self.dt)
+        return frequency, damping, amplitude, extremum, period, begin, stop
 
     def rings(self):
         v = self.values
