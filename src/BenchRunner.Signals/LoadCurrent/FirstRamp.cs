@@ -1,4 +1,3 @@
-using BenchRunner.Signals.Levels;
 using BenchRunner.Signals.Quantities;
 using BenchRunner.Signals.Traces;
 
@@ -96,28 +95,13 @@ public sealed class FirstRamp
         {
             int start = first + (int)((long)count * part / parts);
             int end = first + (int)((long)count * (part + 1) / parts);
-            double residual = end > start
-                ? Mean(current.Slice(start, end - start)) - line.At(start + ((end - start - 1) / 2.0))
-                : 0;
-            largest = Math.Max(largest, Math.Abs(residual));
+            // A line of the same slope through the part lies off by the part's mean residual.
+            if (Line.Fit(current, start, end - 1, line.Slope) is { } mean)
+            {
+                largest = Math.Max(largest, Math.Abs(mean.Value - line.At(mean.Centre)));
+            }
         }
 
         return largest;
-    }
-
-    private static double Mean(Samples samples)
-    {
-        if (samples.HasCodes)
-        {
-            return samples.Offset + (samples.Gain * ((double)CodeSums.Sum(samples.Codes) / samples.Length));
-        }
-
-        double sum = 0;
-        foreach (double sample in samples.Values)
-        {
-            sum += sample - samples[0];
-        }
-
-        return samples[0] + (sum / samples.Length);
     }
 }

@@ -1,5 +1,6 @@
 using System.Text.Json;
 using BenchRunner.Signals.Analysis;
+using BenchRunner.Signals.Corrections;
 using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Signals.Tests.Support;
@@ -8,6 +9,9 @@ namespace BenchRunner.Signals.Tests.Support;
 /// tests/reference/waveforms/README.md with a skew of one channel and a seed of one's own.</summary>
 internal sealed class SkewDraw
 {
+    /// <summary>Estimators were judged on other seeds than those from here on.</summary>
+    public const int FirstSeed = 1001;
+
     private readonly Waveform _clean;
     private readonly JsonDocument _chain;
     private readonly Channel _skewed;
@@ -46,6 +50,35 @@ internal sealed class SkewDraw
 
         return new Waveform(_clean.TimeOrigin, Interval, recorded);
     }
+
+    /// <summary>Holds an estimator to its own uncertainty: the truth within twice of it in 95 % of 200 draws, a draw
+    /// without an answer counting as outside.</summary>
+    /// <param name="estimate">The estimator.</param>
+    /// <param name="samples">The true skew, in samples.</param>
+    /// <param name="output">Receives the figures.</param>
+    public void Holds(
+        Func<Waveform, AnalysisSettings, SkewEstimate> estimate, double samples, ITestOutputHelper output)
+    {
+        const int draws = 200;
+        double truth = samples * Interval;
+        int held = 0, none = 0;
+        for (int seed = FirstSeed; seed < FirstSeed + draws; seed++)
+        {
+            SkewEstimate found = estimate(Of(seed, truth), Settings);
+            none += found.Skew is null ? 1 : 0;
+            held += Math.Abs((found.Skew - truth) / found.StandardUncertainty ?? 99) <= 2 ? 1 : 0;
+        }
+
+        string figures = $"seeds from {FirstSeed}: {held} of {draws} held, {none} without an answer";
+        output.WriteLine(figures);
+        Assert.True(held >= 0.95 * draws, figures);
+    }
+
+    /// <summary>The front of some channels of a waveform.</summary>
+    public static Waveform Only(Waveform waveform, int count, params Channel[] channels) => new(
+        waveform.TimeOrigin,
+        waveform.SampleInterval,
+        channels.ToDictionary(channel => channel, channel => waveform[channel][..count].ToArray()));
 
     private Dictionary<Channel, double[]> Late(double skew)
     {
