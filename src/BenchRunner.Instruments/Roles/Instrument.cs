@@ -48,8 +48,7 @@ internal sealed class Instrument : IDisposable
                     + $"dialect");
         }
 
-        var session = await ScpiSession.Open(
-            role, connection.Address, connection.Options, connection.Time, connection.Log, cancel);
+        var session = await ScpiSession.Open(role, connection, cancel);
         try
         {
             var instrument = new Instrument(role, dialect, session, connection.Time, connection.Log);

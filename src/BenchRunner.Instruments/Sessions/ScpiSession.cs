@@ -48,21 +48,17 @@ public sealed class ScpiSession : IDisposable
     /// <param name="log">Takes what happens on the way.</param>
     /// <param name="cancel">Ends the attempt.</param>
     /// <exception cref="LinkException">Not reachable, or what answers is no SCPI instrument.</exception>
-    public static async Task<ScpiSession> Open(
+    public static Task<ScpiSession> Open(
         string role,
         LinkAddress address,
         SessionOptions options,
         TimeProvider time,
         IInstrumentLog log,
-        CancellationToken cancel)
-    {
-        ArgumentNullException.ThrowIfNull(address);
-        ArgumentNullException.ThrowIfNull(options);
-        ArgumentNullException.ThrowIfNull(time);
-        ArgumentNullException.ThrowIfNull(log);
-        var wires = await WireKeeper.Open(role, address, options, time, log, cancel);
-        return new ScpiSession(role, wires, options, time);
-    }
+        CancellationToken cancel) => Open(role, address, options, time, log, InstrumentConnection.Wire, cancel);
+
+    /// <summary>Connects as a role's connection says.</summary>
+    internal static Task<ScpiSession> Open(string role, InstrumentConnection to, CancellationToken cancel) =>
+        Open(role, to.Address, to.Options, to.Time, to.Log, to.Opener, cancel);
 
     /// <summary>Asks a question that may be asked again, and reads its reply, one line.</summary>
     /// <typeparam name="T">The answer.</typeparam>
@@ -172,6 +168,24 @@ public sealed class ScpiSession : IDisposable
 
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _wires.Dispose();
+
+    private static async Task<ScpiSession> Open(
+        string role,
+        LinkAddress address,
+        SessionOptions options,
+        TimeProvider time,
+        IInstrumentLog log,
+        LinkOpener opener,
+        CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(address);
+        ArgumentNullException.ThrowIfNull(options);
+        ArgumentNullException.ThrowIfNull(time);
+        ArgumentNullException.ThrowIfNull(log);
+        ArgumentNullException.ThrowIfNull(opener);
+        var wires = await WireKeeper.Open(role, address, options, time, log, opener, cancel);
+        return new ScpiSession(role, wires, options, time);
+    }
 
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)

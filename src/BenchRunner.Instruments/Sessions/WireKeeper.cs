@@ -14,18 +14,22 @@ internal sealed class WireKeeper : IDisposable
     private readonly SessionOptions _options;
     private readonly TimeProvider _time;
     private readonly IInstrumentLog _log;
+    private readonly LinkOpener _opener;
     private readonly ResiliencePipeline _connecting;
     private volatile ScpiWire _wire;
     private volatile int _connections;
     private bool _disposed;
 
-    private WireKeeper(string role, LinkAddress address, SessionOptions options, TimeProvider time, IInstrumentLog log)
+    private WireKeeper(
+        string role, LinkAddress address, SessionOptions options, TimeProvider time, IInstrumentLog log,
+        LinkOpener opener)
     {
         _role = role;
         _address = address;
         _options = options;
         _time = time;
         _log = log;
+        _opener = opener;
         _connecting = Repetition.Of(options.ConnectAttempts, options.ConnectPause, time);
 
         // Open fills both before it hands the keeper out.
@@ -52,9 +56,10 @@ internal sealed class WireKeeper : IDisposable
         SessionOptions options,
         TimeProvider time,
         IInstrumentLog log,
+        LinkOpener opener,
         CancellationToken cancel)
     {
-        var keeper = new WireKeeper(role, address, options, time, log);
+        var keeper = new WireKeeper(role, address, options, time, log, opener);
         try
         {
             keeper._wire = await keeper.Connect(cancel);
@@ -117,8 +122,7 @@ internal sealed class WireKeeper : IDisposable
     private async Task<ScpiWire> Connect(CancellationToken cancel)
     {
         var link = await _connecting.ExecuteAsync(
-            async token =>
-                await Links.Link.Open(_address, _options.ConnectWithin, _options.WriteWithin, _time, token), cancel);
+            async token => await _opener(_address, _options, _time, token), cancel);
         _connections++;
         var wire = new ScpiWire(link, _options, _time, Report);
         if (_address.Kind == LinkKind.Serial)

@@ -51,6 +51,7 @@ public sealed class OpenBench : IAsyncDisposable
     /// <param name="dialects">Name to dialect file.</param>
     /// <param name="links">Links that stand in for those of the bench file (a fake bench's); null: none do.</param>
     /// <param name="log">Takes what the links report.</param>
+    /// <param name="opener">Opens the links.</param>
     /// <param name="time">The clock of all deadlines.</param>
     /// <param name="cancel">Ends the attempt.</param>
     /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
@@ -61,6 +62,7 @@ public sealed class OpenBench : IAsyncDisposable
         IReadOnlyDictionary<string, DialectFile> dialects,
         IReadOnlyDictionary<string, string>? links,
         IInstrumentLog log,
+        LinkOpener opener,
         TimeProvider time,
         CancellationToken cancel)
     {
@@ -68,7 +70,7 @@ public sealed class OpenBench : IAsyncDisposable
         try
         {
             await open.Connect(
-                (role, options) => Connection(bench, dialects, links, role, options, log, time), bench, cancel);
+                (role, options) => Connection(bench, dialects, links, role, options, log, opener, time), bench, cancel);
             open.Identify(bench);
             return open;
         }
@@ -97,13 +99,17 @@ public sealed class OpenBench : IAsyncDisposable
         string role,
         SessionOptions options,
         IInstrumentLog log,
+        LinkOpener opener,
         TimeProvider time)
     {
         InstrumentSetup setup = bench.Roles[role];
         string link = links is null ? setup.Link : links.GetValueOrDefault(role)
             ?? throw new BenchException($"the fake bench offers no {role}");
         return new InstrumentConnection(
-            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), options, time, log);
+            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), options, time, log)
+        {
+            Opener = opener,
+        };
     }
 
     private async Task Connect(

@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Plans;
 using BenchRunner.Evidence.Stores;
 using BenchRunner.Instruments.Roles;
+using BenchRunner.Instruments.Sessions;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Sinks;
@@ -41,6 +42,9 @@ public sealed class RunSession
 
     /// <summary>What quantities and decisions are formed by; a changed result needs a new one.</summary>
     public static string Algorithm => "1";
+
+    /// <summary>Opens every link to an instrument.</summary>
+    public LinkOpener Opener { get; init; } = InstrumentConnection.Wire;
 
     private Plan Plan => _request.Plan;
 
@@ -88,7 +92,7 @@ public sealed class RunSession
         await using FakeBenchProcess? fake = IsNewEachTime
             ? await FakeBenchProcess.Start(Bench, first, _request.Companion, _time, operatorStop) : null;
         await using OpenBench open = await OpenBench.Open(
-            Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), _time, operatorStop);
+            Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), Opener, _time, operatorStop);
         if (open.IsSimulated && !IsNewEachTime)
         {
             _events.Say(

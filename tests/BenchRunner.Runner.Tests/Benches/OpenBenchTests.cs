@@ -1,4 +1,5 @@
 using BenchRunner.Acceptance.Benches;
+using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Tests.Workplaces;
 
@@ -97,5 +98,7 @@ public sealed class OpenBenchTests : IDisposable
         FakeBenchProcess.Start(bench, Workplace.Device, null, TimeProvider.System, Cancel);
 
     private static Task<OpenBench> Open(Bench bench, IReadOnlyDictionary<string, string> links) =>
-        OpenBench.Open(bench, Workplace.Dialects(bench), links, new RecordingSink(), TimeProvider.System, Cancel);
+        OpenBench.Open(
+            bench, Workplace.Dialects(bench), links, new RecordingSink(), InstrumentConnection.Wire, TimeProvider.System,
+            Cancel);
 }

@@ -1,5 +1,6 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Exchanges;
 using BenchRunner.Runner.Tests.Workplaces;
@@ -115,7 +116,7 @@ public sealed class ExchangeTests : IDisposable
     }
 
     private Task<OpenBench> Open(Bench bench, FakeBenchProcess fake) =>
-        OpenBench.Open(bench, Workplace.Dialects(bench), fake.Links, _heard, TimeProvider.System, Cancel);
+        OpenBench.Open(bench, Workplace.Dialects(bench), fake.Links, _heard, InstrumentConnection.Wire, TimeProvider.System, Cancel);
 
     /// <summary>The fake bench's hands, watched; one of their moves may be left out.</summary>
     private sealed class Hands(IHands real, Func<Task<bool>> loopClosed) : IHands

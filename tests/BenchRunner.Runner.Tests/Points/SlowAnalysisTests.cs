@@ -3,6 +3,7 @@ using BenchRunner.Acceptance.Events;
 using BenchRunner.Acceptance.Sequences;
 using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Stores;
+using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Points;
@@ -51,7 +52,8 @@ public sealed class SlowAnalysisTests : IDisposable
             bench, Workplace.Device, null, TimeProvider.System, Cancel);
         var events = new EventSource("runner", _heard, _time);
         await using OpenBench open = await OpenBench.Open(
-            bench, request.Dialects, fake.Links, new InstrumentReports(events), TimeProvider.System, Cancel);
+            bench, request.Dialects, fake.Links, new InstrumentReports(events), InstrumentConnection.Wire, TimeProvider.System,
+            Cancel);
         await using var supervisor = new SafetySupervisor(
             open.Safety, bench.Envelope, new Discharge(bench.Bleeder, bench.BusCapacitance), events,
             TimeProvider.System);

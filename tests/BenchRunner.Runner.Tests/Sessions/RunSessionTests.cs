@@ -1,6 +1,7 @@
 using BenchRunner.Acceptance.Benches;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Sequences;
+using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Devices;
@@ -179,7 +180,7 @@ public sealed class RunSessionTests : IDisposable
         Bench bench = _place.OtherBench(instruments.Links);
         var person = new Person("A. Person");
         await using (OpenBench open = await OpenBench.Open(
-            bench, Workplace.Dialects(bench), null, _heard, TimeProvider.System, Cancel))
+            bench, Workplace.Dialects(bench), null, _heard, InstrumentConnection.Wire, TimeProvider.System, Cancel))
         {
             await Stranger.Charges(instruments.Links["supply"], 100);
             await Eventually.True(async () => (await open.Voltmeter.Read(Cancel)).Value > 90, "a charged bus");
