@@ -82,6 +82,9 @@ public sealed record Bench
     /// <summary>The hard ceiling.</summary>
     public required Envelope Envelope { get; init; }
 
+    /// <summary>When the bank counts as down, and how soon silence counts as a fault.</summary>
+    public SafetySettings Safety { get; init; } = SafetySettings.Usual;
+
     /// <summary>Ambient temperature, degC.</summary>
     public required double Ambient { get; init; }
 

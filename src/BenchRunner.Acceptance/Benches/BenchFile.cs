@@ -51,6 +51,7 @@ public static class BenchFile
             Envelope = new Envelope(
                 envelope.Need("voltage"), envelope.Need("current"), envelope.Need("energy"), envelope.Need("pulse"),
                 envelope.Number("temperature")),
+            Safety = Safety(file.Block("safety")),
             Ambient = file.Need("ambient"),
             Cautions = [.. file.Items("cautions").Select(item => (string)item.Content)],
             Keys = file.Places(),
@@ -62,6 +63,13 @@ public static class BenchFile
         block.Whole("seed")!.Value,
         block.Number("pace") ?? 1,
         [.. block.Items("faults").Select(item => (string)item.Content)]);
+
+    private static SafetySettings Safety(Fields block) => new(
+        block.Number("bus-down") ?? SafetySettings.Usual.BusDown,
+        block.Number("energy-down") ?? SafetySettings.Usual.EnergyDown,
+        block.Number("discharge-within") ?? SafetySettings.Usual.DischargeWithin,
+        block.Number("reply-within") ?? SafetySettings.Usual.ReplyWithin,
+        block.Number("guardian-silence") ?? SafetySettings.Usual.GuardianSilence);
 
     private static InstrumentSetup Role(Fields block) => new(
         block.Text("link")!, block.Text("dialect")!, block.Whole("connections") ?? 1, block.Text("at"),

@@ -77,6 +77,26 @@ internal static class BenchKeys
                 "Highest temperature of the plate; needed with a hotplate.", "degC", new Bounds(0, 300), "150 degC")),
         ]);
 
+    private static readonly BlockShape _safety = new(
+        "When the bank counts as down, and how soon silence counts as a fault.",
+        [
+            Optional("bus-down", new QuantityShape(
+                "The bus counts as down below this voltage; 60 V where not stated.",
+                "V", new Bounds(1, SafetySettings.UsualBusDown), "60 V")),
+            Optional("energy-down", new QuantityShape(
+                "The bank counts as down below this energy; 350 mJ where not stated.",
+                "J", new Bounds(1e-6, SafetySettings.UsualEnergyDown), "350 mJ")),
+            Optional("discharge-within", new QuantityShape(
+                "Time in which the bleeder must bring the bank down; 5 s where not stated.",
+                "s", new Bounds(0.1, 60), "5 s")),
+            Optional("reply-within", new QuantityShape(
+                "How long the watch waits for interlock and voltmeter; 350 ms where not stated.",
+                "s", new Bounds(0.05, 2), "350 ms")),
+            Optional("guardian-silence", new QuantityShape(
+                "How long the guardian bears silence of the run; 500 ms where not stated.",
+                "s", new Bounds(0.2, 2), "500 ms")),
+        ]);
+
     /// <summary>The whole file.</summary>
     public static BlockShape Root { get; } = new(
         "Instruments and fixture of one bench.",
@@ -108,6 +128,7 @@ internal static class BenchKeys
             Optional("shunt", Shapes.Shunt),
             Needed("channels", ChannelKeys.OfBench),
             Needed("envelope", _envelope),
+            Optional("safety", _safety),
             Needed("ambient", new QuantityShape("Temperature of the room.", "degC", new Bounds(-40, 60), "23 degC")),
             Optional("cautions", new ListShape(
                 "The lab's own lines, shown with the cautions.",

@@ -5,7 +5,8 @@ using BenchRunner.Signals.Traces;
 
 namespace BenchRunner.Acceptance.Plans;
 
-/// <summary>Why a bench must not run a sequence at all: roles, guardian's reach, voltmeter, load, channels.</summary>
+/// <summary>Why a bench must not run a sequence at all: roles, guardian's reach, voltmeter, bleeder, load,
+/// channels.</summary>
 internal static class BenchRefusals
 {
     private static readonly string[] _roles = ["supply", "pulser", "scope", "voltmeter", "interlock"];
@@ -16,7 +17,7 @@ internal static class BenchRefusals
     /// <param name="bench">The bench.</param>
     /// <param name="points">The points as planned.</param>
     public static IEnumerable<Problem> Of(Sequence sequence, Bench bench, IReadOnlyList<PlannedPoint> points) =>
-        Roles(bench).Concat(Fixture(sequence, bench))
+        Roles(bench).Concat(Bleeder(bench, points)).Concat(Fixture(sequence, bench))
             .Concat(ProbeRefusals.Of(sequence, bench, points));
 
     private static Place Whole(Bench bench) => new(bench.Source.Path, 0, 0);
@@ -48,6 +49,26 @@ internal static class BenchRefusals
                 voltmeter.At is null ? "the voltmeter states no place" : $"the voltmeter is at {voltmeter.At}",
                 "at: bank, the bank's own terminals: only there does it prove that the bank is empty",
                 "connect it there and write at: bank");
+        }
+    }
+
+    /// <summary>A bank that its bleeder cannot bring down in the bench's own time. Judged by the highest voltage of the
+    /// points, not by the envelope's: what is not charged needs no discharge.</summary>
+    private static IEnumerable<Problem> Bleeder(Bench bench, IReadOnlyList<PlannedPoint> points)
+    {
+        double highest = points.Max(point => point.Point.BusVoltage);
+        double down = bench.Safety.DownBelow(bench.BusCapacitance);
+        double takes = bench.Bleeder * bench.BusCapacitance * Math.Log(highest / down);
+        double within = bench.Safety.DischargeWithin;
+        if (takes > within)
+        {
+            yield return new Problem(
+                bench.Keys.GetValueOrDefault("bus.bleeder", Whole(bench)),
+                $"the bleeder brings the bank from {SiText.Format(highest, "V")} to {SiText.Format(down, "V")} in "
+                    + SiText.Format(takes, "s"),
+                $"at most {SiText.Format(within, "s")} (safety: discharge-within)",
+                "fit a bleeder of less resistance; or, where your codes allow it and a durable warning is fixed to the "
+                    + "enclosure, state a longer safety: discharge-within");
         }
     }
 

@@ -28,6 +28,24 @@ public sealed class BenchFileTests
     }
 
     [Fact]
+    public void A_bench_that_states_no_safety_has_the_usual_one_and_a_stricter_one_arrives_in_SI()
+    {
+        Assert.Equal(new SafetySettings(60, 0.35, 5, 0.35, 0.5), Read(Examples.Bench).Safety);
+        Bench strict = Read(Examples.Bench.With(
+            "ambient: 23 degC",
+            "safety: { bus-down: 30 V, energy-down: 20 mJ, discharge-within: 1 s, reply-within: 100 ms, "
+                + "guardian-silence: 300 ms }\nambient: 23 degC"));
+        Assert.Equal(new SafetySettings(30, 0.02, 1, 0.1, 0.3), strict.Safety);
+    }
+
+    [Theory]
+    [InlineData(50e-6, 60)]
+    [InlineData(1e-3, 26.457513)]
+    public void A_bank_is_down_below_voltage_and_energy_both(double capacitance, double below) =>
+        // 350 mJ in 1 mF: V = sqrt(2 * 0.35 J / 1 mF).
+        Assert.Equal(below, SafetySettings.Usual.DownBelow(capacitance), 1e-6);
+
+    [Fact]
     public void The_shipped_channels_are_on_inputs_of_their_own_and_no_uncertainty_is_zero()
     {
         Bench bench = Read(Examples.Bench);

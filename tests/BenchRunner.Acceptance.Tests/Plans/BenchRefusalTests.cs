@@ -33,6 +33,17 @@ public sealed class BenchRefusalTests
     }
 
     [Fact]
+    public void A_bleeder_that_cannot_bring_the_bank_down_in_time_is_refused()
+    {
+        // 50 uF and 60 kOhm from the sequence's 600 V to 60 V: 3 s * ln(10) = 6.908 s.
+        Refused(
+            Shipped.Rated, Shipped.Bench with { Bleeder = 60e3 }, "from 600 V to 60 V in 6.908 s", "at most 5 s");
+        Refused(
+            Shipped.Rated,
+            Shipped.Bench with { Safety = SafetySettings.Usual with { DischargeWithin = 0.5 } }, "in 575.6 ms");
+    }
+
+    [Fact]
     public void A_load_on_the_wrong_rail_is_refused() =>
         Refused(bench => bench with { LoadToPositive = false }, "the low switch fires", "positive rail");
 
