@@ -1,14 +1,15 @@
 namespace BenchRunner.Safety.Guardians;
 
-/// <summary>What a beat tells the guardian.</summary>
+/// <summary>What a heartbeat tells the guardian.</summary>
 public enum BeatKind
 {
-    /// <summary>A complete poll found nothing, and the run's progress is in time.</summary>
+    /// <summary>The watch has made one complete poll that found nothing, and the runner's work is in time.</summary>
     Polled,
 
-    /// <summary>The run is on its way to the safe state; sent each time round while the bus is being proved down.</summary>
+    /// <summary>The runner is on its way to the safe state: the guardian switches off beside it, and lets it live for as long
+    /// as a bank may take to fall, so that it can prove the bank down and seal its evidence.</summary>
     MakingSafe,
 
-    /// <summary>The bus is proved down and the run ends: the guardian may leave.</summary>
+    /// <summary>The bus is proved down and nothing will be energised any more: the guardian may leave.</summary>
     Done,
 }

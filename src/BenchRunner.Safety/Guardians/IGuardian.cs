@@ -1,17 +1,17 @@
 namespace BenchRunner.Safety.Guardians;
 
-/// <summary>The second process that ends the run and makes the bench safe when the run dies or hangs, as the run sees
-/// it.</summary>
-/// <remarks>It acts on end of input, on a beat that is none, and on silence: so whoever beats must be what watches the
-/// bench, never a timer of its own.</remarks>
+/// <summary>The guardian as the runner sees it: a second process that ends the runner and makes the bench safe when heartbeats
+/// stay away.</summary>
+/// <remarks>Without a living guardian nothing is energised: <c>SafetySupervisor</c> grants no permit, and its loss is a trip.</remarks>
 public interface IGuardian
 {
-    /// <summary>Whether it lives and listens: nothing is energised without it.</summary>
+    /// <summary>Whether it said that it is ready and has not been lost since.</summary>
     bool IsAlive { get; }
 
-    /// <summary>Raised once when it is lost, with the reason. From any thread; a handler must not throw.</summary>
+    /// <summary>Raised once, with the reason, when it is lost before it was told <see cref="BeatKind.Done"/>; to whoever
+    /// subscribes after that too, at once.</summary>
     event Action<string>? Lost;
 
-    /// <summary>Sends one beat. Never blocks and never throws: a beat that cannot be sent is a lost guardian.</summary>
+    /// <summary>Tells it how the run stands. Never blocks and never throws; a beat that cannot be delivered is a loss.</summary>
     void Beat(BeatKind kind);
 }
