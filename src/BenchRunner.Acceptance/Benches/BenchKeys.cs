@@ -11,7 +11,9 @@ internal static class BenchKeys
 {
     // The port's size is a rule besides.
     private const string LinkPattern =
-        @"tcp ([A-Za-z0-9.-]{1,150}|\[[0-9A-Fa-f:.]{2,45}\])[: ][0-9]{1,5}|serial [^ ]{1,150}( [1-9][0-9]{1,6})?";
+        @"tcp ([A-Za-z0-9.-]{1,150}|\[[0-9A-Fa-f:.]{2,45}\])[: ][0-9]{1,5}|"
+        + @"hislip ([A-Za-z0-9.-]{1,150}|\[[0-9A-Fa-f:.]{2,45}\])(:[0-9]{1,5})?(/[!-~]{1,256})?|"
+        + "serial [^ ]{1,150}( [1-9][0-9]{1,6})?";
 
     private static readonly BlockShape _fake = new(
         "The fake bench that run starts; left out: instruments that are there.",
@@ -145,7 +147,7 @@ internal static class BenchKeys
                 "How it is reached.",
                 "tcp 192.168.1.20:5025",
                 LinkPattern,
-                "a link, tcp HOST:PORT or serial DEVICE [BAUD]")),
+                "a link, tcp HOST:PORT, hislip HOST[:PORT][/SUBADDRESS] or serial DEVICE [BAUD]")),
             Needed("dialect", new TextShape(
                 "Name of its dialect file, without ending.",
                 dialect,

@@ -8,4 +8,7 @@ public enum LinkKind
 
     /// <summary>A serial line, 8 data bits, no parity, one stop bit.</summary>
     Serial,
+
+    /// <summary>HiSLIP (IVI-6.1): two stream sockets that carry messages; port 4880 is registered.</summary>
+    Hislip,
 }

@@ -23,6 +23,8 @@ public sealed class BlockReader : IDisposable
     private int _length = -1;
     private int _bound;
     private int _due;
+    private bool _marked;
+    private bool _indefinite;
 
     /// <summary>Whether all blocks and their end have come.</summary>
     public bool IsWhole { get; private set; }
@@ -44,13 +46,45 @@ public sealed class BlockReader : IDisposable
     /// <summary>Gets ready for one reply.</summary>
     /// <param name="bound">The longest block that is due, bytes; at most <see cref="BlockHeader.Limit"/>.</param>
     /// <param name="count">How many blocks are due.</param>
-    public void Begin(int bound, int count = 1)
+    /// <param name="marked">Whether the link marks the end of the reply, as <see cref="End"/> says: only then is a block
+    /// of unknown length taken, and no newline asked for after one of a known length.</param>
+    public void Begin(int bound, int count = 1, bool marked = false)
     {
         ArgumentOutOfRangeException.ThrowIfNegative(bound);
         ArgumentOutOfRangeException.ThrowIfGreaterThan(bound, BlockHeader.Limit);
         ArgumentOutOfRangeException.ThrowIfLessThan(count, 1);
         Dispose();
-        (_bound, _due) = (bound, count);
+        (_bound, _due, _marked) = (bound, count, marked);
+    }
+
+    /// <summary>Takes note that the link marked the end of the reply.</summary>
+    /// <exception cref="ReplyException">The reply is not whole.</exception>
+    public void End()
+    {
+        if (IsWhole)
+        {
+            return;
+        }
+
+        if (_length < 0 || _blocks.Count < _due)
+        {
+            throw Missing();
+        }
+
+        var rental = _blocks[^1].Rental;
+        if (_indefinite)
+        {
+            // IEEE 488.2, 8.7.10: the newline belongs to the end, not to the data.
+            _length = _filled > 0 && rental[_filled - 1] == '\n' ? _filled - 1
+                : throw new ReplyException(ReplyFault.Unterminated, rental.AsSpan(0, Math.Min(_filled, 80)));
+            _blocks[^1] = (rental, _length);
+        }
+        else if (_filled != _length)
+        {
+            throw Missing();
+        }
+
+        IsWhole = true;
     }
 
     /// <summary>The bytes of a block, once the reply is whole; valid until the next <see cref="Begin"/> or
@@ -97,12 +131,16 @@ public sealed class BlockReader : IDisposable
         }
 
         _blocks.Clear();
-        (_headFilled, _filled, _length, IsWhole) = (0, 0, -1, false);
+        (_headFilled, _filled, _length, IsWhole, _indefinite) = (0, 0, -1, false, false);
     }
 
     private bool TryTakeHead()
     {
-        if (!BlockHeader.TryRead(_head.AsSpan(0, _headFilled), _bound, out var header))
+        _indefinite = _marked && _head.AsSpan(0, _headFilled).TrimStart(" \t\r"u8).StartsWith("#0"u8);
+        var header = _indefinite
+            ? new BlockHeader(_head.AsSpan().IndexOf((byte)'#') + 2, _bound)
+            : default;
+        if (!_indefinite && !BlockHeader.TryRead(_head.AsSpan(0, _headFilled), _bound, out header))
         {
             return false;
         }
@@ -119,6 +157,12 @@ public sealed class BlockReader : IDisposable
     private bool TryTakeEnd()
     {
         var rental = _blocks[^1].Rental;
+        if (_indefinite)
+        {
+            return _filled <= _length + 1
+                ? false : throw new ReplyException(ReplyFault.TooLong, rental.AsSpan(0, Math.Min(_filled, 80)));
+        }
+
         var tail = rental.AsSpan(_length, Math.Max(_filled - _length, 0));
         if (tail.IsEmpty || (tail[0] == '\r' && tail.Length == 1))
         {

@@ -45,6 +45,7 @@ public sealed class ReplyException(ReplyFault fault, string found)
         ReplyFault.NotAnIdentity => "no identity of maker and model",
         ReplyFault.NotAnErrorEntry => "no entry of an error queue",
         ReplyFault.Echo => "the command itself, echoed",
+        ReplyFault.Interrupted => "broken off by the instrument",
         _ => throw new System.Diagnostics.UnreachableException(),
     };
 }

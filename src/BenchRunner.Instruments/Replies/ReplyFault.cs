@@ -74,4 +74,7 @@ public enum ReplyFault
 
     /// <summary>The command itself came back.</summary>
     Echo,
+
+    /// <summary>The instrument broke the reply off: something else was sent before it was read.</summary>
+    Interrupted,
 }

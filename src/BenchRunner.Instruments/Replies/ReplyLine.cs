@@ -28,20 +28,34 @@ public static class ReplyLine
             return false;
         }
 
+        (reply, consumed) = (WithoutReturns(bytes[..end]), end + 1);
+        return true;
+    }
+
+    /// <summary>A reply that came as one message whose end the link marked, without a newline at its end and carriage
+    /// returns round it. A newline elsewhere stays: no parser takes it.</summary>
+    /// <param name="message">The whole message.</param>
+    public static ReadOnlyMemory<byte> Trim(ReadOnlyMemory<byte> message)
+    {
+        var line = message.Span.EndsWith("\n"u8) ? message[..^1] : message;
+        return line[WithoutReturns(line.Span)];
+    }
+
+    private static Range WithoutReturns(ReadOnlySpan<byte> line)
+    {
         var start = 0;
-        var last = end;
-        while (start < last && bytes[start] == '\r')
+        var last = line.Length;
+        while (start < last && line[start] == '\r')
         {
             start++;
         }
 
-        while (last > start && bytes[last - 1] == '\r')
+        while (last > start && line[last - 1] == '\r')
         {
             last--;
         }
 
-        (reply, consumed) = (start..last, end + 1);
-        return true;
+        return start..last;
     }
 
     private static int QuotedEnd(ReadOnlySpan<byte> bytes)

@@ -4,8 +4,8 @@ using BenchRunner.Instruments.Replies;
 
 namespace BenchRunner.Instruments.Sessions;
 
-/// <summary>Replies cut out of the bytes of a link. Knows what is due, not what was asked. One owner at a
-/// time.</summary>
+/// <summary>Replies cut out of the bytes of a link: by what is due on a stream, by their marked ends where the link
+/// keeps messages. Knows what is due, not what was asked. One owner at a time.</summary>
 internal sealed class ReplyStream(ILink link)
 {
     private readonly byte[] _buffer = new byte[ReplyLine.Limit + 4096];
@@ -23,8 +23,29 @@ internal sealed class ReplyStream(ILink link)
     /// <returns>It, without its end; gone with the next read.</returns>
     /// <exception cref="ReplyException">Too long.</exception>
     /// <exception cref="LinkException">The stream ended or the link failed first.</exception>
+    public ValueTask<ReadOnlyMemory<byte>> ReadLine(CancellationToken token) =>
+        link.KeepsMessages ? ReadMessage(token) : ReadToNewline(token);
+
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    public async ValueTask<ReadOnlyMemory<byte>> ReadLine(CancellationToken token)
+    private async ValueTask<ReadOnlyMemory<byte>> ReadMessage(CancellationToken token)
+    {
+        (_start, _end) = (0, 0);
+        var filled = 0;
+        do
+        {
+            if (filled > ReplyLine.Limit)
+            {
+                throw new ReplyException(ReplyFault.TooLong, _buffer.AsSpan(0, filled));
+            }
+
+            filled += await Receive(_buffer.AsMemory(filled), token);
+        }
+        while (!link.AtEnd);
+        return ReplyLine.Trim(_buffer.AsMemory(0, filled));
+    }
+
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
+    private async ValueTask<ReadOnlyMemory<byte>> ReadToNewline(CancellationToken token)
     {
         Range reply;
         int consumed;
@@ -53,7 +74,7 @@ internal sealed class ReplyStream(ILink link)
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder))]
     public async ValueTask ReadBlock(int bound, Action<int> announced, CancellationToken token)
     {
-        Blocks.Begin(bound);
+        Blocks.Begin(bound, marked: link.KeepsMessages);
         while (!Blocks.IsWhole)
         {
             var headDue = Blocks.Announced is null;
@@ -61,6 +82,20 @@ internal sealed class ReplyStream(ILink link)
             if (headDue && Blocks.Announced is { } length)
             {
                 announced(length);
+            }
+
+            if (link.AtEnd)
+            {
+                Blocks.End();
+            }
+        }
+
+        // What ends a message may come after the newline that ends the reply; nothing else may.
+        while (link.KeepsMessages && !link.AtEnd)
+        {
+            if (await Receive(_buffer, token) is > 0 and var count)
+            {
+                throw new ReplyException(ReplyFault.TrailingData, _buffer.AsSpan(0, count));
             }
         }
     }
@@ -83,7 +118,8 @@ internal sealed class ReplyStream(ILink link)
     /// <returns>Whether it is more than carriage returns.</returns>
     public async ValueTask<bool> HasUnasked(CancellationToken cancel)
     {
-        while (!HoldsReply && link.HasInput)
+        // What nothing had asked for bears another identifier, and a link that keeps messages drops it.
+        while (!link.KeepsMessages && !HoldsReply && link.HasInput)
         {
             _start = 0;
             _end = await Receive(_buffer, cancel);
@@ -96,6 +132,6 @@ internal sealed class ReplyStream(ILink link)
     private async ValueTask<int> Receive(Memory<byte> space, CancellationToken token)
     {
         var count = await link.Read(space, token);
-        return count > 0 ? count : throw new LinkException(link.Name, "the instrument closed the connection");
+        return count > 0 || link.AtEnd ? count : throw new LinkException(link.Name, "the instrument closed the connection");
     }
 }

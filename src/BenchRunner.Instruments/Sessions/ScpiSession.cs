@@ -132,7 +132,7 @@ public sealed class ScpiSession : IDisposable
 
     /// <summary>Sends one command that sets down, at once, even while another exchange waits for its reply.</summary>
     /// <exception cref="LinkException">The link is lost: what the instrument does is unknown.</exception>
-    public void SendNow(string command) => _wires.Current.Send(command);
+    public void SendNow(string command) => _wires.Current.SendDown(command);
 
     /// <summary>Sends commands that set down: at once, and again over a new connection where the link was
     /// lost.</summary>
@@ -265,7 +265,7 @@ public sealed class ScpiSession : IDisposable
     {
         foreach (var command in commands)
         {
-            wire.Send(command);
+            wire.SendDown(command);
         }
     }
 }

@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using System.Runtime.CompilerServices;
 using System.Runtime.ExceptionServices;
 using System.Text;
@@ -13,7 +14,8 @@ namespace BenchRunner.Instruments.Sessions;
 /// before a question goes out and taken back only when its reply, and nothing after it, was read: whatever ends an
 /// exchange in between, time-out, cancellation or nonsense, leaves it standing. (3) With a doubt standing nothing is
 /// asked before a resynchronisation: the late reply would answer the next question. (4) A broken wire stays broken,
-/// with its first reason.
+/// with its first reason. (5) What sets down is sent again after a device clear, which may have dropped it, until the
+/// error queue was read empty behind it.
 /// </remarks>
 internal sealed class ScpiWire : IDisposable
 {
@@ -21,6 +23,7 @@ internal sealed class ScpiWire : IDisposable
     public const string ErrorQuery = "SYSTem:ERRor?";
 
     private const int MostErrors = 64;
+    private static readonly TimeSpan ProbePause = TimeSpan.FromMilliseconds(1);
     private const string OpeningTheLine = "opening the line";
 
     private readonly ILink _link;
@@ -31,7 +34,9 @@ internal sealed class ScpiWire : IDisposable
     private readonly Deadline _deadline;
     private readonly Resynchronisation _resynchronisation;
     private readonly Action<int> _extend;
+    private readonly TimeProvider _time;
     private readonly ProgramMessage _sent = new();
+    private readonly ConcurrentQueue<string> _settingDown = new();
     private volatile bool _errorsUnread;
 
     /// <summary>Takes over a link that was just opened.</summary>
@@ -41,7 +46,12 @@ internal sealed class ScpiWire : IDisposable
     /// <param name="report">Told what happens; from any thread.</param>
     public ScpiWire(ILink link, SessionOptions options, TimeProvider time, Action<InstrumentEventKind, string> report)
     {
-        (_link, _options, _report) = (link, options, report);
+        (_link, _options, _time, _report) = (link, options, time, report);
+        if (link.KeepsMessages)
+        {
+            link.Discarded += what => report(InstrumentEventKind.Discarded, what);
+        }
+
         _trust = new WireTrust(link, options.ReplyWithin, report);
         _replies = new ReplyStream(link);
         _deadline = new Deadline(time);
@@ -60,6 +70,18 @@ internal sealed class ScpiWire : IDisposable
         var length = ProgramMessage.Encode(command, message);
         _errorsUnread = true;
         Write(message[..length]);
+    }
+
+    /// <summary>Sends one message that sets down. From any thread; never waits for an exchange.</summary>
+    /// <inheritdoc cref="Send" path="/exception"/>
+    public void SendDown(string command)
+    {
+        if (_link.KeepsMessages)
+        {
+            _settingDown.Enqueue(command);
+        }
+
+        Send(command);
     }
 
     /// <summary>Ends whatever half message an earlier user left, and notes that its reply may come.</summary>
@@ -94,9 +116,10 @@ internal sealed class ScpiWire : IDisposable
         }
         catch (Exception e)
         {
-            // With its link lost nothing more comes; inside a block no end could be told from data: either way only a
-            // new connection helps, and what is missing says more than how the link ended.
-            if (e is LinkException || (_replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
+            // With its link lost nothing more comes; inside a block on a stream no end could be told from data: either
+            // way only a new connection helps, and what is missing says more than how the link ended.
+            if (e is LinkException
+                || (!_link.KeepsMessages && _replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
             {
                 _trust.Break(new LinkException(
                     _link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
@@ -125,10 +148,31 @@ internal sealed class ScpiWire : IDisposable
         try
         {
             Put(query);
-            Put(ErrorQuery);
-            var line = await _replies.ReadLine(token);
-            var answer = ErrorEntry.IsOne(line.Span) ? null : Encoding.UTF8.GetString(line.Span);
-            var error = ErrorEntry.Parse((answer is null ? line : await _replies.ReadLine(token)).Span);
+            string? answer = null;
+            if (_link.KeepsMessages)
+            {
+                // A second question would make the reply to the first one void; the status byte says what became of it.
+                if (await IsAnswered(token))
+                {
+                    answer = Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span);
+                }
+
+                Put(ErrorQuery);
+            }
+            else
+            {
+                Put(ErrorQuery);
+                var line = await _replies.ReadLine(token);
+                if (ErrorEntry.IsOne(line.Span))
+                {
+                    Finish(query);
+                    return (null, ErrorEntry.Parse(line.Span));
+                }
+
+                answer = Encoding.UTF8.GetString(line.Span);
+            }
+
+            var error = ErrorEntry.Parse((await _replies.ReadLine(token)).Span);
             Finish(query);
             return (answer, error);
         }
@@ -221,14 +265,39 @@ internal sealed class ScpiWire : IDisposable
         }
     }
 
+    /// <summary>Waits until a reply comes or the error queue holds why none does.</summary>
+    private async ValueTask<bool> IsAnswered(CancellationToken cancel)
+    {
+        const byte ErrorQueue = 1 << 2;
+        const byte MessageAvailable = 1 << 4;
+        while (!_link.HasInput)
+        {
+            var status = await _link.ReadStatus(cancel);
+            if ((status & (ErrorQueue | MessageAvailable)) == ErrorQueue && !_link.HasInput)
+            {
+                return false;
+            }
+
+            await Task.Delay(ProbePause, _time, cancel);
+        }
+
+        return true;
+    }
+
     private async ValueTask<IReadOnlyList<ErrorEntry>> EmptyQueue(CancellationToken cancel)
     {
+        var confirmed = _settingDown.Count;
         List<ErrorEntry>? entries = null;
         for (var n = 0; n < MostErrors; n++)
         {
             var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, cancel);
             if (entry.IsNone)
             {
+                while (confirmed-- > 0)
+                {
+                    _settingDown.TryDequeue(out _);
+                }
+
                 return entries ?? (IReadOnlyList<ErrorEntry>)[];
             }
 
@@ -244,6 +313,13 @@ internal sealed class ScpiWire : IDisposable
         var why = _trust.WhyNot;
         try
         {
+            if (_link.KeepsMessages)
+            {
+                await Clear(cancel);
+                _report(InstrumentEventKind.Resynchronised, $"after '{why}'; the device was cleared");
+                return;
+            }
+
             var dropped = await _resynchronisation.Run(Put, cancel);
             _trust.Restore();
             if (dropped > 0 || why != OpeningTheLine)
@@ -260,6 +336,25 @@ internal sealed class ScpiWire : IDisposable
         {
             throw _trust.Break(new LinkException(
                 _link.Name, $"cannot be resynchronised after '{why}': {e.Message}", e));
+        }
+    }
+
+    private async ValueTask Clear(CancellationToken cancel)
+    {
+        var token = _deadline.Start(_options.ReplyWithin, cancel);
+        try
+        {
+            _replies.Drop();
+            await _link.Clear(token);
+            _trust.Restore();
+            foreach (var command in _settingDown.ToArray())
+            {
+                Send(command);
+            }
+        }
+        finally
+        {
+            _deadline.End();
         }
     }
 

@@ -42,4 +42,8 @@ public sealed record SessionOptions
     /// <summary>Whether a broken link is opened again for reading and setting down. Energising is refused ever
     /// after.</summary>
     public bool Reconnect { get; init; } = true;
+
+    /// <summary>The lock taken on a link that has locks (HiSLIP), so that no second controller changes a setting: empty
+    /// for this connection alone, a name shared by all connections that give the same one; null: none.</summary>
+    public string? Lock { get; init; }
 }

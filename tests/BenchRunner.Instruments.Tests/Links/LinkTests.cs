@@ -1,6 +1,7 @@
 using System.Net;
 using System.Net.Sockets;
 using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Sessions;
 using BenchRunner.Instruments.Tests.Scripts;
 
 namespace BenchRunner.Instruments.Tests.Links;
@@ -11,7 +12,11 @@ public class LinkTests
     private readonly CancellationToken _cancel = TestContext.Current.CancellationToken;
 
     private Task<ILink> Open(string address, TimeSpan? writeWithin = null) =>
-        Link.Open(LinkAddress.Parse(address), Long, writeWithin ?? Long, TimeProvider.System, _cancel);
+        Link.Open(
+            LinkAddress.Parse(address),
+            new SessionOptions { ConnectWithin = Long, WriteWithin = writeWithin ?? Long },
+            TimeProvider.System,
+            _cancel);
 
     [Fact]
     public async Task Bytes_go_out_and_come_in_over_a_socket_and_its_end_is_seen()

@@ -1,0 +1,94 @@
+using System.Net.Sockets;
+
+namespace BenchRunner.Instruments.Links;
+
+/// <summary>Connects stream sockets as instruments need them: without delay, with a bound on each write, and with
+/// keep-alive.</summary>
+internal static class StreamSocket
+{
+    // An instrument whose plug was pulled shows on an idle socket only by keep-alive: after 5 s, then 3 probes of 1 s.
+    private const int KeepAliveAfter = 5;
+    private const int KeepAliveEvery = 1;
+    private const int KeepAliveProbes = 3;
+
+    /// <summary>Connects, once.</summary>
+    /// <param name="address">Where the instrument is.</param>
+    /// <param name="writeWithin">How long a write may take.</param>
+    /// <param name="cancel">Ends the attempt.</param>
+    /// <exception cref="LinkException">Refused or unknown.</exception>
+    public static async Task<Socket> Connect(LinkAddress address, TimeSpan writeWithin, CancellationToken cancel)
+    {
+        var client = new TcpClient();
+        try
+        {
+            await client.ConnectAsync(address.Host, address.Number, cancel);
+            var socket = client.Client;
+
+            // Without it a command followed by a query waits for the other side's delayed acknowledgement, 40 ms and
+            // more.
+            socket.NoDelay = true;
+            socket.SendTimeout = (int)writeWithin.TotalMilliseconds;
+            socket.SetSocketOption(SocketOptionLevel.Socket, SocketOptionName.KeepAlive, true);
+            socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveTime, KeepAliveAfter);
+            socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveInterval, KeepAliveEvery);
+            socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveRetryCount, KeepAliveProbes);
+            client.Client = null!;
+            return socket;
+        }
+        catch (SocketException e)
+        {
+            throw new LinkException(
+                address.ToString(),
+                $"cannot connect ({e.SocketErrorCode}); check that the instrument is on and its address right",
+                e);
+        }
+        finally
+        {
+            client.Dispose();
+        }
+    }
+
+    /// <summary>Hands all bytes to the system.</summary>
+    /// <exception cref="SocketException">Lost, or not taken within the socket's bound.</exception>
+    public static void SendAll(Socket socket, ReadOnlySpan<byte> bytes)
+    {
+        while (bytes.Length > 0)
+        {
+            bytes = bytes[socket.Send(bytes)..];
+        }
+    }
+
+    /// <summary>Whether an exception says that a socket is of no more use.</summary>
+    public static bool IsLoss(Exception e) => e is SocketException or ObjectDisposedException;
+
+    /// <summary>What to throw for it.</summary>
+    /// <param name="name">The link as the bench file names it.</param>
+    /// <param name="e">What the system said.</param>
+    public static LinkException Lost(string name, Exception e) => new(
+        name, e is SocketException s ? $"connection lost ({s.SocketErrorCode})" : "connection closed", e);
+
+    /// <summary>Runs what opens a link under one deadline.</summary>
+    /// <typeparam name="T">What is opened.</typeparam>
+    /// <param name="name">The link as the bench file names it.</param>
+    /// <param name="within">The deadline.</param>
+    /// <param name="open">What opens it.</param>
+    /// <param name="time">The clock of the deadline.</param>
+    /// <param name="cancel">Ends the attempt.</param>
+    /// <exception cref="LinkException">No answer in time.</exception>
+    public static async Task<T> Within<T>(
+        string name, TimeSpan within, Func<CancellationToken, Task<T>> open, TimeProvider time,
+        CancellationToken cancel)
+    {
+        using var deadline = new CancellationTokenSource(within, time);
+        using var either = CancellationTokenSource.CreateLinkedTokenSource(deadline.Token, cancel);
+        try
+        {
+            return await open(either.Token);
+        }
+        catch (OperationCanceledException e) when (!cancel.IsCancellationRequested)
+        {
+            throw new LinkException(
+                name, $"no answer within {within.TotalSeconds:0.###} s; check power and address", e);
+        }
+    }
+}
