@@ -21,6 +21,6 @@ public sealed record InstrumentConnection(
         LinkAddress address, SessionOptions options, TimeProvider time, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(options);
-        return Link.Open(address, options.ConnectWithin, options.WriteWithin, time, cancel);
+        return Link.Open(address, options, time, cancel);
     }
 }
