@@ -11,4 +11,8 @@ namespace BenchRunner.Safety;
 /// <param name="Hotplate">Switched off on the way to the safe state; null: none.</param>
 /// <remarks>Where an instrument admits one client, its one connection serves both.</remarks>
 public sealed record SafetyRoles(
-    ISafeable Pulser, ISafeable Supply, IInterlock Interlock, IVoltmeter Voltmeter, ISafeable? Hotplate = null);
+    ISafeable Pulser, ISafeable Supply, IInterlock Interlock, IVoltmeter Voltmeter, ISafeable? Hotplate = null)
+{
+    /// <summary>The same, as far as the safe state needs them: nothing here can energise or fire.</summary>
+    public SafeableRoles Safeable => new(Pulser, Supply, Interlock, Voltmeter, Hotplate);
+}

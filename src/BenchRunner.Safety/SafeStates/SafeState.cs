@@ -10,7 +10,7 @@ namespace BenchRunner.Safety.SafeStates;
 /// own, so that one which does not answer holds up no other; supply off is sent before bleeder on and not waited for.
 /// </remarks>
 public sealed class SafeState(
-    SafetyRoles roles, BusWitness witness, Discharge discharge, EventSource events, TimeProvider time)
+    SafeableRoles roles, BusWitness witness, Discharge discharge, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(20);
 
@@ -21,7 +21,7 @@ public sealed class SafeState(
         var doubts = new List<string>();
         Task<string?> pulser = Try("pulser", roles.Pulser.MakeSafe);
         Task<string?> supply = Try("supply", roles.Supply.MakeSafe);
-        Task<string?> bleeder = Try("interlock", roles.Interlock.MakeSafe);
+        Task<string?> bleeder = Try("interlock", roles.Bleeder.MakeSafe);
         Task<string?> heater = roles.Hotplate is { } plate
             ? Try("hotplate", plate.MakeSafe) : Task.FromResult<string?>(null);
         SafeStateReport proof = await Prove(doubts);

@@ -43,7 +43,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         _time = time;
         _doubt = new Doubt(envelope);
         _watchdog = new Watchdog(roles.Interlock, Witness, _events, time);
-        _safeState = new SafeState(roles, Witness, discharge, events.As("safe-state"), time);
+        _safeState = new SafeState(roles.Safeable, Witness, discharge, events.As("safe-state"), time);
     }
 
     /// <summary>What the voltmeter has shown so far.</summary>

@@ -39,6 +39,30 @@ public sealed class BusWitness
         }
     }
 
+    /// <summary>The highest voltage that was commanded since the last proof, V.</summary>
+    public double HighestCommanded
+    {
+        get
+        {
+            lock (_gate)
+            {
+                return _highestCommanded;
+            }
+        }
+    }
+
+    /// <summary>The highest voltage that the voltmeter has shown since the last proof, V.</summary>
+    public double HighestSeen
+    {
+        get
+        {
+            lock (_gate)
+            {
+                return _highestSeen;
+            }
+        }
+    }
+
     /// <summary>Whether more than the low voltage has been commanded or seen since the last proof.</summary>
     public bool MayBeEnergised
     {
