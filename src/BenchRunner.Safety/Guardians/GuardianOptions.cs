@@ -1,0 +1,12 @@
+namespace BenchRunner.Safety.Guardians;
+
+/// <summary>The guardian's bounds.</summary>
+/// <param name="Silence">How long no beat may come before it acts.</param>
+/// <param name="MakingSafeWithin">How long a runner may be on its way to the safe state before it is ended after all.</param>
+/// <param name="TryFor">How long it tries to prove the bus down before it says that it could not.</param>
+public sealed record GuardianOptions(TimeSpan Silence, TimeSpan MakingSafeWithin, TimeSpan TryFor)
+{
+    /// <summary>How long after silence began to count what has come already is still looked for: a guardian that the machine
+    /// itself held up must not take its own delay for the runner's.</summary>
+    public TimeSpan Grace { get; init; } = TimeSpan.FromMilliseconds(20);
+}
