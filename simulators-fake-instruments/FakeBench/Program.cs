@@ -22,7 +22,9 @@ public static class Program
             --pace X              how much faster charging and bleeding are than in the lab, 1 to 5 (1)
             --bits 8|12           converter of the scope (12)
             --channels A,B,...    channels on the scope's inputs 1, 2, ...
-            --interlock serial|tcp  how the interlock is reached (serial where there are pseudo-terminals)
+            --links tcp|hislip    how the instruments are reached (tcp)
+            --interlock serial|tcp  how the interlock is reached: serial, or like the others (serial where there are
+                                  pseudo-terminals)
             --hotplate            the devices lie on a hotplate
             --ambient DEGC        temperature of the room (23)
             --fault NAME[@WHEN]   a fault; may repeat; WHEN is fire:N, volts:V, seconds:S or block:N

@@ -65,6 +65,7 @@ public static class Arguments
             ? (int)Number(name, value, 8, 12) : throw Wrong(name, value, "8 or 12")
         },
         "--channels" => options with { Channels = Channels(value) },
+        "--links" => options with { Hislip = Either(name, value, "tcp", "hislip") },
         "--interlock" => options with { SerialInterlock = IsSerial(name, value) },
         "--write-bench" => options with { WriteBench = value },
         _ => throw new FormatException($"{name}: no such option; see --help"),

@@ -1,10 +1,11 @@
 using FakeBench.Faults;
 using FakeBench.Fixtures;
+using FakeBench.Hosting.Hislip;
 using FakeBench.Instruments;
 
 namespace FakeBench.Hosting;
 
-/// <summary>A whole bench on its links: over TCP, but the interlock as a serial device where there are any.</summary>
+/// <summary>A whole bench on its links: over raw sockets or HiSLIP, but the interlock as a serial device where there are any.</summary>
 public sealed class BenchServer : IAsyncDisposable
 {
     private const int MostClients = 4;
@@ -24,7 +25,9 @@ public sealed class BenchServer : IAsyncDisposable
         {
             _hosts.Add((panel.Role, panel == panels.Interlock && options.SerialInterlock
                 ? new SerialHost(panel)
-                : new TcpHost(panel, clients, time)));
+                : options.Hislip
+                    ? new HislipHost(panel, new ServerTerms { MostClients = clients }, time)
+                    : new TcpHost(panel, clients, time)));
         }
     }
 

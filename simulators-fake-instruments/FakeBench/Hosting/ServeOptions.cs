@@ -43,6 +43,10 @@ public sealed record ServeOptions
     /// <summary>Whether the interlock is a serial device; otherwise it is served over TCP like the others.</summary>
     public bool SerialInterlock { get; init; } = PseudoTerminal.IsSupported;
 
+    /// <summary>Whether the instruments are served over HiSLIP instead of raw sockets; a serial interlock stays
+    /// one.</summary>
+    public bool Hislip { get; init; }
+
     /// <summary>Whether the devices lie on a hotplate.</summary>
     public bool Hotplate { get; init; }
 

@@ -48,6 +48,27 @@ public abstract class Instrument
         }
     }
 
+    /// <summary>The status byte, as a link reads it that can.</summary>
+    /// <param name="replyWaits">Whether a reply was not read yet.</param>
+    public int Poll(bool replyWaits)
+    {
+        lock (Bench.Gate)
+        {
+            Bench.Advance();
+            Refresh();
+            return Scpi.Status.StatusByte(replyWaits);
+        }
+    }
+
+    /// <summary>Notes that a reply was dropped because a new message came before it was read.</summary>
+    public void Interrupt()
+    {
+        lock (Bench.Gate)
+        {
+            Scpi.Status.Report(-410, null);
+        }
+    }
+
     /// <summary>Takes the conditions over into the status registers.</summary>
     protected virtual void Refresh()
     {

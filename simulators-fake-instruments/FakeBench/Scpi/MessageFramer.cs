@@ -44,6 +44,20 @@ public sealed class MessageFramer
         return whole;
     }
 
+    /// <summary>Takes the end of a message that the link marks (END), which ends it with or without an NL.</summary>
+    /// <returns>The message that became whole so, if one was under way.</returns>
+    public IReadOnlyList<string?> TakeEnd()
+    {
+        if (_message.Length == 0)
+        {
+            return [];
+        }
+
+        string? message = _dropping ? null : _message.ToString();
+        Restart();
+        return [message];
+    }
+
     private void Follow(char c)
     {
         if (_blockLeft > 0)

@@ -106,7 +106,11 @@ public sealed class OpenBench : IAsyncDisposable
         string link = links is null ? setup.Link : links.GetValueOrDefault(role)
             ?? throw new BenchException($"the fake bench offers no {role}");
         return new InstrumentConnection(
-            LinkAddress.Parse(link), dialects[setup.Dialect].ToDialect(), options, time, log)
+            LinkAddress.Parse(link),
+            dialects[setup.Dialect].ToDialect(),
+            options with { Lock = LinkLock.Of(bench, role) },
+            time,
+            log)
         {
             Opener = opener,
         };
