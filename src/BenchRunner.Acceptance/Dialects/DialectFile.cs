@@ -9,4 +9,8 @@ namespace BenchRunner.Acceptance.Dialects;
 /// <param name="Commands">Operation to command; every operation of the role is present, but for optional ones.</param>
 /// <param name="Source">The exact bytes it was read from.</param>
 public sealed record DialectFile(
-    string Name, string Role, string? Identity, IReadOnlyDictionary<string, string> Commands, SourceFile Source);
+    string Name, string Role, string? Identity, IReadOnlyDictionary<string, string> Commands, SourceFile Source)
+{
+    /// <summary>What the instrument does otherwise on the wire than the standard says.</summary>
+    public WireHabits Wire { get; init; } = WireHabits.Standard;
+}

@@ -16,6 +16,7 @@ internal static class DialectKeys
             Key.Needed("role", new WordShape("The role.", [.. RoleOperations.All.Keys])),
             Key.Optional("identity", new ExpressionShape(
                 "Regular expression that the whole answer to *IDN? must match.", "[^,]+,PS-[0-9]+,.*")),
+            Key.Optional("wire", WireKeys.Block),
             Key.Needed("commands", new ChosenShape(
                 "The command of each operation of the role.",
                 "role",

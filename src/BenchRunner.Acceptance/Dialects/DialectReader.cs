@@ -21,7 +21,7 @@ public static class DialectReader
     /// <summary>Reads the bytes of a dialect file.</summary>
     /// <param name="source">The file.</param>
     public static Read<DialectFile> Read(SourceFile source) =>
-        FormatReader.Read(source, DialectKeys.Root, (_, _) => { }, file => Build(file, source));
+        FormatReader.Read(source, DialectKeys.Root, WireKeys.Check, file => Build(file, source));
 
     /// <summary>Reads the dialect that a bench file names for a role.</summary>
     /// <param name="name">The name.</param>
@@ -98,6 +98,9 @@ public static class DialectReader
             file.Text("role")!,
             file.Text("identity"),
             commands.Keys.ToDictionary(key => key, key => commands.Text(key)!),
-            source);
+            source)
+        {
+            Wire = WireKeys.Of(file.Block("wire")),
+        };
     }
 }

@@ -13,14 +13,14 @@ public static class RoleOperations
                 .. Setting("voltage"), .. Setting("current"), .. Setting("protection"),
                 Ask("protection-tripped"),
                 Do("output-on"), Do("output-off"), Ask("read-output"),
-                Ask("measure-voltage"), Ask("measure-current"), Ask("read-condition"),
+                Ask("measure-voltage"), Ask("measure-current"), Ask("read-condition"), .. Checks,
             ],
             ["pulser"] =
             [
                 .. Setting("first-width"), .. Setting("gap"), .. Setting("second-width"),
                 .. Setting("gate-on"), .. Setting("gate-off"),
                 Do("output-on"), Do("output-off"), Ask("read-output"),
-                Do("arm"), Do("fire"), Do("inhibit"), Ask("read-condition"), Ask("read-count"),
+                Do("arm"), Do("fire"), Do("inhibit"), Ask("read-condition"), Ask("read-count"), .. Checks,
             ],
             ["scope"] =
             [
@@ -32,19 +32,25 @@ public static class RoleOperations
                 Do("set-format"), Ask("read-format"), Do("set-byte-order"), Ask("read-byte-order"),
                 Do("arm"), Do("trigger"), Do("abort"), Ask("read-condition"), Ask("read-count"),
                 Ask("read-preamble", ofChannel: true), Ask("read-trace", ofChannel: true),
-                new("degauss", false, false, TakesChannel: true, IsOptional: true),
+                new("degauss", false, false, TakesChannel: true, IsOptional: true), .. Checks,
             ],
-            ["voltmeter"] = [Ask("measure-voltage")],
+            ["voltmeter"] = [Ask("measure-voltage"), .. Checks],
             ["interlock"] =
             [
                 Ask("read-state"), Do("bleeder-on"), Do("bleeder-off"), Ask("read-bleeder"), .. Setting("watchdog"),
+                .. Checks,
             ],
             ["hotplate"] =
             [
                 .. Setting("temperature"), Ask("measure-temperature"),
-                Do("output-on"), Do("output-off"), Ask("read-output"),
+                Do("output-on"), Do("output-off"), Ask("read-output"), .. Checks,
             ],
         };
+
+    /// <summary>What only a check of the bench asks, where the instrument knows it: its self-test, which must energise
+    /// nothing, and whether its front panel is locked.</summary>
+    private static RoleOperation[] Checks =>
+        [new("self-test", true, false, false, IsOptional: true), new("read-lock", true, false, false, IsOptional: true)];
 
     private static RoleOperation Do(string name) => new(name, false, false, false);
 

@@ -25,6 +25,7 @@ public sealed class BlockReader : IDisposable
     private int _due;
     private bool _marked;
     private bool _indefinite;
+    private BlockForm _form = BlockForm.Standard;
 
     /// <summary>Whether all blocks and their end have come.</summary>
     public bool IsWhole { get; private set; }
@@ -48,13 +49,14 @@ public sealed class BlockReader : IDisposable
     /// <param name="count">How many blocks are due.</param>
     /// <param name="marked">Whether the link marks the end of the reply, as <see cref="End"/> says: only then is a block
     /// of unknown length taken, and no newline asked for after one of a known length.</param>
-    public void Begin(int bound, int count = 1, bool marked = false)
+    /// <param name="form">What stands around them; null: by the standard.</param>
+    public void Begin(int bound, int count = 1, bool marked = false, BlockForm? form = null)
     {
         ArgumentOutOfRangeException.ThrowIfNegative(bound);
         ArgumentOutOfRangeException.ThrowIfGreaterThan(bound, BlockHeader.Limit);
         ArgumentOutOfRangeException.ThrowIfLessThan(count, 1);
         Dispose();
-        (_bound, _due, _marked) = (bound, count, marked);
+        (_bound, _due, _marked, _form) = (bound, count, marked, form ?? BlockForm.Standard);
     }
 
     /// <summary>Takes note that the link marked the end of the reply.</summary>
@@ -136,11 +138,17 @@ public sealed class BlockReader : IDisposable
 
     private bool TryTakeHead()
     {
-        _indefinite = _marked && _head.AsSpan(0, _headFilled).TrimStart(" \t\r"u8).StartsWith("#0"u8);
-        var header = _indefinite
-            ? new BlockHeader(_head.AsSpan().IndexOf((byte)'#') + 2, _bound)
-            : default;
-        if (!_indefinite && !BlockHeader.TryRead(_head.AsSpan(0, _headFilled), _bound, out header))
+        var head = _head.AsSpan(0, _headFilled);
+        var before = 0;
+        if (_blocks.Count == 0 && !_form.IsBegun(head, out before))
+        {
+            return false;
+        }
+
+        head = head[before..];
+        _indefinite = _marked && head.TrimStart(" \t\r"u8).StartsWith("#0"u8);
+        var header = _indefinite ? new BlockHeader(head.IndexOf((byte)'#') + 2, _bound) : default;
+        if (!_indefinite && !BlockHeader.TryRead(head, _bound, out header))
         {
             return false;
         }
@@ -148,9 +156,10 @@ public sealed class BlockReader : IDisposable
         var rental = ArrayPool<byte>.Shared.Rent(header.Length + Ending);
         _blocks.Add((rental, header.Length));
         _length = header.Length;
-        _filled = Math.Min(_headFilled - header.Start, header.Length + Ending);
-        _head.AsSpan(header.Start, _filled).CopyTo(rental);
-        Keep(_head.AsSpan(header.Start + _filled, _headFilled - header.Start - _filled));
+        var start = before + header.Start;
+        _filled = Math.Min(_headFilled - start, header.Length + Ending);
+        _head.AsSpan(start, _filled).CopyTo(rental);
+        Keep(_head.AsSpan(start + _filled, _headFilled - start - _filled));
         return true;
     }
 
@@ -164,6 +173,18 @@ public sealed class BlockReader : IDisposable
         }
 
         var tail = rental.AsSpan(_length, Math.Max(_filled - _length, 0));
+        if (_form.End == BlockEnd.Nothing && _filled >= _length && _blocks.Count == _due)
+        {
+            _headFilled = tail.TrimStart("\r\n"u8).IsEmpty ? _headFilled : _headFilled + tail.Length;
+            return IsWhole = true;
+        }
+
+        if (_form.End == BlockEnd.CarriageReturn && !tail.IsEmpty && tail[0] == '\r')
+        {
+            _headFilled += tail.Length - (tail is [_, (byte)'\n', ..] ? 2 : 1);
+            return IsWhole = true;
+        }
+
         if (tail.IsEmpty || (tail[0] == '\r' && tail.Length == 1))
         {
             return false;

@@ -46,6 +46,8 @@ public sealed class ReplyException(ReplyFault fault, string found)
         ReplyFault.NotAnErrorEntry => "no entry of an error queue",
         ReplyFault.Echo => "the command itself, echoed",
         ReplyFault.Interrupted => "broken off by the instrument",
+        ReplyFault.NoEcho => "not the echo that was due",
+        ReplyFault.WrongNumber => "the reply to an earlier question",
         _ => throw new System.Diagnostics.UnreachableException(),
     };
 }

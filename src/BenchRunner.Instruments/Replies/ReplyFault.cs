@@ -77,4 +77,10 @@ public enum ReplyFault
 
     /// <summary>The instrument broke the reply off: something else was sent before it was read.</summary>
     Interrupted,
+
+    /// <summary>Something else where the command itself must come back.</summary>
+    NoEcho,
+
+    /// <summary>Another number than the one that was asked with: the reply to an earlier question.</summary>
+    WrongNumber,
 }

@@ -12,11 +12,13 @@ public static class ReplyLine
     /// <param name="quoted">Whether a string is due, inside whose quotes a newline is data.</param>
     /// <param name="reply">The reply, without its end and a carriage return round it.</param>
     /// <param name="consumed">Bytes that the reply and its end take.</param>
+    /// <param name="terminator">What ends it: NL, or CR where an instrument sends that alone.</param>
     /// <returns>Whether a reply is whole; false: more must come. A carriage return alone ends nothing.</returns>
     /// <exception cref="ReplyException">Longer than <see cref="Limit"/>.</exception>
-    public static bool TryRead(ReadOnlySpan<byte> bytes, bool quoted, out Range reply, out int consumed)
+    public static bool TryRead(
+        ReadOnlySpan<byte> bytes, bool quoted, out Range reply, out int consumed, byte terminator = (byte)'\n')
     {
-        var end = quoted ? QuotedEnd(bytes) : bytes.IndexOf((byte)'\n');
+        var end = quoted ? QuotedEnd(bytes, terminator) : bytes.IndexOf(terminator);
         if (end > Limit || (end < 0 && bytes.Length > Limit))
         {
             throw new ReplyException(ReplyFault.TooLong, bytes);
@@ -58,13 +60,13 @@ public static class ReplyLine
         return start..last;
     }
 
-    private static int QuotedEnd(ReadOnlySpan<byte> bytes)
+    private static int QuotedEnd(ReadOnlySpan<byte> bytes, byte terminator)
     {
         byte open = 0;
         for (var i = 0; i < bytes.Length; i++)
         {
             var c = bytes[i];
-            if (open == 0 && c == '\n')
+            if (open == 0 && c == terminator)
             {
                 return i;
             }

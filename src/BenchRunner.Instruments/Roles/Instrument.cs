@@ -86,11 +86,16 @@ internal sealed class Instrument : IDisposable
     /// refused.</summary>
     public async Task<double> ReadNumber(string operation, CancellationToken cancel, int? channel = null)
     {
-        var number = await Session.Ask(Command(operation, channel: channel), ReplyNumber.Parse, cancel);
-        return double.IsFinite(number)
-            ? number
-            : throw Refusal($"answers {Command(
-                operation, channel: channel)} with {(double.IsNaN(number) ? "no number" : "an overload")}");
+        var command = Command(operation, channel: channel);
+        return Finite(command, await Session.Ask(command, ReplyNumber.Parse, cancel));
+    }
+
+    /// <summary>Asks for a measurement that safety rests on: never an earlier reply, nor one of an instrument that was
+    /// switched off and on.</summary>
+    public async Task<double> ReadSurely(string operation, CancellationToken cancel)
+    {
+        var command = Command(operation);
+        return Finite(command, await Session.AskSurely(command, ReplyNumber.Parse, cancel));
     }
 
     public async Task<bool> ReadBoolean(string operation, CancellationToken cancel) =>
@@ -149,6 +154,10 @@ internal sealed class Instrument : IDisposable
         _log.Report(new InstrumentEvent(Role, Session.Link, kind, Printable.Text(message)));
 
     public void Dispose() => Session.Dispose();
+
+    private double Finite(string command, double number) => double.IsFinite(number)
+        ? number
+        : throw Refusal($"answers {command} with {(double.IsNaN(number) ? "no number" : "an overload")}");
 
     private void CheckIdentity()
     {

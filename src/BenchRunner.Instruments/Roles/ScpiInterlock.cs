@@ -34,8 +34,9 @@ public sealed class ScpiInterlock : IInterlock, IDisposable
 
     /// <inheritdoc/>
     /// <exception cref="LinkException">No answer, or none of four flags: the loop counts as open.</exception>
+    /// <exception cref="InstrumentException">The controller was switched off and on.</exception>
     public async Task<InterlockState> Read(CancellationToken cancel) =>
-        await _instrument.Session.Ask(_instrument.Command("read-state"), ParseState, cancel);
+        await _instrument.Session.AskSurely(_instrument.Command("read-state"), ParseState, cancel);
 
     /// <inheritdoc/>
     public async Task EngageBleeder(CancellationToken cancel)

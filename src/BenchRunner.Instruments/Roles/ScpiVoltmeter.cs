@@ -41,7 +41,7 @@ public sealed class ScpiVoltmeter : IVoltmeter, IDisposable
 
     /// <inheritdoc/>
     public async Task<Volts> Read(CancellationToken cancel) =>
-        new(await _instrument.ReadNumber("measure-voltage", cancel));
+        new(await _instrument.ReadSurely("measure-voltage", cancel));
 
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _instrument.Dispose();

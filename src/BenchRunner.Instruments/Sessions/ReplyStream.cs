@@ -1,4 +1,5 @@
 using System.Runtime.CompilerServices;
+using BenchRunner.Instruments.Dialects;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Replies;
 
@@ -6,18 +7,31 @@ namespace BenchRunner.Instruments.Sessions;
 
 /// <summary>Replies cut out of the bytes of a link: by what is due on a stream, by their marked ends where the link
 /// keeps messages. Knows what is due, not what was asked. One owner at a time.</summary>
-internal sealed class ReplyStream(ILink link)
+internal sealed class ReplyStream(ILink link, WireHabits habits)
 {
+    private readonly byte _end = habits.Terminator == Terminator.CarriageReturn ? (byte)'\r' : (byte)'\n';
+    private readonly BlockForm _form = new(
+        !habits.BlockHasEnd ? BlockEnd.Nothing
+            : habits.Terminator == Terminator.CarriageReturn ? BlockEnd.CarriageReturn
+            : BlockEnd.NewLine,
+        habits.BlockBefore);
+
+    // What may stand between two replies and is none.
+    private readonly byte[] _slack =
+        habits is { BlockHasEnd: true, Terminator: not Terminator.CarriageReturn } ? [(byte)'\r'] : "\r\n"u8.ToArray();
+
     private readonly byte[] _buffer = new byte[ReplyLine.Limit + 4096];
     private int _start;
-    private int _end;
+    private int _filled;
 
     /// <summary>The blocks of the last reply that was one. Only the reader gives their buffers back: a receive that is
     /// under way while the link is closed still writes to them.</summary>
     public BlockReader Blocks { get; } = new();
 
     /// <summary>Whether more than the carriage return is held that some instruments send after their newline.</summary>
-    public bool HoldsReply => Blocks.Excess > 0 || _buffer.AsSpan(_start, _end - _start).ContainsAnyExcept((byte)'\r');
+    public bool HoldsReply => Blocks.Excess > 0 || Held.ContainsAnyExcept(_slack);
+
+    private Span<byte> Held => _buffer.AsSpan(_start, _filled - _start);
 
     /// <summary>Reads one line.</summary>
     /// <returns>It, without its end; gone with the next read.</returns>
@@ -29,7 +43,7 @@ internal sealed class ReplyStream(ILink link)
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<ReadOnlyMemory<byte>> ReadMessage(CancellationToken token)
     {
-        (_start, _end) = (0, 0);
+        (_start, _filled) = (0, 0);
         var filled = 0;
         do
         {
@@ -49,18 +63,18 @@ internal sealed class ReplyStream(ILink link)
     {
         Range reply;
         int consumed;
-        while (!ReplyLine.TryRead(_buffer.AsSpan(_start, _end - _start), false, out reply, out consumed))
+        while (!ReplyLine.TryRead(Begun(), false, out reply, out consumed, _end))
         {
             if (_start > 0)
             {
-                _buffer.AsSpan(_start, _end - _start).CopyTo(_buffer);
-                (_start, _end) = (0, _end - _start);
+                Held.CopyTo(_buffer);
+                (_start, _filled) = (0, _filled - _start);
             }
 
-            _end += await Receive(_buffer.AsMemory(_end), token);
+            _filled += await Receive(_buffer.AsMemory(_filled), token);
         }
 
-        var line = _buffer.AsMemory(_start, _end - _start)[reply];
+        var line = _buffer.AsMemory(_start, _filled - _start)[reply];
         _start += consumed;
         return line;
     }
@@ -74,11 +88,12 @@ internal sealed class ReplyStream(ILink link)
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder))]
     public async ValueTask ReadBlock(int bound, Action<int> announced, CancellationToken token)
     {
-        Blocks.Begin(bound, marked: link.KeepsMessages);
+        Blocks.Begin(bound, marked: link.KeepsMessages, form: _form);
+        Begun();
         while (!Blocks.IsWhole)
         {
             var headDue = Blocks.Announced is null;
-            Blocks.Advance(await Receive(Blocks.Space, token));
+            Blocks.Advance(Held.IsEmpty ? await Receive(Blocks.Space, token) : TakeHeld(Blocks.Space.Span));
             if (headDue && Blocks.Announced is { } length)
             {
                 announced(length);
@@ -104,9 +119,9 @@ internal sealed class ReplyStream(ILink link)
     /// <returns>Bytes dropped.</returns>
     public int Drop()
     {
-        var dropped = _end - _start + Blocks.Excess;
+        var dropped = _filled - _start + Blocks.Excess;
         Blocks.Dispose();
-        _start = _end = 0;
+        _start = _filled = 0;
         return dropped;
     }
 
@@ -122,10 +137,30 @@ internal sealed class ReplyStream(ILink link)
         while (!link.KeepsMessages && !HoldsReply && link.HasInput)
         {
             _start = 0;
-            _end = await Receive(_buffer, cancel);
+            _filled = await Receive(_buffer, cancel);
         }
 
         return HoldsReply;
+    }
+
+    /// <summary>What is held, from the first byte on that may be a reply's.</summary>
+    private Span<byte> Begun()
+    {
+        while (_start < _filled && _slack.AsSpan().Contains(_buffer[_start]))
+        {
+            _start++;
+        }
+
+        return Held;
+    }
+
+    /// <summary>Moves what is held into the space of a block: an echo came with it.</summary>
+    private int TakeHeld(Span<byte> space)
+    {
+        var count = Math.Min(space.Length, Held.Length);
+        Held[..count].CopyTo(space);
+        _start += count;
+        return count;
     }
 
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]

@@ -1,3 +1,4 @@
+using System.Text;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Replies;
 
@@ -19,14 +20,15 @@ internal sealed class Resynchronisation(
 
     /// <summary>Drops whatever is late.</summary>
     /// <param name="put">Sends one message.</param>
+    /// <param name="asks">Whether the number is asked for; else the silence must do.</param>
     /// <param name="cancel">Ends it; then it must be done again.</param>
     /// <returns>Bytes dropped.</returns>
     /// <exception cref="LinkException">The link failed, does not fall silent, or sends what nothing asked
     /// for.</exception>
     /// <exception cref="ReplyException">A line without end.</exception>
     /// <exception cref="OperationCanceledException">Cancelled, or no answer in time.</exception>
-    public async ValueTask<int> Run(Action<string> put, CancellationToken cancel) =>
-        await Drain(cancel) + await Sentinel(put, cancel) + await Sentinel(put, cancel);
+    public async ValueTask<int> Run(Action<string> put, bool asks, CancellationToken cancel) =>
+        await Drain(cancel) + (asks ? await Sentinel(put, cancel) + await Sentinel(put, cancel) : 0);
 
     private async ValueTask<int> Drain(CancellationToken cancel)
     {
@@ -64,7 +66,8 @@ internal sealed class Resynchronisation(
         var token = deadline.Start(options.ReplyWithin, cancel);
         try
         {
-            put(FormattableString.Invariant($"*ESE {number};*ESE?"));
+            var question = FormattableString.Invariant($"*ESE {number};*ESE?");
+            put(question);
             for (var n = 0; n < MostDropped; n++)
             {
                 var reply = await replies.ReadLine(token);
@@ -73,7 +76,8 @@ internal sealed class Resynchronisation(
                     return dropped;
                 }
 
-                dropped += reply.Length + 1;
+                // An echo of ours is no reply that came late.
+                dropped += Ascii.Equals(reply.Span, question) ? 0 : reply.Length + 1;
             }
         }
         finally

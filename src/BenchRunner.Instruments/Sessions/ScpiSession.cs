@@ -19,6 +19,7 @@ public sealed class ScpiSession : IDisposable
     private readonly SemaphoreSlim _turn = new(1, 1);
     private readonly string _role;
     private readonly WireKeeper _wires;
+    private readonly bool _numbered;
     private readonly ResiliencePipeline _reading;
     private readonly ResiliencePipeline _settingDown;
 
@@ -26,6 +27,7 @@ public sealed class ScpiSession : IDisposable
     {
         _role = role;
         _wires = wires;
+        _numbered = options.Habits.Numbered;
         _reading = Repetition.Of(options.ReadAttempts, TimeSpan.Zero, time);
         _settingDown = Repetition.Of(options.SetDownAttempts, TimeSpan.Zero, time);
     }
@@ -58,7 +60,7 @@ public sealed class ScpiSession : IDisposable
 
     /// <summary>Connects as a role's connection says.</summary>
     internal static Task<ScpiSession> Open(string role, InstrumentConnection to, CancellationToken cancel) =>
-        Open(role, to.Address, to.Options, to.Time, to.Log, to.Opener, cancel);
+        Open(role, to.Address, to.Options with { Habits = to.Dialect.Wire }, to.Time, to.Log, to.Opener, cancel);
 
     /// <summary>Asks a question that may be asked again, and reads its reply, one line.</summary>
     /// <typeparam name="T">The answer.</typeparam>
@@ -71,6 +73,30 @@ public sealed class ScpiSession : IDisposable
             static (state, cancel) => state.Session.AskOnce(state.Query, state.Parse, cancel),
             (Session: this, Query: query, Parse: parse),
             cancel);
+
+    /// <summary>Asks what safety rests on. Where the dialect allows it, with a number that the reply must bring back, so
+    /// that no earlier reply is taken for it, and with the power-on bit of the event register.</summary>
+    /// <inheritdoc cref="Ask" path="/typeparam"/>
+    /// <inheritdoc cref="Ask" path="/param"/>
+    /// <inheritdoc cref="Ask" path="/exception"/>
+    /// <exception cref="InstrumentException">The instrument was switched off and on: its settings are lost.</exception>
+    public async ValueTask<T> AskSurely<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        if (!_numbered)
+        {
+            return await Ask(query, parse, cancel);
+        }
+
+        var (answer, switchedOn) = await _reading.ExecuteAsync(
+            static (state, cancel) => state.Session.AskNumberedOnce(state.Query, state.Parse, cancel),
+            (Session: this, Query: query, Parse: parse),
+            cancel);
+        return !switchedOn
+            ? answer
+            : throw new InstrumentException(
+                _role, $"was switched off and on since it was connected, so its settings are lost; look at its mains "
+                    + $"plug and begin anew ({Link})");
+    }
 
     /// <summary>Asks for a block, once, received straight into a pooled buffer.</summary>
     /// <typeparam name="T">What is made of the block.</typeparam>
@@ -194,6 +220,20 @@ public sealed class ScpiSession : IDisposable
         try
         {
             return await (await _wires.Ready(cancel)).Ask(query, parse, cancel);
+        }
+        finally
+        {
+            _turn.Release();
+        }
+    }
+
+    private async ValueTask<(T Answer, bool SwitchedOn)> AskNumberedOnce<T>(
+        string query, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        await _turn.WaitAsync(cancel);
+        try
+        {
+            return await (await _wires.Ready(cancel)).AskNumbered(query, parse, cancel);
         }
         finally
         {

@@ -2,6 +2,7 @@ using System.Collections.Concurrent;
 using System.Runtime.CompilerServices;
 using System.Runtime.ExceptionServices;
 using System.Text;
+using BenchRunner.Instruments.Dialects;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Replies;
 
@@ -19,12 +20,11 @@ namespace BenchRunner.Instruments.Sessions;
 /// </remarks>
 internal sealed class ScpiWire : IDisposable
 {
-    /// <summary>The question for the oldest entry of the error queue.</summary>
-    public const string ErrorQuery = "SYSTem:ERRor?";
-
     private const int MostErrors = 64;
     private static readonly TimeSpan ProbePause = TimeSpan.FromMilliseconds(1);
     private const string OpeningTheLine = "opening the line";
+
+    private static readonly ErrorEntry NoEntry = new(0, null, null);
 
     private readonly ILink _link;
     private readonly SessionOptions _options;
@@ -35,7 +35,8 @@ internal sealed class ScpiWire : IDisposable
     private readonly Resynchronisation _resynchronisation;
     private readonly Action<int> _extend;
     private readonly TimeProvider _time;
-    private readonly ProgramMessage _sent = new();
+    private readonly Outlet _outlet;
+    private readonly NumberedQuestion _numbered = new();
     private readonly ConcurrentQueue<string> _settingDown = new();
     private volatile bool _errorsUnread;
 
@@ -53,7 +54,8 @@ internal sealed class ScpiWire : IDisposable
         }
 
         _trust = new WireTrust(link, options.ReplyWithin, report);
-        _replies = new ReplyStream(link);
+        _replies = new ReplyStream(link, options.Habits);
+        _outlet = new Outlet(link, _trust, options.Habits);
         _deadline = new Deadline(time);
         _resynchronisation = new Resynchronisation(link, _replies, _deadline, options, time);
         _extend = Extend;
@@ -62,14 +64,17 @@ internal sealed class ScpiWire : IDisposable
     /// <summary>Why the wire is of no use any more; null while it is.</summary>
     public LinkException? Broken => _trust.Broken;
 
+    /// <summary>Whether the wire is in a doubt that only a new link ends.</summary>
+    public bool MustReopen => Habits.ReopensToRecover && !_link.KeepsMessages && _trust.WhyNot is not (null or OpeningTheLine);
+
+    private WireHabits Habits => _options.Habits;
+
     /// <summary>Sends one message that has no reply. From any thread; never waits for an exchange.</summary>
     /// <exception cref="LinkException">The link is lost; the wire is broken.</exception>
     public void Send(string command)
     {
-        Span<byte> message = stackalloc byte[ProgramMessage.Longest];
-        var length = ProgramMessage.Encode(command, message);
         _errorsUnread = true;
-        Write(message[..length]);
+        _outlet.Tell(command);
     }
 
     /// <summary>Sends one message that sets down. From any thread; never waits for an exchange.</summary>
@@ -88,7 +93,7 @@ internal sealed class ScpiWire : IDisposable
     public void Terminate()
     {
         _trust.Note(OpeningTheLine);
-        Write("\n"u8);
+        _outlet.Terminate();
     }
 
     /// <summary>Asks one question and reads its reply, a line.</summary>
@@ -97,6 +102,16 @@ internal sealed class ScpiWire : IDisposable
     {
         await Ready(cancel);
         return await Exchange(query, parse, cancel);
+    }
+
+    /// <summary>Asks one question with a number that its reply must bring back.</summary>
+    /// <returns>The answer, and whether the instrument was switched on since it was asked so before.</returns>
+    public async ValueTask<(T Answer, bool SwitchedOn)> AskNumbered<T>(
+        string query, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        await Ready(cancel);
+        var answer = await Exchange(_numbered.Next(query), reply => _numbered.Parse(reply, parse), cancel);
+        return (answer, _numbered.SwitchedOn);
     }
 
     /// <summary>Asks one question and reads its reply, a block, into a pooled buffer.</summary>
@@ -108,7 +123,7 @@ internal sealed class ScpiWire : IDisposable
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
-            Put(query);
+            await PutAndPass(query, token);
             await _replies.ReadBlock(bound, _extend, token);
             var value = parse(_replies.Blocks.Block(0));
             Finish(query);
@@ -125,7 +140,7 @@ internal sealed class ScpiWire : IDisposable
                     _link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
             }
 
-            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_sent.Text);
+            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_outlet.Question);
             var why = echo ? new ReplyException(ReplyFault.Echo, query) : e;
             ExceptionDispatchInfo.Throw(_trust.Failure(why, query, cancel));
             throw;
@@ -147,34 +162,25 @@ internal sealed class ScpiWire : IDisposable
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
-            Put(query);
-            string? answer = null;
-            if (_link.KeepsMessages)
+            (string? Answer, ErrorEntry Error) both;
+            if (Habits.ErrorQuery is { } errors)
             {
-                // A second question would make the reply to the first one void; the status byte says what became of it.
-                if (await IsAnswered(token))
-                {
-                    answer = Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span);
-                }
-
-                Put(ErrorQuery);
+                both = _link.KeepsMessages
+                    ? await AskInTurn(query, errors, token) : await AskBoth(query, errors, token);
             }
             else
             {
-                Put(ErrorQuery);
-                var line = await _replies.ReadLine(token);
-                if (ErrorEntry.IsOne(line.Span))
-                {
-                    Finish(query);
-                    return (null, ErrorEntry.Parse(line.Span));
-                }
-
-                answer = Encoding.UTF8.GetString(line.Span);
+                await PutAndPass(query, token);
+                both = (Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span), NoEntry);
             }
 
-            var error = ErrorEntry.Parse((await _replies.ReadLine(token)).Span);
             Finish(query);
-            return (answer, error);
+            return both;
+        }
+        catch (OperationCanceledException) when (Habits.ErrorQuery is null && !cancel.IsCancellationRequested)
+        {
+            // Without an error queue an instrument refuses by silence. The doubt stands: its answer may only be late.
+            return (null, NoEntry);
         }
         catch (Exception e)
         {
@@ -200,7 +206,7 @@ internal sealed class ScpiWire : IDisposable
         _errorsUnread = false;
         try
         {
-            return await EmptyQueue(cancel);
+            return Habits.ErrorQuery is { } query ? await EmptyQueue(query, cancel) : await Complete(cancel);
         }
         catch
         {
@@ -216,6 +222,11 @@ internal sealed class ScpiWire : IDisposable
         if (Broken is { } why)
         {
             throw new LinkException(_link.Name, $"not used any more since: {why.Message}", why);
+        }
+
+        if (_trust.WhyNot is null && _outlet.AwaitsEcho)
+        {
+            await PassEchoes(cancel);
         }
 
         if (_trust.WhyNot is null && await HasUnasked(cancel))
@@ -249,8 +260,8 @@ internal sealed class ScpiWire : IDisposable
         var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
-            Put(query);
-            var value = parse(_sent.Reply(await _replies.ReadLine(token)));
+            await PutAndPass(query, token);
+            var value = parse(_outlet.Reply(await _replies.ReadLine(token)));
             Finish(query);
             return value;
         }
@@ -284,20 +295,16 @@ internal sealed class ScpiWire : IDisposable
         return true;
     }
 
-    private async ValueTask<IReadOnlyList<ErrorEntry>> EmptyQueue(CancellationToken cancel)
+    private async ValueTask<IReadOnlyList<ErrorEntry>> EmptyQueue(string query, CancellationToken cancel)
     {
         var confirmed = _settingDown.Count;
         List<ErrorEntry>? entries = null;
         for (var n = 0; n < MostErrors; n++)
         {
-            var entry = await Exchange(ErrorQuery, ErrorEntry.Parse, cancel);
+            var entry = await Exchange(query, ErrorEntry.Parse, cancel);
             if (entry.IsNone)
             {
-                while (confirmed-- > 0)
-                {
-                    _settingDown.TryDequeue(out _);
-                }
-
+                Confirm(confirmed);
                 return entries ?? (IReadOnlyList<ErrorEntry>)[];
             }
 
@@ -320,7 +327,9 @@ internal sealed class ScpiWire : IDisposable
                 return;
             }
 
-            var dropped = await _resynchronisation.Run(Put, cancel);
+            _outlet.ForgetEchoes();
+            var dropped = await _resynchronisation.Run(q => _outlet.Ask(q), asks: !Habits.ReopensToRecover, cancel);
+            _outlet.ForgetEchoes();
             _trust.Restore();
             if (dropped > 0 || why != OpeningTheLine)
             {
@@ -358,19 +367,92 @@ internal sealed class ScpiWire : IDisposable
         }
     }
 
-    private void Put(string query) => Write(_sent.Write(query));
+    /// <summary>Sends a question and reads what the instrument echoes before its reply.</summary>
+    private ValueTask PutAndPass(string query, CancellationToken token) =>
+        _outlet.Pass(_outlet.Ask(query), _replies, token);
 
-    private void Write(ReadOnlySpan<byte> message)
+    /// <summary>Reads the echoes of commands that were sent since the last question; where they do not come, the link is
+    /// in doubt.</summary>
+    private async ValueTask PassEchoes(CancellationToken cancel)
     {
+        _trust.Note("the echo of a command");
+        var token = _deadline.Start(_options.ReplyWithin, cancel);
         try
         {
-            _link.Write(message);
+            await _outlet.Pass(null, _replies, token);
+            _trust.Restore();
+        }
+        catch (Exception e) when (e is ReplyException || (e is OperationCanceledException && !cancel.IsCancellationRequested))
+        {
+            _trust.Doubt($"a command was not echoed as it should be: {e.Message}");
         }
         catch (LinkException e)
         {
-            // Part of the message may be out: whatever went next would be joined to it.
             throw _trust.Break(e);
         }
+        finally
+        {
+            _deadline.End();
+        }
+    }
+
+    /// <summary>A question that the instrument may not know, the error queue right behind it.</summary>
+    private async ValueTask<(string? Answer, ErrorEntry Error)> AskBoth(
+        string query, string errors, CancellationToken token)
+    {
+        await PutAndPass(query, token);
+        var echoes = _outlet.Ask(errors);
+        var line = await _replies.ReadLine(token);
+        if (echoes > 0 && Ascii.Equals(line.Span, errors))
+        {
+            // The question was refused: what came is the echo of the second one.
+            _outlet.ForgetEchoes();
+            return (null, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
+        }
+
+        if (ErrorEntry.IsOne(line.Span))
+        {
+            return (null, ErrorEntry.Parse(line.Span));
+        }
+
+        var answer = Encoding.UTF8.GetString(line.Span);
+        await _outlet.Pass(echoes, _replies, token);
+        return (answer, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
+    }
+
+    /// <summary>The same where a second question would make the reply to the first one void; the status byte says what
+    /// became of it.</summary>
+    private async ValueTask<(string? Answer, ErrorEntry Error)> AskInTurn(
+        string query, string errors, CancellationToken token)
+    {
+        _outlet.Ask(query);
+        var answer = await IsAnswered(token)
+            ? Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span) : null;
+        _outlet.Ask(errors);
+        return (answer, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
+    }
+
+    /// <summary>Takes note that what set down was obeyed.</summary>
+    private void Confirm(int count)
+    {
+        while (count-- > 0)
+        {
+            _settingDown.TryDequeue(out _);
+        }
+    }
+
+    /// <summary>Where there is no error queue: waits until what was sent has been done, if the instrument can say
+    /// so.</summary>
+    private async ValueTask<IReadOnlyList<ErrorEntry>> Complete(CancellationToken cancel)
+    {
+        if (Habits.HasOperationComplete)
+        {
+            var confirmed = _settingDown.Count;
+            await Exchange("*OPC?", ReplyInteger.Parse, cancel);
+            Confirm(confirmed);
+        }
+
+        return [];
     }
 
     private void Extend(int length) =>

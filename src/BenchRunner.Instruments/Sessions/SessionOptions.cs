@@ -1,3 +1,5 @@
+using BenchRunner.Instruments.Dialects;
+
 namespace BenchRunner.Instruments.Sessions;
 
 /// <summary>The bounds of a session: every wait has one.</summary>
@@ -6,6 +8,9 @@ public sealed record SessionOptions
     /// <summary>For connections that are polled for safety: a poll without its reply is a doubt soon and at once, not a
     /// reason to ask again. Setting down is tried as often as elsewhere.</summary>
     public static SessionOptions Watching { get; } = new() { ReplyWithin = TimeSpan.FromSeconds(2), ReadAttempts = 1 };
+
+    /// <summary>What the instrument does otherwise on the wire; a dialect says it.</summary>
+    public WireHabits Habits { get; init; } = WireHabits.Standard;
 
     /// <summary>How long connecting may take.</summary>
     public TimeSpan ConnectWithin { get; init; } = TimeSpan.FromSeconds(3);

@@ -69,7 +69,11 @@ internal sealed class WireKeeper : IDisposable
                 keeper.Report(InstrumentEventKind.Errors, $"the error queue held {entry} at the start");
             }
 
-            keeper._wire.Send("*CLS");
+            if (options.Habits.ErrorQuery is not null)
+            {
+                keeper._wire.Send("*CLS");
+            }
+
             keeper.Report(InstrumentEventKind.Connected, $"is {keeper.Identity.Text}");
             return keeper;
         }
@@ -85,6 +89,11 @@ internal sealed class WireKeeper : IDisposable
     public async ValueTask<ScpiWire> Ready(CancellationToken cancel)
     {
         ObjectDisposedException.ThrowIf(_disposed, typeof(ScpiSession));
+        if (_wire.MustReopen)
+        {
+            _wire.Break(new LinkException(Link, "in doubt what it answers, and its dialect says: open it again"));
+        }
+
         if (_wire.Broken is not { } why)
         {
             return _wire;

@@ -1,5 +1,7 @@
 using BenchRunner.Acceptance.Dialects;
 using BenchRunner.Instruments.Dialects;
+using Stated = BenchRunner.Acceptance.Dialects.WireHabits;
+using WireHabits = BenchRunner.Instruments.Dialects.WireHabits;
 
 namespace BenchRunner.Runner.Benches;
 
@@ -10,6 +12,23 @@ public static class DialectMapping
     public static Dialect ToDialect(this DialectFile file)
     {
         ArgumentNullException.ThrowIfNull(file);
-        return new Dialect(file.Name, file.Identity, file.Commands);
+        return new Dialect(file.Name, file.Identity, file.Commands) { Wire = Habits(file.Wire) };
     }
+
+    private static WireHabits Habits(Stated stated) => new()
+    {
+        Terminator = stated.Terminator switch
+        {
+            "CR NL" => Terminator.CarriageReturnNewLine,
+            "CR" => Terminator.CarriageReturn,
+            _ => Terminator.NewLine,
+        },
+        ErrorQuery = stated.ErrorQuery,
+        HasOperationComplete = stated.HasOperationComplete,
+        ReopensToRecover = stated.ReopensToRecover,
+        Echoes = stated.Echoes,
+        BlockBefore = stated.BlockBefore,
+        BlockHasEnd = stated.BlockHasEnd,
+        Numbered = stated.Numbered,
+    };
 }

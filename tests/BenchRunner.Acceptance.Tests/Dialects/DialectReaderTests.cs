@@ -12,12 +12,12 @@ public sealed class DialectReaderTests
 
     [Theory]
     [MemberData(nameof(Roles))]
-    public void The_generic_dialect_of_a_role_has_exactly_its_operations(string role)
+    public void The_generic_dialect_of_a_role_has_its_operations_and_no_others(string role)
     {
         DialectFile dialect = DialectReader.Read(GenericPath(role)).Value!;
         Assert.Equal((role, $"generic-{role}"), (dialect.Role, dialect.Name));
-        Assert.Equal(
-            RoleOperations.All[role].Select(operation => operation.Name).Order(), dialect.Commands.Keys.Order());
+        Assert.Subset(Names(role, optionalToo: true), dialect.Commands.Keys.ToHashSet());
+        Assert.Superset(Names(role, optionalToo: false), dialect.Commands.Keys.ToHashSet());
     }
 
     [Fact]
@@ -33,7 +33,8 @@ public sealed class DialectReaderTests
     public void Misspelling_any_operation_is_a_problem(string role)
     {
         string text = File.ReadAllText(GenericPath(role));
-        foreach (RoleOperation operation in RoleOperations.All[role])
+        foreach (RoleOperation operation in RoleOperations.All[role]
+            .Where(o => text.Contains($"  {o.Name}:", StringComparison.Ordinal)))
         {
             string wrong = text.With($"  {operation.Name}:", $"  {operation.Name}s:");
             Problem problem = Assert.Single(Readers.Problems(Readers.Source("dialect.yaml", wrong)));
@@ -86,6 +87,9 @@ public sealed class DialectReaderTests
             Directory.Delete(folder, recursive: true);
         }
     }
+
+    private static HashSet<string> Names(string role, bool optionalToo) =>
+        [.. RoleOperations.All[role].Where(o => optionalToo || !o.IsOptional).Select(o => o.Name)];
 
     private static string GenericPath(string role) =>
         Repository.PathOf("sequences", "dialects", $"generic-{role}.yaml");
