@@ -106,12 +106,15 @@ internal sealed class ReplyStream(ILink link, WireHabits habits)
         }
 
         // What ends a message may come after the newline that ends the reply; nothing else may.
+        var excess = link.KeepsMessages ? Blocks.Excess : 0;
         while (link.KeepsMessages && !link.AtEnd)
         {
-            if (await Receive(_buffer, token) is > 0 and var count)
-            {
-                throw new ReplyException(ReplyFault.TrailingData, _buffer.AsSpan(0, count));
-            }
+            excess += await Receive(_buffer, token);
+        }
+
+        if (excess > 0)
+        {
+            throw new ReplyException(ReplyFault.TrailingData, FormattableString.Invariant($"{excess} bytes"));
         }
     }
 
