@@ -12,7 +12,8 @@ namespace BenchRunner.Runner.Benches;
 /// connections.</summary>
 /// <remarks>
 /// Every connection that the safe state needs is opened before anything is energised, so that none has to be opened in
-/// need. An instrument that admits one client is shared; its session lets one exchange at a time through.
+/// need. An instrument that admits one client, or one beside the guardian, is shared; its session lets one exchange at
+/// a time through.
 /// </remarks>
 public sealed class OpenBench : IAsyncDisposable
 {
@@ -69,8 +70,8 @@ public sealed class OpenBench : IAsyncDisposable
         var open = new OpenBench();
         try
         {
-            await open.Connect(
-                (role, options) => Connection(bench, dialects, links, role, options, log, opener, time), bench, cancel);
+            var reached = new BenchLinks(bench, dialects, links, opener);
+            await open.Connect((role, options) => reached.To(role, options, log, time), bench, cancel);
             open.Identify(bench);
             return open;
         }
@@ -92,35 +93,13 @@ public sealed class OpenBench : IAsyncDisposable
         return ValueTask.CompletedTask;
     }
 
-    private static InstrumentConnection Connection(
-        Bench bench,
-        IReadOnlyDictionary<string, DialectFile> dialects,
-        IReadOnlyDictionary<string, string>? links,
-        string role,
-        SessionOptions options,
-        IInstrumentLog log,
-        LinkOpener opener,
-        TimeProvider time)
-    {
-        InstrumentSetup setup = bench.Roles[role];
-        string link = links is null ? setup.Link : links.GetValueOrDefault(role)
-            ?? throw new BenchException($"the fake bench offers no {role}");
-        return new InstrumentConnection(
-            LinkAddress.Parse(link),
-            dialects[setup.Dialect].ToDialect(),
-            options with { Lock = LinkLock.Of(bench, role) },
-            time,
-            log)
-        {
-            Opener = opener,
-        };
-    }
-
     private async Task Connect(
         Func<string, SessionOptions, InstrumentConnection> at, Bench bench, CancellationToken cancel)
     {
         var patient = new SessionOptions();
-        bool OwnToo(string role) => bench.Roles[role].Connections > 1;
+
+        // Of two connections the guardian has one: work and watch share the other.
+        bool OwnToo(string role) => bench.Roles[role].Connections > 2;
 
         // Safety first: whatever fails later, these are there.
         ScpiInterlock interlock = await Reach(

@@ -20,5 +20,6 @@ internal static class CommandTree
         QuantitiesCommand.Build(),
         SchemaCommand.Build(),
         BenchCommand.Build(),
+        GuardCommand.Build(),
     };
 }

@@ -21,20 +21,9 @@ internal sealed record Job(
         string benchFile = ExampleFiles.Find(benchPath ?? ExampleFiles.FakeBench);
         var problems = new List<Problem>();
         Sequence? sequence = Take(SequenceFile.Read(ExampleFiles.Find(sequencePath)), problems);
-        Bench? bench = Take(BenchFile.Read(benchFile), problems);
-        var dialects = new Dictionary<string, DialectFile>();
-        foreach ((string role, InstrumentSetup setup) in bench?.Roles ?? new Dictionary<string, InstrumentSetup>())
-        {
-            Read<DialectFile> found =
-                DialectReader.Find(setup.Dialect, role, ExampleFiles.DialectFolders(benchFile), setup.Where);
-            if (Take(found, problems) is { } dialect)
-            {
-                dialects[setup.Dialect] = dialect;
-            }
-        }
-
+        BenchFiles files = BenchFiles.Read(benchFile, problems);
         return problems.Count == 0
-            ? new Job(sequence!, bench!, dialects, Planner.Plan(sequence!, bench!))
+            ? new Job(sequence!, files.Bench!, files.Dialects, Planner.Plan(sequence!, files.Bench!))
             : throw new InputException(string.Join(Environment.NewLine, problems));
     }
 

@@ -1,0 +1,158 @@
+using BenchRunner.Acceptance.Benches;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
+using BenchRunner.Files;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Runner.Guarding;
+using BenchRunner.Safety.Guardians;
+using BenchRunner.Safety.Latches;
+using BenchRunner.Safety.SafeStates;
+using BenchRunner.Safety.Watches;
+
+namespace BenchRunner.Guards;
+
+/// <summary>The guardian's process: files, pipe, links; then <see cref="GuardianCore"/>.</summary>
+/// <param name="benchFile">The bench file.</param>
+/// <param name="logFile">Where it writes what it did; null: beside the bench file.</param>
+/// <param name="runner">Number of the runner's process; null: none is ended.</param>
+internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
+{
+    private static readonly TimeSpan TryFor = TimeSpan.FromSeconds(30);
+    private readonly PipeBeats _pipe = new(System.Console.OpenStandardInput(), System.Console.OpenStandardOutput());
+    private readonly TimeProvider _time = TimeProvider.System;
+    private readonly BusWitness _witness = new();
+
+    /// <summary>Guards until the run is done, or until the bench is safe.</summary>
+    public async Task<int> Run()
+    {
+        using RunnerProcess? held = runner is { } number ? RunnerProcess.Hold(number) : null;
+        await using var log = new GuardianLog(logFile ?? GuardianLog.PathOf(benchFile), System.Console.Error);
+        var events = new EventSource("guardian", log, _time);
+        GuardedBench guarded;
+        Bench bench;
+        try
+        {
+            (bench, BenchLinks links) = await Begin();
+            if (links.StandIns is null && bench.Fake is not null)
+            {
+                return ExitCode.Done;
+            }
+
+            guarded = new GuardedBench(links, new InstrumentReports(events.As("guardian-links")), _time);
+            await guarded.Open(CancellationToken.None);
+        }
+        catch (Exception failure)
+        {
+            _pipe.Say($"unable {Ending.Explain(failure, CancellationToken.None).Message.ReplaceLineEndings("; ")}");
+            throw;
+        }
+
+        using (guarded)
+        {
+            _pipe.Say($"ready {bench.Source.Sha256}");
+            return await Guard(bench, guarded, held, events);
+        }
+    }
+
+    private static GuardianOptions Options(Bench bench, Discharge discharge)
+    {
+        double planned = discharge.TimeTo(bench.Envelope.Voltage, bench.Safety.DownBelow(bench.BusCapacitance));
+        return new GuardianOptions(
+            TimeSpan.FromSeconds(bench.Safety.GuardianSilence),
+            TimeSpan.FromSeconds((2 * planned) + bench.Safety.DischargeWithin),
+            TryFor);
+    }
+
+    private async Task<int> Guard(Bench bench, GuardedBench guarded, RunnerProcess? held, EventSource events)
+    {
+        var discharge = new Discharge(bench.Bleeder, bench.BusCapacitance);
+        var core = new GuardianCore(
+            guarded.Own,
+            new SafeState(guarded.Roles, _witness, discharge, events, _time),
+            _witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
+        bool isMarked = true;
+        core.Acting += reason => isMarked = LeaveLatch(bench, reason, events);
+        switch (await core.Run())
+        {
+            case GuardianEnding.NotNeeded:
+                return ExitCode.Done;
+            case GuardianEnding.ProvedDown:
+                if (isMarked)
+                {
+                    await TakeOffWatchdog(guarded, events);
+                }
+
+                return ExitCode.Done;
+            default:
+                return ExitCode.Safety;
+        }
+    }
+
+    /// <summary>Reads the bench file; hears where the instruments are, up to <c>begin</c>.</summary>
+    private async Task<(Bench Bench, BenchLinks Links)> Begin()
+    {
+        var problems = new List<Problem>();
+        BenchFiles files = BenchFiles.Read(benchFile, problems);
+        if (problems.Count > 0)
+        {
+            throw new InputException(string.Join(Environment.NewLine, problems));
+        }
+
+        var links = new Dictionary<string, string>();
+        while (await _pipe.Line() is { } line && line != "begin")
+        {
+            if (line.Split(' ', 3) is not ["link", { } role, { } link])
+            {
+                throw new InputException($"'{Console.Screen.Printable(line)}' came where 'link ROLE LINK' or 'begin' was "
+                    + "expected");
+            }
+
+            links[role] = link;
+        }
+
+        return (files.Bench!, new BenchLinks(
+            files.Bench!, files.Dialects, links.Count > 0 ? links : null, InstrumentConnection.Wire));
+    }
+
+    /// <returns>Whether the mark stands or none is due; a bench that is new at each start gets none.</returns>
+    private bool LeaveLatch(Bench bench, string reason, EventSource events)
+    {
+        if (bench.Fake is not null || !_witness.MayBeEnergised)
+        {
+            return true;
+        }
+
+        try
+        {
+            new LatchFile(bench.Source.Path).Set(_time.GetUtcNow(), $"the guardian ended the run: {reason}");
+            return true;
+        }
+        catch (Exception failure) when (failure is IOException or UnauthorizedAccessException)
+        {
+            events.Say(
+                Severity.Alarm, "guardian-latch-not-written",
+                $"THE BENCH IS NOT LATCHED: {failure.Message}; let nobody use it");
+            return false;
+        }
+    }
+
+    private async Task TakeOffWatchdog(GuardedBench guarded, EventSource events)
+    {
+        try
+        {
+            using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(2), _time);
+            await guarded.TakeOffWatchdog(patience.Token);
+        }
+        catch (Exception failure)
+        {
+            events.Say(
+                Severity.Warning, "guardian-watchdog-left", $"the interlock's watchdog stays armed: {failure.Message}");
+        }
+    }
+
+    private sealed class NoRunner : IRunnerKiller
+    {
+        public Task<string?> End() => Task.FromResult<string?>(null);
+    }
+}
