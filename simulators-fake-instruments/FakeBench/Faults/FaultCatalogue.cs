@@ -11,8 +11,6 @@ public static class FaultCatalogue
     public const string StaleRecord = "stale-record";
     public const string TriggerMissed = "trigger-missed";
     public const string ClippedRange = "clipped-range";
-    public const string LinkDrops = "link-drops";
-    public const string LateReply = "late-reply";
     public const string SilentSupply = "silent-supply";
     public const string FireUnanswered = "fire-unanswered";
     public const string VoltmeterOpen = "voltmeter-open";
@@ -40,6 +38,22 @@ public static class FaultCatalogue
     public const string SupplyLow = "supply-low";
     public const string BankWeak = "bank-weak";
     public const string PlateDrifts = "plate-drifts";
+    public const string ReadingSticks = "reading-sticks";
+    public const string NeverCompletes = "never-completes";
+    public const string WrongScale = "wrong-scale";
+    public const string SecondController = "second-controller";
+    public const string BleederWeak = "bleeder-weak";
+    public const string SupplyOvershoots = "supply-overshoots";
+    public const string ProbeOff = "probe-off";
+    public const string ProbesSwapped = "probes-swapped";
+    public const string Arcing = "arcing";
+    public const string Desaturates = "desaturates";
+    public const string GateStuckOn = "gate-stuck-on";
+    public const string FiresOnArm = "fires-on-arm";
+    public const string FiresTwice = "fires-twice";
+    public const string DriverLost = "driver-lost";
+    public const string FuseOpens = "fuse-opens";
+    public const string BusRises = "bus-rises";
 
     /// <summary>Set-point at which <see cref="SupplyClips"/> clips, V.</summary>
     public const double ClipLevel = 350;
@@ -80,8 +94,21 @@ public static class FaultCatalogue
     /// <summary>How far the plate falls in <see cref="PlateDrifts"/>, K.</summary>
     public const double PlateDrift = 6;
 
-    /// <summary>How late the reply of <see cref="LateReply"/> is.</summary>
-    public static TimeSpan Lateness { get; } = TimeSpan.FromSeconds(4);
+    /// <summary>Resistance of the bleeder in <see cref="BleederWeak"/> over a sound one's, 1.</summary>
+    public const double WeakBleeder = 10;
+
+    /// <summary>What the supply is set to over what we set in <see cref="SecondController"/>, and the bus over its
+    /// set-point in <see cref="SupplyOvershoots"/>, 1.</summary>
+    public const double ForeignSetting = 1.05, Overshoot = 1.08;
+
+    /// <summary>Noise of every input in <see cref="Arcing"/>, V or A rms, and of a probe that is off, V rms.</summary>
+    public const double ArcNoise = 100, OpenNoise = 0.5;
+
+    /// <summary>What is left of the transconductance in <see cref="Desaturates"/>, 1.</summary>
+    public const double Desaturated = 0.1;
+
+    /// <summary>The bank falls below the one and rises to the other in <see cref="BusRises"/>, V.</summary>
+    public const double RisesFrom = 40, RisesTo = 90;
 
     /// <summary>The faults, by name.</summary>
     public static IReadOnlyList<FaultKind> All { get; } =
@@ -95,8 +122,6 @@ public static class FaultCatalogue
         new(TriggerMissed, Fire(3), "the scope does not see its trigger in one train and waits on"),
         new(ClippedRange, Fire(3), "the scope's amplifiers are at twice their gain in one train: codes stick at "
             + "the ends"),
-        new(LinkDrops, Block(9), "the scope's connection is reset in the middle of a block"),
-        new(LateReply, Fire(3), "the scope's next reply comes 4 s late"),
         new(SilentSupply, Volts(100), "the supply answers nothing any more, though it obeys"),
         new(FireUnanswered, Fire(3), "the pulser fires, then answers nothing any more"),
         new(VoltmeterOpen, Moment.Start, "a lead of the voltmeter is off: it reads 0 V"),
@@ -127,11 +152,26 @@ public static class FaultCatalogue
         new(SupplyLow, Moment.Start, "the supply gives 2 % less than it says that it was set to"),
         new(BankWeak, Fire(3), "in one train the bank has 0.075 of its capacitance: the rest has lost contact"),
         new(PlateDrifts, Fire(3), "a draught cools the hotplate by 6 K, once"),
+        new(ReadingSticks, Volts(200), "the voltmeter shows from then on what it shows then"),
+        new(NeverCompletes, Fire(3), "from then on the scope's acquisition does not come to its end"),
+        new(WrongScale, Fire(3), "one preamble of the scope says twice the volts a step"),
+        new(SecondController, Fire(3), "another controller sets the supply 5 % higher"),
+        new(BleederWeak, Moment.Start, "the bleeder has ten times its resistance"),
+        new(SupplyOvershoots, Volts(300), "the bus goes 8 % above what the supply was set to, once"),
+        new(ProbeOff, Fire(3), "from then on the firing place's voltage probe is off: noise about 0 V"),
+        new(ProbesSwapped, Moment.Start, "the voltage probes of the two places are swapped"),
+        new(Arcing, Fire(3), "an arc: from then on 100 V of noise on every input, and the loop's contact chatters open"),
+        new(Desaturates, Fire(3), "from then on the firing device carries a tenth of its current: it desaturates"),
+        new(GateStuckOn, Fire(3), "the firing gate stays on after the second pulse: the device dies, the bank empties"),
+        new(FiresOnArm, Fire(3), "the pulser fires as soon as it is armed, without its trigger"),
+        new(FiresTwice, Fire(3), "one trigger fires two trains"),
+        new(DriverLost, Fire(3), "the gate drivers lose their supply: both gates rest at 0 V, no train reaches them"),
+        new(FuseOpens, Fire(3), "the fuse between bank and voltmeter opens: it shows 0 V, the bank keeps its charge"),
+        new(BusRises, Moment.Start, "the bank rises to 90 V once it was below 40 V and bled"),
+        .. LinkFault.All,
     ];
 
     private static Moment Fire(int n) => new(MomentKind.Fire, n);
 
     private static Moment Volts(double v) => new(MomentKind.Volts, v);
-
-    private static Moment Block(int n) => new(MomentKind.Block, n);
 }

@@ -17,6 +17,7 @@ public sealed class Bench
     private readonly Bus _bus = new();
     private readonly BenchSetup _setup;
     private readonly Socket _socket;
+    private bool _wasUp;
 
     /// <summary>Makes a bench with a device in its socket, the enclosure closed, the bank empty.</summary>
     /// <param name="setup">What it is made of.</param>
@@ -69,6 +70,9 @@ public sealed class Bench
 
     /// <summary>Seed of population and noise.</summary>
     public int Seed => _setup.Seed;
+
+    /// <summary>Whether trains and records are computed beside what goes on.</summary>
+    public bool WorksAhead => _setup.WorksAhead;
 
     /// <summary>Serial of the device in the socket.</summary>
     public string Serial => _socket.Serial;
@@ -187,7 +191,8 @@ public sealed class Bench
 
     private BusCircuit Circuit()
     {
-        double relay = Chain.Bleeder && !Faults.Has(FaultCatalogue.BusStaysUp) ? 1 / Values.Bleeder : 0;
+        double bleeder = Values.Bleeder * (Faults.Has(FaultCatalogue.BleederWeak) ? FaultCatalogue.WeakBleeder : 1);
+        double relay = Chain.Bleeder && !Faults.Has(FaultCatalogue.BusStaysUp) ? 1 / bleeder : 0;
         return new BusCircuit(
             Values.Parts.BankCapacitance,
             relay + (1 / BenchValues.EmptySocket) + LeakConductance(),
@@ -207,6 +212,12 @@ public sealed class Bench
         Begun(Faults.Reach(MomentKind.Seconds, Now));
         Begun(Faults.Reach(MomentKind.Volts, _bus.Voltage));
         Chain.Watch(Now);
+        _wasUp |= _bus.Voltage > FaultCatalogue.RisesTo;
+        if (_wasUp && Chain.Bleeder && _bus.Voltage < FaultCatalogue.RisesFrom && Faults.Take(FaultCatalogue.BusRises))
+        {
+            _bus.SetVoltage(FaultCatalogue.RisesTo);
+        }
+
         if (Supply.Output && _bus.Voltage >= Supply.Protection)
         {
             TripSupply();
@@ -242,6 +253,12 @@ public sealed class Bench
                     break;
                 case FaultCatalogue.EmergencyStop:
                     Chain.EmergencyStop = true;
+                    break;
+                case FaultCatalogue.SupplyOvershoots:
+                    _bus.SetVoltage(Supply.Voltage * FaultCatalogue.Overshoot);
+                    break;
+                case FaultCatalogue.Arcing:
+                    Chain.LoopBroken = true;
                     break;
                 case FaultCatalogue.OverVoltageTrips:
                     TripSupply();

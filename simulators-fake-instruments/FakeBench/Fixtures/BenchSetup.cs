@@ -20,6 +20,9 @@ public sealed record BenchSetup(BenchValues Values, string Device)
     /// <summary>Whether the devices lie on a hotplate.</summary>
     public bool Hotplate { get; init; }
 
+    /// <summary>Whether trains and records are computed beside what goes on, before they are asked for.</summary>
+    public bool WorksAhead { get; init; } = true;
+
     /// <summary>Temperature of the room, degC.</summary>
     public double Ambient { get; init; } = 23;
 }

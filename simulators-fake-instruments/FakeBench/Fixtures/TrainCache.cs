@@ -5,9 +5,9 @@ namespace FakeBench.Fixtures;
 /// <summary>Noiseless trains, computed once: the same device at the same operating point gives the same one.</summary>
 /// <remarks>A train can be asked for ahead of time, while pulser and scope are armed; it is then there when it is
 /// fired.</remarks>
-public sealed class TrainCache
+/// <param name="places">How many trains are kept.</param>
+public sealed class TrainCache(int places = 8)
 {
-    private const int Places = 8;
     private readonly Lock _gate = new();
     private readonly List<(Key Key, Lazy<TrainTrajectory> Train)> _trains = [];
 
@@ -43,7 +43,7 @@ public sealed class TrainCache
             isNew = true;
             var entry = new Lazy<TrainTrajectory>(
                 () => HalfBridge.Simulate(circuit, train, window.Start, window.Interval, window.Points));
-            if (_trains.Count == Places)
+            if (_trains.Count == places)
             {
                 _trains.RemoveAt(0);
             }

@@ -23,6 +23,12 @@ public sealed class BenchServer : IAsyncDisposable
         var panels = new FrontPanels(Bench, options.Channels, options.Bits);
         foreach (Instrument panel in panels.All)
         {
+            if (faults.Has(LinkFault.Of(panel.Role, LinkFault.Refused)))
+            {
+                _hosts.Add((panel.Role, new NoHost()));
+                continue;
+            }
+
             _hosts.Add((panel.Role, panel == panels.Interlock && options.SerialInterlock
                 ? new SerialHost(panel)
                 : options.Hislip

@@ -92,6 +92,7 @@ public sealed class TcpHost : IHost
 
     private async Task Converse(Socket client)
     {
+        int boots = _instrument.Boots;
         var framer = new MessageFramer();
         byte[] buffer = new byte[8192];
         while (true)
@@ -104,7 +105,13 @@ public sealed class TcpHost : IHost
 
             foreach (string? message in framer.Take(buffer.AsSpan(0, count)))
             {
-                if (!await Reply(client, _instrument.Obey(message)))
+                Answer answer = _instrument.Obey(message);
+                if (answer.Deaf)
+                {
+                    await Task.Delay(Timeout.InfiniteTimeSpan, _time, _stop.Token);
+                }
+
+                if (!await Reply(client, _instrument.Boots == boots ? answer : answer with { CutShort = true }))
                 {
                     return;
                 }
@@ -123,7 +130,12 @@ public sealed class TcpHost : IHost
         ReadOnlyMemory<byte> rest = answer.Bytes.AsMemory(0, length);
         while (!rest.IsEmpty)
         {
-            rest = rest[await client.SendAsync(rest, _stop.Token)..];
+            ReadOnlyMemory<byte> piece = answer.Piece > 0 ? rest[..Math.Min(answer.Piece, rest.Length)] : rest;
+            rest = rest[await client.SendAsync(piece, _stop.Token)..];
+            if (answer.Piece > 0)
+            {
+                await Task.Delay(answer.Gap, _time, _stop.Token);
+            }
         }
 
         if (answer.CutShort)

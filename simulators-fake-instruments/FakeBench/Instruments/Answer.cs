@@ -9,4 +9,13 @@ public sealed record Answer(byte[] Bytes)
 
     /// <summary>Whether the link is reset after half of it.</summary>
     public bool CutShort { get; init; }
+
+    /// <summary>Bytes of a write; 0: all of them at once.</summary>
+    public int Piece { get; init; }
+
+    /// <summary>Time between two writes.</summary>
+    public TimeSpan Gap { get; init; }
+
+    /// <summary>Whether the link stays open from here on and is neither read nor written.</summary>
+    public bool Deaf { get; init; }
 }

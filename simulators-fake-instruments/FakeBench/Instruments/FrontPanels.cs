@@ -5,18 +5,17 @@ namespace FakeBench.Instruments;
 /// <summary>The instruments of a bench.</summary>
 public sealed class FrontPanels
 {
-    private readonly TrainCache _trains = new();
-
     /// <summary>Makes them.</summary>
     /// <param name="bench">What they share.</param>
     /// <param name="channels">Channels on the scope's inputs 1, 2, …</param>
     /// <param name="bits">Bits of the scope's converter, 8 or 12.</param>
-    public FrontPanels(Bench bench, IReadOnlyList<string> channels, int bits)
+    /// <param name="trains">Where trains are computed; null: a place of their own.</param>
+    public FrontPanels(Bench bench, IReadOnlyList<string> channels, int bits, TrainCache? trains = null)
     {
         ArgumentNullException.ThrowIfNull(bench);
         Supply = new Supply(bench);
         Scope = new Scope(bench, channels, bits);
-        Pulser = new Pulser(bench, Scope, _trains);
+        Pulser = new Pulser(bench, Scope, trains ?? new TrainCache());
         Voltmeter = new Voltmeter(bench);
         Interlock = new Interlock(bench);
         Hotplate = bench.Plate is { } plate ? new Hotplate(bench, plate) : null;

@@ -1,3 +1,4 @@
+using FakeBench.Faults;
 using FakeBench.Fixtures;
 using FakeBench.Scpi;
 
@@ -24,6 +25,9 @@ public abstract class Instrument
     /// <summary>The bench that it is part of.</summary>
     protected Bench Bench { get; }
 
+    /// <summary>How often its firmware started anew: connections of before are ended.</summary>
+    public int Boots { get; private set; }
+
     /// <summary>Its commands and status.</summary>
     protected Interpreter Scpi { get; }
 
@@ -42,9 +46,18 @@ public abstract class Instrument
                 return new Answer([]);
             }
 
+            if (Bench.Faults.Take(LinkFault.Of(Role, LinkFault.Reboot)))
+            {
+                Boots++;
+                Reset();
+                return new Answer([]) { CutShort = true };
+            }
+
+            Preload(LinkFault.QueueOverflow, ErrorList.Capacity + 1, -222);
+            Preload(LinkFault.HardwareError, 1, -240);
             Reply reply = Scpi.Obey(message);
             Refresh();
-            return Deliver(reply);
+            return Deliver(message, reply);
         }
     }
 
@@ -78,14 +91,25 @@ public abstract class Instrument
     protected abstract void Reset();
 
     /// <summary>How the reply goes out.</summary>
-    protected virtual Answer Deliver(Reply reply)
+    protected virtual Answer Deliver(string message, Reply reply)
     {
         ArgumentNullException.ThrowIfNull(reply);
-        return new Answer(reply.Finish());
+        return LinkFault.Spoil(Role, message, reply.Finish(), reply.Blocks, Bench.Faults);
     }
 
     /// <summary>Model in the answer to <c>*IDN?</c>.</summary>
     protected virtual string Model => $"FAKEBENCH-{Role.ToUpperInvariant()}";
+
+    private void Preload(string fault, int entries, int number)
+    {
+        if (Bench.Faults.Take(LinkFault.Of(Role, fault)))
+        {
+            for (int i = 0; i < entries; i++)
+            {
+                Scpi.Status.Report(number, "left by somebody else");
+            }
+        }
+    }
 
     private string Identify() => $"BENCHRUNNER,{Model},0,1";
 }

@@ -61,7 +61,7 @@ public sealed class Pulser : Instrument
     protected override void Refresh()
     {
         Scpi.Status.Operation.SetCondition(_armed ? WaitsForTrigger : 0);
-        if (_armed && Bench.BankAtRest)
+        if (_armed && Bench.BankAtRest && Bench.WorksAhead)
         {
             _trains.Prepare(Bench.HalfBridge, Train, _scope.Window);
         }
@@ -73,7 +73,8 @@ public sealed class Pulser : Instrument
             (Width.Default, Width.Default, Width.Default, High.Default, Low.Default, false, false);
 
     /// <inheritdoc/>
-    protected override Answer Deliver(Reply reply) => _silent ? new Answer([]) : base.Deliver(reply);
+    protected override Answer Deliver(string message, Reply reply) =>
+        _silent ? new Answer([]) : base.Deliver(message, reply);
 
     private void SetWidth(Call call, double width) => Change(() =>
     {
@@ -111,6 +112,10 @@ public sealed class Pulser : Instrument
         }
 
         _armed = true;
+        if (Bench.Faults.Has(FaultCatalogue.FiresOnArm))
+        {
+            Fire();
+        }
     }
 
     private void Fire()
@@ -121,6 +126,15 @@ public sealed class Pulser : Instrument
         }
 
         _armed = false;
+        One();
+        if (Bench.Faults.Take(FaultCatalogue.FiresTwice))
+        {
+            One();
+        }
+    }
+
+    private void One()
+    {
         _count++;
         Bench.Reached(MomentKind.Fire, _count);
         _silent |= Bench.Faults.Has(FaultCatalogue.FireUnanswered);

@@ -89,7 +89,8 @@ public sealed class Scope : Instrument
             ?? Trigger.Cut(again(start - (Margin(settings) * settings.Interval)), start, settings.Points)
             ?? throw new InvalidOperationException("The window does not hold the record.");
         _waiting = null;
-        _completeAt = Bench.Now + (settings.Points * settings.Interval);
+        _completeAt = Bench.Faults.Has(FaultCatalogue.NeverCompletes)
+            ? double.PositiveInfinity : Bench.Now + (settings.Points * settings.Interval);
         if (Bench.Faults.Take(FaultCatalogue.StaleRecord) && _record is not null)
         {
             return;
@@ -121,7 +122,7 @@ public sealed class Scope : Instrument
     }
 
     /// <inheritdoc/>
-    protected override Answer Deliver(Reply reply)
+    protected override Answer Deliver(string message, Reply reply)
     {
         ArgumentNullException.ThrowIfNull(reply);
         _blocks += reply.Blocks;
@@ -130,9 +131,7 @@ public sealed class Scope : Instrument
             Bench.Reached(MomentKind.Block, _blocks);
         }
 
-        bool cut = reply.Blocks > 0 && Bench.Faults.Take(FaultCatalogue.LinkDrops);
-        bool late = reply.HasContent && Bench.Faults.Take(FaultCatalogue.LateReply);
-        return base.Deliver(reply) with { CutShort = cut, Late = late ? FaultCatalogue.Lateness : TimeSpan.Zero };
+        return base.Deliver(message, reply);
     }
 
     private static int Margin(AcquisitionSettings settings) =>
@@ -231,7 +230,8 @@ public sealed class Scope : Instrument
         Scpi.Commands.Add("TRACe:PREamble?", 1, 1, (call, reply) =>
         {
             int input = call.Numbered("INTernal", _inputs.Probes.Count);
-            reply.Say(_format.Preamble(Record(), input, _bits, Count()));
+            double scale = Bench.Faults.Take(FaultCatalogue.WrongScale) ? 2 : 1;
+            reply.Say(_format.Preamble(Record(), input, _bits, Count(), scale));
         });
         Scpi.Commands.Add("TRACe[:DATA]?", 1, 1, (call, reply) =>
         {
@@ -273,7 +273,11 @@ public sealed class Scope : Instrument
     private void Keep(ScopeRecord record)
     {
         _record = record;
-        _record.Prepare();
+        if (Bench.WorksAhead)
+        {
+            _record.Prepare();
+        }
+
         _count++;
     }
 

@@ -31,9 +31,14 @@ public sealed class ScopeFormat
     }
 
     /// <summary>The preamble of an input.</summary>
+    /// <param name="record">The record.</param>
+    /// <param name="input">The input, from 1.</param>
+    /// <param name="bits">Bits of the converter.</param>
+    /// <param name="count">Acquisitions so far.</param>
+    /// <param name="scale">What is said of the volts a step, over what they are, 1.</param>
     /// <returns>Points, xincrement, xorigin, xreference, yincrement, yorigin, yreference, lowest code, highest code,
     /// acquisition count.</returns>
-    public string Preamble(ScopeRecord record, int input, int bits, long count)
+    public string Preamble(ScopeRecord record, int input, int bits, long count, double scale)
     {
         ArgumentNullException.ThrowIfNull(record);
         AcquisitionSettings settings = record.Settings;
@@ -45,7 +50,7 @@ public sealed class ScopeFormat
             Numbers.Nr3(settings.Interval),
             Numbers.Nr3(-settings.Pretrigger),
             "0",
-            Numbers.Nr3(set.Span / (1 << kept)),
+            Numbers.Nr3(scale * set.Span / (1 << kept)),
             Numbers.Nr3(set.Offset),
             "0",
             Numbers.Nr1(-(1 << (kept - 1))),

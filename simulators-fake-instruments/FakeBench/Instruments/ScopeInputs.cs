@@ -21,7 +21,7 @@ public sealed class ScopeInputs
         ArgumentNullException.ThrowIfNull(bench);
         _bench = bench;
         _channels = [.. channels];
-        Probes = [.. channels.Select(channel => BenchProbes.Of(channel, bench.LoadToNegative))];
+        Probes = [.. channels.Select(channel => BenchProbes.Of(Connected(channel), bench.LoadToNegative))];
         Current = Input("id_low");
     }
 
@@ -52,6 +52,8 @@ public sealed class ScopeInputs
         bool overdriven = inTrain && faults.Take(FaultCatalogue.ClippedRange);
         bool weak = inTrain && faults.Take(FaultCatalogue.WeakSignal);
         bool cut = inTrain && faults.Take(FaultCatalogue.ShortRecord);
+        bool arcs = faults.Has(FaultCatalogue.Arcing);
+        int? blocking = Input("vds_low");
         bool noisy = faults.Has(FaultCatalogue.NoisyProbe) && _bench.BankVoltage >= FaultCatalogue.NoiseFrom;
         var inputs = new List<RecordedInput>();
         for (int i = 1; i <= Probes.Count; i++)
@@ -65,6 +67,12 @@ public sealed class ScopeInputs
                 Gain = probe.Gain * (weak && i == freewheeling ? FaultCatalogue.WeakSwing : 1),
                 Noise = noisy && i == freewheeling ? FaultCatalogue.ProbeNoise : probe.Noise,
             };
+            bool isOff = i == blocking && faults.Has(FaultCatalogue.ProbeOff);
+            probe = probe with
+            {
+                Gain = isOff ? 0 : probe.Gain,
+                Noise = arcs ? FaultCatalogue.ArcNoise : isOff ? FaultCatalogue.OpenNoise : probe.Noise,
+            };
             double span = overdriven ? set.Span / 2 : set.Span;
             inputs.Add(new RecordedInput(probe.ShownBy(set.Attenuation), span, set.Offset)
             {
@@ -74,6 +82,14 @@ public sealed class ScopeInputs
 
         return inputs;
     }
+
+    private string Connected(string channel) => !_bench.Faults.Has(FaultCatalogue.ProbesSwapped) ? channel
+        : channel switch
+        {
+            "vds_low" => "vds_high",
+            "vds_high" => "vds_low",
+            _ => channel,
+        };
 
     // The name that a channel has on a bench whose low place fires.
     private string Name(int input) =>

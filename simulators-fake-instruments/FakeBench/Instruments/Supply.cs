@@ -68,18 +68,23 @@ public sealed class Supply : Instrument
             | (Bench.InCurrentLimit ? QuestionableCurrent : 0);
         Scpi.Status.Questionable.SetCondition(questionable);
         Scpi.Status.Operation.SetCondition(Bench.Slewing ? OperationSettling : 0);
+        if (Bench.Faults.Take(FaultCatalogue.SecondController))
+        {
+            Bench.Supply.Voltage *= FaultCatalogue.ForeignSetting;
+        }
+
         if (Bench.Faults.Take(FaultCatalogue.ErrorQueueFull))
         {
             for (int i = 0; i <= ErrorList.Capacity; i++)
             {
-                Scpi.Status.Report(-330, "left by an earlier user");
+                Scpi.Status.Report(-222, "left by an earlier user");
             }
         }
     }
 
     /// <inheritdoc/>
-    protected override Answer Deliver(Reply reply) =>
-        Bench.Faults.Has(FaultCatalogue.SilentSupply) ? new Answer([]) : base.Deliver(reply);
+    protected override Answer Deliver(string message, Reply reply) =>
+        Bench.Faults.Has(FaultCatalogue.SilentSupply) ? new Answer([]) : base.Deliver(message, reply);
 
     /// <inheritdoc/>
     protected override void Reset()

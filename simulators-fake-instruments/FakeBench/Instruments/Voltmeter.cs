@@ -10,6 +10,8 @@ public sealed class Voltmeter : Instrument
     private const double Gain = 1.0002;
     private const double Resolution = 1e-3;
 
+    private double? _stuck;
+
     /// <summary>Makes a voltmeter.</summary>
     public Voltmeter(Bench bench)
         : base(bench, "voltmeter")
@@ -23,7 +25,15 @@ public sealed class Voltmeter : Instrument
     {
     }
 
-    private double Reading() => Bench.Faults.Has(FaultCatalogue.VoltmeterOpen)
-        ? 0
-        : Math.Round(Bench.BankVoltage * Gain / Resolution) * Resolution;
+    private double Reading()
+    {
+        bool isOpen = Bench.Faults.Has(FaultCatalogue.VoltmeterOpen) || Bench.Faults.Has(FaultCatalogue.FuseOpens);
+        double shown = isOpen ? 0 : Math.Round(Bench.BankVoltage * Gain / Resolution) * Resolution;
+        if (!Bench.Faults.Has(FaultCatalogue.ReadingSticks))
+        {
+            return shown;
+        }
+
+        return _stuck ??= shown;
+    }
 }

@@ -3,7 +3,6 @@ using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Replies;
 using BenchRunner.Instruments.Roles;
-using Polly;
 
 namespace BenchRunner.Instruments.Sessions;
 
@@ -16,12 +15,12 @@ namespace BenchRunner.Instruments.Sessions;
 /// </remarks>
 public sealed class ScpiSession : IDisposable
 {
-    private readonly SemaphoreSlim _turn = new(1, 1);
+    private readonly Turn _turn = new();
     private readonly string _role;
     private readonly WireKeeper _wires;
     private readonly bool _numbered;
-    private readonly ResiliencePipeline _reading;
-    private readonly ResiliencePipeline _settingDown;
+    private readonly Repetition _reading;
+    private readonly Repetition _settingDown;
 
     private ScpiSession(string role, WireKeeper wires, SessionOptions options, TimeProvider time)
     {
@@ -69,7 +68,7 @@ public sealed class ScpiSession : IDisposable
     /// <param name="cancel">Ends the exchange; the next one begins with a resynchronisation.</param>
     /// <exception cref="LinkException">Late, cut, malformed or lost, as often as the options allow.</exception>
     public ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, CancellationToken cancel) =>
-        _reading.ExecuteAsync(
+        _reading.Run(
             static (state, cancel) => state.Session.AskOnce(state.Query, state.Parse, cancel),
             (Session: this, Query: query, Parse: parse),
             cancel);
@@ -87,7 +86,7 @@ public sealed class ScpiSession : IDisposable
             return await Ask(query, parse, cancel);
         }
 
-        var (answer, switchedOn) = await _reading.ExecuteAsync(
+        var (answer, switchedOn) = await _reading.Run(
             static (state, cancel) => state.Session.AskNumberedOnce(state.Query, state.Parse, cancel),
             (Session: this, Query: query, Parse: parse),
             cancel);
@@ -109,14 +108,14 @@ public sealed class ScpiSession : IDisposable
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
     {
-        await _turn.WaitAsync(cancel);
+        await _turn.Take(cancel);
         try
         {
             return await (await _wires.Ready(cancel)).AskBlock(query, bound, parse, cancel);
         }
         finally
         {
-            _turn.Release();
+            _turn.Give();
         }
     }
 
@@ -125,14 +124,14 @@ public sealed class ScpiSession : IDisposable
     /// <exception cref="LinkException">Late, malformed or lost.</exception>
     public async Task<(string? Answer, ErrorEntry Error)> Probe(string query, CancellationToken cancel)
     {
-        await _turn.WaitAsync(cancel);
+        await _turn.Take(cancel);
         try
         {
             return await (await _wires.Ready(cancel)).Probe(query, cancel);
         }
         finally
         {
-            _turn.Release();
+            _turn.Give();
         }
     }
 
@@ -169,10 +168,10 @@ public sealed class ScpiSession : IDisposable
     {
         ArgumentNullException.ThrowIfNull(commands);
         var reached = SendAllNow(commands) ? _wires.Current : null;
-        return await _settingDown.ExecuteAsync(
-            async token =>
+        return await _settingDown.Run(
+            async (commands, token) =>
             {
-                await _turn.WaitAsync(token);
+                await _turn.Take(token);
                 try
                 {
                     var wire = await _wires.Ready(token);
@@ -186,9 +185,10 @@ public sealed class ScpiSession : IDisposable
                 }
                 finally
                 {
-                    _turn.Release();
+                    _turn.Give();
                 }
             },
+            commands,
             cancel);
     }
 
@@ -216,34 +216,34 @@ public sealed class ScpiSession : IDisposable
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
-        await _turn.WaitAsync(cancel);
+        await _turn.Take(cancel);
         try
         {
             return await (await _wires.Ready(cancel)).Ask(query, parse, cancel);
         }
         finally
         {
-            _turn.Release();
+            _turn.Give();
         }
     }
 
     private async ValueTask<(T Answer, bool SwitchedOn)> AskNumberedOnce<T>(
         string query, ReplyParser<T> parse, CancellationToken cancel)
     {
-        await _turn.WaitAsync(cancel);
+        await _turn.Take(cancel);
         try
         {
             return await (await _wires.Ready(cancel)).AskNumbered(query, parse, cancel);
         }
         finally
         {
-            _turn.Release();
+            _turn.Give();
         }
     }
 
     private async Task SetOnce(Permit? permit, string command, CancellationToken cancel)
     {
-        await _turn.WaitAsync(cancel);
+        await _turn.Take(cancel);
         try
         {
             var wire = await _wires.Ready(cancel);
@@ -266,7 +266,7 @@ public sealed class ScpiSession : IDisposable
         }
         finally
         {
-            _turn.Release();
+            _turn.Give();
         }
     }
 

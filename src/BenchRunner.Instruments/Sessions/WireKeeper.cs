@@ -1,7 +1,6 @@
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Replies;
 using BenchRunner.Instruments.Roles;
-using Polly;
 
 namespace BenchRunner.Instruments.Sessions;
 
@@ -15,7 +14,7 @@ internal sealed class WireKeeper : IDisposable
     private readonly TimeProvider _time;
     private readonly IInstrumentLog _log;
     private readonly LinkOpener _opener;
-    private readonly ResiliencePipeline _connecting;
+    private readonly Repetition _connecting;
     private volatile ScpiWire _wire;
     private volatile int _connections;
     private bool _disposed;
@@ -130,8 +129,11 @@ internal sealed class WireKeeper : IDisposable
 
     private async Task<ScpiWire> Connect(CancellationToken cancel)
     {
-        var link = await _connecting.ExecuteAsync(
-            async token => await _opener(_address, _options, _time, token), cancel);
+        var link = await _connecting.Run(
+            static async (keeper, token) => await keeper._opener(
+                keeper._address, keeper._options, keeper._time, token),
+            this,
+            cancel);
         _connections++;
         var wire = new ScpiWire(link, _options, _time, Report);
         if (_address.Kind == LinkKind.Serial)

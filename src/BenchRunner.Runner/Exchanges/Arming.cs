@@ -89,7 +89,7 @@ public sealed class Arming(
         }
         finally
         {
-            await over.CancelAsync();
+            over.Cancel();
             await opened;
         }
     }
@@ -99,7 +99,7 @@ public sealed class Arming(
         try
         {
             await _enclosure.Opened(openings, question.Token);
-            await question.CancelAsync();
+            question.Cancel();
         }
         catch (OperationCanceledException)
         {

@@ -7,6 +7,7 @@ using BenchRunner.Acceptance.Validity;
 using BenchRunner.Evidence.Captures;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
+using BenchRunner.Instruments.Sessions;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Proving;
 using BenchRunner.Runner.Sinks;
@@ -90,10 +91,9 @@ public sealed class PointFixture(
             finally
             {
                 // Nobody may be left reading the voltmeter while the bench is made safe.
-                await enough.CancelAsync();
-                await turn.ContinueWith(
-                    static _ => { }, CancellationToken.None, TaskContinuationOptions.ExecuteSynchronously,
-                    TaskScheduler.Default);
+                enough.Cancel();
+                await ((Task)turn).ConfigureAwait(
+                    ConfigureAwaitOptions.SuppressThrowing | ConfigureAwaitOptions.ContinueOnCapturedContext);
             }
         }
     }
@@ -151,7 +151,11 @@ public sealed class PointFixture(
             CountBefore = state.Count,
             CountAfter = record.Count,
         };
-        return Task.Run(() => StoreAndJudge(capture, record, plate, state), CancellationToken.None);
+        return Background.Start(() =>
+        {
+            StoreAndJudge(capture, record, plate, state);
+            return Task.CompletedTask;
+        });
     }
 
     private void StoreAndJudge(CaptureRow capture, ScopeRecord record, double? plate, PointState state)

@@ -1,0 +1,74 @@
+using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Sessions;
+using FakeBench.Faults;
+using FakeBench.Fixtures;
+using FakeBench.Instruments;
+
+namespace BenchRunner.Soak.Simulated;
+
+/// <summary>The fake bench in memory, and the links to it.</summary>
+internal sealed class MemoryBench
+{
+    private const int MostClients = 4;
+    private static readonly string[] _channels = ["vgs_low", "vds_low", "id_low", "vgs_high", "vds_high", "vbus"];
+
+    private readonly VirtualTime _time;
+    private readonly Func<TimeSpan> _latency;
+    private readonly FrontPanels _panels;
+    private readonly List<(string Role, MemoryLink Link)> _links = [];
+
+    /// <summary>Makes a bench with a device in its socket.</summary>
+    /// <param name="setup">What it is made of.</param>
+    /// <param name="faults">What goes wrong.</param>
+    /// <param name="time">The clock.</param>
+    /// <param name="latency">How long the next message or reply takes.</param>
+    /// <param name="trains">Where trains are computed.</param>
+    public MemoryBench(
+        BenchSetup setup, IEnumerable<Fault> faults, VirtualTime time, Func<TimeSpan> latency, TrainCache trains)
+    {
+        (_time, _latency) = (time, latency);
+        Bench = new Bench(setup with { WorksAhead = false }, new FaultPlan(faults), time);
+        _panels = new FrontPanels(Bench, _channels, 12, trains);
+    }
+
+    /// <summary>The bench behind the instruments.</summary>
+    public Bench Bench { get; }
+
+    /// <summary>Links that nobody has closed, by role.</summary>
+    public IEnumerable<string> Open => _links.Where(open => !open.Link.IsClosed).Select(open => open.Role);
+
+    /// <summary>Opens a link: <c>tcp ROLE 1</c>.</summary>
+    public async Task<ILink> Connect(
+        LinkAddress address, SessionOptions options, TimeProvider time, CancellationToken cancel)
+    {
+        await Task.Delay(_latency(), time, cancel);
+        Instrument panel = _panels.All.Single(panel => panel.Role == address.Host);
+        if (Bench.Faults.Has(LinkFault.Of(panel.Role, LinkFault.Refused)))
+        {
+            throw new LinkException(address.ToString(), "cannot connect (ConnectionRefused)");
+        }
+
+        int most = Bench.Faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
+        var link = new MemoryLink(address.ToString(), panel, _time, _latency);
+        if (_links.Count(open => open.Role == panel.Role && !open.Link.IsClosed) >= most)
+        {
+            link.End();
+        }
+
+        _links.Add((panel.Role, link));
+        return link;
+    }
+
+    /// <summary>What the bank has now, V.</summary>
+    public double BankVoltage
+    {
+        get
+        {
+            lock (Bench.Gate)
+            {
+                Bench.Advance();
+                return Bench.BankVoltage;
+            }
+        }
+    }
+}
