@@ -1,4 +1,6 @@
 using System.Text.Json;
+using BenchRunner.Soak.Mixes;
+using FakeBench.Fixtures;
 
 namespace BenchRunner.Soak;
 
@@ -6,19 +8,67 @@ namespace BenchRunner.Soak;
 internal static class Program
 {
     private const int WrongInput = 2;
+
+    // Each simulation is one thread; two of them share this computer's two cores.
+    private const int Lanes = 2;
+    private const int KeptTrains = 48;
+
     private static readonly JsonSerializerOptions _form = new(JsonSerializerDefaults.Web) { WriteIndented = true };
 
     private static int Main(string[] arguments)
     {
         if (Options.Read(arguments) is not { } options)
         {
-            System.Console.Error.WriteLine(Options.Usage);
+            Console.Error.WriteLine(Options.Usage);
             return WrongInput;
         }
 
         List<Failure> failures = [];
-        System.Console.Out.WriteLine(
-            JsonSerializer.Serialize(new { mixes = 0, failures }, _form));
+        string parent = Directory.CreateTempSubdirectory("soak-").FullName;
+        try
+        {
+            int next = 0;
+            Parallel.For(0, Math.Min(Lanes, options.Mixes), _ =>
+            {
+                var trains = new TrainCache(KeptTrains);
+                while (Interlocked.Increment(ref next) is var number && number <= options.Mixes)
+                {
+                    Judged judged = Trial.Run(Mix.Of(options.Seed + (ulong)number - 1), trains, parent);
+                    lock (failures)
+                    {
+                        Tell(judged, options, failures);
+                    }
+                }
+            });
+        }
+        finally
+        {
+            Directory.Delete(parent, recursive: true);
+        }
+
+        failures.Sort((one, other) => one.Seed.CompareTo(other.Seed));
+        Console.Out.WriteLine(options.Json
+            ? JsonSerializer.Serialize(new { mixes = options.Mixes, failures }, _form)
+            : $"{options.Mixes} mixes, {failures.Count} failures");
         return failures.Count == 0 ? 0 : 1;
+    }
+
+    private static void Tell(Judged judged, Options options, List<Failure> failures)
+    {
+        TextWriter where = options.Json ? Console.Error : Console.Out;
+        if (options.Log)
+        {
+            foreach (string line in (IEnumerable<string>)[judged.Mix.ToString(), .. judged.Log])
+            {
+                where.WriteLine(line);
+            }
+        }
+
+        if (judged.Wrong.Length > 0)
+        {
+            failures.Add(new Failure(judged.Mix.Seed, judged.Wrong));
+            where.WriteLine($"{judged.Mix}\n  {judged.Wrong}");
+            where.WriteLine(FormattableString.Invariant($"  replay: --seed {judged.Mix.Seed} --mixes 1 --log"));
+        }
     }
 }

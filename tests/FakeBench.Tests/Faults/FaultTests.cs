@@ -122,7 +122,7 @@ public sealed class FaultTests
         TestBench bench = Ready("late-reply@fire:1");
         Assert.Equal(TimeSpan.Zero, bench.Scope.Obey("*IDN?").Late);
         TestBench.Say(bench.Pulser, "INIT;:TRIG");
-        Assert.Equal(FaultCatalogue.Lateness, bench.Scope.Obey("*IDN?").Late);
+        Assert.Equal(LinkFault.Lateness, bench.Scope.Obey("*IDN?").Late);
         Assert.Equal(TimeSpan.Zero, bench.Scope.Obey("*IDN?").Late);
     }
 
@@ -161,7 +161,7 @@ public sealed class FaultTests
     {
         var bench = new TestBench(faults: "error-queue-full");
         string[] errors = [.. Enumerable.Range(0, 17).Select(_ => TestBench.Ask(bench.Supply, "SYST:ERR?"))];
-        Assert.StartsWith("-330,", errors[0], StringComparison.Ordinal);
+        Assert.StartsWith("-222,", errors[0], StringComparison.Ordinal);
         Assert.Equal("-350,\"Queue overflow\"", errors[15]);
         Assert.Equal("0,\"No error\"", errors[16]);
     }

@@ -1,0 +1,57 @@
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Evidence;
+using BenchRunner.Instruments.Links;
+using BenchRunner.Instruments.Roles;
+using BenchRunner.Runner.Benches;
+using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Sessions;
+using BenchRunner.Safety;
+using BenchRunner.Soak.Simulated;
+
+namespace BenchRunner.Soak.Mixes;
+
+/// <summary>What a trial left behind.</summary>
+/// <param name="Mix">The mix.</param>
+/// <param name="Bench">The bench.</param>
+/// <param name="Recorder">What was said.</param>
+/// <param name="Summary">The session's end; null: it threw.</param>
+/// <param name="Thrown">What it threw; null: it did not.</param>
+/// <param name="Interrupted">Whether the operator interrupted.</param>
+/// <param name="Folder">The folder with the evidence.</param>
+internal sealed record Facts(
+    Mix Mix, MemoryBench Bench, Recorder Recorder, RunSummary? Summary, Exception? Thrown, bool Interrupted, string Folder)
+{
+    /// <summary>The one device's report; null: it got no run.</summary>
+    public DeviceReport? Report => Recorder.Reports.SingleOrDefault();
+
+    /// <summary>The exit code that the README documents for it, read there anew rather than taken from the
+    /// command.</summary>
+    public int ExitCode => Thrown is { } thrown ? Of(thrown)
+        : Summary!.BrokenOff is { } broken && Report!.Ending == BenchEnding.Proved ? Of(broken)
+        : Report!.Ending switch
+        {
+            BenchEnding.Tripped => 4,
+            BenchEnding.InstrumentFailed => 5,
+            BenchEnding.EvidenceFailed => 6,
+            BenchEnding.Interrupted => 130,
+            BenchEnding.Fault => 70,
+            _ => Report.Decision.Outcome switch
+            {
+                Outcome.Accepted or Outcome.Stopped => 0,
+                Outcome.Rejected => 1,
+                _ => 3,
+            },
+        };
+
+    private int Of(Exception thrown) => thrown switch
+    {
+        OperationCanceledException when Interrupted => 130,
+        RefusedException { Kind: RefusalKind.Latched } => 4,
+        RefusedException { Kind: RefusalKind.Taken } => 5,
+        RefusedException => 2,
+        EvidenceException => 6,
+        SafetyException => 4,
+        BenchException or LinkException or InstrumentException => 5,
+        _ => 70,
+    };
+}

@@ -1,0 +1,152 @@
+using BenchRunner.Acceptance.Decisions;
+using BenchRunner.Acceptance.Events;
+using BenchRunner.Evidence.Audits;
+using BenchRunner.Runner.Devices;
+using Microsoft.Data.Sqlite;
+
+namespace BenchRunner.Soak.Mixes;
+
+/// <summary>What must be so after any mix, whatever went wrong in it.</summary>
+internal static class Judgement
+{
+    private const double BusDown = 60;
+    private static readonly int[] _documented = [0, 1, 2, 3, 4, 5, 6, 130];
+    private static readonly string[] _files =
+        ["bench.latch", "bench.lock", "bench.lock-holder", "bench.yaml", "evidence.db", "evidence.db-writer", "sequence.yaml"];
+
+    /// <summary>Everything that is wrong, a line each.</summary>
+    /// <remarks>What was left comes first: reading the evidence makes files of its own.</remarks>
+    public static IEnumerable<string> Of(Facts facts) =>
+        [.. Left(facts), .. Ending(facts), .. Bus(facts), .. Accepted(facts), .. Evidence(facts)];
+
+    private static IEnumerable<string> Ending(Facts facts)
+    {
+        if (!_documented.Contains(facts.ExitCode))
+        {
+            yield return $"exit code {facts.ExitCode}: {facts.Thrown?.ToString() ?? facts.Report?.Decision.Reason}";
+        }
+
+        bool accepted = facts.Report?.Decision.Outcome == Outcome.Accepted;
+        if (accepted != (facts.ExitCode == 0))
+        {
+            yield return $"exit code {facts.ExitCode} beside {facts.Report?.Decision.Outcome}";
+        }
+
+        bool tripped = facts.Recorder.Events.Exists(happened => happened.Kind == "trip");
+        if (tripped && facts.ExitCode != 4)
+        {
+            yield return $"exit code {facts.ExitCode} though it tripped";
+        }
+
+        string? why = facts.Report?.Decision.Reason ?? facts.Thrown?.Message ?? facts.Summary?.BrokenOff?.Message;
+        if (facts.ExitCode is not (0 or 1 or 3) && string.IsNullOrWhiteSpace(why))
+        {
+            yield return $"exit code {facts.ExitCode} without a word why";
+        }
+    }
+
+    private static IEnumerable<string> Bus(Facts facts)
+    {
+        double volts = facts.Bench.BankVoltage;
+        bool isLoud = facts.Recorder.Events.Exists(
+            happened => happened is { Kind: "bus-not-proved-down", Severity: Severity.Alarm });
+        if (volts >= BusDown && !(isLoud && facts.ExitCode == 4))
+        {
+            yield return FormattableString.Invariant(
+                $"the bus is at {volts:0.0} V, exit code {facts.ExitCode}, {(isLoud ? "said" : "nothing said of it")}");
+        }
+
+        bool wasCharged = facts.Recorder.Events.Exists(happened => happened.Kind is "proving-started");
+        BenchEvent? last = facts.Recorder.Events.FindLast(
+            happened => happened.Kind is "bus-not-proved-down" or "bus-down");
+        if (wasCharged && last is null)
+        {
+            yield return "nothing says what became of the bus";
+        }
+
+        if (volts >= BusDown && last is { Kind: "bus-down" })
+        {
+            yield return FormattableString.Invariant($"the bus was called down and is at {volts:0.0} V");
+        }
+    }
+
+    private static IEnumerable<string> Accepted(Facts facts)
+    {
+        if (facts.Report is not { Decision.Outcome: Outcome.Accepted } report)
+        {
+            yield break;
+        }
+
+        if (report.Ending != BenchEnding.Proved)
+        {
+            yield return $"accepted and {report.Ending}";
+        }
+
+        bool hasTrace = facts.Recorder.Events.Exists(happened => happened.Severity >= Severity.Warning);
+        foreach (string fault in facts.Mix.Faults.Select(fault => fault.Name).Distinct())
+        {
+            if (facts.Bench.Bench.Faults.Has(fault) && FaultEffects.Forbids(fault, facts.Mix, hasTrace, facts.Bench))
+            {
+                yield return $"accepted in spite of {fault}";
+            }
+        }
+    }
+
+    private static IEnumerable<string> Evidence(Facts facts)
+    {
+        string file = Path.Combine(facts.Folder, "evidence.db");
+        if (!File.Exists(file))
+        {
+            yield return "there is no evidence file";
+            yield break;
+        }
+
+        foreach (AuditProblem problem in EvidenceAudit.Verify(file).Problems)
+        {
+            yield return $"audit: {problem.What}: {problem.Message}";
+        }
+
+        using var connection = new SqliteConnection($"Data Source={file};Mode=ReadOnly;Pooling=False");
+        connection.Open();
+        long Count(string sql)
+        {
+            using SqliteCommand command = connection.CreateCommand();
+#pragma warning disable CA2100 // The soak's own SQL.
+            command.CommandText = sql;
+#pragma warning restore CA2100
+            return (long)command.ExecuteScalar()!;
+        }
+
+        if (Count("select count(*) from device_outcomes where finished_at is not null") is var ended
+            && ended != facts.Recorder.Reports.Count)
+        {
+            yield return $"{ended} runs with an end in the evidence, {facts.Recorder.Reports.Count} were reported";
+        }
+
+        if (Count("select count(*) from captures where valid is null and operating_point <> 'zero'") is > 0 and var bare)
+        {
+            yield return $"{bare} captures were never judged";
+        }
+
+        if (Count("select count(*) from seal") < facts.Recorder.Reports.Count)
+        {
+            yield return "a run has no seal";
+        }
+    }
+
+    private static IEnumerable<string> Left(Facts facts)
+    {
+        foreach (string role in facts.Bench.Open)
+        {
+            yield return $"a link to {role} was left open";
+        }
+
+        foreach (string file in Directory.GetFileSystemEntries(facts.Folder).Select(file => Path.GetFileName(file)))
+        {
+            if (!_files.Contains(file))
+            {
+                yield return $"{file} was left behind";
+            }
+        }
+    }
+}
