@@ -27,6 +27,9 @@ public sealed class RunSession
     private readonly EventSource _events;
     private readonly LatchFile _latch;
 
+    /// <summary>The bench is watched to the last, so it may trip after the last device's report.</summary>
+    private Trip? _trip;
+
     /// <summary>Makes a session; nothing is opened before <see cref="Run"/>.</summary>
     public RunSession(RunRequest request, IRunSink sinks, IOperator person, TimeProvider time)
     {
@@ -64,6 +67,20 @@ public sealed class RunSession
     public async Task<RunSummary> Run(IDeviceSource devices, CancellationToken operatorStop)
     {
         ArgumentNullException.ThrowIfNull(devices);
+        try
+        {
+            RunSummary summary = await Work(devices, operatorStop);
+            return _trip is { } trip && summary.Devices.All(device => device.Ending != BenchEnding.Tripped)
+                ? summary with { BrokenOff = new SafetyException(trip.Reason) } : summary;
+        }
+        catch (Exception broken) when (_trip is not null && broken is not SafetyException)
+        {
+            throw new SafetyException(_trip.Reason);
+        }
+    }
+
+    private async Task<RunSummary> Work(IDeviceSource devices, CancellationToken operatorStop)
+    {
         if (!IsNewEachTime && !Bench.ExchangeByHand && devices.Waiting.Count > 1 && !devices.FromReader)
         {
             throw new RefusedException(
@@ -130,6 +147,7 @@ public sealed class RunSession
 
     private void LeaveLatch(Trip trip)
     {
+        _trip = trip;
         if (IsNewEachTime || !trip.Energised)
         {
             return;

@@ -27,8 +27,10 @@ internal sealed record Facts(
     /// <summary>The exit code that the README documents for it, read there anew rather than taken from the
     /// command.</summary>
     public int ExitCode => Thrown is { } thrown ? Of(thrown)
-        : Summary!.BrokenOff is { } broken && Report!.Ending == BenchEnding.Proved ? Of(broken)
-        : Report!.Ending switch
+        : Summary!.BrokenOff is { } broken ? Worse(Of(broken), OfReport)
+        : OfReport;
+
+    private int OfReport => Report!.Ending switch
         {
             BenchEnding.Tripped => 4,
             BenchEnding.InstrumentFailed => 5,
@@ -42,6 +44,12 @@ internal sealed record Facts(
                 _ => 3,
             },
         };
+
+    private static int Worse(int one, int other)
+    {
+        int[] rank = [4, 6, 5, 70, 130, 2, 1, 3, 0];
+        return Array.IndexOf(rank, one) < Array.IndexOf(rank, other) ? one : other;
+    }
 
     private int Of(Exception thrown) => thrown switch
     {

@@ -31,6 +31,17 @@ internal static class FaultEffects
         LinkFault.BlockDigits, LinkFault.BlockLong, LinkFault.Garbage, LinkFault.QueueOverflow, LinkFault.Reboot,
     ];
 
+    /// <summary>These spoil trains; one that begins after the last spoils nothing.</summary>
+    private static readonly HashSet<string> _ofTrains =
+    [
+        FaultCatalogue.FireUnanswered, FaultCatalogue.DeviceDies, FaultCatalogue.NoisyProbe,
+        FaultCatalogue.ProbeFactorChanges, FaultCatalogue.LongPulse, FaultCatalogue.WeakGateDriver,
+        FaultCatalogue.HighOffLevel, FaultCatalogue.GateLifts, FaultCatalogue.InductorFarOff,
+        FaultCatalogue.NeverCompletes, FaultCatalogue.ProbeOff, FaultCatalogue.Arcing, FaultCatalogue.Desaturates,
+        FaultCatalogue.GateStuckOn, FaultCatalogue.FiresOnArm, FaultCatalogue.FiresTwice, FaultCatalogue.DriverLost,
+        FaultCatalogue.SecondController, FaultCatalogue.SupplyClips,
+    ];
+
     /// <summary>Whether a device that was accepted should not have been.</summary>
     /// <param name="fault">A fault that has begun.</param>
     /// <param name="mix">The mix.</param>
@@ -39,7 +50,8 @@ internal static class FaultEffects
     public static bool Forbids(string fault, Mix mix, bool hasTrace, MemoryBench bench)
     {
         string name = fault.Split('/')[^1];
-        return _never.Contains(name)
+        bool isOver = _ofTrains.Contains(name) && bench.FiresUnder(fault) == 0;
+        return (_never.Contains(name) && !isOver)
             || (name == FaultCatalogue.SaturatingInductor && mix.Points.Contains("rated"))
             || (_counted.Contains(name) && bench.Bench.Faults.HasActed(fault) && !hasTrace);
     }

@@ -1,3 +1,5 @@
+using System.Globalization;
+using System.Text;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Sessions;
 using FakeBench.Faults;
@@ -16,6 +18,8 @@ internal sealed class MemoryBench
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
     private readonly List<(string Role, MemoryLink Link)> _links = [];
+    private readonly Dictionary<string, int> _firesBefore = [];
+    private readonly IReadOnlyList<Fault> _faults;
 
     /// <summary>Makes a bench with a device in its socket.</summary>
     /// <param name="setup">What it is made of.</param>
@@ -27,7 +31,8 @@ internal sealed class MemoryBench
         BenchSetup setup, IEnumerable<Fault> faults, VirtualTime time, Func<TimeSpan> latency, TrainCache trains)
     {
         (_time, _latency) = (time, latency);
-        Bench = new Bench(setup with { WorksAhead = false }, new FaultPlan(faults), time);
+        _faults = [.. faults];
+        Bench = new Bench(setup with { WorksAhead = false }, new FaultPlan(_faults), time);
         _panels = new FrontPanels(Bench, _channels, 12, trains);
     }
 
@@ -36,6 +41,9 @@ internal sealed class MemoryBench
 
     /// <summary>Links that nobody has closed, by role.</summary>
     public IEnumerable<string> Open => _links.Where(open => !open.Link.IsClosed).Select(open => open.Role);
+
+    /// <summary>Trains that were fired while a fault was in force.</summary>
+    public int FiresUnder(string fault) => Fires() - _firesBefore.GetValueOrDefault(fault, Fires());
 
     /// <summary>Opens a link: <c>tcp ROLE 1</c>.</summary>
     public async Task<ILink> Connect(
@@ -49,7 +57,7 @@ internal sealed class MemoryBench
         }
 
         int most = Bench.Faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
-        var link = new MemoryLink(address.ToString(), panel, _time, _latency);
+        var link = new MemoryLink(address.ToString(), panel, _time, _latency, NoteBegun);
         if (_links.Count(open => open.Role == panel.Role && !open.Link.IsClosed) >= most)
         {
             link.End();
@@ -57,6 +65,21 @@ internal sealed class MemoryBench
 
         _links.Add((panel.Role, link));
         return link;
+    }
+
+    private int Fires() => int.Parse(
+        Encoding.ASCII.GetString(_panels.Pulser.Obey("SOURce:PULSe:COUNt?").Bytes), CultureInfo.InvariantCulture);
+
+    /// <summary>A fault that begins with a train is there for that train already.</summary>
+    private void NoteBegun()
+    {
+        foreach (Fault fault in _faults)
+        {
+            if (Bench.Faults.Has(fault.Name) && !_firesBefore.ContainsKey(fault.Name))
+            {
+                _firesBefore[fault.Name] = Fires() - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0);
+            }
+        }
     }
 
     /// <summary>What the bank has now, V.</summary>

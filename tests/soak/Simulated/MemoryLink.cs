@@ -10,7 +10,8 @@ namespace BenchRunner.Soak.Simulated;
 /// <param name="panel">The instrument.</param>
 /// <param name="time">The clock.</param>
 /// <param name="latency">How long the next message or reply takes.</param>
-internal sealed class MemoryLink(string name, Instrument panel, VirtualTime time, Func<TimeSpan> latency) : ILink
+/// <param name="obeyed">Told after each message that the instrument has obeyed.</param>
+internal sealed class MemoryLink(string name, Instrument panel, VirtualTime time, Func<TimeSpan> latency, Action obeyed) : ILink
 {
     private readonly int _boots = panel.Boots;
     private readonly MessageFramer _framer = new();
@@ -106,6 +107,7 @@ internal sealed class MemoryLink(string name, Instrument panel, VirtualTime time
         }
 
         Answer answer = panel.Obey(message);
+        obeyed();
         answer = panel.Boots == _boots ? answer : answer with { CutShort = true };
         time.After(answer.Late + latency(), () => Deliver(answer, 0));
     }
