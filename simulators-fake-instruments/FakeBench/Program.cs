@@ -9,6 +9,8 @@ namespace FakeBench;
 public static class Program
 {
     private const int WrongInput = 2;
+    private static readonly TimeSpan SettleWithin = TimeSpan.FromSeconds(60);
+    private static readonly TimeSpan LookEvery = TimeSpan.FromMilliseconds(20);
 
     private const string Help = """
         FakeBench: a simulated half bridge with instruments that speak SCPI.
@@ -30,7 +32,10 @@ public static class Program
             --fault NAME[@WHEN]   a fault; may repeat; WHEN is fire:N, volts:V, seconds:S or block:N
             --write-bench FILE    writes a bench file that reaches the instruments
             --exchange none|by-hand  how devices are exchanged, as the bench file says it (none)
-            --ends-with-input     ends when standard input ends, and ignores a terminal's interrupts
+            --ends-with-input     ends when standard input has ended, nobody is connected and the bank is down
+                                  (after 60 s at the latest), and ignores a terminal's interrupts
+            --say-states          says when all outputs go off or on and the bank passes 60 V, with the machine's
+                                  monotonic time in seconds: state outputs-off 1234.5678
           faults            lists the faults, a line each
           devices           lists the named devices as CSV
 
@@ -91,7 +96,17 @@ public static class Program
         }
 
         Console.Out.WriteLine("ready");
+        using var told = new CancellationTokenSource();
+        Task telling = options.SayStates
+            ? StateTeller.Tell(server, Console.Out, TimeProvider.System, told.Token) : Task.CompletedTask;
         await Hands(server, options.EndsWithInput, stop.Token);
+        if (options.EndsWithInput)
+        {
+            await Settle(server, stop.Token);
+        }
+
+        await told.CancelAsync();
+        await telling;
         signals.ForEach(s => s.Dispose());
     }
 
@@ -128,6 +143,24 @@ public static class Program
         { IsBackground = true, Name = "hands" };
         reader.Start();
         await ended.Task;
+    }
+
+    // Whoever started it may have died with the bank full: a guardian then still needs the instruments.
+    private static async Task Settle(BenchServer server, CancellationToken stop)
+    {
+        using var limit = new CancellationTokenSource(SettleWithin, TimeProvider.System);
+        using var either = CancellationTokenSource.CreateLinkedTokenSource(limit.Token, stop);
+        try
+        {
+            while (server.Clients > 0 || !server.Look().IsDown)
+            {
+                await Task.Delay(LookEvery, TimeProvider.System, either.Token);
+            }
+        }
+        catch (OperationCanceledException)
+        {
+            // Long enough.
+        }
     }
 
     private static void ListFaults()

@@ -45,6 +45,7 @@ public static class Arguments
     private static ServeOptions? Flag(ServeOptions options, string name) => name switch
     {
         "--ends-with-input" => options with { EndsWithInput = true },
+        "--say-states" => options with { SayStates = true },
         "--sound" => options with { Sound = true },
         "--hotplate" => options with { Hotplate = true },
         _ => null,

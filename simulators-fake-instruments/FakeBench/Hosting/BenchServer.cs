@@ -10,6 +10,7 @@ public sealed class BenchServer : IAsyncDisposable
 {
     private const int MostClients = 4;
     private readonly List<(string Role, IHost Host)> _hosts = [];
+    private readonly FrontPanels _panels;
 
     /// <summary>Starts all instruments.</summary>
     /// <param name="options">What is asked for.</param>
@@ -20,8 +21,8 @@ public sealed class BenchServer : IAsyncDisposable
         var faults = new FaultPlan(options.Faults);
         Bench = new Bench(options.Setup, faults, time);
         int clients = faults.Has(FaultCatalogue.SingleClient) ? 1 : MostClients;
-        var panels = new FrontPanels(Bench, options.Channels, options.Bits);
-        foreach (Instrument panel in panels.All)
+        _panels = new FrontPanels(Bench, options.Channels, options.Bits);
+        foreach (Instrument panel in _panels.All)
         {
             if (faults.Has(LinkFault.Of(panel.Role, LinkFault.Refused)))
             {
@@ -29,7 +30,7 @@ public sealed class BenchServer : IAsyncDisposable
                 continue;
             }
 
-            _hosts.Add((panel.Role, panel == panels.Interlock && options.SerialInterlock
+            _hosts.Add((panel.Role, panel == _panels.Interlock && options.SerialInterlock
                 ? new SerialHost(panel)
                 : options.Hislip
                     ? new HislipHost(panel, new ServerTerms { MostClients = clients }, time)
@@ -42,6 +43,21 @@ public sealed class BenchServer : IAsyncDisposable
 
     /// <summary>Roles and their links.</summary>
     public IReadOnlyList<(string Role, string Link)> Links => [.. _hosts.Select(h => (h.Role, h.Host.Link))];
+
+    /// <summary>Clients that are connected to any instrument.</summary>
+    public int Clients => _hosts.Sum(h => h.Host.Clients);
+
+    /// <summary>The bench's own truth, at this moment.</summary>
+    public BenchTruth Look()
+    {
+        lock (Bench.Gate)
+        {
+            Bench.Advance();
+            return new BenchTruth(
+                OutputsOff: !Bench.Supply.Output && (!_panels.Pulser.CanFire || !Bench.Chain.Closed),
+                BankVoltage: Bench.BankVoltage);
+        }
+    }
 
     /// <summary>Lets the operator's hands do something.</summary>
     /// <returns>Why it could not be done; null: done.</returns>

@@ -59,7 +59,11 @@ public sealed record ServeOptions
     /// <summary>Bench file to write; null: none.</summary>
     public string? WriteBench { get; init; }
 
-    /// <summary>Whether the end of standard input ends the program; it then ignores a terminal's interrupts.</summary>
+    /// <summary>Whether it says when outputs and bank change; see <see cref="StateTeller"/>.</summary>
+    public bool SayStates { get; init; }
+
+    /// <summary>Whether the end of standard input ends the program, once nobody is connected and the bank is down; it then
+    /// ignores a terminal's interrupts.</summary>
     public bool EndsWithInput { get; init; }
 
     /// <summary>What the bench is made of.</summary>

@@ -34,6 +34,9 @@ public sealed class TcpHost : IHost
     public int Port { get; }
 
     /// <inheritdoc/>
+    public int Clients => Volatile.Read(ref _clients);
+
+    /// <inheritdoc/>
     public string Link => string.Create(CultureInfo.InvariantCulture, $"tcp 127.0.0.1 {Port}");
 
     /// <inheritdoc/>

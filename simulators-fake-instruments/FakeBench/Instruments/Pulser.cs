@@ -54,6 +54,9 @@ public sealed class Pulser : Instrument
         commands.Ask("[SOURce:]PULSe:COUNt?", _ => Numbers.Nr1(_count));
     }
 
+    /// <summary>Whether it can drive the gates: its output is on, or it waits for its trigger.</summary>
+    public bool CanFire => _output || _armed;
+
     private PulseTrain Train =>
         Flaws.On(new PulseTrain(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage), Bench.Faults);
 

@@ -7,10 +7,12 @@ namespace BenchRunner.Runner.Benches;
 
 /// <summary>The fake bench that <c>run</c> starts as a child: its instruments' links, and the hands that exchange
 /// devices.</summary>
-/// <remarks>It ends when its standard input closes, so it cannot outlive the run, however the run ends.</remarks>
+/// <remarks>It ends when its standard input has closed, its bank is down and nobody is connected any more: the guardian of a
+/// run that died still needs it. After a minute it ends in any case.</remarks>
 public sealed class FakeBenchProcess : IHands, IAsyncDisposable
 {
     private static readonly TimeSpan StartLimit = TimeSpan.FromSeconds(15);
+    private static readonly TimeSpan EndLimit = TimeSpan.FromSeconds(2);
     private readonly Process _process;
 
     private FakeBenchProcess(Process process, IReadOnlyDictionary<string, string> links)
@@ -77,14 +79,15 @@ public sealed class FakeBenchProcess : IHands, IAsyncDisposable
             // It has ended by itself, and what was written last found no reader: there is nothing left to end.
         }
 
-        using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(5));
+        // One whose bank is not down stays for the guardian, and ends by itself.
+        using var patience = new CancellationTokenSource(EndLimit, TimeProvider.System);
         try
         {
             await _process.WaitForExitAsync(patience.Token);
         }
         catch (OperationCanceledException)
         {
-            _process.Kill();
+            // It holds up no run's end.
         }
 
         _process.Dispose();

@@ -31,7 +31,7 @@ public sealed class OpenBenchTests : IDisposable
     public async Task Safety_has_connections_of_its_own_where_the_instrument_serves_more_than_one()
     {
         Bench bench =
-            _place.Bench(("dialect: generic-pulser, connections: 2", "dialect: generic-pulser, connections: 1"));
+            _place.Bench(("dialect: generic-pulser, connections: 3", "dialect: generic-pulser, connections: 1"));
         await using FakeBenchProcess fake = await Start(bench);
         await using OpenBench open = await Open(bench, fake.Links);
 
