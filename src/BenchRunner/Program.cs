@@ -8,6 +8,10 @@ namespace BenchRunner;
 /// <summary>The command <c>benchrunner</c>: parse, do, say how it ended.</summary>
 internal static class Program
 {
+    /// <summary>The executable itself, to be started once more as another command.</summary>
+    public static string Path { get; } = System.IO.Path.Combine(
+        AppContext.BaseDirectory, OperatingSystem.IsWindows() ? "benchrunner.exe" : "benchrunner");
+
     private static async Task<int> Main(string[] arguments)
     {
         using var stop = new CancellationTokenSource();

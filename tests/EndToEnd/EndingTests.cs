@@ -1,6 +1,3 @@
-using System.Net;
-using System.Net.Sockets;
-
 namespace EndToEnd;
 
 /// <summary>Ways out of a run: the operator's interrupt, a killed process, a second run, a latch.</summary>
@@ -56,28 +53,6 @@ public sealed class EndingTests : IDisposable
     }
 
     [Fact]
-    [Trait("kind", "slow")]
-    public async Task A_killed_run_leaves_the_bench_to_the_interlocks_watchdog_and_a_latch_to_the_next_run()
-    {
-        string[] run = await OtherBench();
-        string bench = run[Array.IndexOf(run, "--bench") + 1];
-        using (Started killed = _place.Start(run))
-        {
-            await killed.Line(line => line.Contains("rated capture 1", StringComparison.Ordinal));
-            killed.Signal(Kill);
-            await killed.End();
-        }
-
-        await BusFallsBelow60(bench);
-
-        Finished next = (await _place.Run(run)).Expect(4);
-        Assert.Contains("watchdog has acted", next.Error, StringComparison.Ordinal);
-        Assert.Contains("latch stands", (await _place.Run(run)).Expect(4).Error, StringComparison.Ordinal);
-        (await _place.Run("bench", "clear", "--bench", bench, "--by", "A. Person", "--because", "seen")).Expect(0);
-        (await _place.Run(run)).Expect(0);
-    }
-
-    [Fact]
     public async Task A_trip_above_60_volts_latches_a_bench_until_a_person_clears_it()
     {
         string[] run = await OtherBench("interlock-opens@fire:2");
@@ -121,25 +96,6 @@ public sealed class EndingTests : IDisposable
 
         Assert.Contains("in use by process", second.Error, StringComparison.Ordinal);
         (await first.End()).Expect(0);
-    }
-
-    /// <summary>Asks the voltmeter itself, as often as it takes.</summary>
-    private static async Task BusFallsBelow60(string bench)
-    {
-        string voltmeter = File.ReadLines(bench).Single(line => line.Contains("voltmeter:", StringComparison.Ordinal));
-        string address = voltmeter.Split('\'')[1].Split(' ')[1];
-        using var client = new TcpClient();
-        await client.ConnectAsync(IPEndPoint.Parse(address), TestContext.Current.CancellationToken);
-        using var reader = new StreamReader(client.GetStream());
-        using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(60), TimeProvider.System);
-        double volts = double.PositiveInfinity;
-        while (volts >= 60)
-        {
-            await client.GetStream().WriteAsync("MEASure:VOLTage:DC?\n"u8.ToArray(), patience.Token);
-            string? answer = await reader.ReadLineAsync(patience.Token);
-            volts = double.Parse(answer!, System.Globalization.CultureInfo.InvariantCulture);
-            await Task.Delay(TimeSpan.FromMilliseconds(50), TimeProvider.System, patience.Token);
-        }
     }
 
     /// <summary>Starts instruments by hand, and gives the arguments of a run on them.</summary>

@@ -25,6 +25,9 @@ internal sealed partial class Started : IDisposable
         process.BeginErrorReadLine();
     }
 
+    /// <summary>Number of the process.</summary>
+    public int Id => _process.Id;
+
     public StreamWriter Input => _process.StandardInput;
 
     /// <summary>Waits for a line of output that is as wanted, past or to come.</summary>
@@ -94,6 +97,22 @@ internal sealed partial class Started : IDisposable
 
     /// <summary>Sends a signal, e.g. SIGINT or SIGKILL.</summary>
     public void Signal(int signal) => Assert.Equal(0, Kill(_process.Id, signal));
+
+    /// <summary>Sends a signal; false: there is no such process any more.</summary>
+    public bool TrySignal(int signal) => Kill(_process.Id, signal) == 0;
+
+    /// <summary>Sends a signal to another process.</summary>
+    public static void Send(int process, int signal) => _ = Kill(process, signal);
+
+    /// <summary>Waits until the process has gone, whoever still holds its output.</summary>
+    public async Task Exited()
+    {
+        using var patience = new CancellationTokenSource(_patience);
+        while (!_process.HasExited)
+        {
+            await Task.Delay(TimeSpan.FromMilliseconds(20), TimeProvider.System, patience.Token);
+        }
+    }
 
     public async Task<Finished> End()
     {

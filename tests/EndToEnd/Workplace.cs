@@ -6,6 +6,7 @@ namespace EndToEnd;
 /// <summary>A folder of a test's own in which the built program runs as a user would run it.</summary>
 internal sealed class Workplace : IDisposable
 {
+    private OrdinaryUser? _user;
     private TimeSpan _patience = TimeSpan.FromSeconds(120);
     private readonly DirectoryInfo _folder = Directory.CreateTempSubdirectory("benchrunner-");
 
@@ -25,6 +26,13 @@ internal sealed class Workplace : IDisposable
     public Workplace WithPatience(TimeSpan patience)
     {
         _patience = patience;
+        return this;
+    }
+
+    /// <summary>Has everything run as an ordinary user, to whom a serial port is exclusive: to root it is not.</summary>
+    public Workplace AsOrdinaryUser()
+    {
+        _user = OrdinaryUser.Make(Folder);
         return this;
     }
 
@@ -101,6 +109,11 @@ internal sealed class Workplace : IDisposable
 
     public Started Start(string program, IEnumerable<string> arguments)
     {
+        if (_user is { } user)
+        {
+            (program, arguments) = user.Command(program, arguments);
+        }
+
         var start = new ProcessStartInfo(program)
         {
             WorkingDirectory = Folder,

@@ -14,6 +14,7 @@ internal static class Program
     {
         ["signals"] = seed => new SignalsGroup(seed),
         ["fake"] = seed => new FakeGroup(seed),
+        ["safety"] = seed => new SafetyGroup(seed),
     };
 
     private static int Main(string[] arguments)

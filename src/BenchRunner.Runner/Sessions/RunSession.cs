@@ -6,6 +6,7 @@ using BenchRunner.Instruments.Roles;
 using BenchRunner.Instruments.Sessions;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Guarding;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.Latches;
@@ -48,6 +49,9 @@ public sealed class RunSession
 
     /// <summary>Opens every link to an instrument.</summary>
     public LinkOpener Opener { get; init; } = InstrumentConnection.Wire;
+
+    /// <summary>Starts the guardian, without which nothing is energised.</summary>
+    public required GuardianStarter Guardian { get; init; }
 
     private Plan Plan => _request.Plan;
 
@@ -108,6 +112,9 @@ public sealed class RunSession
 
         await using FakeBenchProcess? fake = IsNewEachTime
             ? await FakeBenchProcess.Start(Bench, first, _request.Companion, _time, operatorStop) : null;
+        // Its process starts while the links are opened; its own links follow, so that it clears no error queue unseen.
+        string guardianLog = GuardianLog.PathOf(IsNewEachTime ? _request.EvidencePath : Bench.Source.Path);
+        await using IRunGuardian guardian = Guardian(Bench, guardianLog, _time);
         await using OpenBench open = await OpenBench.Open(
             Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), Opener, _time, operatorStop);
         if (open.IsSimulated && !IsNewEachTime)
@@ -122,13 +129,16 @@ public sealed class RunSession
         }
 
         RefuseUnattended(devices, open);
+        await guardian.Begin(fake?.Links, operatorStop);
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         supervisor.TripMarked += LeaveLatch;
+        guardian.Follow(supervisor.Witness);
         await supervisor.Start(operatorStop);
         return await new Shift(
-            Plan, store, open, supervisor, fake, _person, queue, _sinks, _journal, _events, _time).Run(
+            Plan, store, open, supervisor, fake, _person, queue, new GuardianLogIntake(guardianLog), _sinks, _journal,
+            _events, _time).Run(
                 first, operatorStop);
     }
 

@@ -8,6 +8,7 @@ using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Exchanges;
+using BenchRunner.Runner.Guarding;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.Supervision;
@@ -24,6 +25,7 @@ internal sealed class Shift(
     IHands? hands,
     IOperator person,
     DeviceQueue queue,
+    GuardianLogIntake guardianLog,
     IRunSink sinks,
     DeviceJournal journal,
     EventSource events,
@@ -93,6 +95,11 @@ internal sealed class Shift(
         journal.Follow(evidence);
         try
         {
+            foreach (BenchEvent done in guardianLog.Take(evidence, time.GetUtcNow()))
+            {
+                sinks.Receive(done);
+            }
+
             foreach ((string role, InstrumentIdentity identity) in open.Identities)
             {
                 evidence.AddInstrument(role, identity.Text, identity.Serial, identity.Firmware);

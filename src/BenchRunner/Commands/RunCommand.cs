@@ -1,6 +1,7 @@
 using System.CommandLine;
 using BenchRunner.Console;
 using BenchRunner.Files;
+using BenchRunner.Runner.Guarding;
 using BenchRunner.Runner.Sessions;
 using BenchRunner.Runner.Sinks;
 
@@ -41,7 +42,10 @@ internal static class RunCommand
             + request.EvidencePath);
         var session = new RunSession(
             request, new SinkSet([new ProgressLog(screen)]),
-            new BenchOperator(screen, terminal, job.Sequence, arguments.ArmedBy), TimeProvider.System);
+            new BenchOperator(screen, terminal, job.Sequence, arguments.ArmedBy), TimeProvider.System)
+        {
+            Guardian = (bench, log, time) => GuardianProcess.Start(Program.Path, bench, log, time),
+        };
         RunSummary summary = await session.Run(serials, stop);
         return RunReport.Write(summary, request.EvidencePath, screen, arguments.Json, stop);
     }

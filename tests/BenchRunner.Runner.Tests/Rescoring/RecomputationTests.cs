@@ -177,6 +177,9 @@ public sealed class RecomputationTests : IDisposable
             Companion = "W1200-0077",
         };
         return Assert.Single((await new RunSession(request, _heard, new Person("simulated"), TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        }
             .Run(new Serials(device), TestContext.Current.CancellationToken)).Devices);
     }
 

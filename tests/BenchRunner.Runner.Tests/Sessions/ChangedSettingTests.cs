@@ -48,6 +48,9 @@ public sealed class ChangedSettingTests : IDisposable
     {
         RunSummary summary = await new RunSession(
             _place.Request(sequence, bench), _heard, new Person("A. Person"), TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        }
                 .Run(new Serials(device), Cancel);
         return Assert.Single(summary.Devices);
     }

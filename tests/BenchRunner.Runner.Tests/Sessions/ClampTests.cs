@@ -83,6 +83,9 @@ public sealed class ClampTests : IDisposable
     private async Task Run(RunRequest request, Person person)
     {
         RunSummary summary = await new RunSession(request, _heard, person, TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        }
             .Run(new Serials(Workplace.Device), Cancel);
         Assert.Equal(Outcome.Accepted, Assert.Single(summary.Devices).Decision.Outcome);
     }

@@ -66,7 +66,10 @@ public sealed class RunSessionTests : IDisposable
     {
         var person = new Person(null);
         var session =
-            new RunSession(_place.Request(_place.Sequence(Rest), _place.Bench()), _heard, person, TimeProvider.System);
+            new RunSession(_place.Request(_place.Sequence(Rest), _place.Bench()), _heard, person, TimeProvider.System)
+            {
+                Guardian = LivingGuardian.Start,
+            };
 
         var refused = await Assert.ThrowsAsync<RefusedException>(
             () => session.Run(new Serials(Workplace.Device), Cancel));
@@ -106,7 +109,10 @@ public sealed class RunSessionTests : IDisposable
         Bench bench = _place.OtherBench(instruments.Links, "by-hand");
         var person = new Person("simulated");
         var session = new RunSession(
-            _place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System);
+            _place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        };
 
         Task<RunSummary> running = session.Run(new Serials("W1200-0001", "W1200-0002"), Cancel);
         await Eventually.True(() => _heard.Count("exchange") == 1, "a request to exchange");
@@ -163,7 +169,10 @@ public sealed class RunSessionTests : IDisposable
             await Stranger.Charges(instruments.Links["supply"], 100);
             await Eventually.True(() => latch.Read() is not null, "a latch");
         });
-        var session = new RunSession(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System);
+        var session = new RunSession(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        };
 
         await Assert.ThrowsAsync<SafetyException>(() => session.Run(new Serials(Workplace.Device), Cancel));
 
@@ -188,6 +197,9 @@ public sealed class RunSessionTests : IDisposable
 
         await Assert.ThrowsAsync<SafetyException>(() =>
             new RunSession(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System)
+            {
+                Guardian = LivingGuardian.Start,
+            }
                 .Run(new Serials(Workplace.Device), Cancel));
 
         Assert.Empty(person.Asked);

@@ -110,6 +110,9 @@ internal sealed class Workplace : IDisposable
     /// <summary>Runs a device as <c>run</c> does.</summary>
     public async Task<RunSummary> Run(Sequence sequence, Bench bench, RecordingSink heard, string device = Device) =>
         await new RunSession(Request(sequence, bench), heard, new Person("simulated"), TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        }
             .Run(new Serials(device), TestContext.Current.CancellationToken);
 
     /// <summary>One value of the evidence.</summary>
