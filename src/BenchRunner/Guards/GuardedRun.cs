@@ -39,7 +39,8 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
                 return ExitCode.Done;
             }
 
-            guarded = new GuardedBench(links, new InstrumentReports(events.As("guardian-links")), _time);
+            var trouble = new LinkTrouble(new InstrumentReports(events));
+            guarded = new GuardedBench(links, trouble, _time);
             await guarded.Open(CancellationToken.None);
         }
         catch (Exception failure)

@@ -61,7 +61,11 @@ internal sealed class Trial
             EvidencePath = Path.Combine(folder, "evidence.db"),
             Operator = "A. Person",
         };
-        var session = new RunSession(request, recorder, new Person(!_mix.Declined), time) { Opener = bench.Connect };
+        var session = new RunSession(request, recorder, new Person(!_mix.Declined), time)
+        {
+            Opener = bench.Connect,
+            Guardian = LivingGuardian.Start,
+        };
         RunSummary? summary = null;
         Exception? ended = null;
         try
