@@ -208,7 +208,10 @@ public sealed class RunSessionTests : IDisposable
     }
 
     private RunSession Session(Bench bench) =>
-        new(_place.Request(_place.Sequence(Rest), bench), _heard, new Person("A. Person"), TimeProvider.System);
+        new(_place.Request(_place.Sequence(Rest), bench), _heard, new Person("A. Person"), TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        };
 
     /// <summary>A bench whose links lead nowhere: port 1 of this machine refuses.</summary>
     private Bench Elsewhere() => _place.OtherBench(

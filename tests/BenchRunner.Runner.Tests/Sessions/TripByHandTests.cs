@@ -47,5 +47,8 @@ public sealed class TripByHandTests : IDisposable
     }
 
     private RunSession Session(Bench bench, Person person) =>
-        new(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System);
+        new(_place.Request(_place.Sequence(Rest), bench), _heard, person, TimeProvider.System)
+        {
+            Guardian = LivingGuardian.Start,
+        };
 }
