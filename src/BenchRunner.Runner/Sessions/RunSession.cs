@@ -6,12 +6,14 @@ using BenchRunner.Instruments.Roles;
 using BenchRunner.Instruments.Sessions;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Devices;
+using BenchRunner.Runner.Guarding;
 using BenchRunner.Runner.Sinks;
 using BenchRunner.Safety;
 using BenchRunner.Safety.Latches;
 using BenchRunner.Safety.Locks;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
+using BenchRunner.Safety.Watches;
 
 namespace BenchRunner.Runner.Sessions;
 
@@ -123,7 +125,9 @@ public sealed class RunSession
 
         RefuseUnattended(devices, open);
         await using var supervisor = new SafetySupervisor(
-            open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
+            open.Safety, Bench.Envelope,
+            new BusWitness(new Discharge(Bench.Bleeder, Bench.BusCapacitance), Bench.Safety, _time), new Unguarded(),
+            _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         supervisor.TripMarked += LeaveLatch;
         await supervisor.Start(operatorStop);
