@@ -21,7 +21,6 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     private static readonly TimeSpan TryFor = TimeSpan.FromSeconds(30);
     private readonly PipeBeats _pipe = new(System.Console.OpenStandardInput(), System.Console.OpenStandardOutput());
     private readonly TimeProvider _time = TimeProvider.System;
-    private readonly BusWitness _witness = new();
 
     /// <summary>Guards until the run is done, or until the bench is safe.</summary>
     public async Task<int> Run()
@@ -68,12 +67,13 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     private async Task<int> Guard(Bench bench, GuardedBench guarded, RunnerProcess? held, EventSource events)
     {
         var discharge = new Discharge(bench.Bleeder, bench.BusCapacitance);
+        var witness = new BusWitness(discharge, bench.Safety, _time);
         var core = new GuardianCore(
             guarded.Own,
-            new SafeState(guarded.Roles, _witness, discharge, events, _time),
-            _witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
+            new SafeState(guarded.Roles, witness, events, _time),
+            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
         bool isMarked = true;
-        core.Acting += reason => isMarked = LeaveLatch(bench, reason, events);
+        core.Acting += reason => isMarked = LeaveLatch(bench, witness, reason, events);
         switch (await core.Run())
         {
             case GuardianEnding.NotNeeded:
@@ -117,9 +117,9 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     }
 
     /// <returns>Whether the mark stands or none is due; a bench that is new at each start gets none.</returns>
-    private bool LeaveLatch(Bench bench, string reason, EventSource events)
+    private bool LeaveLatch(Bench bench, BusWitness witness, string reason, EventSource events)
     {
-        if (bench.Fake is not null || !_witness.MayBeEnergised)
+        if (bench.Fake is not null || !witness.MayBeEnergised)
         {
             return true;
         }
