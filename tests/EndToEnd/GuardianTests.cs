@@ -103,7 +103,7 @@ public sealed class GuardianTests : IDisposable
     public async Task By_hand_it_makes_a_bench_safe_that_a_dead_computer_left_and_tells_no_beat_from_one()
     {
         using WrittenBench bench = await WrittenBench.Start(_place, "--interlock", "tcp");
-        foreach (string last in (string[])["", "polled 1 600 600\nnonsense\n", "polled 1 600 600\npolled 3 600 600\n"])
+        foreach (string last in (string[])["", "polled 1 200 200 -\nnonsense\n", "polled 1 200 200 -\npolled 3 200 200 -\n"])
         {
             await bench.Ask("interlock", "OUTP?", "OUTP 0");
             Assert.Equal("1", await bench.Ask("supply", "OUTP?", "VOLT 200", "OUTP 1"));

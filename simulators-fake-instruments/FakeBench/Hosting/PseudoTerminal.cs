@@ -80,6 +80,18 @@ public sealed partial class PseudoTerminal : IDisposable
         }
     }
 
+    /// <summary>Lets another client open the device.</summary>
+    /// <remarks>A client takes a serial line for itself alone. Of a real line the system takes that back when the client dies;
+    /// this device is kept open here, so that it would stay for good.</remarks>
+    public void EndExclusive()
+    {
+        if (OperatingSystem.IsLinux())
+        {
+            const nuint noExclusive = 0x540D;
+            _ = ioctl(Number(_device), noExclusive, 0);
+        }
+    }
+
     /// <inheritdoc/>
     public void Dispose()
     {
@@ -139,6 +151,9 @@ public sealed partial class PseudoTerminal : IDisposable
 
     [LibraryImport("libc", SetLastError = true)]
     private static partial int poll(ref Waiting waiting, nuint count, int milliseconds);
+
+    [LibraryImport("libc", SetLastError = true)]
+    private static partial int ioctl(nint descriptor, nuint request, nint argument);
 
     [LibraryImport("libc", SetLastError = true)]
     private static partial nint read(nint descriptor, [Out] byte[] buffer, nuint count);

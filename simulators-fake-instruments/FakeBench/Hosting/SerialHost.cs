@@ -8,6 +8,9 @@ public sealed class SerialHost : IHost
 {
     private const int LookEvery = 50;
     private const int WriteWithin = 500;
+
+    // A client that polls is never silent for so long.
+    private const int SilentLooks = 4;
     private readonly Instrument _instrument;
     private readonly PseudoTerminal _terminal = PseudoTerminal.Open();
     private readonly Thread _thread;
@@ -41,11 +44,18 @@ public sealed class SerialHost : IHost
     {
         var framer = new MessageFramer();
         byte[] buffer = new byte[4096];
+        int silent = 0;
         try
         {
             while (!_stop)
             {
                 int count = _terminal.Read(buffer, LookEvery);
+                silent = count > 0 ? 0 : silent + 1;
+                if (silent == SilentLooks)
+                {
+                    _terminal.EndExclusive();
+                }
+
                 foreach (string? message in framer.Take(buffer.AsSpan(0, count)))
                 {
                     byte[] reply = _instrument.Obey(message).Bytes;

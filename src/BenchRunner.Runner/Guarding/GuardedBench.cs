@@ -16,12 +16,14 @@ public sealed class GuardedBench : IDisposable
     private readonly List<LateSafeable> _own = [];
     private readonly LateVoltmeter _voltmeter;
     private readonly bool _ownVoltmeter;
+    private readonly TimeProvider _time;
     private ScpiInterlock? _interlock;
 
     /// <summary>Opens nothing yet.</summary>
     public GuardedBench(BenchLinks links, IInstrumentLog log, TimeProvider time)
     {
         ArgumentNullException.ThrowIfNull(links);
+        _time = time;
         var options = new SessionOptions();
         InstrumentConnection To(string role) => links.To(role, options, log, time);
         LateSafeable pulser = Late(links, "pulser", async cancel => await ScpiPulser.Connect(To("pulser"), cancel));
@@ -63,7 +65,7 @@ public sealed class GuardedBench : IDisposable
 
     private LateSafeable Late(BenchLinks links, string role, Func<CancellationToken, Task<ISafeable>> open)
     {
-        var instrument = new LateSafeable(role, open);
+        var instrument = new LateSafeable(role, open, _time);
         _instruments.Add(instrument);
         if (links.Connections(role) > 1)
         {

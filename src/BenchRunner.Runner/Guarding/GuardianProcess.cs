@@ -212,7 +212,9 @@ public sealed class GuardianProcess : IRunGuardian
                 _unanswered.Enqueue(_time.GetTimestamp());
                 try
                 {
-                    Write(BeatText.Write(kind, ++_sent, _witness?.HighestCommanded ?? 0, _witness?.HighestSeen ?? 0));
+                    Write(BeatText.Write(
+                        kind, ++_sent, _witness?.HighestCommanded ?? 0, _witness?.HighestSeen ?? 0,
+                        _witness?.LastBelieved));
                 }
                 catch (Exception failure) when (failure is IOException or ObjectDisposedException)
                 {

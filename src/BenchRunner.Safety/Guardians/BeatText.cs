@@ -5,7 +5,8 @@ namespace BenchRunner.Safety.Guardians;
 /// <summary>The words on the pipe between runner and guardian, a line each.</summary>
 /// <remarks>
 /// Beats are numbered from 1 without a gap, so that what was lost, doubled or forged is seen:
-/// <c>polled 17 600.00 598.7</c>: number, highest voltage commanded and seen since the last proof, V.
+/// <c>polled 17 600 598.7 598.6</c>: number, highest voltage commanded and seen since the last proof, last reading that
+/// could be believed, V; a dash for none.
 /// </remarks>
 public static class BeatText
 {
@@ -14,6 +15,8 @@ public static class BeatText
 
     /// <summary>The guardian's answer to beat N: it is alive and has heard it.</summary>
     public const string Answer = "heard";
+
+    private const string None = "-";
 
     private static readonly Dictionary<string, HeardKind> _words = new()
     {
@@ -28,9 +31,12 @@ public static class BeatText
     /// <param name="number">Its number.</param>
     /// <param name="commanded">Highest voltage commanded, V.</param>
     /// <param name="seen">Highest voltage seen, V.</param>
-    public static string Write(HeardKind kind, long number, double commanded, double seen) => string.Create(
-        CultureInfo.InvariantCulture,
-        $"{_words.Single(word => word.Value == kind).Key} {number} {commanded:0.##} {seen:0.##}");
+    /// <param name="believed">Last reading that could be believed, V; null: none.</param>
+    public static string Write(HeardKind kind, long number, double commanded, double seen, double? believed) =>
+        string.Create(
+            CultureInfo.InvariantCulture,
+            $"{_words.Single(word => word.Value == kind).Key} {number} {commanded:0.##} {seen:0.##} ")
+        + (believed is { } volts ? volts.ToString("0.##", CultureInfo.InvariantCulture) : None);
 
     /// <summary>Reads a line.</summary>
     /// <param name="line">What came.</param>
@@ -39,14 +45,15 @@ public static class BeatText
     {
         ArgumentNullException.ThrowIfNull(line);
         string[] words = line.Split(' ');
-        return words.Length == 4
+        return words.Length == 5
             && line.Length <= LongestLine
             && _words.TryGetValue(words[0], out HeardKind kind)
             && long.TryParse(words[1], NumberStyles.None, CultureInfo.InvariantCulture, out long number)
             && number == due
             && Volts(words[2]) is { } commanded
             && Volts(words[3]) is { } seen
-            ? new Heard(kind, commanded, seen)
+            && (words[4] == None || Volts(words[4]) is not null)
+            ? new Heard(kind, commanded, seen, Volts(words[4]))
             : new Heard(HeardKind.Malformed, Text: line.Length <= 60 ? line : line[..60] + "…");
     }
 

@@ -4,5 +4,7 @@ namespace BenchRunner.Safety.Guardians;
 /// <param name="Kind">What it is.</param>
 /// <param name="Commanded">Of a beat: the highest voltage that the supply was told since the bus was last proved down, V.</param>
 /// <param name="Seen">Of a beat: the highest voltage that the voltmeter has shown since then, V.</param>
+/// <param name="Believed">Of a beat: the voltmeter's last reading that could be believed, V; null: none since then.</param>
 /// <param name="Text">What came, where it is no beat.</param>
-public sealed record Heard(HeardKind Kind, double Commanded = 0, double Seen = 0, string Text = "");
+public sealed record Heard(
+    HeardKind Kind, double Commanded = 0, double Seen = 0, double? Believed = null, string Text = "");

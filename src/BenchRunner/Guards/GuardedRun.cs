@@ -32,8 +32,8 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
         Bench bench;
         try
         {
-            (bench, BenchLinks links) = await Begin();
-            if (links.StandIns is null && bench.Fake is not null)
+            (bench, BenchLinks? links) = await Begin();
+            if (links is null)
             {
                 return ExitCode.Done;
             }
@@ -91,7 +91,8 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     }
 
     /// <summary>Reads the bench file; hears where the instruments are, up to <c>begin</c>.</summary>
-    private async Task<(Bench Bench, BenchLinks Links)> Begin()
+    /// <returns>No links: the run ended before it began.</returns>
+    private async Task<(Bench Bench, BenchLinks? Links)> Begin()
     {
         var problems = new List<Problem>();
         BenchFiles files = BenchFiles.Read(benchFile, problems);
@@ -101,8 +102,14 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
         }
 
         var links = new Dictionary<string, string>();
-        while (await _pipe.Line() is { } line && line != "begin")
+        while (await _pipe.Line() is var line && line != "begin")
         {
+            // A run that was refused before anything was done lets its guardian go.
+            if (line is null || line.StartsWith("done ", StringComparison.Ordinal))
+            {
+                return (files.Bench!, null);
+            }
+
             if (line.Split(' ', 3) is not ["link", { } role, { } link])
             {
                 throw new InputException($"'{Console.Screen.Printable(line)}' came where 'link ROLE LINK' or 'begin' was "
