@@ -73,7 +73,9 @@ public sealed class GuardianTests : IDisposable
 
         Assert.Contains("the guardian", ended.Output, StringComparison.Ordinal);
         Assert.Contains("bus measured at", ended.Output, StringComparison.Ordinal);
-        Assert.True(File.Exists(bench.Latch));
+
+        // One that is only stopped is missed later, when the bus may be down by itself.
+        Assert.True(signal == Stop || File.Exists(bench.Latch));
     }
 
     [Fact]

@@ -1,8 +1,7 @@
 namespace FakeBench.Hosting;
 
 /// <summary>What no instrument says wrong: how the bench really is.</summary>
-/// <param name="OutputsOff">Whether the supply's output is off, and no gate can be driven: the pulser's output is off and it is
-/// not armed, or the safety chain inhibits it.</param>
+/// <param name="OutputsOff">Whether the supply's output is off and no trigger would fire the pulser.</param>
 /// <param name="BankVoltage">Voltage of the bank, V.</param>
 public readonly record struct BenchTruth(bool OutputsOff, double BankVoltage)
 {

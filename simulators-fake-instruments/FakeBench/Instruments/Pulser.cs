@@ -54,8 +54,8 @@ public sealed class Pulser : Instrument
         commands.Ask("[SOURce:]PULSe:COUNt?", _ => Numbers.Nr1(_count));
     }
 
-    /// <summary>Whether it can drive the gates: its output is on, or it waits for its trigger.</summary>
-    public bool CanFire => _output || _armed;
+    /// <summary>Whether a trigger would fire it: its output alone holds the gates at their off level.</summary>
+    public bool CanFire => _armed;
 
     private PulseTrain Train =>
         Flaws.On(new PulseTrain(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage), Bench.Faults);
