@@ -1,12 +1,8 @@
 namespace BenchRunner.Safety;
 
-/// <summary>Bounds that the house sets for itself; the lab's hardware has its own.</summary>
+/// <summary>Bounds that this program sets for itself beside those of the bench file; the lab's hardware has its own.</summary>
 public static class SafetyLimits
 {
-    /// <summary>Below this DC voltage a bus counts as down, V. IEC 61140 puts the limit of extra-low voltage at 120 V
-    /// DC (from memory); half of it is used here.</summary>
-    public const double BusDown = 60;
-
     /// <summary>How long a permit lives without a complete poll that finds nothing.</summary>
     public static TimeSpan PermitLife { get; } = TimeSpan.FromSeconds(10);
 
@@ -16,6 +12,10 @@ public static class SafetyLimits
     /// <summary>Time after the last poll at which the interlock controller's own watchdog acts.</summary>
     /// <remarks>Longer than a poll may take, so that it acts only where this program is dead or hangs.</remarks>
     public static TimeSpan Watchdog { get; } = TimeSpan.FromSeconds(5);
+
+    /// <summary>Longest time between the beginnings of two polls, beyond what waiting for their replies may take: a
+    /// computer that was suspended, or a program that stood still, goes on with nothing.</summary>
+    public static TimeSpan PollGap { get; } = TimeSpan.FromMilliseconds(400);
 
     /// <summary>How far the measured bus may lie above what the permit allows before it is a trip, relative.</summary>
     public const double OverVoltageMargin = 0.05;

@@ -3,7 +3,7 @@ using BenchRunner.Instruments.Permits;
 namespace BenchRunner.Instruments.Roles;
 
 /// <summary>The gate pulser that fires a train of two pulses.</summary>
-public interface IPulser : ISafeable
+public interface IPulser : IGates
 {
     /// <summary>What the instrument said it is.</summary>
     InstrumentIdentity Identity { get; }

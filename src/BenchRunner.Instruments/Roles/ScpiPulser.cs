@@ -143,8 +143,22 @@ public sealed class ScpiPulser : IPulser, IDisposable
     public async Task MakeSafe(CancellationToken cancel)
     {
         (_programmed, _countWhenArmed) = (null, null);
-        await _instrument.Session.SetDown([_instrument.Command("inhibit"), _instrument.Command("output-off")], cancel);
-        await CheckIdle(cancel);
+        await Inhibit(cancel);
+    }
+
+    /// <inheritdoc/>
+    public async Task CheckOffBias(CancellationToken cancel)
+    {
+        var train = _programmed ?? throw new InvalidOperationException("program a train before the bus rises");
+        await CheckOutput(true, cancel);
+        await _instrument.CheckReadBack("set-gate-off", "read-gate-off", train.GateOff.Value, GateTolerance, cancel);
+    }
+
+    /// <inheritdoc/>
+    public async Task TakeOffBiasAway(CancellationToken cancel)
+    {
+        _programmed = null;
+        await _instrument.Session.SetDown([_instrument.Command("output-off")], cancel);
         await CheckOutput(false, cancel);
     }
 

@@ -3,40 +3,59 @@ using BenchRunner.Safety.Watches;
 
 namespace BenchRunner.Safety.SafeStates;
 
-/// <summary>Brings the bench to the safe state: pulses inhibited, supply off, bleeder on, bus proved down by the
+/// <summary>Brings the bench to the safe state: supply off, pulses inhibited, bleeder on, bus proved down by the
 /// voltmeter.</summary>
 /// <remarks>
 /// It takes no caller's token: whoever asked to stop wants exactly this to be finished. Each instrument is told on its
 /// own, so that one which does not answer holds up no other; supply off is sent before bleeder on and not waited for.
 /// </remarks>
-public sealed class SafeState(
-    SafeableRoles roles, BusWitness witness, Discharge discharge, EventSource events, TimeProvider time)
+public sealed class SafeState(SafeableRoles roles, BusWitness witness, EventSource events, TimeProvider time)
 {
-    private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(20);
+    private static readonly TimeSpan AnswersWithin = TimeSpan.FromSeconds(3);
+
+    /// <summary>Told each time the proof looks at the bus, also where an instrument is silent.</summary>
+    public Action? Round { get; init; }
+
+    /// <summary>What must wait for the proof: the off bias of the gates, taken away then and not before.</summary>
+    public Func<CancellationToken, Task>? AfterProof { get; init; }
 
     /// <summary>Reaches the safe state, or says why it is not proved.</summary>
     public async Task<SafeStateReport> Reach()
     {
         events.Say(Severity.Information, "safe-state", "bringing the bench to the safe state");
-        var doubts = new List<string>();
-        Task<string?> pulser = Try("pulser", roles.Pulser.MakeSafe);
-        Task<string?> supply = Try("supply", roles.Supply.MakeSafe);
-        Task<string?> bleeder = Try("interlock", roles.Bleeder.MakeSafe);
-        Task<string?> heater = roles.Hotplate is { } plate
-            ? Try("hotplate", plate.MakeSafe) : Task.FromResult<string?>(null);
-        SafeStateReport proof = await Prove(doubts);
-        foreach (Task<string?> told in (Task<string?>[])[pulser, supply, bleeder, heater])
+        Task<string?>[] told =
+        [
+            Try("supply", roles.Supply.MakeSafe),
+            Try("pulser", roles.Pulser.MakeSafe),
+            Try("interlock", roles.Bleeder.MakeSafe),
+            roles.Hotplate is { } plate ? Try("hotplate", plate.MakeSafe) : Task.FromResult<string?>(null),
+        ];
+        SafeStateReport proof = await new BusProof(roles.Voltmeter, witness, events, time, Round).Take();
+        var doubts = new List<string>(proof.Doubts);
+        foreach (Task<string?> one in told)
         {
-            if (await told is { } doubt)
-            {
-                doubts.Add(doubt);
-            }
+            Add(doubts, await one);
         }
 
-        return Report(proof with { Doubts = doubts });
+        if (proof.Proved && AfterProof is { } afterProof)
+        {
+            Add(doubts, await Try("pulser", afterProof));
+        }
+
+        SafeStateReport report = proof with { Doubts = doubts };
+        Say(report);
+        return report;
     }
 
-    private SafeStateReport Report(SafeStateReport report)
+    private static void Add(List<string> doubts, string? doubt)
+    {
+        if (doubt is not null)
+        {
+            doubts.Add(doubt);
+        }
+    }
+
+    private void Say(SafeStateReport report)
     {
         foreach (string doubt in report.Doubts)
         {
@@ -49,101 +68,33 @@ public sealed class SafeState(
             events.Say(
                 Severity.Information,
                 "bus-down",
-                $"bus measured at {report.Voltage:0.0} V at {report.At:HH:mm:ss} UTC, below "
-                    + $"{SafetyLimits.BusDown:0} V DC");
-        }
-        else
-        {
-            string last = report.Voltage is { } volts ? $"last reading {volts:0.0} V" : "no reading";
-            events.Say(
-                Severity.Alarm,
-                "bus-not-proved-down",
-                $"THE BUS IS NOT PROVED DOWN ({last}). Treat it as charged. Keep the enclosure closed; "
-                    + "isolate and discharge by your lab's own procedure.");
+                $"bus measured at {witness.Discharge.Words(report.Voltage!.Value)} at {report.At:HH:mm:ss} UTC, below "
+                    + witness.DownWords);
+            return;
         }
 
-        return report;
-    }
-
-    private async Task<SafeStateReport> Prove(List<string> doubts)
-    {
-        long start = time.GetTimestamp();
-        double? first = null;
-        double? last = null;
-        DateTimeOffset? at = null;
-        TimeSpan firstAt = default;
-        TimeSpan limit = TimeSpan.FromSeconds(3);
-        string? silent = null;
-        while (true)
-        {
-            try
-            {
-                using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(1), time);
-                double volts = Math.Abs((await roles.Voltmeter.Read(patience.Token)).Value);
-                TimeSpan now = time.GetElapsedTime(start);
-                witness.Saw(volts);
-                (last, at, silent) = (volts, time.GetUtcNow(), null);
-                if (first is null)
-                {
-                    (first, firstAt) = (volts, now);
-                    limit = now + TimeSpan.FromSeconds((2 * discharge.TimeTo(volts, SafetyLimits.BusDown)) + 1);
-                }
-
-                if (volts < SafetyLimits.BusDown)
-                {
-                    string? why = Disbelief(first.Value, volts, (now - firstAt).TotalSeconds);
-                    if (why is not null)
-                    {
-                        doubts.Add(why);
-                    }
-
-                    return new SafeStateReport(why is null, volts, at, doubts);
-                }
-            }
-            catch (Exception failure)
-            {
-                silent = failure is OperationCanceledException ? "no answer within 1 s" : failure.Message;
-            }
-
-            if (time.GetElapsedTime(start) > limit)
-            {
-                doubts.Add(silent is null
-                    ? $"bus at {last:0.0} V after {limit.TotalSeconds:0.0} s, expected below {SafetyLimits.BusDown:0} V"
-                    : $"voltmeter: {silent}");
-                return new SafeStateReport(false, last, at, doubts);
-            }
-
-            await Task.Delay(ReadEvery, time);
-        }
-    }
-
-    /// <summary>Why a reading below the limit is no proof; null where it is one.</summary>
-    private string? Disbelief(double first, double last, double seconds)
-    {
-        if (!witness.Followed)
-        {
-            return "the voltmeter never followed the bus up, so its low reading proves nothing: look for an open lead";
-        }
-
-        // Half the planned time constant: a bank cannot empty faster through its bleeder than the bleeder lets it.
-        double fastest = 0.5 * discharge.TimeTo(first, Math.Max(last, 1));
-        return first >= SafetyLimits.BusDown && seconds < fastest
-            ? $"the voltmeter fell from {first:0} V to {last:0.0} V in {seconds:0.000} s, faster than the bleeder can: "
-                + "a fuse or lead may have opened and the bank be full"
-            : null;
+        string last = report.Voltage is { } volts
+            ? $"last reading {witness.Discharge.Words(volts)}" : "no reading";
+        events.Say(
+            Severity.Alarm,
+            "bus-not-proved-down",
+            $"THE BUS IS NOT PROVED DOWN ({last}; {witness.AtMost}). Treat it as charged. WAIT. DO NOT OPEN the "
+                + "enclosure. Have a licensed person isolate the supply and discharge the bank with a discharge stick, "
+                + "by your lab's own procedure; its rules and the codes of your place come first.");
     }
 
     private async Task<string?> Try(string role, Func<CancellationToken, Task> makeSafe)
     {
         try
         {
-            using var patience = new CancellationTokenSource(TimeSpan.FromSeconds(3), time);
+            using var patience = new CancellationTokenSource(AnswersWithin, time);
             await makeSafe(patience.Token);
             return null;
         }
         catch (Exception failure)
         {
-            string why = failure is OperationCanceledException ? "no answer within 3 s" : failure.Message;
+            string why = failure is OperationCanceledException
+                ? $"no answer within {AnswersWithin.TotalSeconds:0} s" : failure.Message;
             return $"{role} did not confirm its safe side: {why}";
         }
     }
