@@ -97,15 +97,19 @@ public sealed class OpenBench : IAsyncDisposable
         Func<string, SessionOptions, InstrumentConnection> at, Bench bench, CancellationToken cancel)
     {
         var patient = new SessionOptions();
+        SessionOptions watching = SessionOptions.Watching with
+        {
+            ReplyWithin = TimeSpan.FromSeconds(bench.Safety.ReplyWithin),
+        };
 
         // Of two connections the guardian has one: work and watch share the other.
         bool OwnToo(string role) => bench.Roles[role].Connections > 2;
 
         // Safety first: whatever fails later, these are there.
         ScpiInterlock interlock = await Reach(
-            "interlock", ScpiInterlock.Connect(at("interlock", SessionOptions.Watching), cancel));
+            "interlock", ScpiInterlock.Connect(at("interlock", watching), cancel));
         ScpiVoltmeter watchMeter = await Reach(
-            "voltmeter", ScpiVoltmeter.Connect(at("voltmeter", SessionOptions.Watching), cancel));
+            "voltmeter", ScpiVoltmeter.Connect(at("voltmeter", watching), cancel));
         ScpiSupply safeSupply = await Reach("supply", ScpiSupply.Connect(at("supply", patient), cancel));
         ScpiPulser safePulser = await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel));
         Hotplate = bench.Roles.ContainsKey("hotplate")

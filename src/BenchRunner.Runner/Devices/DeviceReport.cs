@@ -22,4 +22,12 @@ public sealed record DeviceReport(
     BenchEnding Ending,
     double? BusVoltage,
     DateTimeOffset? BusAt,
-    double? Plate);
+    double? Plate)
+{
+    /// <summary>Whether the voltmeter proved the bus down.</summary>
+    public bool BusProved { get; init; }
+
+    /// <summary>Energy that the bank may hold, J; where the bus is not proved down, by the highest voltage that it may
+    /// have.</summary>
+    public double BusEnergyAtMost { get; init; }
+}

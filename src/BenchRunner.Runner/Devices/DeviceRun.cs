@@ -46,7 +46,7 @@ public sealed class DeviceRun(
         catch (Exception broken)
         {
             // All of them: whatever went wrong, the way out leads through the safe state.
-            (ending, ended) = Explain(broken, operatorStop);
+            (ending, ended) = await Explain(broken, operatorStop);
         }
 
         SafeStateReport safe = await supervisor.MakeSafe();
@@ -171,8 +171,14 @@ public sealed class DeviceRun(
             || plan.Sequence.Limits.Any(limit => limit.ElseSkipHigher && limit.At == point.Point.Name));
 
     /// <summary>What an exception on the road means for bench and device.</summary>
-    private (BenchEnding Ending, Ended Ended) Explain(Exception broken, CancellationToken operatorStop)
+    private async Task<(BenchEnding Ending, Ended Ended)> Explain(Exception broken, CancellationToken operatorStop)
     {
+        if (broken is BusException or InstrumentException or LinkException)
+        {
+            // A supply that the interlock has switched off refuses too: the first reason is the one behind it.
+            await supervisor.LookForRootCause();
+        }
+
         if (supervisor.Trip is { } trip)
         {
             return (BenchEnding.Tripped, new Ended(Outcome.Stopped, trip.Reason));
@@ -199,7 +205,8 @@ public sealed class DeviceRun(
                 if (supervisor.Witness.MayBeEnergised && broken is not InstrumentException { Role: "scope" })
                 {
                     // What the instrument does is unknown, and unknown counts as energised.
-                    supervisor.TripNow(broken.Message);
+                    Action<string> end = broken is LinkException ? supervisor.ReplyLost : supervisor.TripNow;
+                    end(broken.Message);
                 }
 
                 return (BenchEnding.InstrumentFailed, new Ended(Outcome.Stopped, broken.Message));
@@ -254,7 +261,11 @@ public sealed class DeviceRun(
 
         var report = new DeviceReport(
             evidence.Run, device, decision, _taken.Sum(point => point.Taken),
-            _taken.Sum(point => point.Valid.Count), ending, safe.Voltage, safe.At, plate);
+            _taken.Sum(point => point.Valid.Count), ending, safe.Voltage, safe.At, plate)
+        {
+            BusProved = safe.Proved,
+            BusEnergyAtMost = safe.EnergyAtMost,
+        };
         sinks.DeviceEnded(report);
         return report;
     }

@@ -41,8 +41,8 @@ public sealed class DeviceWork
         Sinks = sinks;
         Events = events;
         Time = time;
-        Bus = new BusCharge(bench, plan.Bench, supervisor.Witness, time);
-        Firing = new TrainFiring(bench, events, time);
+        Bus = new BusCharge(bench, plan.Bench, supervisor, time);
+        Firing = new TrainFiring(bench, supervisor, events, time);
         Plate = new Plate(bench.Hotplate, plan.Bench.Ambient, events, time);
         _stated = Planner.AnalysisSettingsOf(plan.Bench, plan.Sequence);
     }

@@ -4,14 +4,14 @@ using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Safety.SafeStates;
-using BenchRunner.Safety.Watches;
+using BenchRunner.Safety.Supervision;
 using BenchRunner.Signals.Units;
 
 namespace BenchRunner.Runner.Points;
 
 /// <summary>Brings the bus to an operating point's voltage and holds the supply against the independent
 /// voltmeter.</summary>
-public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, TimeProvider time)
+public sealed class BusCharge(OpenBench bench, Bench setup, SafetySupervisor supervisor, TimeProvider time)
 {
     private readonly Discharge _discharge = new(setup.Bleeder, setup.BusCapacitance);
 
@@ -22,6 +22,9 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
     /// <summary>How much of the way from full charge the supply's protection stands above the set-point,
     /// relative.</summary>
     private const double ProtectionMargin = 0.1;
+
+    /// <summary>What a step may take beyond its own bound before the run counts as stuck.</summary>
+    private static readonly TimeSpan Slack = TimeSpan.FromSeconds(10);
 
     private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(10);
 
@@ -36,8 +39,18 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
         await bench.Supply.Program(
             permit, new Volts(target), new Amperes(setup.ChargingCurrent), new Volts(protection), cancel);
 
+        // Both gates at their off level before there is a voltage for them to hold off.
+        await bench.Pulser.CheckOffBias(cancel);
+        supervisor.BiasVerified();
+        await On(permit, target, cancel);
+    }
+
+    /// <summary>Switches the programmed supply on and waits until the voltmeter shows the bus at its voltage.</summary>
+    /// <exception cref="BusException">The bus did not get there.</exception>
+    public async Task On(Permit permit, double target, CancellationToken cancel)
+    {
         // Said before it is done: from here on the bus counts as energised until it is proved down.
-        witness.Commanded(target);
+        supervisor.Energising(target);
         await bench.Supply.OutputOn(permit, cancel);
         await WaitFor(target, cancel);
     }
@@ -57,6 +70,7 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
             double due = Math.Max(
                 state.Planned.Point.RepeatEvery, state.Planned.Recovery * (1 + state.BaselineInARow));
             TimeSpan wait = TimeSpan.FromSeconds(due) - time.GetElapsedTime(fired);
+            supervisor.Progress("pausing before the next train", (wait > TimeSpan.Zero ? wait : TimeSpan.Zero) + Slack);
             if (wait > TimeSpan.Zero && !await Pause(wait, enough, cancel))
             {
                 return double.NaN;
@@ -76,7 +90,7 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
         TimeSpan? limit = null;
         while (true)
         {
-            double volts = (await bench.Voltmeter.Read(cancel)).Value;
+            double volts = await Read(cancel);
             if (volts < target)
             {
                 return;
@@ -104,10 +118,11 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
         long start = time.GetTimestamp();
         double charging = setup.BusCapacitance * target / setup.ChargingCurrent;
         TimeSpan limit = TimeSpan.FromSeconds(2 + (4 * charging));
+        supervisor.Progress($"waiting for {target:0.#} V on the bus", limit + Slack);
         double previous = double.NaN;
         while (true)
         {
-            double volts = (await bench.Voltmeter.Read(cancel)).Value;
+            double volts = await Read(cancel);
 
             // Settled: at the voltage, and no longer moving by a tenth of the tolerance between readings.
             if (Math.Abs(volts - target) <= Agreement * target && Math.Abs(volts - previous) <= 0.1 * 0.01 * target)
@@ -128,6 +143,19 @@ public sealed class BusCharge(OpenBench bench, Bench setup, BusWitness witness, 
             previous = volts;
             await Task.Delay(ReadEvery, time, cancel);
         }
+    }
+
+    /// <summary>What the runner reads, safety's witness sees too: a lead comes off between two polls as well.</summary>
+    private async Task<double> Read(CancellationToken cancel)
+    {
+        long asked = time.GetTimestamp();
+        double volts = (await bench.Voltmeter.Read(cancel)).Value;
+        if (supervisor.Witness.Saw(Math.Abs(volts), asked) is { } fell && supervisor.HasPermit)
+        {
+            throw new BusException(fell, stuckInLimit: false);
+        }
+
+        return volts;
     }
 
     /// <summary>Pauses.</summary>

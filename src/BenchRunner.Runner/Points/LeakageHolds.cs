@@ -13,6 +13,7 @@ namespace BenchRunner.Runner.Points;
 public sealed class LeakageHolds(DeviceWork work)
 {
     private static readonly TimeSpan SupplyRestsWithin = TimeSpan.FromSeconds(1);
+    private static readonly TimeSpan HoldsWithin = TimeSpan.FromSeconds(15);
     private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(50);
 
     private readonly HashSet<double> _held = [];
@@ -31,6 +32,7 @@ public sealed class LeakageHolds(DeviceWork work)
             return;
         }
 
+        work.Supervisor.Progress("the leakage hold", HoldsWithin);
         double drawn = await SupplyCurrent(cancel);
         if (LeakageHold.Drawn(drawn, work.Plan.Bench, work.Plan.Sequence) is { } found)
         {
@@ -49,8 +51,7 @@ public sealed class LeakageHolds(DeviceWork work)
             Fail(words);
         }
 
-        await work.Bench.Supply.OutputOn(permit, cancel);
-        await work.Bus.WaitFor(point.BusVoltage, cancel);
+        await work.Bus.On(permit, point.BusVoltage, cancel);
     }
 
     private void Fail(string found) => throw (StopOutcome.OfShort(work.Plan.Sequence) == Outcome.Rejected

@@ -11,6 +11,7 @@ using BenchRunner.Instruments.Sessions;
 using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Proving;
 using BenchRunner.Runner.Sinks;
+using BenchRunner.Runner.Temperatures;
 using BenchRunner.Safety;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
@@ -123,6 +124,7 @@ public sealed class PointFixture(
 
         if (state is { PlateIsOff: true, Planned.Point.Temperature: { } wanted })
         {
+            work.Supervisor.Progress("waiting for the plate", Plate.ReturnsWithin);
             await work.Plate.Return(wanted, work.Plan.Sequence.Validity.TemperatureWithin, cancel);
         }
 

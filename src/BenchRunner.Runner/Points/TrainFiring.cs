@@ -3,14 +3,18 @@ using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
+using BenchRunner.Safety.Supervision;
 
 namespace BenchRunner.Runner.Points;
 
 /// <summary>Fires one pulse train and gets the scope's record of it, or says why there is none.</summary>
 /// <remarks>A train is never fired twice by itself: a record that is missing or broken costs one capture.</remarks>
-public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvider time)
+public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan RecordWithin = TimeSpan.FromSeconds(2);
+
+    /// <summary>A train from setting the scope to the whole record, on the slowest link, with a repetition.</summary>
+    private static readonly TimeSpan TrainWithin = TimeSpan.FromMinutes(2);
 
     /// <summary>When the last train was fired, a time stamp of the clock; null before the first.</summary>
     public long? FiredAt { get; private set; }
@@ -55,9 +59,11 @@ public sealed class TrainFiring(OpenBench bench, EventSource events, TimeProvide
     /// <exception cref="LinkException">The pulser's link failed: whether a train was fired is unknown.</exception>
     public async Task<ScopeRecord?> Fire(Permit permit, ScopeSettings settings, CancellationToken cancel)
     {
+        supervisor.Progress("firing and reading a train", TrainWithin);
         await Prepare(settings, cancel);
         await OnScope(() => bench.Scope.Arm(cancel));
         await bench.Pulser.Arm(permit, cancel);
+        supervisor.Witness.Fired();
         await bench.Pulser.Fire(permit, cancel);
         FiredAt = time.GetTimestamp();
         return await Record(cancel);

@@ -13,6 +13,7 @@ using BenchRunner.Safety.Latches;
 using BenchRunner.Safety.Locks;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
+using BenchRunner.Safety.Watches;
 
 namespace BenchRunner.Runner.Sessions;
 
@@ -131,7 +132,9 @@ public sealed class RunSession
         RefuseUnattended(devices, open);
         await guardian.Begin(fake?.Links, operatorStop);
         await using var supervisor = new SafetySupervisor(
-            open.Safety, Bench.Envelope, new Discharge(Bench.Bleeder, Bench.BusCapacitance), _events, _time);
+            open.Safety, Bench.Envelope,
+            new BusWitness(new Discharge(Bench.Bleeder, Bench.BusCapacitance), Bench.Safety, _time), new Unguarded(),
+            _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         supervisor.TripMarked += LeaveLatch;
         guardian.Follow(supervisor.Witness);

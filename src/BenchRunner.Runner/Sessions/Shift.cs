@@ -63,7 +63,10 @@ internal sealed class Shift(
                 // A bench whose enclosure nobody opens takes one device a call.
                 if (!goesOn || (hands is null && _byHand is null) || await queue.Next(stop.Token) is not { } next)
                 {
-                    return Summary(device: null, brokenOff: null);
+                    // What trips between the last report and the end belongs to no report.
+                    return Summary(
+                        device: null,
+                        brokenOff: goesOn && supervisor.Trip is { } trip ? new SafetyException(trip.Reason) : null);
                 }
 
                 device = next;

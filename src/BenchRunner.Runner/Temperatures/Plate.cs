@@ -20,6 +20,9 @@ public sealed class Plate(IHotplate? hotplate, double ambient, EventSource event
     /// <summary>A plate that has not come to rest by then has a fault.</summary>
     private static readonly TimeSpan SettlesWithin = TimeSpan.FromHours(1);
 
+    /// <summary>The longest that <see cref="Return"/> may take.</summary>
+    public static TimeSpan ReturnsWithin => SettlesWithin + TimeSpan.FromMinutes(1);
+
     /// <summary>Temperature that is stored with a capture, degC: measured, or the stated one of the room.</summary>
     public async Task<double> Read(CancellationToken cancel) => await Measured(cancel) ?? ambient;
 

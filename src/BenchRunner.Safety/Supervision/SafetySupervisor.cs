@@ -100,6 +100,9 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
     }
 
+    /// <summary>Whether there is leave to energise: a voltage that falls now falls by itself.</summary>
+    public bool HasPermit => SupervisorTable.HasPermit(State);
+
     /// <summary>The voltmeter's last reading by the watch, V; NaN before the first.</summary>
     public double LastVoltage => Volatile.Read(ref _lastVoltage);
 

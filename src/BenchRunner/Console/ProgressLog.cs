@@ -2,6 +2,7 @@ using System.Globalization;
 using BenchRunner.Acceptance.Cautions;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Cases;
 using BenchRunner.Runner.Devices;
@@ -63,6 +64,8 @@ internal sealed class ProgressLog(Screen screen) : IRunSink
             ? string.Create(
                 CultureInfo.InvariantCulture, $"bus last measured {volts:0.0} V at {report.BusAt:HH:mm:ss} UTC")
             : "bus not measured";
+        string energy = SiText.Format(report.BusEnergyAtMost, "J", 3);
+        bus += report.BusProved ? $", {energy} in the bank" : $", NOT PROVED DOWN, up to {energy} in the bank";
         screen.Line(string.Create(
             CultureInfo.InvariantCulture,
             $"{report.Device}: {report.CapturesValid} of {report.CapturesTaken} captures valid; {bus}; run "

@@ -21,7 +21,6 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     private static readonly TimeSpan TryFor = TimeSpan.FromSeconds(30);
     private readonly PipeBeats _pipe = new(System.Console.OpenStandardInput(), System.Console.OpenStandardOutput());
     private readonly TimeProvider _time = TimeProvider.System;
-    private readonly BusWitness _witness = new();
 
     /// <summary>Guards until the run is done, or until the bench is safe.</summary>
     public async Task<int> Run()
@@ -68,10 +67,11 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     private async Task<int> Guard(Bench bench, GuardedBench guarded, RunnerProcess? held, EventSource events)
     {
         var discharge = new Discharge(bench.Bleeder, bench.BusCapacitance);
+        var witness = new BusWitness(discharge, bench.Safety, _time);
         var core = new GuardianCore(
             guarded.Own,
-            new SafeState(guarded.Roles, _witness, discharge, events, _time),
-            _witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
+            new SafeState(guarded.Roles, witness, events, _time),
+            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
         bool isMarked = true;
         core.Acting += reason => isMarked = LeaveLatch(bench, reason, events);
         switch (await core.Run())

@@ -6,6 +6,7 @@ using BenchRunner.Runner.Exchanges;
 using BenchRunner.Runner.Tests.Workplaces;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
+using BenchRunner.Safety.Watches;
 using Microsoft.Extensions.Time.Testing;
 
 namespace BenchRunner.Runner.Tests.Exchanges;
@@ -109,8 +110,9 @@ public sealed class ExchangeTests : IDisposable
     private async Task<SafetySupervisor> Watching(Bench bench, OpenBench open)
     {
         var supervisor = new SafetySupervisor(
-            open.Safety, bench.Envelope, new Discharge(bench.Bleeder, bench.BusCapacitance),
-            Events(TimeProvider.System), TimeProvider.System);
+            open.Safety, bench.Envelope, new BusWitness(
+                new Discharge(bench.Bleeder, bench.BusCapacitance), bench.Safety, TimeProvider.System),
+            new Guardian(), Events(TimeProvider.System), TimeProvider.System);
         await supervisor.Start(Cancel);
         return supervisor;
     }

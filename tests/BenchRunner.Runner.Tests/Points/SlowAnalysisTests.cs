@@ -12,6 +12,7 @@ using BenchRunner.Runner.Sessions;
 using BenchRunner.Runner.Tests.Workplaces;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Supervision;
+using BenchRunner.Safety.Watches;
 using BenchRunner.Signals.Analysis;
 using BenchRunner.Signals.Traces;
 
@@ -55,8 +56,9 @@ public sealed class SlowAnalysisTests : IDisposable
             bench, request.Dialects, fake.Links, new InstrumentReports(events), InstrumentConnection.Wire, TimeProvider.System,
             Cancel);
         await using var supervisor = new SafetySupervisor(
-            open.Safety, bench.Envelope, new Discharge(bench.Bleeder, bench.BusCapacitance), events,
-            TimeProvider.System);
+            open.Safety, bench.Envelope, new BusWitness(
+                new Discharge(bench.Bleeder, bench.BusCapacitance), bench.Safety, TimeProvider.System),
+            new Guardian(), events, TimeProvider.System);
         await supervisor.Start(Cancel);
         using EvidenceStore store = EvidenceStore.Open(_place.Evidence, TimeProvider.System);
         var work = new DeviceWork(

@@ -41,7 +41,7 @@ public sealed class RunSessionTests : IDisposable
         Assert.True(summary.Simulated);
         Assert.Empty(summary.NotRun);
         Assert.Equal((Outcome.Accepted, BenchEnding.Proved), (report.Decision.Outcome, report.Ending));
-        Assert.InRange(report.BusVoltage!.Value, 0, SafetyLimits.BusDown);
+        Assert.InRange(report.BusVoltage!.Value, 0, SafetySettings.UsualBusDown);
         Assert.Same(report, Assert.Single(_heard.Devices));
 
         // One result for each limit, in the order of the sequence.

@@ -21,6 +21,9 @@ internal sealed class LiveBench : IAsyncDisposable
     /// <summary>Charging current limit, A: the fake supply's at the pace used.</summary>
     private const double ChargingCurrent = 2.5;
 
+    /// <summary>Replies that a loaded computer may hold up trip no sound bench here.</summary>
+    public static SafetySettings Patient { get; } = SafetySettings.Usual with { ReplyWithin = 2 };
+
     private readonly List<IDisposable> _open = [];
     private readonly FakeProgram _fake;
     private SafetySupervisor? _supervisor;
@@ -36,6 +39,9 @@ internal sealed class LiveBench : IAsyncDisposable
 
     public Recorder Said { get; } = new();
 
+    /// <summary>The guardian as the supervisor sees it.</summary>
+    public GuardianDouble Guardian { get; } = new();
+
     /// <summary>What the bleeder of this bench does: 5 kOhm across 50 uF.</summary>
     public static Discharge Discharge { get; } = new(5e3, 50e-6);
 
@@ -47,10 +53,14 @@ internal sealed class LiveBench : IAsyncDisposable
         try
         {
             var options = new SessionOptions();
+            SessionOptions watching = SessionOptions.Watching with
+            {
+                ReplyWithin = TimeSpan.FromSeconds(Patient.ReplyWithin),
+            };
             ScpiInterlock interlock =
-                bench.Keep(await ScpiInterlock.Connect(bench.At("interlock", SessionOptions.Watching), cancel));
+                bench.Keep(await ScpiInterlock.Connect(bench.At("interlock", watching), cancel));
             ScpiVoltmeter voltmeter =
-                bench.Keep(await ScpiVoltmeter.Connect(bench.At("voltmeter", SessionOptions.Watching), cancel));
+                bench.Keep(await ScpiVoltmeter.Connect(bench.At("voltmeter", watching), cancel));
             ScpiSupply supply = bench.Keep(await ScpiSupply.Connect(bench.At("supply", options), cancel));
             ScpiPulser pulser = bench.Keep(await ScpiPulser.Connect(bench.At("pulser", options), cancel));
             bench.Roles = new SafetyRoles(pulser, supply, interlock, voltmeter);
@@ -69,22 +79,33 @@ internal sealed class LiveBench : IAsyncDisposable
     public static PermitBounds UpTo(double volts, double pulse = 10e-6) => new(
         $"{volts} V", new Volts(volts), new Amperes(ChargingCurrent), new Seconds(pulse), new Volts(18), new Volts(-5));
 
+    private static TrainSettings Train { get; } = new(
+        new Seconds(5e-6), new Seconds(2e-6), new Seconds(2e-6), new Volts(18), new Volts(-5));
+
     /// <summary>A supervisor over the bench; ended with it.</summary>
     public SafetySupervisor Supervisor(TimeProvider? time = null, Discharge? discharge = null) =>
         _supervisor = new SafetySupervisor(
-            Roles, new Envelope(900, 120, 10, 20e-6), discharge ?? Discharge, Events(), time ?? TimeProvider.System);
+            Roles, new Envelope(900, 120, 10, 20e-6),
+            Witness(discharge, time), Guardian, Events(), time ?? TimeProvider.System);
+
+    /// <summary>What the bench's voltmeter has shown; fresh.</summary>
+    public static BusWitness Witness(Discharge? discharge = null, TimeProvider? time = null) =>
+        new(discharge ?? Discharge, Patient, time ?? TimeProvider.System);
 
     /// <summary>A safe state without a watch.</summary>
-    public SafeState SafeState(BusWitness witness, Discharge? discharge = null) =>
-        new(Roles, witness, discharge ?? Discharge, Events(), TimeProvider.System);
+    public SafeState SafeState(BusWitness witness) =>
+        new(Roles.Safeable, witness, Events(), TimeProvider.System) { AfterProof = Roles.Pulser.TakeOffBiasAway };
 
     /// <summary>Charges the bank under a permit, as the runner does.</summary>
-    public async Task Charge(Permit permit, BusWitness witness, double volts)
+    public async Task Charge(Permit permit, SafetySupervisor supervisor, double volts)
     {
         CancellationToken cancel = TestContext.Current.CancellationToken;
         await Roles.Interlock.ReleaseBleeder(permit, cancel);
         await Supply.Program(permit, new Volts(volts), new Amperes(ChargingCurrent), new Volts(1.1 * volts), cancel);
-        witness.Commanded(volts);
+        await Pulser.Program(permit, Train, cancel);
+        await Pulser.CheckOffBias(cancel);
+        supervisor.BiasVerified();
+        supervisor.Energising(volts);
         await Supply.OutputOn(permit, cancel);
         await SupplyShows(volts);
     }

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Benches;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Safety.SafeStates;
@@ -19,12 +20,12 @@ public sealed class SafeStateTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(200), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 200);
+        await bench.Charge(permit, supervisor, 200);
 
         SafeStateReport report = await supervisor.MakeSafe();
 
         Assert.True(report.Proved);
-        Assert.InRange(report.Voltage!.Value, 0, SafetyLimits.BusDown);
+        Assert.InRange(report.Voltage!.Value, 0, SafetySettings.UsualBusDown);
         Assert.Empty(report.Doubts);
         SupplyState supply = await bench.Supply.ReadState(Cancel);
         Assert.False(supply.OutputOn);
@@ -41,7 +42,7 @@ public sealed class SafeStateTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(200), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 200);
+        await bench.Charge(permit, supervisor, 200);
 
         Task<SafeStateReport> first = supervisor.MakeSafe();
         Task<SafeStateReport> second = supervisor.MakeSafe();
@@ -54,13 +55,13 @@ public sealed class SafeStateTests
     public async Task A_bus_that_stays_up_is_not_proved_down()
     {
         await using LiveBench bench = await LiveBench.Start("bus-stays-up");
-        var witness = new BusWitness();
+        BusWitness witness = LiveBench.Witness();
         await bench.StrangerCharges(100);
 
         SafeStateReport report = await bench.SafeState(witness).Reach();
 
         Assert.False(report.Proved);
-        Assert.InRange(report.Voltage!.Value, SafetyLimits.BusDown, 101);
+        Assert.InRange(report.Voltage!.Value, SafetySettings.UsualBusDown, 101);
         Assert.Contains(report.Doubts, doubt => doubt.Contains("expected below 60 V", StringComparison.Ordinal));
         Assert.Equal(1, bench.Said.Count("bus-not-proved-down"));
         Assert.Equal(0, bench.Said.Count("bus-down"));
@@ -74,7 +75,7 @@ public sealed class SafeStateTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(100), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 100);
+        await bench.Charge(permit, supervisor, 100);
 
         Assert.False((await supervisor.MakeSafe()).Proved);
 
@@ -87,7 +88,7 @@ public sealed class SafeStateTests
     public async Task A_voltmeter_that_never_followed_the_bus_up_is_not_believed()
     {
         await using LiveBench bench = await LiveBench.Start("voltmeter-open");
-        var witness = new BusWitness();
+        BusWitness witness = LiveBench.Witness();
         witness.Commanded(200);
         await bench.StrangerSets(200);
         await bench.SupplyShows(200);
@@ -103,14 +104,14 @@ public sealed class SafeStateTests
     public async Task A_fall_faster_than_the_stated_bleeder_allows_is_not_believed()
     {
         await using LiveBench bench = await LiveBench.Start();
-        var witness = new BusWitness();
+        BusWitness witness = LiveBench.Witness(new Discharge(250e3, 50e-6));
         await bench.StrangerCharges(400);
 
         // The bench file states 250 kOhm where 5 kOhm are fitted: the bus falls in a fiftieth of the planned time.
-        SafeStateReport report = await bench.SafeState(witness, new Discharge(250e3, 50e-6)).Reach();
+        SafeStateReport report = await bench.SafeState(witness).Reach();
 
         Assert.False(report.Proved);
-        Assert.InRange(report.Voltage!.Value, 0, SafetyLimits.BusDown);
+        Assert.InRange(report.Voltage!.Value, 0, SafetySettings.UsualBusDown);
         Assert.Contains(
             report.Doubts, doubt => doubt.Contains("faster than the bleeder can", StringComparison.Ordinal));
         Assert.True(witness.MayBeEnergised);
@@ -120,7 +121,7 @@ public sealed class SafeStateTests
     public async Task An_instrument_that_does_not_answer_holds_up_no_other_and_is_named()
     {
         await using LiveBench bench = await LiveBench.Start("silent-supply@volts:100");
-        var witness = new BusWitness();
+        BusWitness witness = LiveBench.Witness();
         await bench.StrangerCharges(200);
 
         SafeStateReport report = await bench.SafeState(witness).Reach();

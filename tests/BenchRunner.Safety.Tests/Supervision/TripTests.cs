@@ -20,7 +20,7 @@ public sealed class TripTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(200), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 200);
+        await bench.Charge(permit, supervisor, 200);
         await Eventually.True(() => supervisor.LastVoltage > 60, "a watch that sees the bus");
 
         bench.Do(hand);
@@ -57,7 +57,7 @@ public sealed class TripTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(100), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 100);
+        await bench.Charge(permit, supervisor, 100);
 
         await bench.StrangerCharges(150);
         await Eventually.True(() => supervisor.Trip is not null, "a trip");
@@ -102,7 +102,7 @@ public sealed class TripTests
         SafetySupervisor supervisor = bench.Supervisor();
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(100), Cancel);
-        await bench.Charge(permit, supervisor.Witness, 100);
+        await bench.Charge(permit, supervisor, 100);
 
         bench.CutPower();
         await Eventually.True(() => supervisor.Trip is not null, "a trip");

@@ -1,4 +1,4 @@
-using BenchRunner.Safety.Watches;
+using BenchRunner.Safety.Tests.Benches;
 
 namespace BenchRunner.Safety.Tests.Watches;
 
@@ -7,38 +7,38 @@ public sealed class BusWitnessTests
     [Fact]
     public void A_bus_that_was_never_charged_needs_no_witness()
     {
-        var witness = new BusWitness();
+        var witness = LiveBench.Witness();
 
         Assert.False(witness.MayBeEnergised);
-        Assert.True(witness.Followed);
+        Assert.Null(witness.WhyNot);
     }
 
     [Fact]
     public void A_voltmeter_that_stays_at_zero_while_the_supply_goes_up_is_not_believed()
     {
-        var witness = new BusWitness();
+        var witness = LiveBench.Witness();
         witness.Commanded(600);
-        witness.Saw(0.2);
+        witness.Saw(0.2, 0);
 
         Assert.True(witness.MayBeEnergised);
-        Assert.False(witness.Followed);
+        Assert.NotNull(witness.WhyNot);
     }
 
     [Fact]
     public void A_voltmeter_that_followed_the_bus_up_is_believed()
     {
-        var witness = new BusWitness();
+        var witness = LiveBench.Witness();
         witness.Commanded(600);
-        witness.Saw(598);
+        witness.Saw(598, 0);
 
-        Assert.True(witness.Followed);
+        Assert.Null(witness.WhyNot);
     }
 
     [Fact]
     public void A_bus_found_charged_counts_as_energised_though_nobody_charged_it()
     {
-        var witness = new BusWitness();
-        witness.Saw(400);
+        var witness = LiveBench.Witness();
+        witness.Saw(400, 0);
 
         Assert.True(witness.MayBeEnergised);
     }
@@ -46,9 +46,9 @@ public sealed class BusWitnessTests
     [Fact]
     public void A_proof_starts_afresh()
     {
-        var witness = new BusWitness();
+        var witness = LiveBench.Witness();
         witness.Commanded(600);
-        witness.Saw(600);
+        witness.Saw(600, 0);
         witness.ProvedDown();
 
         Assert.False(witness.MayBeEnergised);
