@@ -73,7 +73,7 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
             new SafeState(guarded.Roles, witness, events, _time),
             witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
         bool isMarked = true;
-        core.Acting += reason => isMarked = LeaveLatch(bench, reason, events);
+        core.Acting += reason => isMarked = LeaveLatch(bench, witness, reason, events);
         switch (await core.Run())
         {
             case GuardianEnding.NotNeeded:
@@ -117,9 +117,9 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     }
 
     /// <returns>Whether the mark stands or none is due; a bench that is new at each start gets none.</returns>
-    private bool LeaveLatch(Bench bench, string reason, EventSource events)
+    private bool LeaveLatch(Bench bench, BusWitness witness, string reason, EventSource events)
     {
-        if (bench.Fake is not null || !_witness.MayBeEnergised)
+        if (bench.Fake is not null || !witness.MayBeEnergised)
         {
             return true;
         }
