@@ -133,7 +133,7 @@ public sealed class RunSession
         await guardian.Begin(fake?.Links, operatorStop);
         await using var supervisor = new SafetySupervisor(
             open.Safety, Bench.Envelope,
-            new BusWitness(new Discharge(Bench.Bleeder, Bench.BusCapacitance), Bench.Safety, _time), new Unguarded(),
+            new BusWitness(new Discharge(Bench.Bleeder, Bench.BusCapacitance), Bench.Safety, _time), guardian,
             _events, _time);
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         supervisor.TripMarked += LeaveLatch;
