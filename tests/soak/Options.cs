@@ -7,10 +7,11 @@ namespace BenchRunner.Soak;
 /// <param name="Mixes">How many mixes are tried.</param>
 /// <param name="Json">Whether the result is printed as JSON.</param>
 /// <param name="Log">Whether each mix's event log is printed.</param>
-internal sealed record Options(ulong Seed, int Mixes, bool Json, bool Log)
+/// <param name="Fuzz">Whether replies are fuzzed in place of mixes.</param>
+internal sealed record Options(ulong Seed, int Mixes, bool Json, bool Log, bool Fuzz = false)
 {
     /// <summary>How it is called.</summary>
-    public const string Usage = "usage: [--seed N] [--mixes M] [--json] [--log]";
+    public const string Usage = "usage: [--seed N] [--mixes M] [--json] [--log] | --fuzz [--seed N] [--json]";
 
     /// <summary>Reads the command line.</summary>
     /// <returns>The options; null where it is none.</returns>
@@ -23,6 +24,9 @@ internal sealed record Options(ulong Seed, int Mixes, bool Json, bool Log)
             {
                 case "--json":
                     options = options with { Json = true };
+                    break;
+                case "--fuzz":
+                    options = options with { Fuzz = true };
                     break;
                 case "--log":
                     options = options with { Log = true };

@@ -1,4 +1,5 @@
 using System.Text.Json;
+using BenchRunner.Soak.Fuzz;
 using BenchRunner.Soak.Mixes;
 using FakeBench.Fixtures;
 
@@ -21,6 +22,11 @@ internal static class Program
         {
             Console.Error.WriteLine(Options.Usage);
             return WrongInput;
+        }
+
+        if (options.Fuzz)
+        {
+            return Fuzzed(options);
         }
 
         List<Failure> failures = [];
@@ -50,6 +56,19 @@ internal static class Program
         Console.Out.WriteLine(options.Json
             ? JsonSerializer.Serialize(new { mixes = options.Mixes, failures }, _form)
             : $"{options.Mixes} mixes, {failures.Count} failures");
+        return failures.Count == 0 ? 0 : 1;
+    }
+
+    private static int Fuzzed(Options options)
+    {
+        IReadOnlyList<string> failures = FuzzRun.Run(
+            options.Seed, FuzzRun.ParserMessages, FuzzRun.SocketMessages, options.Json ? Console.Error : Console.Out);
+        if (options.Json)
+        {
+            Console.Out.WriteLine(JsonSerializer.Serialize(
+                new { parsed = FuzzRun.ParserMessages, over_socket = FuzzRun.SocketMessages, failures }, _form));
+        }
+
         return failures.Count == 0 ? 0 : 1;
     }
 

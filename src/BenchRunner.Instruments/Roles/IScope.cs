@@ -11,10 +11,19 @@ public interface IScope
 
     /// <summary>Sets time base, trigger, attenuations and ranges and asks each back. Settings that stand already are
     /// not sent again.</summary>
+    /// <exception cref="SettingChangedException">What this program had set before is not what stands now; nothing was
+    /// overwritten.</exception>
     /// <exception cref="InstrumentException">A read-back differs by more than 1 %, or the error queue holds
     /// something.</exception>
     /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
     Task Configure(ScopeSettings settings, CancellationToken cancel);
+
+    /// <summary>Asks back every setting that this program made and that still stands. Changes nothing.</summary>
+    /// <exception cref="SettingChangedException">One is another than was set: somebody else controls the
+    /// instrument, or it was switched off and on. Nothing is put right.</exception>
+    /// <exception cref="InstrumentException">A reading is no number.</exception>
+    /// <exception cref="Links.LinkException">A reply was late, malformed or never came.</exception>
+    Task CheckSettings(CancellationToken cancel);
 
     /// <summary>Asks every stated attenuation back, starts an acquisition and waits until the scope says that it waits
     /// for its trigger.</summary>

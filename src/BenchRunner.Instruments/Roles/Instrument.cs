@@ -129,6 +129,24 @@ internal sealed class Instrument : IDisposable
                 $"{operation} {value:R} was taken as {found:R}; check its range and who else controls it"));
     }
 
+    /// <summary>Holds a setting that was made earlier against what stands now.</summary>
+    /// <exception cref="SettingChangedException">It is another one.</exception>
+    public async Task CheckStanding(
+        string setting, string readBack, double set, double tolerance, string unit, CancellationToken cancel)
+    {
+        var found = await ReadNumber(readBack, cancel);
+        if (!(Math.Abs(found - set) <= tolerance))
+        {
+            throw Changed(setting, FormattableString.Invariant($"{found:G6} {unit}"), FormattableString.Invariant(
+                $"{set:G6} {unit}"));
+        }
+    }
+
+    /// <summary>What to throw for a setting that somebody else changed.</summary>
+    public SettingChangedException Changed(string setting, string found, string set) => new(
+        Role, $"{setting} is {found} where {set} was set; somebody else controls the instrument, or it was switched off "
+            + $"and on: find out who, nothing is put right here ({Session.Link})");
+
     /// <summary>Waits until a register shows what is wanted.</summary>
     /// <returns>Whether it did before the deadline.</returns>
     public async Task<bool> WaitFor(

@@ -27,6 +27,9 @@ public sealed class ScpiPulser : IPulser, IDisposable
 
     private readonly Instrument _instrument;
     private TrainSettings? _programmed;
+
+    // Stays where making safe takes the leave to arm: widths and levels are not touched by it.
+    private TrainSettings? _standing;
     private long? _countWhenArmed;
 
     private ScpiPulser(Instrument instrument) => _instrument = instrument;
@@ -49,8 +52,8 @@ public sealed class ScpiPulser : IPulser, IDisposable
         ArgumentNullException.ThrowIfNull(train);
         Bounded.Live(permit);
         CheckBounds(permit, train);
-        (_programmed, _countWhenArmed) = (null, null);
-
+        await CheckSettings(cancel);
+        (_programmed, _standing, _countWhenArmed) = (null, null, null);
         var off = await Gate(permit, "set-gate-off", "read-gate-off", train.GateOff, cancel);
         var on = await Gate(permit, "set-gate-on", "read-gate-on", train.GateOn, cancel);
         var first = await Width(permit, "set-first-width", "read-first-width", train.First, cancel);
@@ -58,7 +61,23 @@ public sealed class ScpiPulser : IPulser, IDisposable
         var second = await Width(permit, "set-second-width", "read-second-width", train.Second, cancel);
         await _instrument.Session.Energise(permit, _instrument.Command("output-on"), cancel);
         await CheckOutput(true, cancel);
-        return _programmed = new TrainSettings(first, gap, second, on, off);
+        return _programmed = _standing = new TrainSettings(first, gap, second, on, off);
+    }
+
+    /// <inheritdoc/>
+    public async Task CheckSettings(CancellationToken cancel)
+    {
+        if (_standing is not { } set)
+        {
+            return;
+        }
+
+        await Standing("the gate's off level", "read-gate-off", set.GateOff.Value, GateTolerance, "V", cancel);
+        await Standing("the gate's on level", "read-gate-on", set.GateOn.Value, GateTolerance, "V", cancel);
+        await Standing("the first width", "read-first-width", set.First.Value, WidthTolerance(set.First), "s", cancel);
+        await Standing("the gap", "read-gap", set.Gap.Value, WidthTolerance(set.Gap), "s", cancel);
+        await Standing(
+            "the second width", "read-second-width", set.Second.Value, WidthTolerance(set.Second), "s", cancel);
     }
 
     /// <inheritdoc/>
@@ -158,6 +177,10 @@ public sealed class ScpiPulser : IPulser, IDisposable
         Bounded.NotNegative(train.Second.Value, nameof(train));
         ArgumentOutOfRangeException.ThrowIfGreaterThanOrEqual(train.GateOff.Value, train.GateOn.Value, nameof(train));
     }
+
+    private Task Standing(
+        string setting, string readBack, double set, double tolerance, string unit, CancellationToken cancel) =>
+        _instrument.CheckStanding(setting, readBack, set, tolerance, unit, cancel);
 
     private async Task<Seconds> Width(
         Permit permit, string set, string read, Seconds width, CancellationToken cancel) =>

@@ -26,7 +26,7 @@ public sealed class ScpiScope : IScope, IDisposable
     private readonly Instrument _instrument;
     private readonly SessionOptions _options;
     private readonly ByteOrder _order;
-    private HashSet<string> _standing = [];
+    private IReadOnlyList<ScopeSetting> _standing = [];
     private int _standingSince;
     private ScopeSettings? _settings;
 
@@ -69,10 +69,15 @@ public sealed class ScpiScope : IScope, IDisposable
     {
         ArgumentNullException.ThrowIfNull(settings);
         var wanted = ScopeSetup.Wanted(_instrument, settings);
-        var standing = _standingSince == _instrument.Session.Connections ? _standing : [];
+        var stands = _standingSince == _instrument.Session.Connections ? Commands(_standing) : [];
+        var missing = wanted.Where(w => !stands.Contains(w.Command)).ToArray();
+        if (missing.Length > 0)
+        {
+            await CheckSettings(cancel);
+        }
+
         (_settings, _standing) = (null, []);
         _standingSince = _instrument.Session.Connections;
-        var missing = wanted.Where(w => !standing.Contains(w.Command)).ToArray();
         foreach (var setting in missing)
         {
             await _instrument.Session.Set(setting.Command, cancel);
@@ -83,8 +88,22 @@ public sealed class ScpiScope : IScope, IDisposable
             await AskBack(setting, cancel);
         }
 
-        _standing = [.. wanted.Select(w => w.Command)];
+        _standing = wanted;
         _settings = settings;
+    }
+
+    /// <inheritdoc/>
+    public async Task CheckSettings(CancellationToken cancel)
+    {
+        foreach (var setting in _standing)
+        {
+            if (await Differs(setting, cancel) is { } found)
+            {
+                // It does not stand any more: whoever comes next has everything sent anew.
+                _standing = [];
+                throw _instrument.Changed($"'{setting.Command}'", Printable.Text(found), "that");
+            }
+        }
     }
 
     /// <inheritdoc/>
@@ -193,6 +212,9 @@ public sealed class ScpiScope : IScope, IDisposable
 
         return null;
     }
+
+    private static HashSet<string> Commands(IEnumerable<ScopeSetting> settings) =>
+        [.. settings.Select(setting => setting.Command)];
 
     private async Task AskBack(ScopeSetting setting, CancellationToken cancel)
     {

@@ -22,6 +22,7 @@ public sealed class ScpiSupply : ISupply, IDisposable
     ];
 
     private readonly Instrument _instrument;
+    private Standing? _standing;
 
     private ScpiSupply(Instrument instrument) => _instrument = instrument;
 
@@ -48,12 +49,44 @@ public sealed class ScpiSupply : ISupply, IDisposable
         ArgumentOutOfRangeException.ThrowIfLessThan(protection.Value, voltage.Value, nameof(protection));
         Bounded.NotNegative(protection.Value, nameof(protection));
 
+        await CheckSettings(cancel);
+        _standing = null;
         await _instrument.SetGuarded(
             permit, "set-protection", "read-protection", protection.Value, Step(protection.Value, VoltageStep), cancel);
         await _instrument.SetGuarded(
             permit, "set-current", "read-current", limit.Value, Step(limit.Value, CurrentStep), cancel);
         await _instrument.SetGuarded(
             permit, "set-voltage", "read-voltage", voltage.Value, Step(voltage.Value, VoltageStep), cancel);
+        _standing = new Standing(voltage.Value, limit.Value, protection.Value, false);
+    }
+
+    /// <inheritdoc/>
+    /// <remarks>A set-point of 0 V is never foreign: making safe leaves it, also over safety's own connection.</remarks>
+    public async Task CheckSettings(CancellationToken cancel)
+    {
+        if (_standing is not { } set)
+        {
+            return;
+        }
+
+        await _instrument.CheckStanding(
+            "the over-voltage protection", "read-protection", set.Protection, Step(set.Protection, VoltageStep), "V",
+            cancel);
+        await _instrument.CheckStanding(
+            "the current limit", "read-current", set.Limit, Step(set.Limit, CurrentStep), "A", cancel);
+        var voltage = await _instrument.ReadNumber("read-voltage", cancel);
+        if (Math.Abs(voltage) <= VoltageStep)
+        {
+            _standing = set with { OutputOn = false };
+            return;
+        }
+
+        await _instrument.CheckStanding(
+            "the voltage", "read-voltage", set.Voltage, Step(set.Voltage, VoltageStep), "V", cancel);
+        if (set.OutputOn && !await _instrument.ReadBoolean("read-output", cancel))
+        {
+            throw _instrument.Changed("the output", "off", "on");
+        }
     }
 
     /// <inheritdoc/>
@@ -68,11 +101,14 @@ public sealed class ScpiSupply : ISupply, IDisposable
         {
             throw _instrument.Refusal("the output stays off though it was switched on; look for a tripped protection");
         }
+
+        _standing = _standing is { } set ? set with { OutputOn = true } : null;
     }
 
     /// <inheritdoc/>
     public async Task OutputOff(CancellationToken cancel)
     {
+        _standing = _standing is { } set ? set with { OutputOn = false } : null;
         await _instrument.Session.SetDown([_instrument.Command("output-off")], cancel);
         await CheckOff(cancel);
     }
@@ -108,6 +144,9 @@ public sealed class ScpiSupply : ISupply, IDisposable
                 "the output stays on though it was switched off; use the hardware's emergency stop");
         }
     }
+
+    /// <summary>What was set and read back last.</summary>
+    private sealed record Standing(double Voltage, double Limit, double Protection, bool OutputOn);
 
     private static double Step(double value, double step) => (Math.Abs(value) * RelativeStep) + step;
 }

@@ -62,6 +62,12 @@ public sealed class PointFixture(
         await work.Bench.Safety.Interlock.ReleaseBleeder(permit, cancel);
         await work.Bus.Up(permit, planned, cancel);
         await holds.Hold(permit, point, cancel);
+
+        // Charged, and before the first train: nobody else has a hand on the instruments. What the point before had set
+        // was asked back before anything of it was overwritten.
+        await work.Bench.Supply.CheckSettings(cancel);
+        await work.Bench.Pulser.CheckSettings(cancel);
+        await work.Firing.CheckScope(cancel);
         await Captures(permit, state, left, cancel);
     }
 

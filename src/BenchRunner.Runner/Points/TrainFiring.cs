@@ -25,6 +25,11 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
     public Task Prepare(ScopeSettings settings, CancellationToken cancel) =>
         OnScope(() => bench.Scope.Configure(settings, cancel));
 
+    /// <summary>Asks the scope's settings back.</summary>
+    /// <exception cref="SettingChangedException">One is another than was set.</exception>
+    /// <exception cref="InstrumentException">The scope cannot be reached.</exception>
+    public Task CheckScope(CancellationToken cancel) => OnScope(() => bench.Scope.CheckSettings(cancel));
+
     /// <summary>The scope's acquisition count before the first train of a point, so that an old record is known as
     /// one.</summary>
     /// <exception cref="InstrumentException">The scope cannot be reached.</exception>

@@ -121,6 +121,7 @@ public sealed class GuardianCore(
     {
         if (heard.Kind is not (HeardKind.Malformed or HeardKind.Ended))
         {
+            // Each beat says all that is known since the last proof: what was believed before it no longer counts.
             witness.Told(heard.Commanded, heard.Seen, heard.Believed);
         }
     }

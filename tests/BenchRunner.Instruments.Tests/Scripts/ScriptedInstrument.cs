@@ -51,6 +51,16 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
     /// <summary>Puts an entry into the error queue.</summary>
     public void Fail(string entry) => _errors.Enqueue(entry);
 
+    /// <summary>Somebody else, on a connection of his own, sends a command without a reply.</summary>
+    public async Task Obey(string command)
+    {
+        using var other = new TcpClient();
+        await other.ConnectAsync((IPEndPoint)_listener.LocalEndpoint);
+        On("*OBEYED?", "1");
+        await other.GetStream().WriteAsync(Encoding.ASCII.GetBytes(command + "\n*OBEYED?\n"));
+        await other.GetStream().ReadExactlyAsync(new byte[2]);
+    }
+
     /// <summary>A setting that is kept and read back, e.g. <c>VOLT</c>; <paramref name="kept"/> may change
     /// it.</summary>
     public void Keep(string set, string read, string initial, Func<string, string>? kept = null)
