@@ -1,6 +1,7 @@
 using System.Collections.Concurrent;
 using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Evidence.Entries;
 using BenchRunner.Evidence.Notes;
 using BenchRunner.Evidence.Placements;
@@ -78,10 +79,16 @@ public sealed class EvidenceStore : IDisposable
             throw new EvidenceException($"{path}: is a folder; name a file.");
         }
 
+        if (OwnFile.LinkTarget(full) is { } target)
+        {
+            throw new EvidenceException($"{path}: is a symbolic link to {target}; name the file itself.");
+        }
+
         WriterLock writerLock = WriterLock.Take(full, time);
         SqlSession? session = null;
         try
         {
+            OwnFile.Make(full);
             session = EvidenceFile.OpenToWrite(full, time, largestBytes);
             EvidenceStore store = new(full, time, writerLock, session);
             store.Closed = store.CloseUnfinished();
@@ -91,7 +98,7 @@ public sealed class EvidenceStore : IDisposable
         {
             session?.Dispose();
             writerLock.Dispose();
-            if (error is SqliteException)
+            if (error is SqliteException or IOException or UnauthorizedAccessException)
             {
                 throw EvidenceFault.Explain(full, error);
             }

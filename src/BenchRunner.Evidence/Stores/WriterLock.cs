@@ -1,4 +1,5 @@
 using System.Globalization;
+using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Evidence.Stores;
 
@@ -27,10 +28,10 @@ internal sealed class WriterLock : IDisposable
         FileStream? file = null;
         try
         {
-            file = new FileStream(lockPath, FileMode.OpenOrCreate, FileAccess.ReadWrite, FileShare.None);
+            file = OwnFile.Open(lockPath, FileMode.OpenOrCreate, FileAccess.ReadWrite, FileShare.None);
             string holder = string.Create(
                 CultureInfo.InvariantCulture, $"process {Environment.ProcessId} since {Text.Time(time.GetUtcNow())}");
-            File.WriteAllText(holderPath, holder);
+            OwnFile.Write(holderPath, holder);
             return new WriterLock(file, holderPath);
         }
         catch (IOException) when (file is null && File.Exists(lockPath))

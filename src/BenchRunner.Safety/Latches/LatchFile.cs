@@ -1,4 +1,5 @@
 using System.Globalization;
+using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Safety.Latches;
 
@@ -18,6 +19,11 @@ public sealed class LatchFile(string benchFile)
     /// <summary>What the latch says; null where none stands.</summary>
     public string? Read()
     {
+        if (OwnFile.LinkTarget(Path) is { } target)
+        {
+            return $"the latch file {Path} is a symbolic link to {target}; find out who laid it and remove it";
+        }
+
         try
         {
             return File.Exists(Path) ? File.ReadAllText(Path).Trim() : null;
@@ -32,7 +38,7 @@ public sealed class LatchFile(string benchFile)
     /// <exception cref="IOException">The mark could not be written.</exception>
     public void Set(DateTimeOffset at, string reason)
     {
-        using var file = new FileStream(Path, FileMode.Append, FileAccess.Write, FileShare.Read);
+        using var file = OwnFile.Open(Path, FileMode.Append, FileAccess.Write, FileShare.Read);
         using var writer = new StreamWriter(file);
         writer.WriteLine(string.Create(CultureInfo.InvariantCulture, $"{at:yyyy-MM-ddTHH:mm:ssZ} {OneLine(reason)}"));
         writer.Flush();

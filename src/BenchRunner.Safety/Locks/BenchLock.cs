@@ -1,4 +1,5 @@
 using System.Globalization;
+using BenchRunner.Acceptance.Files;
 
 namespace BenchRunner.Safety.Locks;
 
@@ -22,10 +23,16 @@ public sealed class BenchLock : IDisposable
     {
         string path = Path.ChangeExtension(Path.GetFullPath(benchFile), ".lock");
         string holderPath = path + "-holder";
+        if (OwnFile.LinkTarget(path) is { } target)
+        {
+            holder = $"nobody knows: its lock {path} is a symbolic link to {target}; remove the link";
+            return null;
+        }
+
         try
         {
-            var file = new FileStream(path, FileMode.OpenOrCreate, FileAccess.ReadWrite, FileShare.None);
-            File.WriteAllText(
+            FileStream file = OwnFile.Open(path, FileMode.OpenOrCreate, FileAccess.ReadWrite, FileShare.None);
+            OwnFile.Write(
                 holderPath,
                 string.Create(CultureInfo.InvariantCulture, $"process {Environment.ProcessId} since "
                     + $"{now:yyyy-MM-ddTHH:mm:ssZ}"));

@@ -3,7 +3,7 @@ using BenchRunner.Safety.Latches;
 
 namespace BenchRunner.Commands;
 
-/// <summary><c>bench clear</c>: a person takes the latch of a bench off.</summary>
+/// <summary><c>bench</c>: what concerns the bench itself; <c>bench clear</c>: a person takes its latch off.</summary>
 internal static class BenchCommand
 {
     public static Command Build()
@@ -26,7 +26,7 @@ internal static class BenchCommand
         };
         clear.SetAction(parsed => Clear(
             parsed.GetRequiredValue(bench), parsed.GetRequiredValue(by), parsed.GetRequiredValue(because)));
-        return new Command("bench", "what concerns the bench itself") { clear };
+        return new Command("bench", "what concerns the bench itself") { clear, BenchCheckCommand.Build() };
     }
 
     private static int Clear(FileInfo bench, string by, string because)

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Files;
 using BenchRunner.Files;
 
 namespace BenchRunner.Plots;
@@ -37,6 +38,12 @@ internal static class PlotFile
         if (Directory.Exists(path))
         {
             throw new InputException($"--plot: '{path}' is a directory; name a file");
+        }
+
+        if (OwnFile.LinkTarget(path) is { } target)
+        {
+            throw new InputException(
+                $"--plot: '{path}' is a symbolic link to {target}; expected a file or nothing there; name another file");
         }
 
         if (!Directory.Exists(Path.GetDirectoryName(Path.GetFullPath(path))))
