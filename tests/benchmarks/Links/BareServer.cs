@@ -10,9 +10,11 @@ namespace BenchRunner.Benchmarks;
 internal sealed class BareServer : IDisposable
 {
     private const int Head = 16;
+    private static readonly byte[] _longest = [0, 0, 0, 0, 0, 16, 0, 0];
+
     private readonly TcpListener _listener = new(IPAddress.Loopback, 0);
     private readonly List<Socket> _sockets = [];
-    private readonly Dictionary<string, byte[]> _answers = [];
+    private readonly List<(byte[] Question, byte[] Reply)> _answers = [];
     private readonly bool _isHislip;
 
     /// <summary>Starts to listen.</summary>
@@ -33,7 +35,8 @@ internal sealed class BareServer : IDisposable
     public bool Trickles { get; set; }
 
     /// <summary>What a question is answered with.</summary>
-    public void Answer(string question, byte[] answer) => _answers[question] = answer;
+    public void Answer(string question, byte[] answer) =>
+        _answers.Add((System.Text.Encoding.ASCII.GetBytes(question), answer));
 
     /// <summary>A definite length block of so many bytes, its newline included.</summary>
     public static byte[] Block(int length)
@@ -140,27 +143,32 @@ internal sealed class BareServer : IDisposable
                 return;
             }
 
-            byte kind = message[2];
-            Frame(socket, kind switch { 0 => 1, 17 => 18, 15 => 16, 4 => 5, 21 => 22, 19 => 23, 8 => 9, _ => 7 }, message, kind switch
+            // The kinds of IVI-6.1 that a session needs, by their numbers: the start, the longest message, data.
+            switch (message[2])
             {
-                15 => [0, 0, 0, 0, 0, 16, 0, 0],
-                7 => Find(message.AsSpan(Head, length).TrimEnd((byte)'\n')),
-                _ => [],
-            });
+                case 0:
+                    Frame(socket, 1, message, []);
+                    break;
+                case 17:
+                    Frame(socket, 18, message, []);
+                    break;
+                case 15:
+                    Frame(socket, 16, message, _longest);
+                    break;
+                case 7 when Find(message.AsSpan(Head, length).TrimEnd((byte)'\n')) is { Length: > 0 } reply:
+                    Frame(socket, 7, message, reply);
+                    break;
+            }
         }
     }
 
     private void Frame(Socket socket, byte kind, byte[] request, byte[] payload)
     {
-        if (kind == 7 && payload.Length == 0)
-        {
-            return;
-        }
 
         Span<byte> head = stackalloc byte[Head];
         request.AsSpan(0, Head).CopyTo(head);
         head[2] = kind;
-        head[3] = (byte)(kind == 5 ? 1 : 0);
+        head[3] = 0;
         if (kind == 1)
         {
             BinaryPrimitives.WriteUInt32BigEndian(head[4..], 0x0100_0001);
@@ -171,11 +179,19 @@ internal sealed class BareServer : IDisposable
         Send(socket, payload);
     }
 
-    private byte[] Find(ReadOnlySpan<byte> question) =>
-        _answers.GetAlternateLookup<ReadOnlySpan<char>>().TryGetValue(Text(question), out byte[]? answer)
-            ? answer : [];
+    // Allocates nothing: what is allocated while it answers is the client's.
+    private byte[] Find(ReadOnlySpan<byte> question)
+    {
+        foreach ((byte[] asked, byte[] reply) in _answers)
+        {
+            if (question.SequenceEqual(asked))
+            {
+                return reply;
+            }
+        }
 
-    private static string Text(ReadOnlySpan<byte> question) => System.Text.Encoding.ASCII.GetString(question);
+        return [];
+    }
 
     private void Send(Socket socket, ReadOnlySpan<byte> bytes)
     {
