@@ -11,6 +11,9 @@ internal static class StreamSocket
     private const int KeepAliveEvery = 1;
     private const int KeepAliveProbes = 3;
 
+    // The shortest that the system's poll can wait.
+    private static readonly TimeSpan Moment = TimeSpan.FromMilliseconds(1);
+
     /// <summary>Connects, once.</summary>
     /// <param name="address">Where the instrument is.</param>
     /// <param name="writeWithin">How long a write may take.</param>
@@ -56,6 +59,17 @@ internal static class StreamSocket
         {
             bytes = bytes[socket.Send(bytes)..];
         }
+    }
+
+    /// <summary>Receives what comes next. What comes within a moment is waited for on the caller's thread: waking another
+    /// one costs several round trips of a quick instrument.</summary>
+    /// <returns>Bytes received; 0 where the other side has ended the stream.</returns>
+    /// <exception cref="SocketException">Lost.</exception>
+    public static ValueTask<int> Receive(Socket socket, Memory<byte> buffer, CancellationToken cancel)
+    {
+        cancel.ThrowIfCancellationRequested();
+        socket.Poll(Moment, SelectMode.SelectRead);
+        return socket.ReceiveAsync(buffer, cancel);
     }
 
     /// <summary>Whether an exception says that a socket is of no more use.</summary>

@@ -60,7 +60,7 @@ internal sealed class TcpLink : ILink
     {
         try
         {
-            return await _socket.ReceiveAsync(buffer, cancel);
+            return await StreamSocket.Receive(_socket, buffer, cancel);
         }
         catch (Exception e) when (StreamSocket.IsLoss(e))
         {

@@ -22,6 +22,7 @@ public sealed class HislipHost : IHost
     private readonly CancellationTokenSource _stop = new();
     private readonly Task _accepting;
     private int _lastId;
+    private int _clients;
 
     /// <summary>Starts to listen on a free port.</summary>
     /// <param name="instrument">The instrument.</param>
@@ -118,21 +119,23 @@ public sealed class HislipHost : IHost
             throw TroubleException.BadStart();
         }
 
+        if (Interlocked.Increment(ref _clients) > _terms.MostClients)
+        {
+            Interlocked.Decrement(ref _clients);
+            throw TroubleException.Full();
+        }
+
         ushort id = (ushort)Interlocked.Increment(ref _lastId);
         using var session = new Session(id, socket, _instrument, _desk, _terms, _time);
         _sessions[id] = session;
         try
         {
-            if (_sessions.Count > _terms.MostClients)
-            {
-                throw TroubleException.Full();
-            }
-
             await session.Serve(_stop.Token);
         }
         finally
         {
             _sessions.TryRemove(id, out _);
+            Interlocked.Decrement(ref _clients);
         }
     }
 

@@ -188,7 +188,7 @@ internal sealed class HislipChannel(string name, Socket socket) : IDisposable
         int count;
         try
         {
-            count = await socket.ReceiveAsync(space, cancel);
+            count = await StreamSocket.Receive(socket, space, cancel);
         }
         catch (Exception e) when (StreamSocket.IsLoss(e))
         {
