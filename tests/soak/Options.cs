@@ -1,4 +1,5 @@
 using System.Globalization;
+using FakeBench.Faults;
 
 namespace BenchRunner.Soak;
 
@@ -7,17 +8,21 @@ namespace BenchRunner.Soak;
 /// <param name="Mixes">How many mixes are tried.</param>
 /// <param name="Json">Whether the result is printed as JSON.</param>
 /// <param name="Log">Whether each mix's event log is printed.</param>
+/// <param name="Faults">Faults tried instead of those of the seeds, on a sound device; empty: those of the
+/// seeds.</param>
 /// <param name="Fuzz">Whether replies are fuzzed in place of mixes.</param>
-internal sealed record Options(ulong Seed, int Mixes, bool Json, bool Log, bool Fuzz = false)
+internal sealed record Options(
+    ulong Seed, int Mixes, bool Json, bool Log, IReadOnlyList<Fault> Faults, bool Fuzz = false)
 {
     /// <summary>How it is called.</summary>
-    public const string Usage = "usage: [--seed N] [--mixes M] [--json] [--log] | --fuzz [--seed N] [--json]";
+    public const string Usage =
+        "usage: [--seed N] [--mixes M] [--json] [--log] [--fault NAME[@WHEN]]… | --fuzz [--seed N] [--json]";
 
     /// <summary>Reads the command line.</summary>
     /// <returns>The options; null where it is none.</returns>
     public static Options? Read(IReadOnlyList<string> arguments)
     {
-        var options = new Options(1, 2000, Json: false, Log: false);
+        var options = new Options(1, 2000, Json: false, Log: false, []);
         for (int i = 0; i < arguments.Count; i++)
         {
             switch (arguments[i])
@@ -27,6 +32,9 @@ internal sealed record Options(ulong Seed, int Mixes, bool Json, bool Log, bool 
                     break;
                 case "--fuzz":
                     options = options with { Fuzz = true };
+                    break;
+                case "--fault" when i + 1 < arguments.Count:
+                    options = options with { Faults = [.. options.Faults, Fault.Parse(arguments[++i])] };
                     break;
                 case "--log":
                     options = options with { Log = true };

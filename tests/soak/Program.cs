@@ -39,7 +39,7 @@ internal static class Program
                 var trains = new TrainCache(KeptTrains);
                 while (Interlocked.Increment(ref next) is var number && number <= options.Mixes)
                 {
-                    Judged judged = Trial.Run(Mix.Of(options.Seed + (ulong)number - 1), trains, parent);
+                    Judged judged = Trial.Run(Choose(options, (ulong)number - 1), trains, parent);
                     lock (failures)
                     {
                         Tell(judged, options, failures);
@@ -70,6 +70,12 @@ internal static class Program
         }
 
         return failures.Count == 0 ? 0 : 1;
+    }
+
+    private static Mix Choose(Options options, ulong number)
+    {
+        Mix mix = Mix.Of(options.Seed + number);
+        return options.Faults.Count == 0 ? mix : mix.Under(options.Faults);
     }
 
     private static void Tell(Judged judged, Options options, List<Failure> failures)

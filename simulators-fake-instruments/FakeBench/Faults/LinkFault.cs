@@ -122,11 +122,12 @@ public static class LinkFault
     private static byte[] OfText(byte[] bytes, Func<string, bool> has, Func<string, bool> take)
     {
         string text = Encoding.Latin1.GetString(bytes);
-        bool isNumber = text.Contains('E', StringComparison.Ordinal)
-            && double.TryParse(text, NumberStyles.Float, CultureInfo.InvariantCulture, out _);
+        int last = text.LastIndexOf(';') + 1;
+        bool isNumber = text.AsSpan(last).Contains('E')
+            && double.TryParse(text.AsSpan(last), NumberStyles.Float, CultureInfo.InvariantCulture, out _);
         if (isNumber && has(Overload))
         {
-            return "9.91E37\n"u8.ToArray();
+            return [.. bytes[..last], .. "9.91E37\n"u8];
         }
 
         return take(Garbage) ? [.. bytes[..(bytes.Length / 2)], 0xff, 0x80, 0x02, .. bytes[(bytes.Length / 2)..]] : bytes;

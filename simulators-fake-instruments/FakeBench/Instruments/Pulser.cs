@@ -57,6 +57,9 @@ public sealed class Pulser : Instrument
     /// <summary>Whether a trigger would fire it: its output alone holds the gates at their off level.</summary>
     public bool CanFire => _armed;
 
+    /// <summary>Trains fired.</summary>
+    public long Count => _count;
+
     private PulseTrain Train =>
         Flaws.On(new PulseTrain(_first, _gap, _second, _on, Bench.GateOff, Bench.BankVoltage), Bench.Faults);
 

@@ -61,6 +61,12 @@ internal sealed record Mix(ulong Seed)
                 4 => new Moment(MomentKind.Block, Whole(1, 40)),
                 _ => kind.Begins,
             };
+            if (kind.Name == FaultCatalogue.ProbesSwapped)
+            {
+                // Nobody swaps probes in a closed enclosure.
+                begins = Moment.Start;
+            }
+
             faults.Add(new Fault(role is null ? kind.Name : LinkFault.Of(role, kind.Name), begins));
         }
 
@@ -76,6 +82,18 @@ internal sealed record Mix(ulong Seed)
             Stepped = draw.NextUniform() < SteppedShare ? (Uniform(0, 8), Uniform(-86_400, 86_400)) : null,
         };
     }
+
+    /// <summary>The same mix on a sound device, uninterrupted, under faults that were asked for.</summary>
+    public Mix Under(IReadOnlyList<Fault> faults) => this with
+    {
+        Device = "W1200-0001",
+        Points = ["half", "rated"],
+        Captures = (3, 8),
+        Faults = faults,
+        Interrupted = null,
+        Declined = false,
+        Stepped = null,
+    };
 
     /// <inheritdoc/>
     public override string ToString()

@@ -1,5 +1,3 @@
-using System.Globalization;
-using System.Text;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Sessions;
 using FakeBench.Faults;
@@ -18,7 +16,7 @@ internal sealed class MemoryBench
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
     private readonly List<(string Role, MemoryLink Link)> _links = [];
-    private readonly Dictionary<string, int> _firesBefore = [];
+    private readonly Dictionary<string, long> _firesBefore = [];
     private readonly IReadOnlyList<Fault> _faults;
 
     /// <summary>Makes a bench with a device in its socket.</summary>
@@ -43,7 +41,8 @@ internal sealed class MemoryBench
     public IEnumerable<string> Open => _links.Where(open => !open.Link.IsClosed).Select(open => open.Role);
 
     /// <summary>Trains that were fired while a fault was in force.</summary>
-    public int FiresUnder(string fault) => Fires() - _firesBefore.GetValueOrDefault(fault, Fires());
+    public long FiresUnder(string fault) =>
+        _panels.Pulser.Count - _firesBefore.GetValueOrDefault(fault, _panels.Pulser.Count);
 
     /// <summary>Opens a link: <c>tcp ROLE 1</c>.</summary>
     public async Task<ILink> Connect(
@@ -67,9 +66,6 @@ internal sealed class MemoryBench
         return link;
     }
 
-    private int Fires() => int.Parse(
-        Encoding.ASCII.GetString(_panels.Pulser.Obey("SOURce:PULSe:COUNt?").Bytes), CultureInfo.InvariantCulture);
-
     /// <summary>A fault that begins with a train is there for that train already.</summary>
     private void NoteBegun()
     {
@@ -77,7 +73,8 @@ internal sealed class MemoryBench
         {
             if (Bench.Faults.Has(fault.Name) && !_firesBefore.ContainsKey(fault.Name))
             {
-                _firesBefore[fault.Name] = Fires() - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0);
+                _firesBefore[fault.Name] =
+                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0);
             }
         }
     }
