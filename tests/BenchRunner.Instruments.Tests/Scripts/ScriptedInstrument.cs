@@ -140,6 +140,11 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
         {
             await act(visitor);
         }
+        else if (line.Split(";:") is { Length: > 1 } units
+            && units.All(u => _always.ContainsKey(u) || _once.TryGetValue(u, out var waiting) && !waiting.IsEmpty))
+        {
+            await Answer(visitor, units);
+        }
         else if (line.StartsWith("*ESE ", StringComparison.Ordinal)
             && line.EndsWith(";*ESE?", StringComparison.Ordinal))
         {
@@ -150,5 +155,19 @@ internal sealed class ScriptedInstrument : IAsyncDisposable
         {
             Fail($"-113,\"Undefined header;{line}\"");
         }
+    }
+
+    /// <summary>Several units from the root in one message: their replies are one, joined by semicolons.</summary>
+    private async Task Answer(Visitor visitor, string[] units)
+    {
+        var replies = new List<string>();
+        foreach (var unit in units)
+        {
+            var part = visitor.For(unit);
+            await Answer(part);
+            replies.Add(part.Held);
+        }
+
+        await visitor.Line(string.Join(';', replies));
     }
 }
