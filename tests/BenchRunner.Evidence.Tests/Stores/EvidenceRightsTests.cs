@@ -19,7 +19,7 @@ public sealed class EvidenceRightsTests : IDisposable
         string[] files = Directory.GetFiles(_folder.Folder);
         Assert.Contains(files, file => file.EndsWith("-wal", StringComparison.Ordinal));
         Assert.All(files, file => Assert.Equal(
-            UnixFileMode.None, File.GetUnixFileMode(file) & ~OwnFile.Mode));
+            UnixFileMode.None, new FileInfo(file).UnixFileMode & ~OwnFile.Mode));
     }
 
     [Theory]

@@ -19,7 +19,7 @@ public sealed class OwnFilesTests : IDisposable
         new LatchFile(_folder.File("lab.yaml")).Set(DateTimeOffset.UnixEpoch, "tried");
 
         Assert.All(["lab.lock", "lab.lock-holder", "lab.latch"], name => Assert.Equal(
-            UnixFileMode.None, File.GetUnixFileMode(_folder.File(name)) & ~OwnFile.Mode));
+            UnixFileMode.None, new FileInfo(_folder.File(name)).UnixFileMode & ~OwnFile.Mode));
     }
 
     [Fact]
