@@ -32,7 +32,7 @@ public static class RoleOperations
                 Do("set-format"), Ask("read-format"), Do("set-byte-order"), Ask("read-byte-order"),
                 Do("arm"), Do("trigger"), Do("abort"), Ask("read-condition"), Ask("read-count"),
                 Ask("read-preamble", ofChannel: true), Ask("read-trace", ofChannel: true),
-                new("read-preambles", true, false, TakesChannel: true, IsOptional: true),
+                new("read-all-preambles", true, false, TakesChannel: true, IsOptional: true),
                 new("degauss", false, false, TakesChannel: true, IsOptional: true), .. Checks,
             ],
             ["voltmeter"] = [Ask("measure-voltage"), .. Checks],

@@ -12,7 +12,7 @@ public sealed class ScpiScope : IScope, IDisposable
     private const int Sweeping = 3;
     private const int WaitsForTrigger = 5;
     private const string DegaussOperation = "degauss";
-    private const string PreamblesOperation = "read-preambles";
+    private const string PreamblesOperation = "read-all-preambles";
 
     private static readonly TimeSpan Pause = TimeSpan.FromMilliseconds(1);
 

@@ -24,7 +24,7 @@ public sealed class BenchFileTests
         Assert.False(bench.ExchangeByHand);
         Assert.Equal(["interlock", "pulser", "scope", "supply", "voltmeter"], bench.Roles.Keys.Order());
         Assert.Equal("bank", bench.Roles["voltmeter"].At);
-        Assert.Equal((2, 1), (bench.Roles["supply"].Connections, bench.Roles["interlock"].Connections));
+        Assert.Equal((3, 1), (bench.Roles["supply"].Connections, bench.Roles["interlock"].Connections));
     }
 
     [Fact]
