@@ -14,7 +14,8 @@ public sealed class FaultTests : IDisposable
     [InlineData("interlock-opens", 4, "stopped", "interlock loop is open")]
     [InlineData("interlock-opens@fire:3", 4, "stopped", "interlock loop is open")]
     [InlineData("emergency-stop", 4, "stopped", "emergency stop")]
-    [InlineData("supply-clips", 5, "stopped", "taken as 350")]
+    // Its output is on from the proving train: the bus is on its way up when the read-back shows it.
+    [InlineData("supply-clips", 4, "stopped", "taken as 350")]
     [InlineData("over-voltage-trips", 4, "stopped", "over-voltage protection")]
     public Task A_fault_that_ends_the_run_leaves_the_bus_down(
         string fault, int exitCode, string outcome, string reason) => EndsTheRun(fault, exitCode, outcome, reason);

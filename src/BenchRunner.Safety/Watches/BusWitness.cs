@@ -20,7 +20,8 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
     /// a pulse train and the reading's own error.</summary>
     private const double Droop = 0.2;
 
-    /// <summary>Share of a step that the voltmeter must have shown.</summary>
+    /// <summary>Share of a low step that the voltmeter must have shown; of a high one, that the bank is no longer
+    /// down.</summary>
     private const double ShareOfStep = 0.5;
 
     private readonly Lock _gate = new();
@@ -193,5 +194,8 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
     /// <summary>When the bus counts as down, in words, e.g. <c>60 V DC and 350 mJ</c>.</summary>
     public string DownWords => $"{limits.BusDown:0.#} V DC and {SiText.Format(limits.EnergyDown, "J", 3)}";
 
-    private double MissedNow() => _step >= DownBelow && _seenInStep < ShareOfStep * _step ? _step : 0;
+    /// <summary>A run may end while the bus still rises: a voltmeter that has shown it charged lives, and what opens later
+    /// is a fall that no bleeder explains.</summary>
+    private double MissedNow() =>
+        _step >= DownBelow && _seenInStep < Math.Min(ShareOfStep * _step, DownBelow) ? _step : 0;
 }
