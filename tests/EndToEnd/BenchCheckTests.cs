@@ -51,7 +51,7 @@ public sealed class BenchCheckTests : IDisposable
         Finished check = (await _place.Run(
             "bench", "check", "--bench", _place.FakeBenchFile("{ seed: 1, pace: 5, faults: [error-queue-full] }"))).Expect(0);
 
-        Assert.Contains("error queue: -330", check.Output, StringComparison.Ordinal);
+        Assert.Contains("error queue: -222", check.Output, StringComparison.Ordinal);
         Assert.Contains("error queue: -350", check.Output, StringComparison.Ordinal);
     }
 

@@ -145,8 +145,7 @@ public sealed class ScpiScope : IScope, IDisposable
     /// <inheritdoc/>
     /// <exception cref="InvalidOperationException">Not configured: a caller's mistake.</exception>
     /// <remarks>A trace that was cut, is of another length or scale than asked for, or of another acquisition is left
-    /// out
-    /// and reported, never patched.</remarks>
+    /// out and reported, never patched.</remarks>
     /// <exception cref="LinkException">The count could not be read.</exception>
     public async Task<ScopeRecord> Read(CancellationToken cancel)
     {
@@ -154,7 +153,7 @@ public sealed class ScpiScope : IScope, IDisposable
         var traces = new List<RawTrace>(settings.Channels.Count);
         var connections = _instrument.Session.Connections;
         var preambles = await TryReadPreambles(settings, cancel);
-        var before = preambles is { Count: > 0 } ? preambles[0].Count : await ReadCount(cancel);
+        var before = preambles is { Count: > 0 } ? Agreed(preambles) : await ReadCount(cancel);
         for (var i = 0; i < settings.Channels.Count; i++)
         {
             if (await TryReadTrace(settings, settings.Channels[i], preambles?[i], before, cancel) is { } trace)
@@ -208,6 +207,12 @@ public sealed class ScpiScope : IScope, IDisposable
             return null;
         }
     }
+
+    /// <summary>The acquisition that most preambles name, the newest of those equally often named: one that is stale must
+    /// not make the others look so.</summary>
+    private static long Agreed(IReadOnlyList<ScopePreamble> preambles) => preambles
+        .GroupBy(preamble => preamble.Count)
+        .MaxBy(same => (same.Count(), same.Key))!.Key;
 
     private async Task<RawTrace?> TryReadTrace(
         ScopeSettings settings, ScopeChannelSettings channel, ScopePreamble? known, long count,

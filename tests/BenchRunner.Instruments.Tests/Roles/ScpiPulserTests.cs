@@ -154,11 +154,14 @@ public sealed class ScpiPulserTests : IAsyncLifetime
     }
 
     [Fact]
-    public async Task The_safe_side_inhibits_and_switches_the_gate_output_off()
+    public async Task The_safe_side_inhibits_at_once_and_takes_the_off_bias_away_only_when_told()
     {
         await ProgramAndArm();
         await _pulser.MakeSafe(_cancel);
-        Assert.Equal(["ABORt", "OUTPut:STATe 0"], _instrument.Received.Where(l => !l.Contains('?')).TakeLast(2));
+        Assert.Equal("ABORt", _instrument.Received.Last(l => !l.Contains('?')));
+        Assert.DoesNotContain("OUTPut:STATe 0", _instrument.Received);
+        await _pulser.TakeOffBiasAway(_cancel);
+        Assert.Equal("OUTPut:STATe 0", _instrument.Received.Last(l => !l.Contains('?')));
         await Assert.ThrowsAsync<InvalidOperationException>(() => _pulser.Fire(Grants.Live(), _cancel));
     }
 
