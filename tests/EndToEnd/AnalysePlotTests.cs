@@ -16,6 +16,21 @@ public sealed class AnalysePlotTests : IDisposable
     public void Dispose() => _place.Dispose();
 
     [Fact]
+    public async Task A_picture_is_not_written_through_a_link()
+    {
+        string kept = _place.Path("kept.svg");
+        File.WriteAllText(kept, "mine");
+        string link = _place.Path("link.svg");
+        File.CreateSymbolicLink(link, kept);
+
+        Finished refused = (await _place.Run("analyse", _train, "--plot", link)).Expect(2);
+
+        Assert.Contains($"'{link}' is a symbolic link to {kept}", refused.Error, StringComparison.Ordinal);
+        Assert.Equal("mine", File.ReadAllText(kept));
+        Assert.NotNull(new FileInfo(link).LinkTarget);
+    }
+
+    [Fact]
     public async Task Intervals_and_their_names_lie_where_the_values_say()
     {
         (XElement svg, JsonElement waveform) = await Draw(_train);

@@ -10,9 +10,10 @@ public sealed class AttackTableTests
 
     private static readonly Dictionary<string, string[]> _tests = new()
     {
-        ["A01"] = ["An_endless_line_is_dropped_with_its_link"],
+        ["A01"] = ["An_endless_line_is_dropped_with_its_link", "A_hundred_megabytes_without_an_end_leave_memory_flat"],
         ["A02"] = ["What_is_no_block_of_the_due_length_is_refused_by_name", "A_block_that_stops_in_the_middle_costs_the_connection"],
-        ["A03"] = ["Whatever_comes_is_a_value_or_a_documented_exception_within_bounds"],
+        ["A03"] = ["Whatever_comes_is_a_value_or_a_documented_exception_within_bounds",
+            "An_announced_length_is_refused_from_its_digits_before_memory_is_taken"],
         ["A04"] = ["A_faulty_input_is_named"],
         ["A05"] = ["A_flood_that_does_not_end_breaks_the_link"],
         ["A06"] = ["Controls_and_marks_of_direction_are_escaped", "Control_and_direction_characters_are_escaped_in_a_table"],
@@ -25,6 +26,7 @@ public sealed class AttackTableTests
             "Endless_nesting_ends_at_the_bound"],
         ["A13"] = ["A_link_that_leads_out_of_the_folder_is_not_followed",
             "A_link_at_the_evidences_place_is_refused_and_what_it_leads_to_stays",
+            "A_picture_is_not_written_through_a_link",
             "A_link_in_the_locks_place_holds_the_bench_and_is_named",
             "A_link_in_the_latchs_place_stands_as_a_latch_and_is_not_written_through"],
         ["A14"] = ["A_packed_file_is_counted_before_it_is_read", "Damaged_bytes_give_codes_or_a_clear_refusal"],

@@ -114,7 +114,7 @@ public sealed class ServerTests
         await using Client other = await Client.Connect(bench.Link("scope"));
         await bench["scope"].Say("*IDN?");
         await bench["scope"].Say("SYST:VERS?");
-        await Acted(bench.Server.Bench, "late-reply");
+        await Acted(bench.Server.Bench, "scope/late-reply");
         Assert.Equal("0,\"No error\"", await bench["supply"].Ask("SYST:ERR?"));
         Task<string> late = bench["scope"].Line();
         Assert.Equal("1", await other.Ask("*OPC?"));
