@@ -23,6 +23,7 @@ public sealed class FaultTests : IDisposable
     [Theory]
     [Trait("kind", "slow")]
     [InlineData("silent-supply", 4, "stopped", "no sign of life")]
+    [InlineData("second-controller@fire:3", 4, "stopped", "above the 420.0 V that the permit allows")]
     [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
     [InlineData("probe-factor-changes", 4, "stopped", "the attenuation of id_low (input 3) is 10 where 1 was set")]
     public Task A_fault_that_takes_long_to_end_the_run_leaves_the_bus_down(
@@ -70,6 +71,20 @@ public sealed class FaultTests : IDisposable
             "select operating_point, quantity, definition, value, conformity from measurements order by 1, 2, 3";
         Assert.Equal(_place.Rows(values, _place.Path("sound.db")), _place.Rows(values));
         AssertBusDown();
+    }
+
+    [Theory]
+    [Trait("kind", "slow")]
+    [InlineData("voltmeter-open@volts:300")]
+    [InlineData("fuse-opens")]
+    public async Task A_lead_or_fuse_that_opens_with_the_bus_up_is_no_proof(string fault)
+    {
+        Finished run = (await Run(fault)).Expect(4);
+
+        Assert.Contains("THE BUS IS NOT PROVED DOWN", run.Output, StringComparison.Ordinal);
+        Assert.Equal("stopped", _place.Ask<string>("select outcome from device_outcomes"));
+        Assert.Equal(0, _place.Ask<long>(
+            "select count(*) from events where kind = 'bus-down' and at > (select min(at) from events where kind = 'trip')"));
     }
 
     [Fact]

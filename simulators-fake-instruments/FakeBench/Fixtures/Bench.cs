@@ -263,6 +263,9 @@ public sealed class Bench
                 case FaultCatalogue.OverVoltageTrips:
                     TripSupply();
                     break;
+                case FaultCatalogue.SecondController:
+                    Supply.Voltage *= FaultCatalogue.ForeignSetting;
+                    break;
                 case FaultCatalogue.PlateDrifts:
                     Plate?.Disturb(-FaultCatalogue.PlateDrift);
                     break;

@@ -68,11 +68,6 @@ public sealed class Supply : Instrument
             | (Bench.InCurrentLimit ? QuestionableCurrent : 0);
         Scpi.Status.Questionable.SetCondition(questionable);
         Scpi.Status.Operation.SetCondition(Bench.Slewing ? OperationSettling : 0);
-        if (Bench.Faults.Take(FaultCatalogue.SecondController))
-        {
-            Bench.Supply.Voltage *= FaultCatalogue.ForeignSetting;
-        }
-
         if (Bench.Faults.Take(FaultCatalogue.ErrorQueueFull))
         {
             for (int i = 0; i <= ErrorList.Capacity; i++)

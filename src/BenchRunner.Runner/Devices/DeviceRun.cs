@@ -51,13 +51,17 @@ public sealed class DeviceRun(
 
         SafeStateReport safe = await supervisor.MakeSafe();
         supervisor.EndConfirmed();
-        if (!safe.Proved || supervisor.Trip is not null)
+        if (supervisor.Trip is { } trip)
         {
+            // Also where it came after the last train: a run that safety ended decides nothing.
             ending = BenchEnding.Tripped;
+            ended ??= new Ended(Outcome.Stopped, trip.Reason);
         }
 
         if (!safe.Proved)
         {
+            ending = BenchEnding.Tripped;
+
             // What was found wrong with the device stays found; the bench's own trouble stands beside it.
             ended = new Ended(ended?.Outcome ?? Outcome.Stopped, Join(ended?.Why, "the bus was not proved down"));
         }

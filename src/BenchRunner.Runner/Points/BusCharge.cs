@@ -184,6 +184,14 @@ public sealed class BusCharge(OpenBench bench, Bench setup, SafetySupervisor sup
                 $"{seen}: the supply has switched its output off by itself (over-voltage protection)", false);
         }
 
+        if (Math.Abs(supply.Set.Value - target) > 0.01 * target)
+        {
+            return new BusException(
+                $"{seen}: its set-point is {supply.Set.Value:0.#} V now; another controller or the front panel has changed "
+                    + "it",
+                false);
+        }
+
         return supply.InCurrentLimit && volts < 0.5 * target
             ? new BusException($"{seen}, the supply in current limit with both gates off: a position is shorted or the "
                 + $"bus leaks", true)

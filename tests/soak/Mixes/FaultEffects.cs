@@ -42,6 +42,11 @@ internal static class FaultEffects
         FaultCatalogue.SecondController, FaultCatalogue.SupplyClips,
     ];
 
+    /// <summary>These take the proof away that the bus is down; one that begins below 60 V after the last train has
+    /// nothing left to hide.</summary>
+    private static readonly HashSet<string> _ofTheProof =
+        [FaultCatalogue.VoltmeterOpen, FaultCatalogue.FuseOpens, FaultCatalogue.ReadingSticks];
+
     /// <summary>Whether a device that was accepted should not have been.</summary>
     /// <param name="fault">A fault that has begun.</param>
     /// <param name="mix">The mix.</param>
@@ -53,7 +58,13 @@ internal static class FaultEffects
         // Below 60 V the proving train is judged by wider bounds than another controller's 5 %.
         bool isSmall = name == FaultCatalogue.SecondController
             && mix.Faults.All(other => other.Name != fault || other.Begins is not { Kind: MomentKind.Fire, Value: > 1 });
-        bool isOver = isSmall || (_ofTrains.Contains(name) && bench.FiresUnder(fault) == 0);
+        bool afterAll = bench.FiresUnder(fault) == 0;
+
+        // Clips what is set from then on: a bus that is at its highest voltage is set no more.
+        bool isSet = name == FaultCatalogue.SupplyClips
+            && bench.VoltsAtBeginOf(fault) > 0.9 * (mix.Points.Contains("rated") ? 600 : 400);
+        bool isOver = isSmall || isSet || (_ofTrains.Contains(name) && afterAll)
+            || (_ofTheProof.Contains(name) && afterAll && bench.VoltsAtBeginOf(fault) < 60);
         return (_never.Contains(name) && !isOver)
             || (name == FaultCatalogue.SaturatingInductor && mix.Points.Contains("rated"))
             || (_counted.Contains(name) && bench.Bench.Faults.HasActed(fault) && !hasTrace);

@@ -16,7 +16,7 @@ internal sealed class MemoryBench
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
     private readonly List<(string Role, MemoryLink Link)> _links = [];
-    private readonly Dictionary<string, long> _firesBefore = [];
+    private readonly Dictionary<string, (long Fires, double Volts)> _begun = [];
     private readonly IReadOnlyList<Fault> _faults;
 
     /// <summary>Makes a bench with a device in its socket.</summary>
@@ -42,7 +42,11 @@ internal sealed class MemoryBench
 
     /// <summary>Trains that were fired while a fault was in force.</summary>
     public long FiresUnder(string fault) =>
-        _panels.Pulser.Count - _firesBefore.GetValueOrDefault(fault, _panels.Pulser.Count);
+        _begun.TryGetValue(fault, out var before) ? _panels.Pulser.Count - before.Fires : 0;
+
+    /// <summary>What the bank had when a fault began, V.</summary>
+    public double VoltsAtBeginOf(string fault) =>
+        _begun.TryGetValue(fault, out var before) ? before.Volts : double.PositiveInfinity;
 
     /// <summary>Opens a link: <c>tcp ROLE 1</c>.</summary>
     public async Task<ILink> Connect(
@@ -71,10 +75,10 @@ internal sealed class MemoryBench
     {
         foreach (Fault fault in _faults)
         {
-            if (Bench.Faults.Has(fault.Name) && !_firesBefore.ContainsKey(fault.Name))
+            if (Bench.Faults.Has(fault.Name) && !_begun.ContainsKey(fault.Name))
             {
-                _firesBefore[fault.Name] =
-                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0);
+                _begun[fault.Name] = (
+                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0), Bench.BankVoltage);
             }
         }
     }
