@@ -24,8 +24,7 @@ internal sealed partial class Trial : IDisposable
             "serve", "--ends-with-input", "--say-states", "--interlock", "tcp", "--seed",
             seed.ToString(CultureInfo.InvariantCulture), "--write-bench", written);
         Until(_bench, line => line == "ready");
-        _bench.OutputDataReceived += (_, line) => Keep(line.Data);
-        _bench.BeginOutputReadLine();
+        Follow(_bench, Keep);
         string file = Path.Combine(_folder.FullName, "bench.yaml");
         File.WriteAllLines(file, File.ReadLines(written).Select(Relayed));
         _run = Start(
@@ -33,8 +32,7 @@ internal sealed partial class Trial : IDisposable
             "run", "sequences/winch-drive-incoming.yaml", "--device", "W1200-0001", "--bench", file, "--operator", "op",
             "--armed-by", "op", "--evidence", Path.Combine(_folder.FullName, "evidence.db"));
         Until(_run, line => line.Contains("rated capture 1", StringComparison.Ordinal));
-        _run.OutputDataReceived += (_, _) => { };
-        _run.BeginOutputReadLine();
+        Follow(_run, _ => { });
         Guardian = GuardianOf(_run.Id);
     }
 
@@ -140,6 +138,28 @@ internal sealed partial class Trial : IDisposable
         throw new InvalidOperationException($"{process.StartInfo.FileName} ended before it was where a trial begins.");
     }
 
+    /// <summary>Takes what a process says from here on; it must not wait for a reader.</summary>
+    private static void Follow(Process process, Action<string> take)
+    {
+        StreamReader output = process.StandardOutput;
+        var reader = new Thread(() =>
+        {
+            try
+            {
+                while (output.ReadLine() is { } line)
+                {
+                    take(line);
+                }
+            }
+            catch (Exception over) when (over is IOException or ObjectDisposedException or InvalidOperationException)
+            {
+                // The trial is over.
+            }
+        })
+        { IsBackground = true, Name = "trial" };
+        reader.Start();
+    }
+
     private static int GuardianOf(int runner) => Directory.GetDirectories("/proc")
         .Select(folder => int.TryParse(Path.GetFileName(folder), out int number) ? number : 0)
         .First(number => number > 0 && IsGuardian(number, runner));
@@ -157,9 +177,9 @@ internal sealed partial class Trial : IDisposable
         }
     }
 
-    private void Keep(string? line)
+    private void Keep(string line)
     {
-        if (line?.StartsWith("state ", StringComparison.Ordinal) == true)
+        if (line.StartsWith("state ", StringComparison.Ordinal))
         {
             _states.Add(line);
         }
