@@ -105,7 +105,7 @@ public static class FaultCatalogue
     public const double ArcNoise = 100, OpenNoise = 0.5;
 
     /// <summary>What is left of the transconductance in <see cref="Desaturates"/>, 1.</summary>
-    public const double Desaturated = 0.1;
+    public const double Desaturated = 0.02;
 
     /// <summary>The bank falls below the one and rises to the other in <see cref="BusRises"/>, V.</summary>
     public const double RisesFrom = 40, RisesTo = 90;

@@ -25,14 +25,21 @@ public static class StopOutcome
     /// <param name="verdict">What was found; at least one finding of class stop.</param>
     /// <returns>
     /// Rejected where the finding speaks of a place under test, else stopped; and the finding that says so. Of several,
-    /// one that speaks of a place outweighs the others: a switch that is open has no current at its target either.
+    /// one that speaks of a place outweighs the others: a switch that is open has no current at its target either. Not
+    /// so where the voltage that would convict the switch is not the voltmeter's before the train: then the probe is
+    /// wrong, or another's.
     /// </returns>
     public static (Outcome Outcome, Finding Cause) Of(CaptureContext context, Verdict verdict)
     {
         ArgumentNullException.ThrowIfNull(context);
         ArgumentNullException.ThrowIfNull(verdict);
         Finding[] stops = [.. verdict.Findings.Where(finding => finding.Class == FindingClass.Stop)];
-        Finding cause = stops.FirstOrDefault(finding => _ofPlaces.Contains(finding.Criterion)) ?? stops[0];
+        Channel voltage = HalfBridge.Playing(Channel.VdsLow, HalfBridge.FiresHigh(context.Sequence));
+        Finding? probe = stops.FirstOrDefault(
+            finding => finding.Criterion == Criteria.BusAgrees && finding.Channel == voltage);
+        Finding cause = stops.FirstOrDefault(finding => _ofPlaces.Contains(finding.Criterion)
+                && (probe is null || finding.Criterion != Criteria.Desaturated))
+            ?? probe ?? stops[0];
         QuantityOwner? place = cause.Criterion switch
         {
             Criteria.Desaturated => ShootsThrough(context, verdict) ? QuantityOwner.Diode : QuantityOwner.Switch,

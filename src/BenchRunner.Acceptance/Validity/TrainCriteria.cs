@@ -30,7 +30,7 @@ internal static class TrainCriteria
         Channel gate = Gate(context);
         if (!train.IsTwoPulses)
         {
-            judgement.Add([WaveformCriteria.Edges(train, gate)]);
+            judgement.Add([IsStuckOn(train) ? StuckOn(train, gate) : WaveformCriteria.Edges(train, gate)]);
             return;
         }
 
@@ -150,6 +150,15 @@ internal static class TrainCriteria
                 Gate(context), off, set.GateOff);
         }
     }
+
+    /// <summary>Whether the second pulse has no end in a record that is planned to hold it: another train would find the
+    /// gate on.</summary>
+    private static bool IsStuckOn(TrainFacts train) =>
+        train is { Edges.Count: 3, On1: not null, Off1: not null, On2: not null, Off2: null };
+
+    private static Finding StuckOn(TrainFacts train, Channel gate) => new(
+        Criteria.TwoPulses, FindingClass.Stop, gate, train.Edges.Count, 4, train.On2?.At,
+        $"{gate.Name()} is still on at the end of the record: the gate does not go off; the run stops");
 
     private static Channel Gate(CaptureContext context) =>
         HalfBridge.Playing(Channel.VgsLow, HalfBridge.FiresHigh(context.Sequence));

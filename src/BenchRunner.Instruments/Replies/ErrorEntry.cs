@@ -13,6 +13,10 @@ public sealed record ErrorEntry(int Number, string? Text, string? Detail)
     /// <summary>Whether the queue was empty. The number decides, whatever the text.</summary>
     public bool IsNone => Number == 0;
 
+    /// <summary>Whether it speaks of the instrument's own hardware: -24x hardware, -31x memory and calibration data, -33x
+    /// self-test (SCPI-1999 volume 2, 21.8.9 to 21.8.11).</summary>
+    public bool IsOfHardware => Number is (<= -240 and >= -249) or (<= -310 and >= -319) or (<= -330 and >= -339);
+
     /// <summary>Reads one entry.</summary>
     /// <exception cref="ReplyException">No entry, or a string that is not closed.</exception>
     public static ErrorEntry Parse(ReadOnlySpan<byte> reply)

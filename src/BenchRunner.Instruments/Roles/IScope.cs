@@ -34,9 +34,8 @@ public interface IScope
     /// <summary>Triggers an armed scope at once, so that it records without a pulse train.</summary>
     Task Trigger(CancellationToken cancel);
 
-    /// <summary>Waits until the acquisition is complete.</summary>
-    /// <returns>False where the deadline passed first (trigger missed): the acquisition was then aborted.</returns>
-    Task<bool> WaitForRecord(TimeSpan deadline, CancellationToken cancel);
+    /// <summary>Waits until the acquisition is complete; aborts it at the deadline.</summary>
+    Task<AcquisitionEnd> WaitForRecord(TimeSpan deadline, CancellationToken cancel);
 
     /// <summary>Acquisitions completed since the scope was switched on.</summary>
     Task<long> ReadCount(CancellationToken cancel);

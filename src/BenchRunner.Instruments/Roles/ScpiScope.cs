@@ -126,17 +126,20 @@ public sealed class ScpiScope : IScope, IDisposable
         _instrument.Session.Set(_instrument.Command("trigger"), cancel);
 
     /// <inheritdoc/>
-    public async Task<bool> WaitForRecord(TimeSpan deadline, CancellationToken cancel)
+    public async Task<AcquisitionEnd> WaitForRecord(TimeSpan deadline, CancellationToken cancel)
     {
         const long Busy = (1L << Sweeping) | (1L << WaitsForTrigger);
+        long condition = Busy;
         var done = await _instrument.WaitFor(
-            async c => (await _instrument.ReadInteger("read-condition", c) & Busy) == 0, deadline, Pause, cancel);
-        if (!done)
+            async c => ((condition = await _instrument.ReadInteger("read-condition", c)) & Busy) == 0, deadline, Pause,
+            cancel);
+        if (done)
         {
-            await Abort(cancel);
+            return AcquisitionEnd.Complete;
         }
 
-        return done;
+        await Abort(cancel);
+        return (condition & (1L << WaitsForTrigger)) != 0 ? AcquisitionEnd.NotTriggered : AcquisitionEnd.NotCompleted;
     }
 
     /// <inheritdoc/>

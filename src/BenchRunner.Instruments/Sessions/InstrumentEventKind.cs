@@ -13,6 +13,9 @@ public enum InstrumentEventKind
     /// resynchronisation.</summary>
     Doubt,
 
+    /// <summary>An exchange was broken off by our side; its reply will come late and be dropped.</summary>
+    Cancelled,
+
     /// <summary>The link was resynchronised: what came late was dropped.</summary>
     Resynchronised,
 

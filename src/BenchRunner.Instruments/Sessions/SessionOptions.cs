@@ -48,6 +48,10 @@ public sealed record SessionOptions
     /// after.</summary>
     public bool Reconnect { get; init; } = true;
 
+    /// <summary>Whether an instrument is refused whose error queue, when the link is opened, speaks of its own hardware.
+    /// Never for links that only make safe: a doubtful supply is switched off all the same.</summary>
+    public bool RefuseHardwareErrors { get; init; }
+
     /// <summary>The lock taken on a link that has locks (HiSLIP), so that no second controller changes a setting: empty
     /// for this connection alone, a name shared by all connections that give the same one; null: none.</summary>
     public string? Lock { get; init; }

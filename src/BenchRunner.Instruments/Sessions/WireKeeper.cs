@@ -49,6 +49,7 @@ internal sealed class WireKeeper : IDisposable
     public ScpiWire Current => _wire;
 
     /// <summary>Connects, identifies the instrument and empties its error queue.</summary>
+    /// <exception cref="InstrumentException">The queue speaks of broken hardware, and the options refuse that.</exception>
     public static async Task<WireKeeper> Open(
         string role,
         LinkAddress address,
@@ -63,9 +64,17 @@ internal sealed class WireKeeper : IDisposable
         {
             keeper._wire = await keeper.Connect(cancel);
             keeper.Identity = await keeper._wire.Ask("*IDN?", ReplyIdentity.Parse, cancel);
-            foreach (var entry in await keeper._wire.ReadErrors(cancel))
+            var entries = await keeper._wire.ReadErrors(cancel);
+            foreach (var entry in entries)
             {
                 keeper.Report(InstrumentEventKind.Errors, $"the error queue held {entry} at the start");
+            }
+
+            if (options.RefuseHardwareErrors && entries.FirstOrDefault(entry => entry.IsOfHardware) is { } broken)
+            {
+                throw new InstrumentException(
+                    role, $"its error queue held {broken} before anything was sent: the instrument says that it is not "
+                        + $"in order; have it looked at before it is used again ({address})");
             }
 
             if (options.Habits.ErrorQuery is not null)

@@ -49,7 +49,7 @@ internal sealed class WireTrust(ILink link, TimeSpan replyWithin, Action<Instrum
         switch (e)
         {
             case OperationCanceledException when cancel.IsCancellationRequested:
-                report(InstrumentEventKind.Doubt, $"cancelled while the reply to '{query}' was due");
+                report(InstrumentEventKind.Cancelled, $"cancelled while the reply to '{query}' was due");
                 return e;
             case OperationCanceledException:
                 report(InstrumentEventKind.Doubt, $"no whole reply to '{query}' in time");

@@ -55,7 +55,8 @@ public sealed class OpenBench : IAsyncDisposable
     /// <param name="opener">Opens the links.</param>
     /// <param name="time">The clock of all deadlines.</param>
     /// <param name="cancel">Ends the attempt.</param>
-    /// <exception cref="InstrumentException">An instrument is of the wrong kind.</exception>
+    /// <exception cref="InstrumentException">An instrument is of the wrong kind, or says that its hardware is
+    /// broken.</exception>
     /// <exception cref="BenchException">An instrument cannot be reached, or real and simulated ones are
     /// mixed.</exception>
     public static async Task<OpenBench> Open(
@@ -96,10 +97,11 @@ public sealed class OpenBench : IAsyncDisposable
     private async Task Connect(
         Func<string, SessionOptions, InstrumentConnection> at, Bench bench, CancellationToken cancel)
     {
-        var patient = new SessionOptions();
+        var patient = new SessionOptions { RefuseHardwareErrors = true };
         SessionOptions watching = SessionOptions.Watching with
         {
             ReplyWithin = TimeSpan.FromSeconds(bench.Safety.ReplyWithin),
+            RefuseHardwareErrors = true,
         };
 
         // Of two connections the guardian has one: work and watch share the other.

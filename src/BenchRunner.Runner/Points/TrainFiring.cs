@@ -3,6 +3,7 @@ using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Permits;
 using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
+using BenchRunner.Safety;
 using BenchRunner.Safety.Supervision;
 
 namespace BenchRunner.Runner.Points;
@@ -15,6 +16,11 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
 
     /// <summary>A train from setting the scope to the whole record, on the slowest link, with a repetition.</summary>
     private static readonly TimeSpan TrainWithin = TimeSpan.FromMinutes(2);
+
+    /// <summary>Trains in a row that no scope saw, from which it is no trigger that was missed.</summary>
+    private const int MostUnseenInARow = 3;
+
+    private int _unseenInARow;
 
     /// <summary>When the last train was fired, a time stamp of the clock; null before the first.</summary>
     public long? FiredAt { get; private set; }
@@ -48,7 +54,7 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
         await Prepare(settings, cancel);
         await OnScope(() => bench.Scope.Arm(cancel));
         await OnScope(() => bench.Scope.Trigger(cancel));
-        return await Record(cancel);
+        return (await Record(cancel)).Record;
     }
 
     /// <summary>Arms scope and pulser, fires, waits for the record and reads it.</summary>
@@ -57,6 +63,8 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
     /// <exception cref="InstrumentException">An instrument did not do what it was told, or the scope cannot be
     /// reached.</exception>
     /// <exception cref="LinkException">The pulser's link failed: whether a train was fired is unknown.</exception>
+    /// <exception cref="SafetyException">Train after train is fired with the bus up, and none reaches the gates: they may
+    /// not be held off.</exception>
     public async Task<ScopeRecord?> Fire(Permit permit, ScopeSettings settings, CancellationToken cancel)
     {
         supervisor.Progress("firing and reading a train", TrainWithin);
@@ -66,22 +74,32 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
         supervisor.Witness.Fired();
         await bench.Pulser.Fire(permit, cancel);
         FiredAt = time.GetTimestamp();
-        return await Record(cancel);
+        (ScopeRecord? record, AcquisitionEnd? end) = await Record(cancel);
+        _unseenInARow = end == AcquisitionEnd.NotTriggered ? _unseenInARow + 1 : 0;
+        return _unseenInARow < MostUnseenInARow || !supervisor.Witness.MayBeEnergised
+            ? record
+            : throw new SafetyException(
+                $"{MostUnseenInARow} trains in a row were fired and none reached the scope's trigger: the gate drivers may "
+                    + "have lost their supply and hold nothing off; look at the drivers' supply, then at trigger and "
+                    + "probe");
     }
 
-    private async Task<ScopeRecord?> Record(CancellationToken cancel)
+    private async Task<(ScopeRecord? Record, AcquisitionEnd? End)> Record(CancellationToken cancel)
     {
         try
         {
-            if (await bench.Scope.WaitForRecord(RecordWithin, cancel))
+            AcquisitionEnd end = await bench.Scope.WaitForRecord(RecordWithin, cancel);
+            if (end == AcquisitionEnd.Complete)
             {
-                return await bench.Scope.Read(cancel);
+                return (await bench.Scope.Read(cancel), end);
             }
 
+            string what = end == AcquisitionEnd.NotTriggered ? "trigger" : "come to the end of its acquisition";
             events.Say(
-                Severity.Warning, "trigger-missed",
-                $"the scope did not trigger within {RecordWithin.TotalSeconds:0} s; the acquisition was aborted, the "
+                Severity.Warning, end == AcquisitionEnd.NotTriggered ? "trigger-missed" : "acquisition-unfinished",
+                $"the scope did not {what} within {RecordWithin.TotalSeconds:0} s; the acquisition was aborted, the "
                     + $"train is lost");
+            return (null, end);
         }
         catch (LinkException lost)
         {
@@ -90,7 +108,7 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
                     + $"it is kept");
         }
 
-        return null;
+        return (null, null);
     }
 
     /// <summary>A scope that cannot be reached ends the run, but energises nothing: it is no reason to trip.</summary>

@@ -116,8 +116,9 @@ public sealed class RunSession
         // Its process starts while the links are opened; its own links follow, so that it clears no error queue unseen.
         string guardianLog = GuardianLog.PathOf(IsNewEachTime ? _request.EvidencePath : Bench.Source.Path);
         await using IRunGuardian guardian = Guardian(Bench, guardianLog, _time);
+        var reports = new InstrumentReports(_events);
         await using OpenBench open = await OpenBench.Open(
-            Bench, _request.Dialects, fake?.Links, new InstrumentReports(_events), Opener, _time, operatorStop);
+            Bench, _request.Dialects, fake?.Links, reports, Opener, _time, operatorStop);
         if (open.IsSimulated && !IsNewEachTime)
         {
             _events.Say(
@@ -138,6 +139,15 @@ public sealed class RunSession
         // From here on, also while a person is asked and while a device is exchanged; the mark comes before all else.
         supervisor.TripMarked += LeaveLatch;
         guardian.Follow(supervisor.Witness);
+
+        // Elsewhere a reply that came late costs a repetition. What supply and interlock say is what safety rests on.
+        reports.SafetyDoubted += why =>
+        {
+            if (supervisor.Witness.MayBeEnergised)
+            {
+                supervisor.TripNow($"the word of the supply or the interlock is in doubt with the bus up: {why}");
+            }
+        };
         await supervisor.Start(operatorStop);
         return await new Shift(
             Plan, store, open, supervisor, fake, _person, queue, new GuardianLogIntake(guardianLog), _sinks, _journal,

@@ -105,7 +105,7 @@ public sealed class ScopeProbesTests : IAsyncLifetime
         await _scope.Configure(Settings, _cancel);
         await _scope.Arm(_cancel);
         await _scope.Trigger(_cancel);
-        Assert.True(await _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
+        Assert.Equal(AcquisitionEnd.Complete, await _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
         Assert.Equal(2, (await _scope.Read(_cancel)).Traces.Count);
     }
 

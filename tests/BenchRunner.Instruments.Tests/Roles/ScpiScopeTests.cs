@@ -44,7 +44,7 @@ public sealed class ScpiScopeTests : IAsyncLifetime
         await _scope.Configure(Settings, _cancel);
         await _scope.Arm(_cancel);
         _instrument.On("STATus:OPERation:CONDition?", "0");
-        Assert.True(await _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
+        Assert.Equal(AcquisitionEnd.Complete, await _scope.WaitForRecord(TimeSpan.FromSeconds(1), _cancel));
         var record = await _scope.Read(_cancel);
 
         Assert.Equal(7, record.Count);
@@ -109,7 +109,7 @@ public sealed class ScpiScopeTests : IAsyncLifetime
         var wait = _scope.WaitForRecord(TimeSpan.FromMilliseconds(50), _cancel);
         await _clock.PassUntil(TimeSpan.FromMilliseconds(5), () => wait.IsCompleted);
 
-        Assert.False(await wait);
+        Assert.Equal(AcquisitionEnd.NotTriggered, await wait);
         Assert.Equal(1, _instrument.Count("ABORt"));
     }
 

@@ -39,7 +39,7 @@ internal static class FaultEffects
         FaultCatalogue.HighOffLevel, FaultCatalogue.GateLifts, FaultCatalogue.InductorFarOff,
         FaultCatalogue.NeverCompletes, FaultCatalogue.ProbeOff, FaultCatalogue.Arcing, FaultCatalogue.Desaturates,
         FaultCatalogue.GateStuckOn, FaultCatalogue.FiresOnArm, FaultCatalogue.FiresTwice, FaultCatalogue.DriverLost,
-        FaultCatalogue.SecondController, FaultCatalogue.SupplyClips,
+        FaultCatalogue.SupplyClips,
     ];
 
     /// <summary>These take the proof away that the bus is down; one that begins below 60 V after the last train has
@@ -55,9 +55,10 @@ internal static class FaultEffects
     public static bool Forbids(string fault, Mix mix, bool hasTrace, MemoryBench bench)
     {
         string name = fault.Split('/')[^1];
-        // Below 60 V the proving train is judged by wider bounds than another controller's 5 %.
+        // Another controller's voltage is of no harm where no train was measured with it: the safe state sets 0 V. Below
+        // 60 V the proving train is judged by wider bounds than its 5 %, and the first point sets its own voltage.
         bool isSmall = name == FaultCatalogue.SecondController
-            && mix.Faults.All(other => other.Name != fault || other.Begins is not { Kind: MomentKind.Fire, Value: > 1 });
+            && (bench.MeasuredAfter(fault) == 0 || bench.VoltsAtBeginOf(fault) < 60);
         bool afterAll = bench.FiresUnder(fault) == 0;
 
         // Clips what is set from then on: a bus that is at its highest voltage is set no more.

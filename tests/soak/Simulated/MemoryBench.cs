@@ -16,8 +16,10 @@ internal sealed class MemoryBench
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
     private readonly List<(string Role, MemoryLink Link)> _links = [];
-    private readonly Dictionary<string, (long Fires, double Volts)> _begun = [];
+    private readonly Dictionary<string, (long Fires, long Measured, double Volts)> _begun = [];
     private readonly IReadOnlyList<Fault> _faults;
+    private long _fires;
+    private long _measured;
 
     /// <summary>Makes a bench with a device in its socket.</summary>
     /// <param name="setup">What it is made of.</param>
@@ -43,6 +45,9 @@ internal sealed class MemoryBench
     /// <summary>Trains that were fired while a fault was in force.</summary>
     public long FiresUnder(string fault) =>
         _begun.TryGetValue(fault, out var before) ? _panels.Pulser.Count - before.Fires : 0;
+
+    /// <summary>Trains above 60 V that were fired after a fault had begun.</summary>
+    public long MeasuredAfter(string fault) => _begun.TryGetValue(fault, out var before) ? _measured - before.Measured : 0;
 
     /// <summary>What the bank had when a fault began, V.</summary>
     public double VoltsAtBeginOf(string fault) =>
@@ -73,12 +78,19 @@ internal sealed class MemoryBench
     /// <summary>A fault that begins with a train is there for that train already.</summary>
     private void NoteBegun()
     {
+        if (_panels.Pulser.Count is var fires && fires != _fires)
+        {
+            _measured += Bench.BankVoltage > 60 ? fires - _fires : 0;
+            _fires = fires;
+        }
+
         foreach (Fault fault in _faults)
         {
             if (Bench.Faults.Has(fault.Name) && !_begun.ContainsKey(fault.Name))
             {
                 _begun[fault.Name] = (
-                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0), Bench.BankVoltage);
+                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0), _measured,
+                    Bench.BankVoltage);
             }
         }
     }
