@@ -21,6 +21,9 @@ namespace BenchRunner.Soak.Mixes;
 internal sealed record Facts(
     Mix Mix, MemoryBench Bench, Recorder Recorder, RunSummary? Summary, Exception? Thrown, bool Interrupted, string Folder)
 {
+    /// <summary>Whether the guardian ended the run.</summary>
+    public bool RunWasEnded { get; init; }
+
     /// <summary>The one device's report; null: it got no run.</summary>
     public DeviceReport? Report => Recorder.Reports.SingleOrDefault();
 

@@ -17,7 +17,17 @@ internal static class Judgement
     /// <summary>Everything that is wrong, a line each.</summary>
     /// <remarks>What was left comes first: reading the evidence makes files of its own.</remarks>
     public static IEnumerable<string> Of(Facts facts) =>
-        [.. Left(facts), .. Ending(facts), .. Bus(facts), .. Accepted(facts), .. Evidence(facts)];
+        [.. Left(facts), .. Guarded(facts), .. Ending(facts), .. Bus(facts), .. Accepted(facts), .. Evidence(facts)];
+
+    /// <summary>Nothing in a mix stops the run's process: a guardian that ends it took a run for dead that was
+    /// not.</summary>
+    private static IEnumerable<string> Guarded(Facts facts)
+    {
+        if (facts.RunWasEnded)
+        {
+            yield return "the guardian ended a run that was alive";
+        }
+    }
 
     private static IEnumerable<string> Ending(Facts facts)
     {

@@ -61,17 +61,29 @@ internal sealed class Trial
             EvidencePath = Path.Combine(folder, "evidence.db"),
             Operator = "A. Person",
         };
+        MemoryGuardian? guardian = null;
         var session = new RunSession(request, recorder, new Person(!_mix.Declined), time)
         {
             Opener = bench.Connect,
-            Guardian = LivingGuardian.Start,
+            Guardian = (setup, _, _) => guardian = new MemoryGuardian(setup, bench, recorder, time),
         };
         RunSummary? summary = null;
         Exception? ended = null;
         try
         {
             new OneThread(time).Run(
-                async () => summary = await session.Run(new OneDevice(_mix.Device), operatorStop.Token), _within);
+                async () =>
+                {
+                    try
+                    {
+                        summary = await session.Run(new OneDevice(_mix.Device), operatorStop.Token);
+                    }
+                    finally
+                    {
+                        await (guardian?.Ended() ?? Task.CompletedTask);
+                    }
+                },
+                _within);
         }
         catch (SimulationException hung)
         {
@@ -82,7 +94,10 @@ internal sealed class Trial
             ended = broken;
         }
 
-        var facts = new Facts(_mix, bench, recorder, summary, ended, operatorStop.IsCancellationRequested, folder);
+        var facts = new Facts(_mix, bench, recorder, summary, ended, operatorStop.IsCancellationRequested, folder)
+        {
+            RunWasEnded = guardian is { HasEndedRun: true },
+        };
         recorder.Note($"bank at {bench.BankVoltage:0.000} V, exit code {facts.ExitCode}, {ended?.Message}");
         return new Judged(_mix, recorder.Lines, string.Join("; ", Judgement.Of(facts)));
     }

@@ -15,9 +15,10 @@ internal sealed class MemoryBench
     private readonly VirtualTime _time;
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
-    private readonly List<(string Role, MemoryLink Link)> _links = [];
+    private readonly List<(string Role, MemoryLink Link, bool IsRunners)> _links = [];
     private readonly Dictionary<string, (long Fires, long Measured, double Volts)> _begun = [];
     private readonly IReadOnlyList<Fault> _faults;
+    private bool _isRunnerGone;
     private long _fires;
     private long _measured;
 
@@ -53,9 +54,29 @@ internal sealed class MemoryBench
     public double VoltsAtBeginOf(string fault) =>
         _begun.TryGetValue(fault, out var before) ? before.Volts : double.PositiveInfinity;
 
-    /// <summary>Opens a link: <c>tcp ROLE 1</c>.</summary>
-    public async Task<ILink> Connect(
-        LinkAddress address, SessionOptions options, TimeProvider time, CancellationToken cancel)
+    /// <summary>Opens a link of the runner's: <c>tcp ROLE 1</c>.</summary>
+    public Task<ILink> Connect(
+        LinkAddress address, SessionOptions options, TimeProvider time, CancellationToken cancel) => _isRunnerGone
+            ? throw new LinkException(address.ToString(), "the run was ended")
+            : Connect(address, isRunners: true, time, cancel);
+
+    /// <summary>Opens a link of the guardian's.</summary>
+    public Task<ILink> ConnectGuardian(
+        LinkAddress address, SessionOptions options, TimeProvider time, CancellationToken cancel) =>
+        Connect(address, isRunners: false, time, cancel);
+
+    /// <summary>The runner is ended: what it still does reaches nothing.</summary>
+    public void CutRunner()
+    {
+        _isRunnerGone = true;
+        foreach ((_, MemoryLink link, _) in _links.Where(open => open.IsRunners))
+        {
+            link.Dispose();
+        }
+    }
+
+    private async Task<ILink> Connect(
+        LinkAddress address, bool isRunners, TimeProvider time, CancellationToken cancel)
     {
         await Task.Delay(_latency(), time, cancel);
         Instrument panel = _panels.All.Single(panel => panel.Role == address.Host);
@@ -71,7 +92,7 @@ internal sealed class MemoryBench
             link.End();
         }
 
-        _links.Add((panel.Role, link));
+        _links.Add((panel.Role, link, isRunners));
         return link;
     }
 
