@@ -9,6 +9,10 @@ public static class SafetyLimits
     /// <summary>Time from the start of a poll to the start of the next.</summary>
     public static TimeSpan PollEvery { get; } = TimeSpan.FromMilliseconds(80);
 
+    /// <summary>What a poll may take beyond the wait for one reply before it is a doubt; with the pause between polls less
+    /// than the guardian's silence.</summary>
+    public static TimeSpan PollSlack { get; } = TimeSpan.FromMilliseconds(30);
+
     /// <summary>Time after the last poll at which the interlock controller's own watchdog acts.</summary>
     /// <remarks>Longer than a poll may take, so that it acts only where this program is dead or hangs.</remarks>
     public static TimeSpan Watchdog { get; } = TimeSpan.FromSeconds(5);

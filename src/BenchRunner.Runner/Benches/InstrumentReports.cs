@@ -30,7 +30,9 @@ public sealed class InstrumentReports(EventSource events) : IInstrumentLog
                 Role: "supply" or "interlock", Kind: InstrumentEventKind.Doubt or InstrumentEventKind.Broken
             })
         {
-            SafetyDoubted?.Invoke($"{what.Link}: {what.Message}");
+            SafetyDoubted?.Invoke(
+                (what.Role == "interlock" ? "the watch lost sight of the bench: " : "the supply's word is in doubt: ")
+                    + $"{what.Link}: {what.Message}");
         }
     }
 }

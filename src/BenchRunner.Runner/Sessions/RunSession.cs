@@ -145,7 +145,7 @@ public sealed class RunSession
         {
             if (supervisor.Witness.MayBeEnergised)
             {
-                supervisor.TripNow($"the word of the supply or the interlock is in doubt with the bus up: {why}");
+                supervisor.TripNow(why);
             }
         };
         await supervisor.Start(operatorStop);

@@ -245,13 +245,14 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
 
         _end.Cancel();
-        await _watching;
-        await _watchdog.Disarm();
+        await LastPoll();
         if (!Witness.MayBeEnergised)
         {
+            // Before the interlock is told, which may be slow to answer: nothing will be energised any more.
             _guardian.Beat(BeatKind.Done);
         }
 
+        await _watchdog.Disarm();
         _end.Dispose();
         _tripped.Dispose();
     }
@@ -370,7 +371,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             {
                 // A poll that has begun is ended by its own patience: cancelling it would leave its reply on the line.
                 string? gap = _gap.Begins();
-                Finding found = await Poll(CancellationToken.None);
+                Finding found = await InTime(Poll(CancellationToken.None));
                 Act(gap is not null && Witness.MayBeEnergised ? new Finding(SupervisorEvent.Doubt, gap)
                     : _progress.Overdue is { } late ? new Finding(SupervisorEvent.Overdue, late) : found, beats: true);
             }
@@ -378,6 +379,51 @@ public sealed class SafetySupervisor : IAsyncDisposable
         catch (OperationCanceledException) when (_end.IsCancellationRequested)
         {
             // The run has ended.
+        }
+    }
+
+    /// <summary>Waits for a poll. One that is late is a doubt before it has ended, for the guardian would take it for a
+    /// hang: a poll may wait behind a command to the same instrument, or for a link that is opened again.</summary>
+    private async Task<Finding> InTime(Task<Finding> poll)
+    {
+        TimeSpan within = TimeSpan.FromSeconds(Witness.Limits.ReplyWithin) + SafetyLimits.PollSlack;
+        bool isSaid = false;
+        while (true)
+        {
+            try
+            {
+                return await poll.WaitAsync(within, _time);
+            }
+            catch (TimeoutException)
+            {
+                if (!isSaid)
+                {
+                    Raise(
+                        SupervisorEvent.Doubt,
+                        $"the watch lost sight of the bench: no word of interlock and voltmeter within "
+                            + $"{within.TotalSeconds:0.##} s");
+                    isSaid = true;
+                }
+
+                BeatWhileTripped();
+            }
+        }
+    }
+
+    /// <summary>Waits for the watch to end; the guardian hears meanwhile that the run still is on its way.</summary>
+    private async Task LastPoll()
+    {
+        while (true)
+        {
+            try
+            {
+                await _watching.WaitAsync(SafetyLimits.PollEvery, _time);
+                return;
+            }
+            catch (TimeoutException)
+            {
+                _guardian.Beat(BeatKind.MakingSafe);
+            }
         }
     }
 

@@ -19,11 +19,14 @@ internal static class Judgement
     public static IEnumerable<string> Of(Facts facts) =>
         [.. Left(facts), .. Guarded(facts), .. Ending(facts), .. Bus(facts), .. Accepted(facts), .. Evidence(facts)];
 
-    /// <summary>Nothing in a mix stops the run's process: a guardian that ends it took a run for dead that was
-    /// not.</summary>
+    /// <summary>Nothing in a mix stops the run's process: a guardian that ends it took a run for dead that was not. Only
+    /// one that could not prove its bus down and still tries is ended in the end.</summary>
     private static IEnumerable<string> Guarded(Facts facts)
     {
-        if (facts.RunWasEnded)
+        int Of(string source, string kind) => facts.Recorder.Events.FindIndex(
+            happened => happened.Source == source && happened.Kind == kind);
+        int given = Of("safe-state", "bus-not-proved-down");
+        if (facts.RunWasEnded && !(given >= 0 && given < Of("guardian", "guardian-acts")))
         {
             yield return "the guardian ended a run that was alive";
         }
