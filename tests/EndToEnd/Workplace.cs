@@ -38,15 +38,20 @@ internal sealed class Workplace : IDisposable
 
     public string Path(string name) => System.IO.Path.Combine(Folder, name);
 
-    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped
-    /// dialects.</summary>
+    /// <summary>Bounds at which a loaded machine trips no sound bench: for tests of what happens, not of how
+    /// soon.</summary>
+    public const string PatientSafety = "safety: { reply-within: 2 s, guardian-silence: 2 s }\n";
+
+    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects; its bounds
+    /// are <see cref="PatientSafety"/>.</summary>
     public string FakeBenchFile(string fake)
     {
         string shipped = File.ReadAllText(Repository("sequences", "benches", "fake.yaml"));
         string line = shipped.Split('\n').Single(l => l.StartsWith("fake:", StringComparison.Ordinal));
         Directory.CreateDirectory(Path("benches"));
         string file = System.IO.Path.Combine(Path("benches"), "fake.yaml");
-        File.WriteAllText(file, shipped.Replace(line, $"fake: {fake}", StringComparison.Ordinal));
+        File.WriteAllText(
+            file, shipped.Replace(line, $"fake: {fake}", StringComparison.Ordinal).TrimEnd() + "\n" + PatientSafety);
         return file;
     }
 

@@ -45,8 +45,7 @@ internal sealed class WrittenBench : IDisposable
 
         // A loaded machine must not trip a sound bench: what is tried here is what happens, not how soon.
         System.IO.File.Move(file, file + "-written");
-        System.IO.File.WriteAllText(
-            file, System.IO.File.ReadAllText(file + "-written") + "safety: { reply-within: 2 s, guardian-silence: 2 s }\n");
+        System.IO.File.WriteAllText(file, System.IO.File.ReadAllText(file + "-written") + Workplace.PatientSafety);
         return new WrittenBench(bench, file);
     }
 

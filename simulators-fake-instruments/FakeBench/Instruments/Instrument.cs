@@ -36,6 +36,11 @@ public abstract class Instrument
     /// long.</param>
     public Answer Obey(string? message)
     {
+        if (message is not null && Bench.WorksAhead)
+        {
+            Foresee(message);
+        }
+
         lock (Bench.Gate)
         {
             Bench.Advance();
@@ -84,6 +89,12 @@ public abstract class Instrument
 
     /// <summary>Takes the conditions over into the status registers.</summary>
     protected virtual void Refresh()
+    {
+    }
+
+    /// <summary>Computes what the message will want while <see cref="Bench.Gate"/> is free: one instrument's arithmetic must
+    /// not keep the others from answering.</summary>
+    protected virtual void Foresee(string message)
     {
     }
 

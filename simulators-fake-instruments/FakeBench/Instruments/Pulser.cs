@@ -74,6 +74,36 @@ public sealed class Pulser : Instrument
     }
 
     /// <inheritdoc/>
+    protected override void Foresee(string message)
+    {
+        if (!message.Contains("TR", StringComparison.OrdinalIgnoreCase))
+        {
+            return;
+        }
+
+        (CircuitParameters Circuit, PulseTrain Train, Window Window) next;
+        lock (Bench.Gate)
+        {
+            Bench.Advance();
+            if (!_armed || !Bench.BankAtRest)
+            {
+                return;
+            }
+
+            next = (Bench.HalfBridge, Train, _scope.Window);
+        }
+
+        try
+        {
+            _ = _trains.Get(next.Circuit, next.Train, next.Window);
+        }
+        catch (ArithmeticException)
+        {
+            // Said by the train itself when it is fired.
+        }
+    }
+
+    /// <inheritdoc/>
     protected override void Reset() =>
         (_first, _gap, _second, _on, Bench.GateOff, _output, _armed) =
             (Width.Default, Width.Default, Width.Default, High.Default, Low.Default, false, false);

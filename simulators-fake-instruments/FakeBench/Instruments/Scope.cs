@@ -1,4 +1,5 @@
 using System.Globalization;
+using System.Text.RegularExpressions;
 using FakeBench.Faults;
 using FakeBench.Fixtures;
 using FakeBench.Physics;
@@ -9,7 +10,7 @@ namespace FakeBench.Instruments;
 
 /// <summary>The digitiser: as many inputs as the bench has channels; range and offset in the channel's own
 /// unit.</summary>
-public sealed class Scope : Instrument
+public sealed partial class Scope : Instrument
 {
     /// <summary>Largest record, samples an input.</summary>
     public const int MostPoints = 1_000_000;
@@ -114,6 +115,30 @@ public sealed class Scope : Instrument
     }
 
     /// <inheritdoc/>
+    protected override void Foresee(string message)
+    {
+        if (!message.Contains("TRAC", StringComparison.OrdinalIgnoreCase)
+            || message.Contains("PRE", StringComparison.OrdinalIgnoreCase))
+        {
+            return;
+        }
+
+        ScopeRecord? record;
+        lock (Bench.Gate)
+        {
+            record = _record;
+        }
+
+        foreach (Match asked in AskedInput().Matches(message))
+        {
+            if (int.TryParse(asked.Groups[1].Value, out int input) && input >= 1 && input <= _inputs.Probes.Count)
+            {
+                _ = record?.Codes(input);
+            }
+        }
+    }
+
+    /// <inheritdoc/>
     protected override void Reset()
     {
         _settings = Defaults();
@@ -133,6 +158,9 @@ public sealed class Scope : Instrument
 
         return base.Deliver(message, reply);
     }
+
+    [GeneratedRegex("INT(?:ERNAL)?([0-9]{1,3})", RegexOptions.IgnoreCase)]
+    private static partial Regex AskedInput();
 
     private static int Margin(AcquisitionSettings settings) =>
         Math.Max(FewestMargin, (int)Math.Ceiling(TimeMargin / settings.Interval));

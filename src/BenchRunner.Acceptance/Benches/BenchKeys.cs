@@ -26,8 +26,9 @@ internal static class BenchKeys
                 new TextShape(
                     "A fault, and when.",
                     "interlock-opens@fire:3",
-                    "[a-z0-9-]+(@(fire|volts|seconds|block):[0-9]+([.][0-9]+)?)?",
-                    "a fault's name, or name@when with fire:N, volts:V, seconds:S or block:N"),
+                    "([a-z]+/)?[a-z0-9-]+(@(fire|volts|seconds|block):[0-9]+([.][0-9]+)?)?",
+                    "a fault's name (role/name of one instrument's link), or name@when with fire:N, volts:V, "
+                        + "seconds:S or block:N"),
                 "fault")),
         ]);
 
