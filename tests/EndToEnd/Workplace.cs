@@ -40,7 +40,7 @@ internal sealed class Workplace : IDisposable
 
     /// <summary>Bounds at which a loaded machine trips no sound bench: for tests of what happens, not of how
     /// soon.</summary>
-    public const string PatientSafety = "safety: { reply-within: 2 s, guardian-silence: 2 s }\n";
+    public const string PatientSafety = "safety: { reply-within: 1500 ms, guardian-silence: 2 s }\n";
 
     /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects; its bounds
     /// are <see cref="PatientSafety"/>.</summary>

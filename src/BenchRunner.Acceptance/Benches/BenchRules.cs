@@ -22,6 +22,7 @@ internal static class BenchRules
         }
 
         Ceiling(file, roles, problems);
+        Patience(file.Block("safety"), problems);
         Fields channels = file.Block("channels");
         ChannelKeys.Check(channels, problems);
         Inputs(channels, problems);
@@ -51,6 +52,24 @@ internal static class BenchRules
                 "envelope states no temperature and the bench has a hotplate",
                 "the highest temperature that plate and fixture bear",
                 "add temperature: 150 degC with its own value"));
+        }
+    }
+
+    /// <summary>The watch must have given an instrument up, and said so, before the guardian gives the watch up.</summary>
+    private static void Patience(Fields safety, List<Problem> problems)
+    {
+        double reply = safety.Number("reply-within") ?? SafetySettings.Usual.ReplyWithin;
+        double silence = safety.Number("guardian-silence") ?? SafetySettings.Usual.GuardianSilence;
+        double least = reply + SafetySettings.SilenceBeyondReply;
+        if (silence < least - 1e-9)
+        {
+            string written = safety.IsWritten("guardian-silence") ? "guardian-silence" : "reply-within";
+            problems.Add(new Problem(
+                safety.Of(written),
+                $"guardian-silence is {SiText.Format(silence, "s", 3)} and reply-within {SiText.Format(reply, "s", 3)}",
+                $"a guardian-silence of {SiText.Format(least, "s", 3)} or more: the guardian must not end a run whose watch "
+                    + "still waits for a reply",
+                "change one of the two"));
         }
     }
 

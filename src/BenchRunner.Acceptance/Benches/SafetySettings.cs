@@ -30,6 +30,10 @@ public sealed record SafetySettings(
     /// <summary>Energy below which a bank counts as down where the file does not say, J; also the highest.</summary>
     public const double UsualEnergyDown = 0.35;
 
+    /// <summary>By how much the guardian must be more patient than the watch, s: a poll whose last reply was waited for to
+    /// the end, the pause before it, and the way of the beat; otherwise it would end a run that is about to trip.</summary>
+    public const double SilenceBeyondReply = 0.15;
+
     /// <summary>What a bench has whose file does not say.</summary>
     public static SafetySettings Usual { get; } = new();
 

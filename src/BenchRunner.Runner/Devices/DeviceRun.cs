@@ -30,6 +30,9 @@ public sealed class DeviceRun(
     /// <summary>Whether every point was run and the device goes through its second proving.</summary>
     private bool _measured;
 
+    /// <summary>What the bus was charged to last, V.</summary>
+    private double _charged;
+
     /// <summary>Runs the device of a run that has begun in the evidence.</summary>
     /// <param name="device">Serial.</param>
     /// <param name="evidence">The run.</param>
@@ -78,6 +81,10 @@ public sealed class DeviceRun(
         await proving.Take(UncountedPoints.ProvingBefore, stop);
         await Points(work, new PointFixture(work, zeros, new LeakageHolds(work), CaptureAnalysis.Of), stop);
         _measured = true;
+
+        // A device that its last train killed is found while the supply still feeds the bank: afterwards an empty bank and
+        // an open lead look alike.
+        await work.Bus.WaitFor(_charged, stop);
         await Down(stop);
         await work.Bus.WaitBelow(ProvingTrain.BusVoltage, stop);
         await proving.Take(UncountedPoints.ProvingAfter, stop);
@@ -103,16 +110,15 @@ public sealed class DeviceRun(
         }
 
         double? heated = double.NaN;
-        double charged = 0;
         foreach (PlannedPoint point in plan.Points)
         {
-            if (point.Point.BusVoltage < charged)
+            if (point.Point.BusVoltage < _charged)
             {
                 // A supply gives and does not take: only the bleeder brings a bus down.
                 await Down(stop);
             }
 
-            charged = point.Point.BusVoltage;
+            _charged = point.Point.BusVoltage;
             if (point.Point.Temperature != heated)
             {
                 heated = point.Point.Temperature;

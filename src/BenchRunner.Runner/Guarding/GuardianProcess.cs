@@ -214,7 +214,7 @@ public sealed class GuardianProcess : IRunGuardian
                 {
                     Write(BeatText.Write(
                         kind, ++_sent, _witness?.HighestCommanded ?? 0, _witness?.HighestSeen ?? 0,
-                        _witness?.LastBelieved));
+                        _witness?.LastBelieved, _witness is { IsDoubted: true }));
                 }
                 catch (Exception failure) when (failure is IOException or ObjectDisposedException)
                 {

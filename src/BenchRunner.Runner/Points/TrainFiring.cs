@@ -71,8 +71,16 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
         await Prepare(settings, cancel);
         await OnScope(() => bench.Scope.Arm(cancel));
         await bench.Pulser.Arm(permit, cancel);
-        supervisor.Witness.Fired();
-        await bench.Pulser.Fire(permit, cancel);
+        supervisor.Witness.Firing();
+        try
+        {
+            await bench.Pulser.Fire(permit, cancel);
+        }
+        finally
+        {
+            supervisor.Witness.Fired();
+        }
+
         FiredAt = time.GetTimestamp();
         (ScopeRecord? record, AcquisitionEnd? end) = await Record(cancel);
         _unseenInARow = end == AcquisitionEnd.NotTriggered ? _unseenInARow + 1 : 0;

@@ -6,7 +6,7 @@ namespace BenchRunner.Safety.Guardians;
 /// <remarks>
 /// Beats are numbered from 1 without a gap, so that what was lost, doubled or forged is seen:
 /// <c>polled 17 600 598.7 598.6</c>: number, highest voltage commanded and seen since the last proof, last reading that
-/// could be believed, V; a dash for none.
+/// could be believed, V; a dash for none; <c>doubted</c> where the voltmeter is no longer believed.
 /// </remarks>
 public static class BeatText
 {
@@ -17,6 +17,7 @@ public static class BeatText
     public const string Answer = "heard";
 
     private const string None = "-";
+    private const string Doubted = "doubted";
 
     private static readonly Dictionary<string, HeardKind> _words = new()
     {
@@ -32,11 +33,13 @@ public static class BeatText
     /// <param name="commanded">Highest voltage commanded, V.</param>
     /// <param name="seen">Highest voltage seen, V.</param>
     /// <param name="believed">Last reading that could be believed, V; null: none.</param>
-    public static string Write(HeardKind kind, long number, double commanded, double seen, double? believed) =>
+    /// <param name="isDoubted">Whether the voltmeter has shown what cannot be true.</param>
+    public static string Write(
+        HeardKind kind, long number, double commanded, double seen, double? believed, bool isDoubted = false) =>
         string.Create(
             CultureInfo.InvariantCulture,
             $"{_words.Single(word => word.Value == kind).Key} {number} {commanded:0.##} {seen:0.##} ")
-        + (believed is { } volts ? volts.ToString("0.##", CultureInfo.InvariantCulture) : None);
+        + (isDoubted ? Doubted : believed is { } volts ? volts.ToString("0.##", CultureInfo.InvariantCulture) : None);
 
     /// <summary>Reads a line.</summary>
     /// <param name="line">What came.</param>
@@ -52,8 +55,8 @@ public static class BeatText
             && number == due
             && Volts(words[2]) is { } commanded
             && Volts(words[3]) is { } seen
-            && (words[4] == None || Volts(words[4]) is not null)
-            ? new Heard(kind, commanded, seen, Volts(words[4]))
+            && (words[4] is None or Doubted || Volts(words[4]) is not null)
+            ? new Heard(kind, commanded, seen, Volts(words[4])) { IsDoubted = words[4] == Doubted }
             : new Heard(HeardKind.Malformed, Text: line.Length <= 60 ? line : line[..60] + "…");
     }
 

@@ -122,7 +122,7 @@ public sealed class GuardianCore(
         if (heard.Kind is not (HeardKind.Malformed or HeardKind.Ended))
         {
             // Each beat says all that is known since the last proof: what was believed before it no longer counts.
-            witness.Told(heard.Commanded, heard.Seen, heard.Believed);
+            witness.Told(heard.Commanded, heard.Seen, heard.Believed, heard.IsDoubted);
         }
     }
 

@@ -30,7 +30,7 @@ public sealed class GuardianJudge(GuardianOptions options)
                 (_lastBeat, _makingSafeSince) = (now, null);
                 return GuardianDeed.Listen;
             case HeardKind.MakingSafe:
-                return OnMakingSafe(now);
+                return OnMakingSafe(heard, now);
             case HeardKind.Done:
                 return GuardianDeed.Leave;
             case HeardKind.Left:
@@ -53,9 +53,14 @@ public sealed class GuardianJudge(GuardianOptions options)
                 + $"{options.Silence.TotalMilliseconds:0} ms: the runner hangs or is stopped",
             GuardianDeed.Act);
 
-    private GuardianDeed OnMakingSafe(TimeSpan now)
+    private GuardianDeed OnMakingSafe(Heard heard, TimeSpan now)
     {
         _lastBeat = now;
+        if (_makingSafeSince is not null && Math.Max(heard.Commanded, heard.Seen) < options.DownBelow)
+        {
+            _makingSafeSince = now;
+        }
+
         if (_makingSafeSince is not { } since)
         {
             _makingSafeSince = now;

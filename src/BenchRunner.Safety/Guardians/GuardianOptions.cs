@@ -9,4 +9,8 @@ public sealed record GuardianOptions(TimeSpan Silence, TimeSpan MakingSafeWithin
     /// <summary>How long after silence began to count what has come already is still looked for: a guardian that the machine
     /// itself held up must not take its own delay for the runner's.</summary>
     public TimeSpan Grace { get; init; } = TimeSpan.FromMilliseconds(20);
+
+    /// <summary>Voltage below which the bank is down, V: a runner whose beats say that it was proved down may take its time
+    /// over its evidence. 0: a runner never may.</summary>
+    public double DownBelow { get; init; }
 }

@@ -7,4 +7,9 @@ namespace BenchRunner.Safety.Guardians;
 /// <param name="Believed">Of a beat: the voltmeter's last reading that could be believed, V; null: none since then.</param>
 /// <param name="Text">What came, where it is no beat.</param>
 public sealed record Heard(
-    HeardKind Kind, double Commanded = 0, double Seen = 0, double? Believed = null, string Text = "");
+    HeardKind Kind, double Commanded = 0, double Seen = 0, double? Believed = null, string Text = "")
+{
+    /// <summary>Of a beat: the voltmeter has shown what cannot be true, so its word that the bus is down proves
+    /// nothing.</summary>
+    public bool IsDoubted { get; init; }
+}

@@ -28,7 +28,7 @@ internal sealed class BusProof(
         {
             round?.Invoke();
             await Read();
-            if (_silent is null && _last < witness.DownBelow)
+            if (_silent is null && _last < witness.DownBelow && !witness.IsUndecided)
             {
                 return Report(witness.WhyNot);
             }

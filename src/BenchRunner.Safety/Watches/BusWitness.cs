@@ -31,6 +31,8 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
     private double _seenInStep;
     private double _missedStep;
     private (double Volts, long At)? _believed;
+    private long _believedAt;
+    private bool _isUndecided;
     private long? _firedAt;
     private string? _fell;
 
@@ -54,8 +56,18 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
         }
     }
 
-    /// <summary>A train was fired: what the bus loses by it, a shorted device all of it, is no fall of the
+    /// <summary>A train is about to be fired: what the bus loses by it, a shorted device all of it, is no fall of the
     /// voltmeter's own; a voltage that fell so is not believed either.</summary>
+    public void Firing()
+    {
+        lock (_gate)
+        {
+            // Until its end is known: a reading asked for meanwhile may have been taken before it or after.
+            _firedAt = long.MaxValue;
+        }
+    }
+
+    /// <summary>The train has been fired, or could not be.</summary>
     public void Fired()
     {
         lock (_gate)
@@ -78,7 +90,12 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
             _seenInStep = Math.Max(_seenInStep, voltage);
             if (_believed is not { } before || before.Volts < DownBelow)
             {
-                _believed = (voltage, asked);
+                Believe(voltage, asked, now);
+                return null;
+            }
+
+            if (_fell is not null)
+            {
                 return null;
             }
 
@@ -86,11 +103,13 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
             double fastest = before.Volts * Math.Exp(-seconds / (0.5 * discharge.TimeConstant));
             if (voltage >= fastest)
             {
-                _believed = (voltage, asked);
+                Believe(voltage, asked, now);
                 return null;
             }
 
-            if (voltage >= (1 - Droop) * fastest || _fell is not null)
+            // Asked for before the believed one had come, on another link: perhaps taken before it, on the way up.
+            _isUndecided = asked < _believedAt;
+            if (_isUndecided || voltage >= (1 - Droop) * fastest)
             {
                 return null;
             }
@@ -110,11 +129,15 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
     /// <param name="seen">Highest voltage seen since then, V.</param>
     /// <param name="believed">The last reading that could be believed, V; null: not told, so that a fall is judged from
     /// the first reading on that is taken here.</param>
-    public void Told(double commanded, double seen, double? believed = null)
+    /// <param name="isDoubted">Whether the other process no longer believes the voltmeter.</param>
+    public void Told(double commanded, double seen, double? believed = null, bool isDoubted = false)
     {
         lock (_gate)
         {
+            _fell ??= isDoubted
+                ? "the run no longer believed the voltmeter: a fuse or lead may have opened and the bank be full" : null;
             (_highestCommanded, _highestSeen, _step, _seenInStep) = (commanded, seen, commanded, seen);
+            _isUndecided = false;
             _believed = believed is { } volts ? (volts, time.GetTimestamp()) : null;
         }
     }
@@ -125,7 +148,7 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
         lock (_gate)
         {
             (_highestCommanded, _highestSeen, _step, _seenInStep, _missedStep) = (0, 0, 0, 0, 0);
-            (_believed, _firedAt) = (null, null);
+            (_believed, _firedAt, _isUndecided) = (null, null, false);
         }
     }
 
@@ -165,6 +188,30 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
         }
     }
 
+    /// <summary>Whether the last reading may be an older one that came late: the next one tells.</summary>
+    public bool IsUndecided
+    {
+        get
+        {
+            lock (_gate)
+            {
+                return _isUndecided;
+            }
+        }
+    }
+
+    /// <summary>Whether the voltmeter has shown what cannot be true: no later reading makes up for it.</summary>
+    public bool IsDoubted
+    {
+        get
+        {
+            lock (_gate)
+            {
+                return _fell is not null || _missedStep > 0;
+            }
+        }
+    }
+
     /// <summary>Whether more than the low voltage has been commanded or seen since the last proof.</summary>
     public bool MayBeEnergised => Highest >= DownBelow;
 
@@ -193,6 +240,9 @@ public sealed class BusWitness(Discharge discharge, SafetySettings limits, TimeP
 
     /// <summary>When the bus counts as down, in words, e.g. <c>60 V DC and 350 mJ</c>.</summary>
     public string DownWords => $"{limits.BusDown:0.#} V DC and {SiText.Format(limits.EnergyDown, "J", 3)}";
+
+    private void Believe(double voltage, long asked, long now) =>
+        (_believed, _believedAt, _isUndecided) = ((voltage, asked), now, false);
 
     /// <summary>A run may end while the bus still rises: a voltmeter that has shown it charged lives, and what opens later
     /// is a fall that no bleeder explains.</summary>

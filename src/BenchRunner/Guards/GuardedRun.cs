@@ -57,11 +57,15 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
 
     private static GuardianOptions Options(Bench bench, Discharge discharge)
     {
-        double planned = discharge.TimeTo(bench.Envelope.Voltage, bench.Safety.DownBelow(bench.BusCapacitance));
+        double down = bench.Safety.DownBelow(bench.BusCapacitance);
+        double planned = discharge.TimeTo(bench.Envelope.Voltage, down);
         return new GuardianOptions(
             TimeSpan.FromSeconds(bench.Safety.GuardianSilence),
             TimeSpan.FromSeconds((2 * planned) + bench.Safety.DischargeWithin),
-            TryFor);
+            TryFor)
+        {
+            DownBelow = down,
+        };
     }
 
     private async Task<int> Guard(Bench bench, GuardedBench guarded, RunnerProcess? held, EventSource events)
