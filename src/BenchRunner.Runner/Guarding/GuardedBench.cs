@@ -10,7 +10,7 @@ namespace BenchRunner.Runner.Guarding;
 /// <summary>The bench as its guardian reaches it: what can be made safe, and the voltmeter.</summary>
 /// <remarks>Where an instrument serves two clients or more, one of the links is the guardian's from the start; otherwise it
 /// is opened after the runner was ended, which sets it free.</remarks>
-public sealed class GuardedBench : IDisposable
+public sealed class GuardedBench : IAsyncDisposable
 {
     private readonly List<LateSafeable> _instruments = [];
     private readonly List<LateSafeable> _own = [];
@@ -57,10 +57,14 @@ public sealed class GuardedBench : IDisposable
     public Task TakeOffWatchdog(CancellationToken cancel) => _interlock?.SetWatchdog(null, cancel) ?? Task.CompletedTask;
 
     /// <summary>Closes every link. Sends nothing.</summary>
-    public void Dispose()
+    public async ValueTask DisposeAsync()
     {
-        _instruments.ForEach(instrument => instrument.Dispose());
-        _voltmeter.Dispose();
+        foreach (LateSafeable instrument in _instruments)
+        {
+            await instrument.DisposeAsync();
+        }
+
+        await _voltmeter.DisposeAsync();
     }
 
     private LateSafeable Late(BenchLinks links, string role, Func<CancellationToken, Task<ISafeable>> open)

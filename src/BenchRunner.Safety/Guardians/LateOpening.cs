@@ -1,10 +1,11 @@
 namespace BenchRunner.Safety.Guardians;
 
 /// <summary>A link that is opened when it is first needed, once for all who need it; again where that failed.</summary>
-internal sealed class LateOpening<T>(Func<CancellationToken, Task<T>> open) : IDisposable
+internal sealed class LateOpening<T>(Func<CancellationToken, Task<T>> open) : IAsyncDisposable
     where T : class
 {
     private readonly Lock _gate = new();
+    private readonly CancellationTokenSource _end = new();
     private Task<T>? _opening;
 
     public bool IsOpen => _opening is { IsCompletedSuccessfully: true };
@@ -16,18 +17,24 @@ internal sealed class LateOpening<T>(Func<CancellationToken, Task<T>> open) : ID
         {
             if (_opening is null or { IsFaulted: true } or { IsCanceled: true })
             {
-                _opening = open(CancellationToken.None);
+                _opening = open(_end.Token);
             }
 
             return _opening.WaitAsync(cancel);
         }
     }
 
-    public void Dispose()
+    /// <summary>Gives up an opening that is under way: a link that came after its owner had gone would be nobody's.</summary>
+    public async ValueTask DisposeAsync()
     {
-        if (IsOpen)
+        _end.Cancel();
+        if (_opening is { } opening)
         {
-            (_opening!.Result as IDisposable)?.Dispose();
+            await ((Task)opening).ConfigureAwait(
+                ConfigureAwaitOptions.SuppressThrowing | ConfigureAwaitOptions.ContinueOnCapturedContext);
+            (IsOpen ? opening.Result as IDisposable : null)?.Dispose();
         }
+
+        _end.Dispose();
     }
 }

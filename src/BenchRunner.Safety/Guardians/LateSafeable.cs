@@ -9,7 +9,7 @@ namespace BenchRunner.Safety.Guardians;
 /// <param name="open">Opens the link.</param>
 /// <param name="time">The clock of the pauses.</param>
 public sealed class LateSafeable(string role, Func<CancellationToken, Task<ISafeable>> open, TimeProvider time)
-    : ISafeable, IDisposable
+    : ISafeable, IAsyncDisposable
 {
     private static readonly TimeSpan TryAgainAfter = TimeSpan.FromMilliseconds(50);
     private readonly LateOpening<ISafeable> _link = new(open);
@@ -41,5 +41,5 @@ public sealed class LateSafeable(string role, Func<CancellationToken, Task<ISafe
     }
 
     /// <summary>Closes the link. Sends nothing.</summary>
-    public void Dispose() => _link.Dispose();
+    public ValueTask DisposeAsync() => _link.DisposeAsync();
 }

@@ -5,7 +5,7 @@ namespace BenchRunner.Safety.Guardians;
 
 /// <summary>A voltmeter whose link the guardian opens when it must; see <see cref="LateSafeable"/>.</summary>
 /// <param name="open">Opens the link.</param>
-public sealed class LateVoltmeter(Func<CancellationToken, Task<IVoltmeter>> open) : IVoltmeter, IDisposable
+public sealed class LateVoltmeter(Func<CancellationToken, Task<IVoltmeter>> open) : IVoltmeter, IAsyncDisposable
 {
     private readonly LateOpening<IVoltmeter> _link = new(open);
 
@@ -23,5 +23,5 @@ public sealed class LateVoltmeter(Func<CancellationToken, Task<IVoltmeter>> open
     public async Task<Volts> Read(CancellationToken cancel) => await (await _link.Get(cancel)).Read(cancel);
 
     /// <summary>Closes the link. Sends nothing.</summary>
-    public void Dispose() => _link.Dispose();
+    public ValueTask DisposeAsync() => _link.DisposeAsync();
 }

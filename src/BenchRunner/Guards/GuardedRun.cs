@@ -18,7 +18,6 @@ namespace BenchRunner.Guards;
 /// <param name="runner">Number of the runner's process; null: none is ended.</param>
 internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
 {
-    private static readonly TimeSpan TryFor = TimeSpan.FromSeconds(30);
     private readonly PipeBeats _pipe = new(System.Console.OpenStandardInput(), System.Console.OpenStandardOutput());
     private readonly TimeProvider _time = TimeProvider.System;
 
@@ -48,24 +47,11 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
             throw;
         }
 
-        using (guarded)
+        await using (guarded)
         {
             _pipe.Say($"ready {bench.Source.Sha256}");
             return await Guard(bench, guarded, held, events);
         }
-    }
-
-    private static GuardianOptions Options(Bench bench, Discharge discharge)
-    {
-        double down = bench.Safety.DownBelow(bench.BusCapacitance);
-        double planned = discharge.TimeTo(bench.Envelope.Voltage, down);
-        return new GuardianOptions(
-            TimeSpan.FromSeconds(bench.Safety.GuardianSilence),
-            TimeSpan.FromSeconds((2 * planned) + bench.Safety.DischargeWithin),
-            TryFor)
-        {
-            DownBelow = down,
-        };
     }
 
     private async Task<int> Guard(Bench bench, GuardedBench guarded, RunnerProcess? held, EventSource events)
@@ -75,7 +61,7 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
         var core = new GuardianCore(
             guarded.Own,
             new SafeState(guarded.Roles, witness, events, _time),
-            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), Options(bench, discharge), events, _time);
+            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), GuardianOptions.Of(bench), events, _time);
         bool isMarked = true;
         core.Acting += reason => isMarked = LeaveLatch(bench, witness, reason, events);
         switch (await core.Run())

@@ -19,9 +19,6 @@ internal sealed class MemoryGuardian : IRunGuardian, IRunnerKiller
 {
     private static readonly TimeSpan _pipe = TimeSpan.FromMicroseconds(100);
 
-    // Bounds that the process of `guard` has in its shell.
-    private static readonly TimeSpan _tryFor = TimeSpan.FromSeconds(30);
-
     private readonly Bench _setup;
     private readonly MemoryBench _bench;
     private readonly VirtualTime _time;
@@ -107,7 +104,7 @@ internal sealed class MemoryGuardian : IRunGuardian, IRunnerKiller
     public async Task Ended()
     {
         await _guarding;
-        _guarded.Dispose();
+        await _guarded.DisposeAsync();
     }
 
     /// <inheritdoc/>
@@ -127,14 +124,9 @@ internal sealed class MemoryGuardian : IRunGuardian, IRunnerKiller
     {
         var discharge = new Discharge(_setup.Bleeder, _setup.BusCapacitance);
         var witness = new BusWitness(discharge, _setup.Safety, _time);
-        double planned = discharge.TimeTo(_setup.Envelope.Voltage, _setup.Safety.DownBelow(_setup.BusCapacitance));
-        var options = new GuardianOptions(
-            TimeSpan.FromSeconds(_setup.Safety.GuardianSilence),
-            TimeSpan.FromSeconds((2 * planned) + _setup.Safety.DischargeWithin),
-            _tryFor);
         GuardianEnding ending = await new GuardianCore(
-            _guarded.Own, new SafeState(_guarded.Roles, witness, _events, _time), witness, _beats, this, options, _events,
-            _time).Run();
+            _guarded.Own, new SafeState(_guarded.Roles, witness, _events, _time), witness, _beats, this,
+            GuardianOptions.Of(_setup), _events, _time).Run();
         if (ending != GuardianEnding.NotNeeded && !_isDone)
         {
             _whyLost = "the guardian has ended";
@@ -148,7 +140,8 @@ internal sealed class MemoryGuardian : IRunGuardian, IRunnerKiller
         {
             _isDone = kind is HeardKind.Done or HeardKind.Left;
             _beats.Write(BeatText.Write(
-                kind, ++_sent, _witness?.HighestCommanded ?? 0, _witness?.HighestSeen ?? 0, _witness?.LastBelieved));
+                kind, ++_sent, _witness?.HighestCommanded ?? 0, _witness?.HighestSeen ?? 0, _witness?.LastBelieved,
+                _witness is { IsDoubted: true }));
         }
     }
 }
