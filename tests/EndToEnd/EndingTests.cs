@@ -108,6 +108,7 @@ public sealed class EndingTests : IDisposable
             ["serve", "--ends-with-input", "--device", "W1200-0001", "--pace", "5", "--write-bench", file,
                 .. faults.SelectMany(f => (string[])["--fault", f])]);
         await _bench.Line(line => line == "ready");
+        Workplace.MakePatient(file);
         return
         [
             "run", Workplace.Sequence, "--device", "W1200-0001", "--bench", file, "--operator", "op",

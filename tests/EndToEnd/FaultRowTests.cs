@@ -62,17 +62,17 @@ public sealed class FaultRowTests : IDisposable
     }
 
     [Theory]
-    [InlineData("F03", "supply/half-open@volts:200", "gives no sign of life")]
-    [InlineData("F04", "supply/drip@volts:200", "gives no sign of life")]
+    [InlineData("F03", "supply/half-open@volts:200", "the supply's word is in doubt")]
+    [InlineData("F04", "supply/drip@volts:200", "the supply's word is in doubt")]
     [InlineData("F10", "supply/overload@volts:200", "with no number")]
     [InlineData("F11", "interlock/garbage@volts:200", "the watch lost sight of the bench")]
     [InlineData("F12", "interlock/wrong-end@volts:200", "the watch lost sight of the bench")]
-    [InlineData("F27", "supply/reboot", "the over-voltage protection is")]
+    [InlineData("F27", "supply/reboot", "the supply's word is in doubt")]
     [InlineData("F27", "pulser/reboot", "was taken as")]
     [InlineData("F31", "bleeder-weak", "the bus was not proved down")]
     [InlineData("F36", "probe-off", "bus-agrees")]
     [InlineData("F37", "supply-overshoots", "above the 420.0 V that the permit allows")]
-    [InlineData("gate stuck on", "gate-stuck-on", "a position is shorted")]
+    [InlineData("gate stuck on", "gate-stuck-on", "vgs_low is still on at the end of the record")]
     [InlineData("pulser fires on arm", "fires-on-arm", "pulser")]
     [InlineData("pulser fires twice", "fires-twice", "counts 2 trains where one was fired")]
     public async Task A_bench_that_cannot_be_trusted_above_60_V_trips(string row, string fault, string why)

@@ -50,6 +50,7 @@ public sealed class HislipRunTests : IDisposable
             ["serve", "--ends-with-input", "--links", "hislip", "--device", "W1200-0001", "--pace", "5",
                 "--write-bench", file]);
         await _bench.Line(line => line == "ready");
+        Workplace.MakePatient(file);
         return file;
     }
 

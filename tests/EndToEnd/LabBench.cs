@@ -49,7 +49,8 @@ internal sealed class LabBench : IDisposable
             text.Append(own.Replace("FAKEBENCH", "LABBENCH0", StringComparison.Ordinal)).Append('\n');
         }
 
-        await System.IO.File.WriteAllTextAsync(lab.File, text.Append(Workplace.PatientSafety).ToString());
+        await System.IO.File.WriteAllTextAsync(lab.File, text.ToString());
+        Workplace.MakePatient(lab.File);
         return lab;
     }
 

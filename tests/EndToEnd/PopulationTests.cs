@@ -100,6 +100,7 @@ public sealed class PopulationTests : IDisposable
             ["serve", "--ends-with-input", "--interlock", "tcp", "--device", serial, "--pace", "5", "--sound",
                 "--write-bench", bench]);
         await fake.Line(line => line == "ready");
+        Workplace.MakePatient(bench);
 
         (await _place.Run(
             "run", Workplace.Sequence, "--device", serial, "--bench", bench, "--operator", "A. Person", "--armed-by",

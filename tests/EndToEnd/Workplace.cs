@@ -38,20 +38,28 @@ internal sealed class Workplace : IDisposable
 
     public string Path(string name) => System.IO.Path.Combine(Folder, name);
 
-    /// <summary>Bounds at which a loaded machine trips no sound bench: for tests of what happens, not of how
-    /// soon.</summary>
-    public const string PatientSafety = "safety: { reply-within: 1500 ms, guardian-silence: 2 s }\n";
+    /// <summary>The bounds of the shipped fake benches, at which a loaded machine trips no sound bench: for tests of what
+    /// happens, not of how soon.</summary>
+    private const string PatientSafety = "safety: { reply-within: 1500 ms, guardian-silence: 2 s }\n";
 
-    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects; its bounds
-    /// are <see cref="PatientSafety"/>.</summary>
+    /// <summary>Gives a bench file that a fake bench wrote, which has the default bounds, those of the shipped
+    /// ones.</summary>
+    public static void MakePatient(string file)
+    {
+        // Written anew: the file may be another user's.
+        string text = File.ReadAllText(file);
+        File.Delete(file);
+        File.WriteAllText(file, text.TrimEnd() + "\n" + PatientSafety);
+    }
+
+    /// <summary>A copy of the shipped fake bench with other faults or another seed, beside the shipped dialects.</summary>
     public string FakeBenchFile(string fake)
     {
         string shipped = File.ReadAllText(Repository("sequences", "benches", "fake.yaml"));
         string line = shipped.Split('\n').Single(l => l.StartsWith("fake:", StringComparison.Ordinal));
         Directory.CreateDirectory(Path("benches"));
         string file = System.IO.Path.Combine(Path("benches"), "fake.yaml");
-        File.WriteAllText(
-            file, shipped.Replace(line, $"fake: {fake}", StringComparison.Ordinal).TrimEnd() + "\n" + PatientSafety);
+        File.WriteAllText(file, shipped.Replace(line, $"fake: {fake}", StringComparison.Ordinal));
         return file;
     }
 

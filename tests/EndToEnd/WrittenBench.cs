@@ -44,8 +44,7 @@ internal sealed class WrittenBench : IDisposable
         await bench.Line(line => line == "ready");
 
         // A loaded machine must not trip a sound bench: what is tried here is what happens, not how soon.
-        System.IO.File.Move(file, file + "-written");
-        System.IO.File.WriteAllText(file, System.IO.File.ReadAllText(file + "-written") + Workplace.PatientSafety);
+        Workplace.MakePatient(file);
         return new WrittenBench(bench, file);
     }
 

@@ -34,7 +34,9 @@ internal static class Files
         foreach (string line in File.ReadLines(Path.Combine(_shipped, "benches", "fake.yaml")))
         {
             string role = line.Split(':')[0].Trim();
-            if (!line.StartsWith("fake:", StringComparison.Ordinal))
+
+            // In virtual time nothing holds the instruments up: the bounds are the default ones.
+            if (role is not ("fake" or "safety"))
             {
                 yield return line
                     .Replace("'tcp 127.0.0.1:0'", $"'tcp {role} 1'", StringComparison.Ordinal)
