@@ -1,10 +1,12 @@
+using System.Net;
 using System.Net.Sockets;
+using System.Runtime.CompilerServices;
 
 namespace BenchRunner.Instruments.Links;
 
-/// <summary>Connects stream sockets as instruments need them: without delay, with a bound on each write, and with
-/// keep-alive.</summary>
-internal static class StreamSocket
+/// <summary>A stream socket as instruments need it: without delay, with a bound on each write, and with keep-alive. One
+/// reader at a time.</summary>
+internal sealed class StreamSocket : IDisposable
 {
     // An instrument whose plug was pulled shows on an idle socket only by keep-alive: after 5 s, then 3 probes of 1 s.
     private const int KeepAliveAfter = 5;
@@ -14,50 +16,66 @@ internal static class StreamSocket
     // The shortest that the system's poll can wait.
     private static readonly TimeSpan Moment = TimeSpan.FromMilliseconds(1);
 
+    private readonly Socket _socket;
+    private readonly Lookout _lookout;
+
+    private StreamSocket(Socket socket) => (_socket, _lookout) = (socket, new Lookout(socket));
+
+    /// <summary>Whether bytes wait to be read.</summary>
+    /// <exception cref="SocketException">Lost.</exception>
+    public bool HasInput => _socket.Available > 0;
+
     /// <summary>Connects, once.</summary>
     /// <param name="address">Where the instrument is.</param>
     /// <param name="writeWithin">How long a write may take.</param>
     /// <param name="cancel">Ends the attempt.</param>
     /// <exception cref="LinkException">Refused or unknown.</exception>
-    public static async Task<Socket> Connect(LinkAddress address, TimeSpan writeWithin, CancellationToken cancel)
+    public static async Task<StreamSocket> Connect(LinkAddress address, TimeSpan writeWithin, CancellationToken cancel)
     {
-        var client = new TcpClient();
+        // Without NoDelay a command followed by a query waits for the other side's delayed acknowledgement, 40 ms and
+        // more.
+        var socket = new Socket(SocketType.Stream, ProtocolType.Tcp)
+        {
+            NoDelay = true,
+            SendTimeout = (int)writeWithin.TotalMilliseconds,
+        };
         try
         {
-            await client.ConnectAsync(address.Host, address.Number, cancel);
-            var socket = client.Client;
-
-            // Without it a command followed by a query waits for the other side's delayed acknowledgement, 40 ms and
-            // more.
-            socket.NoDelay = true;
-            socket.SendTimeout = (int)writeWithin.TotalMilliseconds;
             socket.SetSocketOption(SocketOptionLevel.Socket, SocketOptionName.KeepAlive, true);
             socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveTime, KeepAliveAfter);
             socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveInterval, KeepAliveEvery);
             socket.SetSocketOption(SocketOptionLevel.Tcp, SocketOptionName.TcpKeepAliveRetryCount, KeepAliveProbes);
-            client.Client = null!;
-            return socket;
+            var hosts = await Dns.GetHostAddressesAsync(address.Host, cancel);
+
+            // Blocking, and closed to end it: the framework's asynchronous way would watch the socket for good.
+            using var givenUp = cancel.UnsafeRegister(static socket => ((Socket)socket!).Dispose(), socket);
+            await Task.Run(() => socket.Connect(hosts, address.Number), CancellationToken.None);
+            return new StreamSocket(socket);
         }
-        catch (SocketException e)
+        catch (Exception e) when (IsLoss(e))
         {
+            socket.Dispose();
+            cancel.ThrowIfCancellationRequested();
             throw new LinkException(
                 address.ToString(),
-                $"cannot connect ({e.SocketErrorCode}); check that the instrument is on and its address right",
+                $"cannot connect ({(e as SocketException)?.SocketErrorCode}); check that the instrument is on and its "
+                    + "address right",
                 e);
         }
-        finally
+        catch
         {
-            client.Dispose();
+            socket.Dispose();
+            throw;
         }
     }
 
     /// <summary>Hands all bytes to the system.</summary>
     /// <exception cref="SocketException">Lost, or not taken within the socket's bound.</exception>
-    public static void SendAll(Socket socket, ReadOnlySpan<byte> bytes)
+    public void SendAll(ReadOnlySpan<byte> bytes)
     {
         while (bytes.Length > 0)
         {
-            bytes = bytes[socket.Send(bytes)..];
+            bytes = bytes[_socket.Send(bytes)..];
         }
     }
 
@@ -65,11 +83,25 @@ internal static class StreamSocket
     /// one costs several round trips of a quick instrument.</summary>
     /// <returns>Bytes received; 0 where the other side has ended the stream.</returns>
     /// <exception cref="SocketException">Lost.</exception>
-    public static ValueTask<int> Receive(Socket socket, Memory<byte> buffer, CancellationToken cancel)
+    /// <exception cref="OperationCanceledException">Cancelled; nothing was taken.</exception>
+    public ValueTask<int> Receive(Memory<byte> buffer, CancellationToken cancel)
     {
         cancel.ThrowIfCancellationRequested();
-        socket.Poll(Moment, SelectMode.SelectRead);
-        return socket.ReceiveAsync(buffer, cancel);
+        if (!_socket.Poll(Moment, SelectMode.SelectRead))
+        {
+            return ReceiveLater(buffer, cancel);
+        }
+
+        // What came as the deadline passed came too late.
+        cancel.ThrowIfCancellationRequested();
+        return ValueTask.FromResult(_socket.Receive(buffer.Span));
+    }
+
+    /// <inheritdoc/>
+    public void Dispose()
+    {
+        _socket.Dispose();
+        _lookout.Dispose();
     }
 
     /// <summary>Whether an exception says that a socket is of no more use.</summary>
@@ -104,5 +136,13 @@ internal static class StreamSocket
             throw new LinkException(
                 name, $"no answer within {within.TotalSeconds:0.###} s; check power and address", e);
         }
+    }
+
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
+    private async ValueTask<int> ReceiveLater(Memory<byte> buffer, CancellationToken cancel)
+    {
+        await _lookout.Wait(cancel);
+        cancel.ThrowIfCancellationRequested();
+        return _socket.Receive(buffer.Span);
     }
 }

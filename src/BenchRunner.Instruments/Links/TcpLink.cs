@@ -1,4 +1,3 @@
-using System.Net.Sockets;
 using System.Runtime.CompilerServices;
 
 namespace BenchRunner.Instruments.Links;
@@ -7,9 +6,9 @@ namespace BenchRunner.Instruments.Links;
 internal sealed class TcpLink : ILink
 {
     private readonly Lock _writing = new();
-    private readonly Socket _socket;
+    private readonly StreamSocket _socket;
 
-    private TcpLink(string name, Socket socket) => (Name, _socket) = (name, socket);
+    private TcpLink(string name, StreamSocket socket) => (Name, _socket) = (name, socket);
 
     public string Name { get; }
 
@@ -19,7 +18,7 @@ internal sealed class TcpLink : ILink
         {
             try
             {
-                return _socket.Available > 0;
+                return _socket.HasInput;
             }
             catch (Exception e) when (StreamSocket.IsLoss(e))
             {
@@ -46,7 +45,7 @@ internal sealed class TcpLink : ILink
         {
             try
             {
-                StreamSocket.SendAll(_socket, message);
+                _socket.SendAll(message);
             }
             catch (Exception e) when (StreamSocket.IsLoss(e))
             {
@@ -60,7 +59,7 @@ internal sealed class TcpLink : ILink
     {
         try
         {
-            return await StreamSocket.Receive(_socket, buffer, cancel);
+            return await _socket.Receive(buffer, cancel);
         }
         catch (Exception e) when (StreamSocket.IsLoss(e))
         {

@@ -75,6 +75,63 @@ public class LinkTests
     }
 
     [Fact]
+    public async Task A_read_waits_past_a_moment_also_again_after_one_that_was_given_up()
+    {
+        using var listener = new TcpListener(IPAddress.Loopback, 0);
+        listener.Start();
+        using var link = await Open($"tcp 127.0.0.1 {((IPEndPoint)listener.LocalEndpoint).Port}");
+        using var far = await listener.AcceptSocketAsync(_cancel);
+        var buffer = new byte[16];
+        for (byte n = 0; n < 20; n++)
+        {
+            using var stop = new CancellationTokenSource();
+            var given = link.Read(buffer, stop.Token).AsTask();
+            await stop.CancelAsync();
+            await Assert.ThrowsAnyAsync<OperationCanceledException>(() => given);
+
+            // Under way before anything is sent: nothing is there for it yet.
+            var read = link.Read(buffer, _cancel).AsTask();
+            Assert.False(read.IsCompleted);
+            await far.SendAsync(new byte[] { n }, _cancel);
+            Assert.Equal((1, n), (await read, buffer[0]));
+        }
+    }
+
+    [Fact]
+    public async Task Closing_the_link_ends_a_read_that_waits()
+    {
+        using var listener = new TcpListener(IPAddress.Loopback, 0);
+        listener.Start();
+        using var link = await Open($"tcp 127.0.0.1 {((IPEndPoint)listener.LocalEndpoint).Port}");
+        using var far = await listener.AcceptSocketAsync(_cancel);
+        var read = link.Read(new byte[16], _cancel).AsTask();
+        link.Dispose();
+        await Assert.ThrowsAsync<LinkException>(() => read);
+    }
+
+    [Fact]
+    public async Task A_connection_that_nobody_takes_is_given_up_in_time()
+    {
+        // A queue of no length, filled: the system leaves the next one unanswered.
+        using var listener = new Socket(AddressFamily.InterNetwork, SocketType.Stream, ProtocolType.Tcp);
+        listener.Bind(new IPEndPoint(IPAddress.Loopback, 0));
+        listener.Listen(0);
+        var port = ((IPEndPoint)listener.LocalEndPoint!).Port;
+        var options = new SessionOptions { ConnectWithin = TimeSpan.FromMilliseconds(300), WriteWithin = Long };
+        List<ILink> taken = [];
+        var e = await Assert.ThrowsAsync<LinkException>(async () =>
+        {
+            for (var n = 0; n < 10; n++)
+            {
+                taken.Add(await Link.Open(
+                    LinkAddress.Parse($"tcp 127.0.0.1 {port}"), options, TimeProvider.System, _cancel));
+            }
+        });
+        Assert.Contains("no answer within 0.3 s", e.Message, StringComparison.Ordinal);
+        taken.ForEach(link => link.Dispose());
+    }
+
+    [Fact]
     public async Task A_port_where_nothing_listens_is_named()
     {
         var listener = new TcpListener(IPAddress.Loopback, 0);

@@ -1,4 +1,3 @@
-using System.Net.Sockets;
 using System.Runtime.CompilerServices;
 using System.Text;
 using BenchRunner.Instruments.Replies;
@@ -8,7 +7,7 @@ namespace BenchRunner.Instruments.Links.Hislip;
 /// <summary>One of the two connections of a HiSLIP session: whole messages out; headers in, and their payloads as far
 /// as asked for.</summary>
 /// <remarks>One reader, one writer at a time. Whatever was cancelled goes on where it stopped.</remarks>
-internal sealed class HislipChannel(string name, Socket socket) : IDisposable
+internal sealed class HislipChannel(string name, StreamSocket socket) : IDisposable
 {
     private const int LongestText = 256;
 
@@ -27,7 +26,7 @@ internal sealed class HislipChannel(string name, Socket socket) : IDisposable
         {
             try
             {
-                return _end > _start || socket.Available > 0;
+                return _end > _start || socket.HasInput;
             }
             catch (Exception e) when (StreamSocket.IsLoss(e))
             {
@@ -42,7 +41,7 @@ internal sealed class HislipChannel(string name, Socket socket) : IDisposable
     {
         try
         {
-            StreamSocket.SendAll(socket, message);
+            socket.SendAll(message);
         }
         catch (Exception e) when (StreamSocket.IsLoss(e))
         {
@@ -188,7 +187,7 @@ internal sealed class HislipChannel(string name, Socket socket) : IDisposable
         int count;
         try
         {
-            count = await StreamSocket.Receive(socket, space, cancel);
+            count = await socket.Receive(space, cancel);
         }
         catch (Exception e) when (StreamSocket.IsLoss(e))
         {
