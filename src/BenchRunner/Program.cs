@@ -1,6 +1,7 @@
 using System.CommandLine;
 using System.CommandLine.Invocation;
 using System.CommandLine.Parsing;
+using System.Runtime.CompilerServices;
 using BenchRunner.Commands;
 
 namespace BenchRunner;
@@ -13,6 +14,18 @@ internal static class Program
         AppContext.BaseDirectory, OperatingSystem.IsWindows() ? "benchrunner.exe" : "benchrunner");
 
     private static async Task<int> Main(string[] arguments)
+    {
+        if (OpenFiles.WhyTooFew() is { } why)
+        {
+            System.Console.Error.WriteLine(why);
+            return ExitCode.Instrument;
+        }
+
+        return await Do(arguments);
+    }
+
+    [MethodImpl(MethodImplOptions.NoInlining)]
+    private static async Task<int> Do(string[] arguments)
     {
         using var stop = new CancellationTokenSource();
         using SignalGuard signals = SignalGuard.Cancelling(stop);

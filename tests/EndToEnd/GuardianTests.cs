@@ -66,7 +66,7 @@ public sealed class GuardianTests : IDisposable
         using WrittenBench bench = await WrittenBench.Start(_place);
         using Started run = await Charged(bench);
 
-        int guardian = GuardianOf(run.Id);
+        int guardian = run.Guardian();
         Started.Send(guardian, signal);
         await bench.Says("outputs-off");
         Finished ended = (await EndedWithout(run, guardian)).Expect(4);
@@ -86,7 +86,7 @@ public sealed class GuardianTests : IDisposable
         using Started run = await Charged(bench);
 
         // Stopped first: the guardian's death must not make it act before it dies.
-        int guardian = GuardianOf(run.Id);
+        int guardian = run.Guardian();
         run.Signal(Stop);
         Started.Send(guardian, Kill);
         run.Signal(Kill);
@@ -143,25 +143,5 @@ public sealed class GuardianTests : IDisposable
         await run.Exited();
         Started.Send(guardian, Kill);
         return await run.End();
-    }
-
-    private static int GuardianOf(int runner) => Directory.GetDirectories("/proc")
-        .Select(Path.GetFileName)
-        .Where(name => int.TryParse(name, out _))
-        .Select(int.Parse!)
-        .Single(number => IsGuardian(number, runner));
-
-    private static bool IsGuardian(int number, int runner)
-    {
-        try
-        {
-            return File.ReadAllText($"/proc/{number}/cmdline").Contains("\0guard\0", StringComparison.Ordinal)
-                && File.ReadLines($"/proc/{number}/status").Contains($"PPid:\t{runner}");
-        }
-        catch (IOException)
-        {
-            // It ended while it was looked at.
-            return false;
-        }
     }
 }

@@ -28,6 +28,9 @@ internal sealed partial class Started : IDisposable
     /// <summary>Number of the process.</summary>
     public int Id => _process.Id;
 
+    /// <summary>Whether the process has gone.</summary>
+    public bool HasEnded => _process.HasExited;
+
     public StreamWriter Input => _process.StandardInput;
 
     /// <summary>Waits for a line of output that is as wanted, past or to come.</summary>
@@ -95,6 +98,13 @@ internal sealed partial class Started : IDisposable
         await Input.FlushAsync();
     }
 
+    /// <summary>Number of the guardian that this run has started.</summary>
+    public int Guardian() => Directory.GetDirectories("/proc")
+        .Select(Path.GetFileName)
+        .Where(name => int.TryParse(name, out _))
+        .Select(int.Parse!)
+        .Single(number => IsGuardian(number, Id));
+
     /// <summary>Sends a signal, e.g. SIGINT or SIGKILL.</summary>
     public void Signal(int signal) => Assert.Equal(0, Kill(_process.Id, signal));
 
@@ -144,6 +154,20 @@ internal sealed partial class Started : IDisposable
         }
 
         _process.Dispose();
+    }
+
+    private static bool IsGuardian(int number, int runner)
+    {
+        try
+        {
+            return File.ReadAllText($"/proc/{number}/cmdline").Contains("\0guard\0", StringComparison.Ordinal)
+                && File.ReadLines($"/proc/{number}/status").Contains($"PPid:\t{runner}");
+        }
+        catch (IOException)
+        {
+            // It ended while it was looked at.
+            return false;
+        }
     }
 
     private void Take(StringBuilder to, string? line)

@@ -23,7 +23,10 @@ public sealed class GuardianLog(string path, TextWriter screen) : IEventSink, IA
     public void Receive(BenchEvent happened)
     {
         _events.Writer.TryWrite(happened);
-        _writing ??= Task.Run(Write);
+        lock (_events)
+        {
+            _writing ??= Task.Run(Write);
+        }
     }
 
     /// <summary>Waits until all is written, as far as it can be.</summary>

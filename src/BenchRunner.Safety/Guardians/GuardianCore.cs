@@ -36,7 +36,7 @@ public sealed class GuardianCore(
     private readonly long _start = time.GetTimestamp();
     private Task _switchingOff = Task.CompletedTask;
 
-    /// <summary>Raised when it begins to act, before the runner is ended: here the latch is left. A handler must not
+    /// <summary>Raised when it begins to act, once the runner is ended: here the latch is left. A handler must not
     /// throw.</summary>
     public event Action<string>? Acting;
 
@@ -54,8 +54,8 @@ public sealed class GuardianCore(
 
         long began = time.GetTimestamp();
         string? lives = deed == GuardianDeed.Act ? await killer.End() : null;
-        Acting?.Invoke(_judge.Reason);
         events.Say(Severity.Alarm, "guardian-acts", $"THE GUARDIAN ACTS: {_judge.Reason}");
+        Acting?.Invoke(_judge.Reason);
         if (lives is not null)
         {
             events.Say(

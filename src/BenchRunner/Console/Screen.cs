@@ -1,21 +1,21 @@
+using System.Collections.Concurrent;
 using System.Text;
-using System.Threading.Channels;
 
 namespace BenchRunner.Console;
 
 /// <summary>Lines, and on a terminal one live line below them. In a pipe it writes lines alone, without control
 /// codes.</summary>
 /// <remarks>
-/// A task of its own writes, in the order asked for: a terminal that was stopped (Ctrl-S) or a reader that does not
-/// read must not hold up the run, least of all its way to the safe state.
+/// A thread of its own writes, in the order asked for: a terminal that was stopped (Ctrl-S) or a reader that does not
+/// read must not hold up the run, least of all its way to the safe state, and takes no thread from the watch.
 /// </remarks>
 internal sealed class Screen : IAsyncDisposable
 {
     private const string ClearLine = "\r\u001b[2K";
     private readonly TextWriter _writer;
     private readonly bool _isTerminal;
-    private readonly Channel<Action> _asked = Channel.CreateUnbounded<Action>(new() { SingleReader = true });
-    private readonly Task _writing;
+    private readonly BlockingCollection<Action> _asked = [];
+    private readonly TaskCompletionSource _written = new(TaskCreationOptions.RunContinuationsAsynchronously);
     private string _live = "";
 
     private Screen(TextWriter writer, bool isTerminal)
@@ -23,7 +23,7 @@ internal sealed class Screen : IAsyncDisposable
         _writer = writer;
         _isTerminal = isTerminal;
         Palette = new Palette(isTerminal && Environment.GetEnvironmentVariable("NO_COLOR") is null or "");
-        _writing = Task.Run(Write);
+        new Thread(Write) { IsBackground = true, Name = "screen" }.Start();
     }
 
     /// <summary>Colours for this screen.</summary>
@@ -35,7 +35,7 @@ internal sealed class Screen : IAsyncDisposable
         : new Screen(System.Console.Out, !System.Console.IsOutputRedirected);
 
     /// <summary>Writes a line above the live line.</summary>
-    public void Line(string text) => _asked.Writer.TryWrite(() =>
+    public void Line(string text) => Ask(() =>
     {
         _writer.Write(_isTerminal && _live.Length > 0 ? ClearLine : "");
         _writer.WriteLine(text);
@@ -47,7 +47,7 @@ internal sealed class Screen : IAsyncDisposable
     {
         if (_isTerminal)
         {
-            _asked.Writer.TryWrite(() =>
+            Ask(() =>
             {
                 // Four columns stay free, or a terminal's echo of ^C would wrap the line.
                 int room = Math.Max(WindowWidth() - 4, 10);
@@ -62,12 +62,12 @@ internal sealed class Screen : IAsyncDisposable
     {
         if (_isTerminal)
         {
-            _asked.Writer.TryWrite(() => _writer.Write('\a'));
+            Ask(() => _writer.Write('\a'));
         }
     }
 
     /// <summary>Takes the live line away.</summary>
-    public void EndLive() => _asked.Writer.TryWrite(() =>
+    public void EndLive() => Ask(() =>
     {
         _writer.Write(_live.Length > 0 ? ClearLine : "");
         _live = "";
@@ -77,31 +77,47 @@ internal sealed class Screen : IAsyncDisposable
     public Task Written(CancellationToken cancel)
     {
         var written = new TaskCompletionSource(TaskCreationOptions.RunContinuationsAsynchronously);
-        return _asked.Writer.TryWrite(written.SetResult) ? written.Task.WaitAsync(cancel) : _writing;
+        return Ask(written.SetResult) ? written.Task.WaitAsync(cancel) : _written.Task;
     }
 
     /// <summary>Writes what was asked for and ends.</summary>
     public async ValueTask DisposeAsync()
     {
         EndLive();
-        _asked.Writer.TryComplete();
-        await _writing;
+        _asked.CompleteAdding();
+        await _written.Task;
     }
 
-    private async Task Write()
+    /// <returns>False: it has ended.</returns>
+    private bool Ask(Action write)
     {
-        await foreach (Action write in _asked.Reader.ReadAllAsync())
+        try
+        {
+            _asked.Add(write);
+            return true;
+        }
+        catch (InvalidOperationException)
+        {
+            return false;
+        }
+    }
+
+    private void Write()
+    {
+        foreach (Action write in _asked.GetConsumingEnumerable())
         {
             try
             {
                 write();
                 _writer.Flush();
             }
-            catch (IOException)
+            catch (Exception)
             {
-                // Nobody reads any more; the evidence has it all.
+                // Nobody reads any more, or whatever it is: the evidence has it all.
             }
         }
+
+        _written.SetResult();
     }
 
     /// <summary>One line of printable text: what instruments say must not move the cursor or forge a line.</summary>

@@ -6,7 +6,6 @@ using BenchRunner.Instruments.Roles;
 using BenchRunner.Runner.Benches;
 using BenchRunner.Runner.Guarding;
 using BenchRunner.Safety.Guardians;
-using BenchRunner.Safety.Latches;
 using BenchRunner.Safety.SafeStates;
 using BenchRunner.Safety.Watches;
 
@@ -62,20 +61,27 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
             guarded.Own,
             new SafeState(guarded.Roles, witness, events, _time),
             witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), GuardianOptions.Of(bench), events, _time);
-        bool isMarked = true;
-        core.Acting += reason => isMarked = LeaveLatch(bench, witness, reason, events);
+        var mark = new LatchMark(bench, events, _time);
+        core.Acting += reason =>
+        {
+            if (witness.MayBeEnergised)
+            {
+                mark.Begin(reason);
+            }
+        };
         switch (await core.Run())
         {
             case GuardianEnding.NotNeeded:
                 return ExitCode.Done;
             case GuardianEnding.ProvedDown:
-                if (isMarked)
+                if (await mark.Stands())
                 {
                     await TakeOffWatchdog(guarded, events);
                 }
 
                 return ExitCode.Done;
             default:
+                await mark.Stands();
                 return ExitCode.Safety;
         }
     }
@@ -111,28 +117,6 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
 
         return (files.Bench!, new BenchLinks(
             files.Bench!, files.Dialects, links.Count > 0 ? links : null, InstrumentConnection.Wire));
-    }
-
-    /// <returns>Whether the mark stands or none is due; a bench that is new at each start gets none.</returns>
-    private bool LeaveLatch(Bench bench, BusWitness witness, string reason, EventSource events)
-    {
-        if (bench.Fake is not null || !witness.MayBeEnergised)
-        {
-            return true;
-        }
-
-        try
-        {
-            new LatchFile(bench.Source.Path).Set(_time.GetUtcNow(), $"the guardian ended the run: {reason}");
-            return true;
-        }
-        catch (Exception failure) when (failure is IOException or UnauthorizedAccessException)
-        {
-            events.Say(
-                Severity.Alarm, "guardian-latch-not-written",
-                $"THE BENCH IS NOT LATCHED: {failure.Message}; let nobody use it");
-            return false;
-        }
     }
 
     private async Task TakeOffWatchdog(GuardedBench guarded, EventSource events)

@@ -1,12 +1,18 @@
 using System.Text;
+using System.Threading.Channels;
 using BenchRunner.Safety.Guardians;
 
 namespace BenchRunner.Guards;
 
 /// <summary>The runner's voice: lines of standard input, each beat answered on standard output.</summary>
+/// <remarks>Reading waits on a thread of its own: on a small computer the pool's few threads are for what makes the bench
+/// safe.</remarks>
 internal sealed class PipeBeats(Stream input, Stream output) : IBeatSource
 {
     private readonly byte[] _buffer = new byte[BeatText.LongestLine + 1];
+    private readonly Channel<byte[]> _arrived = Channel.CreateBounded<byte[]>(16);
+    private ReadOnlyMemory<byte> _rest;
+    private Thread? _reading;
     private int _length;
     private long _due = 1;
     private bool _over;
@@ -68,15 +74,39 @@ internal sealed class PipeBeats(Stream input, Stream output) : IBeatSource
 
     private async Task<int> Read()
     {
+        if (_reading is null)
+        {
+            _reading = new Thread(Listen) { IsBackground = true, Name = "beats" };
+            _reading.Start();
+        }
+
+        if (_rest.IsEmpty && await _arrived.Reader.WaitToReadAsync())
+        {
+            _rest = await _arrived.Reader.ReadAsync();
+        }
+
+        int count = Math.Min(_rest.Length, _buffer.Length - _length);
+        _rest[..count].CopyTo(_buffer.AsMemory(_length));
+        _rest = _rest[count..];
+        _length += count;
+        return count;
+    }
+
+    private void Listen()
+    {
+        byte[] buffer = new byte[BeatText.LongestLine];
         try
         {
-            int count = await input.ReadAsync(_buffer.AsMemory(_length));
-            _length += count;
-            return count;
+            while (input.Read(buffer) is > 0 and int count)
+            {
+                _arrived.Writer.WriteAsync(buffer[..count]).AsTask().Wait();
+            }
         }
-        catch (IOException)
+        catch (Exception)
         {
-            return 0;
+            // Whatever it is: nothing more is heard, as where the pipe ends.
         }
+
+        _arrived.Writer.Complete();
     }
 }
