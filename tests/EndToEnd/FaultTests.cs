@@ -22,7 +22,7 @@ public sealed class FaultTests : IDisposable
 
     [Theory]
     [Trait("kind", "slow")]
-    [InlineData("silent-supply", 4, "stopped", "no sign of life")]
+    [InlineData("silent-supply", 4, "stopped", "the supply's word is in doubt")]
     [InlineData("second-controller@fire:3", 4, "stopped", "above the 420.0 V that the permit allows")]
     [InlineData("fire-unanswered", 4, "stopped", "whether a train was fired is unknown")]
     [InlineData("probe-factor-changes", 4, "stopped", "the attenuation of id_low (input 3) is 10 where 1 was set")]
