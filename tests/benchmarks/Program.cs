@@ -15,7 +15,7 @@ internal static class Program
         ["signals"] = seed => new SignalsGroup(seed),
         ["fake"] = seed => new FakeGroup(seed),
         ["safety"] = seed => new SafetyGroup(seed),
-        ["links"] = _ => new LinksGroup(),
+        ["links"] = seed => new LinksGroup(seed),
     };
 
     private static int Main(string[] arguments)

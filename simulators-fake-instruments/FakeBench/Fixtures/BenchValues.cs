@@ -10,6 +10,9 @@ public sealed record BenchValues(double Pace)
     /// <summary>Highest set-point of the supply, V.</summary>
     public const double HighestVoltage = 1000;
 
+    /// <summary>What the bench file allows, and where the lab left the supply's over-voltage protection, V.</summary>
+    public const double Envelope = 900;
+
     /// <summary>What drains the bank with an empty socket, Ohm: 0.1 mA at 600 V.</summary>
     public const double EmptySocket = 6e6;
 

@@ -9,8 +9,8 @@ public sealed class SupplyStage
     /// <summary>Set-point of the current limit, A.</summary>
     public required double Limit { get; set; }
 
-    /// <summary>Level of the over-voltage protection, V.</summary>
-    public double Protection { get; set; } = BenchValues.HighestVoltage * 1.1;
+    /// <summary>Level of the over-voltage protection, V; at first where the lab left it.</summary>
+    public double Protection { get; set; } = BenchValues.Envelope;
 
     /// <summary>Whether the over-voltage protection has acted; it stays so until it is cleared.</summary>
     public bool Tripped { get; set; }

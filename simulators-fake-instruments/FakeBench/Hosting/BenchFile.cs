@@ -62,7 +62,7 @@ public static class BenchFile
         }
 
         string plate = options.Hotplate ? $", temperature: {HottestPlate:0} degC" : "";
-        Line($"envelope: {{ voltage: 900 V, current: 120 A, energy: 10 J, pulse: 20 us{plate} }}");
+        Line($"envelope: {{ voltage: {BenchValues.Envelope:0} V, current: 120 A, energy: 10 J, pulse: 20 us{plate} }}");
         Line($"ambient: {options.Ambient:0.##} degC");
         Line($"cautions: []");
         return text.ToString();

@@ -41,6 +41,7 @@ public static class BenchCheck
             bench.Roles[role],
             LinkAddress.Parse(fake?.Links[role] ?? bench.Roles[role].Link),
             dialects[bench.Roles[role].Dialect].ToDialect(),
+            LinkLock.Of(bench, role),
             time)).ToArray();
         bool bankIsDown = true;
         foreach (CheckedInstrument at in instruments)

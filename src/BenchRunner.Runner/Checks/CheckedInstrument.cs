@@ -9,8 +9,14 @@ using BenchRunner.Instruments.Sessions;
 namespace BenchRunner.Runner.Checks;
 
 /// <summary>One instrument while it is checked: only questions are asked, nothing is set.</summary>
+/// <param name="role">The role.</param>
+/// <param name="setup">What the bench file says of it.</param>
+/// <param name="address">Where it is.</param>
+/// <param name="dialect">What it understands.</param>
+/// <param name="key">Name of the lock that a run would take, where its link has locks.</param>
+/// <param name="time">The clock.</param>
 internal sealed class CheckedInstrument(
-    string role, InstrumentSetup setup, LinkAddress address, Dialect dialect, TimeProvider time)
+    string role, InstrumentSetup setup, LinkAddress address, Dialect dialect, string key, TimeProvider time)
 {
     private const int LatencyQuestions = 20;
 
@@ -39,7 +45,7 @@ internal sealed class CheckedInstrument(
         try
         {
             Session = await ScpiSession.Open(
-                role, address, new SessionOptions { Habits = dialect.Wire }, time, _noted, cancel);
+                role, address, new SessionOptions { Habits = dialect.Wire, Lock = key }, time, _noted, cancel);
         }
         catch (LinkException e)
         {
@@ -64,7 +70,7 @@ internal sealed class CheckedInstrument(
     }
 
     /// <summary>The same instrument over the same session, to read its settings once more.</summary>
-    public CheckedInstrument Reading() => new(role, setup, address, dialect, time) { Session = Session };
+    public CheckedInstrument Reading() => new(role, setup, address, dialect, key, time) { Session = Session };
 
     /// <summary>Notes what makes the bench unfit.</summary>
     public void Unfit(string message) => _findings.Add(new CheckFinding(true, message));

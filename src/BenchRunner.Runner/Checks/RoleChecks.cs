@@ -33,11 +33,19 @@ internal static class RoleChecks
         }
 
         await at.Number("read-voltage", "V", cancel);
-        await at.Number("read-current", "A", cancel);
+        if (await at.Number("read-current", "A", cancel) is { } limit && limit > bench.ChargingCurrent)
+        {
+            // No danger: a run sets it and asks it back before the output goes on, and what it can feed is the supply's
+            // own matter until then.
+            at.Note(Text($"its current limit is at {limit:G4} A, above the charging current of ")
+                + Text($"{bench.ChargingCurrent:G4} A; a run sets it before anything is charged"));
+        }
+
         if (await at.Number("read-protection", "V", cancel) is { } level && level > bench.Envelope.Voltage)
         {
-            at.Note(Text($"its over-voltage protection is at {level:0.#} V, above the envelope of ")
-                + Text($"{bench.Envelope.Voltage:0.#} V; a run sets it before anything is charged"));
+            at.Unfit(Text($"its over-voltage protection is at {level:0.#} V, above the envelope of ")
+                + Text($"{bench.Envelope.Voltage:0.#} V: until a run has set its own, nothing but the supply's range ")
+                + Text($"bounds the bank; set it to {bench.Envelope.Voltage:0.#} V or less"));
         }
     }
 
@@ -64,8 +72,9 @@ internal static class RoleChecks
             if (await at.Number("read-attenuation", "", cancel, channel.Input) is { } factor
                 && !(Math.Abs(factor - channel.Attenuation!.Value) <= 0.01 * channel.Attenuation.Value))
             {
-                at.Note(Text($"input {channel.Input} takes its probe for {factor:G4}:1 where the bench file says ")
-                    + Text($"{channel.Attenuation:G4}:1; a run sets it and asks it back: check the probe's switch"));
+                at.Unfit(Text($"input {channel.Input} takes its probe for {factor:G4}:1 where the bench file says ")
+                    + Text($"{channel.Attenuation:G4}:1, and a run would set what the file says: look at the probe and its ")
+                    + "switch, then put right which of the two is wrong");
             }
         }
     }

@@ -4,7 +4,8 @@ using BenchRunner.Instruments.Sessions;
 
 namespace BenchRunner.Benchmarks;
 
-/// <summary>What a session costs over what the wire costs: blocks, questions, settings, a peer that trickles.</summary>
+/// <summary>What a session costs over what the wire costs: blocks, questions, settings, a peer that trickles, and
+/// what a whole run asks a capture.</summary>
 /// <remarks>Ours is the session as roles use it: asynchronous, with its deadline, cancellation and checks. The floor is a
 /// blocking loop on a socket of its own to the same server.</remarks>
 internal sealed class LinksGroup : IGroup
@@ -14,12 +15,18 @@ internal sealed class LinksGroup : IGroup
     private const int Small = 100_000;
     private const int Trickled = 5_000;
 
+    // What the example sequence asks for between two trains, s.
+    private const double Pause = 0.25;
+
+    private readonly Lazy<(IReadOnlyList<CaptureTraffic> Captures, string? Ended)> _run;
     private readonly BareServer _stream = new();
     private readonly BareServer _hislip = new(isHislip: true);
 
     /// <summary>Sets the group up.</summary>
-    public LinksGroup()
+    /// <param name="seed">Seed of the fake bench of a whole run.</param>
+    public LinksGroup(int seed)
     {
+        _run = new(() => RunTraffic.Take(seed));
         foreach (BareServer server in (BareServer[])[_stream, _hislip])
         {
             server.Answer("LARGE?", BareServer.Block(Large));
@@ -36,6 +43,8 @@ internal sealed class LinksGroup : IGroup
             new Benchmark("links/set-query", SetQuery),
             new Benchmark("links/trickle", Trickle),
             new Benchmark("links/allocations", Allocations),
+            new Benchmark("links/queries-a-capture", QueriesACapture),
+            new Benchmark("links/time-a-capture", TimeACapture),
         ];
     }
 
@@ -119,6 +128,43 @@ internal sealed class LinksGroup : IGroup
         double worst = Math.Max(Allocated(stream), Allocated(messages));
         return new Outcome("bytes", new Figure(worst, 0), Note: "the worse of raw socket and HiSLIP, 2 MB blocks");
     }
+
+    private Outcome QueriesACapture()
+    {
+        (IReadOnlyList<CaptureTraffic> captures, string? ended) = _run.Value;
+        if (ended is not null)
+        {
+            return Outcome.Without("questions", ended);
+        }
+
+        CaptureTraffic worst = captures.MaxBy(capture => capture.Reading - capture.Channels)!;
+        return new Outcome(
+            "questions", new Figure(worst.Reading - worst.Channels, 0), Note: string.Create(
+                CultureInfo.InvariantCulture,
+                $"to read the record, worst of {captures.Count} captures of {worst.Channels} channels in a whole run; with "
+                    + $"arming, probes asked back and waiting {Middle(captures, c => c.OfScope)} questions in all"));
+    }
+
+    private Outcome TimeACapture()
+    {
+        (IReadOnlyList<CaptureTraffic> captures, string? ended) = _run.Value;
+        if (ended is not null)
+        {
+            return Outcome.Without("s", ended);
+        }
+
+        double arming = Middle(captures, capture => capture.Arming);
+        double transfer = Middle(captures, capture => capture.Transfer);
+        return new Outcome(
+            "s", new Figure(Middle(captures, capture => capture.Took), 0),
+            Floor: new Figure(arming + transfer + Pause, 0), Note: string.Create(
+                CultureInfo.InvariantCulture,
+                $"train to train in a whole run, median of {captures.Count}; floor: arming {arming:G3} s, transfer "
+                    + $"{transfer:G3} s, pause {Pause} s"));
+    }
+
+    private static double Middle(IReadOnlyList<CaptureTraffic> captures, Func<CaptureTraffic, double> of) =>
+        captures.Select(of).Order().ElementAt(captures.Count / 2);
 
     private static double Allocated(ScpiSession session)
     {

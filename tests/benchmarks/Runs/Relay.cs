@@ -9,13 +9,15 @@ internal sealed class Relay : IDisposable
     private readonly TcpListener _listener = new(IPAddress.Loopback, 0);
     private readonly List<Socket> _sockets = [];
     private readonly int _to;
+    private readonly Action<bool, byte[]>? _heard;
     private volatile bool _silent;
 
     /// <summary>Starts it.</summary>
     /// <param name="to">Port of the instrument.</param>
-    public Relay(int to)
+    /// <param name="heard">Takes what passes, before it does: whether the instrument said it, and the bytes.</param>
+    public Relay(int to, Action<bool, byte[]>? heard = null)
     {
-        _to = to;
+        (_to, _heard) = (to, heard);
         _listener.Start();
         new Thread(Accept) { IsBackground = true }.Start();
     }
@@ -74,6 +76,7 @@ internal sealed class Relay : IDisposable
         {
             while (from.Receive(buffer) is > 0 and int count)
             {
+                _heard?.Invoke(isAnswer, buffer[..count]);
                 if (!(isAnswer && _silent))
                 {
                     to.Send(buffer.AsSpan(0, count));
