@@ -28,6 +28,9 @@ public sealed class BusCharge(OpenBench bench, Bench setup, SafetySupervisor sup
 
     private static readonly TimeSpan ReadEvery = TimeSpan.FromMilliseconds(10);
 
+    /// <summary>How long before a train is due the bus is looked at: two readings show that it has settled.</summary>
+    private static readonly TimeSpan Ahead = 3 * ReadEvery;
+
     /// <summary>Programs the supply, switches it on and waits until the voltmeter shows the bus at its
     /// voltage.</summary>
     /// <exception cref="BusException">The bus did not get there, or stayed in current limit: see its
@@ -64,20 +67,24 @@ public sealed class BusCharge(OpenBench bench, Bench setup, SafetySupervisor sup
     internal async Task<double> WaitForTurn(
         TrainFiring firing, PointState state, CancellationToken enough, CancellationToken cancel)
     {
-        if (firing.FiredAt is { } fired)
+        double target = state.Planned.Point.BusVoltage;
+        if (firing.FiredAt is not { } fired)
         {
-            // A load that was still carrying current gets longer each time.
-            double due = Math.Max(
-                state.Planned.Point.RepeatEvery, state.Planned.Recovery * (1 + state.BaselineInARow));
-            TimeSpan wait = TimeSpan.FromSeconds(due) - time.GetElapsedTime(fired);
-            supervisor.Progress("pausing before the next train", (wait > TimeSpan.Zero ? wait : TimeSpan.Zero) + Slack);
-            if (wait > TimeSpan.Zero && !await Pause(wait, enough, cancel))
-            {
-                return double.NaN;
-            }
+            return await WaitFor(target, cancel, enough);
         }
 
-        return await WaitFor(state.Planned.Point.BusVoltage, cancel, enough);
+        // A load that was still carrying current gets longer each time.
+        TimeSpan due = TimeSpan.FromSeconds(
+            Math.Max(state.Planned.Point.RepeatEvery, state.Planned.Recovery * (1 + state.BaselineInARow)));
+        TimeSpan Left() => due - time.GetElapsedTime(fired);
+        supervisor.Progress("pausing before the next train", (Left() > TimeSpan.Zero ? Left() : TimeSpan.Zero) + Slack);
+        if (!await Pause(Left() - Ahead, enough, cancel))
+        {
+            return double.NaN;
+        }
+
+        double volts = await WaitFor(target, cancel, enough);
+        return await Pause(Left(), enough, cancel) ? volts : double.NaN;
     }
 
     /// <summary>Waits, with output off and bleeder on, until the voltmeter reads less than a voltage.</summary>
@@ -158,10 +165,15 @@ public sealed class BusCharge(OpenBench bench, Bench setup, SafetySupervisor sup
         return volts;
     }
 
-    /// <summary>Pauses.</summary>
+    /// <summary>Pauses, where there is anything left to wait for.</summary>
     /// <returns>False where it was enough before the end.</returns>
     private async Task<bool> Pause(TimeSpan wait, CancellationToken enough, CancellationToken cancel)
     {
+        if (wait <= TimeSpan.Zero)
+        {
+            return true;
+        }
+
         using var either = CancellationTokenSource.CreateLinkedTokenSource(enough, cancel);
         try
         {

@@ -22,7 +22,7 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
 
     private int _unseenInARow;
 
-    /// <summary>When the last train was fired, a time stamp of the clock; null before the first.</summary>
+    /// <summary>When the last train was triggered, a time stamp of the clock; null before the first.</summary>
     public long? FiredAt { get; private set; }
 
     /// <summary>Sets the scope; costs nothing where the settings stand, and after a link that was opened again all are
@@ -72,6 +72,9 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
         await OnScope(() => bench.Scope.Arm(cancel));
         await bench.Pulser.Arm(permit, cancel);
         supervisor.Witness.Firing();
+
+        // The trigger is what a pause counts from, not the pulser's word that it has fired.
+        FiredAt = time.GetTimestamp();
         try
         {
             await bench.Pulser.Fire(permit, cancel);
@@ -81,7 +84,6 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
             supervisor.Witness.Fired();
         }
 
-        FiredAt = time.GetTimestamp();
         (ScopeRecord? record, AcquisitionEnd? end) = await Record(cancel);
         _unseenInARow = end == AcquisitionEnd.NotTriggered ? _unseenInARow + 1 : 0;
         return _unseenInARow < MostUnseenInARow || !supervisor.Witness.MayBeEnergised
