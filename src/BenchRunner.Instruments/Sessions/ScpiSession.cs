@@ -20,7 +20,7 @@ public sealed class ScpiSession : IDisposable
     private readonly WireKeeper _wires;
     private readonly bool _numbered;
     private readonly Repetition _reading;
-    private readonly Repetition _settingDown;
+    private readonly SettingDown _settingDown;
 
     private ScpiSession(string role, WireKeeper wires, SessionOptions options, TimeProvider time)
     {
@@ -28,7 +28,7 @@ public sealed class ScpiSession : IDisposable
         _wires = wires;
         _numbered = options.Habits.Numbered;
         _reading = Repetition.Of(options.ReadAttempts, TimeSpan.Zero, time);
-        _settingDown = Repetition.Of(options.SetDownAttempts, TimeSpan.Zero, time);
+        _settingDown = new SettingDown(_turn, wires, Repetition.Of(options.SetDownAttempts, TimeSpan.Zero, time));
     }
 
     /// <summary>What the instrument said it is.</summary>
@@ -164,32 +164,10 @@ public sealed class ScpiSession : IDisposable
     /// <returns>What the error queue held afterwards; the caller reads back what became of it.</returns>
     /// <exception cref="LinkException">The instrument was not reached, as often as the options allow: its state is
     /// unknown.</exception>
-    public async Task<IReadOnlyList<ErrorEntry>> SetDown(IReadOnlyList<string> commands, CancellationToken cancel)
+    public Task<IReadOnlyList<ErrorEntry>> SetDown(IReadOnlyList<string> commands, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(commands);
-        var reached = SendAllNow(commands) ? _wires.Current : null;
-        return await _settingDown.Run(
-            async (commands, token) =>
-            {
-                await _turn.Take(token);
-                try
-                {
-                    var wire = await _wires.Ready(token);
-                    if (!ReferenceEquals(wire, reached))
-                    {
-                        SendAll(wire, commands);
-                        reached = wire;
-                    }
-
-                    return await wire.ReadErrors(token);
-                }
-                finally
-                {
-                    _turn.Give();
-                }
-            },
-            commands,
-            cancel);
+        return _settingDown.Send(commands, cancel);
     }
 
     /// <summary>Closes the link. Sends nothing.</summary>
@@ -285,27 +263,5 @@ public sealed class ScpiSession : IDisposable
         var lost = errors.Any(e => e.Number == ErrorEntry.QueueOverflow)
             ? "; entries were lost, so its settings are unknown" : "";
         return $"refused '{command}': {string.Join(", ", errors)}{lost}";
-    }
-
-    private bool SendAllNow(IReadOnlyList<string> commands)
-    {
-        try
-        {
-            SendAll(_wires.Current, commands);
-            return true;
-        }
-        catch (LinkException)
-        {
-            // The wire has noted and reported why; the turn that follows opens a new one and sends again.
-            return false;
-        }
-    }
-
-    private static void SendAll(ScpiWire wire, IReadOnlyList<string> commands)
-    {
-        foreach (var command in commands)
-        {
-            wire.SendDown(command);
-        }
     }
 }

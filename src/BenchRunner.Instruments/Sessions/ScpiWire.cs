@@ -1,7 +1,4 @@
-using System.Collections.Concurrent;
 using System.Runtime.CompilerServices;
-using System.Runtime.ExceptionServices;
-using System.Text;
 using BenchRunner.Instruments.Dialects;
 using BenchRunner.Instruments.Links;
 using BenchRunner.Instruments.Replies;
@@ -20,11 +17,7 @@ namespace BenchRunner.Instruments.Sessions;
 /// </remarks>
 internal sealed class ScpiWire : IDisposable
 {
-    private const int MostErrors = 64;
-    private static readonly TimeSpan ProbePause = TimeSpan.FromMilliseconds(1);
     private const string OpeningTheLine = "opening the line";
-
-    private static readonly ErrorEntry NoEntry = new(0, null, null);
 
     private readonly ILink _link;
     private readonly SessionOptions _options;
@@ -33,12 +26,12 @@ internal sealed class ScpiWire : IDisposable
     private readonly ReplyStream _replies;
     private readonly Deadline _deadline;
     private readonly Resynchronisation _resynchronisation;
-    private readonly Action<int> _extend;
-    private readonly TimeProvider _time;
     private readonly Outlet _outlet;
+    private readonly Exchanges _exchanges;
+    private readonly Probing _probing;
+    private readonly ErrorQueue _errors;
     private readonly NumberedQuestion _numbered = new();
-    private readonly ConcurrentQueue<string> _settingDown = new();
-    private volatile bool _errorsUnread;
+    private readonly Unconfirmed _down = new();
 
     /// <summary>Takes over a link that was just opened.</summary>
     /// <param name="link">The link; closed with the wire, or when it breaks.</param>
@@ -47,7 +40,7 @@ internal sealed class ScpiWire : IDisposable
     /// <param name="report">Told what happens; from any thread.</param>
     public ScpiWire(ILink link, SessionOptions options, TimeProvider time, Action<InstrumentEventKind, string> report)
     {
-        (_link, _options, _time, _report) = (link, options, time, report);
+        (_link, _options, _report) = (link, options, report);
         if (link.KeepsMessages)
         {
             link.Discarded += what => report(InstrumentEventKind.Discarded, what);
@@ -58,7 +51,9 @@ internal sealed class ScpiWire : IDisposable
         _outlet = new Outlet(link, _trust, options.Habits);
         _deadline = new Deadline(time);
         _resynchronisation = new Resynchronisation(link, _replies, _deadline, options, time);
-        _extend = Extend;
+        _exchanges = new Exchanges(link, _outlet, _replies, _deadline, _trust, options);
+        _probing = new Probing(_exchanges, link, _outlet, _replies, _deadline, _trust, options.Habits, time);
+        _errors = new ErrorQueue(_exchanges, _down, _trust, options.Habits, link.Name);
     }
 
     /// <summary>Why the wire is of no use any more; null while it is.</summary>
@@ -73,7 +68,7 @@ internal sealed class ScpiWire : IDisposable
     /// <exception cref="LinkException">The link is lost; the wire is broken.</exception>
     public void Send(string command)
     {
-        _errorsUnread = true;
+        _errors.Sending();
         _outlet.Tell(command);
     }
 
@@ -83,7 +78,7 @@ internal sealed class ScpiWire : IDisposable
     {
         if (_link.KeepsMessages)
         {
-            _settingDown.Enqueue(command);
+            _down.Add(command);
         }
 
         Send(command);
@@ -101,7 +96,7 @@ internal sealed class ScpiWire : IDisposable
     public async ValueTask<T> Ask<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         await Ready(cancel);
-        return await Exchange(query, parse, cancel);
+        return await _exchanges.Line(query, parse, cancel);
     }
 
     /// <summary>Asks one question with a number that its reply must bring back.</summary>
@@ -110,7 +105,7 @@ internal sealed class ScpiWire : IDisposable
         string query, ReplyParser<T> parse, CancellationToken cancel)
     {
         await Ready(cancel);
-        var answer = await Exchange(_numbered.Next(query), reply => _numbered.Parse(reply, parse), cancel);
+        var answer = await _exchanges.Line(_numbered.Next(query), reply => _numbered.Parse(reply, parse), cancel);
         return (answer, _numbered.SwitchedOn);
     }
 
@@ -119,37 +114,7 @@ internal sealed class ScpiWire : IDisposable
     public async ValueTask<T> AskBlock<T>(string query, int bound, ReplyParser<T> parse, CancellationToken cancel)
     {
         await Ready(cancel);
-        _trust.Note(query);
-        var token = _deadline.Start(_options.ReplyWithin, cancel);
-        try
-        {
-            await PutAndPass(query, token);
-            await _replies.ReadBlock(bound, _extend, token);
-            var value = parse(_replies.Blocks.Block(0));
-            Finish(query);
-            return value;
-        }
-        catch (Exception e)
-        {
-            // With its link lost nothing more comes; inside a block on a stream no end could be told from data: either
-            // way only a new connection helps, and what is missing says more than how the link ended.
-            if (e is LinkException
-                || (!_link.KeepsMessages && _replies.Blocks.Announced is not null && !_replies.Blocks.IsWhole))
-            {
-                _trust.Break(new LinkException(
-                    _link.Name, $"reply to '{query}' is {_replies.Blocks.Missing().Message}", e));
-            }
-
-            var echo = e is ReplyException && _replies.Blocks.Head.StartsWith(_outlet.Question);
-            var why = echo ? new ReplyException(ReplyFault.Echo, query) : e;
-            ExceptionDispatchInfo.Throw(_trust.Failure(why, query, cancel));
-            throw;
-        }
-        finally
-        {
-            _deadline.End();
-            _replies.Blocks.Dispose();
-        }
+        return await _exchanges.Block(query, bound, parse, cancel);
     }
 
     /// <summary>Asks a question that the instrument may not know, and the error queue right behind it, so that a
@@ -158,39 +123,7 @@ internal sealed class ScpiWire : IDisposable
     public async ValueTask<(string? Answer, ErrorEntry Error)> Probe(string query, CancellationToken cancel)
     {
         await Ready(cancel);
-        _trust.Note(query);
-        var token = _deadline.Start(_options.ReplyWithin, cancel);
-        try
-        {
-            (string? Answer, ErrorEntry Error) both;
-            if (Habits.ErrorQuery is { } errors)
-            {
-                both = _link.KeepsMessages
-                    ? await AskInTurn(query, errors, token) : await AskBoth(query, errors, token);
-            }
-            else
-            {
-                await PutAndPass(query, token);
-                both = (Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span), NoEntry);
-            }
-
-            Finish(query);
-            return both;
-        }
-        catch (OperationCanceledException) when (Habits.ErrorQuery is null && !cancel.IsCancellationRequested)
-        {
-            // Without an error queue an instrument refuses by silence. The doubt stands: its answer may only be late.
-            return (null, NoEntry);
-        }
-        catch (Exception e)
-        {
-            ExceptionDispatchInfo.Throw(_trust.Failure(e, query, cancel));
-            throw;
-        }
-        finally
-        {
-            _deadline.End();
-        }
+        return await _probing.Ask(query, cancel);
     }
 
     /// <summary>Reads the error queue until it is empty.</summary>
@@ -202,17 +135,7 @@ internal sealed class ScpiWire : IDisposable
             await Resynchronise(cancel);
         }
 
-        // Taken back first: a command that another thread sends meanwhile sets it again.
-        _errorsUnread = false;
-        try
-        {
-            return Habits.ErrorQuery is { } query ? await EmptyQueue(query, cancel) : await Complete(cancel);
-        }
-        catch
-        {
-            _errorsUnread = true;
-            throw;
-        }
+        return await _errors.ReadEmpty(cancel);
     }
 
     /// <summary>Makes sure that the next reply belongs to the next question, and that the error queue holds nothing
@@ -234,7 +157,7 @@ internal sealed class ScpiWire : IDisposable
             _trust.Doubt("something came that nothing had asked for");
         }
 
-        if (_trust.WhyNot is not null || _errorsUnread)
+        if (_trust.WhyNot is not null || _errors.IsUnread)
         {
             foreach (var entry in await ReadErrors(cancel))
             {
@@ -251,68 +174,6 @@ internal sealed class ScpiWire : IDisposable
     {
         _link.Dispose();
         _deadline.Dispose();
-    }
-
-    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    private async ValueTask<T> Exchange<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
-    {
-        _trust.Note(query);
-        var token = _deadline.Start(_options.ReplyWithin, cancel);
-        try
-        {
-            await PutAndPass(query, token);
-            var value = parse(_outlet.Reply(await _replies.ReadLine(token)));
-            Finish(query);
-            return value;
-        }
-        catch (Exception e)
-        {
-            ExceptionDispatchInfo.Throw(_trust.Failure(e, query, cancel));
-            throw;
-        }
-        finally
-        {
-            _deadline.End();
-        }
-    }
-
-    /// <summary>Waits until a reply comes or the error queue holds why none does.</summary>
-    private async ValueTask<bool> IsAnswered(CancellationToken cancel)
-    {
-        const byte ErrorQueue = 1 << 2;
-        const byte MessageAvailable = 1 << 4;
-        while (!_link.HasInput)
-        {
-            var status = await _link.ReadStatus(cancel);
-            if ((status & (ErrorQueue | MessageAvailable)) == ErrorQueue && !_link.HasInput)
-            {
-                return false;
-            }
-
-            await Task.Delay(ProbePause, _time, cancel);
-        }
-
-        return true;
-    }
-
-    private async ValueTask<IReadOnlyList<ErrorEntry>> EmptyQueue(string query, CancellationToken cancel)
-    {
-        var confirmed = _settingDown.Count;
-        List<ErrorEntry>? entries = null;
-        for (var n = 0; n < MostErrors; n++)
-        {
-            var entry = await Exchange(query, ErrorEntry.Parse, cancel);
-            if (entry.IsNone)
-            {
-                Confirm(confirmed);
-                return entries ?? (IReadOnlyList<ErrorEntry>)[];
-            }
-
-            (entries ??= []).Add(entry);
-        }
-
-        throw _trust.Break(new LinkException(
-            _link.Name, $"the error queue is not empty after {MostErrors} entries, last {entries![^1]}"));
     }
 
     private async ValueTask Resynchronise(CancellationToken cancel)
@@ -356,7 +217,7 @@ internal sealed class ScpiWire : IDisposable
             _replies.Drop();
             await _link.Clear(token);
             _trust.Restore();
-            foreach (var command in _settingDown.ToArray())
+            foreach (var command in _down.ToArray())
             {
                 Send(command);
             }
@@ -366,10 +227,6 @@ internal sealed class ScpiWire : IDisposable
             _deadline.End();
         }
     }
-
-    /// <summary>Sends a question and reads what the instrument echoes before its reply.</summary>
-    private ValueTask PutAndPass(string query, CancellationToken token) =>
-        _outlet.Pass(_outlet.Ask(query), _replies, token);
 
     /// <summary>Reads the echoes of commands that were sent since the last question; where they do not come, the link is
     /// in doubt.</summary>
@@ -393,78 +250,6 @@ internal sealed class ScpiWire : IDisposable
         finally
         {
             _deadline.End();
-        }
-    }
-
-    /// <summary>A question that the instrument may not know, the error queue right behind it.</summary>
-    private async ValueTask<(string? Answer, ErrorEntry Error)> AskBoth(
-        string query, string errors, CancellationToken token)
-    {
-        await PutAndPass(query, token);
-        var echoes = _outlet.Ask(errors);
-        var line = await _replies.ReadLine(token);
-        if (echoes > 0 && Ascii.Equals(line.Span, errors))
-        {
-            // The question was refused: what came is the echo of the second one.
-            _outlet.ForgetEchoes();
-            return (null, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
-        }
-
-        if (ErrorEntry.IsOne(line.Span))
-        {
-            return (null, ErrorEntry.Parse(line.Span));
-        }
-
-        var answer = Encoding.UTF8.GetString(line.Span);
-        await _outlet.Pass(echoes, _replies, token);
-        return (answer, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
-    }
-
-    /// <summary>The same where a second question would make the reply to the first one void; the status byte says what
-    /// became of it.</summary>
-    private async ValueTask<(string? Answer, ErrorEntry Error)> AskInTurn(
-        string query, string errors, CancellationToken token)
-    {
-        _outlet.Ask(query);
-        var answer = await IsAnswered(token)
-            ? Encoding.UTF8.GetString((await _replies.ReadLine(token)).Span) : null;
-        _outlet.Ask(errors);
-        return (answer, ErrorEntry.Parse((await _replies.ReadLine(token)).Span));
-    }
-
-    /// <summary>Takes note that what set down was obeyed.</summary>
-    private void Confirm(int count)
-    {
-        while (count-- > 0)
-        {
-            _settingDown.TryDequeue(out _);
-        }
-    }
-
-    /// <summary>Where there is no error queue: waits until what was sent has been done, if the instrument can say
-    /// so.</summary>
-    private async ValueTask<IReadOnlyList<ErrorEntry>> Complete(CancellationToken cancel)
-    {
-        if (Habits.HasOperationComplete)
-        {
-            var confirmed = _settingDown.Count;
-            await Exchange("*OPC?", ReplyInteger.Parse, cancel);
-            Confirm(confirmed);
-        }
-
-        return [];
-    }
-
-    private void Extend(int length) =>
-        _deadline.Extend(_options.ReplyWithin + TimeSpan.FromSeconds(length / _options.BlockRate));
-
-    /// <summary>Takes the doubt back, unless more came than was asked for.</summary>
-    private void Finish(string query)
-    {
-        _trust.Restore();
-        if (_replies.HoldsReply)
-        {
-            _trust.Doubt($"more than one reply to '{query}'");
         }
     }
 
