@@ -141,8 +141,13 @@ internal sealed class StreamSocket : IDisposable
     [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
     private async ValueTask<int> ReceiveLater(Memory<byte> buffer, CancellationToken cancel)
     {
-        await _lookout.Wait(cancel);
-        cancel.ThrowIfCancellationRequested();
+        do
+        {
+            await _lookout.Wait(cancel);
+            cancel.ThrowIfCancellationRequested();
+        }
+        // What was seen may have been seen for a wait that was given up, and been read since: reading now would block.
+        while (!_socket.Poll(TimeSpan.Zero, SelectMode.SelectRead));
         return _socket.Receive(buffer.Span);
     }
 }
