@@ -7,6 +7,7 @@ internal sealed class LateOpening<T>(Func<CancellationToken, Task<T>> open) : IA
     private readonly Lock _gate = new();
     private readonly CancellationTokenSource _end = new();
     private Task<T>? _opening;
+    private bool _isOver;
 
     public bool IsOpen => _opening is { IsCompletedSuccessfully: true };
 
@@ -27,6 +28,16 @@ internal sealed class LateOpening<T>(Func<CancellationToken, Task<T>> open) : IA
     /// <summary>Gives up an opening that is under way: a link that came after its owner had gone would be nobody's.</summary>
     public async ValueTask DisposeAsync()
     {
+        lock (_gate)
+        {
+            if (_isOver)
+            {
+                return;
+            }
+
+            _isOver = true;
+        }
+
         _end.Cancel();
         if (_opening is { } opening)
         {
