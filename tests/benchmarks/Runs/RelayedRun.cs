@@ -7,15 +7,19 @@ namespace BenchRunner.Benchmarks;
 /// instrument.</summary>
 internal sealed class RelayedRun : IDisposable
 {
+    // The bounds of the shipped fake benches.
+    private const string Patient = "safety: { reply-within: 1500 ms, guardian-silence: 2 s }";
+
     private readonly DirectoryInfo _folder = Directory.CreateTempSubdirectory("benchrunner-benchmark-");
     private readonly Dictionary<string, Relay> _relays = [];
 
     /// <summary>Starts both; the run goes on by itself.</summary>
     /// <param name="seed">Seed of the fake bench.</param>
     /// <param name="said">Takes what the bench says after it is ready; from a thread of its own.</param>
+    /// <param name="isPatient">Whether a loaded machine must not trip the run, since it is not safety that is timed.</param>
     /// <param name="heard">Takes what passes a relay: role, whether the instrument said it, the bytes; from a thread of
     /// each link.</param>
-    public RelayedRun(int seed, Action<string> said, Action<string, bool, byte[]>? heard = null)
+    public RelayedRun(int seed, Action<string> said, bool isPatient = false, Action<string, bool, byte[]>? heard = null)
     {
         string written = Path.Combine(_folder.FullName, "written.yaml");
         Bench = Start(
@@ -25,7 +29,8 @@ internal sealed class RelayedRun : IDisposable
         Until(Bench, line => line == "ready");
         Follow(Bench, said);
         string file = Path.Combine(_folder.FullName, "bench.yaml");
-        File.WriteAllLines(file, File.ReadLines(written).Select(line => Relayed(line, heard)));
+        IEnumerable<string> lines = File.ReadLines(written).Select(line => Relayed(line, heard));
+        File.WriteAllLines(file, isPatient ? lines.Append(Patient) : lines);
         Run = Start(
             Path.Combine(Built("BenchRunner"), "benchrunner"),
             "run", "sequences/winch-drive-incoming.yaml", "--device", "W1200-0001", "--bench", file, "--operator", "op",

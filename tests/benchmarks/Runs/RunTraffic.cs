@@ -21,7 +21,7 @@ internal static class RunTraffic
     {
         List<Said> said = [];
         var gate = new Lock();
-        using (var run = new RelayedRun(seed, _ => { }, (role, isAnswer, bytes) =>
+        using (var run = new RelayedRun(seed, _ => { }, isPatient: true, (role, isAnswer, bytes) =>
         {
             double now = Stopwatch.GetTimestamp() / (double)Stopwatch.Frequency;
             lock (gate)
