@@ -78,6 +78,12 @@ public sealed class ScpiScope : IScope, IDisposable
             await CheckSettings(cancel);
         }
 
+        if (stands.Count == 0)
+        {
+            // A run that was killed may have left it armed: no acquisition but our own is to be triggered by our trains.
+            await Abort(cancel);
+        }
+
         (_settings, _standing) = (null, []);
         _standingSince = _instrument.Session.Connections;
         foreach (var setting in missing)

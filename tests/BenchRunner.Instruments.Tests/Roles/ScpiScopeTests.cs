@@ -106,10 +106,20 @@ public sealed class ScpiScopeTests : IAsyncLifetime
     {
         await _scope.Configure(Settings, _cancel);
         await _scope.Arm(_cancel);
+        int before = _instrument.Count("ABORt");
         var wait = _scope.WaitForRecord(TimeSpan.FromMilliseconds(50), _cancel);
         await _clock.PassUntil(TimeSpan.FromMilliseconds(5), () => wait.IsCompleted);
 
         Assert.Equal(AcquisitionEnd.NotTriggered, await wait);
+        Assert.Equal(before + 1, _instrument.Count("ABORt"));
+    }
+
+    [Fact]
+    public async Task What_another_run_left_armed_is_aborted_once_before_the_first_setting()
+    {
+        await _scope.Configure(Settings, _cancel);
+        await _scope.Configure(Settings, _cancel);
+
         Assert.Equal(1, _instrument.Count("ABORt"));
     }
 
