@@ -40,6 +40,9 @@ public sealed class GuardianCore(
     /// throw.</summary>
     public event Action<string>? Acting;
 
+    /// <summary>What is done once the bus is proved down, before it is watched on. Must not throw.</summary>
+    public Func<Task>? AfterProof { get; init; }
+
     private TimeSpan Now => time.GetElapsedTime(_start);
 
     /// <summary>Listens until the runner's work is done, or until its own is.</summary>
@@ -162,7 +165,13 @@ public sealed class GuardianCore(
                     Severity.Information, "guardian-proved",
                     $"the guardian proved the bus at {report.Voltage:0.0} V, "
                         + $"{time.GetElapsedTime(began).TotalSeconds:0.00} s after it acted");
-                return GuardianEnding.ProvedDown;
+                if (await StaysDown())
+                {
+                    return GuardianEnding.ProvedDown;
+                }
+
+                began = time.GetTimestamp();
+                continue;
             }
 
             if (time.GetElapsedTime(began) >= options.TryFor)
@@ -176,5 +185,16 @@ public sealed class GuardianCore(
 
             await Task.Delay(TryAgainAfter, time);
         }
+    }
+
+    /// <summary>The bleeder stays; the off bias stays too, for what a guardian holds cannot take it away.</summary>
+    private async Task<bool> StaysDown()
+    {
+        if (AfterProof is { } afterProof)
+        {
+            await afterProof();
+        }
+
+        return await safeState.StaysDown(options.WatchAfterProof);
     }
 }

@@ -10,6 +10,7 @@ namespace BenchRunner.Safety.Guardians;
 public sealed record GuardianOptions(TimeSpan Silence, TimeSpan MakingSafeWithin, TimeSpan TryFor)
 {
     private static readonly TimeSpan _usualTrying = TimeSpan.FromSeconds(30);
+    private static readonly TimeSpan _usualWatching = TimeSpan.FromSeconds(2);
 
     /// <summary>How long after silence began to count what has come already is still looked for: a guardian that the machine
     /// itself held up must not take its own delay for the runner's.</summary>
@@ -18,6 +19,10 @@ public sealed record GuardianOptions(TimeSpan Silence, TimeSpan MakingSafeWithin
     /// <summary>Voltage below which the bank is down, V: a runner whose beats say that it was proved down may take its time
     /// over its evidence. 0: a runner never may.</summary>
     public double DownBelow { get; init; }
+
+    /// <summary>How long it watches a bus on that it has proved down: what rises again alarms and is brought down
+    /// again.</summary>
+    public TimeSpan WatchAfterProof { get; init; }
 
     /// <summary>The bounds of a bench. Making safe may take twice the discharge that its envelope plans, and what the bench
     /// file allows on top of that.</summary>
@@ -32,6 +37,7 @@ public sealed record GuardianOptions(TimeSpan Silence, TimeSpan MakingSafeWithin
             _usualTrying)
         {
             DownBelow = down,
+            WatchAfterProof = _usualWatching,
         };
     }
 }

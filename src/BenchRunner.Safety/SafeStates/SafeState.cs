@@ -12,6 +12,8 @@ namespace BenchRunner.Safety.SafeStates;
 public sealed class SafeState(SafeableRoles roles, BusWitness witness, EventSource events, TimeProvider time)
 {
     private static readonly TimeSpan AnswersWithin = TimeSpan.FromSeconds(3);
+    private static readonly TimeSpan LookEvery = TimeSpan.FromMilliseconds(100);
+    private readonly UnprovedWords _unproved = new(witness, events, time);
 
     /// <summary>Told each time the proof looks at the bus, also where an instrument is silent.</summary>
     public Action? Round { get; init; }
@@ -22,7 +24,11 @@ public sealed class SafeState(SafeableRoles roles, BusWitness witness, EventSour
     /// <summary>Reaches the safe state, or says why it is not proved.</summary>
     public async Task<SafeStateReport> Reach()
     {
-        events.Say(Severity.Information, "safe-state", "bringing the bench to the safe state");
+        if (!_unproved.Stands)
+        {
+            events.Say(Severity.Information, "safe-state", "bringing the bench to the safe state");
+        }
+
         Task<string?>[] told =
         [
             Try("supply", roles.Supply.MakeSafe),
@@ -43,8 +49,38 @@ public sealed class SafeState(SafeableRoles roles, BusWitness witness, EventSour
         }
 
         SafeStateReport report = proof with { Doubts = doubts };
-        Say(report);
+        if (report.Proved)
+        {
+            SayDown(report);
+        }
+        else
+        {
+            _unproved.Say(report, known: doubts.Skip(proof.Doubts.Count));
+        }
+
         return report;
+    }
+
+    /// <summary>Watches a bus that was proved down; alarms where it rises again.</summary>
+    /// <param name="span">How long.</param>
+    /// <returns>False: it rose, and counts as energised.</returns>
+    public async Task<bool> StaysDown(TimeSpan span)
+    {
+        long began = time.GetTimestamp();
+        while (time.GetElapsedTime(began) < span)
+        {
+            await Task.Delay(LookEvery, time);
+            if (await Look() is { } volts && volts >= witness.DownBelow)
+            {
+                events.Say(
+                    Severity.Alarm, "bus-risen",
+                    $"ALARM: the bus rose to {witness.Discharge.Words(volts)} after it was proved down. WAIT; DO NOT "
+                        + "OPEN the enclosure.");
+                return false;
+            }
+        }
+
+        return true;
     }
 
     private static void Add(List<string> doubts, string? doubt)
@@ -55,32 +91,37 @@ public sealed class SafeState(SafeableRoles roles, BusWitness witness, EventSour
         }
     }
 
-    private void Say(SafeStateReport report)
+    private void SayDown(SafeStateReport report)
     {
         foreach (string doubt in report.Doubts)
         {
             events.Say(Severity.Error, "safe-state-doubt", doubt);
         }
 
-        if (report.Proved)
-        {
-            witness.ProvedDown();
-            events.Say(
-                Severity.Information,
-                "bus-down",
-                $"bus measured at {witness.Discharge.Words(report.Voltage!.Value)} at {report.At:HH:mm:ss} UTC, below "
-                    + witness.DownWords);
-            return;
-        }
-
-        string last = report.Voltage is { } volts
-            ? $"last reading {witness.Discharge.Words(volts)}" : "no reading";
+        _unproved.End();
+        witness.ProvedDown();
         events.Say(
-            Severity.Alarm,
-            "bus-not-proved-down",
-            $"THE BUS IS NOT PROVED DOWN ({last}; {witness.AtMost}). Treat it as charged. WAIT. DO NOT OPEN the "
-                + "enclosure. Have a licensed person isolate the supply and discharge the bank with a discharge stick, "
-                + "by your lab's own procedure; its rules and the codes of your place come first.");
+            Severity.Information,
+            "bus-down",
+            $"bus measured at {witness.Discharge.Words(report.Voltage!.Value)} at {report.At:HH:mm:ss} UTC, below "
+                + witness.DownWords);
+    }
+
+    private async Task<double?> Look()
+    {
+        try
+        {
+            using var patience = new CancellationTokenSource(AnswersWithin, time);
+            long asked = time.GetTimestamp();
+            double volts = Math.Abs((await roles.Voltmeter.Read(patience.Token)).Value);
+            _ = witness.Saw(volts, asked);
+            return volts;
+        }
+        catch (Exception)
+        {
+            // It was proved down; that nothing more is seen of it is no rise.
+            return null;
+        }
     }
 
     private async Task<string?> Try(string role, Func<CancellationToken, Task> makeSafe)

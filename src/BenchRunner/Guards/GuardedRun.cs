@@ -57,11 +57,20 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
     {
         var discharge = new Discharge(bench.Bleeder, bench.BusCapacitance);
         var witness = new BusWitness(discharge, bench.Safety, _time);
+        var mark = new LatchMark(bench, events, _time);
         var core = new GuardianCore(
             guarded.Own,
             new SafeState(guarded.Roles, witness, events, _time),
-            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), GuardianOptions.Of(bench), events, _time);
-        var mark = new LatchMark(bench, events, _time);
+            witness, _pipe, held ?? (IRunnerKiller)new NoRunner(), GuardianOptions.Of(bench), events, _time)
+        {
+            AfterProof = async () =>
+            {
+                if (await mark.Stands())
+                {
+                    await TakeOffWatchdog(guarded, events);
+                }
+            },
+        };
         core.Acting += reason =>
         {
             if (witness.MayBeEnergised)
@@ -72,13 +81,7 @@ internal sealed class GuardedRun(string benchFile, string? logFile, int? runner)
         switch (await core.Run())
         {
             case GuardianEnding.NotNeeded:
-                return ExitCode.Done;
             case GuardianEnding.ProvedDown:
-                if (await mark.Stands())
-                {
-                    await TakeOffWatchdog(guarded, events);
-                }
-
                 return ExitCode.Done;
             default:
                 await mark.Stands();
