@@ -29,34 +29,55 @@ internal static class Program
             return Fuzzed(options);
         }
 
-        List<Failure> failures = [];
         string parent = Directory.CreateTempSubdirectory("soak-").FullName;
         try
         {
-            int next = 0;
-            Parallel.For(0, Math.Min(Lanes, options.Mixes), _ =>
-            {
-                var trains = new TrainCache(KeptTrains);
-                while (Interlocked.Increment(ref next) is var number && number <= options.Mixes)
-                {
-                    Judged judged = Trial.Run(Choose(options, (ulong)number - 1), trains, parent);
-                    lock (failures)
-                    {
-                        Tell(judged, options, failures);
-                    }
-                }
-            });
+            // Whatever the program makes of temporary files, it makes there.
+            Environment.SetEnvironmentVariable("TMPDIR", parent);
+            return Conclude(options, Mixed(options, parent), Console.Out);
         }
         finally
         {
             Directory.Delete(parent, recursive: true);
         }
+    }
 
-        failures.Sort((one, other) => one.Seed.CompareTo(other.Seed));
-        Console.Out.WriteLine(options.Json
-            ? JsonSerializer.Serialize(new { mixes = options.Mixes, failures }, _form)
-            : $"{options.Mixes} mixes, {failures.Count} failures");
-        return failures.Count == 0 ? 0 : 1;
+    /// <summary>Prints the result.</summary>
+    /// <returns>The exit code: 0 only without failures.</returns>
+    internal static int Conclude(Options options, IEnumerable<Failure> failures, TextWriter output)
+    {
+        Failure[] sorted = [.. failures.OrderBy(failure => failure.Seed)];
+        output.WriteLine(options.Json
+            ? JsonSerializer.Serialize(new { mixes = options.Mixes, failures = sorted }, _form)
+            : $"{options.Mixes} mixes, {sorted.Length} failures");
+        return sorted.Length == 0 ? 0 : 1;
+    }
+
+    private static List<Failure> Mixed(Options options, string parent)
+    {
+        List<Failure> failures = [];
+        Tell(Trial.Run(Choose(options, 0), new TrainCache(KeptTrains), parent), options, failures);
+        var leaks = new Leaks(parent);
+        int next = 1;
+        Parallel.For(0, Math.Min(Lanes, options.Mixes), _ =>
+        {
+            var trains = new TrainCache(KeptTrains);
+            while (Interlocked.Increment(ref next) is var number && number <= options.Mixes)
+            {
+                Judged judged = Trial.Run(Choose(options, (ulong)number - 1), trains, parent);
+                lock (failures)
+                {
+                    Tell(judged, options, failures);
+                }
+            }
+        });
+        foreach (string what in leaks.Found())
+        {
+            (options.Json ? Console.Error : Console.Out).WriteLine($"all mixes: {what}");
+            failures.Add(new Failure(options.Seed, $"all mixes: {what}"));
+        }
+
+        return failures;
     }
 
     private static int Fuzzed(Options options)

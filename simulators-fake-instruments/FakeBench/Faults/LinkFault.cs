@@ -64,6 +64,18 @@ public static class LinkFault
     /// <summary>The name of a fault of one role's link.</summary>
     public static string Of(string role, string name) => $"{role}/{name}";
 
+    /// <summary>Why a link cannot have a fault; null: it can.</summary>
+    /// <param name="name">The fault.</param>
+    /// <param name="link"><c>tcp</c>, <c>hislip</c> or <c>serial</c>.</param>
+    public static string? Misfit(string name, string link) => (name, link) switch
+    {
+        (Drops, "serial") => "a serial line has no connection that could be reset; try half-open or reply-lost, or serve "
+            + "the interlock with --interlock tcp",
+        (WrongEnd, "hislip") => "a HiSLIP reply ends with its message and not with a character; serve it with --links tcp",
+        (Echo, "hislip") => "HiSLIP has no terminal that could echo; serve it with --links tcp",
+        _ => null,
+    };
+
     /// <summary>What becomes of a reply on its way.</summary>
     /// <param name="role">Whose it is.</param>
     /// <param name="message">What it answers.</param>

@@ -39,6 +39,14 @@ public static class Arguments
             }
         }
 
+        foreach (Fault fault in faults)
+        {
+            if (fault.Name.Split('/') is [{ } role, { } name] && LinkFault.Misfit(name, options.LinkOf(role)) is { } why)
+            {
+                throw new FormatException($"--fault {fault.Name}: {why}");
+            }
+        }
+
         return options with { Faults = faults };
     }
 

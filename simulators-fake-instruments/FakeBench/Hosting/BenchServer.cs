@@ -30,9 +30,9 @@ public sealed class BenchServer : IAsyncDisposable
                 continue;
             }
 
-            _hosts.Add((panel.Role, panel == _panels.Interlock && options.SerialInterlock
-                ? new SerialHost(panel)
-                : options.Hislip
+            _hosts.Add((panel.Role, options.LinkOf(panel.Role) == "serial"
+                ? new SerialHost(panel, time)
+                : options.LinkOf(panel.Role) == "hislip"
                     ? new HislipHost(panel, new ServerTerms { MostClients = clients }, time)
                     : new TcpHost(panel, clients, time)));
         }

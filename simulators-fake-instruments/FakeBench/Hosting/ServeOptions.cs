@@ -66,6 +66,10 @@ public sealed record ServeOptions
     /// ignores a terminal's interrupts.</summary>
     public bool EndsWithInput { get; init; }
 
+    /// <summary>What a role is served over: <c>tcp</c>, <c>hislip</c> or <c>serial</c>.</summary>
+    public string LinkOf(string role) =>
+        role == "interlock" && SerialInterlock ? "serial" : Hislip ? "hislip" : "tcp";
+
     /// <summary>What the bench is made of.</summary>
     public BenchSetup Setup => new(new BenchValues(Pace), Device)
     {

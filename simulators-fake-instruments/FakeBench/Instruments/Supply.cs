@@ -90,8 +90,17 @@ public sealed class Supply : Instrument
         Bench.Supply.Protection = Protection.Default;
     }
 
-    private double Clipped(double volts) =>
-        Bench.Faults.Has(FaultCatalogue.SupplyClips) ? Math.Min(volts, FaultCatalogue.ClipLevel) : volts;
+    private double Clipped(double volts)
+    {
+        if (volts <= FaultCatalogue.ClipLevel || !Bench.Faults.Has(FaultCatalogue.SupplyClips))
+        {
+            return volts;
+        }
+
+        // Only for who asks afterwards whether anything was clipped.
+        _ = Bench.Faults.Take(FaultCatalogue.SupplyClips);
+        return FaultCatalogue.ClipLevel;
+    }
 
     private void SwitchOutput(bool on)
     {

@@ -83,11 +83,12 @@ public sealed class DeviceRun(
         _measured = true;
 
         // A device that its last train killed is found while the supply still feeds the bank: afterwards an empty bank and
-        // an open lead look alike.
+        // an open lead look alike. So it is after the last proving train.
         await work.Bus.WaitFor(_charged, stop);
         await Down(stop);
         await work.Bus.WaitBelow(ProvingTrain.BusVoltage, stop);
         await proving.Take(UncountedPoints.ProvingAfter, stop);
+        await work.Bus.WaitFor(ProvingTrain.BusVoltage, stop);
     }
 
     private async Task Down(CancellationToken stop)

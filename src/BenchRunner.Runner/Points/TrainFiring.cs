@@ -101,7 +101,14 @@ public sealed class TrainFiring(OpenBench bench, SafetySupervisor supervisor, Ev
             AcquisitionEnd end = await bench.Scope.WaitForRecord(RecordWithin, cancel);
             if (end == AcquisitionEnd.Complete)
             {
-                return (await bench.Scope.Read(cancel), end);
+                ScopeRecord record = await bench.Scope.Read(cancel);
+                if (record.Traces.Count == 0)
+                {
+                    events.Say(
+                        Severity.Warning, "record-lost", "no trace of the scope's record can be used; the train is lost");
+                }
+
+                return (record, end);
             }
 
             string what = end == AcquisitionEnd.NotTriggered ? "trigger" : "come to the end of its acquisition";

@@ -36,10 +36,12 @@ internal sealed class Client(Stream stream, IDisposable? owner = null) : IAsyncD
         return await Line();
     }
 
-    public async Task<string> Line()
+    public Task<string> Line() => Until('\n');
+
+    public async Task<string> Until(char end)
     {
         var line = new StringBuilder();
-        while (await Byte() is var next && next != '\n')
+        while (await Byte() is var next && next != end)
         {
             line.Append((char)next);
         }

@@ -21,6 +21,15 @@ namespace BenchRunner.Soak.Mixes;
 internal sealed record Facts(
     Mix Mix, MemoryBench Bench, Recorder Recorder, RunSummary? Summary, Exception? Thrown, bool Interrupted, string Folder)
 {
+    /// <summary>What the bank has at the end, V.</summary>
+    public double BankVoltage { get; init; } = Bench.BankVoltage;
+
+    /// <summary>Trains that were fired.</summary>
+    public long Fires { get; init; } = Bench.Fires;
+
+    /// <summary>Roles whose links nobody has closed.</summary>
+    public IReadOnlyList<string> OpenLinks { get; init; } = [.. Bench.Open];
+
     /// <summary>Whether the guardian ended the run.</summary>
     public bool RunWasEnded { get; init; }
 

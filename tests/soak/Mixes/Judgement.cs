@@ -11,6 +11,8 @@ internal static class Judgement
 {
     private const double BusDown = 60;
     private static readonly int[] _documented = [0, 1, 2, 3, 4, 5, 6, 130];
+    /// <summary>A train with one of these has no record, and that was said.</summary>
+    private static readonly string[] _unrecorded = ["trigger-missed", "acquisition-unfinished", "record-lost"];
     private static readonly string[] _files =
         ["bench.latch", "bench.lock", "bench.lock-holder", "bench.yaml", "evidence.db", "evidence.db-writer", "sequence.yaml"];
 
@@ -60,7 +62,7 @@ internal static class Judgement
 
     private static IEnumerable<string> Bus(Facts facts)
     {
-        double volts = facts.Bench.BankVoltage;
+        double volts = facts.BankVoltage;
         bool isLoud = facts.Recorder.Events.Exists(
             happened => happened is { Kind: "bus-not-proved-down", Severity: Severity.Alarm });
         if (volts >= BusDown && !(isLoud && facts.ExitCode == 4))
@@ -141,6 +143,22 @@ internal static class Judgement
             yield return $"{bare} captures were never judged";
         }
 
+        int Said(string[] kinds) => facts.Recorder.Events.Count(happened => kinds.Contains(happened.Kind));
+        long stored = Count("select count(*) from captures where operating_point <> 'zero'");
+        if (Said(["capture-valid"]) is var valid && Count("select count(*) from captures where valid") is var kept
+            && valid != kept)
+        {
+            yield return $"{valid} captures were called valid, {kept} stand so in the evidence";
+        }
+
+        // A run that was broken off may have lost the train that was under way.
+        if (facts.Report is { Ending: BenchEnding.Proved, Decision.Outcome: Outcome.Accepted }
+            && stored + Said(_unrecorded) != facts.Fires)
+        {
+            yield return $"{facts.Fires} trains were fired, {stored} captures are stored and {Said(_unrecorded)} were "
+                + "said to be lost";
+        }
+
         if (Count("select count(*) from seal") < facts.Recorder.Reports.Count)
         {
             yield return "a run has no seal";
@@ -149,7 +167,7 @@ internal static class Judgement
 
     private static IEnumerable<string> Left(Facts facts)
     {
-        foreach (string role in facts.Bench.Open)
+        foreach (string role in facts.OpenLinks)
         {
             yield return $"a link to {role} was left open";
         }

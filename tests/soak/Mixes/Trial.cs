@@ -14,20 +14,23 @@ internal sealed class Trial
     private static readonly TimeSpan _within = TimeSpan.FromMinutes(10);
 
     private readonly Mix _mix;
+    private readonly Func<Facts, IEnumerable<string>> _judge;
 
-    private Trial(Mix mix) => _mix = mix;
+    private Trial(Mix mix, Func<Facts, IEnumerable<string>> judge) => (_mix, _judge) = (mix, judge);
 
     /// <summary>Runs a mix and judges it.</summary>
     /// <param name="mix">The mix.</param>
     /// <param name="trains">Where trains are computed; may be shared by trials that follow each other.</param>
-    /// <param name="parent">Folder in which the trial's own one is made, and left only where that fails.</param>
-    public static Judged Run(Mix mix, TrainCache trains, string parent)
+    /// <param name="parent">Folder in which the trial's own one is made and deleted.</param>
+    /// <param name="judge">Says what is wrong, while the folder is there; null: <see cref="Judgement.Of"/>.</param>
+    public static Judged Run(
+        Mix mix, TrainCache trains, string parent, Func<Facts, IEnumerable<string>>? judge = null)
     {
         string folder = Directory.CreateDirectory(
             Path.Combine(parent, FormattableString.Invariant($"mix-{mix.Seed}"))).FullName;
         try
         {
-            return new Trial(mix).Run(trains, folder);
+            return new Trial(mix, judge ?? Judgement.Of).Run(trains, folder);
         }
         finally
         {
@@ -98,7 +101,7 @@ internal sealed class Trial
         {
             RunWasEnded = guardian is { HasEndedRun: true },
         };
-        recorder.Note($"bank at {bench.BankVoltage:0.000} V, exit code {facts.ExitCode}, {ended?.Message}");
-        return new Judged(_mix, recorder.Lines, string.Join("; ", Judgement.Of(facts)));
+        recorder.Note($"bank at {facts.BankVoltage:0.000} V, exit code {facts.ExitCode}, {ended?.Message}");
+        return new Judged(_mix, recorder.Lines, string.Join("; ", _judge(facts)));
     }
 }

@@ -16,11 +16,12 @@ internal sealed class MemoryBench
     private readonly Func<TimeSpan> _latency;
     private readonly FrontPanels _panels;
     private readonly List<(string Role, MemoryLink Link, bool IsRunners)> _links = [];
-    private readonly Dictionary<string, (long Fires, long Measured, double Volts)> _begun = [];
+    private readonly Dictionary<string, Beginning> _begun = [];
     private readonly IReadOnlyList<Fault> _faults;
     private bool _isRunnerGone;
-    private long _fires;
+    private long _counted;
     private long _measured;
+    private double _volts;
 
     /// <summary>Makes a bench with a device in its socket.</summary>
     /// <param name="setup">What it is made of.</param>
@@ -43,16 +44,22 @@ internal sealed class MemoryBench
     /// <summary>Links that nobody has closed, by role.</summary>
     public IEnumerable<string> Open => _links.Where(open => !open.Link.IsClosed).Select(open => open.Role);
 
-    /// <summary>Trains that were fired while a fault was in force.</summary>
-    public long FiresUnder(string fault) =>
-        _begun.TryGetValue(fault, out var before) ? _panels.Pulser.Count - before.Fires : 0;
+    /// <summary>Trains that were fired.</summary>
+    public long Fires { get; private set; }
 
-    /// <summary>Trains above 60 V that were fired after a fault had begun.</summary>
-    public long MeasuredAfter(string fault) => _begun.TryGetValue(fault, out var before) ? _measured - before.Measured : 0;
+    /// <summary>Trains that were fired while a fault was in force: one that begins with a train is there for it.</summary>
+    public long FiresUnder(string fault) => _begun.TryGetValue(fault, out Beginning? at) ? Fires - at.FiresBefore : 0;
+
+    /// <summary>Trains that were begun after a fault had.</summary>
+    public long FiresAfter(string fault) => _begun.TryGetValue(fault, out Beginning? at) ? Fires - at.FiresWith : 0;
+
+    /// <summary>Trains above 60 V that were fired while a fault was in force.</summary>
+    public long MeasuredUnder(string fault) =>
+        _begun.TryGetValue(fault, out Beginning? at) ? _measured - at.MeasuredBefore : 0;
 
     /// <summary>What the bank had when a fault began, V.</summary>
     public double VoltsAtBeginOf(string fault) =>
-        _begun.TryGetValue(fault, out var before) ? before.Volts : double.PositiveInfinity;
+        _begun.TryGetValue(fault, out Beginning? at) ? at.Volts : double.PositiveInfinity;
 
     /// <summary>Opens a link of the runner's: <c>tcp ROLE 1</c>.</summary>
     public Task<ILink> Connect(
@@ -96,26 +103,6 @@ internal sealed class MemoryBench
         return link;
     }
 
-    /// <summary>A fault that begins with a train is there for that train already.</summary>
-    private void NoteBegun()
-    {
-        if (_panels.Pulser.Count is var fires && fires != _fires)
-        {
-            _measured += Bench.BankVoltage > 60 ? fires - _fires : 0;
-            _fires = fires;
-        }
-
-        foreach (Fault fault in _faults)
-        {
-            if (Bench.Faults.Has(fault.Name) && !_begun.ContainsKey(fault.Name))
-            {
-                _begun[fault.Name] = (
-                    _panels.Pulser.Count - (fault.Begins.Kind == MomentKind.Fire ? 1 : 0), _measured,
-                    Bench.BankVoltage);
-            }
-        }
-    }
-
     /// <summary>What the bank has now, V.</summary>
     public double BankVoltage
     {
@@ -128,4 +115,35 @@ internal sealed class MemoryBench
             }
         }
     }
+
+    /// <summary>After each message: what began with it or since the one before.</summary>
+    private void NoteBegun()
+    {
+        (long fires, long measured) = (Fires, _measured);
+        if (_panels.Pulser.Count is var count && count != _counted)
+        {
+            // A pulser that was started anew counts from 0.
+            long more = count > _counted ? count - _counted : count;
+
+            // A device that died has emptied the bank by now.
+            _measured += Math.Max(_volts, Bench.BankVoltage) > 60 ? more : 0;
+            (Fires, _counted) = (Fires + more, count);
+        }
+
+        _volts = Bench.BankVoltage;
+        foreach (Fault fault in _faults)
+        {
+            if (Bench.Faults.Has(fault.Name))
+            {
+                _begun.TryAdd(fault.Name, new Beginning(fires, Fires, measured, _volts));
+            }
+        }
+    }
+
+    /// <summary>A fault's beginning.</summary>
+    /// <param name="FiresBefore">Trains fired before it.</param>
+    /// <param name="FiresWith">Those, and the one that it began with.</param>
+    /// <param name="MeasuredBefore">Trains above 60 V before it.</param>
+    /// <param name="Volts">What the bank had, V.</param>
+    private sealed record Beginning(long FiresBefore, long FiresWith, long MeasuredBefore, double Volts);
 }

@@ -28,6 +28,7 @@ public sealed class AsyncChannel(
         {
             while (await Frame.Receive(socket, stop) is { } frame)
             {
+                await session.StayIfDeaf(stop);
                 if (frame.Kind == Kind.AsyncLock && frame.Control == 1)
                 {
                     // A lock may be waited for; the status is to be had meanwhile.

@@ -36,6 +36,9 @@ public sealed class HislipHost : IHost
     }
 
     /// <inheritdoc/>
+    public int Clients => Volatile.Read(ref _clients);
+
+    /// <inheritdoc/>
     public string Link => string.Create(
         CultureInfo.InvariantCulture, $"hislip 127.0.0.1:{((IPEndPoint)_listener.LocalEndpoint).Port}");
 

@@ -8,7 +8,14 @@ public sealed class Outlet(Socket socket) : IDisposable
     private readonly SemaphoreSlim _turn = new(1, 1);
 
     /// <summary>Sends a message.</summary>
-    public async Task Send(Frame frame, CancellationToken stop)
+    public Task Send(Frame frame, CancellationToken stop) => Send(frame, int.MaxValue, static _ => Task.CompletedTask, stop);
+
+    /// <summary>Sends a message in pieces.</summary>
+    /// <param name="frame">The message.</param>
+    /// <param name="piece">Bytes of a write.</param>
+    /// <param name="pause">Waits after each.</param>
+    /// <param name="stop">Ends it.</param>
+    public async Task Send(Frame frame, int piece, Func<CancellationToken, Task> pause, CancellationToken stop)
     {
         await _turn.WaitAsync(stop);
         try
@@ -16,7 +23,8 @@ public sealed class Outlet(Socket socket) : IDisposable
             ReadOnlyMemory<byte> rest = frame.ToBytes();
             while (!rest.IsEmpty)
             {
-                rest = rest[await socket.SendAsync(rest, stop)..];
+                rest = rest[await socket.SendAsync(rest[..Math.Min(piece, rest.Length)], stop)..];
+                await pause(stop);
             }
         }
         finally

@@ -96,9 +96,16 @@ public sealed class Replier(Outlet outlet, TimeProvider time) : IDisposable
                 return;
             }
 
-            await outlet.Send(new Frame(Kind.Data, 0, id, answer.Bytes[sent..(sent += most)]), stop);
+            await Send(new Frame(Kind.Data, 0, id, answer.Bytes[sent..(sent += most)]), answer, stop);
         }
 
-        await outlet.Send(new Frame(Kind.DataEnd, 0, id, answer.Bytes[sent..]), stop);
+        await Send(new Frame(Kind.DataEnd, 0, id, answer.Bytes[sent..]), answer, stop);
     }
+
+    /// <summary>Sends a frame at once, or as the answer drips: the header counts to the first piece, unless that is a
+    /// single byte.</summary>
+    private Task Send(Frame frame, Answer answer, CancellationToken stop) => answer.Piece == 0
+        ? outlet.Send(frame, stop)
+        : outlet.Send(
+            frame, answer.Piece == 1 ? 1 : Frame.Head + answer.Piece, end => Task.Delay(answer.Gap, time, end), stop);
 }

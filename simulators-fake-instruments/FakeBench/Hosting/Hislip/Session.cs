@@ -11,6 +11,8 @@ public sealed class Session : IDisposable
     private const uint FirstId = 0xffff_ff00;
 
     private readonly Instrument _instrument;
+    private readonly int _boots;
+    private readonly TimeProvider _time;
     private readonly ServerTerms _terms;
     private readonly Socket _synchronous;
     private readonly Outlet _out;
@@ -23,6 +25,7 @@ public sealed class Session : IDisposable
     private bool _overlapped;
     private uint _nextOwn = FirstId;
     private bool _unread;
+    private bool _deaf;
     private bool _requested;
 
     /// <summary>Begins a session with its first message behind it.</summary>
@@ -30,6 +33,7 @@ public sealed class Session : IDisposable
         ushort id, Socket synchronous, Instrument instrument, LockDesk desk, ServerTerms terms, TimeProvider time)
     {
         (Id, _synchronous, _instrument, _desk, _terms) = (id, synchronous, instrument, desk, terms);
+        (_boots, _time) = (instrument.Boots, time);
         _overlapped = terms.PrefersOverlapped;
         _out = new Outlet(synchronous);
         _replies = new Replier(_out, time);
@@ -37,6 +41,9 @@ public sealed class Session : IDisposable
 
     /// <summary>Its identifier.</summary>
     public ushort Id { get; }
+
+    /// <summary>Whether both channels stay open and are neither read nor written any more.</summary>
+    public bool IsDeaf => Volatile.Read(ref _deaf);
 
     /// <summary>Whether a reply was sent that the client has not said it has read.</summary>
     public bool HasUnread
@@ -82,6 +89,7 @@ public sealed class Session : IDisposable
             while (await Frame.Receive(_synchronous, stop) is { } frame)
             {
                 await ObeyOrTell(frame, stop);
+                await StayIfDeaf(stop);
             }
         }
         catch (TroubleException fatal)
@@ -89,6 +97,10 @@ public sealed class Session : IDisposable
             await _out.Send(fatal.Answer, stop);
         }
     }
+
+    /// <summary>Stays until the bench ends, where nothing is answered any more.</summary>
+    public Task StayIfDeaf(CancellationToken stop) =>
+        IsDeaf ? Task.Delay(Timeout.InfiniteTimeSpan, _time, stop) : Task.CompletedTask;
 
     /// <inheritdoc/>
     public void Dispose()
@@ -215,7 +227,11 @@ public sealed class Session : IDisposable
     private void Answer(string? message, uint id, CancellationToken stop)
     {
         Answer answer = _instrument.Obey(message);
-        if (answer.Bytes.Length == 0)
+        Volatile.Write(ref _deaf, _deaf || answer.Deaf);
+
+        // Firmware that started anew has ended the connections of before.
+        answer = _instrument.Boots == _boots ? answer : answer with { CutShort = true };
+        if (IsDeaf || (answer.Bytes.Length == 0 && !answer.CutShort))
         {
             return;
         }
@@ -234,6 +250,11 @@ public sealed class Session : IDisposable
 
     private async Task RequestService(CancellationToken stop)
     {
+        if (IsDeaf)
+        {
+            return;
+        }
+
         int status = _instrument.Poll(HasUnread);
         bool wants = (status & (1 << 6)) != 0;
         if (wants && !_requested)
