@@ -14,7 +14,7 @@ public static class HislipRules
         return clearing && !isEnd ? HislipFault.Discarded : header.Unknown ?? header.Type switch
         {
             HislipType.Data when header.Parameter == HislipIds.Unmarked => null,
-            HislipType.Data or HislipType.DataEnd => 
+            HislipType.Data or HislipType.DataEnd =>
                 header.Parameter == lastSent && lastSent != HislipIds.None ? null : HislipFault.StaleMessage,
             HislipType.DeviceClearAcknowledge => clearing ? null : HislipFault.OutOfSequence,
             HislipType.Interrupted or HislipType.Error or HislipType.FatalError => null,
