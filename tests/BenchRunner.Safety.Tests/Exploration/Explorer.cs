@@ -12,6 +12,7 @@ internal sealed class Explorer
 {
     private readonly SupervisorTable _table;
     private readonly Dictionary<World, List<Move>> _from = [];
+    private readonly HashSet<(SupervisorState, SupervisorEvent)> _used = [];
 
     private Explorer(SupervisorTable table) => _table = table;
 
@@ -20,6 +21,9 @@ internal sealed class Explorer
 
     /// <summary>Every move that can be made.</summary>
     public IEnumerable<Move> Moves => _from.Values.SelectMany(moves => moves);
+
+    /// <summary>Which lines of the table some move has used.</summary>
+    public IReadOnlySet<(SupervisorState From, SupervisorEvent On)> Used => _used;
 
     public static Explorer Explore(SupervisorTable table)
     {
@@ -132,9 +136,8 @@ internal sealed class Explorer
         foreach (SupervisorEvent what in (SupervisorEvent[])
             [BiasVerified, StopAsked, Doubt, Overdue, Ends, PermitAsked])
         {
-            // A permit is asked for after a poll.
-            World before = what == PermitAsked ? Poll(w).To : w;
-            yield return new Move(what.ToString(), w, Take(before, what).World);
+            // A permit is asked for after a poll, but not at one stroke with it: anything may come in between.
+            yield return new Move(what.ToString(), w, Take(w, what).World);
         }
 
         if (w.Guardian != GuardianLife.Alive)
@@ -162,13 +165,14 @@ internal sealed class Explorer
         bool risen = w.BankUp && !SupervisorTable.HasPermit(w.State)
             && w.State is not (SupervisorState.Discharging or SupervisorState.Tripping);
         SupervisorEvent what = risen ? Risen : w.Loop ? Sound : LoopOpen;
+        bool beats = _table.Step(w.State, what, SupervisorFacts.None).Acts.HasFlag(SupervisorActs.Beat);
         World polled = Take(seen, what).World;
         if (polled.State == SupervisorState.Unwatched && what == Sound)
         {
             polled = Take(polled, WatchBegins).World;
         }
 
-        return new Move($"poll finds {what}", w, polled);
+        return new Move($"poll finds {what}", w, polled) { Beats = beats };
     }
 
     /// <summary>The write happens under the permit's lock: it is live, or nothing is written.</summary>
@@ -201,6 +205,11 @@ internal sealed class Explorer
             | (w.Permit == PermitLife.Live ? SupervisorFacts.PermitLive : SupervisorFacts.None)
             | (w.Latch ? SupervisorFacts.None : SupervisorFacts.NoLatch);
         SupervisorStep step = _table.Step(w.State, what, facts);
+        if (step.IsAllowed)
+        {
+            _used.Add((w.State, what));
+        }
+
         PermitLife permit = step.Acts.HasFlag(SupervisorActs.Issue) ? PermitLife.Live
             : step.Acts.HasFlag(SupervisorActs.Revoke) ? PermitLife.None : w.Permit;
         bool isSafe = step.Acts.HasFlag(SupervisorActs.MakeSafe);

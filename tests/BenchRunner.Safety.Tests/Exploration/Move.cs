@@ -12,5 +12,8 @@ internal sealed record Move(string What, World From, World To)
     /// <summary>Whether its reply was lost.</summary>
     public bool ReplyLost { get; init; }
 
+    /// <summary>Whether the watch sent its heartbeat.</summary>
+    public bool Beats { get; init; }
+
     public override string ToString() => $"{What}: {From} -> {To}";
 }
