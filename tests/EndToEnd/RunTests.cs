@@ -74,6 +74,14 @@ public sealed class RunTests : IDisposable
         Assert.Equal(0, document.RootElement.GetProperty("exit_code").GetInt32());
         Assert.Equal("accepted", device.GetProperty("outcome").GetString());
         Assert.Contains("ACCEPTED", run.Error, StringComparison.Ordinal);
+
+        // 50 uF: 60 V is the stricter of 60 V and 350 mJ, and what is left is C V^2 / 2.
+        Assert.Equal(60, document.RootElement.GetProperty("safety").GetProperty("down_below").GetDouble());
+        JsonElement bus = device.GetProperty("bus");
+        double volts = bus.GetProperty("voltage").GetDouble();
+        Assert.True(bus.GetProperty("proved_down").GetBoolean());
+        Assert.InRange(volts, 0, 60);
+        Assert.Equal(50e-6 * volts * volts / 2, bus.GetProperty("energy_at_most").GetDouble(), 1e-9);
         string[] columns =
             [.. device.GetProperty("measurements")[0].EnumerateObject().Select(property => property.Name)];
         Assert.Equal(

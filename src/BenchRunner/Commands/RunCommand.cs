@@ -47,6 +47,6 @@ internal static class RunCommand
             Guardian = (bench, log, time) => GuardianProcess.Start(Program.Path, bench, log, time),
         };
         RunSummary summary = await session.Run(serials, stop);
-        return RunReport.Write(summary, request.EvidencePath, screen, arguments.Json, stop);
+        return RunReport.Write(summary, job.Bench, request.EvidencePath, screen, arguments.Json, stop);
     }
 }

@@ -1,3 +1,4 @@
+using BenchRunner.Acceptance.Benches;
 using BenchRunner.Commands;
 using BenchRunner.Json;
 using BenchRunner.Runner.Sessions;
@@ -9,7 +10,8 @@ internal static class RunReport
 {
     /// <summary>Writes what broke the session off, who got no run, and how it ended.</summary>
     /// <returns>The exit code.</returns>
-    public static int Write(RunSummary summary, string evidence, Screen screen, bool json, CancellationToken stop)
+    public static int Write(
+        RunSummary summary, Bench bench, string evidence, Screen screen, bool json, CancellationToken stop)
     {
         int code = RunExit.Of(summary, stop);
         if (summary.BrokenOff is { } broken)
@@ -25,7 +27,7 @@ internal static class RunReport
         screen.Line($"{Simulated(summary.Simulated)}{RunExit.Words(code)}");
         if (json)
         {
-            RunJson.Write(summary, evidence, code);
+            RunJson.Write(summary, bench, evidence, code);
         }
 
         return code;
