@@ -77,6 +77,12 @@ internal static class RunTraffic
             Said[] scope = [.. between.Where(message => message.Role == "scope")];
             int first = Array.FindIndex(scope, m => m.Text.StartsWith(AsksPreamble, StringComparison.Ordinal));
             int last = Array.FindLastIndex(scope, m => m.Text == AsksCount);
+            if (first < 0 || last < first)
+            {
+                // Its record was lost on a busy machine.
+                continue;
+            }
+
             Said[] reading = scope[first..(last + 1)];
             captures.Add(new CaptureTraffic(
                 reading.Count(message => message.IsQuestion),
