@@ -4,11 +4,7 @@ namespace EndToEnd;
 
 /// <summary>Rows of the fault table (tests/reference/scpi/faults.json, by their ids) that other tests do not hold, and
 /// mishaps of a bench, each alone through a whole run: it ends as its row says, and the evidence is whole.</summary>
-/// <remarks>
-/// Elsewhere: F02 F05 F15 F16 F18 F19 F21 F22 F25 F29 F30 F32 F34 and a pulse longer than set in <c>FaultTests</c> and
-/// <c>CriterionTests</c>; F33 and the wrong part in <c>PopulationTests</c>; a scanner that types in <c>ShiftTests</c>.
-/// F26 has nothing to inject: no dialect asks an instrument for its clock.
-/// </remarks>
+/// <remarks>docs/faults.md says which test holds which row.</remarks>
 [Trait("kind", "slow")]
 public sealed class FaultRowTests : IDisposable
 {

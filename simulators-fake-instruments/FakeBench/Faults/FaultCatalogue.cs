@@ -161,7 +161,7 @@ public static class FaultCatalogue
         new(ProbeOff, Fire(3), "from then on the firing place's voltage probe is off: noise about 0 V"),
         new(ProbesSwapped, Moment.Start, "the voltage probes of the two places are swapped"),
         new(Arcing, Fire(3), "an arc: from then on 100 V of noise on every input, and the loop's contact chatters open"),
-        new(Desaturates, Fire(3), "from then on the firing device carries a tenth of its current: it desaturates"),
+        new(Desaturates, Fire(3), "from then on the firing device carries a fiftieth of its current: it desaturates"),
         new(GateStuckOn, Fire(3), "the firing gate stays on after the second pulse: the device dies, the bank empties"),
         new(FiresOnArm, Fire(3), "the pulser fires as soon as it is armed, without its trigger"),
         new(FiresTwice, Fire(3), "one trigger fires two trains"),

@@ -8,7 +8,7 @@ internal static class Expression
     private const RegexOptions Linear = RegexOptions.NonBacktracking | RegexOptions.CultureInvariant;
 
     // Matching is linear in the text; the bound is for expressions that are themselves enormous.
-    private static readonly TimeSpan _patience = TimeSpan.FromSeconds(1);
+    private static readonly TimeSpan _patience = TimeSpan.FromSeconds(10);
 
     /// <summary>The expression that a whole text must match.</summary>
     /// <param name="pattern">The pattern as written.</param>
