@@ -30,6 +30,7 @@ public sealed class FaultTests : IDisposable
         string fault, int exitCode, string outcome, string reason) => EndsTheRun(fault, exitCode, outcome, reason);
 
     [Theory]
+    [Trait("kind", "slow")]
     [InlineData("stale-record", "fresh", 11)]
     // The wider range that follows is too wide once the fault has passed: one capture more.
     [InlineData("clipped-range", "not-clipped", 12)]
@@ -100,6 +101,7 @@ public sealed class FaultTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_voltmeter_whose_lead_is_off_lets_nothing_above_the_proving_train_s_voltage()
     {
         Finished run = (await Run("voltmeter-open")).Expect(4);
@@ -112,6 +114,7 @@ public sealed class FaultTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_trace_that_is_lost_on_its_way_costs_a_proving_train_and_no_capture()
     {
         (await Run("link-drops")).Expect(0);

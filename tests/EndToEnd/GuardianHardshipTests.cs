@@ -5,6 +5,7 @@ namespace EndToEnd;
 /// <summary>What run and guardian do where the machine fails them: no thread gets on, nobody reads, disks are full or
 /// hang, nothing more can be opened. The bench itself says what became of it.</summary>
 /// <remarks>None of this has a hook in the program: limits, pipes, locks and signals come from outside.</remarks>
+[Trait("kind", "slow")]
 public sealed class GuardianHardshipTests : IDisposable
 {
     private const int Kill = 9;

@@ -40,6 +40,7 @@ public sealed class GuardianTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task A_stopped_run_is_ended_and_never_fires_again()
     {
         using WrittenBench bench = await WrittenBench.Start(_place);
@@ -59,6 +60,7 @@ public sealed class GuardianTests : IDisposable
     }
 
     [Theory]
+    [Trait("kind", "slow")]
     [InlineData(Kill)]
     [InlineData(Stop)]
     public async Task Without_its_guardian_a_run_trips(int signal)
@@ -102,6 +104,7 @@ public sealed class GuardianTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task By_hand_it_makes_a_bench_safe_that_a_dead_computer_left_and_tells_no_beat_from_one()
     {
         using WrittenBench bench = await WrittenBench.Start(_place, "--interlock", "tcp");

@@ -52,6 +52,7 @@ public sealed class RunTests : IDisposable
     }
 
     [Fact]
+    [Trait("kind", "slow")]
     public async Task Every_limit_of_the_sequence_has_exactly_one_decided_measurement()
     {
         (await _place.Run("run", Workplace.Sequence, "--device", "W1200-0001")).Expect(0);
