@@ -29,13 +29,11 @@ public sealed class SafetySupervisor : IAsyncDisposable
     private readonly PollJudge _judge;
     private readonly Watchdog _watchdog;
     private readonly Progress _progress;
-    private readonly PollGap _gap;
     private readonly LoopHold _loop = new();
     private readonly CancellationTokenSource _tripped = new();
-    private readonly CancellationTokenSource _end = new();
+    private readonly WatchLoop _watch;
     private SupervisorState _state = SupervisorState.Unwatched;
     private Permit? _permit;
-    private Task _watching = Task.CompletedTask;
     private double _lastVoltage = double.NaN;
     private Task<SafeStateReport>? _reaching;
 
@@ -65,8 +63,22 @@ public sealed class SafetySupervisor : IAsyncDisposable
         _time = time;
         _judge = new PollJudge(envelope, witness);
         _progress = new Progress(time);
-        _gap = new PollGap(
-            SafetyLimits.PollGap + TimeSpan.FromSeconds(2 * witness.Limits.ReplyWithin), time);
+        _watch = new WatchLoop(witness, time)
+        {
+            Poll = () => Poll(CancellationToken.None),
+            Found = found => Act(
+                found.Kind != SupervisorEvent.Doubt && _progress.Overdue is { } late
+                    ? new Finding(SupervisorEvent.Overdue, late) : found,
+                beats: true),
+            Late = why =>
+            {
+                if (Trip is null)
+                {
+                    Raise(SupervisorEvent.Doubt, why);
+                }
+            },
+            Waiting = BeatWhileTripped,
+        };
         _watchdog = new Watchdog(roles.Interlock, witness, _events, time);
         _safeState = new SafeState(roles.Safeable, witness, events.As("safe-state"), time)
         {
@@ -158,7 +170,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
 
         await _watchdog.Arm(cancel);
-        _watching = Background.Start(Watch);
+        _watch.Begin();
     }
 
     /// <summary>Grants leave to energise up to the bounds, after measuring interlock and bus afresh.</summary>
@@ -245,8 +257,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
             await reaching;
         }
 
-        _end.Cancel();
-        await LastPoll();
+        await _watch.End(() => _guardian.Beat(BeatKind.MakingSafe));
         if (!Witness.MayBeEnergised)
         {
             // Before the interlock is told, which may be slow to answer: nothing will be energised any more.
@@ -254,7 +265,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
         }
 
         await _watchdog.Disarm();
-        _end.Dispose();
+        _watch.Dispose();
         _tripped.Dispose();
     }
 
@@ -360,70 +371,6 @@ public sealed class SafetySupervisor : IAsyncDisposable
         if (SupervisorTable.IsTrip(State))
         {
             _guardian.Beat(BeatKind.MakingSafe);
-        }
-    }
-
-    private async Task Watch()
-    {
-        using var timer = new PeriodicTimer(SafetyLimits.PollEvery, _time);
-        try
-        {
-            while (await timer.WaitForNextTickAsync(_end.Token))
-            {
-                // A poll that has begun is ended by its own patience: cancelling it would leave its reply on the line.
-                string? gap = _gap.Begins();
-                Finding found = await InTime(Poll(CancellationToken.None));
-                Act(gap is not null && Witness.MayBeEnergised ? new Finding(SupervisorEvent.Doubt, gap)
-                    : _progress.Overdue is { } late ? new Finding(SupervisorEvent.Overdue, late) : found, beats: true);
-            }
-        }
-        catch (OperationCanceledException) when (_end.IsCancellationRequested)
-        {
-            // The run has ended.
-        }
-    }
-
-    /// <summary>Waits for a poll. One that is late is a doubt before it has ended, for the guardian would take it for a
-    /// hang: a poll may wait behind a command to the same instrument, or for a link that is opened again.</summary>
-    private async Task<Finding> InTime(Task<Finding> poll)
-    {
-        TimeSpan within = TimeSpan.FromSeconds(Witness.Limits.ReplyWithin) + SafetyLimits.PollSlack;
-        long begun = _time.GetTimestamp();
-        while (true)
-        {
-            try
-            {
-                return await poll.WaitAsync(SafetyLimits.PollEvery, _time);
-            }
-            catch (TimeoutException)
-            {
-                if (Trip is null && _time.GetElapsedTime(begun) >= within)
-                {
-                    Raise(
-                        SupervisorEvent.Doubt,
-                        $"the watch lost sight of the bench: no word of interlock and voltmeter within "
-                            + $"{within.TotalSeconds:0.##} s");
-                }
-
-                BeatWhileTripped();
-            }
-        }
-    }
-
-    /// <summary>Waits for the watch to end; the guardian hears meanwhile that the run still is on its way.</summary>
-    private async Task LastPoll()
-    {
-        while (true)
-        {
-            try
-            {
-                await _watching.WaitAsync(SafetyLimits.PollEvery, _time);
-                return;
-            }
-            catch (TimeoutException)
-            {
-                _guardian.Beat(BeatKind.MakingSafe);
-            }
         }
     }
 
