@@ -46,10 +46,12 @@ public sealed class JudgementTests : IDisposable
     {
         string wrong = Wrong(f =>
         {
-            using var connection = new SqliteConnection($"Data Source={Path.Combine(f.Folder, "evidence.db")};Pooling=False");
+            string file = Path.Combine(f.Folder, "evidence.db");
+            using var connection = new SqliteConnection($"Data Source={file};Pooling=False");
             connection.Open();
             using SqliteCommand command = connection.CreateCommand();
-            command.CommandText = "select group_concat('drop trigger \"' || name || '\";', ' ') from sqlite_master where type = 'trigger'";
+            command.CommandText =
+                "select group_concat('drop trigger \"' || name || '\";', ' ') from sqlite_master where type = 'trigger'";
             string drop = (string)command.ExecuteScalar()!;
 #pragma warning disable CA2100 // Names of triggers of the file that was just written.
             command.CommandText = drop;

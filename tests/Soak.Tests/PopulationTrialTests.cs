@@ -35,7 +35,7 @@ public sealed class PopulationTrialTests : IDisposable
     {
         int seed = Environment.TickCount;
         var random = new Random(seed);
-        string[] serials = 
+        string[] serials =
         [
             .. Enumerable.Range(0, 8000).OrderBy(_ => random.Next()).Take(40).Select(number => $"W1200-{number:0000}"),
         ];

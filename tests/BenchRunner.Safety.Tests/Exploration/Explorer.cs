@@ -106,7 +106,11 @@ internal sealed class Explorer
                 "the interlock's watchdog acts", w, w with { SupplyOn = false, BankUp = false });
             World next = World.Start(w.Envelope) with
             {
-                Loop = w.Loop, LoopSeen = false, Latch = w.Latch, SupplyOn = w.SupplyOn, BankUp = w.BankUp,
+                Loop = w.Loop,
+                LoopSeen = false,
+                Latch = w.Latch,
+                SupplyOn = w.SupplyOn,
+                BankUp = w.BankUp,
             };
             yield return new Move("another run begins", w, next);
             if (w.Latch)

@@ -43,19 +43,19 @@ internal sealed record Facts(
         : OfReport;
 
     private int OfReport => Report!.Ending switch
+    {
+        BenchEnding.Tripped => 4,
+        BenchEnding.InstrumentFailed => 5,
+        BenchEnding.EvidenceFailed => 6,
+        BenchEnding.Interrupted => 130,
+        BenchEnding.Fault => 70,
+        _ => Report.Decision.Outcome switch
         {
-            BenchEnding.Tripped => 4,
-            BenchEnding.InstrumentFailed => 5,
-            BenchEnding.EvidenceFailed => 6,
-            BenchEnding.Interrupted => 130,
-            BenchEnding.Fault => 70,
-            _ => Report.Decision.Outcome switch
-            {
-                Outcome.Accepted or Outcome.Stopped => 0,
-                Outcome.Rejected => 1,
-                _ => 3,
-            },
-        };
+            Outcome.Accepted or Outcome.Stopped => 0,
+            Outcome.Rejected => 1,
+            _ => 3,
+        },
+    };
 
     private static int Worse(int one, int other)
     {
