@@ -13,6 +13,9 @@ public static class SafetyLimits
     /// than the guardian's silence.</summary>
     public static TimeSpan PollSlack { get; } = TimeSpan.FromMilliseconds(30);
 
+    /// <summary>Time from one look at the outputs of supply and pulser to the next.</summary>
+    public static TimeSpan HeartbeatEvery { get; } = TimeSpan.FromMilliseconds(150);
+
     /// <summary>Time after the last poll at which the interlock controller's own watchdog acts.</summary>
     /// <remarks>Longer than a poll may take, so that it acts only where this program is dead or hangs.</remarks>
     public static TimeSpan Watchdog { get; } = TimeSpan.FromSeconds(5);

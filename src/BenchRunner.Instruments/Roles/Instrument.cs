@@ -101,6 +101,10 @@ internal sealed class Instrument : IDisposable
     public async Task<bool> ReadBoolean(string operation, CancellationToken cancel) =>
         await Session.Ask(Command(operation), ReplyWord.ParseBoolean, cancel);
 
+    /// <summary>Asks whether the output is on, once.</summary>
+    public async Task<bool> ReadOutputOnce(CancellationToken cancel) =>
+        await Session.AskOnce(Command("read-output"), ReplyWord.ParseBoolean, cancel);
+
     public async Task<long> ReadInteger(string operation, CancellationToken cancel) =>
         await Session.Ask(Command(operation), ReplyInteger.Parse, cancel);
 

@@ -6,7 +6,7 @@ using BenchRunner.Signals.Units;
 namespace BenchRunner.Instruments.Roles;
 
 /// <summary>A pulser of two-pulse trains that speaks SCPI.</summary>
-public sealed class ScpiPulser : IPulser, IDisposable
+public sealed class ScpiPulser : IPulser, IOutput, IDisposable
 {
     // Widths are rounded to the pulser's clock, 5 ns and finer, gate levels to its converter's steps (common practice).
     private const double RelativeStep = 1e-3;
@@ -161,6 +161,9 @@ public sealed class ScpiPulser : IPulser, IDisposable
         await _instrument.Session.SetDown([_instrument.Command("output-off")], cancel);
         await CheckOutput(false, cancel);
     }
+
+    /// <inheritdoc/>
+    public Task<bool> ReadOutput(CancellationToken cancel) => _instrument.ReadOutputOnce(cancel);
 
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _instrument.Dispose();

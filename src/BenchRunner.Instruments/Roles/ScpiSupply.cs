@@ -5,7 +5,7 @@ using BenchRunner.Signals.Units;
 namespace BenchRunner.Instruments.Roles;
 
 /// <summary>A DC supply that speaks SCPI.</summary>
-public sealed class ScpiSupply : ISupply, IDisposable
+public sealed class ScpiSupply : ISupply, IOutput, IDisposable
 {
     // A set-point is rounded by the instrument to its own steps: 0.1 % and an absolute step cover supplies of 10 bits
     // and more (common practice). A clipped set-point is off by far more.
@@ -132,6 +132,9 @@ public sealed class ScpiSupply : ISupply, IDisposable
         await CheckOff(cancel);
         await _instrument.CheckReadBack("set-voltage", "read-voltage", 0, VoltageStep, cancel);
     }
+
+    /// <inheritdoc/>
+    public Task<bool> ReadOutput(CancellationToken cancel) => _instrument.ReadOutputOnce(cancel);
 
     /// <summary>Closes the link. Sends nothing.</summary>
     public void Dispose() => _instrument.Dispose();

@@ -73,6 +73,24 @@ public sealed class ScpiSession : IDisposable
             (Session: this, Query: query, Parse: parse),
             cancel);
 
+    /// <summary>Asks a question that may be asked again, once.</summary>
+    /// <inheritdoc cref="Ask" path="/typeparam"/>
+    /// <inheritdoc cref="Ask" path="/param"/>
+    /// <exception cref="LinkException">Late, cut, malformed or lost.</exception>
+    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
+    public async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
+    {
+        await _turn.Take(cancel);
+        try
+        {
+            return await (await _wires.Ready(cancel)).Ask(query, parse, cancel);
+        }
+        finally
+        {
+            _turn.Give();
+        }
+    }
+
     /// <summary>Asks what safety rests on. Where the dialect allows it, with a number that the reply must bring back, so
     /// that no earlier reply is taken for it, and with the power-on bit of the event register.</summary>
     /// <inheritdoc cref="Ask" path="/typeparam"/>
@@ -189,20 +207,6 @@ public sealed class ScpiSession : IDisposable
         ArgumentNullException.ThrowIfNull(opener);
         var wires = await WireKeeper.Open(role, address, options, time, log, opener, cancel);
         return new ScpiSession(role, wires, options, time);
-    }
-
-    [AsyncMethodBuilder(typeof(PoolingAsyncValueTaskMethodBuilder<>))]
-    private async ValueTask<T> AskOnce<T>(string query, ReplyParser<T> parse, CancellationToken cancel)
-    {
-        await _turn.Take(cancel);
-        try
-        {
-            return await (await _wires.Ready(cancel)).Ask(query, parse, cancel);
-        }
-        finally
-        {
-            _turn.Give();
-        }
     }
 
     private async ValueTask<(T Answer, bool SwitchedOn)> AskNumberedOnce<T>(

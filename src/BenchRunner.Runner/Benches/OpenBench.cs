@@ -116,7 +116,9 @@ public sealed class OpenBench : IAsyncDisposable
         ScpiPulser safePulser = await Reach("pulser", ScpiPulser.Connect(at("pulser", patient), cancel));
         Hotplate = bench.Roles.ContainsKey("hotplate")
             ? await Reach("hotplate", ScpiHotplate.Connect(at("hotplate", patient), cancel)) : null;
-        Safety = new SafetyRoles(safePulser, safeSupply, interlock, watchMeter, Hotplate);
+        Safety = new SafetyRoles(
+            safePulser, safeSupply, interlock, watchMeter, Hotplate,
+            OwnToo("supply") ? safeSupply : null, OwnToo("pulser") ? safePulser : null);
 
         Voltmeter = OwnToo("voltmeter")
             ? await Reach("voltmeter", ScpiVoltmeter.Connect(at("voltmeter", patient), cancel)) : watchMeter;

@@ -32,6 +32,7 @@ public sealed class SafetySupervisor : IAsyncDisposable
     private readonly LoopHold _loop = new();
     private readonly CancellationTokenSource _tripped = new();
     private readonly WatchLoop _watch;
+    private readonly IReadOnlyList<Heartbeat> _heartbeats;
     private SupervisorState _state = SupervisorState.Unwatched;
     private Permit? _permit;
     private double _lastVoltage = double.NaN;
@@ -79,6 +80,11 @@ public sealed class SafetySupervisor : IAsyncDisposable
             },
             Waiting = BeatWhileTripped,
         };
+        _heartbeats =
+        [
+            .. Heartbeat(roles.SupplyOutput, static (_, _) => { }),
+            .. Heartbeat(roles.PulserOutput, GatesHeld),
+        ];
         _watchdog = new Watchdog(roles.Interlock, witness, _events, time);
         _safeState = new SafeState(roles.Safeable, witness, events.As("safe-state"), time)
         {
@@ -171,6 +177,10 @@ public sealed class SafetySupervisor : IAsyncDisposable
 
         await _watchdog.Arm(cancel);
         _watch.Begin();
+        foreach (Heartbeat heartbeat in _heartbeats)
+        {
+            heartbeat.Begin();
+        }
     }
 
     /// <summary>Grants leave to energise up to the bounds, after measuring interlock and bus afresh.</summary>
@@ -257,6 +267,13 @@ public sealed class SafetySupervisor : IAsyncDisposable
             await reaching;
         }
 
+        // Before the watch, which beats on: a last answer may be long in coming.
+        foreach (Heartbeat heartbeat in _heartbeats)
+        {
+            await heartbeat.End();
+            heartbeat.Dispose();
+        }
+
         await _watch.End(() => _guardian.Beat(BeatKind.MakingSafe));
         if (!Witness.MayBeEnergised)
         {
@@ -267,6 +284,31 @@ public sealed class SafetySupervisor : IAsyncDisposable
         await _watchdog.Disarm();
         _watch.Dispose();
         _tripped.Dispose();
+    }
+
+    private IEnumerable<Heartbeat> Heartbeat(IOutput? output, Action<SupervisorState, bool> answered) =>
+        output is null ? [] :
+        [
+            new Heartbeat(output, TimeSpan.FromSeconds(Witness.Limits.ReplyWithin), _time)
+            {
+                State = () => State,
+                Answered = answered,
+                Silent = why =>
+                {
+                    if (HasPermit && Witness.MayBeEnergised)
+                    {
+                        Raise(SupervisorEvent.Doubt, why);
+                    }
+                },
+            },
+        ];
+
+    private void GatesHeld(SupervisorState asked, bool isOn)
+    {
+        if (!isOn && asked is (SupervisorState.Biased or SupervisorState.Energised) && HasPermit)
+        {
+            Raise(SupervisorEvent.Doubt, "the pulser's output is off with the bus up: nothing holds the gates off");
+        }
     }
 
     private Task<SafeStateReport>? End()

@@ -63,7 +63,8 @@ internal sealed class LiveBench : IAsyncDisposable
                 bench.Keep(await ScpiVoltmeter.Connect(bench.At("voltmeter", watching), cancel));
             ScpiSupply supply = bench.Keep(await ScpiSupply.Connect(bench.At("supply", options), cancel));
             ScpiPulser pulser = bench.Keep(await ScpiPulser.Connect(bench.At("pulser", options), cancel));
-            bench.Roles = new SafetyRoles(pulser, supply, interlock, voltmeter);
+            bench.Roles = new SafetyRoles(
+                pulser, supply, interlock, voltmeter, SupplyOutput: supply, PulserOutput: pulser);
             bench.Pulser = pulser;
             bench.Supply = bench.Keep(await ScpiSupply.Connect(bench.At("supply", options), cancel));
             return bench;
@@ -125,14 +126,17 @@ internal sealed class LiveBench : IAsyncDisposable
     }
 
     /// <summary>Somebody else sets the supply and switches it on.</summary>
-    public async Task StrangerSets(double volts)
+    public Task StrangerSets(double volts) => Stranger(
+        "supply", FormattableString.Invariant($"VOLT:PROT 900;:CURR {ChargingCurrent};:VOLT {volts};:OUTP ON"));
+
+    /// <summary>Somebody else tells an instrument something.</summary>
+    public async Task Stranger(string role, string message)
     {
         CancellationToken cancel = TestContext.Current.CancellationToken;
-        LinkAddress address = LinkAddress.Parse(_fake.Links["supply"]);
+        LinkAddress address = LinkAddress.Parse(_fake.Links[role]);
         using var client = new TcpClient();
         await client.ConnectAsync(address.Host, address.Number, cancel);
-        string message = FormattableString.Invariant($"VOLT:PROT 900;:CURR {ChargingCurrent};:VOLT {volts};:OUTP ON\n");
-        await client.GetStream().WriteAsync(Encoding.ASCII.GetBytes(message), cancel);
+        await client.GetStream().WriteAsync(Encoding.ASCII.GetBytes($"{message}\n"), cancel);
     }
 
     public void Do(string hand) => _fake.Do(hand);

@@ -93,12 +93,42 @@ public sealed class WatchTests
         Assert.Equal("somebody asked for it", supervisor.Trip!.Reason);
     }
 
-    private static async Task<SafetySupervisor> Charged(LiveBench bench, TimeProvider? time = null)
+    [Theory]
+    [InlineData("supply", "silent-supply@volts:150")]
+    [InlineData("pulser", "pulser/half-open@volts:150")]
+    public async Task A_supply_or_pulser_that_falls_silent_with_the_bus_up_is_a_trip_though_nobody_waits_for_it(
+        string role, string fault)
+    {
+        await using LiveBench bench = await LiveBench.Start(fault);
+        SafetySupervisor supervisor = await Charged(bench, upTo: 100);
+        Assert.Null(supervisor.Trip);
+
+        await bench.StrangerSets(200);
+        await Eventually.True(() => supervisor.Trip is not null, "a trip");
+
+        Assert.Contains($"the {role} gives no sign of life", supervisor.Trip!.Reason, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public async Task A_pulser_that_somebody_switches_off_with_the_bus_up_is_a_trip()
+    {
+        await using LiveBench bench = await LiveBench.Start();
+        SafetySupervisor supervisor = await Charged(bench);
+
+        await bench.Stranger("pulser", "OUTP OFF");
+        await Eventually.True(() => supervisor.Trip is not null, "a trip");
+
+        Assert.Contains("nothing holds the gates off", supervisor.Trip!.Reason, StringComparison.Ordinal);
+        Assert.True((await supervisor.MakeSafe()).Proved);
+    }
+
+    private static async Task<SafetySupervisor> Charged(
+        LiveBench bench, TimeProvider? time = null, double upTo = 200)
     {
         SafetySupervisor supervisor = bench.Supervisor(time);
         await supervisor.Start(Cancel);
         Permit permit = await supervisor.Grant(LiveBench.UpTo(200), Cancel);
-        await bench.Charge(permit, supervisor, 200);
+        await bench.Charge(permit, supervisor, upTo);
         await Eventually.True(() => supervisor.LastVoltage > 60, "a watch that sees the bus");
         return supervisor;
     }
