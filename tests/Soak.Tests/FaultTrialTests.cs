@@ -1,9 +1,10 @@
+using System.Text.RegularExpressions;
 using BenchRunner.Soak.Mixes;
 
 namespace BenchRunner.Soak.Tests;
 
-/// <summary>Faults that no test with real processes holds, each alone through a whole run in simulated time: the run ends as
-/// docs/faults.md says, and the soak's own judgement finds nothing wrong beside it.</summary>
+/// <summary>Faults, each alone through a whole run in simulated time: the run ends as docs/faults.md says, and the soak's own
+/// judgement finds nothing wrong beside it. Some go the same road with real processes (EndToEnd).</summary>
 public sealed class FaultTrialTests : IDisposable
 {
     private readonly Trials _trials = new();
@@ -11,18 +12,47 @@ public sealed class FaultTrialTests : IDisposable
     public void Dispose() => _trials.Dispose();
 
     [Theory]
+    [InlineData("F03", "supply/half-open@volts:200", "the supply gives no sign of life")]
+    [InlineData("F04", "supply/drip@volts:200", "the supply's word is in doubt")]
     [InlineData("F05", "supply/late-reply@volts:200", "the supply's word is in doubt")]
     [InlineData("F05", "interlock/late-reply@volts:200", "the watch lost sight of the bench")]
+    [InlineData("F10", "supply/overload@volts:200", "with no number")]
+    [InlineData("F11", "interlock/garbage@volts:200", "the watch lost sight of the bench")]
+    [InlineData("F12", "interlock/wrong-end@volts:200", "the watch lost sight of the bench")]
     [InlineData("F17", "supply/queue-overflow", "-350")]
     [InlineData("F17", "pulser/queue-overflow", "-350")]
     [InlineData("F20", "reading-sticks", "the bus was not proved down")]
+    [InlineData("F27", "supply/reboot", "the supply's word is in doubt")]
+    [InlineData("F27", "pulser/reboot", "the pulser gives no sign of life")]
     [InlineData("F28", "second-controller", "above the 420.0 V that the permit allows")]
+    [InlineData("F30", "bus-stays-up", "the bus was not proved down")]
+    [InlineData("F31", "bleeder-weak", "the bus was not proved down")]
+    [InlineData("F36", "probe-off", "bus-agrees")]
+    [InlineData("F36", "voltmeter-open@volts:300", "the voltmeter fell")]
+    [InlineData("F37", "supply-overshoots", "above the 420.0 V that the permit allows")]
     [InlineData("F38", "arcing", "the interlock loop is open")]
     [InlineData("driver supply lost", "driver-lost", "the gate drivers may have lost their supply")]
     [InlineData("driver supply lost", "driver-lost@volts:300", "the gate drivers may have lost their supply")]
+    [InlineData("fuse opens", "fuse-opens", "where 400 V was set")]
+    [InlineData("gate stuck on", "gate-stuck-on", "vgs_low is still on at the end of the record")]
     [InlineData("probes swapped", "probes-swapped", "bus-agrees: vds_low")]
+    [InlineData("pulser fires on arm", "fires-on-arm", "pulser")]
+    [InlineData("pulser fires twice", "fires-twice", "counts 2 trains where one was fired")]
     public void A_bench_at_fault_trips_and_the_device_is_not_blamed(string row, string fault, string why) =>
         Ends(row, fault, 4, "Stopped", why);
+
+    [Fact]
+    public void A_bus_that_rises_after_its_proof_is_said_trips_and_is_brought_down_once_more()
+    {
+        // Before the proving train's permit is granted, or under it: the bank does not wait for either.
+        Judged judged = Ends("bus rises", "bus-rises", 4, "Stopped", "the bus ");
+
+        Assert.Contains(judged.Log, line => Regex.IsMatch(
+            line, "TRIP: the bus (rose to .* after it was proved down|is at .* above the .* that the permit allows)"));
+        Assert.Contains(
+            judged.Log.SkipWhile(line => !line.Contains("TRIP", StringComparison.Ordinal)),
+            line => line.Contains("bus measured at", StringComparison.Ordinal));
+    }
 
     [Theory]
     [InlineData("F16", "supply/hardware-error")]

@@ -60,7 +60,7 @@ public sealed class PopulationTrialTests : IDisposable
                 end = (report.Decision.Outcome, facts.ExitCode, report.Ending == BenchEnding.Tripped,
                     report.Decision.Reason ?? "");
                 return Judgement.Of(facts).Concat(
-                    EvidenceAudit.Verify(Path.Combine(facts.Folder, "evidence.db")).Problems.Select(p => $"{p}"));
+                    EvidenceAudit.Verify(facts.EvidenceFile).Problems.Select(p => $"{p}"));
             });
         Assert.True(judged.Wrong.Length == 0, $"{serial}: {judged.Wrong}");
         return end;

@@ -55,6 +55,7 @@ public sealed class ServerTests
 
             await bench.Configure();
             await bench.Fire();
+            await bench.Rest(600);
             await bench.Fire();
             for (int input = 1; input <= 6; input++)
             {

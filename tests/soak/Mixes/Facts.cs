@@ -7,6 +7,7 @@ using BenchRunner.Runner.Devices;
 using BenchRunner.Runner.Sessions;
 using BenchRunner.Safety;
 using BenchRunner.Soak.Simulated;
+using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Soak.Mixes;
 
@@ -33,8 +34,35 @@ internal sealed record Facts(
     /// <summary>Whether the guardian ended the run.</summary>
     public bool RunWasEnded { get; init; }
 
+    /// <summary>Where the evidence is.</summary>
+    public string EvidenceFile { get; } = Path.Combine(Folder, "evidence.db");
+
     /// <summary>The one device's report; null: it got no run.</summary>
     public DeviceReport? Report => Recorder.Reports.SingleOrDefault();
+
+    /// <summary>What plain SQL asks of the evidence file.</summary>
+    public List<object[]> Rows(string sql)
+    {
+        using var connection = new SqliteConnection($"Data Source={EvidenceFile};Mode=ReadOnly;Pooling=False");
+        connection.Open();
+        using SqliteCommand command = connection.CreateCommand();
+#pragma warning disable CA2100 // The soak's own SQL.
+        command.CommandText = sql;
+#pragma warning restore CA2100
+        using SqliteDataReader reader = command.ExecuteReader();
+        var rows = new List<object[]>();
+        while (reader.Read())
+        {
+            var row = new object[reader.FieldCount];
+            reader.GetValues(row);
+            rows.Add(row);
+        }
+
+        return rows;
+    }
+
+    /// <summary>One value of it.</summary>
+    public T Ask<T>(string sql) => (T)Rows(sql).Single().Single();
 
     /// <summary>The exit code that the README documents for it, read there anew rather than taken from the
     /// command.</summary>

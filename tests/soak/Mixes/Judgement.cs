@@ -2,7 +2,6 @@ using BenchRunner.Acceptance.Decisions;
 using BenchRunner.Acceptance.Events;
 using BenchRunner.Evidence.Audits;
 using BenchRunner.Runner.Devices;
-using Microsoft.Data.Sqlite;
 
 namespace BenchRunner.Soak.Mixes;
 
@@ -109,44 +108,33 @@ internal static class Judgement
 
     private static IEnumerable<string> Evidence(Facts facts)
     {
-        string file = Path.Combine(facts.Folder, "evidence.db");
-        if (!File.Exists(file))
+        if (!File.Exists(facts.EvidenceFile))
         {
             yield return "there is no evidence file";
             yield break;
         }
 
-        foreach (AuditProblem problem in EvidenceAudit.Verify(file).Problems)
+        foreach (AuditProblem problem in EvidenceAudit.Verify(facts.EvidenceFile).Problems)
         {
             yield return $"audit: {problem.What}: {problem.Message}";
         }
 
-        using var connection = new SqliteConnection($"Data Source={file};Mode=ReadOnly;Pooling=False");
-        connection.Open();
-        long Count(string sql)
-        {
-            using SqliteCommand command = connection.CreateCommand();
-#pragma warning disable CA2100 // The soak's own SQL.
-            command.CommandText = sql;
-#pragma warning restore CA2100
-            return (long)command.ExecuteScalar()!;
-        }
-
-        if (Count("select count(*) from device_outcomes where finished_at is not null") is var ended
+        if (facts.Ask<long>("select count(*) from device_outcomes where finished_at is not null") is var ended
             && ended != facts.Recorder.Reports.Count)
         {
             yield return $"{ended} runs with an end in the evidence, {facts.Recorder.Reports.Count} were reported";
         }
 
-        if (Count("select count(*) from captures where valid is null and operating_point <> 'zero'") is > 0 and var bare)
+        if (facts.Ask<long>("select count(*) from captures where valid is null and operating_point <> 'zero'") is
+            > 0 and var bare)
         {
             yield return $"{bare} captures were never judged";
         }
 
         int Said(string[] kinds) => facts.Recorder.Events.Count(happened => kinds.Contains(happened.Kind));
-        long stored = Count("select count(*) from captures where operating_point <> 'zero'");
-        if (Said(["capture-valid"]) is var valid && Count("select count(*) from captures where valid") is var kept
-            && valid != kept)
+        long stored = facts.Ask<long>("select count(*) from captures where operating_point <> 'zero'");
+        if (Said(["capture-valid"]) is var valid
+            && facts.Ask<long>("select count(*) from captures where valid") is var kept && valid != kept)
         {
             yield return $"{valid} captures were called valid, {kept} stand so in the evidence";
         }
@@ -159,7 +147,7 @@ internal static class Judgement
                 + "said to be lost";
         }
 
-        if (Count("select count(*) from seal") < facts.Recorder.Reports.Count)
+        if (facts.Ask<long>("select count(*) from seal") < facts.Recorder.Reports.Count)
         {
             yield return "a run has no seal";
         }
