@@ -3,8 +3,8 @@ using BenchRunner.Evidence.Audits;
 namespace EndToEnd;
 
 /// <summary>Flaws of the fake bench that criteria of validity are for, through a whole run of one operating point: the
-/// criterion, its class, the outcome and the exit code; the bus down at the end and the evidence consistent. Each of them
-/// goes the same road in simulated time (tests/Soak.Tests).</summary>
+/// criterion, its class, the outcome and the exit code; the bus down at the end and the evidence consistent. All the
+/// others go the same road in simulated time (tests/Soak.Tests).</summary>
 [Trait("kind", "slow")]
 public sealed class CriterionTests : IDisposable
 {
